@@ -39,7 +39,10 @@ export const account = z.object({
 });
 export type Account = z.infer<typeof account>;
 
-export const signInInput = z.object({ email: z.string().trim().min(1).max(254), password: z.string().min(1).max(200) });
+export const signInInput = z.object({
+  email: z.string().trim().min(1).max(254),
+  password: z.string().min(1).max(200),
+});
 export type SignInInput = z.infer<typeof signInInput>;
 
 export const newAccountInput = z.object({
@@ -81,7 +84,12 @@ export const signIn = defineContract({
   reply: z.object({ me }),
 });
 
-export const signOut = defineContract({ method: 'DELETE', path: '/api/session', access: 'anyone', reply: z.object({}) });
+export const signOut = defineContract({
+  method: 'DELETE',
+  path: '/api/session',
+  access: 'anyone',
+  reply: z.object({}),
+});
 
 /** Null when nobody is signed in: the first thing the client asks, so not an error. */
 export const readMe = defineContract({

@@ -52,7 +52,10 @@ export class CodedError extends Error {
   readonly values: Record<string, string | number> | undefined;
   readonly issues: FieldIssue[] | undefined;
 
-  constructor(code: ErrorCode, extra: { values?: Record<string, string | number>; issues?: FieldIssue[]; cause?: unknown } = {}) {
+  constructor(
+    code: ErrorCode,
+    extra: { values?: Record<string, string | number>; issues?: FieldIssue[]; cause?: unknown } = {},
+  ) {
     super(code, { cause: extra.cause });
     this.name = 'CodedError';
     this.code = code;

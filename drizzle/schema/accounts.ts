@@ -1,5 +1,15 @@
 import { sql } from 'drizzle-orm';
-import { check, index, json, pgTable, primaryKey, text, timestamp, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import {
+  check,
+  index,
+  json,
+  pgTable,
+  primaryKey,
+  text,
+  timestamp,
+  uniqueIndex,
+  uuid,
+} from 'drizzle-orm/pg-core';
 import { regions } from './geography.ts';
 
 /** A person with an account. Growers have none: they hold a link. */
@@ -39,7 +49,10 @@ export const userRegions = pgTable(
       .notNull()
       .references(() => regions.id),
   },
-  (table) => [primaryKey({ columns: [table.userId, table.regionId] }), index('user_regions_region_idx').on(table.regionId)],
+  (table) => [
+    primaryKey({ columns: [table.userId, table.regionId] }),
+    index('user_regions_region_idx').on(table.regionId),
+  ],
 );
 
 /** Sign-in sessions; column names are those that connect-pg-simple reads and writes. */

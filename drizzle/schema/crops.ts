@@ -1,5 +1,15 @@
 import { sql } from 'drizzle-orm';
-import { boolean, check, doublePrecision, index, integer, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
+import {
+  boolean,
+  check,
+  doublePrecision,
+  index,
+  integer,
+  pgTable,
+  text,
+  unique,
+  uuid,
+} from 'drizzle-orm/pg-core';
 
 /** A crop with the bases its yields are stated on. */
 export const crops = pgTable(
@@ -35,7 +45,10 @@ export const varieties = pgTable(
       .notNull()
       .references(() => crops.id),
     name: text('name').notNull(),
-    aliases: text('aliases').array().notNull().default(sql`'{}'::text[]`),
+    aliases: text('aliases')
+      .array()
+      .notNull()
+      .default(sql`'{}'::text[]`),
     isCheck: boolean('is_check').notNull().default(false),
     firstSeason: integer('first_season'),
   },
@@ -68,6 +81,9 @@ export const traits = pgTable(
     check('traits_kind', sql`${table.kind} in ('numeric', 'ordinal')`),
     check('traits_direction', sql`${table.direction} in ('higher', 'lower', 'neutral')`),
     check('traits_margin_positive', sql`${table.practicalMargin} is null or ${table.practicalMargin} >= 0`),
-    check('traits_scale_order', sql`${table.scaleMin} is null or ${table.scaleMax} is null or ${table.scaleMin} < ${table.scaleMax}`),
+    check(
+      'traits_scale_order',
+      sql`${table.scaleMin} is null or ${table.scaleMax} is null or ${table.scaleMin} < ${table.scaleMax}`,
+    ),
   ],
 );

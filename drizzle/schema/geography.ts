@@ -34,6 +34,9 @@ export const sites = pgTable(
     check('sites_rain_positive', sql`${table.seasonRainMm} >= 0`),
     check('sites_heat_positive', sql`${table.heatSumDegreeDays} >= 0`),
     check('sites_ph_range', sql`${table.soilPh} between 3 and 11`),
-    check('sites_soil_texture', sql`${table.soilTexture} in ('sand', 'sandy-loam', 'loam', 'silt-loam', 'clay-loam', 'clay')`),
+    check(
+      'sites_soil_texture',
+      sql`${table.soilTexture} in ('sand', 'sandy-loam', 'loam', 'silt-loam', 'clay-loam', 'clay')`,
+    ),
   ],
 );

@@ -1,5 +1,15 @@
 import { sql } from 'drizzle-orm';
-import { check, date, doublePrecision, index, pgTable, primaryKey, text, unique, uuid } from 'drizzle-orm/pg-core';
+import {
+  check,
+  date,
+  doublePrecision,
+  index,
+  pgTable,
+  primaryKey,
+  text,
+  unique,
+  uuid,
+} from 'drizzle-orm/pg-core';
 import { crops, varieties } from './crops.ts';
 import { regions } from './geography.ts';
 

@@ -87,7 +87,10 @@ export const entries = pgTable(
     varietyId: uuid('variety_id').references(() => varieties.id),
     isCheck: boolean('is_check').notNull().default(false),
   },
-  (table) => [unique('entries_trial_label_unique').on(table.trialId, table.label), index('entries_variety_idx').on(table.varietyId)],
+  (table) => [
+    unique('entries_trial_label_unique').on(table.trialId, table.label),
+    index('entries_variety_idx').on(table.varietyId),
+  ],
 );
 
 /** A plot as it lay in the field. Left out only with a reason, never deleted. */
@@ -115,7 +118,10 @@ export const plots = pgTable(
   (table) => [
     unique('plots_trial_number_unique').on(table.trialId, table.plotNumber),
     index('plots_entry_idx').on(table.entryId),
-    check('plots_excluded_reason_said', sql`${table.excludedReason} is null or length(trim(${table.excludedReason})) > 0`),
+    check(
+      'plots_excluded_reason_said',
+      sql`${table.excludedReason} is null or length(trim(${table.excludedReason})) > 0`,
+    ),
   ],
 );
 
@@ -131,7 +137,10 @@ export const observations = pgTable(
       .references(() => traits.id),
     value: doublePrecision('value').notNull(),
   },
-  (table) => [primaryKey({ columns: [table.plotId, table.traitId] }), index('observations_trait_idx').on(table.traitId)],
+  (table) => [
+    primaryKey({ columns: [table.plotId, table.traitId] }),
+    index('observations_trait_idx').on(table.traitId),
+  ],
 );
 
 /** A published mean of a summary trial. */
@@ -229,7 +238,10 @@ export const versionFits = pgTable(
     plotsMissing: integer('plots_missing').notNull(),
     engineVersion: text('engine_version').notNull(),
   },
-  (table) => [primaryKey({ columns: [table.versionId, table.traitId] }), index('version_fits_trait_idx').on(table.traitId)],
+  (table) => [
+    primaryKey({ columns: [table.versionId, table.traitId] }),
+    index('version_fits_trait_idx').on(table.traitId),
+  ],
 );
 
 /** The adjusted mean of an entry in one version and trait; its variance is half the mean variance of its differences. */

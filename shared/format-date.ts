@@ -1,0 +1,33 @@
+import type { Language } from './account.ts';
+
+/** Day before month in both languages, as the trade writes it. */
+const dateLocales: Record<Language, string> = { en: 'en-GB', fr: 'fr-CA' };
+
+/** French writes the first of a month as an ordinal. */
+function writeFirstOfMonth(text: string, language: Language): string {
+  return language === 'fr' ? text.replace(/^1(?=\s)/, '1er') : text;
+}
+
+/**
+ * A date in words: `14 November 2026`, `1er décembre 2026`.
+ * @param iso a date (`2026-11-14`, taken as that day everywhere) or a moment (shown in the reader's time zone)
+ */
+export function formatDate(iso: string, language: Language, timeZone?: string): string {
+  const isDay = /^\d{4}-\d{2}-\d{2}$/.test(iso);
+  const format = new Intl.DateTimeFormat(dateLocales[language], {
+    dateStyle: 'long',
+    timeZone: isDay ? 'UTC' : timeZone,
+  });
+  return writeFirstOfMonth(format.format(new Date(iso)), language);
+}
+
+/** A moment in words with hour and minute: `14 November 2026, 09:30`, `14 novembre 2026, 09 h 30`. */
+export function formatDateTime(iso: string, language: Language, timeZone?: string): string {
+  const time = new Intl.DateTimeFormat(dateLocales[language], {
+    hour: '2-digit',
+    minute: '2-digit',
+    hourCycle: 'h23',
+    timeZone,
+  });
+  return `${formatDate(iso, language, timeZone)}, ${time.format(new Date(iso))}`;
+}

@@ -1,0 +1,210 @@
+import { z } from 'zod';
+import { bilingualName } from './catalogue.ts';
+import { caution } from './caution.ts';
+import { defineContract } from './contract.ts';
+import { moneyAssumptions, moneyResult } from './money.ts';
+import { interval, verdictCode } from './verdict.ts';
+
+/** The gap of a candidate to the current variety in one trait; units are the trait's. */
+export const gapEstimate = z.object({
+  /** Candidate minus current, by the model. */
+  estimate: z.number(),
+  se: z.number(),
+  df: z.number(),
+  /** p of "no gap", under the comparison the question calls for. */
+  p: z.number(),
+  /** For the region's average over seasons, widened for the number of candidates where several are compared. */
+  region: interval,
+  /** For the grower's own next season. */
+  ownSeason: interval.extend({ se: z.number(), df: z.number() }).nullable(),
+  /** Pulled back towards no gap for having been picked from a list. */
+  shrunken: z.number().nullable(),
+});
+export type GapEstimate = z.infer<typeof gapEstimate>;
+
+/** One trial in which both varieties stood. */
+export const trialGap = z.object({
+  trialId: z.uuid(),
+  siteName: z.string(),
+  season: z.number().int(),
+  /** Mean yield of the trial, t/ha: the lines are sorted by it. */
+  trialMean: z.number(),
+  estimate: z.number(),
+  interval,
+});
+export type TrialGap = z.infer<typeof trialGap>;
+
+export const traitVerdict = z.object({
+  traitSlug: z.string(),
+  kind: z.enum(['numeric', 'ordinal']),
+  verdict: verdictCode.nullable(),
+  gap: gapEstimate.nullable(),
+  siteYears: z.number().int(),
+  /** Ordinal ratings: medians and trials, no verdict. */
+  medianCandidate: z.number().nullable(),
+  medianCurrent: z.number().nullable(),
+});
+export type TraitVerdict = z.infer<typeof traitVerdict>;
+
+export const candidateResult = z.object({
+  varietyId: z.uuid(),
+  varietyName: z.string(),
+  verdict: verdictCode,
+  gap: gapEstimate.nullable(),
+  /** Trials in which the candidate stood, and those it shared with the current variety. */
+  siteYears: z.number().int(),
+  sharedSiteYears: z.number().int(),
+  money: moneyResult.nullable(),
+  /** Further site-years at which the present gap would be settled; 41 stands for "more than 40"; null where it is settled. */
+  siteYearsToSettle: z.number().int().nullable(),
+  trials: z.array(trialGap),
+  traits: z.array(traitVerdict),
+  cautions: z.array(caution),
+});
+export type CandidateResult = z.infer<typeof candidateResult>;
+
+export const usedTrial = z.object({
+  trialId: z.uuid(),
+  name: z.string(),
+  siteName: z.string(),
+  season: z.number().int(),
+  version: z.number().int(),
+  sha256: z.string(),
+  meanYield: z.number().nullable(),
+  cvPercent: z.number().nullable(),
+});
+export type UsedTrial = z.infer<typeof usedTrial>;
+
+export const leftOutTrial = usedTrial.extend({ reason: z.enum(['weak-cv', 'no-variance', 'not-connected']) });
+
+export const weighUpResult = z.object({
+  /** no-trials: the region has none of the crop in these seasons, so there is no verdict at all. */
+  answer: z.enum(['weighed', 'no-trials']),
+  computedAt: z.iso.datetime(),
+  engineVersion: z.string(),
+  /** Comparison used, said in one sentence on the page. */
+  comparison: z.enum(['dunnett', 'lsd']),
+  sites: z.number().int(),
+  seasons: z.array(z.number().int()),
+  trials: z.array(usedTrial),
+  leftOut: z.array(leftOutTrial),
+  /** Standard deviations of variety × site, × season and rest, t/ha, with where they came from. */
+  components: z.object({ site: z.number(), season: z.number(), rest: z.number() }).nullable(),
+  usualVariancesFrom: z.enum(['crop-default', 'own-trials']).nullable(),
+  candidates: z.array(candidateResult),
+  cautions: z.array(caution),
+});
+export type WeighUpResult = z.infer<typeof weighUpResult>;
+
+const seasonSpan = {
+  seasonFrom: z.coerce.number().int().min(1900).max(2200),
+  seasonTo: z.coerce.number().int().min(1900).max(2200),
+};
+
+export const weighUpInput = z
+  .object({
+    cropId: z.uuid(),
+    regionId: z.uuid(),
+    ...seasonSpan,
+    growerName: z.string().trim().min(1).max(120),
+    farmName: z.string().trim().min(1).max(120),
+    areaHectares: z.number().positive().max(100_000),
+    currentVarietyId: z.uuid(),
+    candidateIds: z.array(z.uuid()).min(1).max(8),
+    assumptions: moneyAssumptions,
+  })
+  .refine((input) => input.seasonFrom <= input.seasonTo, { path: ['seasonTo'], message: 'season-order' })
+  .refine((input) => new Set(input.candidateIds).size === input.candidateIds.length, {
+    path: ['candidateIds'],
+    message: 'candidate-twice',
+  })
+  .refine((input) => !input.candidateIds.includes(input.currentVarietyId), {
+    path: ['candidateIds'],
+    message: 'candidate-is-current',
+  });
+export type WeighUpInput = z.infer<typeof weighUpInput>;
+
+export const weighUp = z.object({
+  id: z.uuid(),
+  revision: z.number().int(),
+  ownerName: z.string(),
+  cropId: z.uuid(),
+  cropName: bilingualName,
+  regionId: z.uuid(),
+  regionName: bilingualName,
+  seasonFrom: z.number().int(),
+  seasonTo: z.number().int(),
+  growerName: z.string(),
+  farmName: z.string(),
+  areaHectares: z.number(),
+  currentVarietyId: z.uuid(),
+  currentVarietyName: z.string(),
+  candidateIds: z.array(z.uuid()),
+  assumptions: moneyAssumptions,
+  createdAt: z.iso.datetime(),
+  updatedAt: z.iso.datetime(),
+});
+export type WeighUp = z.infer<typeof weighUp>;
+
+export const weighUpLine = z.object({
+  id: z.uuid(),
+  cropName: bilingualName,
+  regionName: bilingualName,
+  growerName: z.string(),
+  farmName: z.string(),
+  currentVarietyName: z.string(),
+  candidates: z.number().int(),
+  updatedAt: z.iso.datetime(),
+});
+export type WeighUpLine = z.infer<typeof weighUpLine>;
+
+export const candidateQuery = z.object({
+  cropId: z.uuid(),
+  regionId: z.uuid(),
+  currentVarietyId: z.uuid(),
+  ...seasonSpan,
+});
+
+/** All varieties of the crop with trials in the region, each weighed against the current one, largest gap first. */
+export const listCandidates = defineContract({
+  method: 'GET',
+  path: '/api/candidates',
+  access: ['advisor', 'agronomist'],
+  query: candidateQuery,
+  reply: z.object({ result: weighUpResult, assumptions: moneyAssumptions.nullable() }),
+});
+
+export const listWeighUps = defineContract({
+  method: 'GET',
+  path: '/api/weigh-ups',
+  access: ['advisor', 'agronomist'],
+  reply: z.object({ weighUps: z.array(weighUpLine) }),
+});
+
+export const createWeighUp = defineContract({
+  method: 'POST',
+  path: '/api/weigh-ups',
+  access: ['advisor', 'agronomist'],
+  body: weighUpInput,
+  reply: z.object({ weighUp }),
+});
+
+const weighUpParams = z.object({ weighUpId: z.uuid() });
+
+export const readWeighUp = defineContract({
+  method: 'GET',
+  path: '/api/weigh-ups/:weighUpId',
+  access: ['advisor', 'agronomist'],
+  params: weighUpParams,
+  reply: z.object({ weighUp, result: weighUpResult }),
+});
+
+/** Saves the whole question; `revision-conflict` when somebody saved in between. */
+export const changeWeighUp = defineContract({
+  method: 'PUT',
+  path: '/api/weigh-ups/:weighUpId',
+  access: ['advisor', 'agronomist'],
+  params: weighUpParams,
+  body: z.object({ revision: z.number().int(), weighUp: weighUpInput }),
+  reply: z.object({ weighUp, result: weighUpResult }),
+});
