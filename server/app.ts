@@ -1,0 +1,106 @@
+import { join } from 'node:path';
+import compression from 'compression';
+import express, { type Express, Router } from 'express';
+import helmet from 'helmet';
+import type pg from 'pg';
+import type { Logger } from 'pino';
+import { pinoHttp } from 'pino-http';
+import { CodedError } from '#shared/error-codes.ts';
+import { addAccountRoutes } from './accounts/account-routes.ts';
+import { addSignInRoutes } from './accounts/sign-in-routes.ts';
+import { addAuditRoutes } from './audit/audit-routes.ts';
+import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
+import type { Database } from './db.ts';
+import type { ServerSettings } from './env.ts';
+import { handleError } from './error-handler.ts';
+import { addGrowerCopyRoutes } from './grower-copy/grower-copy-routes.ts';
+import { addHealthRoute } from './health.ts';
+import { requireSameOrigin } from './same-origin.ts';
+import { buildSession } from './session.ts';
+import { addTrialDeskRoutes } from './trial-desk/trial-desk-routes.ts';
+import { addTrialRoutes } from './trials/trial-routes.ts';
+import { addWeighUpRoutes } from './weigh-up/weigh-up-routes.ts';
+
+const capabilities = [
+  addSignInRoutes,
+  addAccountRoutes,
+  addAuditRoutes,
+  addCatalogueRoutes,
+  addTrialRoutes,
+  addTrialDeskRoutes,
+  addWeighUpRoutes,
+  addGrowerCopyRoutes,
+];
+
+/** Builds the application: API under /api, the client on every other path. Listens to nothing yet. */
+export function buildApp(db: Database, pool: pg.Pool, settings: ServerSettings, logger: Logger): Express {
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('trust proxy', settings.isBehindHttpsProxy ? 1 : false);
+  app.use(
+    pinoHttp({
+      logger,
+      redact: ['req.headers.cookie', 'req.headers.authorization', 'res.headers["set-cookie"]'],
+    }),
+  );
+  app.use(buildHelmet(settings));
+  app.use(compression());
+  addApi(app, db, pool, settings);
+  if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
+  app.use(handleError);
+  return app;
+}
+
+/** Contracts carry whole paths, so the routers are mounted at the root and only the guards at /api. */
+function addApi(app: Express, db: Database, pool: pg.Pool, settings: ServerSettings): void {
+  app.use('/api', (_request, response, next) => {
+    response.set('Cache-Control', 'no-store');
+    next();
+  });
+  app.use('/api', requireSameOrigin, express.json({ limit: '256kb' }));
+  const router = Router();
+  addHealthRoute(router, db);
+  router.use('/api', buildSession(db, pool, settings));
+  for (const addRoutes of capabilities) addRoutes(router, db);
+  app.use(router);
+  app.use('/api', () => {
+    throw new CodedError('not-found');
+  });
+}
+
+function serveClient(app: Express, clientFolder: string): void {
+  const hashed = { immutable: true, maxAge: '1y', index: false, fallthrough: true } as const;
+  app.use('/assets', express.static(join(clientFolder, 'assets'), hashed), (_request, response) => {
+    response.status(404).end();
+  });
+  app.use(express.static(clientFolder, { index: false, maxAge: '1h' }));
+  app.get('/{*path}', (request, response) => {
+    response.set('Cache-Control', 'no-cache');
+    if (request.path.startsWith('/copy/')) {
+      response.set({ 'X-Robots-Tag': 'noindex, nofollow', 'Referrer-Policy': 'no-referrer' });
+    }
+    response.sendFile(join(clientFolder, 'index.html'));
+  });
+}
+
+/** Headers: everything from our own origin; the charts set style attributes. Plain http on loopback gets no upgrade. */
+function buildHelmet(settings: ServerSettings): express.RequestHandler {
+  return helmet({
+    contentSecurityPolicy: {
+      directives: {
+        defaultSrc: ["'self'"],
+        scriptSrc: ["'self'"],
+        styleSrc: ["'self'"],
+        styleSrcAttr: ["'unsafe-inline'"],
+        imgSrc: ["'self'", 'data:'],
+        fontSrc: ["'self'"],
+        connectSrc: ["'self'"],
+        objectSrc: ["'none'"],
+        frameAncestors: ["'none'"],
+        upgradeInsecureRequests: settings.isBehindHttpsProxy ? [] : null,
+      },
+    },
+    strictTransportSecurity: settings.isBehindHttpsProxy,
+    referrerPolicy: { policy: 'same-origin' },
+  });
+}

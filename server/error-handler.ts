@@ -1,0 +1,71 @@
+import type { ErrorRequestHandler } from 'express';
+import { CodedError, type ErrorCode, type ErrorReply } from '#shared/error-codes.ts';
+import { isDatabaseAway } from './db.ts';
+
+const statusOf = {
+  'invalid-input': 400,
+  'not-signed-in': 401,
+  'not-allowed': 403,
+  'not-found': 404,
+  'wrong-credentials': 401,
+  'account-suspended': 403,
+  'too-many-attempts': 429,
+  'cross-site-request': 403,
+  'body-too-large': 413,
+  'database-away': 503,
+  internal: 500,
+  'revision-conflict': 409,
+  'state-conflict': 409,
+  'email-taken': 409,
+  'last-administrator': 409,
+  'own-account': 409,
+  'import-refused': 422,
+  'import-too-large': 413,
+  'trial-exists': 409,
+  'trial-not-analysable': 422,
+  'trait-without-data': 404,
+  'variety-not-of-crop': 422,
+  'region-not-yours': 403,
+  'link-unknown': 404,
+  'link-expired': 410,
+  'link-revoked': 410,
+} satisfies Record<ErrorCode, number>;
+
+/** Seconds after which a client may try again when the database is away. */
+const retrySeconds = 5;
+
+/** The one place where a failure becomes a status and a code; routes never catch. */
+export const handleError: ErrorRequestHandler = (error: unknown, request, response, next) => {
+  if (response.headersSent) {
+    next(error);
+    return;
+  }
+  const coded = codeFailure(error);
+  if (coded.code === 'internal' || coded.code === 'database-away')
+    request.log?.error({ err: error }, coded.code);
+  if (coded.code === 'database-away') response.set('Retry-After', String(retrySeconds));
+  const reply: ErrorReply = {
+    error: {
+      code: coded.code,
+      ...(coded.values === undefined ? {} : { values: coded.values }),
+      ...(coded.issues === undefined ? {} : { issues: coded.issues }),
+    },
+  };
+  response.status(statusOf[coded.code]).json(reply);
+};
+
+/** Brings what the body parser, the upload parser, the pool and our own code throw to one type. */
+function codeFailure(error: unknown): CodedError {
+  if (error instanceof CodedError) return error;
+  if (isDatabaseAway(error)) return new CodedError('database-away', { cause: error });
+  const type = error instanceof Error && 'type' in error ? error.type : null;
+  const code = error instanceof Error && 'code' in error ? error.code : null;
+  if (type === 'entity.too.large') return new CodedError('body-too-large', { cause: error });
+  if (code === 'LIMIT_FILE_SIZE') return new CodedError('import-too-large', { cause: error });
+  const isClientFault =
+    error instanceof Error && 'status' in error && typeof error.status === 'number' && error.status < 500;
+  if (isClientFault || (typeof code === 'string' && code.startsWith('LIMIT_'))) {
+    return new CodedError('invalid-input', { cause: error });
+  }
+  return new CodedError('internal', { cause: error });
+}
