@@ -1,0 +1,2 @@
+/** A PostgreSQL for one run of the tests; close stops and deletes it. */
+export function openTestCluster(projectRoot: string): Promise<{ url: string; close: () => void }>;
