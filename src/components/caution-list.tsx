@@ -1,0 +1,79 @@
+import { useId, type ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
+import type { CautionSeverity } from '#shared/caution.ts';
+
+export type CautionItem = { id: string; severity: CautionSeverity; text: ReactNode };
+
+type CautionListProps = {
+  title: ReactNode;
+  items: readonly CautionItem[];
+  /** Level of the title in the page's outline. */
+  headingLevel?: 2 | 3;
+};
+
+const order: Record<CautionSeverity, number> = { stop: 0, warning: 1, note: 2 };
+
+const tones: Record<CautionSeverity, string> = {
+  stop: 'text-stop',
+  warning: 'text-break-even',
+  note: 'text-faded',
+};
+
+/** Where the evidence stops: always in view, gravest first, each with its glyph and its word. */
+export function CautionList({ title, items, headingLevel = 2 }: CautionListProps) {
+  const { t } = useTranslation('common');
+  const titleId = useId();
+  const Heading = `h${headingLevel}` as const;
+  const sorted = [...items].sort((a, b) => order[a.severity] - order[b.severity]);
+  if (sorted.length === 0) return null;
+  return (
+    <section
+      aria-labelledby={titleId}
+      className="rounded-lg bg-warning px-4 py-4 sm:px-5 print:border print:border-ink print:p-3"
+    >
+      <Heading id={titleId} className="mb-2">
+        {title}
+      </Heading>
+      <ul className="flex flex-col gap-2.5">
+        {sorted.map((item) => (
+          <li key={item.id} className="grid grid-cols-[1.5rem_minmax(0,1fr)] gap-x-2">
+            <SeverityGlyph severity={item.severity} />
+            <p className="max-w-prose">
+              <strong className={`font-semibold ${tones[item.severity]}`}>
+                {t(`severity.${item.severity}`)}
+              </strong>{' '}
+              {item.text}
+            </p>
+          </li>
+        ))}
+      </ul>
+    </section>
+  );
+}
+
+/** A line for a note, a triangle for a warning, a barred square for a stop: told apart without colour. */
+function SeverityGlyph({ severity }: { severity: CautionSeverity }) {
+  return (
+    <svg viewBox="0 0 20 20" className={`mt-0.5 size-5 ${tones[severity]}`} aria-hidden="true">
+      {severity === 'note' && <path d="M3 10h14" stroke="currentColor" strokeWidth="3" />}
+      {severity === 'warning' && (
+        <>
+          <path
+            d="M10 2 18.5 17.5h-17Z"
+            fill="none"
+            stroke="currentColor"
+            strokeWidth="2"
+            strokeLinejoin="round"
+          />
+          <path d="M10 7.5v5M10 14.4v1.4" stroke="currentColor" strokeWidth="2" />
+        </>
+      )}
+      {severity === 'stop' && (
+        <>
+          <rect x="2" y="2" width="16" height="16" rx="2" fill="currentColor" />
+          <path d="M5.5 10h9" stroke="var(--color-warning)" strokeWidth="3" />
+        </>
+      )}
+    </svg>
+  );
+}

@@ -1,0 +1,189 @@
+import { useMemo, useState, type ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
+import { useLanguage } from './use-language.ts';
+
+export type Column<Row> = {
+  id: string;
+  header: ReactNode;
+  cell: (row: Row) => ReactNode;
+  /** Makes the column sortable; null sorts last in both directions. */
+  sortValue?: (row: Row) => number | string | null;
+  /** Figures stand at the end, so that their decimals line up. */
+  align?: 'start' | 'end';
+};
+
+export type SortState = { columnId: string; isDescending: boolean };
+
+type DataTableProps<Row> = {
+  /** Says what the table holds; read first by a screen reader. */
+  caption: ReactNode;
+  isCaptionVisible?: boolean;
+  columns: readonly Column<Row>[];
+  rows: readonly Row[];
+  rowKey: (row: Row) => string;
+  /** The column that names the row; the first without it. */
+  headColumnId?: string;
+  initialSort?: SortState;
+  /** On a narrow screen each row becomes a card (`turn`), or the table scrolls inside its own box (`scroll`). */
+  whenNarrow?: 'turn' | 'scroll';
+};
+
+function compareValues(a: number | string, b: number | string, language: string): number {
+  if (typeof a === 'number' && typeof b === 'number') return a - b;
+  return String(a).localeCompare(String(b), language, { numeric: true, sensitivity: 'base' });
+}
+
+/** Orders rows by a column; rows without a value go last whichever way it is turned. */
+export function sortRows<Row>(
+  rows: readonly Row[],
+  sortValue: (row: Row) => number | string | null,
+  isDescending: boolean,
+  language: string,
+): Row[] {
+  return rows
+    .map((row) => ({ row, value: sortValue(row) }))
+    .sort((a, b) => {
+      if (a.value === null || b.value === null) return Number(a.value === null) - Number(b.value === null);
+      const order = compareValues(a.value, b.value, language);
+      return isDescending ? -order : order;
+    })
+    .map(({ row }) => row);
+}
+
+/** A plain table: sorts by its headings and turns into cards where the screen is narrow. */
+export function DataTable<Row>({
+  caption,
+  isCaptionVisible = false,
+  columns,
+  rows,
+  rowKey,
+  headColumnId,
+  initialSort,
+  whenNarrow = 'turn',
+}: DataTableProps<Row>) {
+  const language = useLanguage();
+  const [sort, setSort] = useState<SortState | undefined>(initialSort);
+  const sortColumn = columns.find((column) => column.id === sort?.columnId);
+  const sorted = useMemo(
+    () =>
+      sort && sortColumn?.sortValue
+        ? sortRows(rows, sortColumn.sortValue, sort.isDescending, language)
+        : [...rows],
+    [rows, sort, sortColumn, language],
+  );
+  const headId = headColumnId ?? columns[0]?.id;
+  const isTurned = whenNarrow === 'turn';
+  return (
+    <div className={isTurned ? '@container' : 'overflow-x-auto'} {...(isTurned ? {} : { tabIndex: 0 })}>
+      {/* Roles are repeated because a turned table is laid out as blocks, and browsers then drop its meaning. */}
+      <table role="table" className="w-full border-collapse text-left">
+        <caption className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}>
+          {caption}
+        </caption>
+        <thead role="rowgroup" className={isTurned ? 'max-@xl:sr-only' : ''}>
+          <tr role="row" className="border-b-2 border-ink">
+            {columns.map((column) => (
+              <HeadCell key={column.id} column={column} sort={sort} onSort={setSort} />
+            ))}
+          </tr>
+        </thead>
+        <tbody role="rowgroup">
+          {sorted.map((row) => (
+            <tr
+              role="row"
+              key={rowKey(row)}
+              className={`border-b border-rule ${isTurned ? 'max-@xl:block max-@xl:py-3' : ''}`}
+            >
+              {columns.map((column) => (
+                <BodyCell
+                  key={column.id}
+                  column={column}
+                  row={row}
+                  isHead={column.id === headId}
+                  isTurned={isTurned}
+                />
+              ))}
+            </tr>
+          ))}
+        </tbody>
+      </table>
+    </div>
+  );
+}
+
+type HeadCellProps<Row> = {
+  column: Column<Row>;
+  sort: SortState | undefined;
+  onSort: (sort: SortState) => void;
+};
+
+function HeadCell<Row>({ column, sort, onSort }: HeadCellProps<Row>) {
+  const { t } = useTranslation('common');
+  const isSorted = sort?.columnId === column.id;
+  const side = column.align === 'end' ? 'text-right' : 'text-left';
+  const space = 'px-2 first:pl-0 last:pr-0 text-sm font-semibold text-faded align-bottom';
+  if (!column.sortValue) {
+    return (
+      <th role="columnheader" scope="col" className={`${space} py-2 ${side}`}>
+        {column.header}
+      </th>
+    );
+  }
+  const direction = sort?.isDescending ? 'descending' : 'ascending';
+  return (
+    <th
+      role="columnheader"
+      scope="col"
+      aria-sort={isSorted ? direction : 'none'}
+      className={`${space} ${side}`}
+    >
+      <button
+        type="button"
+        title={t('table.sort')}
+        className={`tap-target -mx-1 px-1 font-semibold ${side} ${isSorted ? 'text-ink' : ''}`}
+        onClick={() => onSort({ columnId: column.id, isDescending: isSorted ? !sort.isDescending : false })}
+      >
+        {column.header}{' '}
+        <span aria-hidden="true" className={isSorted ? '' : 'opacity-50'}>
+          {isSorted ? (sort.isDescending ? '▼' : '▲') : '↕'}
+        </span>
+      </button>
+    </th>
+  );
+}
+
+type BodyCellProps<Row> = { column: Column<Row>; row: Row; isHead: boolean; isTurned: boolean };
+
+function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
+  const side = column.align === 'end' ? 'text-right' : 'text-left';
+  const space = 'px-2 py-2 first:pl-0 last:pr-0 align-top';
+  if (isHead) {
+    return (
+      <th
+        role="rowheader"
+        scope="row"
+        className={`${space} ${side} font-semibold ${isTurned ? 'max-@xl:block max-@xl:px-0 max-@xl:pt-0 max-@xl:text-left' : ''}`}
+      >
+        {column.cell(row)}
+      </th>
+    );
+  }
+  if (!isTurned) {
+    return (
+      <td role="cell" className={`${space} ${side}`}>
+        {column.cell(row)}
+      </td>
+    );
+  }
+  return (
+    <td
+      role="cell"
+      className={`${space} ${side} max-@xl:flex max-@xl:justify-between max-@xl:gap-4 max-@xl:px-0 max-@xl:py-1 max-@xl:text-right`}
+    >
+      <span aria-hidden="true" className="hidden shrink-0 text-left text-sm text-faded max-@xl:inline">
+        {column.header}
+      </span>
+      <span className="min-w-0">{column.cell(row)}</span>
+    </td>
+  );
+}

@@ -1,0 +1,22 @@
+import { useTranslation } from 'react-i18next';
+import { languages, type Language } from '#shared/account.ts';
+import { useLanguage } from './use-language.ts';
+
+/** Offers each other language in that language's own name. */
+export function LanguageSwitch({ onChoose }: { onChoose: (language: Language) => void }) {
+  const { t } = useTranslation('common');
+  const current = useLanguage();
+  return languages
+    .filter((language) => language !== current)
+    .map((language) => (
+      <button
+        key={language}
+        type="button"
+        lang={language}
+        onClick={() => onChoose(language)}
+        className="tap-target px-1 text-action underline underline-offset-4 hover:decoration-2"
+      >
+        {t(`languageName.${language}`)}
+      </button>
+    ));
+}

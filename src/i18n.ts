@@ -1,0 +1,94 @@
+import { createInstance, type BackendModule, type i18n as I18n, type ResourceKey } from 'i18next';
+import { initReactI18next } from 'react-i18next';
+import { language as languageCode, languages, type Language } from '#shared/account.ts';
+import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
+import type { Namespace } from './locale-resources.ts';
+
+const storageKey = 'gavelrow.language';
+
+/** One chunk per language and namespace, fetched when a page first asks for it. */
+const localeFiles = import.meta.glob<ResourceKey>('/locales/*/*.json', { import: 'default' });
+
+const localeBackend: BackendModule = {
+  type: 'backend',
+  init: () => undefined,
+  read: (language, namespace, done) => {
+    const load = localeFiles[`/locales/${language}/${namespace}.json`];
+    if (!load) {
+      done(new Error(`No sentences for ${namespace} in ${language}`), false);
+      return;
+    }
+    load().then(
+      (sentences) => done(null, sentences),
+      (failure: unknown) => done(failure instanceof Error ? failure : new Error(String(failure)), false),
+    );
+  },
+};
+
+/** The language chosen here before, else the browser's, else English. */
+function guessLanguage(): Language {
+  const candidates = [readStoredLanguage(), ...navigator.languages.map((tag) => tag.slice(0, 2))];
+  for (const candidate of candidates) {
+    const parsed = languageCode.safeParse(candidate);
+    if (parsed.success) return parsed.data;
+  }
+  return 'en';
+}
+
+function readStoredLanguage(): string | null {
+  try {
+    return localStorage.getItem(storageKey);
+  } catch {
+    // Storage may be refused (private windows): the browser's language serves.
+    return null;
+  }
+}
+
+function storeLanguage(language: Language): void {
+  try {
+    localStorage.setItem(storageKey, language);
+  } catch {
+    // Not being able to remember the language must not stop its use.
+  }
+}
+
+export const i18n: I18n = createInstance();
+
+/** Starts the sentences and keeps `lang` on the page in step with them. */
+export async function startI18n(): Promise<void> {
+  i18n.on('languageChanged', (tag) => {
+    document.documentElement.lang = tag;
+  });
+  const firstNamespaces: Namespace[] = ['common', 'errors'];
+  await i18n
+    .use(localeBackend)
+    .use(initReactI18next)
+    .init({
+      lng: guessLanguage(),
+      supportedLngs: [...languages],
+      fallbackLng: false,
+      ns: firstNamespaces,
+      defaultNS: 'common',
+      interpolation: { escapeValue: false },
+      returnNull: false,
+    });
+  addSentenceFormats();
+}
+
+/** Lets a sentence name our own formats behind a placeholder, in place of the library's. */
+function addSentenceFormats(): void {
+  const formatter = i18n.services.formatter;
+  const languageOf = (tag: string | undefined) => languageCode.catch('en').parse(tag);
+  for (const [name, format] of Object.entries(sentenceFormats)) {
+    formatter?.add(name, (value: unknown, tag, options: SentenceFormatOptions) =>
+      typeof value === 'number' ? format(value, languageOf(tag), options) : String(value),
+    );
+  }
+  formatter?.add('date', (value: unknown, tag) => formatSentenceDate(String(value), languageOf(tag)));
+}
+
+/** Changes the language of the whole page and remembers it in this browser. The sentences in use are loaded first. */
+export async function changeLanguage(language: Language): Promise<void> {
+  storeLanguage(language);
+  if (i18n.language !== language) await i18n.changeLanguage(language);
+}

@@ -1,0 +1,23 @@
+import { StrictMode } from 'react';
+import { createRoot } from 'react-dom/client';
+import { QueryClientProvider } from '@tanstack/react-query';
+import { BrowserRouter } from 'react-router-dom';
+import { startI18n } from './i18n.ts';
+import { makeQueryClient } from './query-client.ts';
+import { AppRoutes } from './routes.tsx';
+import './styles.css';
+
+const root = document.getElementById('root');
+if (!root) throw new Error('index.html has no #root');
+
+await startI18n();
+
+createRoot(root).render(
+  <StrictMode>
+    <QueryClientProvider client={makeQueryClient()}>
+      <BrowserRouter>
+        <AppRoutes />
+      </BrowserRouter>
+    </QueryClientProvider>
+  </StrictMode>,
+);

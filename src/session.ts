@@ -1,0 +1,56 @@
+import {
+  queryOptions,
+  useMutation,
+  useQueryClient,
+  useSuspenseQuery,
+  type QueryClient,
+} from '@tanstack/react-query';
+import { changeMe, readMe, signOut, type Language, type Me } from '#shared/account.ts';
+import { callApi } from './api-client.ts';
+import { changeLanguage } from './i18n.ts';
+
+/** Who is signed in; null for nobody. */
+export const meQuery = queryOptions({
+  queryKey: ['me'],
+  queryFn: async ({ signal }) => (await callApi(readMe, {}, signal)).me,
+  staleTime: Infinity,
+});
+
+/** Takes over a person who has just signed in, and their language with them. */
+export async function enterSession(client: QueryClient, me: Me): Promise<void> {
+  client.setQueryData(meQuery.queryKey, me);
+  await changeLanguage(me.language);
+}
+
+/** The signed-in person, on pages that only a signed-in person reaches. */
+export function useMe(): Me {
+  const { data } = useSuspenseQuery(meQuery);
+  if (data === null) throw new Error('This page is for signed-in people only');
+  return data;
+}
+
+/** Changes the language of the page, and of the account where somebody is signed in. */
+export function useLanguageSwitch(): (language: Language) => void {
+  const client = useQueryClient();
+  const keep = useMutation({
+    mutationFn: async (language: Language) => (await callApi(changeMe, { body: { language } })).me,
+    onSuccess: (me) => client.setQueryData(meQuery.queryKey, me),
+  });
+  return (language) => {
+    void changeLanguage(language);
+    if (client.getQueryData(meQuery.queryKey)) keep.mutate(language);
+  };
+}
+
+/** Signs out and forgets everything that was fetched for the person. */
+export function useSignOut(): () => void {
+  const client = useQueryClient();
+  const leave = useMutation({
+    mutationFn: () => callApi(signOut, {}),
+    onSuccess: () => {
+      client.clear();
+      client.setQueryData(meQuery.queryKey, null);
+    },
+  });
+  return () => leave.mutate();
+}
