@@ -1,0 +1,90 @@
+import { AnalysisError } from '#server/stats/analysis-error.ts';
+import { compareWithCheck } from './check-comparison.ts';
+import { describeFixedResiduals, estimateFixedMeans, summariseFixedFit } from './fixed-analysis.ts';
+import { fitFixed, type FixedFit } from './fixed-fit.ts';
+import { tabulateFamily, type MeanEstimates } from './gap-table.ts';
+import { buildFamily, type MeanFamily } from './mean-family.ts';
+import { sortLabels } from './model-terms.ts';
+import { readPlots, type UsedPlots } from './read-plots.ts';
+import type { TrialDesign, TrialOptions, TrialPlot } from './trial-data.ts';
+import { diagnose, type FitResiduals } from './trial-diagnostics.ts';
+import { buildModel, type TrialModel } from './trial-model.ts';
+import { noticeGaps } from './trial-notices.ts';
+import type { FamilyTable, FitSummary, TrialAnalysis, TrialNotice, VarianceRow } from './trial-result.ts';
+import { tabulateVariance } from './variance-table.ts';
+
+/** A fit of either kind, as far as the tables need it. */
+interface ModelAnalysis {
+  readonly summary: FitSummary;
+  readonly anova: readonly VarianceRow[];
+  readonly estimate: (family: MeanFamily) => MeanEstimates;
+  readonly residuals: FitResiduals;
+  readonly notices: readonly TrialNotice[];
+}
+
+/**
+ * One trial, one trait: adjusted means, all gaps with every comparison, the analysis of variance and the checks.
+ * Pure: no rounding, no language. What cannot be estimated is marked so in the result.
+ * @throws AnalysisError where the data cannot be analysed at all, with the rows at fault
+ */
+export function analyseTrial(
+  plots: readonly TrialPlot[],
+  design: TrialDesign,
+  options: TrialOptions = {},
+): TrialAnalysis {
+  const alpha = options.alpha ?? 0.05;
+  if (!(alpha > 0 && alpha < 1)) throw new AnalysisError('bad-option', 'alpha must lie between 0 and 1');
+  const used = readPlots(plots, options.allowNegative ?? false);
+  const model = buildModel(used, design);
+  const fixed = fitFixed(model, used.values);
+  const analysis = analyseFixed(fixed, used);
+  const [own, ...others] = model.families.map((family) => buildFamily(fixed, family.name, family.factors));
+  const missing = labelsWithoutData(plots, used, model);
+  const order = missing.length === 0 ? own!.labels : sortLabels([...own!.labels, ...missing]);
+  const estimates = analysis.estimate(own!);
+  const table = tabulateFamily(estimates, alpha, missing, order);
+  const factors: Record<string, FamilyTable> = {};
+  for (const family of others)
+    factors[family.name] = withoutNotices(tabulateFamily(analysis.estimate(family), alpha));
+  const { diagnostics, residuals } = diagnose(used, model, analysis.residuals);
+  return {
+    design: design.kind,
+    fit: analysis.summary,
+    anova: analysis.anova,
+    means: table.means,
+    gaps: table.gaps,
+    lsd: table.lsd,
+    dunnett: options.check ? compareWithCheck(estimates, options.check, missing) : null,
+    groups: table.groups,
+    factors,
+    diagnostics,
+    residuals,
+    notices: [...noticeGaps(fixed, own!, missing), ...analysis.notices, ...table.notices],
+  };
+}
+
+function analyseFixed(fit: FixedFit, used: UsedPlots): ModelAnalysis {
+  return {
+    summary: summariseFixedFit(fit, used.total),
+    anova: tabulateVariance(fit),
+    estimate: (family) => estimateFixedMeans(fit, family),
+    residuals: {
+      ...describeFixedResiduals(fit),
+      residualDf: fit.residualDf,
+      isEmpty: fit.isExact || fit.residualDf === 0,
+    },
+    notices: [],
+  };
+}
+
+/** Entries that were sown but have no used plot; factors' levels are not asked for. */
+function labelsWithoutData(plots: readonly TrialPlot[], used: UsedPlots, model: TrialModel): string[] {
+  const family = model.families[0]!;
+  if (family.name !== (model.design.termNames?.entry ?? 'entry')) return [];
+  const present = new Set(used.plots.map((plot) => plot.entry));
+  return [...new Set(plots.map((plot) => plot.entry))].filter((entry) => !present.has(entry));
+}
+
+function withoutNotices({ means, gaps, lsd, groups }: FamilyTable): FamilyTable {
+  return { means, gaps, lsd, groups };
+}
