@@ -20,7 +20,7 @@ export const cautionValues = {
   'trial-f-not-significant': ['site', 'season', 'p'],
   'large-interaction': ['interactionSd', 'usualSd'],
   'rests-on-usual-variance': ['season'],
-  'no-usual-variance': ['trait'],
+  'no-usual-variance': [],
   'verdict-changes-with-variance': ['variety'],
   'best-of-many': ['variety', 'count', 'gap', 'shrunken'],
   'several-compared': ['count'],

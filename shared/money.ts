@@ -38,7 +38,8 @@ export const moneyAssumptions = z
 export type MoneyAssumptions = z.infer<typeof moneyAssumptions>;
 
 /** A gap as a distribution: location and scale of a t with its df, t/ha. */
-export type GapDistribution = { estimate: number; se: number; df: number };
+export const gapDistribution = z.object({ estimate: z.number(), se: z.number(), df: z.number() });
+export type GapDistribution = z.infer<typeof gapDistribution>;
 
 export const moneyResult = z.object({
   /** Candidate's seed, treatment and royalty minus the current variety's, per ha. */

@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { bilingualName } from './catalogue.ts';
 import { caution } from './caution.ts';
 import { defineContract } from './contract.ts';
-import { moneyAssumptions, moneyResult } from './money.ts';
+import { gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
 import { interval, verdictCode } from './verdict.ts';
 
 /** The gap of a candidate to the current variety in one trait; units are the trait's. */
@@ -54,6 +54,11 @@ export const candidateResult = z.object({
   /** Trials in which the candidate stood, and those it shared with the current variety. */
   siteYears: z.number().int(),
   sharedSiteYears: z.number().int(),
+  /**
+   * The gap that money is reckoned on, as it may come out on the grower's own land in another season: shrunken where
+   * several candidates were compared. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
+   */
+  moneyGap: gapDistribution.nullable(),
   money: moneyResult.nullable(),
   /** Further site-years at which the present gap would be settled; 41 stands for "more than 40"; null where it is settled. */
   siteYearsToSettle: z.number().int().nullable(),
