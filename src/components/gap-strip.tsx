@@ -1,0 +1,258 @@
+import type { ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
+import { spanScale, type Scale } from '#shared/gap-scale.ts';
+import type { Interval, VerdictCode } from '#shared/verdict.ts';
+import { VerdictMark, verdictColours } from './beam.tsx';
+import { DataTable, type Column } from './data-table.tsx';
+import { DrawingFrame } from './drawing-frame.tsx';
+import { GapAxis, GapLabel, GapTrack } from './gap-track.tsx';
+import { useFormat } from './use-format.ts';
+
+export type GapStripRow = {
+  id: string;
+  name: string;
+  /** What stands as the name where it is more than words: a link. */
+  head?: ReactNode;
+  verdict: VerdictCode;
+  /** Candidate minus current, in `unit`; null where the data give none. */
+  estimate: number | null;
+  /** For the region's average. */
+  region: Interval | null;
+  /** For the grower's own next season. */
+  ownSeason: Interval | null;
+  /** Gap from which the candidate pays; null without costs. */
+  breakEven: number | null;
+  /** Beside the strip: return per hectare, trials, cautions. */
+  aside?: ReactNode;
+};
+
+type GapStripProps = {
+  title: ReactNode;
+  rows: readonly GapStripRow[];
+  currentName: string;
+  unit: string;
+  /** Of the figures in words; see `decimalsFor`. */
+  decimals: number;
+};
+
+/** Every value that a row shows, so that one scale holds them all. */
+export function scaleOfRows(rows: readonly GapStripRow[]): Scale {
+  return spanScale(
+    rows.flatMap((row) =>
+      [
+        row.estimate,
+        row.region?.low,
+        row.region?.high,
+        row.ownSeason?.low,
+        row.ownSeason?.high,
+        row.breakEven,
+      ].filter((value) => typeof value === 'number'),
+    ),
+  );
+}
+
+/** The signature drawing: a list of gaps to the current variety on one shared scale, with what is left uncertain. */
+export function GapStrip({ title, rows, currentName, unit, decimals }: GapStripProps) {
+  const { t } = useTranslation('drawings');
+  const scale = scaleOfRows(rows);
+  const shared = { scale, currentName, unit, decimals };
+  return (
+    <DrawingFrame
+      title={title}
+      drawing={
+        <div className="@container">
+          <div className="grid @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
+            <p className="self-end pb-1 text-sm text-faded">
+              {t('gapStrip.axis', { current: currentName, unit })}
+            </p>
+            <GapAxis scale={scale} zeroLabel={currentName} />
+          </div>
+          <ul className="border-t-2 border-ink">
+            {rows.map((row) => (
+              <StripRow key={row.id} row={row} {...shared} />
+            ))}
+          </ul>
+          <StripKey rows={rows} />
+        </div>
+      }
+      table={<StripTable rows={rows} currentName={currentName} unit={unit} decimals={decimals} />}
+    />
+  );
+}
+
+type SharedProps = { scale: Scale; currentName: string; unit: string; decimals: number };
+
+function StripRow({ row, scale, currentName, unit, decimals }: { row: GapStripRow } & SharedProps) {
+  const { t } = useTranslation('drawings');
+  const format = useFormat();
+  const sentence = useGapSentence(currentName, unit, decimals)(row);
+  return (
+    <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-3 @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
+      <div>
+        <h3 className="text-lg font-bold">{row.head ?? row.name}</h3>
+        <VerdictMark verdict={row.verdict} className="text-sm" />
+      </div>
+      <div className="relative col-span-2 py-6 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1 max-@2xl:row-start-2">
+        {row.estimate !== null && (
+          <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
+            {format.gap(row.estimate, unit, decimals)}
+          </GapLabel>
+        )}
+        <GapTrack
+          scale={scale}
+          colour={verdictColours[row.verdict]}
+          estimate={row.estimate}
+          region={row.region}
+          ownSeason={row.ownSeason}
+          breakEven={row.breakEven}
+          isThin={row.verdict === 'thin'}
+          sentence={sentence}
+        />
+        {row.breakEven !== null && (
+          <GapLabel scale={scale} value={row.breakEven} className="bottom-0.5 text-break-even">
+            {t('gapStrip.paysFrom', { gap: format.gap(row.breakEven, unit, decimals) })}
+          </GapLabel>
+        )}
+        {row.verdict === 'thin' && <p className="text-sm text-faded">{t('gapStrip.thin')}</p>}
+      </div>
+      <div className="text-right @2xl:col-start-3">{row.aside}</div>
+    </li>
+  );
+}
+
+/** Says a row in words: what a screen reader gets for the strip. */
+export function useGapSentence(
+  current: string,
+  unit: string,
+  decimals: number,
+): (
+  row: Pick<GapStripRow, 'name' | 'estimate' | 'region' | 'ownSeason' | 'breakEven' | 'verdict'>,
+) => string {
+  const { t } = useTranslation('drawings');
+  const format = useFormat();
+  const ends = (interval: Interval) => ({
+    low: format.gap(interval.low, unit, decimals),
+    high: format.gap(interval.high, unit, decimals),
+    level: format.percent(interval.level * 100),
+  });
+  return (row) => {
+    const { name } = row;
+    if (row.estimate === null) return t('gapStrip.sentenceNoEstimate', { name, current });
+    const parts = [t('gapStrip.sentence', { name, current, gap: format.gap(row.estimate, unit, decimals) })];
+    if (row.region) parts.push(t('gapStrip.sentenceRegion', ends(row.region)));
+    if (row.ownSeason) parts.push(t('gapStrip.sentenceOwnSeason', ends(row.ownSeason)));
+    if (row.verdict === 'thin') parts.push(t('gapStrip.sentenceThin'));
+    if (row.breakEven !== null) {
+      parts.push(t('gapStrip.sentenceBreakEven', { gap: format.gap(row.breakEven, unit, decimals) }));
+    }
+    return parts.join(' ');
+  };
+}
+
+/** What each kind of mark stands for; only those that occur. */
+function StripKey({ rows }: { rows: readonly GapStripRow[] }) {
+  const { t } = useTranslation('drawings');
+  const format = useFormat();
+  const region = rows.find((row) => row.region)?.region;
+  const ownSeason = rows.find((row) => row.ownSeason)?.ownSeason;
+  const level = (interval: Interval) => ({ level: format.percent(interval.level * 100) });
+  return (
+    <ul className="mt-2 flex flex-wrap gap-x-6 gap-y-1 text-sm text-faded">
+      <KeyEntry words={t('gapStrip.legendEstimate')} width={8}>
+        <line x1="4" x2="4" y1="1" y2="19" stroke="var(--color-ink)" strokeWidth="3" />
+      </KeyEntry>
+      {region && (
+        <KeyEntry words={t('gapStrip.legendRegion', level(region))} width={34}>
+          <rect y="4" width="34" height="12" rx="2" fill="var(--color-open)" />
+        </KeyEntry>
+      )}
+      {ownSeason && (
+        <KeyEntry words={t('gapStrip.legendOwnSeason', level(ownSeason))} width={34}>
+          <rect
+            x="0.5"
+            y="1"
+            width="33"
+            height="18"
+            rx="9"
+            fill="var(--color-open)"
+            fillOpacity="0.16"
+            stroke="var(--color-open)"
+            strokeOpacity="0.75"
+          />
+        </KeyEntry>
+      )}
+      {rows.some((row) => row.breakEven !== null) && (
+        <KeyEntry words={t('gapStrip.legendBreakEven')} width={8}>
+          <line
+            x1="4"
+            x2="4"
+            y1="0"
+            y2="20"
+            stroke="var(--color-break-even)"
+            strokeWidth="2"
+            strokeDasharray="5 4"
+          />
+        </KeyEntry>
+      )}
+    </ul>
+  );
+}
+
+function KeyEntry({ words, width, children }: { words: string; width: number; children: ReactNode }) {
+  return (
+    <li className="flex items-center gap-2">
+      <svg width={width} height="20" className="shrink-0" aria-hidden="true">
+        {children}
+      </svg>
+      {words}
+    </li>
+  );
+}
+
+function StripTable({
+  rows,
+  currentName,
+  unit,
+  decimals,
+}: Omit<SharedProps, 'scale'> & { rows: readonly GapStripRow[] }) {
+  const { t } = useTranslation('drawings');
+  const format = useFormat();
+  const level = (interval: Interval | null | undefined) => format.percent((interval?.level ?? 0.95) * 100);
+  const gap = (value: number | null) =>
+    value === null ? t('gapStrip.none') : format.gap(value, unit, decimals);
+  const fromTo = (interval: Interval | null) =>
+    interval === null
+      ? t('gapStrip.none')
+      : t('gapStrip.fromTo', {
+          low: format.number(interval.low, { decimals, isSigned: true }),
+          high: format.gap(interval.high, unit, decimals),
+        });
+  const firstRegion = rows.find((row) => row.region)?.region;
+  const firstOwnSeason = rows.find((row) => row.ownSeason)?.ownSeason;
+  const columns: Column<GapStripRow>[] = [
+    { id: 'name', header: t('gapStrip.candidate'), cell: (row) => row.name },
+    { id: 'verdict', header: t('gapStrip.verdict'), cell: (row) => <VerdictMark verdict={row.verdict} /> },
+    { id: 'gap', header: t('gapStrip.gap'), align: 'end', cell: (row) => gap(row.estimate) },
+    {
+      id: 'region',
+      header: t('gapStrip.region', { level: level(firstRegion) }),
+      align: 'end',
+      cell: (row) => fromTo(row.region),
+    },
+    {
+      id: 'own-season',
+      header: t('gapStrip.ownSeason', { level: level(firstOwnSeason) }),
+      align: 'end',
+      cell: (row) => fromTo(row.ownSeason),
+    },
+    { id: 'break-even', header: t('gapStrip.breakEven'), align: 'end', cell: (row) => gap(row.breakEven) },
+  ];
+  return (
+    <DataTable
+      caption={t('gapStrip.caption', { current: currentName })}
+      columns={columns}
+      rows={rows}
+      rowKey={(row) => row.id}
+    />
+  );
+}

@@ -1,0 +1,156 @@
+import { placeOnScale, tickDecimals, type Scale } from '#shared/gap-scale.ts';
+import type { Interval } from '#shared/verdict.ts';
+import { useFormat } from './use-format.ts';
+
+/** A position on the scale as CSS, kept so far from both edges that a centred label of twice `half` fits. */
+function labelLeft(scale: Scale, value: number, half: string): string {
+  return `clamp(${half}, ${placeOnScale(scale, value)}%, calc(100% - ${half}))`;
+}
+
+const percent = (scale: Scale, value: number) => `${placeOnScale(scale, value)}%`;
+
+type GapAxisProps = { scale: Scale; zeroLabel: string };
+
+/** The head of a list of gaps: what zero stands for, and the figures of the one scale that all rows share. */
+export function GapAxis({ scale, zeroLabel }: GapAxisProps) {
+  const format = useFormat();
+  const decimals = tickDecimals(scale);
+  return (
+    <div className="relative h-12 text-sm text-faded" aria-hidden="true">
+      <span
+        className="absolute top-0 -translate-x-1/2 whitespace-nowrap font-semibold text-ink"
+        style={{ left: labelLeft(scale, 0, `${zeroLabel.length * 0.29}em`) }}
+      >
+        {zeroLabel}
+      </span>
+      {scale.ticks.map((tick) => (
+        <span
+          key={tick}
+          className="absolute top-5 -translate-x-1/2 whitespace-nowrap"
+          style={{ left: percent(scale, tick) }}
+        >
+          {format.number(tick, { decimals: tick === 0 ? 0 : decimals, isSigned: true })}
+        </span>
+      ))}
+      <svg className="absolute bottom-0 h-1.5 w-full overflow-visible">
+        {scale.ticks.map((tick) => (
+          <line
+            key={tick}
+            x1={percent(scale, tick)}
+            x2={percent(scale, tick)}
+            y1="0"
+            y2="6"
+            stroke="var(--color-edge)"
+          />
+        ))}
+      </svg>
+    </div>
+  );
+}
+
+type GapTrackProps = {
+  scale: Scale;
+  /** Colour of the marks, as a CSS value. */
+  colour: string;
+  estimate: number | null;
+  region: Interval | null;
+  ownSeason?: Interval | null;
+  breakEven?: number | null;
+  /** Drawn as a dotted tick: a figure that no interval backs. */
+  isThin?: boolean;
+  /** The sentence that stands for the picture. */
+  sentence: string;
+  height?: number;
+};
+
+/** The marks of one gap: range of the own season, interval of the region, estimate, zero and break-even. */
+export function GapTrack({
+  scale,
+  colour,
+  estimate,
+  region,
+  ownSeason = null,
+  breakEven = null,
+  isThin = false,
+  sentence,
+  height = 40,
+}: GapTrackProps) {
+  const middle = height / 2;
+  return (
+    <svg role="img" aria-label={sentence} className="block w-full overflow-visible" style={{ height }}>
+      {ownSeason && (
+        <rect
+          data-mark="own-season"
+          {...spanOf(scale, ownSeason)}
+          y={middle - 9}
+          height="18"
+          rx="9"
+          fill={colour}
+          fillOpacity="0.16"
+          stroke={colour}
+          strokeOpacity="0.75"
+        />
+      )}
+      {region && (
+        <rect data-mark="region" {...spanOf(scale, region)} y={middle - 6} height="12" rx="2" fill={colour} />
+      )}
+      <line
+        x1={percent(scale, 0)}
+        x2={percent(scale, 0)}
+        y1="0"
+        y2="100%"
+        stroke="var(--color-ink)"
+        strokeWidth="1.5"
+      />
+      {breakEven !== null && (
+        <line
+          data-mark="break-even"
+          x1={percent(scale, breakEven)}
+          x2={percent(scale, breakEven)}
+          y1="0"
+          y2="100%"
+          stroke="var(--color-break-even)"
+          strokeWidth="2"
+          strokeDasharray="5 4"
+        />
+      )}
+      {estimate !== null && <EstimateTick x={percent(scale, estimate)} middle={middle} isThin={isThin} />}
+    </svg>
+  );
+}
+
+function spanOf(scale: Scale, { low, high }: Interval): { x: string; width: string } {
+  const start = placeOnScale(scale, low);
+  return { x: `${start}%`, width: `${placeOnScale(scale, high) - start}%` };
+}
+
+/** The tick is edged with paper, so that it stays visible on a dark interval in print. */
+function EstimateTick({ x, middle, isThin }: { x: string; middle: number; isThin: boolean }) {
+  const ends = { x1: x, x2: x, y1: middle - 14, y2: middle + 14 };
+  return (
+    <g data-mark="estimate">
+      {!isThin && <line {...ends} stroke="var(--color-paper)" strokeWidth="6" />}
+      <line
+        {...ends}
+        stroke={isThin ? 'var(--color-open)' : 'var(--color-ink)'}
+        strokeWidth="3"
+        strokeDasharray={isThin ? '3 3' : undefined}
+      />
+    </g>
+  );
+}
+
+type GapLabelProps = { scale: Scale; value: number; children: string; className?: string };
+
+/** Words at a mark, centred on it and kept inside the drawing. */
+export function GapLabel({ scale, value, children, className = '' }: GapLabelProps) {
+  return (
+    <span
+      aria-hidden="true"
+      className={`absolute -translate-x-1/2 whitespace-nowrap text-sm ${className}`}
+      style={{ left: labelLeft(scale, value, `${children.length * 0.29}em`) }}
+    >
+      {children}
+    </span>
+  );
+}

@@ -1,0 +1,27 @@
+export type EntryMean = {
+  entry: string;
+  mean: number;
+  se: number | null;
+  letters?: string;
+};
+
+/** Where the chart's axis runs, in the data's unit, and whether its marks are bars from zero or points. */
+export type MeansScale = { low: number; high: number; isFromZero: boolean };
+
+/** Bars serve while the means differ by at least this share of the largest; below it the ends of bars look alike. */
+const readableSpread = 0.25;
+
+/**
+ * Bars from zero where the differences stay readable on them, else points on a cut scale.
+ * @param means in any order, at least one
+ * @param lsd gives the cut scale room for its ruler
+ */
+export function scaleOfMeans(means: readonly EntryMean[], lsd: number | null): MeansScale {
+  const values = means.map((entry) => entry.mean);
+  const lowest = Math.min(...values);
+  const highest = Math.max(...values);
+  const isFromZero = lowest >= 0 && (highest - lowest) / highest >= readableSpread;
+  if (isFromZero) return { low: 0, high: highest * 1.02, isFromZero };
+  const span = Math.max(highest - lowest, lsd ?? 0, Math.abs(highest) * 0.01);
+  return { low: lowest - span * 0.12, high: highest + span * 0.08, isFromZero };
+}
