@@ -9,3 +9,11 @@ export {
   type TrialPlot,
 } from './trial/trial-data.ts';
 export type * from './trial/trial-result.ts';
+export { summariseOrdinal, type OrdinalSummary } from './checks/ordinal.ts';
+export { smallestShownDifference } from './checks/power.ts';
+export { tQuantileUpper } from './distributions/student-t.ts';
+export { groupUndiffering } from './trial/different-groups.ts';
+export { analyseTwoWay, type TwoWayAnalysis, type TwoWayRefused } from './network/two-way-analysis.ts';
+export { combineTrials, type CombinedTrials, type CombineOptions } from './network/combine-trials.ts';
+export type { InteractionVariances, TrialCell } from './network/network-cell.ts';
+export { synthesisePair, type PairEffect, type PairSynthesis } from './network/pair-synthesis.ts';

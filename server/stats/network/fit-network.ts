@@ -1,0 +1,215 @@
+import { differentiateCriterion, type CriterionDerivatives } from './criterion-derivatives.ts';
+import type { Theta } from './entry-absorption.ts';
+import { interactionTerms, type InteractionTerm, type InteractionVariances } from './network-cell.ts';
+import type { NetworkFrame } from './network-frame.ts';
+import { evaluateLikelihood, measureDesign, residualDf, type NetworkPoint } from './restricted-likelihood.ts';
+import { solveSmall } from './small-symmetric.ts';
+
+/** ν and s²: the penalty −(ν/2) Σ(ln θ_k + s_k²/θ_k). ν = 0 is plain REML. */
+export interface VariancePenalty {
+  readonly nu: number;
+  readonly usual: InteractionVariances;
+}
+
+export interface NetworkFit {
+  readonly outcome: 'fitted';
+  readonly frame: NetworkFrame;
+  readonly point: NetworkPoint;
+  /** null for plain REML */
+  readonly penalty: VariancePenalty | null;
+  /** terms that the layout cannot tell from others: held at 0 (plain REML only) */
+  readonly dropped: readonly InteractionTerm[];
+  /** largest slope left: in ln θ with the penalty, else in θ times the variance of a cell, zeros at the boundary apart */
+  readonly gradientNorm: number;
+  readonly iterations: number;
+  /** average information at the optimum, 3 × 3 */
+  readonly averageInformation: Float64Array;
+}
+
+export interface NetworkNotFitted {
+  readonly outcome: 'not-fitted';
+  /** no-residual: as many effects as cells; no-variation: nothing left over to estimate; not-converged */
+  readonly reason: 'no-residual' | 'no-variation' | 'not-converged';
+}
+
+const MAX_ITERATIONS = 200;
+const GRADIENT_TOLERANCE = 1e-8;
+
+/** What one step works with: point, derivatives and the objective's own gradient and curvature. */
+interface Ascent {
+  readonly point: NetworkPoint;
+  readonly derivatives: CriterionDerivatives;
+  readonly objective: number;
+}
+
+interface Search {
+  readonly evaluate: (theta: Theta) => Ascent | null;
+  readonly penalty: VariancePenalty | null;
+  /** terms that take part */
+  readonly active: readonly number[];
+  /** variance of a typical cell, which makes slopes in θ unitless */
+  readonly scale: number;
+  /** lower bounds of θ: 0, or a whisker above where some v are 0 */
+  readonly floor: Float64Array;
+}
+
+function usualOf(penalty: VariancePenalty, k: number): number {
+  return penalty.usual[interactionTerms[k]!];
+}
+
+function penaltyAt(penalty: VariancePenalty | null, theta: Theta): number {
+  if (penalty === null) return 0;
+  let sum = 0;
+  for (let k = 0; k < 3; k++) sum += Math.log(theta[k]!) + usualOf(penalty, k) / theta[k]!;
+  return -0.5 * penalty.nu * sum;
+}
+
+/** Newton step in ln θ: information θθ'AI, plus the penalty's own curvature. */
+function stepPenalised(ascent: Ascent, penalty: VariancePenalty): { step: Float64Array; norm: number } {
+  const { theta } = ascent.point;
+  const { gradient, averageInformation } = ascent.derivatives;
+  const slope = new Float64Array(3);
+  const curvature = new Float64Array(9);
+  let norm = 0;
+  for (let k = 0; k < 3; k++) {
+    const pull = (0.5 * penalty.nu * usualOf(penalty, k)) / theta[k]!;
+    slope[k] = theta[k]! * gradient[k]! - 0.5 * penalty.nu + pull;
+    norm = Math.max(norm, Math.abs(slope[k]!));
+    for (let l = 0; l < 3; l++) curvature[k * 3 + l] = theta[k]! * theta[l]! * averageInformation[k * 3 + l]!;
+    curvature[k * 4]! += pull + Math.max(0, -theta[k]! * gradient[k]!);
+  }
+  return { step: solveSmall(curvature, slope) ?? slope, norm };
+}
+
+/** Terms free to move: those above their floor, or pushed up from it. */
+function freeTerms(search: Search, ascent: Ascent): number[] {
+  return search.active.filter(
+    (k) => ascent.point.theta[k]! > search.floor[k]! || ascent.derivatives.gradient[k]! > 0,
+  );
+}
+
+/** Newton step in θ over the free terms. */
+function stepPlain(search: Search, ascent: Ascent): { step: Float64Array; norm: number } {
+  const { gradient, averageInformation } = ascent.derivatives;
+  const free = freeTerms(search, ascent);
+  const m = free.length;
+  const curvature = new Float64Array(m * m);
+  free.forEach((k, r) => free.forEach((l, c) => (curvature[r * m + c] = averageInformation[k * 3 + l]!)));
+  const slope = Float64Array.from(free, (k) => gradient[k]!);
+  const solution = solveSmall(curvature, slope) ?? slope.map((g) => g * search.scale * search.scale);
+  const step = new Float64Array(3);
+  free.forEach((k, r) => (step[k] = solution[r]!));
+  return { step, norm: slope.reduce((max, g) => Math.max(max, Math.abs(g) * search.scale), 0) };
+}
+
+function moveAlong(search: Search, theta: Theta, step: Float64Array, length: number): Theta {
+  if (search.penalty !== null)
+    return theta.map((value, k) => value * Math.exp(Math.max(-3, Math.min(3, length * step[k]!))));
+  return theta.map((value, k) => Math.max(search.floor[k]!, value + length * step[k]!));
+}
+
+/** Climbs with step halving: the objective never falls. */
+function climb(search: Search, start: Theta): { ascent: Ascent; norm: number; iterations: number } | null {
+  let ascent = search.evaluate(start);
+  if (ascent === null) return null;
+  for (let iteration = 0; ; iteration++) {
+    const { step, norm } =
+      search.penalty === null ? stepPlain(search, ascent) : stepPenalised(ascent, search.penalty);
+    if (norm < GRADIENT_TOLERANCE || iteration === MAX_ITERATIONS)
+      return { ascent, norm, iterations: iteration };
+    let next: Ascent | null = null;
+    for (let length = 1; length > 1e-9; length /= 2) {
+      const trial = search.evaluate(moveAlong(search, ascent.point.theta, step, length));
+      // rounding of the objective must not stop the last, tiny steps
+      if (trial !== null && trial.objective >= ascent.objective - 1e-12 * (1 + Math.abs(ascent.objective))) {
+        next = trial;
+        break;
+      }
+    }
+    if (next === null) return { ascent, norm, iterations: iteration };
+    ascent = next;
+  }
+}
+
+/** Terms whose information is nothing but a repeat of another's, in the order rest, site, year. */
+function findConfounded(averageInformation: Float64Array): number[] {
+  const kept: number[] = [];
+  const confounded: number[] = [];
+  for (const k of [2, 0, 1]) {
+    const m = kept.length;
+    const own = averageInformation[k * 4]!;
+    const block = new Float64Array(m * m);
+    kept.forEach((r, a) => kept.forEach((c, b) => (block[a * m + b] = averageInformation[r * 3 + c]!)));
+    const cross = Float64Array.from(kept, (r) => averageInformation[r * 3 + k]!);
+    const solved = solveSmall(block, cross);
+    const left = solved === null ? 0 : own - cross.reduce((sum, x, a) => sum + x * solved[a]!, 0);
+    const reference = averageInformation[8]!;
+    if (left > 1e-8 * Math.max(own, 1e-6 * reference)) kept.push(k);
+    else confounded.push(k);
+  }
+  return confounded;
+}
+
+/** A made-up response without structure: what it cannot tell apart, no response can. */
+function scramble(n: number): Float64Array {
+  return Float64Array.from(
+    { length: n },
+    (_, j) => Math.sin(12.9898 * (j + 1)) + Math.cos(78.233 * (j + 1) * (j + 1)),
+  );
+}
+
+function findDropped(frame: NetworkFrame, theta: Theta): number[] {
+  const probe: NetworkFrame = { ...frame, y: scramble(frame.cellCount) };
+  const point = evaluateLikelihood(probe, theta, 0);
+  return point === null ? [] : findConfounded(differentiateCriterion(probe, point).averageInformation);
+}
+
+/**
+ * Penalised or plain REML of the three interaction variances, entries and environments fixed.
+ * @param penalty null for plain REML; its usual variances must be positive
+ */
+export function fitNetwork(
+  frame: NetworkFrame,
+  penalty: VariancePenalty | null,
+): NetworkFit | NetworkNotFitted {
+  const design = measureDesign(frame);
+  const df = residualDf(frame);
+  if (penalty === null && df === 0) return { outcome: 'not-fitted', reason: 'no-residual' };
+  const meanVariance = frame.v.reduce((sum, v) => sum + v, 0) / frame.cellCount;
+  const residual = df > 0 ? design.residualSumOfSquares / df : 0;
+  const hasExactCells = frame.v.some((v) => v === 0);
+  if (penalty === null && hasExactCells && !(residual > 1e-24 * design.largestSquare))
+    return { outcome: 'not-fitted', reason: 'no-variation' };
+
+  const scale = Math.max(meanVariance, residual, Number.MIN_VALUE);
+  const first = Math.max((residual - meanVariance) / 3, 0.05 * scale);
+  const start =
+    penalty === null
+      ? new Float64Array(3).fill(first)
+      : Float64Array.from(interactionTerms, (term) => penalty.usual[term]);
+  const dropped = penalty === null ? findDropped(frame, start) : [];
+  for (const k of dropped) start[k] = 0;
+  const floor = new Float64Array(3);
+  if (hasExactCells) floor[2] = 1e-12 * scale;
+
+  const evaluate = (theta: Theta): Ascent | null => {
+    const point = evaluateLikelihood(frame, theta, design.logDeterminant);
+    if (point === null) return null;
+    const objective = point.logLik + penaltyAt(penalty, theta);
+    return { point, objective, derivatives: differentiateCriterion(frame, point) };
+  };
+  const active = [0, 1, 2].filter((k) => !dropped.includes(k));
+  const search: Search = { penalty, scale, floor, active, evaluate };
+  const found = climb(search, start);
+  if (found === null || !(found.norm < 1e-4)) return { outcome: 'not-fitted', reason: 'not-converged' };
+  return {
+    outcome: 'fitted',
+    frame,
+    point: found.ascent.point,
+    penalty,
+    dropped: dropped.map((k) => interactionTerms[k]!),
+    gradientNorm: found.norm,
+    iterations: found.iterations,
+    averageInformation: found.ascent.derivatives.averageInformation,
+  };
+}
