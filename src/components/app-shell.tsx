@@ -31,7 +31,7 @@ export function AppShell({ homePath, navItems, personName, onLanguage, onSignOut
         {t('skipToPage')}
       </a>
       <header className="border-b border-rule print:hidden">
-        <div className="mx-auto flex max-w-page flex-wrap items-center gap-x-6 px-4 md:px-8">
+        <div className="mx-auto flex max-w-page flex-wrap items-center gap-x-2 px-4 md:gap-x-6 md:px-8">
           <Link
             to={homePath}
             className="tap-target flex items-center gap-2 py-2 text-lg font-bold text-ink no-underline hover:underline"
@@ -40,7 +40,7 @@ export function AppShell({ homePath, navItems, personName, onLanguage, onSignOut
             Gavelrow
           </Link>
           {navItems.length > 0 && <MainNav items={navItems} />}
-          <div className="ml-auto flex items-center gap-x-4">
+          <div className="ml-auto flex items-center gap-x-2 text-sm md:gap-x-4 md:text-base">
             <LanguageSwitch onChoose={onLanguage} />
             {personName !== undefined && (
               <span className="hidden text-sm text-faded lg:inline">{personName}</span>

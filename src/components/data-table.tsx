@@ -1,4 +1,4 @@
-import { useMemo, useState, type ReactNode } from 'react';
+import { useId, useMemo, useState, type ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import { useLanguage } from './use-language.ts';
 
@@ -62,6 +62,7 @@ export function DataTable<Row>({
   whenNarrow = 'turn',
 }: DataTableProps<Row>) {
   const language = useLanguage();
+  const captionId = useId();
   const [sort, setSort] = useState<SortState | undefined>(initialSort);
   const sortColumn = columns.find((column) => column.id === sort?.columnId);
   const sorted = useMemo(
@@ -74,13 +75,19 @@ export function DataTable<Row>({
   const headId = headColumnId ?? columns[0]?.id;
   const isTurned = whenNarrow === 'turn';
   return (
-    <div className={isTurned ? '@container' : 'overflow-x-auto'} {...(isTurned ? {} : { tabIndex: 0 })}>
+    <div
+      className={isTurned ? '@container' : 'overflow-x-auto'}
+      {...(isTurned ? {} : { tabIndex: 0, role: 'group', 'aria-labelledby': captionId })}
+    >
       {/* Roles are repeated because a turned table is laid out as blocks, and browsers then drop its meaning. */}
       <table role="table" className="w-full border-collapse text-left">
-        <caption className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}>
+        <caption
+          id={captionId}
+          className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}
+        >
           {caption}
         </caption>
-        <thead role="rowgroup" className={isTurned ? 'max-@xl:sr-only' : ''}>
+        <thead role="rowgroup" className={isTurned ? '@max-xl:sr-only' : ''}>
           <tr role="row" className="border-b-2 border-ink">
             {columns.map((column) => (
               <HeadCell key={column.id} column={column} sort={sort} onSort={setSort} />
@@ -92,7 +99,7 @@ export function DataTable<Row>({
             <tr
               role="row"
               key={rowKey(row)}
-              className={`border-b border-rule ${isTurned ? 'max-@xl:block max-@xl:py-3' : ''}`}
+              className={`border-b border-rule ${isTurned ? '@max-xl:block @max-xl:py-3' : ''}`}
             >
               {columns.map((column) => (
                 <BodyCell
@@ -162,7 +169,7 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
       <th
         role="rowheader"
         scope="row"
-        className={`${space} ${side} font-semibold ${isTurned ? 'max-@xl:block max-@xl:px-0 max-@xl:pt-0 max-@xl:text-left' : ''}`}
+        className={`${space} ${side} font-semibold ${isTurned ? '@max-xl:block @max-xl:px-0 @max-xl:pt-0 @max-xl:text-left' : ''}`}
       >
         {column.cell(row)}
       </th>
@@ -178,9 +185,9 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
   return (
     <td
       role="cell"
-      className={`${space} ${side} max-@xl:flex max-@xl:justify-between max-@xl:gap-4 max-@xl:px-0 max-@xl:py-1 max-@xl:text-right`}
+      className={`${space} ${side} @max-xl:flex @max-xl:justify-between @max-xl:gap-4 @max-xl:px-0 @max-xl:py-1 @max-xl:text-right`}
     >
-      <span aria-hidden="true" className="hidden shrink-0 text-left text-sm text-faded max-@xl:inline">
+      <span aria-hidden="true" className="hidden shrink-0 text-left text-sm text-faded @max-xl:inline">
         {column.header}
       </span>
       <span className="min-w-0">{column.cell(row)}</span>

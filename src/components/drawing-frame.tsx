@@ -4,8 +4,8 @@ import { useTranslation } from 'react-i18next';
 type DrawingFrameProps = {
   /** Says in words what the drawing shows. */
   title: ReactNode;
-  /** Where the drawing is one picture: the sentence a screen reader gets for it, with the table after it. */
-  summary?: string;
+  /** One picture with one sentence (`role="img"`): a screen reader then gets the table right after it. */
+  isPicture?: boolean;
   drawing: ReactNode;
   /** The same figures as a table, without controls in it. */
   table: ReactNode;
@@ -15,7 +15,14 @@ type DrawingFrameProps = {
 };
 
 /** A drawing with its table twin: one is shown, the other a press away; a screen reader always has the figures. */
-export function DrawingFrame({ title, summary, drawing, table, footer, className = '' }: DrawingFrameProps) {
+export function DrawingFrame({
+  title,
+  isPicture = false,
+  drawing,
+  table,
+  footer,
+  className = '',
+}: DrawingFrameProps) {
   const { t } = useTranslation('common');
   const titleId = useId();
   const [isTable, setTable] = useState(false);
@@ -33,16 +40,8 @@ export function DrawingFrame({ title, summary, drawing, table, footer, className
           {isTable ? t('drawing.showDrawing') : t('drawing.showTable')}
         </button>
       </figcaption>
-      {isTable && table}
-      {!isTable && summary === undefined && drawing}
-      {!isTable && summary !== undefined && (
-        <>
-          <div role="img" aria-label={summary}>
-            {drawing}
-          </div>
-          <div className="sr-only">{table}</div>
-        </>
-      )}
+      {isTable ? table : drawing}
+      {!isTable && isPicture && <div className="sr-only">{table}</div>}
       {footer}
     </figure>
   );

@@ -67,19 +67,21 @@ export function FieldMap({ title, plots, unit, decimals, shade }: FieldMapProps)
   return (
     <DrawingFrame
       title={title}
-      summary={t('fieldMap.summary', {
-        rows: Math.max(...rows) - firstRow + 1,
-        columns: columnCount,
-        used: count('used'),
-        excluded: count('excluded'),
-        missing: count('missing'),
-      })}
+      isPicture
       drawing={
-        <div className="overflow-x-auto pb-2" tabIndex={0}>
+        <div className="overflow-x-auto pb-2" role="group" aria-label={t('fieldMap.scrollHint')} tabIndex={0}>
           <div
+            role="img"
+            aria-label={t('fieldMap.summary', {
+              rows: Math.max(...rows) - firstRow + 1,
+              columns: columnCount,
+              used: count('used'),
+              excluded: count('excluded'),
+              missing: count('missing'),
+            })}
             className="grid gap-0.5"
             style={{
-              gridTemplateColumns: `repeat(${columnCount}, minmax(4.75rem, 1fr))`,
+              gridTemplateColumns: `repeat(${columnCount}, minmax(5.75rem, 1fr))`,
               maxWidth: `${columnCount * 8}rem`,
             }}
           >

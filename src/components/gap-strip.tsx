@@ -92,7 +92,7 @@ function StripRow({ row, scale, currentName, unit, decimals }: { row: GapStripRo
         <h3 className="text-lg font-bold">{row.head ?? row.name}</h3>
         <VerdictMark verdict={row.verdict} className="text-sm" />
       </div>
-      <div className="relative col-span-2 py-6 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1 max-@2xl:row-start-2">
+      <div className="relative col-span-2 row-start-2 py-6 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1">
         {row.estimate !== null && (
           <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
             {format.gap(row.estimate, unit, decimals)}
@@ -113,9 +113,13 @@ function StripRow({ row, scale, currentName, unit, decimals }: { row: GapStripRo
             {t('gapStrip.paysFrom', { gap: format.gap(row.breakEven, unit, decimals) })}
           </GapLabel>
         )}
-        {row.verdict === 'thin' && <p className="text-sm text-faded">{t('gapStrip.thin')}</p>}
+        {row.verdict === 'thin' && row.breakEven === null && (
+          <GapLabel scale={scale} value={row.estimate ?? 0} className="bottom-0.5 text-faded">
+            {t('gapStrip.thin')}
+          </GapLabel>
+        )}
       </div>
-      <div className="text-right @2xl:col-start-3">{row.aside}</div>
+      <div className="col-start-2 row-start-1 text-right @2xl:col-start-3">{row.aside}</div>
     </li>
   );
 }

@@ -56,22 +56,27 @@ export function MeansChart({
   return (
     <DrawingFrame
       title={title}
-      summary={t('meansChart.summary', {
-        count: sorted.length,
-        first: first.entry,
-        highest: quantity(first.mean),
-        last: last.entry,
-        lowest: quantity(last.mean),
-      })}
+      isPicture
       drawing={
-        <Suspense fallback={<Skeleton lines={sorted.length} />}>
-          <MeansPlot
-            means={sorted}
-            scale={scale}
-            lsd={lsd}
-            formatMean={(mean) => format.number(mean, { decimals })}
-          />
-        </Suspense>
+        <div
+          role="img"
+          aria-label={t('meansChart.summary', {
+            count: sorted.length,
+            first: first.entry,
+            highest: quantity(first.mean),
+            last: last.entry,
+            lowest: quantity(last.mean),
+          })}
+        >
+          <Suspense fallback={<Skeleton lines={sorted.length} />}>
+            <MeansPlot
+              means={sorted}
+              scale={scale}
+              lsd={lsd}
+              formatMean={(mean) => format.number(mean, { decimals })}
+            />
+          </Suspense>
+        </div>
       }
       table={<DataTable caption={title} columns={columns} rows={sorted} rowKey={(entry) => entry.entry} />}
       footer={

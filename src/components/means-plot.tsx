@@ -21,7 +21,7 @@ const fontSize = 14;
 /** Width of the longest name at 14 px, within what a phone can spare. */
 function nameWidth(means: readonly EntryMean[]): number {
   const longest = Math.max(...means.map((entry) => entry.entry.length));
-  return Math.min(Math.max(longest * 7.6 + 14, 70), 150);
+  return Math.min(Math.max(longest * 8.2 + 16, 70), 164);
 }
 
 function shorten(name: string): string {

@@ -18,7 +18,7 @@ export function Progress({ label, share }: ProgressProps) {
         id={id}
         max={1}
         {...(share === undefined ? {} : { value: share })}
-        className="h-3 w-full accent-action"
+        className="progress-bar h-3 w-full"
       />
     </div>
   );

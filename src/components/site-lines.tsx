@@ -61,7 +61,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
         <div className="@container">
           <p className="text-sm text-faded">{t('siteLines.order')}</p>
           <div className="grid @2xl:grid-cols-[13rem_minmax(0,1fr)_6rem] @2xl:gap-x-5">
-            <span className="max-@2xl:hidden" />
+            <span className="@max-2xl:hidden" />
             <GapAxis scale={scale} zeroLabel={currentName} />
           </div>
           <ul className="border-t-2 border-ink">
@@ -81,7 +81,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
                   <span className="text-right text-sm font-semibold @2xl:col-start-3 @2xl:row-start-1">
                     {gap(trial.estimate)}
                   </span>
-                  <div className="max-@2xl:col-span-2 @2xl:col-start-2 @2xl:row-start-1">
+                  <div className="@max-2xl:col-span-2 @2xl:col-start-2 @2xl:row-start-1">
                     <GapTrack
                       scale={scale}
                       colour="var(--color-open)"
