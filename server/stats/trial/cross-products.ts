@@ -57,8 +57,13 @@ export function crossRandom(
 }
 
 /** Z'X, q × width. */
-export function crossRandomFixed(model: TrialModel, offsets: readonly number[], q: number): Float64Array {
-  const { random, fixed, width } = model;
+export function crossRandomFixed(
+  model: TrialModel,
+  random: readonly RandomTerm[],
+  offsets: readonly number[],
+  q: number,
+): Float64Array {
+  const { fixed, width } = model;
   const out = new Float64Array(q * width);
   random.forEach((a, s) => {
     for (const b of fixed) {

@@ -1,3 +1,5 @@
+import { studentiseResiduals } from '#server/stats/checks/studentised.ts';
+import type { FitResiduals } from './trial-diagnostics.ts';
 import { leverages, covarianceOfMeans, predictMeans, type MeanFamily } from './mean-family.ts';
 import { sumOfSquares, type FixedFit } from './fixed-fit.ts';
 import type { MeanEstimates } from './gap-table.ts';
@@ -54,15 +56,16 @@ export function summariseFixedFit(fit: FixedFit, total: number): FitSummary {
   };
 }
 
-/** What the checks on residuals need of a fixed fit. */
-export function describeFixedResiduals(fit: FixedFit): {
-  residuals: Float64Array;
-  fitted: Float64Array;
-  leverage: Float64Array;
-} {
+/** Residuals with externally studentised values. */
+export function describeFixedResiduals(fit: FixedFit): FitResiduals {
+  const leverage = leverages(fit);
+  const isEmpty = fit.isExact || fit.residualDf === 0;
+  const studentised = isEmpty ? null : studentiseResiduals(fit.residuals, leverage, fit.residualDf);
   return {
     residuals: fit.residuals,
     fitted: fit.y.map((value, i) => fit.center + (value - fit.residuals[i]!)),
-    leverage: leverages(fit),
+    leverage,
+    studentised: studentised?.computed ? studentised : null,
+    isEmpty,
   };
 }

@@ -3,7 +3,10 @@ import { compareWithCheck } from './check-comparison.ts';
 import { describeFixedResiduals, estimateFixedMeans, summariseFixedFit } from './fixed-analysis.ts';
 import { fitFixed, type FixedFit } from './fixed-fit.ts';
 import { tabulateFamily, type MeanEstimates } from './gap-table.ts';
+import { estimateMixedMeans, testMixedTerms } from './kenward-roger.ts';
 import { buildFamily, type MeanFamily } from './mean-family.ts';
+import { describeMixedResiduals, noticeComponents, summariseMixedFit } from './mixed-analysis.ts';
+import { fitMixed, prepareRandom, type MixedFit } from './mixed-fit.ts';
 import { sortLabels } from './model-terms.ts';
 import { readPlots, type UsedPlots } from './read-plots.ts';
 import type { TrialDesign, TrialOptions, TrialPlot } from './trial-data.ts';
@@ -37,7 +40,7 @@ export function analyseTrial(
   const used = readPlots(plots, options.allowNegative ?? false);
   const model = buildModel(used, design);
   const fixed = fitFixed(model, used.values);
-  const analysis = analyseFixed(fixed, used);
+  const analysis = analyseModel(fixed, used);
   const [own, ...others] = model.families.map((family) => buildFamily(fixed, family.name, family.factors));
   const missing = labelsWithoutData(plots, used, model);
   const order = missing.length === 0 ? own!.labels : sortLabels([...own!.labels, ...missing]);
@@ -63,17 +66,35 @@ export function analyseTrial(
   };
 }
 
-function analyseFixed(fit: FixedFit, used: UsedPlots): ModelAnalysis {
+/** By REML where the design has random effects and the data can tell them, else by least squares. */
+function analyseModel(fixed: FixedFit, used: UsedPlots): ModelAnalysis {
+  const random = prepareRandom(fixed);
+  if (random && random.terms.length > 0) return analyseMixed(fitMixed(fixed, random), used);
+  const components = random ? random.notIdentifiable : [];
+  return analyseFixed(
+    fixed,
+    used,
+    components.length > 0 ? [{ code: 'component-not-identifiable', components }] : [],
+  );
+}
+
+function analyseFixed(fit: FixedFit, used: UsedPlots, notices: readonly TrialNotice[]): ModelAnalysis {
   return {
     summary: summariseFixedFit(fit, used.total),
     anova: tabulateVariance(fit),
     estimate: (family) => estimateFixedMeans(fit, family),
-    residuals: {
-      ...describeFixedResiduals(fit),
-      residualDf: fit.residualDf,
-      isEmpty: fit.isExact || fit.residualDf === 0,
-    },
-    notices: [],
+    residuals: describeFixedResiduals(fit),
+    notices,
+  };
+}
+
+function analyseMixed(fit: MixedFit, used: UsedPlots): ModelAnalysis {
+  return {
+    summary: summariseMixedFit(fit, used.total),
+    anova: testMixedTerms(fit),
+    estimate: (family) => estimateMixedMeans(fit, family),
+    residuals: describeMixedResiduals(fit),
+    notices: noticeComponents(fit),
   };
 }
 

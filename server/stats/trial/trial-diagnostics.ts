@@ -1,6 +1,5 @@
 import { brownForsythe } from '#server/stats/checks/brown-forsythe.ts';
 import { shapiroWilk } from '#server/stats/checks/shapiro-wilk.ts';
-import { studentiseResiduals } from '#server/stats/checks/studentised.ts';
 import type { TrialModel } from './trial-model.ts';
 import type { PlotResidual, TestResult, TrialDiagnostics } from './trial-result.ts';
 import type { UsedPlots } from './read-plots.ts';
@@ -10,7 +9,11 @@ export interface FitResiduals {
   readonly residuals: Float64Array;
   readonly fitted: Float64Array;
   readonly leverage: Float64Array;
-  readonly residualDf: number;
+  /** null where none can be computed */
+  readonly studentised: {
+    readonly values: readonly (number | null)[];
+    readonly largest: { readonly index: number; readonly value: number; readonly pBonferroni: number } | null;
+  } | null;
   /** whether the residual variance is 0, or there are no residual df: nothing to check then */
   readonly isEmpty: boolean;
 }
@@ -21,19 +24,17 @@ export function diagnose(
   model: TrialModel,
   fit: FitResiduals,
 ): { diagnostics: TrialDiagnostics; residuals: PlotResidual[] } {
-  const studentised = fit.isEmpty ? null : studentiseResiduals(fit.residuals, fit.leverage, fit.residualDf);
-  const values = studentised?.computed ? studentised.values : null;
   const residuals = used.plots.map((plot, i) => ({
     plot: plot.plot,
     fitted: fit.fitted[i]!,
     residual: fit.residuals[i]!,
     leverage: fit.leverage[i]!,
-    studentised: values?.[i] ?? null,
+    studentised: fit.studentised?.values[i] ?? null,
   }));
   if (fit.isEmpty) return { diagnostics: noDiagnostics, residuals };
   const own = model.families[0]!.factors;
   const shapiro = shapiroWilk(fit.residuals);
-  const largest = studentised?.computed ? studentised.largest : null;
+  const largest = fit.studentised?.largest;
   return {
     residuals,
     diagnostics: {
@@ -41,11 +42,13 @@ export function diagnose(
       brownForsythe: compareSpread(fit.residuals, groupsOf(own)),
       brownForsytheBlocks: model.blocking ? compareSpread(fit.residuals, model.blocking.codes) : null,
       brownForsytheValues: compareSpread(used.values, groupsOf(own)),
-      largestStudentised: largest && {
-        plot: used.plots[largest.index]!.plot,
-        value: largest.value,
-        pBonferroni: largest.pBonferroni,
-      },
+      largestStudentised: largest
+        ? {
+            plot: used.plots[largest.index]!.plot,
+            value: largest.value,
+            pBonferroni: largest.pBonferroni,
+          }
+        : null,
     },
   };
 }
