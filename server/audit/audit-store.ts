@@ -15,6 +15,8 @@ export type NewAuditEvent = {
   subjectKind: 'account' | 'trial' | 'weigh-up' | 'grower-copy';
   subjectId: string;
   detail?: Record<string, unknown>;
+  /** now unless an older record is being entered */
+  at?: Date;
 };
 
 /** Writes an event in the transaction of the change it tells of, so that neither is stored without the other. */
