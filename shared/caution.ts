@@ -4,41 +4,40 @@ export const cautionSeverity = z.enum(['note', 'warning', 'stop']);
 export type CautionSeverity = z.infer<typeof cautionSeverity>;
 
 /**
- * Where the evidence stops: every caution with the placeholders of its sentence, `cautions:<code>` in locales/.
- * `count` is the number the sentence counts by; percents, prices and t/ha come unrounded; names as stored.
+ * Where the evidence stops: every caution with the placeholders its sentence always needs, `cautions:<code>` in locales/.
+ * `count` is the number the sentence counts by, `context` picks one of its variants (`<code>_<context>`);
+ * percents, prices and t/ha come unrounded, names as stored.
  */
 export const cautionValues = {
   'few-site-years': ['variety', 'count'],
-  'one-season': ['season'],
-  'no-trial-in-region': ['seasonFrom', 'seasonTo'],
-  'old-seasons': ['newestSeason', 'count'],
+  'one-season': ['variety', 'season'],
+  'no-trial-in-region': [],
+  'old-seasons': ['variety', 'season'],
   'never-together': ['variety', 'current'],
   'linked-through-check': ['variety', 'current', 'checks'],
   disconnected: ['variety', 'current'],
-  'trial-left-out': ['site', 'season'],
-  'trial-weak-cv': ['site', 'season', 'cvPercent', 'limitPercent'],
-  'trial-f-not-significant': ['site', 'season', 'p'],
-  'large-interaction': ['interactionSd', 'usualSd'],
-  'rests-on-usual-variance': ['season'],
+  'trial-left-out': ['site', 'season', 'context'],
+  'trial-weak-cv': ['cv', 'limit'],
+  'trial-f-not-significant': ['p'],
+  'large-interaction': ['sd'],
+  'rests-on-usual-variance': ['context'],
   'no-usual-variance': [],
   'verdict-changes-with-variance': ['variety'],
-  'best-of-many': ['variety', 'count', 'gap', 'shrunken'],
+  'best-of-many': ['variety', 'count', 'estimate', 'shrunken'],
   'several-compared': ['count'],
   'management-differs': [],
   'small-plots': [],
   'summary-trial': [],
-  'some-summary-trials': ['count', 'trials'],
-  'summary-contradiction': ['given', 'recovered'],
+  'summary-contradiction': ['given', 'expected'],
   'residuals-not-normal': ['p'],
   'unequal-spread': ['p'],
-  'outlying-plot': ['plot', 'p'],
-  'spatial-trend': ['p'],
-  'plots-excluded': ['count'],
-  'plots-missing': ['count'],
-  'single-author': ['author'],
-  'price-outside-sheet': ['price', 'sheetLow', 'sheetHigh', 'currency'],
+  'outlying-plot': ['plot', 'value', 'p'],
+  'spatial-trend': [],
+  'plots-excluded': ['count', 'total'],
+  'plots-missing': ['count', 'total'],
+  'single-author': [],
+  'price-outside-sheet': [],
   'price-sheet-old': ['date'],
-  'no-price-sheet': [],
   'no-seed-cost': ['variety'],
   'seed-treatment': [],
   'farm-saved-seed': [],
@@ -46,6 +45,9 @@ export const cautionValues = {
   'trial-withdrawn': ['site', 'season'],
   'local-advice': [],
 } as const satisfies Record<string, readonly string[]>;
+
+/** Placeholders that only a variant of a sentence has. */
+type VariantValue = 'context' | 'count' | 'site' | 'season' | 'cv' | 'limit';
 
 export type CautionCode = keyof typeof cautionValues;
 
@@ -61,11 +63,13 @@ export const caution = z.object({
 });
 export type Caution = z.infer<typeof caution>;
 
+type Value = string | number;
+
 /** Builds a caution with every value its sentence needs. */
 export function makeCaution<Code extends CautionCode>(
   code: Code,
   severity: CautionSeverity,
-  values: Record<(typeof cautionValues)[Code][number], string | number>,
+  values: Record<(typeof cautionValues)[Code][number], Value> & Partial<Record<VariantValue, Value>>,
 ): Caution {
   return { code, severity, values };
 }
