@@ -1,0 +1,49 @@
+import type { Trait } from '#shared/catalogue.ts';
+
+/** A published trial of the crop, region and seasons asked for, under the version that counts now. */
+export type EvidenceTrial = {
+  trialId: string;
+  versionId: string;
+  version: number;
+  sha256: string;
+  name: string;
+  siteId: string;
+  siteName: string;
+  season: number;
+  kind: 'plots' | 'summary';
+  /** Whether the crop stood with fungicide or irrigation, as far as it was said. */
+  management: Record<string, string | number | boolean>;
+};
+
+/** The fit of one trait in one version. */
+export type EvidenceFit = {
+  versionId: string;
+  traitId: string;
+  grandMean: number;
+  residualMs: number | null;
+  residualDf: number | null;
+  cvPercent: number | null;
+  entryP: number | null;
+};
+
+/** The adjusted mean of a variety in one version and trait, in the trait's unit. */
+export type EvidenceMean = {
+  versionId: string;
+  traitId: string;
+  varietyId: string;
+  mean: number;
+  /** Half the mean variance of the entry's differences; null where the trial has no error or the trait is a rating. */
+  variance: number | null;
+};
+
+export type EvidenceVariety = { id: string; name: string; isCheck: boolean };
+
+/** Everything that a question is answered from. */
+export type Evidence = {
+  crop: { id: string; cvLimitPercent: number; typicalYield: number };
+  traits: Trait[];
+  varieties: EvidenceVariety[];
+  trials: EvidenceTrial[];
+  fits: EvidenceFit[];
+  means: EvidenceMean[];
+};
