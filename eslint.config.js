@@ -1,0 +1,194 @@
+import { readdirSync } from 'node:fs';
+import js from '@eslint/js';
+import reactHooks from 'eslint-plugin-react-hooks';
+import globals from 'globals';
+import tseslint from 'typescript-eslint';
+
+const listFolders = (path) =>
+  readdirSync(new URL(path, import.meta.url), { withFileTypes: true })
+    .filter((entry) => entry.isDirectory())
+    .map((entry) => entry.name);
+
+/** Folders of server/ that are no capability: the engine, the demo and what starts or calls the product. */
+const supportingFolders = new Set(['stats', 'demo', 'setup', 'commands']);
+const capabilities = listFolders('server').filter((name) => !supportingFolders.has(name));
+const features = listFolders('src/features');
+
+const everywhere = [
+  { regex: '^\\.\\.(/|$)', message: 'Import by #folder/… instead of ../' },
+  {
+    regex: '^(\\.|#)(?!.*\\.(ts|tsx|mjs|json|css|svg)$)',
+    message: 'Name the file with its extension; there are no index files.',
+  },
+];
+const notTests = { regex: '^#tests/', message: 'The product does not import its tests.' };
+const notServer = {
+  regex: '^#(server|drizzle)/',
+  message: 'Client and shared code know nothing of the server.',
+};
+const notClient = { regex: '^#src/', message: 'The server knows nothing of the client.' };
+
+/**
+ * Who may import what. Made from the list of folders, so that a new capability or feature is guarded without a new
+ * line. A later entry replaces an earlier one for the files of both.
+ */
+const importRules = [
+  { folders: ['.'], forbidden: [] },
+  { folders: ['server', 'drizzle'], forbidden: [notTests, notClient] },
+  { folders: ['src'], forbidden: [notTests, notServer] },
+  {
+    folders: ['shared'],
+    forbidden: [{ regex: '^(?!\\./|#shared/|zod$)', message: 'shared imports zod and itself.' }],
+  },
+  {
+    folders: ['drizzle/schema'],
+    forbidden: [
+      {
+        regex: '^(?!\\./|#drizzle/schema/|drizzle-orm)',
+        message: 'The schema imports drizzle-orm and itself.',
+      },
+    ],
+  },
+  {
+    folders: ['server/stats'],
+    forbidden: [
+      { regex: '^(?!\\./|#server/stats/|jstat$)', message: 'The engine imports jstat and itself.' },
+    ],
+  },
+  ...capabilities.map((name) => ({
+    folders: [`server/${name}`],
+    forbidden: [
+      notTests,
+      notClient,
+      {
+        regex: '^#server/stats/(?!engine\\.ts$)',
+        message: 'The engine is entered by its front door, engine.ts.',
+      },
+      {
+        regex: `^#server/(?!${name}/)[^/]+/.*-routes\\.ts$`,
+        message: "A capability uses another one's store, never its routes.",
+      },
+      { regex: '^#server/(demo|setup|commands)/', message: 'A capability does not import what calls it.' },
+    ],
+  })),
+  {
+    folders: ['src/components'],
+    forbidden: [
+      notTests,
+      notServer,
+      {
+        regex: '^#(src/(?!components/)|locales/)',
+        message: 'Components import React, themselves and shared.',
+      },
+      {
+        regex: '^@tanstack/react-query',
+        message: 'Components show what they are given; features ask the server.',
+      },
+    ],
+  },
+  ...features.map((name) => ({
+    folders: [`src/features/${name}`],
+    forbidden: [
+      notTests,
+      notServer,
+      { regex: `^#src/features/(?!${name}/)`, message: 'A feature does not import another feature.' },
+    ],
+  })),
+];
+
+/** Besides the rules of imports: what no file may contain, and what JSX may not. */
+const noDefaultExport = {
+  selector: 'ExportDefaultDeclaration',
+  message: 'Export by name, so that a thing is called the same everywhere.',
+};
+const readAttributes =
+  /^(title|alt|placeholder|label|aria-label|aria-description|aria-roledescription|ariaLabel)$/;
+const noLiteralText = [
+  'JSXText[value=/\\p{L}/u]',
+  ':matches(JSXElement, JSXFragment) > JSXExpressionContainer > Literal[value=/\\p{L}/u]',
+  `JSXAttribute[name.name=${readAttributes}] > Literal[value=/\\p{L}/u]`,
+  `JSXAttribute[name.name=${readAttributes}] > JSXExpressionContainer > Literal[value=/\\p{L}/u]`,
+  `JSXAttribute[name.name=${readAttributes}] > JSXExpressionContainer > TemplateLiteral > TemplateElement[value.raw=/\\p{L}/u]`,
+].map((selector) => ({ selector, message: 'Text that a person reads stands in locales/.' }));
+
+/** Static imports and re-exports are the first rule's; `import('…')` is the second's. */
+function restrictImports({ folders, forbidden }) {
+  const patterns = [...everywhere, ...forbidden];
+  const dynamic = patterns.map(({ regex, message }) => ({
+    selector: `ImportExpression > Literal[value=/${regex.replaceAll('/', '\\/')}/]`,
+    message,
+  }));
+  const jsxText = folders.every((folder) => folder.startsWith('src')) ? noLiteralText : [];
+  return {
+    files: folders.map((folder) => `${folder === '.' ? '' : `${folder}/`}**/*.{ts,tsx,js,mjs}`),
+    rules: {
+      'no-restricted-imports': ['error', { patterns }],
+      'no-restricted-syntax': ['error', noDefaultExport, ...dynamic, ...jsxText],
+    },
+  };
+}
+
+/** Rules that need types cost half a minute: `npm test` asks for them, the fast loop does not. */
+const withTypes = process.env.LINT_WITH_TYPES === '1';
+const typedRules = {
+  '@typescript-eslint/await-thenable': 'error',
+  '@typescript-eslint/no-floating-promises': 'error',
+  '@typescript-eslint/no-misused-promises': ['error', { checksVoidReturn: { attributes: false } }],
+  '@typescript-eslint/no-unsafe-argument': 'error',
+  '@typescript-eslint/no-unsafe-assignment': 'error',
+  '@typescript-eslint/no-unsafe-call': 'error',
+  '@typescript-eslint/no-unsafe-member-access': 'error',
+  '@typescript-eslint/no-unsafe-return': 'error',
+  '@typescript-eslint/only-throw-error': 'error',
+  '@typescript-eslint/switch-exhaustiveness-check': 'error',
+};
+
+export default tseslint.config(
+  { ignores: ['dist', '.local', 'coverage', 'test-results', 'drizzle/migrations'] },
+  js.configs.recommended,
+  tseslint.configs.recommended,
+  {
+    linterOptions: { reportUnusedDisableDirectives: withTypes ? 'error' : 'off' },
+    languageOptions: { globals: globals.nodeBuiltin },
+    rules: {
+      eqeqeq: 'error',
+      'max-lines': ['error', 450],
+      'no-restricted-exports': ['error', { restrictDefaultExports: { named: true } }],
+      '@typescript-eslint/consistent-type-imports': ['error', { fixStyle: 'inline-type-imports' }],
+      '@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_', varsIgnorePattern: '^_' }],
+    },
+  },
+  {
+    files: ['src/**', 'tests/client/**'],
+    extends: [reactHooks.configs.flat.recommended],
+    languageOptions: { globals: globals.browser },
+  },
+  ...importRules.map(restrictImports),
+  { files: ['*.config.{ts,js}'], rules: { 'no-restricted-syntax': 'off' } },
+  {
+    // Published coefficients keep the digits of their source.
+    files: ['server/stats/**', 'tests/{stats,reference}/**', 'shared/**'],
+    rules: { 'no-loss-of-precision': 'off' },
+  },
+  {
+    files: ['**/*.{ts,tsx}'],
+    // The compiler finds undefined names, and knows the types' ones too.
+    rules: { 'no-undef': 'off' },
+  },
+  ...(withTypes
+    ? [
+        {
+          files: ['**/*.{ts,tsx}'],
+          ignores: ['**/*.d.mts'],
+          plugins: { '@typescript-eslint': tseslint.plugin },
+          languageOptions: {
+            parserOptions: {
+              project: ['./tsconfig.server.json', './tsconfig.client.json'],
+              tsconfigRootDir: import.meta.dirname,
+            },
+          },
+          rules: typedRules,
+        },
+      ]
+    : []),
+);
