@@ -104,7 +104,8 @@ const noDefaultExport = {
 const readAttributes =
   /^(title|alt|placeholder|label|aria-label|aria-description|aria-roledescription|ariaLabel)$/;
 const noLiteralText = [
-  'JSXText[value=/\\p{L}/u]',
+  // The product's name is the same in every language.
+  'JSXText[value=/^(?!\\s*Gavelrow\\s*$).*\\p{L}/su]',
   ':matches(JSXElement, JSXFragment) > JSXExpressionContainer > Literal[value=/\\p{L}/u]',
   `JSXAttribute[name.name=${readAttributes}] > Literal[value=/\\p{L}/u]`,
   `JSXAttribute[name.name=${readAttributes}] > JSXExpressionContainer > Literal[value=/\\p{L}/u]`,
