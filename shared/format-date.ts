@@ -29,5 +29,7 @@ export function formatDateTime(iso: string, language: Language, timeZone?: strin
     hourCycle: 'h23',
     timeZone,
   });
-  return `${formatDate(iso, language, timeZone)}, ${time.format(new Date(iso))}`;
+  // The hour stays on one line: `09 h 30`.
+  const clock = time.format(new Date(iso)).replace(/\s/g, '\u00a0');
+  return `${formatDate(iso, language, timeZone)}, ${clock}`;
 }

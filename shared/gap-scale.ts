@@ -4,6 +4,9 @@ export type Scale = { low: number; high: number; ticks: readonly number[] };
 /** Room left at both ends, so that a mark or its label does not touch the edge. */
 const padding = 0.06;
 
+/** Below this all values are as good as zero, and any span would do. */
+const smallestSpan = 1e-9;
+
 /** The step of 1, 2 or 5 times a power of ten that cuts a span into at most `most` parts. */
 function chooseStep(span: number, most: number): number {
   const raw = span / most;
@@ -15,19 +18,20 @@ function chooseStep(span: number, most: number): number {
 /**
  * One scale for all the values of a list, zero always on it.
  * @param values estimates, interval ends and break-even gaps, one unit; what is not finite is left out
- * @param mostTicks the most steps between labelled ticks
+ * @param mostSteps the most steps between labelled ticks
  */
-export function spanScale(values: readonly number[], mostTicks = 5): Scale {
+export function spanScale(values: readonly number[], mostSteps = 6): Scale {
   const finite = values.filter((value) => Number.isFinite(value));
   const lowest = Math.min(0, ...finite);
   const highest = Math.max(0, ...finite);
-  const span = highest - lowest > 0 ? highest - lowest : 1;
+  const span = highest - lowest > smallestSpan ? highest - lowest : 1;
   const low = lowest - span * padding;
   const high = highest + span * padding;
-  const step = chooseStep(high - low, mostTicks);
+  const step = chooseStep(high - low, mostSteps);
   const ticks: number[] = [];
   for (let count = Math.ceil(low / step); count * step <= high; count += 1) {
-    ticks.push(Number((count * step).toPrecision(12)));
+    // Adding zero turns −0 into 0.
+    ticks.push(Number((count * step).toPrecision(12)) + 0);
   }
   return { low, high, ticks };
 }

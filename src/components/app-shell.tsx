@@ -37,7 +37,7 @@ export function AppShell({ homePath, navItems, personName, onLanguage, onSignOut
             className="tap-target flex items-center gap-2 py-2 text-lg font-bold text-ink no-underline hover:underline"
           >
             <GavelMark />
-            Gavelrow
+            {t('productName')}
           </Link>
           {navItems.length > 0 && <MainNav items={navItems} />}
           <div className="ml-auto flex items-center gap-x-2 text-sm md:gap-x-4 md:text-base">

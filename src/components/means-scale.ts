@@ -22,6 +22,8 @@ export function scaleOfMeans(means: readonly EntryMean[], lsd: number | null): M
   const highest = Math.max(...values);
   const isFromZero = lowest >= 0 && (highest - lowest) / highest >= readableSpread;
   if (isFromZero) return { low: 0, high: highest * 1.02, isFromZero };
-  const span = Math.max(highest - lowest, lsd ?? 0, Math.abs(highest) * 0.01);
-  return { low: lowest - span * 0.12, high: highest + span * 0.08, isFromZero };
+  const span = Math.max(highest - lowest, Math.abs(highest) * 0.01);
+  const low = lowest - span * 0.12;
+  const high = Math.max(highest + span * 0.08, low + (lsd ?? 0) * 1.05);
+  return { low, high, isFromZero };
 }

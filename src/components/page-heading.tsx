@@ -1,4 +1,5 @@
 import { useEffect, useRef, type ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
 import { useLocation } from 'react-router-dom';
 
 type PageHeadingProps = {
@@ -14,12 +15,14 @@ type PageHeadingProps = {
 
 /** The head of a page. After a navigation it takes the focus, so that a screen reader starts reading here. */
 export function PageHeading({ title, above, below, actions }: PageHeadingProps) {
+  const { t } = useTranslation('common');
+  const documentTitle = t('pageTitle', { page: title });
   const ref = useRef<HTMLHeadingElement>(null);
   const { pathname, key } = useLocation();
   const isFirstPage = key === 'default';
   useEffect(() => {
-    document.title = `${title} · Gavelrow`;
-  }, [title]);
+    document.title = documentTitle;
+  }, [documentTitle]);
   useEffect(() => {
     if (!isFirstPage) ref.current?.focus({ preventScroll: true });
     // Only another page moves the focus: a change of the address's parameters is not one.

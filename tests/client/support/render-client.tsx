@@ -1,0 +1,29 @@
+import type { ReactNode } from 'react';
+import { cleanup, render } from '@testing-library/react';
+import { QueryClientProvider } from '@tanstack/react-query';
+import { MemoryRouter } from 'react-router-dom';
+import { afterEach, beforeAll } from 'vitest';
+import type { Language } from '#shared/account.ts';
+import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
+import type { Namespace } from '#src/locale-resources.ts';
+import { makeQueryClient } from '#src/query-client.ts';
+
+beforeAll(async () => {
+  await startI18n();
+});
+
+afterEach(cleanup);
+
+/** Renders a part of the client with its real sentences, in the language asked for. */
+export async function renderClient(
+  part: ReactNode,
+  options: { language?: Language; namespaces?: Namespace[]; at?: string } = {},
+) {
+  await changeLanguage(options.language ?? 'en');
+  await i18n.loadNamespaces(options.namespaces ?? ['drawings']);
+  return render(
+    <QueryClientProvider client={makeQueryClient()}>
+      <MemoryRouter initialEntries={[options.at ?? '/']}>{part}</MemoryRouter>
+    </QueryClientProvider>,
+  );
+}
