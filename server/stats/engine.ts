@@ -17,3 +17,9 @@ export { analyseTwoWay, type TwoWayAnalysis, type TwoWayRefused } from './networ
 export { combineTrials, type CombinedTrials, type CombineOptions } from './network/combine-trials.ts';
 export type { InteractionVariances, TrialCell } from './network/network-cell.ts';
 export { synthesisePair, type PairEffect, type PairSynthesis } from './network/pair-synthesis.ts';
+export { weighCandidates } from './network/weigh-candidates.ts';
+export { chanceAbove, chanceOver } from './network/gap-chance.ts';
+export { defaultUsualVariances } from './network/usual-variances.ts';
+export type * from './network/weigh-question.ts';
+export type * from './network/weigh-result.ts';
+export type { EvidenceTier } from './network/evidence-tier.ts';

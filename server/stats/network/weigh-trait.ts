@@ -1,0 +1,244 @@
+import { chooseEvidence, type ChosenEvidence } from './choose-evidence.ts';
+import { compareWithCurrent } from './compare-with-current.ts';
+import { estimateEntries } from './entry-estimates.ts';
+import { answersFor, gradeEvidence, type EvidenceTier } from './evidence-tier.ts';
+import { cautionCandidate, cautionEvidence } from './evidence-cautions.ts';
+import { fitNetwork, type NetworkFit, type VariancePenalty } from './fit-network.ts';
+import { judgeGap } from './judge-gap.ts';
+import { interactionTerms } from './network-cell.ts';
+import { frameNetwork, type NetworkFrame } from './network-frame.ts';
+import { synthesisePair, type PairSynthesis } from './pair-synthesis.ts';
+import { shrinkEffects } from './shrunken-effects.ts';
+import { countSiteYearsToSettle } from './site-years-to-settle.ts';
+import { drawTrialLines } from './trial-lines.ts';
+import { scaleVariances, totalVariance } from './usual-variances.ts';
+import type {
+  CandidateGap,
+  EvidenceNetwork,
+  NetworkTrial,
+  TraitEvidence,
+  TraitVerdict,
+  TrialLine,
+  WeighQuestion,
+} from './weigh-question.ts';
+import type { CandidateWeighing, TraitWeighing } from './weigh-result.ts';
+
+const LEVEL = 0.95;
+const PENALTY = 3;
+
+/** A fit of the chosen cells and the candidates' gaps in it. */
+interface Weighed {
+  readonly fit: NetworkFit;
+  readonly gaps: ReadonlyMap<string, CandidateGap>;
+}
+
+function choosePenalty(trait: TraitEvidence, factor: number): VariancePenalty | null {
+  if (trait.usual === null || interactionTerms.some((term) => !(trait.usual![term] > 0))) return null;
+  return { nu: PENALTY, usual: scaleVariances(trait.usual, factor) };
+}
+
+/** @param factor on the usual variances: 1, or ½ and 2 for the sensitivity lines */
+function weighCells(
+  frame: NetworkFrame,
+  trait: TraitEvidence,
+  question: WeighQuestion,
+  factor: number,
+): Weighed | null {
+  const base = frame.entries.indexOf(question.current);
+  const penalty = choosePenalty(trait, factor);
+  const fit = fitNetwork(frame, penalty);
+  if (fit.outcome === 'not-fitted') return null;
+  const estimates = estimateEntries(fit);
+  const [site, year, rest] = fit.point.theta;
+  const usualEntry =
+    (trait.usual?.entry ?? totalVariance(trait.usual ?? { site: site!, year: year!, rest: rest! })) * factor;
+  const members = question.candidates.flatMap((candidate) => {
+    const at = frame.entries.indexOf(candidate);
+    return at < 0 || at === base ? [] : [at];
+  });
+  const shrunken = shrinkEffects(estimates, usualEntry);
+  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL);
+  return { fit, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
+}
+
+/** What stays the same for all candidates of a trait. */
+interface TraitGround {
+  readonly network: EvidenceNetwork;
+  readonly trait: TraitEvidence;
+  readonly question: WeighQuestion;
+  readonly evidence: ChosenEvidence;
+  readonly frame: NetworkFrame | null;
+  readonly weighed: Weighed | null;
+  readonly half: Weighed | null;
+  readonly double: Weighed | null;
+  readonly sites: number;
+  readonly seasons: readonly number[];
+}
+
+function gradeCandidate(ground: TraitGround, siteYears: number): EvidenceTier {
+  return gradeEvidence({
+    siteYears,
+    environments: ground.evidence.tables.length,
+    sites: ground.sites,
+    seasons: ground.seasons.length,
+    entries: ground.frame?.entries.length ?? 0,
+    hasUsual: choosePenalty(ground.trait, 1) !== null,
+  });
+}
+
+function marginOf({ trait, question }: TraitGround, candidate: string): number {
+  return Math.max(trait.practicalMargin, question.margins?.[trait.trait]?.[candidate] ?? 0);
+}
+
+function judgeIn(
+  ground: TraitGround,
+  weighed: Weighed | null,
+  candidate: string,
+  tier: EvidenceTier,
+): TraitVerdict {
+  const gap = weighed?.gaps.get(candidate);
+  if (gap === undefined) return 'thin';
+  return judgeGap(gap.region, ground.trait.better, marginOf(ground, candidate), answersFor(tier));
+}
+
+function settle(ground: TraitGround, gap: CandidateGap, verdict: TraitVerdict): number | null {
+  const fit = ground.weighed?.fit;
+  if (fit === undefined || (verdict !== 'open' && verdict !== 'thin')) return null;
+  const [site, year, rest] = fit.point.theta;
+  const { v } = fit.frame;
+  return countSiteYearsToSettle({
+    estimate: gap.estimate,
+    se: gap.se,
+    df: gap.df,
+    level: LEVEL,
+    components: { site: site!, year: year!, rest: rest! },
+    cellVariance: v.reduce((sum, x) => sum + x, 0) / v.length,
+    entries: fit.frame.entries.length,
+    sites: ground.sites,
+    seasons: ground.seasons.length,
+    environments: ground.evidence.tables.length,
+    penalty: fit.penalty?.nu ?? 0,
+  });
+}
+
+function synthesise(lines: readonly TrialLine[]): PairSynthesis | null {
+  const effects = lines.flatMap(({ estimate, se }) => (se > 0 ? [{ estimate, variance: se * se }] : []));
+  return effects.length < 2 ? null : synthesisePair(effects);
+}
+
+/** The candidate with the best estimate, where the question is about the best of a list. */
+function findLeader({ question, trait, weighed }: TraitGround): string | null {
+  if (question.kind !== 'best' || weighed === null) return null;
+  const sign = trait.better === 'lower' ? -1 : 1;
+  const ranked = [...weighed.gaps].sort(([, a], [, b]) => sign * (b.estimate - a.estimate));
+  const [name, gap] = ranked[0] ?? [null, null];
+  return gap !== null && sign * gap.estimate > 0 ? name : null;
+}
+
+function weighOne(ground: TraitGround, candidate: string, leader: string | null): CandidateWeighing {
+  const { question, trait, evidence, network, weighed } = ground;
+  const stoodIn = (entry: string): number => evidence.tables.filter(({ cells }) => cells.has(entry)).length;
+  const lines = drawTrialLines(evidence.tables, candidate, question.current, LEVEL);
+  const siteYears = stoodIn(candidate);
+  const tier = gradeCandidate(ground, Math.min(siteYears, stoodIn(question.current)));
+  const gap = weighed?.gaps.get(candidate) ?? null;
+  const verdict = judgeIn(ground, weighed, candidate, tier);
+  const sensitivity =
+    gap === null || choosePenalty(trait, 1) === null
+      ? null
+      : {
+          half: judgeIn(ground, ground.half, candidate, tier),
+          double: judgeIn(ground, ground.double, candidate, tier),
+        };
+  const isUnconnected = evidence.unconnected.has(candidate);
+  const sign = trait.better === 'lower' ? -1 : 1;
+  return {
+    candidate,
+    verdict,
+    gap,
+    noGapBecause:
+      gap !== null ? null : isUnconnected ? 'disconnected' : siteYears === 0 ? 'no-trials' : 'not-fitted',
+    tier,
+    siteYears,
+    sharedSiteYears: lines.length,
+    ledIn: lines.filter(({ estimate }) => sign * estimate > 0).length,
+    siteYearsToSettle: gap === null ? null : settle(ground, gap, verdict),
+    sensitivity,
+    trials: lines,
+    synthesis: synthesise(lines),
+    cautions: cautionCandidate({
+      candidate,
+      question,
+      names: network.names,
+      tables: evidence.tables,
+      shared: lines.length,
+      isConnected: !isUnconnected,
+      isSensitive: sensitivity !== null && (sensitivity.half !== verdict || sensitivity.double !== verdict),
+      leads:
+        candidate === leader && gap !== null
+          ? {
+              count: question.listSize ?? ground.frame?.entries.length ?? 0,
+              estimate: gap.estimate,
+              shrunken: gap.shrunken.estimate,
+            }
+          : null,
+    }),
+  };
+}
+
+/** Weighs the candidates of a question in one trait. `trials` are those of the question's seasons. */
+export function weighTrait(
+  network: EvidenceNetwork,
+  trials: readonly NetworkTrial[],
+  trait: TraitEvidence,
+  question: WeighQuestion,
+): TraitWeighing {
+  const evidence = chooseEvidence(trials, trait, question);
+  const frame = evidence.cells.length === 0 ? null : frameNetwork(evidence.cells);
+  const used = evidence.tables.map(({ trial }) => trial);
+  const hasUsual = choosePenalty(trait, 1) !== null;
+  const ground: TraitGround = {
+    network,
+    trait,
+    question,
+    evidence,
+    frame,
+    weighed: frame && weighCells(frame, trait, question, 1),
+    half: frame && hasUsual ? weighCells(frame, trait, question, 0.5) : null,
+    double: frame && hasUsual ? weighCells(frame, trait, question, 2) : null,
+    sites: new Set(used.map(({ site }) => site)).size,
+    seasons: [...new Set(used.map(({ season }) => season))].sort((a, b) => a - b),
+  };
+  const leader = findLeader(ground);
+  const fit = ground.weighed?.fit ?? null;
+  const theta = fit?.point.theta;
+  const components = theta ? { site: theta[0]!, year: theta[1]!, rest: theta[2]! } : null;
+  return {
+    trait: trait.trait,
+    comparison: question.kind !== 'pair' && question.candidates.length > 1 ? 'dunnett' : 'lsd',
+    trials: used.map(({ trial }) => trial),
+    leftOut: evidence.leftOut.map(({ trial, reason }) => ({ trial, reason })),
+    sites: ground.sites,
+    seasons: ground.seasons,
+    entries: frame?.entries.length ?? 0,
+    fit:
+      fit && components
+        ? {
+            penalty: fit.penalty?.nu ?? 0,
+            components,
+            usual: fit.penalty?.usual ?? null,
+            logLik: fit.point.logLik,
+            iterations: fit.iterations,
+          }
+        : null,
+    candidates: question.candidates.map((candidate) => weighOne(ground, candidate, leader)),
+    cautions: cautionEvidence({
+      question,
+      trait,
+      trials: used,
+      leftOut: evidence.leftOut,
+      components,
+      tier: gradeCandidate(ground, used.length),
+    }),
+  };
+}
