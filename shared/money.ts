@@ -3,7 +3,9 @@ import { studentUpperTail } from './student-tail.ts';
 import { judgeMoney, moneyVerdictCode, type MoneyVerdictCode } from './verdict.ts';
 
 const amount = z.number().min(0).max(1_000_000);
-const price = z.number().positive().max(1_000_000);
+/** No tonne of any crop costs more, in any currency that is likely here. */
+const highestPrice = 1_000_000;
+const price = z.number().positive().max(highestPrice);
 
 /** What a hectare's seed of one variety costs, in the currency of the assumptions. */
 export const seedCost = z.object({
@@ -85,7 +87,7 @@ export function weighMoney(
   const perTonne = money.haulagePerTonne + money.dryingPerTonne;
   const returnAt = (priceOfTonne: number): number => estimate * (priceOfTonne - perTonne) - extra;
   const chance = ownSeason === null ? null : chancePays(ownSeason, extra, perTonne, money);
-  const turningPrice = estimate === 0 ? null : extra / estimate + perTonne;
+  const turningPrice = extra / estimate + perTonne;
   const turningSeed = sumSeedCost(candidateCost) + returnAt(money.priceMiddle);
   const verdict: MoneyVerdictCode = judgeMoney(chance);
   return {
@@ -94,7 +96,7 @@ export function weighMoney(
     returnPerHectare: returnAt(money.priceMiddle),
     returnAtLowPrice: returnAt(money.priceLow),
     returnAtHighPrice: returnAt(money.priceHigh),
-    breakEvenPrice: turningPrice !== null && turningPrice > perTonne ? turningPrice : null,
+    breakEvenPrice: turningPrice > perTonne && turningPrice <= highestPrice ? turningPrice : null,
     breakEvenSeedCost: turningSeed >= 0 ? turningSeed : null,
     chancePays: chance,
     verdict,

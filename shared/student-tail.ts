@@ -8,8 +8,11 @@
 export function studentUpperTail(t: number, df: number): number {
   if (t < 0) return 1 - studentUpperTail(-t, df);
   const finiteDf = Math.min(df, 1e8);
-  const x = finiteDf / (finiteDf + t * t);
-  return 0.5 * incompleteBeta(x, finiteDf / 2, 0.5);
+  const square = t * t;
+  // Each side is worked out where its argument keeps all its digits.
+  return square < finiteDf
+    ? 0.5 - 0.5 * incompleteBeta(square / (finiteDf + square), 0.5, finiteDf / 2)
+    : 0.5 * incompleteBeta(finiteDf / (finiteDf + square), finiteDf / 2, 0.5);
 }
 
 /** Regularised incomplete beta I_x(a, b) by Lentz's evaluation of its continued fraction. */
