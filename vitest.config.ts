@@ -1,44 +1,45 @@
 import react from '@vitejs/plugin-react';
 import { defineConfig } from 'vitest/config';
-
-const onlyWhenNamed = { exclude: ['**/node_modules/**'] };
+import { SummaryReporter } from './tests/support/summary-reporter.ts';
 
 export default defineConfig({
   test: {
     maxWorkers: 2,
+    reporters: ['default', new SummaryReporter()],
     testTimeout: 20_000,
     hookTimeout: 60_000,
     projects: [
       {
+        extends: true,
         test: {
-          ...onlyWhenNamed,
           name: 'unit',
           include: ['tests/{stats,shared,structure,server,setup}/**/*.test.ts'],
         },
       },
       {
+        extends: true,
         plugins: [react()],
         test: {
-          ...onlyWhenNamed,
           name: 'client',
           include: ['tests/client/**/*.test.{ts,tsx}'],
           environment: 'happy-dom',
         },
       },
       {
-        test: { ...onlyWhenNamed, name: 'reference', include: ['tests/reference/**/*.test.ts'] },
+        extends: true,
+        test: { name: 'reference', include: ['tests/reference/**/*.test.ts'] },
       },
       {
+        extends: true,
         test: {
-          ...onlyWhenNamed,
           name: 'api',
           include: ['tests/api/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts'],
         },
       },
       {
+        extends: true,
         test: {
-          ...onlyWhenNamed,
           name: 'e2e',
           include: ['tests/e2e/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts', 'tests/support/build-global-setup.ts'],

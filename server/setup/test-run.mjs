@@ -1,0 +1,89 @@
+import { spawn } from 'node:child_process';
+import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { projectRoot } from './ground.mjs';
+import { undoAtEnd } from './process-end.mjs';
+import { formatSeconds } from './progress.mjs';
+
+/**
+ * A list of checks, each shown with its time, and the one line that closes it.
+ * A check that is no test run counts as one test.
+ */
+export function beginTestRun() {
+  const folder = mkdtempSync(join(tmpdir(), 'gavelrow-tests-'));
+  undoAtEnd(async () => rmSync(folder, { recursive: true, force: true }));
+  const totals = { passed: 0, failed: 0, skipped: 0 };
+  const outcomes = [];
+
+  const close = (label, from, { passed, failed, skipped }) => {
+    totals.passed += passed;
+    totals.failed += failed;
+    totals.skipped += skipped;
+    const time = formatSeconds(performance.now() - from);
+    outcomes.push(`  ${failed === 0 ? '✓' : '✗'} ${label} (${time})`);
+    console.log(`${failed === 0 ? '✓' : '✗'} ${label} (${time})`);
+  };
+
+  return {
+    /** A program that says by its exit code whether all is well. */
+    async check(label, program, args, env = {}) {
+      const from = performance.now();
+      console.log(`\n• ${label}`);
+      const { code } = await runShown(program, args, env);
+      close(label, from, { passed: code === 0 ? 1 : 0, failed: code === 0 ? 0 : 1, skipped: 0 });
+    },
+
+    /** Tests of some of vitest's projects, counted one by one. */
+    async test(label, projects) {
+      const from = performance.now();
+      console.log(`\n• ${label}`);
+      const summary = join(folder, `${projects.join('-')}.json`);
+      const args = [
+        ...['node_modules/vitest/vitest.mjs', 'run', '--passWithNoTests'],
+        ...['--silent=passed-only'],
+        ...projects.map((name) => `--project=${name}`),
+      ];
+      const { code } = await runShown(process.execPath, args, { SUMMARY_FILE: summary });
+      const counts = readCounts(summary);
+      const isUncounted = code !== 0 && counts.failed === 0;
+      close(label, from, { ...counts, failed: counts.failed + (isUncounted ? 1 : 0) });
+    },
+
+    /** Prints what happened and the closing line. @returns {number} the exit code */
+    finish(time) {
+      const skipped = totals.skipped === 0 ? '' : `, ${totals.skipped} skipped`;
+      console.log(`\n${outcomes.join('\n')}\n  ${time} in all\n`);
+      console.log(`${totals.passed} passed, ${totals.failed} failed${skipped}`);
+      return totals.failed === 0 && totals.passed > 0 ? 0 : 1;
+    },
+  };
+}
+
+function readCounts(path) {
+  try {
+    const { passed, failed, skipped } = JSON.parse(readFileSync(path, 'utf8'));
+    return { passed, failed, skipped };
+  } catch {
+    return { passed: 0, failed: 0, skipped: 0 };
+  }
+}
+
+/** What the program prints goes straight to the terminal; it is ended with this process. */
+function runShown(program, args, env) {
+  return new Promise((resolve) => {
+    const child = spawn(program, args, {
+      cwd: projectRoot,
+      env: { ...process.env, ...env },
+      stdio: ['ignore', 'inherit', 'inherit'],
+    });
+    undoAtEnd(async () => {
+      child.kill('SIGTERM');
+    });
+    child.on('error', (error) => {
+      console.error(error.message);
+      resolve({ code: 1 });
+    });
+    child.on('close', (code) => resolve({ code: code ?? 1 }));
+  });
+}

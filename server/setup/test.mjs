@@ -1,0 +1,60 @@
+import { findChromium } from './chromium-program.mjs';
+import { buildClient, buildServer } from './build-product.mjs';
+import { becomeProjectOwner, preparePackages, preparePostgres, projectRoot, requireNode } from './ground.mjs';
+import { installFromDebian } from './install-debian.mjs';
+import { endOnSignals, endProcess, isEnding } from './process-end.mjs';
+import { runStep, secondsSoFar } from './progress.mjs';
+import { printFailure } from './setup-error.mjs';
+import { beginTestRun } from './test-run.mjs';
+
+const isFastLoop = process.argv.includes('--fast');
+
+endOnSignals(() => console.log('\nStopping the tests …'));
+try {
+  await endProcess(await runTests());
+} catch (error) {
+  if (!isEnding()) {
+    printFailure(error);
+    // The closing line tells that nothing was tested.
+    console.log('\n0 passed, 1 failed');
+    await endProcess(1);
+  }
+}
+
+/** @returns {Promise<number>} the exit code */
+async function runTests() {
+  console.log('Set-up');
+  requireNode();
+  if (!isFastLoop) {
+    await preparePostgres();
+    await prepareChromium();
+  }
+  becomeProjectOwner();
+  await preparePackages();
+  const run = beginTestRun();
+  const bin = (name) => `node_modules/.bin/${name}`;
+  const eslint = ['.', '--cache', '--cache-strategy=content', '--cache-location=node_modules/.cache/eslint/'];
+  const prettier = ['--check', '.', '--log-level=warn', '--cache', '--cache-strategy=content'];
+  await run.check('Format', bin('prettier'), prettier);
+  await run.check('Types', bin('tsc'), ['-b']);
+  if (isFastLoop) await run.check('Lint', bin('eslint'), [...eslint, '--quiet']);
+  else await run.check('Lint with types', bin('eslint'), ['.'], { LINT_WITH_TYPES: '1' });
+  await run.test('Unit tests', ['unit', 'client']);
+  if (isFastLoop) return run.finish(secondsSoFar());
+  await run.test('Reference checks', ['reference']);
+  await run.check('Dead code', bin('knip'), ['--no-progress']);
+  await runStep('Client', async (tell) => tell((await buildClient(projectRoot)) ? 'built' : 'up to date'));
+  await runStep('Server', async (tell) => tell((await buildServer(projectRoot)) ? 'built' : 'up to date'));
+  await run.check('Size of the first page', process.execPath, ['server/setup/check-first-page-size.mjs']);
+  await run.test('API on PostgreSQL', ['api']);
+  await run.test('End to end in Chromium', ['e2e']);
+  return run.finish(secondsSoFar());
+}
+
+function prepareChromium() {
+  return runStep('Chromium', async (tell) => {
+    const found = findChromium();
+    if (found === null) await installFromDebian('Chromium', ['chromium']);
+    tell(found ?? `${findChromium()} installed`);
+  });
+}
