@@ -34,6 +34,8 @@ interface TrialCommand {
   readonly columns: Readonly<Record<DesignPart | 'plot', string>>;
   readonly told: ReadonlySet<string>;
   readonly spatial: boolean;
+  /** whether each plot's fitted value and residual are printed */
+  readonly withResiduals: boolean;
   readonly allowNegative: boolean;
 }
 
@@ -43,10 +45,14 @@ export async function runTrial(args: readonly string[]): Promise<number> {
   try {
     command = readCommand(args);
   } catch (error) {
-    printError(error instanceof AnalysisError ? error : new AnalysisError('bad-option', String(error)));
+    printError(error instanceof AnalysisError ? error : badOption(error));
     return 2;
   }
   return printEach(command.files, (table) => analyseTable(table, command));
+}
+
+function badOption(error: unknown): AnalysisError {
+  return new AnalysisError('bad-option', error instanceof Error ? error.message : String(error));
 }
 
 function readCommand(args: readonly string[]): TrialCommand {
@@ -70,6 +76,7 @@ function readCommand(args: readonly string[]): TrialCommand {
       main: text,
       sub: text,
       spatial: flag,
+      residuals: flag,
       'allow-negative': flag,
     },
   });
@@ -100,13 +107,14 @@ function readCommand(args: readonly string[]): TrialCommand {
     },
     told: new Set(['plot', ...parts].filter((part) => Object.hasOwn(values, part))),
     spatial: values.spatial,
+    withResiduals: values.residuals,
     allowNegative: values['allow-negative'],
   };
 }
 
 function analyseTable(table: Table, command: TrialCommand): unknown {
   const plots = readPlotRows(table, command);
-  return withLines(table, () =>
+  const { residuals, ...result } = withLines(table, () =>
     analyseTrial(
       plots,
       { kind: command.design, factors: command.factors, termNames: command.columns },
@@ -118,6 +126,7 @@ function analyseTable(table: Table, command: TrialCommand): unknown {
       },
     ),
   );
+  return command.withResiduals ? { ...result, residuals } : result;
 }
 
 function readPlotRows(table: Table, command: TrialCommand): TrialPlot[] {

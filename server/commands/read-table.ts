@@ -10,6 +10,9 @@ export interface Table {
   readonly lines: readonly number[];
 }
 
+/** Longer files hold more than one trial or one network. */
+const mostLines = 50_000;
+
 const number = /^[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?$/;
 const infinite = /^[+-]?inf(inity)?$|^nan$/i;
 
@@ -24,6 +27,7 @@ export function readTable(path: string): Table {
   } catch {
     throw new AnalysisError('unreadable-file', `cannot read ${path}`);
   }
+  refuseLong(text);
   const records = text.includes('"') ? readQuoted(text) : readPlain(text);
   const header = records[0];
   if (!header) throw new AnalysisError('no-values', `${path} is empty`);
@@ -39,6 +43,14 @@ export function readTable(path: string): Table {
     rows: body.map((record) => record.fields),
     lines: body.map((record) => record.line),
   };
+}
+
+/** Counts lines before anything is split: a file that is far too long is refused at once. */
+function refuseLong(text: string): void {
+  let lines = 0;
+  for (let at = text.indexOf('\n'); at >= 0; at = text.indexOf('\n', at + 1)) lines++;
+  if (lines > mostLines)
+    throw new AnalysisError('too-large', `${lines} lines; at most ${mostLines} are read`, [mostLines + 1]);
 }
 
 interface RecordOfFields {
@@ -122,8 +134,11 @@ export function printEach(files: readonly string[], analyse: (table: Table) => u
   return exitCode;
 }
 
-export function printError(error: AnalysisError): void {
-  console.log(JSON.stringify({ error: { code: error.code, message: error.message, rows: error.rows } }));
+/** Rows at fault that are named; the message counts them all. */
+const mostRows = 1000;
+
+export function printError({ code, message, rows }: AnalysisError): void {
+  console.log(JSON.stringify({ error: { code, message, rows: rows.slice(0, mostRows) } }));
 }
 
 function analyseFile(file: string, analyse: (table: Table) => unknown): unknown {

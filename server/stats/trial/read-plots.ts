@@ -23,7 +23,9 @@ export function isUsed(plot: TrialPlot): boolean {
  */
 export function readPlots(plots: readonly TrialPlot[], allowNegative: boolean): UsedPlots {
   if (plots.length > trialLimits.plots)
-    throw new AnalysisError('too-large', `${plots.length} plots; at most ${trialLimits.plots} are analysed`);
+    throw new AnalysisError('too-large', `${plots.length} plots; at most ${trialLimits.plots} are analysed`, [
+      trialLimits.plots + 1,
+    ]);
   refuseDuplicates(plots);
   refuse(plots, (plot) => plot.entry === '', 'missing-level', 'plots without an entry');
   refuse(

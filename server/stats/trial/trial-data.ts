@@ -56,7 +56,7 @@ export interface TrialOptions {
 
 /** Limits above which an analysis is refused rather than run for minutes. */
 export const trialLimits = {
-  plots: 200_000,
+  plots: 20_000,
   /** entries (or combinations of factors) in one table of means; the gaps grow with the square */
   entries: 500,
   /** fixed parameters */
