@@ -2,19 +2,20 @@ import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { projectRoot } from './ground.mjs';
 
-const path = join(projectRoot, '.local', 'demo.json');
+/** Beside the database, so that whoever deletes the one deletes the other. */
+const path = join(projectRoot, '.local', 'postgres', 'demo.json');
 
 /**
- * What a visitor needs to look round the demo; kept because only the hash of a link is in the database.
- * @typedef {{ accounts: { role: string, email: string, password: string }[], growerLink: string }} DemoNotes
+ * What a visitor needs to look round the demo. It is kept because the database has only the hash of a grower's link.
+ * @typedef {{ accounts: { role: string, email: string, password: string }[], growerPath: string | null }} DemoNotes
  */
 
 /** @param {DemoNotes} notes */
-export function writeDemoNotes(notes) {
-  writeFileSync(path, JSON.stringify(notes, null, 2), { mode: 0o600 });
+export function writeDemoNotes({ accounts, growerPath }) {
+  writeFileSync(path, JSON.stringify({ accounts, growerPath }, null, 2), { mode: 0o600 });
 }
 
-/** @returns {DemoNotes | null} null when this project's database holds no demo */
+/** @returns {DemoNotes | null} null when this project's own database has not been filled yet */
 export function readDemoNotes() {
   try {
     return JSON.parse(readFileSync(path, 'utf8'));
@@ -25,14 +26,18 @@ export function readDemoNotes() {
 
 /**
  * @param {DemoNotes} notes
- * @param {string} url of the running server
+ * @param {string} url where the client is served
  */
-export function printDemoNotes({ accounts, growerLink }, url) {
+export function printDemoNotes({ accounts, growerPath }, url) {
   const widthOf = (field) => Math.max(...accounts.map((account) => account[field].length));
   const [role, email] = [widthOf('role'), widthOf('email')];
   console.log('\nAccounts of the demo (role, e-mail, password):');
   for (const account of accounts) {
     console.log(`  ${account.role.padEnd(role)}  ${account.email.padEnd(email)}  ${account.password}`);
   }
-  console.log(`\nA grower's copy of the demo, without an account:\n  ${url}${growerLink}`);
+  if (growerPath !== null) {
+    console.log(
+      `\nA grower's copy from the demo, which needs no account:\n  ${new URL(growerPath, url).href}`,
+    );
+  }
 }
