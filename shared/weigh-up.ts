@@ -80,7 +80,10 @@ export const usedTrial = z.object({
 });
 export type UsedTrial = z.infer<typeof usedTrial>;
 
-export const leftOutTrial = usedTrial.extend({ reason: z.enum(['weak-cv', 'no-variance', 'not-connected']) });
+export const leftOutTrial = usedTrial.extend({
+  reason: z.enum(['weak-cv', 'no-variance', 'not-connected', 'set-aside']),
+});
+export type LeftOutTrial = z.infer<typeof leftOutTrial>;
 
 export const weighUpResult = z.object({
   /** no-trials: the region has none of the crop in these seasons, so there is no verdict at all. */

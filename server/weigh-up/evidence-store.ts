@@ -1,4 +1,4 @@
-import { and, asc, between, desc, eq, inArray, isNotNull } from 'drizzle-orm';
+import { and, asc, between, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
 import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
 import { sites } from '#drizzle/schema/geography.ts';
 import { entryMeans, trials, versionFits } from '#drizzle/schema/trials.ts';
@@ -58,6 +58,7 @@ function selectTrials(db: Database, scope: EvidenceScope): Promise<EvidenceTrial
       siteName: sites.name,
       season: trials.season,
       kind: trials.kind,
+      isStrips: sql<boolean>`${trials.design} = 'strips'`,
       management: trials.management,
     })
     .from(trials)
@@ -98,6 +99,7 @@ async function selectMeans(db: Database, versionIds: string[]): Promise<Evidence
       varietyId: entryMeans.varietyId,
       mean: entryMeans.mean,
       variance: entryMeans.variance,
+      df: entryMeans.df,
     })
     .from(entryMeans)
     .where(and(inArray(entryMeans.versionId, versionIds), isNotNull(entryMeans.varietyId)));

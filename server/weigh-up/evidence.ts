@@ -11,6 +11,7 @@ export type EvidenceTrial = {
   siteName: string;
   season: number;
   kind: 'plots' | 'summary';
+  isStrips: boolean;
   /** Whether the crop stood with fungicide or irrigation, as far as it was said. */
   management: Record<string, string | number | boolean>;
 };
@@ -34,6 +35,7 @@ export type EvidenceMean = {
   mean: number;
   /** Half the mean variance of the entry's differences; null where the trial has no error or the trait is a rating. */
   variance: number | null;
+  df: number | null;
 };
 
 export type EvidenceVariety = { id: string; name: string; isCheck: boolean };

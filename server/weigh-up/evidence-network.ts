@@ -1,0 +1,77 @@
+import type { Trait } from '#shared/catalogue.ts';
+import { defaultUsualVariances, type EvidenceNetwork, type NetworkCell } from '#server/stats/engine.ts';
+import type { Evidence, EvidenceMean, EvidenceTrial } from './evidence.ts';
+import { groupBy } from './group-by.ts';
+
+/** The trait that money and the headline verdict are about. */
+export const yieldSlug = 'yield';
+
+/** Lays the evidence out as the engine takes it: trials by id, entries by variety id, numeric traits only. */
+export function layOutNetwork(evidence: Evidence): EvidenceNetwork {
+  const yieldTrait = evidence.traits.find((trait) => trait.slug === yieldSlug);
+  const yieldFits = new Map(
+    evidence.fits.filter((fit) => fit.traitId === yieldTrait?.id).map((fit) => [fit.versionId, fit]),
+  );
+  return {
+    names: Object.fromEntries(evidence.varieties.map((variety) => [variety.id, variety.name])),
+    trials: evidence.trials.map((trial) => ({
+      trial: trial.trialId,
+      site: trial.siteId,
+      siteName: trial.siteName,
+      season: trial.season,
+      inRegion: true,
+      kind: trial.kind,
+      plotSize: trial.isStrips ? 'field-strips' : 'small-plots',
+      // A trial whose yields scatter too widely is doubtful in its other traits as well.
+      cvPercent: yieldFits.get(trial.versionId)?.cvPercent ?? null,
+      entryP: yieldFits.get(trial.versionId)?.entryP ?? null,
+      management: readManagement(trial),
+    })),
+    traits: evidence.traits
+      .filter((trait) => trait.kind === 'numeric')
+      .map((trait) => ({
+        trait: trait.slug,
+        better: trait.direction,
+        practicalMargin: trait.practicalMargin ?? 0,
+        usual: usualVariancesOf(trait, evidence.crop.typicalYield),
+        cells: layOutCells(evidence, trait.id),
+        cvLimitPercent: evidence.crop.cvLimitPercent,
+      })),
+  };
+}
+
+/** Only yield has values that are usual for the crop; other traits rest on the trials at hand. */
+function usualVariancesOf(trait: Trait, typicalYield: number) {
+  if (trait.slug !== yieldSlug) return null;
+  return { ...defaultUsualVariances(typicalYield), source: 'crop-default' as const };
+}
+
+/** What was said of practices that change the ranking of varieties. */
+function readManagement({ management }: EvidenceTrial): Record<string, string> {
+  return Object.fromEntries(
+    ['fungicide', 'irrigated'].flatMap((practice) => {
+      const said = management[practice];
+      return said === undefined || said === '' ? [] : [[practice, String(said)] as const];
+    }),
+  );
+}
+
+function layOutCells(evidence: Evidence, traitId: string): NetworkCell[] {
+  const trialOf = new Map(evidence.trials.map((trial) => [trial.versionId, trial.trialId]));
+  const own = evidence.means.filter((mean) => mean.traitId === traitId);
+  const cells = groupBy(own, (mean) => `${mean.versionId} ${mean.varietyId}`);
+  return [...cells.values()].flatMap((labels) => joinLabels(labels, trialOf));
+}
+
+/** One cell a variety and trial: a variety sown under two labels counts with the average of both. */
+function joinLabels(labels: readonly EvidenceMean[], trialOf: ReadonlyMap<string, string>): NetworkCell[] {
+  const [first] = labels;
+  const trial = first === undefined ? undefined : trialOf.get(first.versionId);
+  if (first === undefined || trial === undefined) return [];
+  const n = labels.length;
+  const mean = labels.reduce((sum, label) => sum + label.mean, 0) / n;
+  const variance = labels.some((label) => label.variance === null)
+    ? null
+    : labels.reduce((sum, label) => sum + (label.variance ?? 0), 0) / n ** 2;
+  return [{ entry: first.varietyId, trial, mean, variance, df: first.df }];
+}

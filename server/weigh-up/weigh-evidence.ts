@@ -1,0 +1,227 @@
+import { makeCaution, type Caution } from '#shared/caution.ts';
+import { weighMoney, type GapDistribution } from '#shared/money.ts';
+import type {
+  CandidateResult,
+  GapEstimate,
+  TraitVerdict,
+  UsedTrial,
+  WeighUpResult,
+} from '#shared/weigh-up.ts';
+import {
+  weighCandidates,
+  type CandidateGap,
+  type CandidateWeighing,
+  type EvidenceCaution,
+  type TraitWeighing,
+} from '#server/stats/engine.ts';
+import { engineVersion } from '#server/trials/trial-fit.ts';
+import { layOutNetwork, yieldSlug } from './evidence-network.ts';
+import type { Evidence } from './evidence.ts';
+import { cautionMoney } from './money-cautions.ts';
+import { compareRatings } from './ordinal-medians.ts';
+import type { Question } from './question.ts';
+
+/** Degrees of freedom beyond this are as good as infinite, which JSON cannot say. */
+const mostDf = 1e6;
+
+/** Answers a question from the evidence: pure, so that the same versions and assumptions give the same answer. */
+export function weighEvidence(evidence: Evidence, question: Question): WeighUpResult {
+  const weighed = weighCandidates(layOutNetwork(evidence), {
+    current: question.currentVarietyId,
+    candidates: question.candidateIds,
+    // One candidate is a planned pair; of several, the best is looked for.
+    kind: question.candidateIds.length === 1 ? 'pair' : 'best',
+    askedInSeason: question.askedAt.getUTCFullYear(),
+    margins: { [yieldSlug]: breakEvenMargins(question) },
+  });
+  const names = new Map(evidence.varieties.map((variety) => [variety.id, variety.name]));
+  const ground = { computedAt: question.askedAt.toISOString(), engineVersion };
+  const yields = weighed.traits.find((trait) => trait.trait === yieldSlug);
+  if (weighed.answer === 'no-trials' || yields === undefined) {
+    return {
+      ...ground,
+      answer: 'no-trials',
+      comparison: 'lsd',
+      sites: 0,
+      seasons: [],
+      trials: [],
+      leftOut: [],
+      components: null,
+      usualVariancesFrom: null,
+      candidates: [],
+      cautions: [...weighed.cautions.map(toCaution), makeCaution('local-advice', 'note', {})],
+    };
+  }
+  return {
+    ...ground,
+    answer: 'weighed',
+    comparison: yields.comparison,
+    sites: yields.sites,
+    seasons: [...yields.seasons],
+    ...listTrials(evidence, yields),
+    components: toDeviations(yields),
+    usualVariancesFrom: yields.fit?.usual ? 'crop-default' : null,
+    candidates: yields.candidates.map((weighing) =>
+      describeCandidate(evidence, question, names, weighed.traits, weighing),
+    ),
+    cautions: [
+      ...yields.cautions.map(toCaution),
+      ...cautionOtherTraits(weighed.traits),
+      ...cautionMoney(question, names),
+      makeCaution('local-advice', 'note', {}),
+    ],
+  };
+}
+
+/** By candidate, the size of its break-even gap: a gap smaller than that does not matter either. */
+function breakEvenMargins({ candidateIds, currentVarietyId, money }: Question): Record<string, number> {
+  if (money === null) return {};
+  return Object.fromEntries(
+    candidateIds.flatMap((id) => {
+      const result = weighMoney(id, currentVarietyId, 0, null, money);
+      return result === null ? [] : [[id, Math.abs(result.breakEvenGap)] as const];
+    }),
+  );
+}
+
+function describeCandidate(
+  evidence: Evidence,
+  question: Question,
+  names: ReadonlyMap<string, string>,
+  traits: readonly TraitWeighing[],
+  weighing: CandidateWeighing,
+): CandidateResult {
+  const { candidate: varietyId, gap } = weighing;
+  const varietyName = names.get(varietyId) ?? varietyId;
+  const { money, currentVarietyId } = question;
+  const moneyGap = gap === null ? null : chooseMoneyGap(gap, question.candidateIds.length > 1);
+  const isCosted = money?.seedCosts[varietyId] !== undefined;
+  return {
+    varietyId,
+    varietyName,
+    verdict: weighing.verdict ?? 'open',
+    gap: gap === null ? null : toGapEstimate(gap),
+    siteYears: weighing.siteYears,
+    sharedSiteYears: weighing.sharedSiteYears,
+    moneyGap,
+    money:
+      money === null || moneyGap === null
+        ? null
+        : weighMoney(varietyId, currentVarietyId, moneyGap.estimate, moneyGap, money),
+    siteYearsToSettle: weighing.siteYearsToSettle,
+    trials: weighing.trials
+      .map(({ trial, siteName, season, trialMean, estimate, interval }) => ({
+        trialId: trial,
+        siteName,
+        season,
+        trialMean,
+        estimate,
+        interval,
+      }))
+      .sort((a, b) => a.trialMean - b.trialMean),
+    traits: describeTraits(evidence, traits, varietyId, currentVarietyId),
+    cautions: [
+      ...weighing.cautions.map(toCaution),
+      ...(isCosted ? [] : [makeCaution('no-seed-cost', 'warning', { variety: varietyName })]),
+    ],
+  };
+}
+
+/** Where several were compared, the gap is pulled back for having been picked: engine.md, verdict and money. */
+function chooseMoneyGap(gap: CandidateGap, isPicked: boolean): GapDistribution {
+  const { ownSeason, shrunken } = gap;
+  const df = Math.min(ownSeason.df, mostDf);
+  return isPicked
+    ? { estimate: shrunken.estimate, se: shrunken.ownSeasonSe, df }
+    : { estimate: gap.estimate, se: ownSeason.se, df };
+}
+
+function toGapEstimate(gap: CandidateGap): GapEstimate {
+  return {
+    estimate: gap.estimate,
+    se: gap.se,
+    df: Math.min(gap.df, mostDf),
+    p: gap.pAdjusted,
+    region: gap.region,
+    ownSeason: { ...gap.ownSeason, df: Math.min(gap.ownSeason.df, mostDf) },
+    shrunken: gap.shrunken.estimate,
+  };
+}
+
+/** The other traits in the crop's order, each with its own verdict; ratings as medians. */
+function describeTraits(
+  evidence: Evidence,
+  weighed: readonly TraitWeighing[],
+  varietyId: string,
+  currentId: string,
+): TraitVerdict[] {
+  return evidence.traits.flatMap((trait): TraitVerdict[] => {
+    if (trait.slug === yieldSlug) return [];
+    if (trait.kind === 'ordinal') return [compareRatings(evidence, trait, varietyId, currentId)];
+    const weighing = weighed
+      .find((one) => one.trait === trait.slug)
+      ?.candidates.find((one) => one.candidate === varietyId);
+    if (weighing === undefined) return [];
+    return [
+      {
+        traitSlug: trait.slug,
+        kind: 'numeric',
+        verdict: weighing.verdict,
+        gap: weighing.gap === null ? null : toGapEstimate(weighing.gap),
+        siteYears: weighing.siteYears,
+        medianCandidate: null,
+        medianCurrent: null,
+      },
+    ];
+  });
+}
+
+/** Trials that the figures rest on and those that were left out, each as it stands in the list of trials. */
+function listTrials(evidence: Evidence, yields: TraitWeighing): Pick<WeighUpResult, 'trials' | 'leftOut'> {
+  const yieldId = evidence.traits.find((trait) => trait.slug === yieldSlug)?.id;
+  const fits = new Map(
+    evidence.fits.filter((fit) => fit.traitId === yieldId).map((fit) => [fit.versionId, fit]),
+  );
+  const used = new Map(
+    evidence.trials.map(
+      ({ trialId, versionId, name, siteName, season, version, sha256 }): [string, UsedTrial] => {
+        const fit = fits.get(versionId);
+        const figures = { meanYield: fit?.grandMean ?? null, cvPercent: fit?.cvPercent ?? null };
+        return [trialId, { trialId, name, siteName, season, version, sha256, ...figures }];
+      },
+    ),
+  );
+  return {
+    trials: yields.trials.flatMap((trialId) => used.get(trialId) ?? []),
+    leftOut: yields.leftOut.flatMap(({ trial, reason }) => {
+      const about = used.get(trial);
+      return about === undefined ? [] : [{ ...about, reason }];
+    }),
+  };
+}
+
+function toDeviations({ fit }: TraitWeighing): WeighUpResult['components'] {
+  if (fit === null) return null;
+  const { site, year, rest } = fit.components;
+  return { site: Math.sqrt(site), season: Math.sqrt(year), rest: Math.sqrt(rest) };
+}
+
+/** Sentences about one trial of several name it. */
+const namedCodes: ReadonlySet<string> = new Set(['trial-weak-cv', 'trial-f-not-significant']);
+
+function toCaution({ code, severity, numbers }: EvidenceCaution): Caution {
+  return {
+    code,
+    severity,
+    values: namedCodes.has(code) ? { ...numbers, context: 'named' } : { ...numbers },
+  };
+}
+
+/** Traits without usual variances rest on the trials alone: said once, however many they are. */
+function cautionOtherTraits(traits: readonly TraitWeighing[]): Caution[] {
+  const found = traits
+    .filter((trait) => trait.trait !== yieldSlug)
+    .flatMap((trait) => trait.cautions.filter((caution) => caution.code === 'no-usual-variance'));
+  const gravest = found.find((caution) => caution.severity === 'warning') ?? found[0];
+  return gravest === undefined ? [] : [toCaution(gravest)];
+}

@@ -1,0 +1,47 @@
+import type { Router } from 'express';
+import type { Me } from '#shared/account.ts';
+import { CodedError } from '#shared/error-codes.ts';
+import { changeWeighUp, createWeighUp, listCandidates, listWeighUps, readWeighUp } from '#shared/weigh-up.ts';
+import type { Database } from '#server/db.ts';
+import { requireMe, route } from '#server/route.ts';
+import { answerWeighUp, rankCandidates } from './answer-question.ts';
+import { insertWeighUp, listOwnWeighUps, readOwnWeighUp, updateWeighUp } from './weigh-up-store.ts';
+
+export function addWeighUpRoutes(router: Router, db: Database): void {
+  route(router, listCandidates, async ({ me, query }) => {
+    requireOwnRegion(requireMe(me), query.regionId);
+    return rankCandidates(db, query);
+  });
+
+  route(router, listWeighUps, async ({ me }) => ({ weighUps: await listOwnWeighUps(db, requireMe(me).id) }));
+
+  route(router, createWeighUp, async ({ me, body }) => {
+    const owner = requireMe(me);
+    requireOwnRegion(owner, body.regionId);
+    return { weighUp: await insertWeighUp(db, owner.id, body) };
+  });
+
+  route(router, readWeighUp, async ({ me, params }) => {
+    const weighUp = await readOwnWeighUp(db, requireMe(me).id, params.weighUpId);
+    const { result } = await answerWeighUp(db, weighUp);
+    return { weighUp, result };
+  });
+
+  route(router, changeWeighUp, async ({ me, params, body }) => {
+    const owner = requireMe(me);
+    await readOwnWeighUp(db, owner.id, params.weighUpId);
+    requireOwnRegion(owner, body.weighUp.regionId);
+    const weighUp = await updateWeighUp(db, owner.id, params.weighUpId, body.revision, body.weighUp);
+    const { result } = await answerWeighUp(db, weighUp);
+    return { weighUp, result };
+  });
+}
+
+/**
+ * New questions are asked in one's own regions. What was weighed before a region was taken away stays readable:
+ * the grower holds a copy of it.
+ * @throws CodedError region-not-yours
+ */
+function requireOwnRegion(me: Me, regionId: string): void {
+  if (!me.regionIds.includes(regionId)) throw new CodedError('region-not-yours');
+}
