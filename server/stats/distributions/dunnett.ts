@@ -1,35 +1,107 @@
+import { equicoordinateTail } from './equicoordinate.ts';
+import { latticeDifference } from './equicoordinate-lattice.ts';
 import { findUpperQuantile } from './find-root.ts';
-import { normalUpper } from './normal.ts';
+import { type Correlation, fitOneFactor, type OneFactor } from './one-factor.ts';
 import { averageOverScale } from './scale-average.ts';
-import { tabulateTail, type ScaledTail } from './scaled-tail.ts';
+import { type ScaledTail, tabulateTail } from './scaled-tail.ts';
 
-/** Correlations of m comparisons with one check: m rows of length m. */
-export type Correlation = readonly ArrayLike<number>[];
+/** How the probability was found: exactly, by expansion around one shared factor, or by a lattice rule as well. */
+export type DunnettMethod = 'product-form' | 'expansion' | 'lattice';
+
+/** Adjusted p values, the method, and the largest error to expect in any of them. */
+export interface DunnettResult {
+  readonly p: Float64Array;
+  readonly method: DunnettMethod;
+  readonly maxError: number;
+}
+
+const DECAY = 0.5;
+/** Correlations this near to λ_i λ_j are taken as equal: the effect on p is smaller still. */
+const EXACT_REST = 1e-9;
+const QUADRATURE_ERROR = 1e-9;
+/** Error above which the lattice is asked: absolute, and as a part of p. */
+const ERROR_ALLOWED = 1e-5;
+const SHARE_ALLOWED = 1e-3;
+const LATTICE_TARGET = 1e-6;
+
+/** P(max |Z_i| > w) tabulated, and what a p at t may be wrong by. */
+interface FamilyTail {
+  readonly factor: OneFactor;
+  readonly isExact: boolean;
+  readonly tail: ScaledTail;
+  readonly errorAt: (t: number) => number;
+}
+
+function buildFamilyTail(correlation: Correlation): FamilyTail {
+  const factor = fitOneFactor(correlation);
+  const { largestRest } = factor;
+  const isExact = largestRest <= EXACT_REST;
+  const evaluate = equicoordinateTail(factor, true, !isExact);
+  // The estimated scale moves w around t.
+  const errorAt = (t: number): number =>
+    isExact ? 0 : Math.max(...[0.7, 1, 1.3].map((scale) => evaluate(t * scale).error));
+  return { factor, isExact, tail: tabulateTail((w) => evaluate(w).upper, DECAY), errorAt };
+}
+
+/** P(max |T_i| > t) with what it may be wrong by; the lattice is asked only where the expansion is not enough. */
+function adjustOne(
+  family: FamilyTail,
+  correlation: Correlation,
+  t: number,
+  df: number,
+): { readonly p: number; readonly error: number; readonly usesLattice: boolean } {
+  const p = averageOverScale(family.tail, t, df);
+  const error = QUADRATURE_ERROR + family.errorAt(t);
+  if (error <= ERROR_ALLOWED + SHARE_ALLOWED * p) return { p, error, usesLattice: false };
+  const approximate = averageOverScale(oneFactorTail(family.factor), t, df);
+  const difference = latticeDifference(correlation, family.factor, t, df, LATTICE_TARGET);
+  // The lattice replaces the expansion only where it knows better.
+  if (difference.error >= error) return { p, error, usesLattice: false };
+  const corrected = Math.min(1, Math.max(0, approximate + difference.mean));
+  return { p: corrected, error: difference.error, usesLattice: true };
+}
+
+/** The exact tail of the one-factor approximation alone. */
+function oneFactorTail(factor: OneFactor): ScaledTail {
+  const evaluate = equicoordinateTail(factor, true, false);
+  return { decay: DECAY, scaled: (w) => evaluate(w).upper * Math.exp(DECAY * w * w) };
+}
 
 /**
  * Adjusted two-sided p values of a single-step comparison of several entries with one check.
  * @param family.ts estimates divided by their standard errors, length m; signs are ignored
  * @param family.df degrees of freedom, fractional or Infinity: one for all, or one for each comparison
- * @param family.correlation of the estimates
+ * @param family.correlation of the estimates, m × m
  * @returns p in the order of ts, the method, and the largest error to expect of a p
+ * @throws RangeError when a correlation, t or df is out of range
+ * Source: Dunnett (1955), J. Amer. Statist. Assoc. 50:1096–1121.
  */
 export function dunnettAdjust(family: {
   readonly ts: ArrayLike<number>;
   readonly df: number | ArrayLike<number>;
   readonly correlation: Correlation;
-}): { readonly p: Float64Array; readonly method: 'product-form' | 'lattice'; readonly maxError: number } {
+}): DunnettResult {
   const { ts, df, correlation } = family;
-  const tail = productTail(factorLoadings(correlation));
-  const p = Float64Array.from(ts, (t, i) =>
-    averageOverScale(tail, Math.abs(t), typeof df === 'number' ? df : (df[i] ?? Number.NaN)),
+  if (ts.length !== correlation.length)
+    throw new RangeError(`${ts.length} estimates, ${correlation.length} correlations`);
+  const tail = buildFamilyTail(correlation);
+  const rows = Array.from(ts, (t, i) =>
+    adjustOne(tail, correlation, Math.abs(t), typeof df === 'number' ? df : (df[i] ?? 0)),
   );
-  return { p, method: 'product-form', maxError: 1e-10 };
+  const inexact = rows.some((row) => row.usesLattice) ? 'lattice' : 'expansion';
+  return {
+    p: Float64Array.from(rows, (row) => row.p),
+    method: tail.isExact ? 'product-form' : inexact,
+    maxError: rows.reduce((worst, row) => Math.max(worst, row.error), 0),
+  };
 }
 
 /**
- * The d with P(max |T| > d) = alpha.
+ * The d with P(max |T| > d) = alpha: the critical value of two-sided comparisons with one check.
  * @param family.alpha in (0, 1)
  * @param family.df degrees of freedom, fractional or Infinity
+ * @param family.correlation of the estimates, m × m
+ * @throws RangeError when an argument is out of range
  */
 export function dunnettQuantile(family: {
   readonly alpha: number;
@@ -37,44 +109,11 @@ export function dunnettQuantile(family: {
   readonly correlation: Correlation;
 }): number {
   const { alpha, df, correlation } = family;
-  const tail = productTail(factorLoadings(correlation));
-  return findUpperQuantile((d) => averageOverScale(tail, d, df), alpha, 2);
-}
-
-/** Loadings λ with ρ_ij = λ_i λ_j. */
-function factorLoadings(correlation: Correlation): Float64Array {
-  const m = correlation.length;
-  const at = (i: number, j: number): number => correlation[i]?.[j] ?? 0;
-  if (m === 1) return Float64Array.of(0);
-  if (m === 2) {
-    const rho = at(0, 1);
-    const size = Math.sqrt(Math.abs(rho));
-    return Float64Array.of(size, size * Math.sign(rho));
-  }
-  return Float64Array.from({ length: m }, (_, i) => {
-    const j = (i + 1) % m;
-    const k = (i + 2) % m;
-    return Math.sqrt(Math.abs((at(i, j) * at(i, k)) / at(j, k)));
-  });
-}
-
-/** P(max |Z_i| > w) for correlations λ_i λ_j: independent given the shared factor z. */
-function productTail(loadings: Float64Array): ScaledTail {
-  const largest = loadings.reduce((max, l) => Math.max(max, Math.abs(l)), 0);
-  const step = 0.25 * Math.min(1, Math.sqrt(1 - largest * largest) / Math.max(largest, 1e-9));
-  const upper = (w: number): number => {
-    const last = Math.ceil((largest * w + 8.6) / step);
-    let sum = 0;
-    for (let j = 0; j <= last; j += 1) {
-      const z = j * step;
-      let inside = 0;
-      for (const l of loadings) {
-        const spread = Math.sqrt(1 - l * l);
-        inside += Math.log1p(-normalUpper((w - l * z) / spread) - normalUpper((w + l * z) / spread));
-      }
-      sum += (j === 0 ? 0.5 : 1) * Math.exp(-0.5 * z * z) * -Math.expm1(inside);
-    }
-    return Math.min(1, 2 * sum * step * 0.3989422804014327);
-  };
-  return tabulateTail(upper, 0.5);
+  if (!(alpha > 0 && alpha < 1)) throw new RangeError(`a tail must lie between 0 and 1, got ${alpha}`);
+  const tail = buildFamilyTail(correlation);
+  const solve = (shift: number): number =>
+    findUpperQuantile((d) => averageOverScale(tail.tail, d, df) + shift, alpha, 2);
+  const first = solve(0);
+  const there = adjustOne(tail, correlation, first, df);
+  return there.usesLattice ? solve(there.p - alpha) : first;
 }

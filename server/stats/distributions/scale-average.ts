@@ -17,6 +17,9 @@ const NEGLIGIBLE = 1e-17;
  */
 export function averageOverScale(tail: ScaledTail, q: number, df: number, step = 1): number {
   const { decay } = tail;
+  if (!(df > 0)) throw new RangeError(`degrees of freedom must be positive, got ${df}`);
+  if (Number.isNaN(q)) throw new RangeError('q is not a number');
+  if (q === Infinity) return 0;
   if (df === Infinity || q === 0) return tail.scaled(q) * Math.exp(-decay * q * q);
   const a = df / 2;
   const constant = Math.LN2 + logGammaConstant(a);
