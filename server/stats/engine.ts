@@ -19,7 +19,15 @@ export type { InteractionVariances, TrialCell } from './network/network-cell.ts'
 export { synthesisePair, type PairEffect, type PairSynthesis } from './network/pair-synthesis.ts';
 export { weighCandidates } from './network/weigh-candidates.ts';
 export { chanceAbove, chanceOver } from './network/gap-chance.ts';
-export { defaultUsualVariances } from './network/usual-variances.ts';
+export { defaultUsualVariances } from './network/interaction-variances.ts';
 export type * from './network/weigh-question.ts';
 export type * from './network/weigh-result.ts';
 export type { EvidenceTier } from './network/evidence-tier.ts';
+export { analyseStability, type StabilityAnalysis, type StabilityRefused } from './network/stability.ts';
+export { fitGapLine, readGapAt, type GapLine, type GapPoint, type NoGapLine } from './network/gap-line.ts';
+export {
+  estimateUsualVariances,
+  NEEDED_FOR_USUAL,
+  type UsualEstimate,
+  type NoUsualEstimate,
+} from './network/usual-variances.ts';

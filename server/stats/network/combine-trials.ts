@@ -12,7 +12,7 @@ import {
 import { frameNetwork, type NetworkFrame } from './network-frame.ts';
 import { intervalAround, measureGap } from './network-gap.ts';
 import { shrinkEffects, type ShrunkenEffects } from './shrunken-effects.ts';
-import { defaultUsualVariances, totalVariance } from './usual-variances.ts';
+import { defaultUsualVariances, totalVariance } from './interaction-variances.ts';
 
 export interface CombineOptions {
   /** ν of the penalty; 0 is plain REML. Default 3. */

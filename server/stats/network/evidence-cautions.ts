@@ -1,6 +1,6 @@
 import type { InteractionVariances } from './network-cell.ts';
 import type { TrialTable } from './trial-lines.ts';
-import { totalVariance } from './usual-variances.ts';
+import { totalVariance } from './interaction-variances.ts';
 import type {
   EvidenceCaution,
   EvidenceCautionCode,

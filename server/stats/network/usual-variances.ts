@@ -1,25 +1,82 @@
-import type { InteractionVariances } from './network-cell.ts';
+import { chiSquareUpper } from '#server/stats/distributions/chi-square.ts';
+import { findUpperQuantile } from '#server/stats/distributions/find-root.ts';
+import { estimateEntries, type EntryEstimates } from './entry-estimates.ts';
+import { fitNetwork } from './fit-network.ts';
+import { interactionTerms, type InteractionVariances, type TrialCell } from './network-cell.ts';
+import { frameNetwork } from './network-frame.ts';
+import { shrinkEffects } from './shrunken-effects.ts';
+import { totalVariance } from './interaction-variances.ts';
 
-/** Usual standard deviations of a new installation, in % of the crop's mean yield; our judgement from open data. */
-export const DEFAULT_USUAL_PERCENT: InteractionVariances = { site: 3, year: 2.5, rest: 5 };
+/** What own trials must hold before they replace the crop's default. */
+export const NEEDED_FOR_USUAL = { environments: 10, seasons: 3, entries: 12 } as const;
 
-/** The default usual variances at a mean level, unit of the mean squared. */
-export function defaultUsualVariances(mean: number): InteractionVariances {
-  const square = (percent: number): number => ((percent / 100) * mean) ** 2;
+/** A term at 0 is given this share of all of them, since a penalty needs something to lean on. */
+const LEAST_SHARE = 0.05;
+
+export interface UsualEstimate {
+  readonly outcome: 'estimated';
+  readonly variances: InteractionVariances & { readonly entry: number };
+  /** 95 %, by a scaled χ² with the variance's own df; null for a term at its least share */
+  readonly intervals: Readonly<Record<keyof InteractionVariances, readonly [number, number] | null>>;
+  readonly environments: number;
+  readonly seasons: number;
+  readonly entries: number;
+}
+
+export interface NoUsualEstimate {
+  readonly outcome: 'not-enough' | 'not-fitted';
+  readonly environments: number;
+  readonly seasons: number;
+  readonly entries: number;
+}
+
+function intervalOf(variance: number, spread: number): readonly [number, number] {
+  const df = (2 * variance * variance) / spread;
+  const quantile = (tail: number): number => findUpperQuantile((x) => chiSquareUpper(x, df), tail, df);
+  return [(df * variance) / quantile(0.025), (df * variance) / quantile(0.975)];
+}
+
+function describeVariances({
+  fit,
+  thetaCovariance,
+}: EntryEstimates): Pick<UsualEstimate, 'intervals'> & { variances: InteractionVariances } {
+  const total = fit.point.theta.reduce((sum, x) => sum + x, 0);
+  const meanVariance = fit.frame.v.reduce((sum, x) => sum + x, 0) / fit.frame.cellCount;
+  const least = LEAST_SHARE * (total > 0 ? total : meanVariance);
+  const values = interactionTerms.map((_, k) => Math.max(fit.point.theta[k]!, least));
+  const intervals = interactionTerms.map((_, k) =>
+    fit.point.theta[k]! > least ? intervalOf(fit.point.theta[k]!, thetaCovariance[k * 4]!) : null,
+  );
   return {
-    site: square(DEFAULT_USUAL_PERCENT.site),
-    year: square(DEFAULT_USUAL_PERCENT.year),
-    rest: square(DEFAULT_USUAL_PERCENT.rest),
+    variances: { site: values[0]!, year: values[1]!, rest: values[2]! },
+    intervals: { site: intervals[0]!, year: intervals[1]!, rest: intervals[2]! },
   };
 }
 
-export function totalVariance({ site, year, rest }: InteractionVariances): number {
-  return site + year + rest;
-}
-
-export function scaleVariances(
-  { site, year, rest }: InteractionVariances,
-  factor: number,
-): InteractionVariances {
-  return { site: site * factor, year: year * factor, rest: rest * factor };
+/**
+ * Usual variances of a crop's trait from an organisation's own trials, by plain REML.
+ * @param cells of all its trials of the crop, unit of the trait
+ */
+export function estimateUsualVariances(cells: readonly TrialCell[]): UsualEstimate | NoUsualEstimate {
+  const frame = cells.length === 0 ? null : frameNetwork(cells);
+  const counts = {
+    environments: frame?.environments.length ?? 0,
+    seasons: frame?.yearCount ?? 0,
+    entries: frame?.entries.length ?? 0,
+  };
+  const { environments, seasons, entries } = NEEDED_FOR_USUAL;
+  if (
+    frame === null ||
+    counts.environments < environments ||
+    counts.seasons < seasons ||
+    counts.entries < entries
+  )
+    return { outcome: 'not-enough', ...counts };
+  const fit = fitNetwork(frame, null);
+  if (fit.outcome === 'not-fitted' || fit.dropped.length > 0) return { outcome: 'not-fitted', ...counts };
+  const estimates = estimateEntries(fit);
+  const { variances, intervals } = describeVariances(estimates);
+  const between = shrinkEffects(estimates, totalVariance(variances)).entryVariances;
+  const entry = Math.max(...between, LEAST_SHARE * totalVariance(variances));
+  return { outcome: 'estimated', variances: { ...variances, entry }, intervals, ...counts };
 }

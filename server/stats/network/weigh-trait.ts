@@ -11,7 +11,7 @@ import { synthesisePair, type PairSynthesis } from './pair-synthesis.ts';
 import { shrinkEffects } from './shrunken-effects.ts';
 import { countSiteYearsToSettle } from './site-years-to-settle.ts';
 import { drawTrialLines } from './trial-lines.ts';
-import { scaleVariances, totalVariance } from './usual-variances.ts';
+import { scaleVariances, totalVariance } from './interaction-variances.ts';
 import type {
   CandidateGap,
   EvidenceNetwork,
