@@ -1,0 +1,46 @@
+import type { Language, Me } from '#shared/account.ts';
+import type { GrowerCopyLine, GrowerCopySnapshot } from '#shared/grower-copy.ts';
+import type { Database } from '#server/db.ts';
+import { answerWeighUp } from '#server/weigh-up/answer-question.ts';
+import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
+import { insertCopy } from './grower-copy-store.ts';
+import { makeLinkSecret } from './link-secret.ts';
+
+export type CopyWish = { language: Language; validDays: number };
+
+/**
+ * Freezes a weigh-up as it is now behind a new link.
+ * @returns the copy, and the path that holds the link's secret: it is told here and nowhere again
+ * @throws CodedError not-found, also for somebody else's weigh-up
+ */
+export async function makeCopy(
+  db: Database,
+  advisor: Pick<Me, 'id' | 'name' | 'email'>,
+  weighUpId: string,
+  wish: CopyWish,
+): Promise<{ copy: GrowerCopyLine; path: string }> {
+  const snapshot = await takeSnapshot(db, advisor, weighUpId);
+  const secret = makeLinkSecret();
+  const copy = await insertCopy(db, { ...wish, weighUpId, secret, snapshot, createdBy: advisor.id });
+  return { copy, path: `/copy/${secret}` };
+}
+
+/** Everything the copy will show, as it is now. */
+async function takeSnapshot(
+  db: Database,
+  advisor: Pick<Me, 'id' | 'name' | 'email'>,
+  weighUpId: string,
+): Promise<GrowerCopySnapshot> {
+  const weighUp = await readOwnWeighUp(db, advisor.id, weighUpId);
+  const { result, traits } = await answerWeighUp(db, weighUp);
+  return {
+    format: 1,
+    weighUp,
+    result,
+    traits,
+    advisorName: advisor.name,
+    advisorEmail: advisor.email,
+    madeAt: new Date().toISOString(),
+    engineVersion: result.engineVersion,
+  };
+}
