@@ -4,6 +4,9 @@ import type { TrialDesign } from '#shared/trial.ts';
 
 type SummaryColumn = TrialContent['summary'][number];
 
+/** Printed figures carry two digits or so: what differs by more than this share is not rounding. */
+const contradictionShare = 0.15;
+
 /** A published table with its error recovered. */
 export type SummaryAnalysis = {
   grandMean: number;
@@ -13,6 +16,8 @@ export type SummaryAnalysis = {
   cvPercent: number | null;
   lsd: number | null;
   recoveredFrom: 'lsd' | 'cv' | 'se' | 'residual-ms' | null;
+  /** The printed LSD and the one that the table's CV leads to, where they do not agree. */
+  contradiction: { given: number; expected: number } | null;
 };
 
 /**
@@ -41,6 +46,7 @@ export function analyseSummaryColumn(
         ? null
         : tQuantileUpper(alpha / 2, errorDf) * Math.sqrt((2 * residualMs) / replicates),
     recoveredFrom: found?.from ?? null,
+    contradiction: findContradiction(column, replicates, grandMean, errorDf),
   };
 }
 
@@ -60,6 +66,19 @@ function recover(
   if (column.cvPercent !== null)
     return { residualMs: ((column.cvPercent / 100) * grandMean) ** 2, from: 'cv' };
   return null;
+}
+
+/** A printed LSD and the CV printed beside it must lead to each other, as far as rounding and unequal columns allow. */
+function findContradiction(
+  { lsd, lsdAlpha, cvPercent }: SummaryColumn,
+  replicates: number,
+  grandMean: number,
+  errorDf: number,
+): SummaryAnalysis['contradiction'] {
+  if (lsd === null || lsdAlpha === null || cvPercent === null) return null;
+  const sed = (cvPercent / 100) * grandMean * Math.sqrt(2 / replicates);
+  const expected = tQuantileUpper(lsdAlpha / 2, errorDf) * sed;
+  return Math.abs(lsd - expected) > contradictionShare * expected ? { given: lsd, expected } : null;
 }
 
 function assumeErrorDf(entries: number, replicates: number, design: TrialDesign): number {

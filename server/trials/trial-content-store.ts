@@ -92,6 +92,37 @@ export async function loadTrialContent(db: DatabaseOrTransaction, trialId: strin
   };
 }
 
+/** What a view of a version needs beside its content; the trial's working copy is not read whole. */
+export type TrialSurroundings = {
+  createdBy: string | null;
+  cvLimitPercent: number;
+  traits: readonly ContentTrait[];
+  plotIds: ReadonlyMap<string, string>;
+};
+
+/** @throws CodedError not-found */
+export async function readTrialSurroundings(
+  db: DatabaseOrTransaction,
+  trialId: string,
+): Promise<TrialSurroundings> {
+  const [head] = await db
+    .select({ cropId: crops.id, cvLimitPercent: crops.cvLimitPercent, createdBy: trials.createdBy })
+    .from(trials)
+    .innerJoin(crops, eq(crops.id, trials.cropId))
+    .where(eq(trials.id, trialId));
+  if (head === undefined) throw new CodedError('not-found');
+  const plotRows = await db
+    .select({ id: plots.id, plotNumber: plots.plotNumber })
+    .from(plots)
+    .where(eq(plots.trialId, trialId));
+  return {
+    createdBy: head.createdBy,
+    cvLimitPercent: head.cvLimitPercent,
+    traits: await readCropTraits(db, head.cropId),
+    plotIds: new Map(plotRows.map((row) => [row.plotNumber, row.id])),
+  };
+}
+
 /** The traits of a crop in their order. */
 export function readCropTraits(db: DatabaseOrTransaction, cropId: string): Promise<ContentTrait[]> {
   return db
