@@ -35,7 +35,7 @@ export function buildClient(projectRoot) {
  */
 export function buildServer(projectRoot) {
   return buildWhenChanged(projectRoot, 'server', serverSources, async () => {
-    const { build } = await import('esbuild');
+    const { build, stop } = await import('esbuild');
     try {
       await build({
         absWorkingDir: projectRoot,
@@ -54,6 +54,8 @@ export function buildServer(projectRoot) {
       throw new SetupError('The server could not be built.', 'npx tsc -b tells where its source is wrong.', {
         output: error.message,
       });
+    } finally {
+      await stop();
     }
   });
 }

@@ -11,9 +11,9 @@ import { SetupError } from './setup-error.mjs';
  */
 export async function ensurePackages(projectRoot) {
   if (arePackagesCurrent(projectRoot)) return false;
-  return withProcessLock(join(projectRoot, '.local', 'packages.lock'), async () => {
+  return withProcessLock(join(projectRoot, '.local', 'packages.lock'), async (addHolder) => {
     if (arePackagesCurrent(projectRoot)) return false;
-    await installPackages(projectRoot);
+    await installPackages(projectRoot, addHolder);
     return true;
   });
 }
@@ -41,7 +41,7 @@ function readLock(path) {
   }
 }
 
-async function installPackages(projectRoot) {
+async function installPackages(projectRoot, onStart) {
   // With NODE_ENV=production npm would leave out what builds the client.
   const { NODE_ENV: _left, ...env } = process.env;
   const npm = process.env.npm_execpath;
@@ -50,6 +50,7 @@ async function installPackages(projectRoot) {
     cwd: projectRoot,
     env,
     isEndable: true,
+    onStart,
   });
   if (code === 0) return;
   throw new SetupError(

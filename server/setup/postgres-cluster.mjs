@@ -12,6 +12,7 @@ import {
 import { createServer } from 'node:net';
 import { spawnSync } from 'node:child_process';
 import { join } from 'node:path';
+import { setTimeout as sleep } from 'node:timers/promises';
 import { buildCommandAs } from './postgres-account.mjs';
 import { runProgram } from './run-program.mjs';
 import { SetupError } from './setup-error.mjs';
@@ -40,18 +41,20 @@ export function readDataVersion(folder) {
  * Makes the data folder and the empty database. What an interrupted attempt left is removed first: the data folder
  * gets its name only when it is whole.
  * @param {Cluster} cluster
+ * @param {(pid: number) => void} [onStart] told of the program that makes the folder
  */
-export async function initCluster(cluster) {
+export async function initCluster(cluster, onStart) {
   const { folder, account, programs, isThrowaway } = cluster;
   const making = join(folder, 'data-making');
   rmSync(making, { recursive: true, force: true });
   mkdirSync(making, { mode: 0o700 });
   writeFileSync(passwordOf(cluster), randomBytes(24).toString('base64url'), { mode: 0o600 });
   giveTo(account, making, passwordOf(cluster));
-  const made = await runAs(cluster, 'initdb', [
+  const args = [
     ...['-D', making, '-U', superuser, '--pwfile', passwordOf(cluster), '-A', 'scram-sha-256'],
     ...['-E', 'UTF8', '--locale=C.UTF-8', ...(isThrowaway ? ['-N'] : [])],
-  ]);
+  ];
+  const made = await runAs(cluster, 'initdb', args, { onStart });
   if (made.code !== 0) throw buildFailure('PostgreSQL could not make its data folder.', folder, made.output);
   const named = await runProgram(
     ...withInput(
@@ -87,7 +90,10 @@ function buildFailure(message, folder, output) {
  */
 export async function startCluster(cluster) {
   const running = readRunningPort(cluster.folder);
-  if (running !== null) return { url: buildUrl(cluster.folder, running), wasRunning: true };
+  if (running !== null) {
+    await waitUntilReady(cluster);
+    return { url: buildUrl(cluster.folder, running), wasRunning: true };
+  }
   rmSync(join(dataOf(cluster), 'postmaster.pid'), { force: true });
   for (let attempt = 1; ; attempt += 1) {
     writeFileSync(logOf(cluster), '', { mode: 0o600 });
@@ -101,6 +107,21 @@ export async function startCluster(cluster) {
     const wasPortTaken = output.includes('Address already in use');
     if (!wasPortTaken || attempt === 5)
       throw buildFailure('PostgreSQL did not start.', cluster.folder, output);
+  }
+}
+
+/** A start that was killed may have left PostgreSQL still on its way up: its pid file's eighth line says `ready`. */
+async function waitUntilReady(cluster) {
+  const giveUpAt = Date.now() + 60_000;
+  while (!/^ready/m.test(readFileSync(join(dataOf(cluster), 'postmaster.pid'), 'utf8'))) {
+    if (Date.now() > giveUpAt) {
+      throw buildFailure(
+        'PostgreSQL did not get ready.',
+        cluster.folder,
+        readFileSync(logOf(cluster), 'utf8'),
+      );
+    }
+    await sleep(50);
   }
 }
 

@@ -33,12 +33,12 @@ export async function openPrivateCluster(projectRoot) {
   opened += 1;
   const own = join(users, `${process.pid}-${opened}`);
 
-  return withProcessLock(lock, async () => {
+  return withProcessLock(lock, async (addHolder) => {
     const dataVersion = readDataVersion(folder);
     const programs = await requirePostgres(dataVersion, folder);
     const account = choosePostgresAccount(folder);
     const cluster = { folder, programs, account, isThrowaway: false };
-    if (dataVersion === null) await initCluster(cluster);
+    if (dataVersion === null) await initCluster(cluster, addHolder);
     dropDeadUsers(users);
     writeFileSync(own, markProcess());
     const { url, wasRunning } = await startCluster(cluster);

@@ -36,17 +36,22 @@ function readStartTime(pid) {
 }
 
 /**
- * Does some work while no other process does work under the same lock file. A lock whose holder died is taken over.
+ * Does some work while no other process does work under the same lock file. A lock whose holders died is taken over.
  * @template T
  * @param {string} path of the lock file
- * @param {() => Promise<T>} work
+ * @param {(addHolder: (pid: number) => void) => Promise<T>} work may add programs that it starts: they hold the lock
+ *   as well, should this process be killed before them
  * @returns {Promise<T>}
  * @throws SetupError when another process holds the lock for ten minutes
  */
 export async function withProcessLock(path, work) {
   await takeLock(path);
   try {
-    return await work();
+    return await work((pid) => {
+      const own = `${path}.${process.pid}`;
+      writeFileSync(own, `${readFileSync(path, 'utf8')}\n${markProcess(pid)}`);
+      renameSync(own, path);
+    });
   } finally {
     rmSync(path, { force: true });
   }
@@ -84,7 +89,7 @@ function dropDeadLock(path) {
   } catch {
     return;
   }
-  if (isProcessAlive(holder)) return;
+  if (holder.split('\n').some(isProcessAlive)) return;
   const aside = `${path}.dead.${process.pid}`;
   try {
     renameSync(path, aside);
