@@ -24,6 +24,8 @@ export type GapStripRow = {
   breakEven: number | null;
   /** Beside the strip: return per hectare, trials, cautions. */
   aside?: ReactNode;
+  /** Under the strip, over the whole width: the row's story when it is open. */
+  below?: ReactNode;
 };
 
 type GapStripProps = {
@@ -89,7 +91,9 @@ function StripRow({ row, scale, currentName, unit, decimals }: { row: GapStripRo
   return (
     <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-3 @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
       <div>
-        <h3 className="text-lg font-bold">{row.head ?? row.name}</h3>
+        <h3 className="text-lg font-bold [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
+          {row.head ?? row.name}
+        </h3>
         <VerdictMark verdict={row.verdict} className="text-sm" />
       </div>
       <div className="relative col-span-2 row-start-2 py-6 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1">

@@ -1,0 +1,45 @@
+import { weighMoney, type MoneyAssumptions } from './money.ts';
+import type { Interval, VerdictCode } from './verdict.ts';
+import type { CandidateResult } from './weigh-up.ts';
+
+/**
+ * The verdict on yield once the break-even gap has moved: gaps smaller than what pays for the seed do not matter, so
+ * the margin is the larger of the crop's practical margin and the break-even gap. A sure side and `thin` stay.
+ * @param region interval of the region's average, t/ha
+ * @param practicalMargin t/ha
+ */
+export function rejudgeYield(
+  verdict: VerdictCode,
+  region: Interval,
+  practicalMargin: number,
+  breakEvenGap: number | null,
+): VerdictCode {
+  if (verdict !== 'level' && verdict !== 'open') return verdict;
+  const margin = Math.max(practicalMargin, Math.abs(breakEvenGap ?? 0));
+  return region.low > -margin && region.high < margin ? 'level' : 'open';
+}
+
+/**
+ * The candidates under other money: the same gaps, with return, chance and the verdicts that hang on them anew.
+ * Runs in the page at every edit; nothing statistical is estimated here.
+ * @param practicalMargin of yield for the crop, t/ha; null where none is set
+ */
+export function reckonCandidates(
+  candidates: readonly CandidateResult[],
+  currentVarietyId: string,
+  money: MoneyAssumptions,
+  practicalMargin: number | null,
+): CandidateResult[] {
+  return candidates.map((candidate) => {
+    const { gap, moneyGap } = candidate;
+    if (gap === null || moneyGap === null) return { ...candidate, money: null };
+    const reckoned = weighMoney(candidate.varietyId, currentVarietyId, moneyGap.estimate, moneyGap, money);
+    const verdict = rejudgeYield(
+      candidate.verdict,
+      gap.region,
+      practicalMargin ?? 0,
+      reckoned?.breakEvenGap ?? null,
+    );
+    return { ...candidate, money: reckoned, verdict };
+  });
+}

@@ -1,0 +1,91 @@
+import type { ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
+import type { TrialAnalysisView } from '#shared/trial.ts';
+import { decimalsOfAnalysis } from './analysis-decimals.ts';
+import { AnalysisFacts } from './analysis-facts.tsx';
+import { AnalysisHeadline } from './analysis-headline.tsx';
+import { DiagnosticList, OutcomeList, RecoveredError } from './analysis-notes.tsx';
+import { AnovaTable } from './anova-table.tsx';
+import { FieldMap } from './field-map.tsx';
+import { MeansChart } from './means-chart.tsx';
+import { PairsTable } from './pairs-table.tsx';
+import { RatingTable } from './rating-table.tsx';
+import { SpatialModels } from './spatial-models.tsx';
+
+type AnalysisViewProps = {
+  analysis: TrialAnalysisView;
+  traitName: string;
+  unit: string;
+  /** Letters belong to the analysis view of a trial, not to its first reading. */
+  hasLetters: boolean;
+  /** Pairs with this entry only; without `onEntry` the table of pairs is left out. */
+  entry?: string | null;
+  onEntry?: (entry: string | null) => void;
+  /** Between the facts and the drawings: choices, cautions. */
+  children?: ReactNode;
+};
+
+/** One trait of one trial, from the sentence to the tables. What the trial does not give is left out, and said. */
+export function AnalysisView(props: AnalysisViewProps) {
+  const { analysis, traitName, unit, children, entry = null, onEntry } = props;
+  const decimals = decimalsOfAnalysis(analysis, unit);
+  return (
+    <div className="flex flex-col gap-7">
+      <AnalysisHeadline analysis={analysis} unit={unit} decimals={decimals} />
+      {analysis.kind !== 'none' && <AnalysisFacts analysis={analysis} unit={unit} decimals={decimals} />}
+      {children}
+      <OutcomeList outcomes={analysis.outcomes} />
+      <AnalysisDrawings {...props} decimals={decimals} />
+      {analysis.kind === 'ordinal' && <RatingTable ratings={analysis.ordinal} traitName={traitName} />}
+      <RecoveredError from={analysis.recoveredFrom} />
+      <div className="grid gap-7 xl:grid-cols-2">
+        <AnovaTable analysis={analysis} traitName={traitName} />
+        <DiagnosticList diagnostics={analysis.diagnostics} />
+      </div>
+      <SpatialModels models={analysis.spatial} unit={unit} decimals={decimals} />
+      {onEntry && (
+        <PairsTable analysis={analysis} unit={unit} decimals={decimals} entry={entry} onEntry={onEntry} />
+      )}
+    </div>
+  );
+}
+
+function AnalysisDrawings({
+  analysis,
+  unit,
+  hasLetters,
+  decimals,
+}: AnalysisViewProps & { decimals: number }) {
+  const { t } = useTranslation('analysis');
+  const means = analysis.means.flatMap((row) => (row.mean === null ? [] : [{ ...row, mean: row.mean }]));
+  const hasResiduals = analysis.plots.some((plot) => plot.residual !== null);
+  return (
+    <div className="grid gap-x-8 gap-y-7 xl:grid-cols-2">
+      {means.length > 0 && (
+        <div className="min-w-0">
+          <MeansChart
+            title={t('meansTitle')}
+            means={means}
+            unit={unit}
+            decimals={decimals}
+            lsd={analysis.lsd?.mean ?? null}
+            alpha={analysis.alpha}
+            hasLetters={hasLetters}
+          />
+          {hasLetters && <p className="mt-2 text-sm text-faded">{t('letters')}</p>}
+        </div>
+      )}
+      {analysis.plots.length > 0 && (
+        <div className="min-w-0">
+          <FieldMap
+            title={hasResiduals ? t('fieldTitle') : t('fieldValuesTitle')}
+            plots={analysis.plots}
+            unit={unit}
+            decimals={decimals}
+            shade={hasResiduals ? 'residual' : 'value'}
+          />
+        </div>
+      )}
+    </div>
+  );
+}

@@ -1,0 +1,7 @@
+import type { Trait } from '#shared/catalogue.ts';
+import type { Language } from '#shared/account.ts';
+
+/** A trait as a list offers it: its name and, where it has one, its unit. */
+export function nameTrait(trait: Trait, language: Language): string {
+  return trait.unit === '' ? trait.name[language] : `${trait.name[language]} (${trait.unit})`;
+}

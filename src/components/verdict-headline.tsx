@@ -1,0 +1,43 @@
+import { useTranslation } from 'react-i18next';
+import { buildHeadline, type HeadlinePart } from '#shared/headline.ts';
+import type { CandidateResult } from '#shared/weigh-up.ts';
+import { useLanguage } from './use-language.ts';
+import { useSeasons } from './use-seasons.ts';
+
+type VerdictHeadlineProps = { candidates: readonly CandidateResult[]; currentName: string };
+
+/** The answer in sentences, before any drawing or figure. */
+export function VerdictHeadline({ candidates, currentName }: VerdictHeadlineProps) {
+  const say = useHeadlineSentence(currentName);
+  const parts = buildHeadline(candidates);
+  return (
+    <p className="max-w-prose text-lg md:text-xl">
+      {parts.map((part) => {
+        const key = `${part.key} ${part.names.join()}`;
+        return part.isLead ? (
+          <strong key={key} className="font-bold">
+            {say(part)}{' '}
+          </strong>
+        ) : (
+          <span key={key}>{say(part)} </span>
+        );
+      })}
+    </p>
+  );
+}
+
+/** Turns a part of the headline into its sentence. */
+export function useHeadlineSentence(current: string): (part: HeadlinePart) => string {
+  const { t } = useTranslation('verdicts');
+  const language = useLanguage();
+  const seasons = useSeasons();
+  const list = new Intl.ListFormat(language, { type: 'conjunction' });
+  return ({ key, names, chance, siteYears }) =>
+    t(`headline.${key}`, {
+      names: list.format(names),
+      count: names.length,
+      current,
+      seasons: chance === null ? '' : seasons(chance),
+      trials: t('trialCount', { count: siteYears }),
+    });
+}

@@ -1,0 +1,27 @@
+import { useTranslation } from 'react-i18next';
+import type { Caution } from '#shared/caution.ts';
+import type { CautionItem } from './components/caution-list.tsx';
+
+/** Turns cautions into their sentences. The same caution twice, of two candidates say, is said once. */
+export function useCautionItems(): (cautions: readonly Caution[]) => CautionItem[] {
+  const { t, i18n } = useTranslation('cautions');
+  return (cautions) => {
+    const items = new Map<string, CautionItem>();
+    for (const { code, severity, values } of cautions) {
+      const context = chooseContext(code, values, (key) => i18n.exists(`cautions:${key}`));
+      const text = t(code, { ...values, ...(context && { context }) });
+      if (!items.has(text)) items.set(text, { id: text, severity, text });
+    }
+    return [...items.values()];
+  };
+}
+
+/** Some sentences have a wording of their own for one trial among many: `trial-weak-cv_named`. */
+function chooseContext(
+  code: string,
+  values: Caution['values'],
+  exists: (key: string) => boolean,
+): string | undefined {
+  if (values.context !== undefined) return String(values.context);
+  return values.site !== undefined && exists(`${code}_named`) ? 'named' : undefined;
+}
