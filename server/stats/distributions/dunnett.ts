@@ -1,4 +1,4 @@
-import { equicoordinateTail } from './equicoordinate.ts';
+import { expandedTail, oneFactorTail } from './equicoordinate.ts';
 import { latticeDifference } from './equicoordinate-lattice.ts';
 import { findUpperQuantile } from './find-root.ts';
 import { type Correlation, fitOneFactor, type OneFactor } from './one-factor.ts';
@@ -34,13 +34,18 @@ interface FamilyTail {
 
 function buildFamilyTail(correlation: Correlation): FamilyTail {
   const factor = fitOneFactor(correlation);
-  const { largestRest } = factor;
-  const isExact = largestRest <= EXACT_REST;
-  const evaluate = equicoordinateTail(factor, true, !isExact);
-  // The estimated scale moves w around t.
-  const errorAt = (t: number): number =>
-    isExact ? 0 : Math.max(...[0.7, 1, 1.3].map((scale) => evaluate(t * scale).error));
-  return { factor, isExact, tail: tabulateTail((w) => evaluate(w).upper, DECAY), errorAt };
+  if (factor.largestRest <= EXACT_REST) {
+    const tail = tabulateTail(oneFactorTail(factor.loadings, true), DECAY);
+    return { factor, isExact: true, tail, errorAt: () => QUADRATURE_ERROR };
+  }
+  const evaluate = expandedTail(factor, true);
+  return {
+    factor,
+    isExact: false,
+    tail: tabulateTail((w) => evaluate(w).upper, DECAY),
+    // The estimated scale moves w around t.
+    errorAt: (t) => QUADRATURE_ERROR + Math.max(...[0.7, 1, 1.3].map((scale) => evaluate(t * scale).error)),
+  };
 }
 
 /** P(max |T_i| > t) with what it may be wrong by; the lattice is asked only where the expansion is not enough. */
@@ -51,20 +56,18 @@ function adjustOne(
   df: number,
 ): { readonly p: number; readonly error: number; readonly usesLattice: boolean } {
   const p = averageOverScale(family.tail, t, df);
-  const error = QUADRATURE_ERROR + family.errorAt(t);
+  const error = family.errorAt(t);
   if (error <= ERROR_ALLOWED + SHARE_ALLOWED * p) return { p, error, usesLattice: false };
-  const approximate = averageOverScale(oneFactorTail(family.factor), t, df);
+  const approximate = averageOverScale(
+    tabulateTail(oneFactorTail(family.factor.loadings, true), DECAY),
+    t,
+    df,
+  );
   const difference = latticeDifference(correlation, family.factor, t, df, LATTICE_TARGET);
   // The lattice replaces the expansion only where it knows better.
   if (difference.error >= error) return { p, error, usesLattice: false };
   const corrected = Math.min(1, Math.max(0, approximate + difference.mean));
   return { p: corrected, error: difference.error, usesLattice: true };
-}
-
-/** The exact tail of the one-factor approximation alone. */
-function oneFactorTail(factor: OneFactor): ScaledTail {
-  const evaluate = equicoordinateTail(factor, true, false);
-  return { decay: DECAY, scaled: (w) => evaluate(w).upper * Math.exp(DECAY * w * w) };
 }
 
 /**
