@@ -235,7 +235,7 @@ export const readTrial = defineContract({
   reply: z.object({ trial: trialDetail }),
 });
 
-/** Of the latest published version; of the draft for an agronomist where nothing is published. */
+/** Of the newest publication, also after a withdrawal. Drafts are read at the desk. */
 export const readTrialAnalysis = defineContract({
   method: 'GET',
   path: '/api/trials/:trialId/analysis',
