@@ -19,7 +19,13 @@ interface Conditional {
   skew: number;
 }
 
-/** Fills in a variable with mean `shift` and the given spread: it lies within ±w, or below w. */
+/** P(outside) of a variable with mean `shift` and the given spread: it lies within ±w, or below w. */
+function outsideOf(w: number, shift: number, spread: number, isTwoSided: boolean): number {
+  const above = normalUpper((w - shift) / spread);
+  return isTwoSided ? Math.min(1, above + normalUpper((w + shift) / spread)) : above;
+}
+
+/** Fills in the cumulants of a variable, see outsideOf. */
 function fillConditional(
   into: Conditional,
   w: number,
@@ -27,16 +33,16 @@ function fillConditional(
   spread: number,
   isTwoSided: boolean,
 ): void {
-  const above = (w - shift) / spread;
-  const below = (w + shift) / spread;
-  const outside = normalUpper(above) + (isTwoSided ? normalUpper(below) : 0);
-  into.logInside = Math.log1p(-Math.min(outside, 1));
+  const outside = outsideOf(w, shift, spread, isTwoSided);
+  into.logInside = Math.log1p(-outside);
   if (outside > 1 - 1e-15) {
     into.mean = 0;
     into.variance = 0;
     into.skew = 0;
     return;
   }
+  const above = (w - shift) / spread;
+  const below = (w + shift) / spread;
   const scale = INV_SQRT_2PI / (spread * (1 - outside));
   const upper = scale * Math.exp(-0.5 * above * above);
   const lower = isTwoSided ? scale * Math.exp(-0.5 * below * below) : 0;
@@ -116,68 +122,111 @@ function orderLeftOut(orders: readonly number[], largestRest: number, hasThird: 
   return hasThird ? 2 * largestRest * largestRest * lower + largestRest * third : largestRest * lower;
 }
 
+/** Nodes of the trapezoidal rule over the shared factor. */
+interface FactorGrid {
+  readonly step: number;
+  /** First and last node for bounds at w, in steps. */
+  readonly span: (w: number) => readonly [number, number];
+}
+
+/** Given that variable i is beyond w the factor lies about λ_i w: nodes reach around all of these places. */
+function factorGrid(loadings: Float64Array, isTwoSided: boolean): FactorGrid {
+  const sizes = isTwoSided ? loadings.map(Math.abs) : loadings;
+  const least = Math.min(...sizes);
+  const most = Math.max(...sizes);
+  const largest = Math.max(most, -least, 1e-9);
+  const step = 0.25 * Math.min(1, Math.sqrt(1 - largest * largest) / largest);
+  // Two-sided the integrand is even, and half of the line is enough.
+  const floor = isTwoSided ? 0 : -Infinity;
+  return {
+    step,
+    span: (w) => [
+      Math.max(floor, Math.floor((Math.min(0, least * w) - REACH) / step)),
+      Math.ceil((Math.max(0, most * w) + REACH) / step),
+    ],
+  };
+}
+
 /**
- * P(max |Z_i| > w), or P(max Z_i > w), for correlated standard normals: exact where one shared factor holds, else
- * to third order in what it leaves. A sum of positive terms where it is exact, so that small tails keep their accuracy.
+ * P(max |Z_i| > w), or P(max Z_i > w), for standard normals with correlations λ_i λ_j: independent given the factor.
+ * A sum of positive terms, so that small tails keep their relative accuracy.
+ * @param loadings λ, each less than 1 in size
+ * @param isTwoSided whether sizes are meant
+ * Source: Dunnett & Sobel (1955), Biometrika 42:258–260.
+ */
+export function oneFactorTail(loadings: Float64Array, isTwoSided: boolean): (w: number) => number {
+  const grid = factorGrid(loadings, isTwoSided);
+  const groups = groupEqual(isTwoSided ? loadings.map(Math.abs) : loadings);
+  return (w) => {
+    const [start, last] = grid.span(w);
+    let upper = 0;
+    for (let j = start; j <= last; j += 1) {
+      const z = j * grid.step;
+      let logInside = 0;
+      for (const { loading, spread, size } of groups) {
+        logInside += size * Math.log1p(-outsideOf(w, loading * z, spread, isTwoSided));
+      }
+      upper -= (isTwoSided && j > 0 ? 2 : 1) * Math.exp(-0.5 * z * z) * Math.expm1(logInside);
+    }
+    return Math.min(1, upper * grid.step * INV_SQRT_2PI);
+  };
+}
+
+/**
+ * P(max |Z_i| > w), or P(max Z_i > w), for correlated standard normals, to third order in the correlations that one
+ * shared factor leaves.
  * @param factor the correlation matrix split by fitOneFactor
  * @param isTwoSided whether sizes are meant
- * @param hasRest whether to add the effect of `factor.rest`
- * Source: Dunnett & Sobel (1955), Biometrika 42:258–260; Plackett (1954), Biometrika 41:351–360.
+ * Source: as oneFactorTail, with Plackett (1954), Biometrika 41:351–360.
  */
-export function equicoordinateTail(
-  factor: OneFactor,
-  isTwoSided: boolean,
-  hasRest: boolean,
-): (w: number) => EquicoordinateTail {
-  const { loadings, rest } = factor;
-  const largest = loadings.reduce((max, l) => Math.max(max, Math.abs(l)), 0);
-  const step = 0.25 * Math.min(1, Math.sqrt(1 - largest * largest) / Math.max(largest, 1e-9));
-  // Equal loadings need one evaluation; with a rest every variable is needed by itself.
-  const groups = hasRest
-    ? Array.from(loadings, (loading) => ({ loading, size: 1 }))
-    : groupEqual(isTwoSided ? loadings.map(Math.abs) : loadings);
-  const spreads = groups.map(({ loading }) => Math.sqrt(1 - loading * loading));
-  const own = groups.map((): Conditional => ({ logInside: 0, mean: 0, variance: 0, skew: 0 }));
-  const hasThird = factor.largestRest > NEGLIGIBLE_THIRD;
+export function expandedTail(factor: OneFactor, isTwoSided: boolean): (w: number) => EquicoordinateTail {
+  const { loadings, rest, largestRest } = factor;
+  const grid = factorGrid(loadings, isTwoSided);
+  const spreads = loadings.map((loading) => Math.sqrt(1 - loading * loading));
+  const own = Array.from(loadings, (): Conditional => ({ logInside: 0, mean: 0, variance: 0, skew: 0 }));
+  const hasThird = largestRest > NEGLIGIBLE_THIRD;
   const effects = new Float64Array(3);
   return (w) => {
-    const last = Math.ceil((largest * w + REACH) / step);
+    const [start, last] = grid.span(w);
     let upper = 0;
     const orders: [number, number, number] = [0, 0, 0];
-    for (let j = isTwoSided ? 0 : -last; j <= last; j += 1) {
-      const z = j * step;
+    for (let j = start; j <= last; j += 1) {
+      const z = j * grid.step;
       let logInside = 0;
-      groups.forEach(({ loading, size }, g) => {
-        const conditional = own[g] as Conditional;
-        fillConditional(conditional, w, loading * z, spreads[g] as number, isTwoSided);
-        logInside += size * conditional.logInside;
+      own.forEach((conditional, i) => {
+        fillConditional(conditional, w, (loadings[i] as number) * z, spreads[i] as number, isTwoSided);
+        logInside += conditional.logInside;
       });
-      // Two-sided the integrand is even in z.
-      const weight = (isTwoSided ? (j === 0 ? 1 : 2) : 1) * step * INV_SQRT_2PI * Math.exp(-0.5 * z * z);
+      restEffects(own, rest, hasThird, effects);
+      const weight = (isTwoSided && j > 0 ? 2 : 1) * grid.step * INV_SQRT_2PI * Math.exp(-0.5 * z * z);
+      const inside = weight * Math.exp(logInside);
       upper -= weight * Math.expm1(logInside);
-      if (hasRest) {
-        restEffects(own, rest, hasThird, effects);
-        const inside = weight * Math.exp(logInside);
-        orders[0] -= inside * (effects[0] as number);
-        orders[1] -= inside * (effects[1] as number);
-        orders[2] -= inside * (effects[2] as number);
-      }
+      orders[0] -= inside * (effects[0] as number);
+      orders[1] -= inside * (effects[1] as number);
+      orders[2] -= inside * (effects[2] as number);
     }
     const total = upper + orders[0] + orders[1] + orders[2];
     return {
       upper: Math.min(1, Math.max(0, total)),
       orders,
-      error: orderLeftOut(orders, factor.largestRest, hasThird),
+      error: orderLeftOut(orders, largestRest, hasThird),
     };
   };
 }
 
-function groupEqual(loadings: Float64Array): { readonly loading: number; readonly size: number }[] {
-  const groups: { loading: number; size: number }[] = [];
+/** Variables with the same loading behave alike: one evaluation serves all of them. */
+interface LoadingGroup {
+  readonly loading: number;
+  readonly spread: number;
+  size: number;
+}
+
+function groupEqual(loadings: Float64Array): readonly LoadingGroup[] {
+  const groups: LoadingGroup[] = [];
   for (const loading of loadings.toSorted()) {
     const previous = groups.at(-1);
     if (previous && loading - previous.loading < 1e-13) previous.size += 1;
-    else groups.push({ loading, size: 1 });
+    else groups.push({ loading, spread: Math.sqrt(1 - loading * loading), size: 1 });
   }
   return groups;
 }

@@ -1,4 +1,4 @@
-import { equicoordinateTail } from './equicoordinate.ts';
+import { expandedTail, oneFactorTail } from './equicoordinate.ts';
 import { findUpperQuantile } from './find-root.ts';
 import { type Correlation, fitOneFactor } from './one-factor.ts';
 import { averageOverScale } from './scale-average.ts';
@@ -36,8 +36,10 @@ export interface BestQuestion {
 /** Critical value of one-sided comparisons of all others with one entry: P(max T > d) = alpha. */
 export function oneSidedDunnettQuantile(alpha: number, df: number, correlation: Correlation): number {
   const factor = fitOneFactor(correlation);
-  const evaluate = equicoordinateTail(factor, false, factor.largestRest > EXACT_REST);
-  const tail = tabulateTail((w) => evaluate(w).upper, DECAY);
+  const expand = expandedTail(factor, false);
+  const upper =
+    factor.largestRest <= EXACT_REST ? oneFactorTail(factor.loadings, false) : (w: number) => expand(w).upper;
+  const tail = tabulateTail(upper, DECAY);
   return findUpperQuantile((d) => averageOverScale(tail, d, df), alpha, 2);
 }
 

@@ -1,53 +1,83 @@
 const INV_SQRT_2PI = 0.398942280401432677939946059934;
 
-/** Σ c_i x^(n−i) by Horner's rule, highest power first. */
-function polynomial(coefficients: readonly number[], x: number): number {
-  let value = 0;
-  for (const c of coefficients) value = value * x + c;
-  return value;
+/** exp(−x²/2), with the part of x² lost in rounding put back, so that a large x keeps its relative accuracy. */
+function expHalfSquare(x: number): number {
+  const scaled = 134_217_729 * x;
+  const head = scaled - (scaled - x);
+  const tail = x - head;
+  const square = x * x;
+  const lost = head * head - square + 2 * head * tail + tail * tail;
+  return Math.exp(-0.5 * square) * (1 - 0.5 * lost);
 }
 
-// Cody's minimax coefficients, written for the normal integral; highest power first.
-const CENTRE_NUM = [
-  0.065682337918207449113, 2.2352520354606839287, 161.02823106855587881, 1067.6894854603709582,
-  18154.981253343561249,
-];
-const CENTRE_DEN = [
-  1, 47.20258190468824187, 976.09855173777669322, 10260.932208618978205, 45507.789335026729956,
-];
-const MIDDLE_NUM = [
-  1.0765576773720192317e-8, 0.39894151208813466764, 8.8831497943883759412, 93.506656132177855979,
-  597.27027639480026226, 2494.5375852903726711, 6848.1904505362823326, 11602.651437647350124,
-  9842.7148383839780218,
-];
-const MIDDLE_DEN = [
-  1, 22.266688044328115691, 235.38790178262499861, 1519.377599407554805, 6485.558298266760755,
-  18615.571640885098091, 34900.952721145977266, 38912.003286093271411, 19685.429676859990727,
-];
-const TAIL_NUM = [
-  0.02307344176494017303, 0.21589853405795699, 0.1274011611602473639, 0.022235277649777,
-  0.001421619193227893466, 2.9112874951168792e-5,
-];
-const TAIL_DEN = [
-  1, 1.28426009614491121, 0.468238212480865118, 0.0659881378689285515, 0.00378239633202758244,
-  7.29751555083966205e-5,
-];
+// Cody's rational approximations, written for the normal integral. Horner's rule is spelled out because this is the
+// innermost function of every multiple comparison.
 
-/** exp(−x²/2) with the square split, so that the rounding of a large x² does not reach the exponent. */
-function expHalfSquare(x: number): number {
-  const head = Math.trunc(x * 16) / 16;
-  return Math.exp(-head * head * 0.5) * Math.exp(-(x - head) * (x + head) * 0.5);
+function centreRatio(s: number): number {
+  const numerator =
+    (((0.065682337918207449113 * s + 2.2352520354606839287) * s + 161.02823106855587881) * s +
+      1067.6894854603709582) *
+      s +
+    18154.981253343561249;
+  return (
+    numerator /
+    ((((s + 47.20258190468824187) * s + 976.09855173777669322) * s + 10260.932208618978205) * s +
+      45507.789335026729956)
+  );
+}
+
+function middleRatio(x: number): number {
+  const numerator =
+    (((((((1.0765576773720192317e-8 * x + 0.39894151208813466764) * x + 8.8831497943883759412) * x +
+      93.506656132177855979) *
+      x +
+      597.27027639480026226) *
+      x +
+      2494.5375852903726711) *
+      x +
+      6848.1904505362823326) *
+      x +
+      11602.651437647350124) *
+      x +
+    9842.7148383839780218;
+  return (
+    numerator /
+    ((((((((x + 22.266688044328115691) * x + 235.38790178262499861) * x + 1519.377599407554805) * x +
+      6485.558298266760755) *
+      x +
+      18615.571640885098091) *
+      x +
+      34900.952721145977266) *
+      x +
+      38912.003286093271411) *
+      x +
+      19685.429676859990727)
+  );
+}
+
+function farCorrection(r: number): number {
+  const numerator =
+    ((((0.02307344176494017303 * r + 0.21589853405795699) * r + 0.1274011611602473639) * r +
+      0.022235277649777) *
+      r +
+      0.001421619193227893466) *
+      r +
+    2.9112874951168792e-5;
+  return (
+    (r * numerator) /
+    (((((r + 1.28426009614491121) * r + 0.468238212480865118) * r + 0.0659881378689285515) * r +
+      0.00378239633202758244) *
+      r +
+      7.29751555083966205e-5)
+  );
 }
 
 /** P(Z > x) for x of at least 0. */
 function upperTail(x: number): number {
-  if (x <= 0.67448975) return 0.5 - (x * polynomial(CENTRE_NUM, x * x)) / polynomial(CENTRE_DEN, x * x);
+  if (x <= 0.67448975) return 0.5 - x * centreRatio(x * x);
+  if (x <= 5.656854249492381) return expHalfSquare(x) * middleRatio(x);
   if (x > 39) return 0;
-  if (x <= 5.656854249492381)
-    return (expHalfSquare(x) * polynomial(MIDDLE_NUM, x)) / polynomial(MIDDLE_DEN, x);
-  const r = 1 / (x * x);
-  const correction = (r * polynomial(TAIL_NUM, r)) / polynomial(TAIL_DEN, r);
-  return (expHalfSquare(x) * (INV_SQRT_2PI - correction)) / x;
+  return (expHalfSquare(x) * (INV_SQRT_2PI - farCorrection(1 / (x * x)))) / x;
 }
 
 /** Density of the standard normal distribution. */
@@ -66,6 +96,13 @@ export function normalUpper(x: number): number {
 /** P(Z ≤ x) for a standard normal Z, accurate in relative terms in the lower tail. Source: as normalUpper. */
 export function normalCdf(x: number): number {
   return normalUpper(-x);
+}
+
+/** Σ c_i x^(n−i) by Horner's rule, highest power first. */
+function polynomial(coefficients: readonly number[], x: number): number {
+  let value = 0;
+  for (const c of coefficients) value = value * x + c;
+  return value;
 }
 
 // Wichura's PPND16; highest power first.
