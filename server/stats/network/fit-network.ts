@@ -1,4 +1,5 @@
 import { differentiateCriterion, type CriterionDerivatives } from './criterion-derivatives.ts';
+import { computeExpectedInformation } from './expected-information.ts';
 import type { Theta } from './entry-absorption.ts';
 import { interactionTerms, type InteractionTerm, type InteractionVariances } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';
@@ -43,6 +44,7 @@ interface Ascent {
 }
 
 interface Search {
+  readonly frame: NetworkFrame;
   readonly evaluate: (theta: Theta) => Ascent | null;
   readonly penalty: VariancePenalty | null;
   /** terms that take part */
@@ -64,21 +66,26 @@ function penaltyAt(penalty: VariancePenalty | null, theta: Theta): number {
   return -0.5 * penalty.nu * sum;
 }
 
-/** Newton step in ln θ: information θθ'AI, plus the penalty's own curvature. */
-function stepPenalised(ascent: Ascent, penalty: VariancePenalty): { step: Float64Array; norm: number } {
+/** Objective's slope in ln θ, and its size. */
+function slopePenalised(ascent: Ascent, penalty: VariancePenalty): Float64Array {
   const { theta } = ascent.point;
-  const { gradient, averageInformation } = ascent.derivatives;
-  const slope = new Float64Array(3);
+  return theta.map((value, k) => {
+    const pull = (0.5 * penalty.nu * usualOf(penalty, k)) / value;
+    return value * ascent.derivatives.gradient[k]! - 0.5 * penalty.nu + pull;
+  });
+}
+
+/** Newton step in ln θ: θθ' times the information, plus the penalty's own curvature. */
+function stepPenalised(ascent: Ascent, penalty: VariancePenalty, information: Float64Array): Float64Array {
+  const { theta } = ascent.point;
+  const slope = slopePenalised(ascent, penalty);
   const curvature = new Float64Array(9);
-  let norm = 0;
   for (let k = 0; k < 3; k++) {
+    for (let l = 0; l < 3; l++) curvature[k * 3 + l] = theta[k]! * theta[l]! * information[k * 3 + l]!;
     const pull = (0.5 * penalty.nu * usualOf(penalty, k)) / theta[k]!;
-    slope[k] = theta[k]! * gradient[k]! - 0.5 * penalty.nu + pull;
-    norm = Math.max(norm, Math.abs(slope[k]!));
-    for (let l = 0; l < 3; l++) curvature[k * 3 + l] = theta[k]! * theta[l]! * averageInformation[k * 3 + l]!;
-    curvature[k * 4]! += pull + Math.max(0, -theta[k]! * gradient[k]!);
+    curvature[k * 4]! += pull + Math.max(0, -theta[k]! * ascent.derivatives.gradient[k]!);
   }
-  return { step: solveSmall(curvature, slope) ?? slope, norm };
+  return solveSmall(curvature, slope) ?? slope;
 }
 
 /** Terms free to move: those above their floor, or pushed up from it. */
@@ -88,18 +95,34 @@ function freeTerms(search: Search, ascent: Ascent): number[] {
   );
 }
 
-/** Newton step in θ over the free terms. */
-function stepPlain(search: Search, ascent: Ascent): { step: Float64Array; norm: number } {
-  const { gradient, averageInformation } = ascent.derivatives;
-  const free = freeTerms(search, ascent);
-  const m = free.length;
-  const curvature = new Float64Array(m * m);
-  free.forEach((k, r) => free.forEach((l, c) => (curvature[r * m + c] = averageInformation[k * 3 + l]!)));
-  const slope = Float64Array.from(free, (k) => gradient[k]!);
-  const solution = solveSmall(curvature, slope) ?? slope.map((g) => g * search.scale * search.scale);
-  const step = new Float64Array(3);
-  free.forEach((k, r) => (step[k] = solution[r]!));
-  return { step, norm: slope.reduce((max, g) => Math.max(max, Math.abs(g) * search.scale), 0) };
+/** Newton step in θ over the free terms; a term at its floor that the step would push below it stays there. */
+function stepPlain(search: Search, ascent: Ascent, information: Float64Array): Float64Array {
+  const { gradient } = ascent.derivatives;
+  let free = freeTerms(search, ascent);
+  for (;;) {
+    const m = free.length;
+    const curvature = new Float64Array(m * m);
+    free.forEach((k, r) => free.forEach((l, c) => (curvature[r * m + c] = information[k * 3 + l]!)));
+    const slope = Float64Array.from(free, (k) => gradient[k]!);
+    const solution = solveSmall(curvature, slope) ?? slope.map((g) => g * search.scale * search.scale);
+    const isBlocked = (k: number, r: number): boolean =>
+      ascent.point.theta[k]! <= search.floor[k]! && solution[r]! < 0;
+    if (free.some(isBlocked)) {
+      free = free.filter((k, r) => !isBlocked(k, r));
+      continue;
+    }
+    const step = new Float64Array(3);
+    free.forEach((k, r) => (step[k] = solution[r]!));
+    return step;
+  }
+}
+
+function slopeNorm(search: Search, ascent: Ascent): number {
+  const slopes =
+    search.penalty === null
+      ? freeTerms(search, ascent).map((k) => ascent.derivatives.gradient[k]! * search.scale)
+      : [...slopePenalised(ascent, search.penalty)];
+  return slopes.reduce((max, slope) => Math.max(max, Math.abs(slope)), 0);
 }
 
 function moveAlong(search: Search, theta: Theta, step: Float64Array, length: number): Theta {
@@ -108,27 +131,45 @@ function moveAlong(search: Search, theta: Theta, step: Float64Array, length: num
   return theta.map((value, k) => Math.max(search.floor[k]!, value + length * step[k]!));
 }
 
-/** Climbs with step halving: the objective never falls. */
-function climb(search: Search, start: Theta): { ascent: Ascent; norm: number; iterations: number } | null {
+/** Halves the step until the objective does not fall; null where it never stops falling. */
+function searchAlong(search: Search, ascent: Ascent, step: Float64Array): Ascent | null {
+  for (let length = 1; length > 1e-6; length /= 2) {
+    const trial = search.evaluate(moveAlong(search, ascent.point.theta, step, length));
+    // rounding of the objective must not stop the last, tiny steps
+    if (trial !== null && trial.objective >= ascent.objective - 1e-12 * (1 + Math.abs(ascent.objective)))
+      return trial;
+  }
+  return null;
+}
+
+/** One step by the average information, else by the expected one, else uphill. */
+function advance(search: Search, ascent: Ascent): Ascent | null {
+  const { penalty } = search;
+  const stepBy = (information: Float64Array): Float64Array =>
+    penalty === null ? stepPlain(search, ascent, information) : stepPenalised(ascent, penalty, information);
+  return (
+    searchAlong(search, ascent, stepBy(ascent.derivatives.averageInformation)) ??
+    searchAlong(search, ascent, stepBy(computeExpectedInformation(search.frame, ascent.point))) ??
+    searchAlong(search, ascent, stepBy(new Float64Array(9)))
+  );
+}
+
+/** Climbs until the slope is gone; the objective never falls. */
+function climb(
+  search: Search,
+  start: Theta,
+  watch: (objective: number) => void,
+): { ascent: Ascent; norm: number; iterations: number } | null {
   let ascent = search.evaluate(start);
-  if (ascent === null) return null;
-  for (let iteration = 0; ; iteration++) {
-    const { step, norm } =
-      search.penalty === null ? stepPlain(search, ascent) : stepPenalised(ascent, search.penalty);
-    if (norm < GRADIENT_TOLERANCE || iteration === MAX_ITERATIONS)
-      return { ascent, norm, iterations: iteration };
-    let next: Ascent | null = null;
-    for (let length = 1; length > 1e-9; length /= 2) {
-      const trial = search.evaluate(moveAlong(search, ascent.point.theta, step, length));
-      // rounding of the objective must not stop the last, tiny steps
-      if (trial !== null && trial.objective >= ascent.objective - 1e-12 * (1 + Math.abs(ascent.objective))) {
-        next = trial;
-        break;
-      }
-    }
-    if (next === null) return { ascent, norm, iterations: iteration };
+  for (let iterations = 0; ascent !== null; iterations++) {
+    watch(ascent.objective);
+    const norm = slopeNorm(search, ascent);
+    if (norm < GRADIENT_TOLERANCE || iterations === MAX_ITERATIONS) return { ascent, norm, iterations };
+    const next = advance(search, ascent);
+    if (next === null) return { ascent, norm, iterations };
     ascent = next;
   }
+  return null;
 }
 
 /** Terms whose information is nothing but a repeat of another's, in the order rest, site, year. */
@@ -167,10 +208,12 @@ function findDropped(frame: NetworkFrame, theta: Theta): number[] {
 /**
  * Penalised or plain REML of the three interaction variances, entries and environments fixed.
  * @param penalty null for plain REML; its usual variances must be positive
+ * @param watch is told the objective after each step
  */
 export function fitNetwork(
   frame: NetworkFrame,
   penalty: VariancePenalty | null,
+  watch: (objective: number) => void = () => undefined,
 ): NetworkFit | NetworkNotFitted {
   const design = measureDesign(frame);
   const df = residualDf(frame);
@@ -199,8 +242,8 @@ export function fitNetwork(
     return { point, objective, derivatives: differentiateCriterion(frame, point) };
   };
   const active = [0, 1, 2].filter((k) => !dropped.includes(k));
-  const search: Search = { penalty, scale, floor, active, evaluate };
-  const found = climb(search, start);
+  const search: Search = { frame, penalty, scale, floor, active, evaluate };
+  const found = climb(search, start, watch);
   if (found === null || !(found.norm < 1e-4)) return { outcome: 'not-fitted', reason: 'not-converged' };
   return {
     outcome: 'fitted',
