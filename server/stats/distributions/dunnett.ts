@@ -32,6 +32,17 @@ interface FamilyTail {
   readonly errorAt: (t: number) => number;
 }
 
+const families = new WeakMap<Correlation, FamilyTail>();
+
+/** The family's tail: kept with its correlations, since p values and intervals of one family ask for the same. */
+function familyTail(correlation: Correlation): FamilyTail {
+  const known = families.get(correlation);
+  if (known) return known;
+  const built = buildFamilyTail(correlation);
+  families.set(correlation, built);
+  return built;
+}
+
 function buildFamilyTail(correlation: Correlation): FamilyTail {
   const factor = fitOneFactor(correlation);
   if (factor.largestRest <= EXACT_REST) {
@@ -74,7 +85,7 @@ function adjustOne(
  * Adjusted two-sided p values of a single-step comparison of several entries with one check.
  * @param family.ts estimates divided by their standard errors, length m; signs are ignored
  * @param family.df degrees of freedom, fractional or Infinity: one for all, or one for each comparison
- * @param family.correlation of the estimates, m × m
+ * @param family.correlation of the estimates, m × m; not to be changed afterwards
  * @returns p in the order of ts, the method, and the largest error to expect of a p
  * @throws RangeError when a correlation, t or df is out of range
  * Source: Dunnett (1955), J. Amer. Statist. Assoc. 50:1096–1121.
@@ -87,7 +98,7 @@ export function dunnettAdjust(family: {
   const { ts, df, correlation } = family;
   if (ts.length !== correlation.length)
     throw new RangeError(`${ts.length} estimates, ${correlation.length} correlations`);
-  const tail = buildFamilyTail(correlation);
+  const tail = familyTail(correlation);
   const rows = Array.from(ts, (t, i) =>
     adjustOne(tail, correlation, Math.abs(t), typeof df === 'number' ? df : (df[i] ?? 0)),
   );
@@ -113,7 +124,7 @@ export function dunnettQuantile(family: {
 }): number {
   const { alpha, df, correlation } = family;
   if (!(alpha > 0 && alpha < 1)) throw new RangeError(`a tail must lie between 0 and 1, got ${alpha}`);
-  const tail = buildFamilyTail(correlation);
+  const tail = familyTail(correlation);
   const solve = (shift: number): number =>
     findUpperQuantile((d) => averageOverScale(tail.tail, d, df) + shift, alpha, 2);
   const first = solve(0);
