@@ -13,7 +13,7 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'unit',
-          include: ['tests/{stats,shared,structure,server,setup}/**/*.test.ts'],
+          include: ['tests/{stats,shared,structure,server}/**/*.test.ts'],
         },
       },
       {
@@ -33,7 +33,7 @@ export default defineConfig({
         extends: true,
         test: {
           name: 'api',
-          include: ['tests/api/**/*.test.ts'],
+          include: ['tests/{api,setup}/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts'],
         },
       },
