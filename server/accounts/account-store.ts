@@ -140,12 +140,14 @@ export async function updateAccount(
       if (newRegions !== undefined) await setRegions(tx, id, newRegions);
       if (change.status === 'suspended') await endSessions(tx, id);
       const after = await readAccount(tx, id);
+      const changed = describeChange(before, after);
+      if (Object.keys(changed).length === 0) return after;
       await recordAuditEvent(tx, {
         actorId,
         action: nameChange(before, after),
         subjectKind: 'account',
         subjectId: id,
-        detail: { name: before.name, ...describeChange(before, after) },
+        detail: { name: before.name, ...changed },
       });
       return after;
     }),
