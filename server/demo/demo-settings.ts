@@ -64,6 +64,6 @@ export const yieldComponents: Readonly<Record<CropSlug, YieldComponents>> = {
 /** Standard deviation of the plots that hail went over, percent of their mean: the field as drawn comes out at a CV of 28. */
 export const hailCvPercent = 26.5;
 /** Height of the drift along the rows of plots in the trial with a strong spatial trend, in plot standard deviations. */
-export const spatialDrift = 3.2;
+export const spatialDrift = 4.2;
 /** Share of plots without a yield in the trials that have some. */
 export const missingShare = 0.04;

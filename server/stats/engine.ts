@@ -31,3 +31,4 @@ export {
   type UsualEstimate,
   type NoUsualEstimate,
 } from './network/usual-variances.ts';
+export { recoverError, type RecoveredError } from './summary/recover-error.ts';

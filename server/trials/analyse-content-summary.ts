@@ -1,90 +1,85 @@
-import { tQuantileUpper } from '#server/stats/engine.ts';
+import { recoverError, tQuantileUpper, type RecoveredError } from '#server/stats/engine.ts';
 import type { TrialContent } from '#shared/trial-content.ts';
 import type { TrialDesign } from '#shared/trial.ts';
 
 type SummaryColumn = TrialContent['summary'][number];
 
-/** Printed figures carry two digits or so: what differs by more than this share is not rounding. */
-const contradictionShare = 0.15;
-
-/** A published table with its error recovered. */
+/** A published table with its error recovered; what depends on the error is null where the table gives none. */
 export type SummaryAnalysis = {
+  /** Plain mean of the printed means. */
   grandMean: number;
   means: { entry: string; mean: number; replicates: number }[];
+  /** Error variance of one plot. */
   residualMs: number | null;
-  errorDf: number;
+  errorDf: number | null;
   cvPercent: number | null;
+  /** At the trial's alpha, for two entries with the usual number of plots. */
   lsd: number | null;
   recoveredFrom: 'lsd' | 'cv' | 'se' | 'residual-ms' | null;
-  /** The printed LSD and the one that the table's CV leads to, where they do not agree. */
+  /** The printed LSD and the one that the other printed figures lead to, where they do not agree. */
   contradiction: { given: number; expected: number } | null;
 };
 
-/**
- * Recovers the residual mean square of a printed table, by the first of these that it gives: residual mean square,
- * standard error of a mean, LSD, CV.
- * Formulas: domain.md "Summary → standard error" (theory, from memory).
- */
+/** Analyses one column of a published table: its error comes from the most finely printed of its measures. */
 export function analyseSummaryColumn(
   column: SummaryColumn,
   design: TrialDesign,
   alpha: number,
 ): SummaryAnalysis {
-  const replicates = harmonicMean(column.means.map((row) => row.replicates));
   const grandMean = column.means.reduce((sum, row) => sum + row.mean, 0) / column.means.length;
-  const errorDf = column.errorDf ?? assumeErrorDf(column.means.length, replicates, design);
-  const found = recover(column, replicates, grandMean, errorDf);
-  const residualMs = found?.residualMs ?? null;
+  const error = recoverError({
+    design: design === 'row-column' || design === 'factorial' ? 'unknown' : design,
+    entries: column.means.length,
+    replicates: column.means.map((row) => row.replicates),
+    trialMean: { value: grandMean },
+    given: {
+      lsd: print(column.lsd),
+      cvPercent: print(column.cvPercent),
+      seMean: print(column.standardError),
+      residualMs: print(column.residualMs),
+    },
+    ...(column.errorDf !== null && { errorDf: column.errorDf }),
+    ...(column.lsdAlpha !== null && { alpha: column.lsdAlpha }),
+  });
+  const table = { grandMean, means: column.means };
+  if (!error.recovered)
+    return {
+      ...table,
+      residualMs: null,
+      errorDf: null,
+      cvPercent: column.cvPercent,
+      lsd: null,
+      recoveredFrom: null,
+      contradiction: null,
+    };
+  const { residualMs, df, sed } = error;
   return {
-    grandMean,
-    means: column.means,
+    ...table,
     residualMs,
-    errorDf,
-    cvPercent: column.cvPercent ?? (residualMs === null ? null : (100 * Math.sqrt(residualMs)) / grandMean),
-    lsd:
-      residualMs === null
-        ? null
-        : tQuantileUpper(alpha / 2, errorDf) * Math.sqrt((2 * residualMs) / replicates),
-    recoveredFrom: found?.from ?? null,
-    contradiction: findContradiction(column, replicates, grandMean, errorDf),
+    errorDf: df,
+    cvPercent: residualMs === null ? column.cvPercent : (100 * Math.sqrt(residualMs)) / grandMean,
+    lsd: tQuantileUpper(alpha / 2, df) * sed,
+    recoveredFrom: sourceNames[error.from] ?? null,
+    contradiction: findContradiction(error, column),
   };
 }
 
-function recover(
-  column: SummaryColumn,
-  replicates: number,
-  grandMean: number,
-  errorDf: number,
-): { residualMs: number; from: NonNullable<SummaryAnalysis['recoveredFrom']> } | null {
-  if (column.residualMs !== null) return { residualMs: column.residualMs, from: 'residual-ms' };
-  if (column.standardError !== null)
-    return { residualMs: column.standardError ** 2 * replicates, from: 'se' };
-  if (column.lsd !== null && column.lsdAlpha !== null) {
-    const sed = column.lsd / tQuantileUpper(column.lsdAlpha / 2, errorDf);
-    return { residualMs: (sed ** 2 * replicates) / 2, from: 'lsd' };
-  }
-  if (column.cvPercent !== null)
-    return { residualMs: ((column.cvPercent / 100) * grandMean) ** 2, from: 'cv' };
-  return null;
-}
+const print = (value: number | null) => (value === null ? undefined : { value });
 
-/** A printed LSD and the CV printed beside it must lead to each other, as far as rounding and unequal columns allow. */
+const sourceNames: Partial<Record<string, NonNullable<SummaryAnalysis['recoveredFrom']>>> = {
+  lsd: 'lsd',
+  cvPercent: 'cv',
+  seMean: 'se',
+  residualMs: 'residual-ms',
+};
+
+/** A contradiction in terms of the LSD, since that is the figure readers of a table go by. */
 function findContradiction(
-  { lsd, lsdAlpha, cvPercent }: SummaryColumn,
-  replicates: number,
-  grandMean: number,
-  errorDf: number,
+  error: Extract<RecoveredError, { recovered: true }>,
+  column: SummaryColumn,
 ): SummaryAnalysis['contradiction'] {
-  if (lsd === null || lsdAlpha === null || cvPercent === null) return null;
-  const sed = (cvPercent / 100) * grandMean * Math.sqrt(2 / replicates);
-  const expected = tQuantileUpper(lsdAlpha / 2, errorDf) * sed;
-  return Math.abs(lsd - expected) > contradictionShare * expected ? { given: lsd, expected } : null;
-}
-
-function assumeErrorDf(entries: number, replicates: number, design: TrialDesign): number {
-  return Math.max(1, design === 'crd' ? entries * (replicates - 1) : (entries - 1) * (replicates - 1));
-}
-
-function harmonicMean(values: readonly number[]): number {
-  return values.length / values.reduce((sum, value) => sum + 1 / value, 0);
+  const isContradicted = error.findings.some((finding) => finding.code === 'quantities-contradict');
+  const other = error.estimates.find((estimate) => estimate.from !== 'lsd');
+  if (!isContradicted || other === undefined || column.lsd === null || column.lsdAlpha === null) return null;
+  return { given: column.lsd, expected: tQuantileUpper(column.lsdAlpha / 2, error.df) * other.sed };
 }
