@@ -48,3 +48,8 @@ export function tickDecimals(scale: Scale): number {
   if (first === undefined || second === undefined) return 1;
   return Math.max(0, -Math.floor(Math.log10(second - first) + 1e-9));
 }
+
+/** Whether a value lies within the drawing at all. */
+export function isOnScale(scale: Scale, value: number): boolean {
+  return value >= scale.low && value <= scale.high;
+}

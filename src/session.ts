@@ -7,7 +7,10 @@ import {
 } from '@tanstack/react-query';
 import { changeMe, readMe, signOut, type Language, type Me } from '#shared/account.ts';
 import { callApi } from './api-client.ts';
+import { showToast } from './components/toaster.tsx';
 import { changeLanguage } from './i18n.ts';
+import { paths } from './paths.ts';
+import { useErrorText } from './use-error-text.ts';
 
 /** Who is signed in; null for nobody. */
 export const meQuery = queryOptions({
@@ -42,15 +45,13 @@ export function useLanguageSwitch(): (language: Language) => void {
   };
 }
 
-/** Signs out and forgets everything that was fetched for the person. */
+/** Signs out. The page is loaded anew, so that nothing fetched for the person is left in it. */
 export function useSignOut(): () => void {
-  const client = useQueryClient();
+  const errorText = useErrorText();
   const leave = useMutation({
     mutationFn: () => callApi(signOut, {}),
-    onSuccess: () => {
-      client.clear();
-      client.setQueryData(meQuery.queryKey, null);
-    },
+    onSuccess: () => window.location.assign(paths.signIn),
+    onError: (error) => showToast(errorText(error)),
   });
   return () => leave.mutate();
 }

@@ -185,7 +185,7 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
   return (
     <td
       role="cell"
-      className={`${space} ${side} @max-xl:flex @max-xl:justify-between @max-xl:gap-4 @max-xl:px-0 @max-xl:py-1 @max-xl:text-right`}
+      className={`${space} ${side} @max-xl:flex @max-xl:items-baseline @max-xl:justify-between @max-xl:gap-4 @max-xl:px-0 @max-xl:py-1 @max-xl:text-right`}
     >
       <span aria-hidden="true" className="hidden shrink-0 text-left text-sm text-faded @max-xl:inline">
         {column.header}

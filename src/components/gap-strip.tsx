@@ -37,20 +37,27 @@ type GapStripProps = {
   decimals: number;
 };
 
-/** Every value that a row shows, so that one scale holds them all. */
+/**
+ * One scale that holds every row's estimate and intervals. A break-even gap far beyond them is left off the scale, so that
+ * one absurd cost does not press all rows together: its label then stands at the edge, with an arrow.
+ */
 export function scaleOfRows(rows: readonly GapStripRow[]): Scale {
-  return spanScale(
-    rows.flatMap((row) =>
-      [
-        row.estimate,
-        row.region?.low,
-        row.region?.high,
-        row.ownSeason?.low,
-        row.ownSeason?.high,
-        row.breakEven,
-      ].filter((value) => typeof value === 'number'),
-    ),
-  );
+  const gaps = rows
+    .flatMap((row) => [
+      row.estimate,
+      row.region?.low,
+      row.region?.high,
+      row.ownSeason?.low,
+      row.ownSeason?.high,
+    ])
+    .filter((value) => typeof value === 'number');
+  const { low, high } = spanScale(gaps);
+  const reach = (high - low) / 2;
+  const breakEvens = rows
+    .map((row) => row.breakEven)
+    .filter((value) => value !== null)
+    .filter((value) => gaps.length === 0 || (value >= low - reach && value <= high + reach));
+  return spanScale([...gaps, ...breakEvens]);
 }
 
 /** The signature drawing: a list of gaps to the current variety on one shared scale, with what is left uncertain. */

@@ -1,4 +1,4 @@
-import { placeOnScale, tickDecimals, type Scale } from '#shared/gap-scale.ts';
+import { isOnScale, placeOnScale, tickDecimals, type Scale } from '#shared/gap-scale.ts';
 import type { Interval } from '#shared/verdict.ts';
 import { useFormat } from './use-format.ts';
 
@@ -94,28 +94,37 @@ export function GapTrack({
       {region && (
         <rect data-mark="region" {...spanOf(scale, region)} y={middle - 6} height="12" rx="2" fill={colour} />
       )}
-      <line
-        x1={percent(scale, 0)}
-        x2={percent(scale, 0)}
-        y1="0"
-        y2="100%"
-        stroke="var(--color-ink)"
-        strokeWidth="1.5"
-      />
-      {breakEven !== null && (
-        <line
-          data-mark="break-even"
-          x1={percent(scale, breakEven)}
-          x2={percent(scale, breakEven)}
-          y1="0"
-          y2="100%"
-          stroke="var(--color-break-even)"
-          strokeWidth="2"
-          strokeDasharray="5 4"
+      <EdgedLine x={percent(scale, 0)} colour="var(--color-ink)" width={1.5} />
+      {breakEven !== null && isOnScale(scale, breakEven) && (
+        <EdgedLine
+          x={percent(scale, breakEven)}
+          colour="var(--color-break-even)"
+          width={2}
+          mark="break-even"
+          isDashed
         />
       )}
       {estimate !== null && <EstimateTick x={percent(scale, estimate)} middle={middle} isThin={isThin} />}
     </svg>
+  );
+}
+
+type EdgedLineProps = { x: string; colour: string; width: number; mark?: string; isDashed?: boolean };
+
+/** A line over the whole height, edged with paper, so that it can be followed across a dark interval, in grey too. */
+function EdgedLine({ x, colour, width, mark, isDashed = false }: EdgedLineProps) {
+  const ends = { x1: x, x2: x, y1: '0', y2: '100%' };
+  return (
+    <>
+      <line {...ends} stroke="var(--color-paper)" strokeWidth={width + 2} />
+      <line
+        {...ends}
+        data-mark={mark}
+        stroke={colour}
+        strokeWidth={width}
+        strokeDasharray={isDashed ? '5 4' : undefined}
+      />
+    </>
   );
 }
 
@@ -124,7 +133,7 @@ function spanOf(scale: Scale, { low, high }: Interval): { x: string; width: stri
   return { x: `${start}%`, width: `${placeOnScale(scale, high) - start}%` };
 }
 
-/** The tick is edged with paper, so that it stays visible on a dark interval in print. */
+/** Edged like the lines; heavier and shorter than they are, so that it is not taken for one. */
 function EstimateTick({ x, middle, isThin }: { x: string; middle: number; isThin: boolean }) {
   const ends = { x1: x, x2: x, y1: middle - 14, y2: middle + 14 };
   return (
@@ -142,15 +151,16 @@ function EstimateTick({ x, middle, isThin }: { x: string; middle: number; isThin
 
 type GapLabelProps = { scale: Scale; value: number; children: string; className?: string };
 
-/** Words at a mark, centred on it and kept inside the drawing. */
+/** Words at a mark, centred on it and kept inside the drawing; an arrow where the mark lies beyond its edge. */
 export function GapLabel({ scale, value, children, className = '' }: GapLabelProps) {
+  const words = isOnScale(scale, value) ? children : value < 0 ? `← ${children}` : `${children} →`;
   return (
     <span
       aria-hidden="true"
       className={`absolute -translate-x-1/2 whitespace-nowrap text-sm ${className}`}
-      style={{ left: labelLeft(scale, value, `${children.length * 0.29}em`) }}
+      style={{ left: labelLeft(scale, value, `${words.length * 0.29}em`) }}
     >
-      {children}
+      {words}
     </span>
   );
 }

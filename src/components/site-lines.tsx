@@ -60,7 +60,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
       drawing={
         <div className="@container">
           <p className="text-sm text-faded">{t('siteLines.order')}</p>
-          <div className="grid @2xl:grid-cols-[13rem_minmax(0,1fr)_6rem] @2xl:gap-x-5">
+          <div className="grid @2xl:grid-cols-[17rem_minmax(0,1fr)_6rem] @2xl:gap-x-5">
             <span className="@max-2xl:hidden" />
             <GapAxis scale={scale} zeroLabel={currentName} />
           </div>
@@ -70,9 +70,9 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
               return (
                 <li
                   key={trial.trialId}
-                  className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 border-b border-rule py-1.5 @2xl:grid-cols-[13rem_minmax(0,1fr)_6rem] @2xl:gap-x-5"
+                  className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 border-b border-rule py-1 @2xl:grid-cols-[17rem_minmax(0,1fr)_6rem] @2xl:gap-x-5"
                 >
-                  <span className="text-sm">
+                  <span className="text-sm [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
                     {linkTrial ? linkTrial(trial, words) : words}{' '}
                     <span className="whitespace-nowrap text-faded">
                       {t('siteLines.mean', { mean: format.quantity(trial.trialMean, unit, { decimals }) })}

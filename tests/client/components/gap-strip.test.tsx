@@ -53,6 +53,14 @@ describe('the gap strip', () => {
     expect(markOf(picture, 'break-even').getAttribute('x1')).toBe(`${placeOnScale(scale, 0.11)}%`);
   });
 
+  it('does not let one absurd cost press the rows together, and points to where it lies', async () => {
+    const dear = { ...ostermoor, breakEven: 9 };
+    expect(scaleOfRows([dear]).high).toBeLessThan(1);
+    await renderClient(strip([dear]));
+    expect(screen.getByRole('img').querySelector('[data-mark="break-even"]')).toBeNull();
+    expect(screen.getByText('pays from +9.00 t/ha →')).toBeTruthy();
+  });
+
   it('says each row in one sentence with its level and its unit', async () => {
     await renderClient(strip([ostermoor]));
     expect(screen.getByRole('img').getAttribute('aria-label')).toBe(
