@@ -10,6 +10,7 @@ const serverSources = ['server', 'shared', 'locales', 'drizzle/schema', 'package
 
 /**
  * Builds the client into dist/client where its sources changed since.
+ * @param {string} projectRoot
  * @returns {Promise<boolean>} whether it was built
  */
 export function buildClient(projectRoot) {
@@ -31,6 +32,7 @@ export function buildClient(projectRoot) {
 
 /**
  * Bundles the server into dist/server where its sources changed since; its packages stay in node_modules.
+ * @param {string} projectRoot
  * @returns {Promise<boolean>} whether it was built
  */
 export function buildServer(projectRoot) {

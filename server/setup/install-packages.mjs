@@ -21,6 +21,7 @@ export async function ensurePackages(projectRoot) {
 /**
  * Compares package-lock.json with the record that npm keeps of what it installed, which also holds after an install by
  * hand. Optional packages may be missing: they are for other systems.
+ * @param {string} projectRoot
  */
 export function arePackagesCurrent(projectRoot) {
   const wanted = readLock(join(projectRoot, 'package-lock.json'));

@@ -11,7 +11,10 @@ export function markProcess(pid = process.pid) {
   return `${pid} ${readStartTime(pid)}`;
 }
 
-/** Whether the process that wrote this mark still runs. */
+/**
+ * Whether the process that wrote this mark still runs.
+ * @param {string} mark
+ */
 export function isProcessAlive(mark) {
   const [pidText, startTime = ''] = mark.trim().split(' ');
   const pid = Number(pidText);

@@ -1,2 +1,0 @@
-/** The path of an installed Chromium; null when there is none. */
-export function findChromium(): string | null;
