@@ -22,7 +22,7 @@ const usage = `Takes a file of plots in as a trial, all of it or nothing.
   ${columnFields.map((field) => `--${field}-column`).join(' ')}
                headers that hold these, where they are not the usual ones
 
-DATABASE_URL names the database.`;
+DATABASE_URL names the database; unset, it is the one of npm start.`;
 
 const columnOptions = Object.fromEntries(
   columnFields.map((field) => [`${field}-column`, { type: 'string' as const }]),
