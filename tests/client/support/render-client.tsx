@@ -21,9 +21,13 @@ export async function renderClient(
 ) {
   await changeLanguage(options.language ?? 'en');
   await i18n.loadNamespaces(options.namespaces ?? ['drawings']);
-  return render(
-    <QueryClientProvider client={makeQueryClient()}>
-      <MemoryRouter initialEntries={[options.at ?? '/']}>{part}</MemoryRouter>
-    </QueryClientProvider>,
-  );
+  const queryClient = makeQueryClient();
+  const at = options.at ?? '/';
+  return render(part, {
+    wrapper: ({ children }) => (
+      <QueryClientProvider client={queryClient}>
+        <MemoryRouter initialEntries={[at]}>{children}</MemoryRouter>
+      </QueryClientProvider>
+    ),
+  });
 }
