@@ -1,7 +1,15 @@
 import type { InteractionVariances } from './network-cell.ts';
 import type { PairSynthesis } from './pair-synthesis.ts';
 import type { EvidenceTier } from './evidence-tier.ts';
-import type { CandidateGap, EvidenceCaution, TraitVerdict, TrialLine } from './weigh-question.ts';
+import type { GapLine, NoGapLine } from './gap-line.ts';
+import type { EntryStability } from './stability.ts';
+import type {
+  CandidateGap,
+  EvidenceCaution,
+  LevelInterval,
+  TraitVerdict,
+  TrialLine,
+} from './weigh-question.ts';
 
 export interface CandidateWeighing {
   readonly candidate: string;
@@ -22,7 +30,23 @@ export interface CandidateWeighing {
   readonly trials: readonly TrialLine[];
   /** cross-check from the shared trials alone */
   readonly synthesis: PairSynthesis | null;
+  /** the gap as a line over the shared trials' mean yields */
+  readonly gapLine: GapLine | NoGapLine;
+  /** its answer to good and poor environments; null where it cannot be told */
+  readonly stability: EntryStability | null;
   readonly cautions: readonly EvidenceCaution[];
+}
+
+/** One entry against the best of the others, simultaneous over the list. */
+export interface BestStanding {
+  readonly entry: string;
+  /** its mean less the best of the others' */
+  readonly estimate: number;
+  readonly interval: LevelInterval;
+  /** false: shown not to be the best */
+  readonly mayBeBest: boolean;
+  /** true: it alone is shown to be the best */
+  readonly isBest: boolean;
 }
 
 export interface LeftOutTrial {
@@ -48,6 +72,8 @@ export interface TraitWeighing {
     readonly iterations: number;
   } | null;
   readonly candidates: readonly CandidateWeighing[];
+  /** current variety and candidates against the best of them, for a question about the best of a list */
+  readonly best: readonly BestStanding[] | null;
   /** about the evidence as a whole; those of one candidate stand with it */
   readonly cautions: readonly EvidenceCaution[];
 }

@@ -1,16 +1,19 @@
 import { chooseEvidence, type ChosenEvidence } from './choose-evidence.ts';
 import { compareWithCurrent } from './compare-with-current.ts';
-import { estimateEntries } from './entry-estimates.ts';
+import { standAgainstBest } from './compare-with-best.ts';
+import { estimateEntries, type EntryEstimates } from './entry-estimates.ts';
 import { answersFor, gradeEvidence, type EvidenceTier } from './evidence-tier.ts';
 import { cautionCandidate, cautionEvidence } from './evidence-cautions.ts';
 import { fitNetwork, type NetworkFit, type VariancePenalty } from './fit-network.ts';
+import { fitGapLine } from './gap-line.ts';
 import { judgeGap } from './judge-gap.ts';
 import { interactionTerms } from './network-cell.ts';
 import { frameNetwork, type NetworkFrame } from './network-frame.ts';
 import { synthesisePair, type PairSynthesis } from './pair-synthesis.ts';
 import { shrinkEffects } from './shrunken-effects.ts';
 import { countSiteYearsToSettle } from './site-years-to-settle.ts';
-import { drawTrialLines } from './trial-lines.ts';
+import { analyseStability, type EntryStability } from './stability.ts';
+import { drawTrialLines, type TrialTable } from './trial-lines.ts';
 import { scaleVariances, totalVariance } from './interaction-variances.ts';
 import type {
   CandidateGap,
@@ -21,7 +24,7 @@ import type {
   TrialLine,
   WeighQuestion,
 } from './weigh-question.ts';
-import type { CandidateWeighing, TraitWeighing } from './weigh-result.ts';
+import type { BestStanding, CandidateWeighing, TraitWeighing } from './weigh-result.ts';
 
 const LEVEL = 0.95;
 const PENALTY = 3;
@@ -29,6 +32,7 @@ const PENALTY = 3;
 /** A fit of the chosen cells and the candidates' gaps in it. */
 interface Weighed {
   readonly fit: NetworkFit;
+  readonly estimates: EntryEstimates;
   readonly gaps: ReadonlyMap<string, CandidateGap>;
 }
 
@@ -58,7 +62,7 @@ function weighCells(
   });
   const shrunken = shrinkEffects(estimates, usualEntry);
   const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL);
-  return { fit, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
+  return { fit, estimates, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
 }
 
 /** What stays the same for all candidates of a trait. */
@@ -73,6 +77,7 @@ interface TraitGround {
   readonly double: Weighed | null;
   readonly sites: number;
   readonly seasons: readonly number[];
+  readonly stability: ReadonlyMap<string, EntryStability>;
 }
 
 function gradeCandidate(ground: TraitGround, siteYears: number): EvidenceTier {
@@ -166,6 +171,8 @@ function weighOne(ground: TraitGround, candidate: string, leader: string | null)
     sensitivity,
     trials: lines,
     synthesis: synthesise(lines),
+    gapLine: fitGapLine(lines),
+    stability: ground.stability.get(candidate) ?? null,
     cautions: cautionCandidate({
       candidate,
       question,
@@ -184,6 +191,27 @@ function weighOne(ground: TraitGround, candidate: string, leader: string | null)
           : null,
     }),
   };
+}
+
+/** Current variety and candidates against the best of them. */
+function standings({ question, trait, weighed }: TraitGround): BestStanding[] | null {
+  if (question.kind !== 'best' || trait.better === 'neutral' || weighed === null) return null;
+  const { entries } = weighed.fit.frame;
+  const members = [question.current, ...question.candidates].map((entry) => entries.indexOf(entry));
+  return standAgainstBest(
+    weighed.estimates,
+    members.filter((at) => at >= 0),
+    trait.better,
+    LEVEL,
+  );
+}
+
+function measureStability(tables: readonly TrialTable[]): Map<string, EntryStability> {
+  const means = tables.flatMap(({ trial, cells }) =>
+    [...cells.values()].map(({ entry, mean }) => ({ entry, environment: trial.trial, mean })),
+  );
+  const result = new Set(means.map(({ entry }) => entry)).size < 2 ? null : analyseStability(means);
+  return new Map(result?.outcome === 'analysed' ? result.entries.map((row) => [row.entry, row]) : []);
 }
 
 /** Weighs the candidates of a question in one trait. `trials` are those of the question's seasons. */
@@ -208,6 +236,7 @@ export function weighTrait(
     double: frame && hasUsual ? weighCells(frame, trait, question, 2) : null,
     sites: new Set(used.map(({ site }) => site)).size,
     seasons: [...new Set(used.map(({ season }) => season))].sort((a, b) => a - b),
+    stability: measureStability(evidence.tables),
   };
   const leader = findLeader(ground);
   const fit = ground.weighed?.fit ?? null;
@@ -232,6 +261,7 @@ export function weighTrait(
           }
         : null,
     candidates: question.candidates.map((candidate) => weighOne(ground, candidate, leader)),
+    best: standings(ground),
     cautions: cautionEvidence({
       question,
       trait,
