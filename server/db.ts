@@ -4,11 +4,23 @@ import * as accounts from '#drizzle/schema/accounts.ts';
 import * as audit from '#drizzle/schema/audit.ts';
 import * as crops from '#drizzle/schema/crops.ts';
 import * as geography from '#drizzle/schema/geography.ts';
+import * as outbox from '#drizzle/schema/outbox.ts';
 import * as priceSheets from '#drizzle/schema/price-sheets.ts';
 import * as trials from '#drizzle/schema/trials.ts';
+import * as usualVariances from '#drizzle/schema/usual-variances.ts';
 import * as weighUps from '#drizzle/schema/weigh-ups.ts';
 
-const schema = { ...accounts, ...audit, ...crops, ...geography, ...priceSheets, ...trials, ...weighUps };
+const schema = {
+  ...accounts,
+  ...audit,
+  ...crops,
+  ...geography,
+  ...outbox,
+  ...priceSheets,
+  ...trials,
+  ...usualVariances,
+  ...weighUps,
+};
 
 export type Database = NodePgDatabase<typeof schema>;
 /** A transaction offers what the database does, so stores take either. */

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm';
-import { check, doublePrecision, index, pgTable, text, uuid } from 'drizzle-orm/pg-core';
+import { check, doublePrecision, index, pgTable, text, unique, uuid } from 'drizzle-orm/pg-core';
 
 /** A region in which varieties are recommended; an advisor works in one or more of them. */
 export const regions = pgTable('regions', {
@@ -38,5 +38,27 @@ export const sites = pgTable(
       'sites_soil_texture',
       sql`${table.soilTexture} in ('sand', 'sandy-loam', 'loam', 'silt-loam', 'clay-loam', 'clay')`,
     ),
+  ],
+);
+
+/** A town that an advisor may name instead of coordinates, with the normal of its growing season. */
+export const places = pgTable(
+  'places',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    name: text('name').notNull(),
+    regionId: uuid('region_id')
+      .notNull()
+      .references(() => regions.id),
+    latitude: doublePrecision('latitude').notNull(),
+    longitude: doublePrecision('longitude').notNull(),
+    seasonRainMm: doublePrecision('season_rain_mm').notNull(),
+    heatSumDegreeDays: doublePrecision('heat_sum_degree_days').notNull(),
+    soilTexture: text('soil_texture').notNull(),
+  },
+  (table) => [
+    unique('places_name_unique').on(table.regionId, table.name),
+    check('places_latitude_range', sql`${table.latitude} between -90 and 90`),
+    check('places_longitude_range', sql`${table.longitude} between -180 and 180`),
   ],
 );

@@ -56,6 +56,12 @@ export const seedCosts = pgTable(
     seedPerHectare: doublePrecision('seed_per_hectare').notNull(),
     treatmentPerHectare: doublePrecision('treatment_per_hectare').notNull().default(0),
     royaltyPerHectare: doublePrecision('royalty_per_hectare').notNull().default(0),
+    /** What a seeding rate is reckoned from; null where only the cost per hectare is known. */
+    seedPricePerKg: doublePrecision('seed_price_per_kg'),
+    thousandKernelWeightG: doublePrecision('thousand_kernel_weight_g'),
+    germinationPercent: doublePrecision('germination_percent'),
+    mortalityPercent: doublePrecision('mortality_percent'),
+    targetPlantsM2: doublePrecision('target_plants_m2'),
   },
   (table) => [
     primaryKey({ columns: [table.priceSheetId, table.varietyId] }),

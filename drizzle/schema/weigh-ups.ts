@@ -1,5 +1,6 @@
 import { sql } from 'drizzle-orm';
 import {
+  boolean,
   check,
   doublePrecision,
   index,
@@ -40,6 +41,28 @@ export const weighUps = pgTable(
       .references(() => varieties.id),
     /** MoneyAssumptions of shared/money.ts. */
     assumptions: jsonb('assumptions').notNull(),
+    /** several: these candidates against the current one; pair: one planned pair; best: the best of the list. */
+    question: text('question', { enum: ['several', 'pair', 'best'] })
+      .notNull()
+      .default('several'),
+    /** Where the farm lies and what grows there; null where nobody has said. */
+    farmLatitude: doublePrecision('farm_latitude'),
+    farmLongitude: doublePrecision('farm_longitude'),
+    farmSeasonRainMm: doublePrecision('farm_season_rain_mm'),
+    farmHeatSumDegreeDays: doublePrecision('farm_heat_sum_degree_days'),
+    farmSoilTexture: text('farm_soil_texture'),
+    /** The grower's usual yield of the crop at standard moisture, t/ha. */
+    usualYield: doublePrecision('usual_yield'),
+    /** region: its trials; nearest: those nearest the farm, whatever region they lie in. */
+    trialChoice: text('trial_choice', { enum: ['region', 'nearest'] })
+      .notNull()
+      .default('region'),
+    includeNeighbours: boolean('include_neighbours').notNull().default(false),
+    /** Trials ticked off by the advisor, each with its reason. */
+    tickedOff: jsonb('ticked_off').$type<{ trialId: string; reason: string }[]>().notNull().default([]),
+    /** Decision of shared/weigh-up.ts; null until one is recorded. */
+    decision: jsonb('decision'),
+    archivedAt: timestamp('archived_at', { withTimezone: true }),
     revision: integer('revision').notNull().default(1),
     createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
     updatedAt: timestamp('updated_at', { withTimezone: true }).notNull().defaultNow(),
@@ -48,6 +71,13 @@ export const weighUps = pgTable(
     index('weigh_ups_owner_idx').on(table.ownerId, table.updatedAt),
     check('weigh_ups_area_positive', sql`${table.areaHectares} > 0`),
     check('weigh_ups_season_order', sql`${table.seasonFrom} <= ${table.seasonTo}`),
+    check('weigh_ups_question', sql`${table.question} in ('several', 'pair', 'best')`),
+    check('weigh_ups_trial_choice', sql`${table.trialChoice} in ('region', 'nearest')`),
+    check(
+      'weigh_ups_farm_place',
+      sql`(${table.farmLatitude} is null) = (${table.farmLongitude} is null) and ${table.farmLatitude} between -90 and 90 and ${table.farmLongitude} between -180 and 180`,
+    ),
+    check('weigh_ups_usual_yield_positive', sql`${table.usualYield} > 0`),
   ],
 );
 
@@ -97,5 +127,38 @@ export const growerCopies = pgTable(
     check('grower_copies_token_hash_shape', sql`${table.tokenHash} ~ '^[0-9a-f]{64}$'`),
     check('grower_copies_language', sql`${table.language} in ('en', 'fr')`),
     check('grower_copies_expiry_order', sql`${table.expiresAt} > ${table.createdAt}`),
+  ],
+);
+
+/** A weigh-up being written: saved as it is typed, so that nothing is lost. */
+export const weighUpDrafts = pgTable(
+  'weigh_up_drafts',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    ownerId: uuid('owner_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    /** WeighUpDraft of shared/weigh-up.ts: any part of the question may still be missing. */
+    content: jsonb('content').notNull(),
+    revision: integer('revision').notNull().default(1),
+    updatedAt: timestamp('updated_at', { withTimezone: true }).notNull().defaultNow(),
+  },
+  (table) => [index('weigh_up_drafts_owner_idx').on(table.ownerId, table.updatedAt)],
+);
+
+/** Answers already computed, under a hash of trial versions, options and engine version: what changes any of them asks anew. */
+export const storedAnswers = pgTable(
+  'stored_answers',
+  {
+    /** SHA-256 in hex of what the answer rests on. */
+    key: text('key').primaryKey(),
+    answer: jsonb('answer').notNull(),
+    engineVersion: text('engine_version').notNull(),
+    computedAt: timestamp('computed_at', { withTimezone: true }).notNull().defaultNow(),
+    lastUsedAt: timestamp('last_used_at', { withTimezone: true }).notNull().defaultNow(),
+  },
+  (table) => [
+    index('stored_answers_last_used_idx').on(table.lastUsedAt),
+    check('stored_answers_key_shape', sql`${table.key} ~ '^[0-9a-f]{64}$'`),
   ],
 );
