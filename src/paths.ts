@@ -7,9 +7,13 @@ export const paths = {
   weighUp: '/weigh-ups/:weighUpId',
   trials: '/trials',
   trial: '/trials/:trialId',
-  trialDesk: '/trial-desk',
-  deskTrial: '/trial-desk/:trialId',
+  trialDesk: '/desk',
+  deskImport: '/desk/import',
+  deskTrial: '/desk/trials/:trialId',
   accounts: '/accounts',
+  newAccount: '/accounts/new',
+  auditLog: '/accounts/audit-log',
+  growerCopy: '/copy/:token',
 } as const;
 
 /** Fills the parameters of a path in: `fillPath(paths.trial, { trialId })`. */

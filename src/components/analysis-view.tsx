@@ -43,7 +43,7 @@ export function AnalysisView(props: AnalysisViewProps) {
         <DiagnosticList diagnostics={analysis.diagnostics} />
       </div>
       <SpatialModels models={analysis.spatial} unit={unit} decimals={decimals} />
-      {onEntry && (
+      {onEntry && analysis.gaps.length > 0 && (
         <PairsTable analysis={analysis} unit={unit} decimals={decimals} entry={entry} onEntry={onEntry} />
       )}
     </div>

@@ -31,7 +31,7 @@ export function PairsTable({ analysis, unit, decimals, entry, onEntry }: PairsTa
   const { t } = useTranslation('analysis');
   const format = useFormat();
   const [isWhole, setWhole] = useState(false);
-  if (analysis.gaps.length === 0) return null;
+  const columns = usePairColumns(analysis, unit, decimals);
   const names = analysis.means.map((mean) => mean.entry);
   const pairs = analysis.gaps
     .filter((gap) => entry === null || gap.a === entry || gap.b === entry)
@@ -55,7 +55,7 @@ export function PairsTable({ analysis, unit, decimals, entry, onEntry }: PairsTa
       </Field>
       <DataTable
         caption={t('pairs.caption')}
-        columns={usePairColumns(analysis, unit, decimals)}
+        columns={columns}
         rows={shown}
         rowKey={(gap) => `${gap.a}\n${gap.b}`}
       />

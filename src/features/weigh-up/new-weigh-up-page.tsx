@@ -1,0 +1,160 @@
+import { useEffect } from 'react';
+import { zodResolver } from '@hookform/resolvers/zod';
+import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { useForm, type UseFormReturn } from 'react-hook-form';
+import { useTranslation } from 'react-i18next';
+import { useNavigate, useSearchParams } from 'react-router-dom';
+import type { MoneyAssumptions } from '#shared/money.ts';
+import { createWeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
+import { callApi } from '#src/api-client.ts';
+import { catalogueQuery, type Catalogue } from '#src/catalogue.ts';
+import { Button } from '#src/components/button.tsx';
+import { ErrorState } from '#src/components/error-state.tsx';
+import { NoVerdict } from '#src/components/no-verdict.tsx';
+import { PageHeading } from '#src/components/page-heading.tsx';
+import { Skeleton } from '#src/components/skeleton.tsx';
+import { fillPath, paths } from '#src/paths.ts';
+import { QueryErrorState } from '#src/query-error-state.tsx';
+import { useErrorText } from '#src/use-error-text.ts';
+import { CandidatePicker } from './candidate-picker.tsx';
+import { FarmFields, PriceFields } from './farm-fields.tsx';
+import {
+  newWeighUpForm,
+  toWeighUpInput,
+  type NewWeighUpDraft,
+  type NewWeighUpForm,
+} from './new-weigh-up-form.ts';
+import { lacksTrials, readQuestion, toCandidateQuestion, type QuestionDraft } from './question-draft.ts';
+import { QuestionFields } from './question-fields.tsx';
+import { candidatesQuery, weighUpsQuery, type CandidateQuestion } from './weigh-up-queries.ts';
+
+export type NewWeighUpFormApi = UseFormReturn<NewWeighUpDraft, unknown, NewWeighUpForm>;
+
+/** A new weigh-up on one page: the question, the candidates with their verdicts, the farm. */
+export function NewWeighUpPage() {
+  const { t } = useTranslation('weigh-up');
+  const catalogue = useQuery(catalogueQuery);
+  return (
+    <>
+      <PageHeading title={t('new.title')} below={t('new.lead')} />
+      {catalogue.isPending && <Skeleton lines={6} />}
+      {catalogue.isError && <QueryErrorState query={catalogue} />}
+      {catalogue.data && <QuestionForm catalogue={catalogue.data} />}
+    </>
+  );
+}
+
+function useCreateWeighUp() {
+  const client = useQueryClient();
+  const navigate = useNavigate();
+  return useMutation({
+    mutationFn: async (body: WeighUpInput) => (await callApi(createWeighUp, { body })).weighUp,
+    onSuccess: async (weighUp) => {
+      await client.invalidateQueries({ queryKey: weighUpsQuery.queryKey });
+      void navigate(fillPath(paths.weighUp, { weighUpId: weighUp.id }));
+    },
+  });
+}
+
+function QuestionForm({ catalogue }: { catalogue: Catalogue }) {
+  const { t } = useTranslation('weigh-up');
+  const [search] = useSearchParams();
+  const draft = readQuestion(search, catalogue);
+  const question = toCandidateQuestion(draft);
+  const form = useForm<NewWeighUpDraft, unknown, NewWeighUpForm>({
+    resolver: zodResolver(newWeighUpForm),
+    defaultValues: {
+      growerName: '',
+      farmName: '',
+      areaHectares: null,
+      priceLow: null,
+      priceMiddle: null,
+      priceHigh: null,
+    },
+  });
+  return (
+    <div className="flex flex-col gap-8">
+      <section className="flex flex-col gap-4">
+        <h2>{t('new.question')}</h2>
+        <QuestionFields draft={draft} catalogue={catalogue} />
+      </section>
+      {lacksTrials(draft) && draft.crop && draft.region && (
+        <NoVerdict
+          crop={draft.crop.name}
+          region={draft.region.name}
+          from={draft.seasonFrom}
+          to={draft.seasonTo}
+        />
+      )}
+      {!lacksTrials(draft) && !question && <p className="text-faded">{t('new.candidatesWait')}</p>}
+      {question && <CandidatesAndFarm draft={draft} question={question} form={form} />}
+    </div>
+  );
+}
+
+type CandidatesAndFarmProps = { draft: QuestionDraft; question: CandidateQuestion; form: NewWeighUpFormApi };
+
+/** The prices of the sheet stand in the form until they are typed over. */
+function useSheetPrices(form: NewWeighUpFormApi, defaults: MoneyAssumptions | null): void {
+  useEffect(() => {
+    if (defaults === null) return;
+    for (const name of ['priceLow', 'priceMiddle', 'priceHigh'] as const) {
+      if (form.getFieldState(name).isDirty) continue;
+      form.resetField(name, { defaultValue: defaults[name] });
+    }
+  }, [form, defaults]);
+}
+
+function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
+  const { t } = useTranslation('weigh-up');
+  const errorText = useErrorText();
+  const candidates = useQuery(candidatesQuery(question));
+  const creation = useCreateWeighUp();
+  const defaults = candidates.data?.assumptions ?? null;
+  useSheetPrices(form, defaults);
+  if (candidates.isPending) return <Skeleton lines={8} />;
+  if (candidates.isError) return <QueryErrorState query={candidates} />;
+  const { result } = candidates.data;
+  const { crop, region } = draft;
+  if (result.answer === 'no-trials' && crop && region) {
+    return <NoVerdict crop={crop.name} region={region.name} from={draft.seasonFrom} to={draft.seasonTo} />;
+  }
+  const currentName = crop?.varieties.find(({ id }) => id === draft.currentVarietyId)?.name ?? '';
+  const isChosen = draft.candidateIds.length > 0;
+  return (
+    <form
+      noValidate
+      className="flex flex-col gap-8"
+      onSubmit={(event) =>
+        void form.handleSubmit((typed) => {
+          if (isChosen) creation.mutate(toWeighUpInput(typed, question, draft.candidateIds, defaults));
+        })(event)
+      }
+    >
+      <section className="flex flex-col gap-3">
+        <h2>{t('new.candidates')}</h2>
+        <p className="text-faded">{t('new.candidatesLead')}</p>
+        {result.candidates.length === 0 ? (
+          <p>{t('new.noCandidates')}</p>
+        ) : (
+          <CandidatePicker
+            candidates={result.candidates}
+            chosenIds={draft.candidateIds}
+            currentName={currentName}
+          />
+        )}
+        {form.formState.isSubmitted && !isChosen && (
+          <p role="alert" className="font-semibold text-stop">
+            {t('new.chooseOne')}
+          </p>
+        )}
+      </section>
+      <FarmFields form={form} />
+      <PriceFields form={form} defaults={defaults} />
+      {creation.isError && <ErrorState message={errorText(creation.error)} />}
+      <Button type="submit" tone="main" isBusy={creation.isPending} className="self-start">
+        {creation.isPending ? t('new.creating') : t('new.create')}
+      </Button>
+    </form>
+  );
+}

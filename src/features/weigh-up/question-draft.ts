@@ -1,0 +1,59 @@
+import type { Catalogue } from '#src/catalogue.ts';
+import type { Crop, Region } from '#shared/catalogue.ts';
+import type { CandidateQuestion } from './weigh-up-queries.ts';
+
+/** Most candidates of one weigh-up; the contract refuses more. */
+export const mostCandidates = 8;
+
+/** How many seasons a new question spans by default, as the trade usually looks back. */
+const usualSpan = 3;
+
+/** The question as the address holds it, with what could be made of it. */
+export type QuestionDraft = {
+  crop: Crop | undefined;
+  region: Region | undefined;
+  seasonFrom: number;
+  seasonTo: number;
+  currentVarietyId: string;
+  candidateIds: readonly string[];
+};
+
+/** Reads the question from the address: crop and region by slug, varieties by id; what the catalogue lacks is dropped. */
+export function readQuestion(search: URLSearchParams, catalogue: Catalogue): QuestionDraft {
+  const crop = catalogue.crops.find(({ slug }) => slug === search.get('crop'));
+  const region = catalogue.regions.find(({ slug }) => slug === search.get('region'));
+  const seasons = crop?.seasons ?? [];
+  const newest = Math.max(...seasons, 0);
+  const oldest = Math.min(...seasons, newest);
+  const season = (name: string, otherwise: number) => {
+    const asked = Number(search.get(name));
+    return seasons.includes(asked) ? asked : otherwise;
+  };
+  const isVariety = (id: string) => crop?.varieties.some((variety) => variety.id === id) === true;
+  const current = search.get('current') ?? '';
+  const currentVarietyId = isVariety(current) ? current : '';
+  const candidateIds = (search.get('candidates') ?? '')
+    .split(',')
+    .filter((id, place, all) => isVariety(id) && id !== currentVarietyId && all.indexOf(id) === place)
+    .slice(0, mostCandidates);
+  return {
+    crop,
+    region,
+    seasonFrom: season('from', Math.max(oldest, newest - usualSpan + 1)),
+    seasonTo: season('to', newest),
+    currentVarietyId,
+    candidateIds,
+  };
+}
+
+/** Whether the region has no published trial of the crop: then there is no verdict, and it is said at once. */
+export function lacksTrials({ crop, region }: QuestionDraft): boolean {
+  return crop !== undefined && region !== undefined && (region.publishedTrials[crop.slug] ?? 0) === 0;
+}
+
+/** The question for the list of candidates; null until it is whole. */
+export function toCandidateQuestion(draft: QuestionDraft): CandidateQuestion | null {
+  const { crop, region, seasonFrom, seasonTo, currentVarietyId } = draft;
+  if (!crop || !region || currentVarietyId === '' || seasonFrom > seasonTo || lacksTrials(draft)) return null;
+  return { cropId: crop.id, regionId: region.id, seasonFrom, seasonTo, currentVarietyId };
+}

@@ -1,0 +1,57 @@
+import { useEffect, useMemo, useState } from 'react';
+import { zodResolver } from '@hookform/resolvers/zod';
+import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
+import type { MoneyAssumptions } from '#shared/money.ts';
+import type { WeighUp } from '#shared/weigh-up.ts';
+import { moneyForm, toAssumptions, toMoneyDraft, type MoneyDraft, type MoneyForm } from './money-form.ts';
+
+export type MoneyFormApi = UseFormReturn<MoneyDraft, unknown, MoneyForm>;
+
+export type ReckonedMoney = {
+  form: MoneyFormApi;
+  /** The weigh-up whose numbers were last put into the panel: what is saved is a change of this revision. */
+  base: WeighUp;
+  /** Puts the numbers of a weigh-up into the panel, over what was typed. */
+  take: (weighUp: WeighUp) => void;
+  /** The last numbers that fitted: what the page reckons with. */
+  assumptions: MoneyAssumptions;
+  areaHectares: number;
+  /** Whether what is typed now fits. */
+  isValid: boolean;
+};
+
+/** The money panel's form, with the assumptions it stands for at every edit. */
+export function useMoneyForm(weighUp: WeighUp): ReckonedMoney {
+  const [base, setBase] = useState(weighUp);
+  const form = useForm<MoneyDraft, unknown, MoneyForm>({
+    resolver: zodResolver(moneyForm),
+    defaultValues: toMoneyDraft(weighUp),
+    mode: 'onChange',
+  });
+  const take = (next: WeighUp) => {
+    setBase(next);
+    form.reset(toMoneyDraft(next));
+  };
+  const { isDirty } = form.formState;
+  // Saved elsewhere meanwhile: an untouched panel follows, a touched one keeps its base, so that saving meets the conflict.
+  if (weighUp.revision !== base.revision && !isDirty) setBase(weighUp);
+  useEffect(() => form.reset(toMoneyDraft(base)), [form, base]);
+  const typed = useWatch({ control: form.control });
+  const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
+  const fitting = useLastFitting(parsed.success ? parsed.data : undefined, base);
+  return {
+    form,
+    base,
+    take,
+    assumptions: useMemo(() => toAssumptions(fitting, base.assumptions), [fitting, base]),
+    areaHectares: fitting.areaHectares,
+    isValid: parsed.success,
+  };
+}
+
+/** What fits now, else what fitted last: the page goes on showing figures while a number is being typed. */
+function useLastFitting(now: MoneyForm | undefined, base: WeighUp): MoneyForm {
+  const [last, setLast] = useState(() => moneyForm.parse(toMoneyDraft(base)));
+  if (now !== undefined && now !== last) setLast(now);
+  return now ?? last;
+}

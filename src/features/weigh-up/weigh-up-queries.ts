@@ -1,0 +1,35 @@
+import { keepPreviousData, queryOptions } from '@tanstack/react-query';
+import { listGrowerCopies } from '#shared/grower-copy.ts';
+import { listCandidates, listWeighUps, readWeighUp, type candidateQuery } from '#shared/weigh-up.ts';
+import type { z } from 'zod';
+import { callApi } from '#src/api-client.ts';
+
+/** A question as far as the list of candidates needs it. */
+export type CandidateQuestion = z.output<typeof candidateQuery>;
+
+export const weighUpsQuery = queryOptions({
+  queryKey: ['weigh-ups'],
+  queryFn: async ({ signal }) => (await callApi(listWeighUps, {}, signal)).weighUps,
+});
+
+/** A weigh-up with its result, computed by the server for the versions that count now. */
+export const weighUpQuery = (weighUpId: string) =>
+  queryOptions({
+    queryKey: ['weigh-up', weighUpId],
+    queryFn: ({ signal }) => callApi(readWeighUp, { params: { weighUpId } }, signal),
+  });
+
+/** All varieties with trials, weighed against the current one, with the price sheet's defaults. */
+export const candidatesQuery = (question: CandidateQuestion) =>
+  queryOptions({
+    queryKey: ['candidates', question],
+    queryFn: ({ signal }) => callApi(listCandidates, { query: question }, signal),
+    placeholderData: keepPreviousData,
+  });
+
+export const growerCopiesQuery = (weighUpId: string) =>
+  queryOptions({
+    queryKey: ['weigh-up', weighUpId, 'grower-copies'],
+    queryFn: async ({ signal }) =>
+      (await callApi(listGrowerCopies, { params: { weighUpId } }, signal)).copies,
+  });
