@@ -12,10 +12,14 @@ import { changeLanguage } from './i18n.ts';
 import { paths } from './paths.ts';
 import { useErrorText } from './use-error-text.ts';
 
-/** Who is signed in; null for nobody. */
+/** Who is signed in; null for nobody. Asked when the page is loaded: the account's language then holds on any device. */
 export const meQuery = queryOptions({
   queryKey: ['me'],
-  queryFn: async ({ signal }) => (await callApi(readMe, {}, signal)).me,
+  queryFn: async ({ signal }) => {
+    const { me } = await callApi(readMe, {}, signal);
+    if (me) await changeLanguage(me.language);
+    return me;
+  },
   staleTime: Infinity,
 });
 

@@ -1,8 +1,6 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { afterEach, describe, expect, it, vi } from 'vitest';
-import { changeMe } from '#shared/account.ts';
-import { callApi } from '#src/api-client.ts';
 import { AppRoutes } from '#src/routes.tsx';
 import { readNext } from '#src/paths.ts';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -21,6 +19,7 @@ type Answer = { status: number; body: unknown };
 /** A server in miniature: knows who is signed in, and takes one password. */
 function stubServer(start: { isSignedIn: boolean }) {
   let isSignedIn = start.isSignedIn;
+  let language = person.language;
   const answers: Record<string, (body: string) => Answer> = {
     'GET /api/me': () => ({ status: 200, body: { me: isSignedIn ? person : null } }),
     'POST /api/session': (body) => {
@@ -29,10 +28,11 @@ function stubServer(start: { isSignedIn: boolean }) {
       isSignedIn = true;
       return { status: 200, body: { me: person } };
     },
-    'PATCH /api/me': () =>
-      isSignedIn
-        ? { status: 200, body: { me: person } }
-        : { status: 401, body: { error: { code: 'not-signed-in' } } },
+    'PATCH /api/me': (body) => {
+      if (!isSignedIn) return { status: 401, body: { error: { code: 'not-signed-in' } } };
+      language = body.includes('"en"') ? 'en' : 'fr';
+      return { status: 200, body: { me: { ...person, language } } };
+    },
   };
   vi.stubGlobal('fetch', (address: string, init: RequestInit) => {
     const found = answers[`${init.method ?? 'GET'} ${address}`];
@@ -46,6 +46,7 @@ function stubServer(start: { isSignedIn: boolean }) {
     expireSession: () => {
       isSignedIn = false;
     },
+    languageOfAccount: () => language,
   };
 }
 
@@ -89,18 +90,19 @@ describe('a session that has run out', () => {
   it('opens the sign-in dialog over the page and then finishes what was asked', async () => {
     const server = stubServer({ isSignedIn: true });
     await renderClient(<AppRoutes />, { at: '/nowhere' });
-    await screen.findByRole('heading', { level: 1, name: 'Nothing here' });
-    await screen.findByRole('button', { name: 'Sign out' });
+    await screen.findByRole('heading', { level: 1, name: 'Rien à cette adresse' });
+    await screen.findByRole('button', { name: 'Se déconnecter' });
     server.expireSession();
-    const asked = callApi(changeMe, { body: { language: 'fr' } });
+    await userEvent.click(screen.getByRole('button', { name: 'English' }));
     await screen.findByRole('dialog', { name: 'Please sign in again' });
     expect(screen.getByRole('heading', { level: 1, name: 'Nothing here' })).toBeTruthy();
     const email = await screen.findByLabelText<HTMLInputElement>('E-mail');
     expect(email.value).toBe('ines@example.org');
     await userEvent.type(screen.getByLabelText('Password'), 'right-password');
     await userEvent.click(screen.getByRole('button', { name: 'Sign in' }));
-    expect(await asked).toEqual({ me: person });
     await waitFor(() => expect(screen.queryByRole('dialog')).toBeNull());
+    await waitFor(() => expect(server.languageOfAccount()).toBe('en'));
+    expect(document.documentElement.lang).toBe('en');
   });
 });
 

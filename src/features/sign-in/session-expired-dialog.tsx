@@ -2,7 +2,7 @@ import { lazy, Suspense, useEffect, useState } from 'react';
 import { useQuery, useQueryClient } from '@tanstack/react-query';
 import type { Me } from '#shared/account.ts';
 import { onSessionExpired } from '#src/api-client.ts';
-import { enterSession, meQuery } from '#src/session.ts';
+import { meQuery } from '#src/session.ts';
 
 /** Fetched when first needed: forms are no part of the first page. */
 const SignInAgain = lazy(async () => ({ default: (await import('./sign-in-again.tsx')).SignInAgain }));
@@ -24,20 +24,16 @@ export function SessionExpiredDialog() {
     waiting.forEach((resolve) => resolve(isSignedIn));
     setWaiting([]);
   };
-  const continueAs = async (next: Me) => {
+  const continueAs = (next: Me) => {
     // What is on the page belongs to the person before: another one starts afresh.
     if (person && person.id !== next.id) return window.location.reload();
-    await enterSession(client, next);
+    client.setQueryData(meQuery.queryKey, next);
     answer(true);
   };
   if (waiting.length === 0) return null;
   return (
     <Suspense fallback={null}>
-      <SignInAgain
-        defaultEmail={person?.email ?? ''}
-        onSignedIn={(next) => void continueAs(next)}
-        onClose={() => answer(false)}
-      />
+      <SignInAgain defaultEmail={person?.email ?? ''} onSignedIn={continueAs} onClose={() => answer(false)} />
     </Suspense>
   );
 }
