@@ -78,7 +78,7 @@ export async function makeCrop(
       .returning(),
   );
   const yieldOfCrop = await makeTrait(db, crop.id, { slug: 'yield', nameEn: 'Yield', nameFr: 'Rendement' });
-  for (const trait of otherTraits) await makeTrait(db, crop.id, trait);
+  for (const [i, trait] of otherTraits.entries()) await makeTrait(db, crop.id, { position: i + 1, ...trait });
   return { ...crop, yield: yieldOfCrop };
 }
 
