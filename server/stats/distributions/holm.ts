@@ -4,7 +4,9 @@
  * @param tests number of tests in the family, at least as many as ps
  */
 export function bonferroniAdjust(ps: ArrayLike<number>, tests: number = ps.length): Float64Array {
-  return Float64Array.from(ps, (p) => Math.min(1, p * tests));
+  const adjusted = new Float64Array(ps.length);
+  for (let i = 0; i < adjusted.length; i += 1) adjusted[i] = Math.min(1, (ps[i] as number) * tests);
+  return adjusted;
 }
 
 /**
@@ -14,12 +16,15 @@ export function bonferroniAdjust(ps: ArrayLike<number>, tests: number = ps.lengt
  */
 export function holmAdjust(ps: ArrayLike<number>): Float64Array {
   const values = Float64Array.from(ps);
-  const order = Array.from(values.keys()).sort((i, j) => (values[i] ?? 0) - (values[j] ?? 0));
+  const order = new Uint32Array(values.length);
+  for (let i = 0; i < order.length; i += 1) order[i] = i;
+  order.sort((i, j) => (values[i] as number) - (values[j] as number));
   const adjusted = new Float64Array(values.length);
   let running = 0;
-  order.forEach((index, rank) => {
-    running = Math.max(running, Math.min(1, (values[index] ?? 0) * (values.length - rank)));
+  for (let rank = 0; rank < order.length; rank += 1) {
+    const index = order[rank] as number;
+    running = Math.max(running, Math.min(1, (values[index] as number) * (values.length - rank)));
     adjusted[index] = running;
-  });
+  }
   return adjusted;
 }

@@ -24,22 +24,24 @@ export function averageOverScale(tail: ScaledTail, q: number, df: number, step =
   const a = df / 2;
   const constant = Math.LN2 + logGammaConstant(a);
   const h = step * Math.min(0.06, 0.4 / Math.sqrt(a));
-  const density = (v: number): number => {
-    const square = Math.expm1(2 * v);
-    const w = q * Math.sqrt(1 + square);
-    return Math.exp(constant - a * (square - 2 * v) - decay * w * w) * tail.scaled(w);
-  };
   const centre = 0.5 * Math.log(a / (a + decay * q * q));
-  const top = density(centre);
+  const top = scaleDensity(tail, q, a, constant, centre);
   let sum = top;
-  for (const direction of [h, -h]) {
+  for (let side = -1; side <= 1; side += 2) {
     let previous = top;
     for (let j = 1; ; j += 1) {
-      const term = density(centre + j * direction);
+      const term = scaleDensity(tail, q, a, constant, centre + side * j * h);
       sum += term;
       if (term <= sum * NEGLIGIBLE && term <= previous) break;
       previous = term;
     }
   }
   return Math.min(1, sum * h);
+}
+
+/** The integrand at v = ln S: the density of v times the tail at q S. */
+function scaleDensity(tail: ScaledTail, q: number, a: number, constant: number, v: number): number {
+  const square = Math.expm1(2 * v);
+  const w = q * Math.sqrt(1 + square);
+  return Math.exp(constant - a * (square - 2 * v) - tail.decay * w * w) * tail.scaled(w);
 }

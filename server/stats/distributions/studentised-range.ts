@@ -36,6 +36,11 @@ function rangeUpper(w: number, k: number, step = STEP): number {
 
 const tails = new Map<number, ScaledTail>();
 
+/** From this many pairs on a table of the tail costs less than the pairs one by one. */
+const MANY_PAIRS = 200;
+/** Beyond this a table would be filled for single pairs. */
+const LAST_TABULATED = 20;
+
 /** The tabulated tail for k values; kept, since every pair of a trial asks for the same one. */
 function rangeTail(k: number): ScaledTail {
   let tail = tails.get(k);
@@ -90,5 +95,14 @@ export function studentisedRangeQuantile(p: number, k: number, df: number): numb
  * Source: Kramer (1956), Biometrics 12:307–310; P(Q > √2 |t|).
  */
 export function tukeyAdjust(ts: ArrayLike<number>, k: number, df: number): Float64Array {
-  return Float64Array.from(ts, (t) => studentisedRangeUpper(Math.SQRT2 * Math.abs(t), k, df));
+  // many pairs share one curve: its logarithm is smooth, so that a table of it keeps relative accuracy
+  const curve =
+    ts.length < MANY_PAIRS ? null : tabulateTail((q) => Math.log(studentisedRangeUpper(q, k, df)), 0);
+  const out = new Float64Array(ts.length);
+  for (let i = 0; i < out.length; i += 1) {
+    const q = Math.SQRT2 * Math.abs(ts[i] as number);
+    const tabulated = curve && q < LAST_TABULATED ? Math.exp(curve.scaled(q)) : Number.NaN;
+    out[i] = tabulated > 0 ? Math.min(1, tabulated) : studentisedRangeUpper(q, k, df);
+  }
+  return out;
 }
