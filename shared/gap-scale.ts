@@ -20,7 +20,7 @@ function chooseStep(span: number, most: number): number {
  * @param values estimates, interval ends and break-even gaps, one unit; what is not finite is left out
  * @param mostSteps the most steps between labelled ticks
  */
-export function spanScale(values: readonly number[], mostSteps = 6): Scale {
+export function spanScale(values: readonly number[], mostSteps = 9): Scale {
   const finite = values.filter((value) => Number.isFinite(value));
   const lowest = Math.min(0, ...finite);
   const highest = Math.max(0, ...finite);

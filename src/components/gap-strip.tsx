@@ -37,6 +37,11 @@ type GapStripProps = {
   decimals: number;
 };
 
+/** Too few trials for a verdict are too few for an interval: whatever a model would give is not shown. */
+function withoutThinIntervals(row: GapStripRow): GapStripRow {
+  return row.verdict === 'thin' ? { ...row, region: null, ownSeason: null } : row;
+}
+
 /**
  * One scale that holds every row's estimate and intervals. A break-even gap far beyond them is left off the scale, so that
  * one absurd cost does not press all rows together: its label then stands at the edge, with an arrow.
@@ -61,8 +66,9 @@ export function scaleOfRows(rows: readonly GapStripRow[]): Scale {
 }
 
 /** The signature drawing: a list of gaps to the current variety on one shared scale, with what is left uncertain. */
-export function GapStrip({ title, rows, currentName, unit, decimals }: GapStripProps) {
+export function GapStrip({ title, rows: given, currentName, unit, decimals }: GapStripProps) {
   const { t } = useTranslation('drawings');
+  const rows = given.map(withoutThinIntervals);
   const scale = scaleOfRows(rows);
   const shared = { scale, currentName, unit, decimals };
   return (

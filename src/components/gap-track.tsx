@@ -9,6 +9,12 @@ function labelLeft(scale: Scale, value: number, half: string): string {
 
 const percent = (scale: Scale, value: number) => `${placeOnScale(scale, value)}%`;
 
+/** Every second tick from zero on: the figures that a phone has room for. */
+function isEverySecond(scale: Scale, tick: number): boolean {
+  const [first = 0, second = 1] = scale.ticks;
+  return Math.round(tick / (second - first)) % 2 === 0;
+}
+
 type GapAxisProps = { scale: Scale; zeroLabel: string };
 
 /** The head of a list of gaps: what zero stands for, and the figures of the one scale that all rows share. */
@@ -26,7 +32,7 @@ export function GapAxis({ scale, zeroLabel }: GapAxisProps) {
       {scale.ticks.map((tick) => (
         <span
           key={tick}
-          className="absolute top-5 -translate-x-1/2 whitespace-nowrap"
+          className={`absolute top-5 -translate-x-1/2 whitespace-nowrap ${isEverySecond(scale, tick) ? '' : '@max-lg:hidden'}`}
           style={{ left: percent(scale, tick) }}
         >
           {format.number(tick, { decimals: tick === 0 ? 0 : decimals, isSigned: true })}

@@ -41,7 +41,7 @@ export function MeansPlot({ means, scale, lsd, formatMean }: MeansPlotProps) {
         layout="horizontal"
         margin={{ top: 0, right: figureWidth, bottom: rulerHeight, left: nameWidth(means) }}
         padding={0.35}
-        valueScale={{ type: 'linear', min: scale.low, max: scale.high, clamp: true }}
+        valueScale={{ type: 'linear', min: scale.low, max: scale.high, nice: false, clamp: true }}
         colors={() => 'var(--color-level)'}
         enableLabel={false}
         enableGridX={false}

@@ -31,7 +31,7 @@ describe('the shared scale', () => {
         expect(places).toEqual([...places].sort((a, b) => a - b));
         expect(Math.min(...places)).toBeGreaterThan(0);
         expect(Math.max(...places)).toBeLessThan(100);
-        expect(scale.ticks.length).toBeLessThanOrEqual(7);
+        expect(scale.ticks.length).toBeLessThanOrEqual(10);
         expect(scale.ticks).toContain(0);
       }),
     );

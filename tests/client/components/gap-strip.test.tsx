@@ -78,8 +78,10 @@ describe('the gap strip', () => {
   });
 
   it('shows a thin row as a dotted tick with words, and no interval', async () => {
-    await renderClient(strip([haverill]));
+    await renderClient(strip([{ ...haverill, region: at95(-2, 4), ownSeason: at95(-3, 5) }]));
     const picture = screen.getByRole('img', { name: /Too few trials for an interval/ });
+    expect(picture.getAttribute('aria-label')).not.toContain('Region’s average');
+    expect(picture.querySelector('[data-mark="own-season"]')).toBeNull();
     expect(picture.querySelector('[data-mark="region"]')).toBeNull();
     expect(markOf(picture, 'estimate').querySelector('[stroke-dasharray]')).not.toBeNull();
     expect(screen.getByText('too few trials for an interval')).toBeTruthy();
