@@ -1,5 +1,5 @@
 import type { Language, Me } from '#shared/account.ts';
-import type { GrowerCopyLine, GrowerCopySnapshot } from '#shared/grower-copy.ts';
+import { growerCopySnapshot, type GrowerCopyLine, type GrowerCopySnapshot } from '#shared/grower-copy.ts';
 import type { Database } from '#server/db.ts';
 import { answerWeighUp } from '#server/weigh-up/answer-question.ts';
 import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
@@ -25,7 +25,7 @@ export async function makeCopy(
   return { copy, path: `/copy/${secret}` };
 }
 
-/** Everything the copy will show, as it is now. */
+/** Everything the copy will show, as it is now; the parse keeps out what a copy does not declare. */
 async function takeSnapshot(
   db: Database,
   advisor: Pick<Me, 'id' | 'name' | 'email'>,
@@ -33,7 +33,7 @@ async function takeSnapshot(
 ): Promise<GrowerCopySnapshot> {
   const weighUp = await readOwnWeighUp(db, advisor.id, weighUpId);
   const { result, traits } = await answerWeighUp(db, weighUp);
-  return {
+  return growerCopySnapshot.parse({
     format: 1,
     weighUp,
     result,
@@ -42,5 +42,5 @@ async function takeSnapshot(
     advisorEmail: advisor.email,
     madeAt: new Date().toISOString(),
     engineVersion: result.engineVersion,
-  };
+  });
 }
