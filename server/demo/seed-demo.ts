@@ -1,10 +1,19 @@
-import { sql } from 'drizzle-orm';
+import { eq, inArray, sql } from 'drizzle-orm';
+import { users } from '#drizzle/schema/accounts.ts';
 import type { Language, Role } from '#shared/account.ts';
 import type { Database } from '#server/db.ts';
+import { listOwnWeighUps } from '#server/weigh-up/weigh-up-store.ts';
 import { demoAccounts } from './demo-accounts.ts';
+import type { DemoPriceSheet } from './demo-prices.ts';
 import { generateDemo } from './generate-demo.ts';
-import { storeDemoCatalogue, storeDemoPrices } from './store-demo-catalogue.ts';
+import {
+  listDemoIds,
+  storeDemoCatalogue,
+  storeDemoPrices,
+  type CatalogueIds,
+} from './store-demo-catalogue.ts';
 import { storeDemoTrials } from './store-demo-trials.ts';
+import { storeDemoWeighUp } from './store-demo-weigh-up.ts';
 
 export type SeededDemo = {
   /** Whether this call filled the database; false where it held trials or accounts already. */
@@ -18,28 +27,52 @@ export type SeededDemo = {
 const seedLock = 7_240_312;
 
 /**
- * Fills an empty database with the demo of Velmar, in one transaction. A database that holds trials, regions or accounts
- * is left as it is.
+ * Fills an empty database with the demo of Velmar. A database that holds trials, regions or accounts is left as it is;
+ * of the demo's accounts those are told that it has.
  */
 export async function seedDemo(db: Database): Promise<SeededDemo> {
-  const accounts = Object.values(demoAccounts).map(({ role, name, email, password, language }) => ({
-    role,
-    name,
-    email,
-    password,
-    language,
-  }));
+  const ids = listDemoIds();
+  const { trials, priceSheets } = generateDemo();
   const isFresh = await db.transaction(async (tx) => {
     await tx.execute(sql`select pg_advisory_xact_lock(${seedLock})`);
     const found = await tx.execute<{ filled: boolean }>(
       sql`select exists (select from trials) or exists (select from users) or exists (select from regions) as filled`,
     );
     if (found.rows[0]?.filled !== false) return false;
-    const scenario = generateDemo();
-    const ids = await storeDemoCatalogue(tx);
-    await storeDemoPrices(tx, scenario.priceSheets, ids);
-    await storeDemoTrials(tx, scenario.trials, ids);
+    await storeDemoCatalogue(tx, ids);
+    await storeDemoPrices(tx, priceSheets, ids);
+    await storeDemoTrials(tx, trials, ids);
     return true;
   });
-  return { isFresh, accounts, growerPath: null };
+  const accounts = await findDemoAccounts(db);
+  return { isFresh, accounts, growerPath: await giveAdvisorWeighUp(db, priceSheets, ids) };
+}
+
+/** After the trials, not with them: so a start that was killed in between is made good by the next. */
+async function giveAdvisorWeighUp(
+  db: Database,
+  priceSheets: readonly DemoPriceSheet[],
+  ids: CatalogueIds,
+): Promise<string | null> {
+  const [advisor] = await db.select({ id: users.id }).from(users).where(eq(users.id, ids.accounts.advisor));
+  if (advisor === undefined || (await listOwnWeighUps(db, advisor.id)).length > 0) return null;
+  return (await storeDemoWeighUp(db, priceSheets, ids)).growerPath;
+}
+
+/** The demo's accounts that this database knows under their addresses. */
+async function findDemoAccounts(db: Database): Promise<SeededDemo['accounts']> {
+  const all = Object.values(demoAccounts);
+  const known = await db
+    .select({ email: users.email })
+    .from(users)
+    .where(
+      inArray(
+        users.email,
+        all.map((account) => account.email),
+      ),
+    );
+  const emails = new Set(known.map((row) => row.email));
+  return all
+    .filter((account) => emails.has(account.email))
+    .map(({ role, name, email, password, language }) => ({ role, name, email, password, language }));
 }

@@ -27,37 +27,45 @@ export function demoId(label: string): string {
   return openRandomSource(demoSeed, `id ${label}`).uuid();
 }
 
-/** Stores regions, sites, crops with traits and varieties, and accounts. */
-export async function storeDemoCatalogue(tx: DatabaseOrTransaction): Promise<CatalogueIds> {
-  const regionIds = mapIds(velmarRegions, (region) => region.slug, 'region');
-  await tx
-    .insert(regions)
-    .values(velmarRegions.map((region) => ({ id: pick(regionIds, region.slug), ...region })));
-  const siteIds = mapIds(velmarSites, (site) => site.slug, 'site');
-  await tx.insert(sites).values(
-    velmarSites.map(({ region, ...site }) => ({
-      id: pick(siteIds, site.slug),
-      regionId: pick(regionIds, region),
-      ...site,
-    })),
-  );
-  const cropIds = await storeCrops(tx);
+/** The ids of the demo, known without asking the database. */
+export function listDemoIds(): CatalogueIds {
   return {
-    regions: regionIds,
-    sites: siteIds,
-    crops: cropIds,
+    regions: mapIds(velmarRegions, (region) => region.slug, 'region'),
+    sites: mapIds(velmarSites, (site) => site.slug, 'site'),
+    crops: mapIds(demoCrops, (crop) => crop.slug, 'crop'),
     varieties: new Map(
       demoCrops.map((crop) => [crop.slug, mapIds(crop.varieties, (one) => one.name, `variety ${crop.slug}`)]),
     ),
     traits: new Map(
       demoCrops.map((crop) => [crop.slug, mapIds(crop.traits, (one) => one.slug, `trait ${crop.slug}`)]),
     ),
-    accounts: await storeAccounts(tx, regionIds),
+    accounts: {
+      advisor: demoId('account advisor'),
+      conseillere: demoId('account conseillere'),
+      agronomist: demoId('account agronomist'),
+      agronome: demoId('account agronome'),
+      administrator: demoId('account administrator'),
+    },
   };
 }
 
-async function storeCrops(tx: DatabaseOrTransaction): Promise<Map<string, string>> {
-  const cropIds = mapIds(demoCrops, (crop) => crop.slug, 'crop');
+/** Stores regions, sites, crops with traits and varieties, and accounts. */
+export async function storeDemoCatalogue(tx: DatabaseOrTransaction, ids: CatalogueIds): Promise<void> {
+  await tx
+    .insert(regions)
+    .values(velmarRegions.map((region) => ({ id: pick(ids.regions, region.slug), ...region })));
+  await tx.insert(sites).values(
+    velmarSites.map(({ region, ...site }) => ({
+      id: pick(ids.sites, site.slug),
+      regionId: pick(ids.regions, region),
+      ...site,
+    })),
+  );
+  await storeCrops(tx, ids.crops);
+  await storeAccounts(tx, ids);
+}
+
+async function storeCrops(tx: DatabaseOrTransaction, cropIds: ReadonlyMap<string, string>): Promise<void> {
   await tx.insert(crops).values(
     demoCrops.map((crop) => ({
       id: pick(cropIds, crop.slug),
@@ -93,43 +101,27 @@ async function storeCrops(tx: DatabaseOrTransaction): Promise<Map<string, string
       })),
     ),
   );
-  return cropIds;
 }
 
-async function storeAccounts(
-  tx: DatabaseOrTransaction,
-  regionIds: ReadonlyMap<string, string>,
-): Promise<CatalogueIds['accounts']> {
+async function storeAccounts(tx: DatabaseOrTransaction, ids: CatalogueIds): Promise<void> {
+  // Object.keys forgets the literal types; the table has exactly these keys.
   const keys = Object.keys(demoAccounts) as DemoAccountKey[];
   const rows = await Promise.all(
     keys.map(async (key) => {
       const { name, email, role, language, password } = demoAccounts[key];
-      return {
-        id: demoId(`account ${key}`),
-        name,
-        email,
-        role,
-        language,
-        passwordHash: await hashPassword(password),
-      };
+      const passwordHash = await hashPassword(password);
+      return { id: ids.accounts[key], name, email, role, language, passwordHash };
     }),
   );
   await tx.insert(users).values(rows);
   await tx.insert(userRegions).values(
     keys.flatMap((key) =>
       demoAccounts[key].regions.map((region) => ({
-        userId: demoId(`account ${key}`),
-        regionId: pick(regionIds, region),
+        userId: ids.accounts[key],
+        regionId: pick(ids.regions, region),
       })),
     ),
   );
-  return {
-    advisor: demoId('account advisor'),
-    conseillere: demoId('account conseillere'),
-    agronomist: demoId('account agronomist'),
-    agronome: demoId('account agronome'),
-    administrator: demoId('account administrator'),
-  };
 }
 
 /** Stores the price sheets with their seed costs. */
