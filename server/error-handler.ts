@@ -1,6 +1,6 @@
 import type { ErrorRequestHandler } from 'express';
 import { CodedError, type ErrorCode, type ErrorReply } from '#shared/error-codes.ts';
-import { isDatabaseAway } from './db.ts';
+import { isDatabaseAway, sqlStateOf } from './db.ts';
 
 const statusOf = {
   'invalid-input': 400,
@@ -31,6 +31,9 @@ const statusOf = {
   'link-revoked': 410,
 } satisfies Record<ErrorCode, number>;
 
+/** Text or figures that PostgreSQL cannot hold: a NUL in text, in JSON, a number out of range. */
+const unstorableStates: ReadonlySet<string | null> = new Set(['22021', '22P05', '22003']);
+
 /** Seconds after which a client may try again when the database is away. */
 const retrySeconds = 5;
 
@@ -58,6 +61,7 @@ export const handleError: ErrorRequestHandler = (error: unknown, request, respon
 function codeFailure(error: unknown): CodedError {
   if (error instanceof CodedError) return error;
   if (isDatabaseAway(error)) return new CodedError('database-away', { cause: error });
+  if (unstorableStates.has(sqlStateOf(error))) return new CodedError('invalid-input', { cause: error });
   const type = error instanceof Error && 'type' in error ? error.type : null;
   const code = error instanceof Error && 'code' in error ? error.code : null;
   if (type === 'entity.too.large') return new CodedError('body-too-large', { cause: error });

@@ -1,0 +1,129 @@
+import { sql } from 'drizzle-orm';
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import { weighUps } from '#drizzle/schema/weigh-ups.ts';
+import { connectDatabase } from '#server/db.ts';
+import { createTestDatabase, type TestDatabase } from '#tests/support/test-database.ts';
+import { buildWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
+import { openDatabaseProxy, type DatabaseProxy } from './database-proxy.ts';
+import { foundSmallWorld, idIn, type SmallWorld } from './small-world.ts';
+
+let direct: TestDatabase;
+let proxy: DatabaseProxy;
+let world: ApiWorld;
+let small: SmallWorld;
+let advisor: SignedIn;
+
+beforeAll(async () => {
+  direct = await createTestDatabase();
+  proxy = await openDatabaseProxy(direct.url);
+  const through = connectDatabase(proxy.url, () => undefined);
+  world = buildWorld({ ...through, url: proxy.url });
+  small = await foundSmallWorld(direct.db);
+  advisor = await world.signInAs('advisor', { regionIds: [small.regionIds.north] });
+});
+afterAll(async () => {
+  await world.close();
+  await proxy.close();
+  await direct.close();
+});
+
+const away = { error: { code: 'database-away' } };
+
+const question = (growerName: string) => ({
+  cropId: small.cropId,
+  regionId: small.regionIds.north,
+  seasonFrom: 2024,
+  seasonTo: 2025,
+  growerName,
+  farmName: 'Long Furlong',
+  areaHectares: 42,
+  currentVarietyId: idIn(small.varietyIds, 'Anchor'),
+  candidateIds: [idIn(small.varietyIds, 'Birch')],
+  assumptions: {
+    currency: 'CAD',
+    priceLow: 220,
+    priceMiddle: 260,
+    priceHigh: 300,
+    haulagePerTonne: 15,
+    dryingPerTonne: 5,
+    seedCosts: {},
+    priceSheetDate: null,
+  },
+});
+
+test('while the database is away every answer is 503 with when to try again; afterwards all is as before', async () => {
+  await advisor.agent.get('/api/catalogue').expect(200);
+  proxy.cut();
+  for (const reply of [
+    await advisor.agent.get('/api/catalogue'),
+    await advisor.agent.get('/api/weigh-ups'),
+    await world.visitor().post('/api/session').send({ email: advisor.email, password: testPassword }),
+    await world.visitor().get(`/api/copies/${'A'.repeat(32)}`),
+    await world.visitor().get('/api/health'),
+  ]) {
+    expect([reply.status, reply.body]).toEqual([503, away]);
+    expect(Number(reply.headers['retry-after'])).toBeGreaterThan(0);
+  }
+  proxy.restore();
+  await advisor.agent.get('/api/catalogue').expect(200);
+  await world.signIn(advisor.email);
+});
+
+test('failed sign-ins while the database was away do not count as guesses', async () => {
+  proxy.cut();
+  for (let i = 0; i < 12; i += 1)
+    await world
+      .visitor()
+      .post('/api/session')
+      .send({ email: advisor.email, password: testPassword })
+      .expect(503);
+  proxy.restore();
+  await world.signIn(advisor.email);
+});
+
+test('a save that loses the database on its way stores nothing by half', async () => {
+  const made = await advisor.agent.post('/api/weigh-ups').send(question('Before')).expect(200);
+  const id: string = made.body.weighUp.id;
+  // A lock on the candidates stops the save in its middle: the head is written, the candidates are not.
+  const holder = await direct.pool.connect();
+  await holder.query('begin; lock table weigh_up_candidates in access exclusive mode');
+  const saving = advisor.agent
+    .put(`/api/weigh-ups/${id}`)
+    .send({ revision: 1, weighUp: question('After') })
+    .then((reply) => reply);
+  await waitForBlocked();
+  proxy.cut();
+  const reply = await saving;
+  expect([reply.status, reply.body]).toEqual([503, away]);
+  await holder.query('rollback');
+  holder.release();
+  proxy.restore();
+  const read = (await advisor.agent.get(`/api/weigh-ups/${id}`).expect(200)).body.weighUp;
+  expect(read).toMatchObject({
+    revision: 1,
+    growerName: 'Before',
+    candidateIds: [idIn(small.varietyIds, 'Birch')],
+  });
+});
+
+test('a connection that the server of the database ends is replaced without a restart', async () => {
+  await advisor.agent.get('/api/weigh-ups').expect(200);
+  await direct.db.execute(sql`select pg_terminate_backend(pid) from pg_stat_activity
+    where datname = current_database() and pid <> pg_backend_pid()`);
+  const replies = [];
+  for (let i = 0; i < 3; i += 1) replies.push((await advisor.agent.get('/api/weigh-ups')).status);
+  expect(replies.at(-1)).toBe(200);
+  for (const status of replies) expect([200, 503]).toContain(status);
+  expect(await direct.db.$count(weighUps)).toBeGreaterThan(0);
+});
+
+/** Waits until a statement of this database waits for a lock. */
+async function waitForBlocked(): Promise<void> {
+  for (let i = 0; i < 200; i += 1) {
+    const { rows } = await direct.db.execute<{ waiting: number }>(sql`select count(*)::int as waiting
+      from pg_stat_activity where datname = current_database() and wait_event_type = 'Lock'`);
+    if (rows[0]?.waiting === 1) return;
+    await new Promise((resolve) => setTimeout(resolve, 20));
+  }
+  throw new Error('nothing waited for the lock');
+}
