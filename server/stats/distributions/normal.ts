@@ -58,7 +58,7 @@ function middleRatio(x: number): number {
 function farCorrection(r: number): number {
   const numerator =
     ((((0.02307344176494017303 * r + 0.21589853405795699) * r + 0.1274011611602473639) * r +
-      0.022235277649777) *
+      0.022235277870649807) *
       r +
       0.001421619193227893466) *
       r +
