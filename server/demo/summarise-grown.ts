@@ -1,5 +1,5 @@
 import type { TrialContent } from '#shared/trial-content.ts';
-import { tQuantileUpper } from '#server/stats/distributions/student-t.ts';
+import { tQuantileUpper } from '#server/stats/engine.ts';
 import type { DemoCrop } from './demo-crops.ts';
 
 type GrownPlot = { entry: string; block: string | null; values: Record<string, number> };
