@@ -2,6 +2,7 @@ import { createInstance, type BackendModule, type i18n as I18n, type ResourceKey
 import { initReactI18next } from 'react-i18next';
 import { language as languageCode, languages, type Language } from '#shared/account.ts';
 import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
+import { ApiError } from './api-client.ts';
 import type { Namespace } from './locale-resources.ts';
 
 const storageKey = 'gavelrow.language';
@@ -20,7 +21,8 @@ const localeBackend: BackendModule = {
     }
     load().then(
       (sentences) => done(null, sentences),
-      (failure: unknown) => done(failure instanceof Error ? failure : new Error(String(failure)), false),
+      // `true` asks for another try: signal comes and goes at a kitchen table.
+      (failure: unknown) => done(failure instanceof Error ? failure : new Error(String(failure)), true),
     );
   },
 };
@@ -87,8 +89,25 @@ function addSentenceFormats(): void {
   formatter?.add('date', (value: unknown, tag) => formatSentenceDate(String(value), languageOf(tag)));
 }
 
-/** Changes the language of the whole page and remembers it in this browser. The sentences in use are loaded first. */
+/**
+ * Loads the sentences of namespaces in the present language, or of those in use in another one.
+ * @throws ApiError `offline` when they do not come, so that a page never shows keys in place of sentences
+ */
+export async function loadSentences(namespaces: readonly string[], language = i18n.language): Promise<void> {
+  await i18n.loadNamespaces(namespaces);
+  const findMissing = () => namespaces.filter((namespace) => !i18n.hasResourceBundle(language, namespace));
+  if (findMissing().length > 0) await i18n.reloadResources([language], findMissing());
+  if (findMissing().length > 0) throw new ApiError('offline', 0);
+}
+
+/**
+ * Changes the language of the whole page and remembers it in this browser, once all sentences in use are there.
+ * @throws ApiError `offline` when they do not come: the page then stays as it is
+ */
 export async function changeLanguage(language: Language): Promise<void> {
+  if (i18n.language !== language) {
+    await loadSentences([i18n.options.ns ?? []].flat(), language);
+    await i18n.changeLanguage(language);
+  }
   storeLanguage(language);
-  if (i18n.language !== language) await i18n.changeLanguage(language);
 }

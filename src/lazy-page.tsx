@@ -1,6 +1,23 @@
 import { lazy, type ComponentType, type LazyExoticComponent } from 'react';
-import { i18n } from './i18n.ts';
+import { ApiError } from './api-client.ts';
+import { loadSentences } from './i18n.ts';
 import type { Namespace } from './locale-resources.ts';
+
+/** Waits between tries: signal comes and goes at a kitchen table. */
+const waitsMs = [500, 2000];
+
+async function tryAgain<Loaded>(load: () => Promise<Loaded>): Promise<Loaded> {
+  for (const wait of waitsMs) {
+    try {
+      return await load();
+    } catch {
+      await new Promise((resolve) => setTimeout(resolve, wait));
+    }
+  }
+  return load().catch((error: unknown) => {
+    throw new ApiError('offline', 0, { cause: error });
+  });
+}
 
 /**
  * A page whose code and sentences are fetched together when it is first opened.
@@ -12,7 +29,7 @@ export function lazyPage(
   namespaces: readonly Namespace[],
 ): LazyExoticComponent<ComponentType> {
   return lazy(async () => {
-    const [Page] = await Promise.all([load(), i18n.loadNamespaces(namespaces)]);
+    const [Page] = await Promise.all([tryAgain(load), loadSentences(namespaces)]);
     return { default: Page };
   });
 }

@@ -26,7 +26,8 @@ export const meQuery = queryOptions({
 /** Takes over a person who has just signed in, and their language with them. */
 export async function enterSession(client: QueryClient, me: Me): Promise<void> {
   client.setQueryData(meQuery.queryKey, me);
-  await changeLanguage(me.language);
+  // Without the sentences of their language they still are signed in, in this one.
+  await changeLanguage(me.language).catch(() => undefined);
 }
 
 /** The signed-in person, on pages that only a signed-in person reaches. */
@@ -39,14 +40,17 @@ export function useMe(): Me {
 /** Changes the language of the page, and of the account where somebody is signed in. */
 export function useLanguageSwitch(): (language: Language) => void {
   const client = useQueryClient();
-  const keep = useMutation({
-    mutationFn: async (language: Language) => (await callApi(changeMe, { body: { language } })).me,
-    onSuccess: (me) => client.setQueryData(meQuery.queryKey, me),
+  const errorText = useErrorText();
+  const change = useMutation({
+    mutationFn: async (language: Language) => {
+      await changeLanguage(language);
+      if (!client.getQueryData(meQuery.queryKey)) return;
+      const { me } = await callApi(changeMe, { body: { language } });
+      client.setQueryData(meQuery.queryKey, me);
+    },
+    onError: (error) => showToast(errorText(error)),
   });
-  return (language) => {
-    void changeLanguage(language);
-    if (client.getQueryData(meQuery.queryKey)) keep.mutate(language);
-  };
+  return (language) => change.mutate(language);
 }
 
 /** Signs out. The page is loaded anew, so that nothing fetched for the person is left in it. */

@@ -1,5 +1,5 @@
 import { beforeAll, describe, expect, it } from 'vitest';
-import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
+import { changeLanguage, i18n, loadSentences, startI18n } from '#src/i18n.ts';
 
 beforeAll(async () => {
   await startI18n();
@@ -27,5 +27,18 @@ describe('the language of the page', () => {
     await changeLanguage('en');
     expect(document.documentElement.lang).toBe('en');
     expect(i18n.t('nav.weighUps')).toBe('Weigh-ups');
+  });
+});
+
+describe('sentences that do not come', () => {
+  it('fail as a missing network does, instead of leaving keys on the page', async () => {
+    await expect(loadSentences(['no-such-namespace'])).rejects.toMatchObject({ code: 'offline' });
+  });
+
+  it('are fetched for the present language where another one had them', async () => {
+    await changeLanguage('en');
+    await loadSentences(['drawings'], 'fr');
+    expect(i18n.hasResourceBundle('fr', 'drawings')).toBe(true);
+    expect(i18n.language).toBe('en');
   });
 });
