@@ -8,9 +8,10 @@ export function LanguageSwitch({ onChoose }: { onChoose: (language: Language) =>
   const current = useLanguage();
   return languages
     .filter((language) => language !== current)
-    .map((language) => (
+    .map((language, place) => (
       <button
-        key={language}
+        // Keyed by its place, so that the button pressed keeps the focus when its language turns into the other.
+        key={place}
         type="button"
         lang={language}
         onClick={() => onChoose(language)}

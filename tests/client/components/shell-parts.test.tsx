@@ -1,4 +1,4 @@
-import { act, screen, waitFor, within } from '@testing-library/react';
+import { act, render, screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { Link, Route, Routes } from 'react-router-dom';
 import { afterEach, describe, expect, it, vi } from 'vitest';
@@ -6,11 +6,16 @@ import { AppShell } from '#src/components/app-shell.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { ErrorBoundary } from '#src/components/error-boundary.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
+import { Skeleton } from '#src/components/skeleton.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { UrlTabs, useUrlTab } from '#src/components/url-tabs.tsx';
+import { changeLanguage } from '#src/i18n.ts';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 
-afterEach(() => vi.restoreAllMocks());
+afterEach(() => {
+  vi.restoreAllMocks();
+  vi.useRealTimers();
+});
 
 describe('the head of a page', () => {
   const pages = (
@@ -122,6 +127,18 @@ describe('a part that breaks', () => {
   });
 });
 
+describe('the skeleton', () => {
+  it('leaves the place empty for the first 200 ms, then says that it loads', async () => {
+    await renderClient(null);
+    vi.useFakeTimers();
+    render(<Skeleton />);
+    act(() => vi.advanceTimersByTime(199));
+    expect(screen.queryByText('Loading…')).toBeNull();
+    act(() => vi.advanceTimersByTime(1));
+    expect(screen.getByText('Loading…')).toBeTruthy();
+  });
+});
+
 describe('the shell', () => {
   const shell = (
     <AppShell homePath="/" navItems={[{ to: '/trials', label: 'Trials' }]} onLanguage={() => undefined}>
@@ -141,6 +158,16 @@ describe('the shell', () => {
     await renderClient(shell, { language: 'fr' });
     expect(screen.getByRole('button', { name: 'English' }).lang).toBe('en');
     expect(screen.queryByRole('button', { name: 'Français' })).toBeNull();
+  });
+
+  it('keeps the focus on the switch when the language changes', async () => {
+    await renderClient(
+      <AppShell homePath="/" navItems={[]} onLanguage={(language) => void changeLanguage(language)}>
+        <p>{'page'}</p>
+      </AppShell>,
+    );
+    await userEvent.click(screen.getByRole('button', { name: 'Français' }));
+    expect(document.activeElement).toBe(await screen.findByRole('button', { name: 'English' }));
   });
 
   it('says when the network is gone', async () => {
