@@ -21,15 +21,13 @@ function widenForFamily(
   gaps: readonly NetworkGap[],
   correlation: readonly Float64Array[],
   level: number,
+  withP: boolean,
 ): FamilyWidths {
-  const adjusted = dunnettAdjust({
-    ts: gaps.map(({ estimate, se }) => estimate / se),
-    df: gaps.map(({ df }) => df),
-    correlation,
-  });
+  const df = gaps.map((gap) => gap.df);
+  const ts = gaps.map(({ estimate, se }) => estimate / se);
   return {
-    p: [...adjusted.p],
-    quantile: gaps.map(({ df }) => dunnettQuantile({ alpha: 1 - level, df, correlation })),
+    p: withP ? [...dunnettAdjust({ ts, df, correlation }).p] : gaps.map(({ p }) => p),
+    quantile: df.map((own) => dunnettQuantile({ alpha: 1 - level, df: own, correlation })),
   };
 }
 
@@ -43,6 +41,7 @@ function correlate(estimates: EntryEstimates, members: readonly number[], base: 
 /**
  * Gaps of the candidates at positions `members` from the entry at position `base`, all connected to it.
  * @param isFamily true: intervals and pAdjusted by Dunnett on the model's covariance, Kenward–Roger SE and df; false: each pair alone
+ * @param withP false where only intervals are asked for: pAdjusted is then that of the pair alone, and costs nothing
  */
 export function compareWithCurrent(
   estimates: EntryEstimates,
@@ -51,10 +50,13 @@ export function compareWithCurrent(
   base: number,
   isFamily: boolean,
   level: number,
+  withP = true,
 ): CandidateGap[] {
   const gaps = members.flatMap((r) => measureGap(estimates, r, base) ?? []);
   const family =
-    isFamily && gaps.length > 1 ? widenForFamily(gaps, correlate(estimates, members, base), level) : null;
+    isFamily && gaps.length > 1
+      ? widenForFamily(gaps, correlate(estimates, members, base), level, withP)
+      : null;
   const m = estimates.chosen.length;
   const interaction = 2 * estimates.fit.point.theta.reduce((sum, value) => sum + value, 0);
   return gaps.map((gap, index) => {

@@ -21,6 +21,7 @@ interface TraceScratch {
   readonly kh: Float64Array;
   readonly hk: Float64Array;
   readonly hl: Float64Array;
+  readonly own: Float64Array;
 }
 
 function makeScratch(frame: NetworkFrame, q: number): TraceScratch {
@@ -39,6 +40,7 @@ function makeScratch(frame: NetworkFrame, q: number): TraceScratch {
     kh: block(),
     hk: block(),
     hl: block(),
+    own: new Float64Array(q),
   };
 }
 
@@ -52,22 +54,32 @@ export function multiplyByCross(
   sites: number,
   out: Float64Array,
 ): void {
+  const firstYear = sites + 1;
   for (let r = 0; r < q; r++) {
     const row = ka + r * q;
-    let first = k[row]! * n[na]!;
-    for (let s = 1; s < q; s++) first += k[row + s]! * n[na + s]!;
-    out[r * q] = first;
+    const target = r * q;
+    const own = k[row]!;
+    let first = own * n[na]!;
     for (let s = 1; s < q; s++) {
-      let sum = k[row]! * n[na + s]! + k[row + s]! * n[na + s * q + s]!;
-      const from = s <= sites ? sites + 1 : 1;
-      const to = s <= sites ? q : sites + 1;
-      for (let y = from; y < to; y++) sum += k[row + y]! * n[na + y * q + s]!;
-      out[r * q + s] = sum;
+      const value = k[row + s]!;
+      first += value * n[na + s]!;
+      out[target + s] = own * n[na + s]! + value * n[na + s * q + s]!;
+    }
+    out[target] = first;
+    for (let y = firstYear; y < q; y++) {
+      const value = k[row + y]!;
+      const source = na + y * q;
+      for (let s = 1; s < firstYear; s++) out[target + s]! += value * n[source + s]!;
+    }
+    for (let s = 1; s < firstYear; s++) {
+      const value = k[row + s]!;
+      const source = na + s * q;
+      for (let y = firstYear; y < q; y++) out[target + y]! += value * n[source + y]!;
     }
   }
 }
 
-/** out = A B, q × q, A at offset aa. */
+/** out = A B, q × q, A at offset aa. Four rows of B at a time: the row of out is then read and written a quarter as often. */
 export function multiplyBlock(
   a: Float64Array,
   aa: number,
@@ -75,22 +87,34 @@ export function multiplyBlock(
   q: number,
   out: Float64Array,
 ): void {
+  const whole = q - (q % 4);
   for (let r = 0; r < q; r++) {
     const target = r * q;
+    const row = aa + target;
     out.fill(0, target, target + q);
-    for (let s = 0; s < q; s++) {
-      const factor = a[aa + r * q + s]!;
-      if (factor === 0) continue;
-      const source = s * q;
-      for (let c = 0; c < q; c++) out[target + c]! += factor * b[source + c]!;
+    for (let s = 0; s < whole; s += 4) {
+      const f0 = a[row + s]!;
+      const f1 = a[row + s + 1]!;
+      const f2 = a[row + s + 2]!;
+      const f3 = a[row + s + 3]!;
+      const b0 = s * q;
+      const b1 = b0 + q;
+      const b2 = b1 + q;
+      const b3 = b2 + q;
+      for (let c = 0; c < q; c++)
+        out[target + c]! += f0 * b[b0 + c]! + f1 * b[b1 + c]! + f2 * b[b2 + c]! + f3 * b[b3 + c]!;
+    }
+    for (let s = whole; s < q; s++) {
+      const factor = a[row + s]!;
+      for (let c = 0; c < q; c++) out[target + c]! += factor * b[s * q + c]!;
     }
   }
 }
 
-/** tr(A B), q × q. */
+/** tr(A'B), q × q, A at offset aa: tr(A B) where A is symmetric. */
 export function traceOfProduct(a: Float64Array, aa: number, b: Float64Array, q: number): number {
   let sum = 0;
-  for (let r = 0; r < q; r++) for (let s = 0; s < q; s++) sum += a[aa + r * q + s]! * b[s * q + r]!;
+  for (let r = 0; r < q * q; r++) sum += a[aa + r]! * b[r]!;
   return sum;
 }
 
@@ -154,7 +178,7 @@ function addTraces(
   const sites = frame.siteWidth[i]!;
   const at = blockStart[i]!;
   projectInverse(frame, point, i, q, scratch);
-  const { dSquared, h, h2, n2, kn1, kn2, kh, hk, hl } = scratch;
+  const { dSquared, h, h2, n2, kn1, kn2, kh, hk, hl, own } = scratch;
   crossEntry(frame, i, dSquared, n2, 0);
   multiplyByCross(k, at, n1, at, q, sites, kn1);
   multiplyByCross(k, at, n2, 0, q, sites, kn2);
@@ -165,18 +189,17 @@ function addTraces(
   multiplyByCross(hk, 0, n1, at, q, sites, hl);
   for (let r = 0; r < q * q; r++) hl[r] = h[r]! - hl[r]!;
 
-  for (let c = 1; c < q; c++) {
-    let own = n1[at + c * q + c]!;
-    let environments = hl[c * q + c]!;
-    for (let r = 0; r < q; r++) {
-      own -= n1[at + c * q + r]! * kn1[r * q + c]!;
-      environments -= kn1[r * q + c]! * hl[r * q + c]!;
+  own.fill(0, 0, q);
+  for (let r = 0; r < q; r++)
+    for (let c = 0; c < q; c++) {
+      const rc = r * q + c;
+      const product = kn1[rc]!;
+      own[c]! -= product * (n1[at + rc]! - hl[rc]!);
     }
-    traces[c <= sites ? 0 : 1]! += own - environments;
-  }
+  for (let c = 1; c < q; c++) traces[c <= sites ? 0 : 1]! += n1[at + c * q + c]! - hl[c * q + c]! + own[c]!;
 
   const size = frame.columnCount;
-  let rest = 2 * traceOfProduct(k, at, h2, q) - traceOfProduct(kn2, 0, kh, q);
+  let rest = 2 * traceOfProduct(k, at, h2, q) - traceOfProduct(kn2, 0, hk, q);
   for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
     const dj = d[j]!;
     const s = frame.siteColumn[j]!;
@@ -211,10 +234,21 @@ export function spreadByTerm(
   return [site, year, x];
 }
 
+/** Four sums side by side, since one alone waits for each addition to end. */
 export function dot(a: Float64Array, b: Float64Array): number {
-  let sum = 0;
-  for (let j = 0; j < a.length; j++) sum += a[j]! * b[j]!;
-  return sum;
+  const whole = a.length - (a.length % 4);
+  let s0 = 0;
+  let s1 = 0;
+  let s2 = 0;
+  let s3 = 0;
+  for (let j = 0; j < whole; j += 4) {
+    s0 += a[j]! * b[j]!;
+    s1 += a[j + 1]! * b[j + 1]!;
+    s2 += a[j + 2]! * b[j + 2]!;
+    s3 += a[j + 3]! * b[j + 3]!;
+  }
+  for (let j = whole; j < a.length; j++) s0 += a[j]! * b[j]!;
+  return s0 + s1 + (s2 + s3);
 }
 
 /**

@@ -1,14 +1,11 @@
-import { applyP, applyQ, sumByEnvironment } from './environment-system.ts';
-import { dot, spreadByTerm } from './criterion-derivatives.ts';
+import { applyQ, multiplyInverse, sumByEnvironment } from './environment-system.ts';
+import { dot } from './criterion-derivatives.ts';
 import { computeExpectedInformation } from './expected-information.ts';
-import type { NetworkFit } from './fit-network.ts';
+import { MANY_CELLS, type NetworkFit } from './fit-network.ts';
 import { interactionTerms } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
 import { invertSmall } from './small-symmetric.ts';
-
-/** Above this many cells the average information stands in for the expected one. */
-const MANY_CELLS = 1000;
 
 /** Effects of chosen entries at one θ, and their covariance Φ (m × m, row-major). */
 export interface EntryEffects {
@@ -75,12 +72,7 @@ function estimatingColumn(frame: NetworkFrame, point: NetworkPoint, i: number): 
   const own = new Float64Array(frame.cellCount);
   for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) own[j] = ownWeight(frame, point, i, j);
   const h = sumByEnvironment(frame, own);
-  const g = new Float64Array(size);
-  for (let s = 0; s < size; s++) {
-    const value = h[s]!;
-    if (value === 0) continue;
-    for (let r = 0; r < size; r++) g[r]! += system.inverse[s * size + r]! * value;
-  }
+  const g = multiplyInverse(system.inverse, size, h);
   const spread = new Float64Array(frame.cellCount);
   for (let j = 0; j < spread.length; j++) spread[j] = frame.column[j]! < 0 ? 0 : g[frame.column[j]!]!;
   const column = new Float64Array(frame.cellCount);
@@ -128,6 +120,87 @@ export function estimateEffects(frame: NetworkFrame, point: NetworkPoint): Entry
   );
 }
 
+/** Z_k'x for the three terms: sums over an entry's sites, over its years, and x itself. Sums lie where the columns of Z do. */
+function sumByTerm(
+  frame: NetworkFrame,
+  x: Float64Array,
+): readonly [Float64Array, Float64Array, Float64Array] {
+  const { width, siteWidth, start } = frame;
+  const siteCount = siteWidth.reduce((sum, n) => sum + n, 0);
+  const yearCount = width.reduce((sum, q) => sum + q - 1, 0) - siteCount;
+  const site = new Float64Array(siteCount);
+  const year = new Float64Array(yearCount);
+  let siteAt = -1;
+  let yearAt = 0;
+  for (let i = 0; i < frame.entries.length; i++) {
+    yearAt -= siteWidth[i]! + 1;
+    for (let j = start[i]!; j < start[i + 1]!; j++) {
+      site[siteAt + frame.siteColumn[j]!]! += x[j]!;
+      year[yearAt + frame.yearColumn[j]!]! += x[j]!;
+    }
+    siteAt += siteWidth[i]!;
+    yearAt += width[i]!;
+  }
+  return [site, year, x];
+}
+
+/** Z_k s: sums spread back over the cells. */
+function spreadTerm(frame: NetworkFrame, k: number, sums: Float64Array): Float64Array {
+  if (k === 2) return sums;
+  const { width, siteWidth, start } = frame;
+  const columns = k === 0 ? frame.siteColumn : frame.yearColumn;
+  const out = new Float64Array(frame.cellCount);
+  let at = k === 0 ? -1 : 0;
+  for (let i = 0; i < frame.entries.length; i++) {
+    if (k === 1) at -= siteWidth[i]! + 1;
+    for (let j = start[i]!; j < start[i + 1]!; j++) out[j] = sums[at + columns[j]!]!;
+    at += k === 0 ? siteWidth[i]! : width[i]!;
+  }
+  return out;
+}
+
+/**
+ * 2 Σ W_kl A'V_kPV_lA over the chosen entries, from Z_k'A alone: with F_l = V_lA and U_l = E'QF_l,
+ * F_k'PF_l = (Z_k'A)'Z_k'QF_l − U_k'C⁻¹U_l.
+ */
+function correctCovariance(
+  frame: NetworkFrame,
+  point: NetworkPoint,
+  summed: readonly (readonly [Float64Array, Float64Array, Float64Array])[],
+  w: Float64Array,
+): Float64Array {
+  const { absorption, system } = point;
+  const size = frame.columnCount;
+  const projected = new Float64Array(frame.cellCount);
+  const rows = summed.map((own) => {
+    // Σ_l W_kl Z_k'QF_l for each k, and U_l with Σ_l W_kl C⁻¹U_l
+    const weighted = own.map((sums) => new Float64Array(sums.length));
+    const u: Float64Array[] = [];
+    own.forEach((sums, l) => {
+      applyQ(frame, absorption, spreadTerm(frame, l, sums), projected);
+      u.push(sumByEnvironment(frame, projected));
+      sumByTerm(frame, projected).forEach((values, k) => addScaled(weighted[k]!, w[k * 3 + l]!, values));
+    });
+    const mixed = u.map((_, k) => {
+      const out = new Float64Array(size);
+      u.forEach((values, l) => addScaled(out, w[k * 3 + l]!, values));
+      return out;
+    });
+    const solved = mixed.map((values) => multiplyInverse(system.inverse, size, values));
+    return { own, weighted, u, solved };
+  });
+  return symmetric(summed.length, (r, c) => {
+    let sum = 0;
+    for (let k = 0; k < 3; k++)
+      sum += dot(rows[r]!.own[k]!, rows[c]!.weighted[k]!) - dot(rows[r]!.u[k]!, rows[c]!.solved[k]!);
+    return 2 * sum;
+  });
+}
+
+function addScaled(target: Float64Array, factor: number, values: Float64Array): void {
+  if (factor !== 0) for (let j = 0; j < target.length; j++) target[j]! += factor * values[j]!;
+}
+
 /** Effects of the chosen entries, all of them by default. Source of the correction: Kenward & Roger (1997), Biometrics 53:983–997. */
 export function estimateEntries(fit: NetworkFit, chosen?: readonly number[]): EntryEstimates {
   const { frame, point } = fit;
@@ -135,34 +208,9 @@ export function estimateEntries(fit: NetworkFit, chosen?: readonly number[]): En
   const m = picked.length;
   const w = thetaCovariance(fit);
   const columns = picked.map((i) => estimatingColumn(frame, point, i));
-  const spread = columns.map(({ column }) => spreadByTerm(frame, column));
-  const covarianceSlopes = [0, 1, 2].map((k) =>
-    symmetric(m, (r, u) => dot(columns[r]!.column, spread[u]![k]!)),
-  );
-  const projected = spread.map((terms) =>
-    terms.map((term) => {
-      const out = new Float64Array(frame.cellCount);
-      applyP(frame, point.absorption, point.system.inverse, term, out);
-      return out;
-    }),
-  );
-  const weighted = spread.map((terms) =>
-    [0, 1, 2].map((l) => {
-      const out = new Float64Array(frame.cellCount);
-      for (let k = 0; k < 3; k++) {
-        const weight = w[k * 3 + l]!;
-        if (weight === 0) continue;
-        const term = terms[k]!;
-        for (let j = 0; j < out.length; j++) out[j]! += weight * term[j]!;
-      }
-      return out;
-    }),
-  );
-  const correction = symmetric(m, (r, u) => {
-    let sum = 0;
-    for (let l = 0; l < 3; l++) sum += dot(weighted[u]![l]!, projected[r]![l]!);
-    return 2 * sum;
-  });
+  const summed = columns.map(({ column }) => sumByTerm(frame, column));
+  const covarianceSlopes = [0, 1, 2].map((k) => symmetric(m, (r, u) => dot(summed[r]![k]!, summed[u]![k]!)));
+  const correction = correctCovariance(frame, point, summed, w);
   return {
     ...measureEffects(frame, point, picked, columns),
     fit,

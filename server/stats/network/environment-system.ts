@@ -68,10 +68,11 @@ export function applyQ(
       u[siteColumn[j]!]! += dx;
       u[yearColumn[j]!]! += dx;
     }
-    for (let r = 0; r < q; r++) {
-      let sum = 0;
-      for (let s = 0; s < q; s++) sum += k[at + r * q + s]! * u[s]!;
-      t[r] = sum;
+    t.fill(0, 0, q);
+    for (let s = 0; s < q; s++) {
+      const value = u[s]!;
+      const row = at + s * q;
+      for (let r = 0; r < q; r++) t[r]! += k[row + r]! * value;
     }
     for (let j = frame.start[i]!; j < end; j++)
       out[j] = d[j]! * (x[j]! - t[0]! - t[siteColumn[j]!]! - t[yearColumn[j]!]!);
@@ -85,12 +86,14 @@ export function sumByEnvironment(frame: NetworkFrame, x: Float64Array): Float64A
   return sums;
 }
 
-function multiplyInverse(inverse: Float64Array, size: number, x: Float64Array): Float64Array {
+/** C⁻¹x, by rows, since C⁻¹ is symmetric. */
+export function multiplyInverse(inverse: Float64Array, size: number, x: Float64Array): Float64Array {
   const out = new Float64Array(size);
-  for (let r = 0; r < size; r++) {
-    let sum = 0;
-    for (let s = 0; s < size; s++) sum += inverse[r * size + s]! * x[s]!;
-    out[r] = sum;
+  for (let s = 0; s < size; s++) {
+    const value = x[s]!;
+    if (value === 0) continue;
+    const row = s * size;
+    for (let r = 0; r < size; r++) out[r]! += inverse[row + r]! * value;
   }
   return out;
 }

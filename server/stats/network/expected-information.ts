@@ -1,6 +1,6 @@
 import { multiply } from '#server/stats/linear/dense.ts';
 import { crossEntry } from './entry-absorption.ts';
-import { multiplyBlock, traceOfProduct } from './criterion-derivatives.ts';
+import { multiplyBlock } from './criterion-derivatives.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
 
@@ -75,6 +75,13 @@ function takeProducts(frame: NetworkFrame, point: NetworkPoint, i: number, power
   return { q, k, n2, n3, l, g, h11: blocks[0], h21: blocks[1], h31: blocks[2], h22: blocks[3] };
 }
 
+/** tr(A B), square. */
+function trace(a: Float64Array, b: Float64Array, size: number): number {
+  let sum = 0;
+  for (let r = 0; r < size; r++) for (let s = 0; s < size; s++) sum += a[r * size + s]! * b[s * size + r]!;
+  return sum;
+}
+
 /** L'XL, q × q. */
 function sandwich(l: Float64Array, x: Float64Array, q: number): Float64Array {
   const xl = multiply(x, l, q, q, q);
@@ -124,13 +131,13 @@ function addEntryTerms(
   const kn2k = multiply(kn2, k, q, q, q);
   const kn2kh = new Float64Array(q * q);
   multiplyBlock(kn2, 0, kh, q, kn2kh);
-  let rest = traceOfProduct(kn2, 0, kn2, q) - 2 * traceOfProduct(k, 0, n3, q);
+  let rest = trace(kn2, kn2, q) - 2 * trace(k, n3, q);
   let cubed =
-    -2 * traceOfProduct(k, 0, h31, q) -
-    traceOfProduct(k, 0, h22, q) +
-    2 * traceOfProduct(kn2k, 0, h21, q) +
-    traceOfProduct(kn3, 0, kh, q) -
-    traceOfProduct(kn2, 0, kn2kh, q);
+    -2 * trace(k, h31, q) -
+    trace(k, h22, q) +
+    2 * trace(kn2k, h21, q) +
+    trace(kn3, kh, q) -
+    trace(kn2, kn2kh, q);
   for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
     rest += powers[1][j]!;
     const e = frame.column[j]!;
@@ -201,7 +208,7 @@ export function computeExpectedInformation(frame: NetworkFrame, point: NetworkPo
   const solved = blocks.map((block) => multiply(point.system.inverse, block, size, size, size));
   solved.forEach((left, kk) =>
     solved.forEach((right, ll) => {
-      information[kk * 3 + ll]! += traceOfProduct(left, 0, right, size);
+      information[kk * 3 + ll]! += trace(left, right, size);
     }),
   );
   return information.map((value) => value / 2);

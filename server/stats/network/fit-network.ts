@@ -34,7 +34,11 @@ export interface NetworkNotFitted {
 }
 
 const MAX_ITERATIONS = 200;
-const GRADIENT_TOLERANCE = 1e-8;
+const GRADIENT_TOLERANCE = 1e-9;
+/** In large networks rounding ends the climb before that. */
+const GRADIENT_TOLERANCE_LARGE = 5e-7;
+/** Above this many cells the average information stands in for the expected one. */
+export const MANY_CELLS = 1000;
 
 /** What one step works with: point, derivatives and the objective's own gradient and curvature. */
 interface Ascent {
@@ -157,14 +161,15 @@ function advance(search: Search, ascent: Ascent): Ascent | null {
 /** Climbs until the slope is gone; the objective never falls. */
 function climb(
   search: Search,
-  start: Theta,
+  bottom: Ascent | null,
   watch: (objective: number) => void,
 ): { ascent: Ascent; norm: number; iterations: number } | null {
-  let ascent = search.evaluate(start);
+  const tolerance = search.frame.cellCount > MANY_CELLS ? GRADIENT_TOLERANCE_LARGE : GRADIENT_TOLERANCE;
+  let ascent = bottom;
   for (let iterations = 0; ascent !== null; iterations++) {
     watch(ascent.objective);
     const norm = slopeNorm(search, ascent);
-    if (norm < GRADIENT_TOLERANCE || iterations === MAX_ITERATIONS) return { ascent, norm, iterations };
+    if (norm < tolerance || iterations === MAX_ITERATIONS) return { ascent, norm, iterations };
     const next = advance(search, ascent);
     if (next === null) return { ascent, norm, iterations };
     ascent = next;
@@ -173,36 +178,29 @@ function climb(
 }
 
 /** Terms whose information is nothing but a repeat of another's, in the order rest, site, year. */
-function findConfounded(averageInformation: Float64Array): number[] {
+function findConfounded(information: Float64Array): number[] {
   const kept: number[] = [];
   const confounded: number[] = [];
   for (const k of [2, 0, 1]) {
     const m = kept.length;
-    const own = averageInformation[k * 4]!;
+    const own = information[k * 4]!;
     const block = new Float64Array(m * m);
-    kept.forEach((r, a) => kept.forEach((c, b) => (block[a * m + b] = averageInformation[r * 3 + c]!)));
-    const cross = Float64Array.from(kept, (r) => averageInformation[r * 3 + k]!);
+    kept.forEach((r, a) => kept.forEach((c, b) => (block[a * m + b] = information[r * 3 + c]!)));
+    const cross = Float64Array.from(kept, (r) => information[r * 3 + k]!);
     const solved = solveSmall(block, cross);
     const left = solved === null ? 0 : own - cross.reduce((sum, x, a) => sum + x * solved[a]!, 0);
-    const reference = averageInformation[8]!;
+    const reference = information[8]!;
     if (left > 1e-8 * Math.max(own, 1e-6 * reference)) kept.push(k);
     else confounded.push(k);
   }
   return confounded;
 }
 
-/** A made-up response without structure: what it cannot tell apart, no response can. */
-function scramble(n: number): Float64Array {
-  return Float64Array.from(
-    { length: n },
-    (_, j) => Math.sin(12.9898 * (j + 1)) + Math.cos(78.233 * (j + 1) * (j + 1)),
+/** Terms that the layout cannot tell apart, by the expected information or, in large networks, the average one. */
+function findDropped(frame: NetworkFrame, { point, derivatives }: Ascent): number[] {
+  return findConfounded(
+    frame.cellCount > MANY_CELLS ? derivatives.averageInformation : computeExpectedInformation(frame, point),
   );
-}
-
-function findDropped(frame: NetworkFrame, theta: Theta): number[] {
-  const probe: NetworkFrame = { ...frame, y: scramble(frame.cellCount) };
-  const point = evaluateLikelihood(probe, theta, 0);
-  return point === null ? [] : findConfounded(differentiateCriterion(probe, point).averageInformation);
 }
 
 /**
@@ -230,8 +228,6 @@ export function fitNetwork(
     penalty === null
       ? new Float64Array(3).fill(first)
       : Float64Array.from(interactionTerms, (term) => penalty.usual[term]);
-  const dropped = penalty === null ? findDropped(frame, start) : [];
-  for (const k of dropped) start[k] = 0;
   const floor = new Float64Array(3);
   if (hasExactCells) floor[2] = 1e-12 * scale;
 
@@ -241,9 +237,13 @@ export function fitNetwork(
     const objective = point.logLik + penaltyAt(penalty, theta);
     return { point, objective, derivatives: differentiateCriterion(frame, point) };
   };
+  const bottom = evaluate(start);
+  if (bottom === null) return { outcome: 'not-fitted', reason: 'not-converged' };
+  const dropped = penalty === null ? findDropped(frame, bottom) : [];
   const active = [0, 1, 2].filter((k) => !dropped.includes(k));
   const search: Search = { frame, penalty, scale, floor, active, evaluate };
-  const found = climb(search, start, watch);
+  const reduced = start.map((value, k) => (dropped.includes(k) ? 0 : value));
+  const found = climb(search, dropped.length > 0 ? evaluate(reduced) : bottom, watch);
   if (found === null || !(found.norm < 1e-4)) return { outcome: 'not-fitted', reason: 'not-converged' };
   return {
     outcome: 'fitted',

@@ -61,7 +61,9 @@ function weighCells(
     return at < 0 || at === base ? [] : [at];
   });
   const shrunken = shrinkEffects(estimates, usualEntry);
-  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL);
+  // The sensitivity lines ask for verdicts alone, and those come from intervals.
+  const withP = factor === 1;
+  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL, withP);
   return { fit, estimates, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
 }
 
