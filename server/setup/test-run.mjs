@@ -2,9 +2,13 @@ import { spawn } from 'node:child_process';
 import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { setTimeout as sleep } from 'node:timers/promises';
 import { projectRoot } from './ground.mjs';
 import { undoAtEnd } from './process-end.mjs';
 import { formatSeconds } from './progress.mjs';
+
+/** No check takes a quarter of this, even on a busy machine. */
+const limitMinutes = 20;
 
 /**
  * A list of checks, each shown with its time, and the one line that closes it.
@@ -69,21 +73,49 @@ function readCounts(path) {
   }
 }
 
-/** What the program prints goes straight to the terminal; it is ended with this process. */
+/**
+ * What the program prints goes straight to the terminal. It leads a process group, which is ended with this process: a
+ * worker that is caught in a loop hears no polite signal.
+ */
 function runShown(program, args, env) {
   return new Promise((resolve) => {
     const child = spawn(program, args, {
       cwd: projectRoot,
       env: { ...process.env, ...env },
       stdio: ['ignore', 'inherit', 'inherit'],
+      detached: true,
     });
-    undoAtEnd(async () => {
-      child.kill('SIGTERM');
+    const closed = new Promise((settle) => {
+      child.once('close', settle);
     });
+    let isOver = false;
+    const end = async () => {
+      if (isOver) return;
+      signalGroup(child.pid, 'SIGTERM');
+      await Promise.race([closed, sleep(3000)]);
+      signalGroup(child.pid, 'SIGKILL');
+    };
+    undoAtEnd(end);
+    const tooLong = setTimeout(() => {
+      console.error(`Ended after ${limitMinutes} minutes: something in it does not come back.`);
+      void end();
+    }, limitMinutes * 60_000);
     child.on('error', (error) => {
       console.error(error.message);
       resolve({ code: 1 });
     });
-    child.on('close', (code) => resolve({ code: code ?? 1 }));
+    void closed.then((code) => {
+      clearTimeout(tooLong);
+      isOver = true;
+      resolve({ code: code ?? 1 });
+    });
   });
+}
+
+function signalGroup(pid, signal) {
+  try {
+    process.kill(-pid, signal);
+  } catch {
+    // The whole group has ended already.
+  }
 }
