@@ -7,8 +7,7 @@ import { columnFields } from '#server/trial-desk/match-columns.ts';
 import { publishTrial } from '#server/trials/publish-trial.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { importByteLimit, importFields, importRowLimit, type RowProblem } from '#shared/trial-desk.ts';
-import errorSentences from '#locales/en/errors.json' with { type: 'json' };
-import problemSentences from '#locales/en/problems.json' with { type: 'json' };
+import { openSentences } from './command-sentences.ts';
 
 export const importUsage = `Takes a file of plots in as a trial, all of it or nothing.
 
@@ -42,7 +41,7 @@ export async function runImport(db: Database, args: readonly string[], print: Pr
       throw new CodedError('import-too-large', { values: { limit: importRowLimit } });
     return await importFile(db, asked, print);
   } catch (error) {
-    print.refuse(explainFailure(error));
+    print.refuse(await explainFailure(error));
     return 1;
   }
 }
@@ -55,7 +54,7 @@ async function importFile(
   const checked = await checkTrialFile(db, readFileSync(file), request, null);
   const { report } = checked;
   if (checked.content === null) {
-    for (const problem of report.problems) print.refuse(sayProblem(problem));
+    for (const line of await sayProblems(report.problems)) print.refuse(line);
     print.refuse(`Problems: ${report.problemsTotal}. Nothing was stored.`);
     return 1;
   }
@@ -110,23 +109,24 @@ function readCommandLine(args: readonly string[]): CommandLine {
   };
 }
 
-/** The sentence of a problem with its values put in. */
-function sayProblem({ row, column, value, reason, values }: RowProblem): string {
-  const sentences: Record<string, string> = problemSentences;
-  const sentence = (sentences[reason] ?? reason).replace(/\{\{(\w+)\}\}/g, (_, name: string) =>
-    String(values[name] ?? ''),
-  );
-  const where = column === null ? `line ${row}` : `line ${row}, ${column}`;
-  return value === null || value === '' ? `${where}: ${sentence}` : `${where}: “${value}”. ${sentence}`;
+/** A line for each problem: where, what was found, what was expected. */
+async function sayProblems(problems: readonly RowProblem[]): Promise<string[]> {
+  const { t } = await openSentences();
+  return problems.map(({ row, column, value, reason, values }) => {
+    const where = column === null ? `line ${row}` : `line ${row}, ${column}`;
+    const found = value === null || value === '' ? '' : `“${value}”. `;
+    return `${where}: ${found}${t(`problems:${reason}`, values)}`;
+  });
 }
 
-function explainFailure(error: unknown): string {
+async function explainFailure(error: unknown): Promise<string> {
   if (error instanceof UsageError) return `${error.message}\n\n${importUsage}`;
-  if (error instanceof CodedError) {
-    const limit = error.values?.['limit'];
-    const lines = error.issues?.map((issue) => `--${issue.path}: not known here`) ?? [];
-    if (limit !== undefined) lines.push(`At most ${limit} rows.`);
-    return [errorSentences[error.code], ...lines].join('\n');
-  }
-  return error instanceof Error ? error.message : String(error);
+  if (!(error instanceof CodedError)) return error instanceof Error ? error.message : String(error);
+  const { t } = await openSentences();
+  const limit = error.values?.['limit'];
+  return [
+    t(`errors:${error.code}`),
+    ...(error.issues?.map((issue) => `--${issue.path}: not known here`) ?? []),
+    ...(limit === undefined ? [] : [`At most ${limit} rows.`]),
+  ].join('\n');
 }

@@ -153,6 +153,23 @@ test('Goulden 1952, a Latin square', async () => {
   expect(row(analysis, 'entry')?.f).toBeCloseTo(21.03, 2);
 });
 
+test('Yates 1935, a split plot of oats', async () => {
+  const id = await bringIn(join(folder, 'yates.oats.csv'), [
+    ...['--design', 'split-plot', '--trait', 'grain', '--value-column', 'Y'],
+    ...['--block-column', 'B', '--main-column', 'V', '--entry-column', 'N'],
+  ]);
+  const analysis = await analyse(id, { trait: 'grain' });
+  expect(analysis.method).toBe('reml');
+  expect(row(analysis, 'main')?.f).toBeCloseTo(1.485, 3);
+  expect(row(analysis, 'main')?.denDf).toBeCloseTo(10, 6);
+  expect(row(analysis, 'sub')?.f).toBeCloseTo(37.69, 2);
+  expect(row(analysis, 'sub')?.denDf).toBeCloseTo(45, 6);
+  expect(row(analysis, 'main:sub')?.f).toBeCloseTo(0.303, 3);
+  // Error of the subplots 7969 / 45; standard error of a difference between rates of nitrogen 4.436.
+  expect(analysis.residualMs).toBeCloseTo(7969 / 45, 0);
+  for (const gap of analysis.gaps) expect(gap.se).toBeCloseTo(4.436, 3);
+});
+
 describe('series of trials, one of each site or year', () => {
   /** Sums of squares over the trials of a series. */
   async function sumOver(name: string, groups: string[], column: number, options: string[], trait: string) {

@@ -1,4 +1,6 @@
 import { describe, expect, test } from 'vitest';
+import english from '#locales/en/problems.json' with { type: 'json' };
+import { problemReasons } from '#server/trial-desk/row-problems.ts';
 import { readLongCsv, type ReadOptions } from '#server/trial-desk/read-long-csv.ts';
 
 const options: ReadOptions = {
@@ -143,6 +145,10 @@ describe('decimal signs', () => {
 });
 
 describe('what is refused', () => {
+  test('every reason has its sentence, and every sentence its reason', () => {
+    expect(Object.keys(english).sort()).toEqual([...problemReasons].sort());
+  });
+
   test('every bad row, by line, column, value and what was expected', () => {
     const file = read(
       [
