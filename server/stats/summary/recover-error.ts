@@ -34,15 +34,19 @@ export type SummaryFinding =
   | { readonly code: 'quantity-unused'; readonly quantity: ErrorQuantity; readonly reason: QuantityGap }
   | {
       readonly code: 'quantities-contradict';
-      readonly quantity: ErrorQuantity;
-      /** What the table prints for `quantity`; for a pair, its difference. */
-      readonly printed: number;
-      /** What `by` would make of it. */
-      readonly implied: number;
-      readonly by: ErrorQuantity;
+      /** The quantity the figures rest on. */
+      readonly used: PrintedAgainst;
+      readonly other: PrintedAgainst;
       /** Another usual level at which the two agree: the table's level may be misread. */
       readonly agreesAtAlpha: number | null;
     };
+
+/** A printed quantity, and what it should be by the one that contradicts it. Of a pair the difference is meant. */
+export interface PrintedAgainst {
+  readonly quantity: ErrorQuantity;
+  readonly printed: number;
+  readonly implied: number;
+}
 
 /** Why a table gives no standard error. */
 export type RecoveryGap = 'nothing-printed' | 'no-df' | QuantityGap;
@@ -115,6 +119,11 @@ interface Reading {
   readonly conversion: Conversion;
 }
 
+function printedAgainst(own: Reading, rival: Reading): PrintedAgainst {
+  const printed = own.conversion.inputs[0]?.value ?? 0;
+  return { quantity: own.estimate.from, printed, implied: own.conversion.fromSed(rival.estimate.sed) };
+}
+
 function contradictions(
   best: Reading,
   readings: readonly Reading[],
@@ -123,13 +132,11 @@ function contradictions(
 ): SummaryFinding[] {
   return readings
     .filter((reading) => doContradict(reading.estimate, best.estimate))
-    .map(({ estimate: { from }, conversion }) => ({
+    .map((reading) => ({
       code: 'quantities-contradict' as const,
-      quantity: from,
-      printed: conversion.inputs[0]?.value ?? 0,
-      implied: conversion.fromSed(best.estimate.sed),
-      by: best.estimate.from,
-      agreesAtAlpha: agreeingAlpha(from, best.estimate.from, trial, context),
+      used: printedAgainst(best, reading),
+      other: printedAgainst(reading, best),
+      agreesAtAlpha: agreeingAlpha(reading.estimate.from, best.estimate.from, trial, context),
     }));
 }
 
