@@ -18,9 +18,8 @@ export async function answerWeighUp(
     loadEvidence(db, weighUp),
     loadMoneyDefaults(db, weighUp.cropId, weighUp.regionId),
   ]);
-  const { currentVarietyId, candidateIds, seasonFrom, seasonTo } = weighUp;
-  const money = weighUp.assumptions;
-  const question = { currentVarietyId, candidateIds, seasonFrom, seasonTo, money, priceSheet };
+  const { currentVarietyId, candidateIds, assumptions: money } = weighUp;
+  const question = { currentVarietyId, candidateIds, traits: 'all', money, priceSheet } as const;
   return { result: weighEvidence(evidence, { ...question, askedAt: new Date() }), traits: evidence.traits };
 }
 
@@ -33,7 +32,7 @@ export async function rankCandidates(
   db: Database,
   scope: EvidenceScope & { currentVarietyId: string },
 ): Promise<{ result: WeighUpResult; assumptions: MoneyAssumptions | null }> {
-  const { currentVarietyId, seasonFrom, seasonTo } = scope;
+  const { currentVarietyId } = scope;
   const [evidence, priceSheet] = await Promise.all([
     loadEvidence(db, scope),
     loadMoneyDefaults(db, scope.cropId, scope.regionId),
@@ -41,8 +40,8 @@ export async function rankCandidates(
   ]);
   const result = weighEvidence(evidence, {
     candidateIds: listStanding(evidence).filter((id) => id !== currentVarietyId),
-    ...{ currentVarietyId, seasonFrom, seasonTo, priceSheet },
-    money: priceSheet,
+    ...{ currentVarietyId, priceSheet, money: priceSheet },
+    traits: 'yield',
     askedAt: new Date(),
   });
   const candidates = result.candidates.toSorted(

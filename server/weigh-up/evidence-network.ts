@@ -2,12 +2,13 @@ import type { Trait } from '#shared/catalogue.ts';
 import { defaultUsualVariances, type EvidenceNetwork, type NetworkCell } from '#server/stats/engine.ts';
 import type { Evidence, EvidenceMean, EvidenceTrial } from './evidence.ts';
 import { groupBy } from './group-by.ts';
+import type { Question } from './question.ts';
 
 /** The trait that money and the headline verdict are about. */
 export const yieldSlug = 'yield';
 
 /** Lays the evidence out as the engine takes it: trials by id, entries by variety id, numeric traits only. */
-export function layOutNetwork(evidence: Evidence): EvidenceNetwork {
+export function layOutNetwork(evidence: Evidence, traits: Question['traits']): EvidenceNetwork {
   const yieldTrait = evidence.traits.find((trait) => trait.slug === yieldSlug);
   const yieldFits = new Map(
     evidence.fits.filter((fit) => fit.traitId === yieldTrait?.id).map((fit) => [fit.versionId, fit]),
@@ -28,7 +29,7 @@ export function layOutNetwork(evidence: Evidence): EvidenceNetwork {
       management: readManagement(trial),
     })),
     traits: evidence.traits
-      .filter((trait) => trait.kind === 'numeric')
+      .filter((trait) => trait.kind === 'numeric' && (traits === 'all' || trait.slug === yieldSlug))
       .map((trait) => ({
         trait: trait.slug,
         better: trait.direction,

@@ -26,11 +26,10 @@ const mostDf = 1e6;
 
 /** Answers a question from the evidence: pure, so that the same versions and assumptions give the same answer. */
 export function weighEvidence(evidence: Evidence, question: Question): WeighUpResult {
-  const weighed = weighCandidates(layOutNetwork(evidence), {
+  const weighed = weighCandidates(layOutNetwork(evidence, question.traits), {
     current: question.currentVarietyId,
     candidates: question.candidateIds,
-    // One candidate is a planned pair; of several, the best is looked for.
-    kind: question.candidateIds.length === 1 ? 'pair' : 'best',
+    kind: question.candidateIds.length === 1 ? 'pair' : 'named',
     askedInSeason: question.askedAt.getUTCFullYear(),
     margins: { [yieldSlug]: breakEvenMargins(question) },
   });
@@ -61,8 +60,11 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     ...listTrials(evidence, yields),
     components: toDeviations(yields),
     usualVariancesFrom: yields.fit?.usual ? 'crop-default' : null,
-    candidates: yields.candidates.map((weighing) =>
-      describeCandidate(evidence, question, names, weighed.traits, weighing),
+    candidates: warnOfLeader(
+      yields.candidates.map((weighing) =>
+        describeCandidate(evidence, question, names, weighed.traits, weighing),
+      ),
+      yields.entries,
     ),
     cautions: [
       ...yields.cautions.map(toCaution),
@@ -125,6 +127,21 @@ function describeCandidate(
       ...(isCosted ? [] : [makeCaution('no-seed-cost', 'warning', { variety: varietyName })]),
     ],
   };
+}
+
+/**
+ * Candidates come from a list, and who leads a list leads by too much: the leader's gap is told beside the one pulled back.
+ * @param entries varieties that the list was made of
+ */
+function warnOfLeader(candidates: CandidateResult[], entries: number): CandidateResult[] {
+  if (candidates.length < 2) return candidates;
+  const best = Math.max(...candidates.map((one) => one.gap?.estimate ?? -Infinity));
+  return candidates.map((one) => {
+    const { gap, varietyName: variety } = one;
+    if (gap === null || gap.shrunken === null || gap.estimate !== best || best <= 0) return one;
+    const values = { variety, count: entries, estimate: gap.estimate, shrunken: gap.shrunken };
+    return { ...one, cautions: [...one.cautions, makeCaution('best-of-many', 'warning', values)] };
+  });
 }
 
 /** Where several were compared, the gap is pulled back for having been picked: engine.md, verdict and money. */
