@@ -106,7 +106,10 @@ export async function loadSentences(namespaces: readonly string[], language = i1
  */
 export async function changeLanguage(language: Language): Promise<void> {
   if (i18n.language !== language) {
-    await loadSentences([i18n.options.ns ?? []].flat(), language);
+    const inUse = [i18n.options.ns ?? []]
+      .flat()
+      .filter((name) => i18n.hasResourceBundle(i18n.language, name));
+    await loadSentences(inUse, language);
     await i18n.changeLanguage(language);
   }
   storeLanguage(language);

@@ -1,4 +1,7 @@
+import { z } from 'zod';
 import { beforeAll, describe, expect, it } from 'vitest';
+import { errorCodes } from '#shared/error-codes.ts';
+import { moneyAssumptions } from '#shared/money.ts';
 import { changeLanguage, i18n, loadSentences, startI18n } from '#src/i18n.ts';
 
 beforeAll(async () => {
@@ -40,5 +43,47 @@ describe('sentences that do not come', () => {
     await loadSentences(['drawings'], 'fr');
     expect(i18n.hasResourceBundle('fr', 'drawings')).toBe(true);
     expect(i18n.language).toBe('en');
+  });
+});
+
+describe('refusals', () => {
+  it.each(['en', 'fr'] as const)('have a sentence for every code (%s)', async (language) => {
+    await changeLanguage(language);
+    const missing = [...errorCodes, 'offline', 'unreadable-reply', 'unexpected'].filter(
+      (code) => !i18n.exists(`errors:${code}`),
+    );
+    expect(missing).toEqual([]);
+  });
+
+  it('have a sentence for each kind of issue that zod raises over a form', () => {
+    const form = z.object({
+      empty: z.string().min(1),
+      long: z.string().max(1),
+      email: z.email(),
+      count: z.number().int(),
+      role: z.enum(['a', 'b']),
+      alpha: z.union([z.literal(0.01), z.literal(0.05)]),
+      even: z.number().multipleOf(2),
+    });
+    const typed = { empty: '', long: 'xx', email: 'x', count: Number.NaN, role: 'c', alpha: 1, even: 3 };
+    const codes = form.safeParse(typed).error?.issues.map((issue) => issue.code) ?? [];
+    expect(codes).toHaveLength(7);
+    expect(codes.filter((code) => !i18n.exists(`errors:fields.${code}`))).toEqual([]);
+  });
+
+  it('have a sentence for the reasons of our own schemas', () => {
+    const typed = {
+      currency: 'CAD',
+      priceLow: 300,
+      priceMiddle: 290,
+      priceHigh: 340,
+      haulagePerTonne: 400,
+      dryingPerTonne: 0,
+      seedCosts: {},
+      priceSheetDate: null,
+    };
+    const reasons = moneyAssumptions.safeParse(typed).error?.issues.map((issue) => issue.message) ?? [];
+    expect(reasons).toContain('price-order');
+    expect(reasons.filter((reason) => !i18n.exists(`errors:fields.${reason}`))).toEqual([]);
   });
 });
