@@ -7,6 +7,7 @@ import type desk from '#locales/en/desk.json';
 import type drawings from '#locales/en/drawings.json';
 import type errors from '#locales/en/errors.json';
 import type method from '#locales/en/method.json';
+import type problems from '#locales/en/problems.json';
 import type signIn from '#locales/en/sign-in.json';
 import type trials from '#locales/en/trials.json';
 import type verdicts from '#locales/en/verdicts.json';
@@ -23,6 +24,7 @@ type LocaleResources = {
   drawings: typeof drawings;
   errors: typeof errors;
   method: typeof method;
+  problems: typeof problems;
   'sign-in': typeof signIn;
   trials: typeof trials;
   verdicts: typeof verdicts;

@@ -1,0 +1,149 @@
+import { useTranslation } from 'react-i18next';
+import { decimalsFor } from '#shared/format-number.ts';
+import type { Scale } from '#shared/gap-scale.ts';
+import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
+import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
+import { IntervalSentences } from '#src/components/candidate-story.tsx';
+import { scaleOfRows, useGapSentence } from '#src/components/gap-strip.tsx';
+import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
+import { useFormat } from '#src/components/use-format.ts';
+import { useSeasons } from '#src/components/use-seasons.ts';
+
+const unit = 't/ha';
+
+type CopyCandidatesProps = { weighUp: WeighUp; candidates: readonly CandidateResult[] };
+
+/** A candidate as the drawing needs it: what is too thin for an interval has none. */
+function toRow({ varietyId, varietyName, verdict, gap, money }: CandidateResult) {
+  const isThin = verdict === 'thin';
+  return {
+    id: varietyId,
+    name: varietyName,
+    verdict,
+    estimate: gap?.estimate ?? null,
+    region: isThin ? null : (gap?.region ?? null),
+    ownSeason: isThin ? null : (gap?.ownSeason ?? null),
+    breakEven: money?.breakEvenGap ?? null,
+  };
+}
+
+/** Every candidate with its beam, verdict and strip on one scale, and its intervals and worth in sentences. */
+export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
+  const { t } = useTranslation('copy');
+  const format = useFormat();
+  const scale = scaleOfRows(candidates.map(toRow));
+  const decimals = decimalsFor(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
+  const shown = candidates.find(({ gap, verdict }) => gap && verdict !== 'thin')?.gap;
+  const level = (value: number) => format.percent(value * 100);
+  return (
+    <section aria-label={t('candidates')} className="flex flex-col">
+      {candidates.map((candidate) => (
+        <CopyCandidate
+          key={candidate.varietyId}
+          candidate={candidate}
+          weighUp={weighUp}
+          scale={scale}
+          decimals={decimals}
+        />
+      ))}
+      <div className="border-t-2 border-ink pt-1">
+        <p className="text-sm text-faded">{t('axis', { current: weighUp.currentVarietyName, unit })}</p>
+        <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
+        {shown && (
+          <p className="mt-1 text-sm text-faded">
+            {shown.ownSeason
+              ? t('key', {
+                  regionLevel: level(shown.region.level),
+                  ownLevel: level(shown.ownSeason.level),
+                })
+              : t('keyWithoutOwn', { regionLevel: level(shown.region.level) })}
+          </p>
+        )}
+      </div>
+    </section>
+  );
+}
+
+type CopyCandidateProps = { candidate: CandidateResult; weighUp: WeighUp; scale: Scale; decimals: number };
+
+function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidateProps) {
+  const { t } = useTranslation('verdicts');
+  const format = useFormat();
+  const { currency } = weighUp.assumptions;
+  const row = toRow(candidate);
+  const sentence = useGapSentence(weighUp.currentVarietyName, unit, decimals)(row);
+  const { money, verdict, gap, siteYears } = candidate;
+  const hasMoney = money !== null && verdict !== 'thin';
+  return (
+    <article className="border-t-2 border-ink py-4">
+      <div className="flex flex-wrap items-baseline justify-between gap-x-4">
+        <h2>{candidate.varietyName}</h2>
+        <p className="text-lg font-bold">
+          {hasMoney
+            ? format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true })
+            : t('cantSay')}
+        </p>
+      </div>
+      <div className="flex flex-wrap gap-x-6 gap-y-1">
+        <VerdictMark verdict={verdict} />
+        {hasMoney && <MoneyVerdictMark verdict={money.verdict} />}
+      </div>
+      <div className="relative py-6">
+        {row.estimate !== null && (
+          <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
+            {format.gap(row.estimate, unit, decimals)}
+          </GapLabel>
+        )}
+        <GapTrack
+          scale={scale}
+          colour={verdictColours[verdict]}
+          estimate={row.estimate}
+          region={row.region}
+          ownSeason={row.ownSeason}
+          breakEven={row.breakEven}
+          isThin={verdict === 'thin'}
+          sentence={sentence}
+        />
+      </div>
+      <div className="flex flex-col gap-1.5">
+        {gap && verdict !== 'thin' && <IntervalSentences gap={gap} unit={unit} decimals={decimals} />}
+        {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
+        <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
+        <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
+      </div>
+    </article>
+  );
+}
+
+type WorthLinesProps = { candidate: CandidateResult; weighUp: WeighUp; decimals: number };
+
+/** From which gap it pays, how often, and what that is per hectare and on the farm. */
+function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {
+  const { t } = useTranslation('copy');
+  const format = useFormat();
+  const seasons = useSeasons();
+  const { money, verdict } = candidate;
+  if (verdict === 'thin') return <p>{t('cantSay')}</p>;
+  if (money === null) return <p>{t('noSeedCost')}</p>;
+  const { currency, priceMiddle } = weighUp.assumptions;
+  return (
+    <>
+      {money.chancePays !== null && (
+        <p>
+          {t('paysFrom', {
+            gap: format.gap(money.breakEvenGap, unit, decimals),
+            seasons: seasons(money.chancePays),
+          })}
+        </p>
+      )}
+      <p>
+        {t('worth', {
+          price: format.moneyPer(priceMiddle, currency, 't'),
+          amount: format.money(money.returnPerHectare, currency, { isSigned: true }),
+          total: format.money(money.returnPerHectare * weighUp.areaHectares, currency, { isSigned: true }),
+          area: format.area(weighUp.areaHectares),
+        })}
+      </p>
+    </>
+  );
+}
