@@ -21,12 +21,11 @@ function widenForFamily(
   gaps: readonly NetworkGap[],
   correlation: readonly Float64Array[],
   level: number,
-  withP: boolean,
 ): FamilyWidths {
   const df = gaps.map((gap) => gap.df);
   const ts = gaps.map(({ estimate, se }) => estimate / se);
   return {
-    p: withP ? [...dunnettAdjust({ ts, df, correlation }).p] : gaps.map(({ p }) => p),
+    p: [...dunnettAdjust({ ts, df, correlation }).p],
     quantile: df.map((own) => dunnettQuantile({ alpha: 1 - level, df: own, correlation })),
   };
 }
@@ -41,7 +40,6 @@ function correlate(estimates: EntryEstimates, members: readonly number[], base: 
 /**
  * Gaps of the candidates at positions `members` from the entry at position `base`, all connected to it.
  * @param isFamily true: intervals and pAdjusted by Dunnett on the model's covariance, Kenward–Roger SE and df; false: each pair alone
- * @param withP false where only intervals are asked for: pAdjusted is then that of the pair alone, and costs nothing
  */
 export function compareWithCurrent(
   estimates: EntryEstimates,
@@ -50,13 +48,10 @@ export function compareWithCurrent(
   base: number,
   isFamily: boolean,
   level: number,
-  withP = true,
 ): CandidateGap[] {
   const gaps = members.flatMap((r) => measureGap(estimates, r, base) ?? []);
   const family =
-    isFamily && gaps.length > 1
-      ? widenForFamily(gaps, correlate(estimates, members, base), level, withP)
-      : null;
+    isFamily && gaps.length > 1 ? widenForFamily(gaps, correlate(estimates, members, base), level) : null;
   const m = estimates.chosen.length;
   const interaction = 2 * estimates.fit.point.theta.reduce((sum, value) => sum + value, 0);
   return gaps.map((gap, index) => {
@@ -85,5 +80,30 @@ export function compareWithCurrent(
         ownSeasonSe: Math.sqrt(leftOver + interaction),
       },
     };
+  });
+}
+
+/**
+ * Verdicts alone, for the sensitivity lines. Dunnett's width lies between that of a pair alone and Bonferroni's, and a
+ * verdict that both give needs no further work; the rest are asked for exactly.
+ * @param judge verdict of the interval of the gap at an index of `members`; for wider intervals never a bolder one
+ */
+export function judgeAgainstCurrent<Verdict>(
+  estimates: EntryEstimates,
+  members: readonly number[],
+  base: number,
+  isFamily: boolean,
+  level: number,
+  judge: (interval: LevelInterval, index: number) => Verdict,
+): Verdict[] {
+  const gaps = members.flatMap((r) => measureGap(estimates, r, base) ?? []);
+  const tail = (1 - level) / 2;
+  return gaps.map(({ estimate, se, df }, index) => {
+    const alone = judge(around(estimate, tQuantileUpper(tail, df) * se, level), index);
+    if (!isFamily || gaps.length < 2) return alone;
+    const widest = judge(around(estimate, tQuantileUpper(tail / gaps.length, df) * se, level), index);
+    if (widest === alone) return alone;
+    const correlation = correlate(estimates, members, base);
+    return judge(around(estimate, dunnettQuantile({ alpha: 1 - level, df, correlation }) * se, level), index);
   });
 }

@@ -1,5 +1,5 @@
 import { chooseEvidence, type ChosenEvidence } from './choose-evidence.ts';
-import { compareWithCurrent } from './compare-with-current.ts';
+import { compareWithCurrent, judgeAgainstCurrent } from './compare-with-current.ts';
 import { standAgainstBest } from './compare-with-best.ts';
 import { estimateEntries, type EntryEstimates } from './entry-estimates.ts';
 import { answersFor, gradeEvidence, type EvidenceTier } from './evidence-tier.ts';
@@ -41,30 +41,50 @@ function choosePenalty(trait: TraitEvidence, factor: number): VariancePenalty | 
   return { nu: PENALTY, usual: scaleVariances(trait.usual, factor) };
 }
 
-/** @param factor on the usual variances: 1, or ½ and 2 for the sensitivity lines */
-function weighCells(
-  frame: NetworkFrame,
-  trait: TraitEvidence,
-  question: WeighQuestion,
-  factor: number,
-): Weighed | null {
-  const base = frame.entries.indexOf(question.current);
-  const penalty = choosePenalty(trait, factor);
-  const fit = fitNetwork(frame, penalty);
+/** Positions of the candidates that have cells. */
+function findMembers(frame: NetworkFrame, question: WeighQuestion): number[] {
+  return question.candidates.flatMap((candidate) => {
+    const at = frame.entries.indexOf(candidate);
+    return at < 0 ? [] : [at];
+  });
+}
+
+function weighCells(frame: NetworkFrame, trait: TraitEvidence, question: WeighQuestion): Weighed | null {
+  const fit = fitNetwork(frame, choosePenalty(trait, 1));
   if (fit.outcome === 'not-fitted') return null;
   const estimates = estimateEntries(fit);
   const [site, year, rest] = fit.point.theta;
   const usualEntry =
-    (trait.usual?.entry ?? totalVariance(trait.usual ?? { site: site!, year: year!, rest: rest! })) * factor;
-  const members = question.candidates.flatMap((candidate) => {
-    const at = frame.entries.indexOf(candidate);
-    return at < 0 || at === base ? [] : [at];
-  });
+    trait.usual?.entry ?? totalVariance(trait.usual ?? { site: site!, year: year!, rest: rest! });
+  const members = findMembers(frame, question);
+  const base = frame.entries.indexOf(question.current);
   const shrunken = shrinkEffects(estimates, usualEntry);
-  // The sensitivity lines ask for verdicts alone, and those come from intervals.
-  const withP = factor === 1;
-  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL, withP);
+  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL);
   return { fit, estimates, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
+}
+
+/** Verdicts, were the usual variances another factor of what they are; a candidate without gap has none. */
+function judgeWithFactor(ground: TraitGround, factor: number): ReadonlyMap<string, TraitVerdict> {
+  const { frame, trait, question } = ground;
+  const penalty = choosePenalty(trait, factor);
+  const fit = frame && penalty && fitNetwork(frame, penalty);
+  if (frame === null || fit === null || fit.outcome === 'not-fitted') return new Map();
+  const members = findMembers(frame, question);
+  const base = frame.entries.indexOf(question.current);
+  const names = members.map((at) => frame.entries[at]!);
+  const estimates = estimateEntries(fit, [base, ...members]);
+  const verdicts = judgeAgainstCurrent(
+    estimates,
+    members.map((_, index) => index + 1),
+    0,
+    question.kind !== 'pair',
+    LEVEL,
+    (interval, index) => {
+      const tier = gradePair(ground, names[index]!);
+      return judgeGap(interval, trait.better, marginOf(ground, names[index]!), answersFor(tier));
+    },
+  );
+  return new Map(names.map((name, index) => [name, verdicts[index]!]));
 }
 
 /** What stays the same for all candidates of a trait. */
@@ -75,8 +95,6 @@ interface TraitGround {
   readonly evidence: ChosenEvidence;
   readonly frame: NetworkFrame | null;
   readonly weighed: Weighed | null;
-  readonly half: Weighed | null;
-  readonly double: Weighed | null;
   readonly sites: number;
   readonly seasons: readonly number[];
   readonly stability: ReadonlyMap<string, EntryStability>;
@@ -97,15 +115,16 @@ function marginOf({ trait, question }: TraitGround, candidate: string): number {
   return Math.max(trait.practicalMargin, question.margins?.[trait.trait]?.[candidate] ?? 0);
 }
 
-function judgeIn(
-  ground: TraitGround,
-  weighed: Weighed | null,
-  candidate: string,
-  tier: EvidenceTier,
-): TraitVerdict {
-  const gap = weighed?.gaps.get(candidate);
-  if (gap === undefined) return 'thin';
-  return judgeGap(gap.region, ground.trait.better, marginOf(ground, candidate), answersFor(tier));
+function countStanding({ evidence }: TraitGround, entry: string): number {
+  return evidence.tables.filter(({ cells }) => cells.has(entry)).length;
+}
+
+/** Tier of a candidate against the current variety: the side that stood in fewer trials counts. */
+function gradePair(ground: TraitGround, candidate: string): EvidenceTier {
+  return gradeCandidate(
+    ground,
+    Math.min(countStanding(ground, candidate), countStanding(ground, ground.question.current)),
+  );
 }
 
 function settle(ground: TraitGround, gap: CandidateGap, verdict: TraitVerdict): number | null {
@@ -142,21 +161,28 @@ function findLeader({ question, trait, weighed }: TraitGround): string | null {
   return gap !== null && sign * gap.estimate > 0 ? name : null;
 }
 
-function weighOne(ground: TraitGround, candidate: string, leader: string | null): CandidateWeighing {
+/** Verdicts with the usual variances halved and doubled. */
+interface Sensitivity {
+  readonly half: ReadonlyMap<string, TraitVerdict>;
+  readonly double: ReadonlyMap<string, TraitVerdict>;
+}
+
+function weighOne(
+  ground: TraitGround,
+  candidate: string,
+  leader: string | null,
+  varied: Sensitivity,
+): CandidateWeighing {
   const { question, trait, evidence, network, weighed } = ground;
-  const stoodIn = (entry: string): number => evidence.tables.filter(({ cells }) => cells.has(entry)).length;
   const lines = drawTrialLines(evidence.tables, candidate, question.current, LEVEL);
-  const siteYears = stoodIn(candidate);
-  const tier = gradeCandidate(ground, Math.min(siteYears, stoodIn(question.current)));
+  const siteYears = countStanding(ground, candidate);
+  const tier = gradePair(ground, candidate);
   const gap = weighed?.gaps.get(candidate) ?? null;
-  const verdict = judgeIn(ground, weighed, candidate, tier);
-  const sensitivity =
-    gap === null || choosePenalty(trait, 1) === null
-      ? null
-      : {
-          half: judgeIn(ground, ground.half, candidate, tier),
-          double: judgeIn(ground, ground.double, candidate, tier),
-        };
+  const margin = marginOf(ground, candidate);
+  const verdict = gap === null ? 'thin' : judgeGap(gap.region, trait.better, margin, answersFor(tier));
+  const half = varied.half.get(candidate);
+  const double = varied.double.get(candidate);
+  const sensitivity = half === undefined || double === undefined ? null : { half, double };
   const isUnconnected = evidence.unconnected.has(candidate);
   const sign = trait.better === 'lower' ? -1 : 1;
   return {
@@ -226,20 +252,18 @@ export function weighTrait(
   const evidence = chooseEvidence(trials, trait, question);
   const frame = evidence.cells.length === 0 ? null : frameNetwork(evidence.cells);
   const used = evidence.tables.map(({ trial }) => trial);
-  const hasUsual = choosePenalty(trait, 1) !== null;
   const ground: TraitGround = {
     network,
     trait,
     question,
     evidence,
     frame,
-    weighed: frame && weighCells(frame, trait, question, 1),
-    half: frame && hasUsual ? weighCells(frame, trait, question, 0.5) : null,
-    double: frame && hasUsual ? weighCells(frame, trait, question, 2) : null,
+    weighed: frame && weighCells(frame, trait, question),
     sites: new Set(used.map(({ site }) => site)).size,
     seasons: [...new Set(used.map(({ season }) => season))].sort((a, b) => a - b),
     stability: measureStability(evidence.tables),
   };
+  const varied = { half: judgeWithFactor(ground, 0.5), double: judgeWithFactor(ground, 2) };
   const leader = findLeader(ground);
   const fit = ground.weighed?.fit ?? null;
   const theta = fit?.point.theta;
@@ -262,7 +286,7 @@ export function weighTrait(
             iterations: fit.iterations,
           }
         : null,
-    candidates: question.candidates.map((candidate) => weighOne(ground, candidate, leader)),
+    candidates: question.candidates.map((candidate) => weighOne(ground, candidate, leader, varied)),
     best: standings(ground),
     cautions: cautionEvidence({
       question,
