@@ -32,3 +32,4 @@ export {
   type NoUsualEstimate,
 } from './network/usual-variances.ts';
 export { recoverError, type RecoveredError } from './summary/recover-error.ts';
+export { poolErrorVariances, type PooledErrors, type TrialError } from './network/pool-error-variances.ts';

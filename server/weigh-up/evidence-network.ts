@@ -1,5 +1,10 @@
 import type { Trait } from '#shared/catalogue.ts';
-import { defaultUsualVariances, type EvidenceNetwork, type NetworkCell } from '#server/stats/engine.ts';
+import {
+  defaultUsualVariances,
+  poolErrorVariances,
+  type EvidenceNetwork,
+  type NetworkCell,
+} from '#server/stats/engine.ts';
 import type { Evidence, EvidenceMean, EvidenceTrial } from './evidence.ts';
 import { groupBy } from './group-by.ts';
 import type { Question } from './question.ts';
@@ -12,6 +17,10 @@ export function layOutNetwork(evidence: Evidence, traits: Question['traits']): E
   const yieldTrait = evidence.traits.find((trait) => trait.slug === yieldSlug);
   const yieldFits = new Map(
     evidence.fits.filter((fit) => fit.traitId === yieldTrait?.id).map((fit) => [fit.versionId, fit]),
+  );
+  const { cvLimitPercent } = evidence.crop;
+  const weakVersions = new Set(
+    [...yieldFits.values()].flatMap((fit) => ((fit.cvPercent ?? 0) > cvLimitPercent ? [fit.versionId] : [])),
   );
   return {
     names: Object.fromEntries(evidence.varieties.map((variety) => [variety.id, variety.name])),
@@ -35,8 +44,8 @@ export function layOutNetwork(evidence: Evidence, traits: Question['traits']): E
         better: trait.direction,
         practicalMargin: trait.practicalMargin ?? 0,
         usual: usualVariancesOf(trait, evidence.crop.typicalYield),
-        cells: layOutCells(evidence, trait.id),
-        cvLimitPercent: evidence.crop.cvLimitPercent,
+        cells: layOutCells(evidence, trait.id, weakVersions),
+        cvLimitPercent,
       })),
   };
 }
@@ -57,22 +66,50 @@ function readManagement({ management }: EvidenceTrial): Record<string, string> {
   );
 }
 
-function layOutCells(evidence: Evidence, traitId: string): NetworkCell[] {
+function layOutCells(evidence: Evidence, traitId: string, weakVersions: ReadonlySet<string>): NetworkCell[] {
   const trialOf = new Map(evidence.trials.map((trial) => [trial.versionId, trial.trialId]));
+  const errors = poolErrors(evidence, traitId, weakVersions);
   const own = evidence.means.filter((mean) => mean.traitId === traitId);
   const cells = groupBy(own, (mean) => `${mean.versionId} ${mean.varietyId}`);
-  return [...cells.values()].flatMap((labels) => joinLabels(labels, trialOf));
+  return [...cells.values()].flatMap((labels) => joinLabels(labels, trialOf, errors));
+}
+
+type PooledError = { factor: number; df: number };
+
+/** By version, what pooling over the trials makes of its error variance; weak trials have no part in it. */
+function poolErrors(
+  evidence: Evidence,
+  traitId: string,
+  weakVersions: ReadonlySet<string>,
+): ReadonlyMap<string, PooledError> {
+  const known = evidence.fits.flatMap(({ traitId: of, versionId, residualMs: ms, residualDf: df }) =>
+    of === traitId && ms !== null && ms > 0 && df !== null && df > 0 && !weakVersions.has(versionId)
+      ? [{ versionId, ms, df }]
+      : [],
+  );
+  const { trials } = poolErrorVariances(known);
+  return new Map(
+    known.map(({ versionId, ms, df }, j) => {
+      const pooled = trials[j] ?? { ms, df };
+      return [versionId, { factor: pooled.ms / ms, df: pooled.df }];
+    }),
+  );
 }
 
 /** One cell a variety and trial: a variety sown under two labels counts with the average of both. */
-function joinLabels(labels: readonly EvidenceMean[], trialOf: ReadonlyMap<string, string>): NetworkCell[] {
+function joinLabels(
+  labels: readonly EvidenceMean[],
+  trialOf: ReadonlyMap<string, string>,
+  errors: ReadonlyMap<string, PooledError>,
+): NetworkCell[] {
   const [first] = labels;
   const trial = first === undefined ? undefined : trialOf.get(first.versionId);
   if (first === undefined || trial === undefined) return [];
   const n = labels.length;
   const mean = labels.reduce((sum, label) => sum + label.mean, 0) / n;
+  const pooled = errors.get(first.versionId);
   const variance = labels.some((label) => label.variance === null)
     ? null
-    : labels.reduce((sum, label) => sum + (label.variance ?? 0), 0) / n ** 2;
-  return [{ entry: first.varietyId, trial, mean, variance, df: first.df }];
+    : (labels.reduce((sum, label) => sum + (label.variance ?? 0), 0) / n ** 2) * (pooled?.factor ?? 1);
+  return [{ entry: first.varietyId, trial, mean, variance, df: pooled?.df ?? first.df }];
 }
