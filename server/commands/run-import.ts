@@ -58,17 +58,26 @@ async function importFile(
     print.refuse(`Problems: ${report.problemsTotal}. Nothing was stored.`);
     return 1;
   }
-  const trialId = await storeTrialFile(db, checked, null);
+  // A trial that cannot be published is not kept as a draft either: the command does all of it or nothing.
+  const { trialId, version } = await db.transaction(async (tx) => {
+    const id = await storeTrialFile(tx, checked, null);
+    if (publish === null) return { trialId: id, version: null };
+    const publication = { trialId: id, authorId: null, reason: publish, revision: 1 };
+    return { trialId: id, version: await publishTrial(tx, publication) };
+  });
   const { rows, plots, entries, traits, unknownVarieties } = report;
   print.say(`Rows ${rows}, plots ${plots}, entries ${entries}, traits ${traits.join(', ')}.`);
   if (unknownVarieties.length > 0)
-    print.say(`No varieties of the crop, so kept as plain entries: ${unknownVarieties.join(', ')}.`);
-  if (publish !== null) {
-    const version = await publishTrial(db, { trialId, authorId: null, reason: publish, revision: 1 });
-    print.say(`Published as version ${version}.`);
-  }
+    print.say(`No varieties of the crop, so kept as plain entries: ${listShort(unknownVarieties)}.`);
+  if (version !== null) print.say(`Published as version ${version}.`);
   print.say(`Trial ${trialId}`);
   return 0;
+}
+
+function listShort(names: readonly string[]): string {
+  const most = 20;
+  const more = names.length > most ? ` and ${names.length - most} more` : '';
+  return names.slice(0, most).join(', ') + more;
 }
 
 /** A command line that cannot be understood. */

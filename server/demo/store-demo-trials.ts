@@ -2,7 +2,7 @@ import { and, eq, sql } from 'drizzle-orm';
 import { entries, observations, plots, trials } from '#drizzle/schema/trials.ts';
 import type { DatabaseOrTransaction } from '#server/db.ts';
 import { insertTrialContents, type NewTrial } from '#server/trials/trial-content-insert.ts';
-import { publishTrialIn, withdrawTrialIn } from '#server/trials/publish-trial.ts';
+import { publishTrial, withdrawTrial } from '#server/trials/publish-trial.ts';
 import type { DemoTrial } from './generate-demo.ts';
 import { demoId, pick, type CatalogueIds } from './store-demo-catalogue.ts';
 
@@ -29,10 +29,10 @@ export async function storeDemoTrials(
       planned.incident === 'corrected'
         ? 'Two plots had been entered in each other’s place'
         : 'Checked against the field book';
-    await publishTrialIn(tx, { trialId, authorId, reason, revision, at: at(11) });
+    await publishTrial(tx, { trialId, authorId, reason, revision, at: at(11) });
     if (planned.incident === 'withdrawn') {
       const withdrawal = { authorId: ids.accounts.agronome, revision: 2, at: at(12) };
-      await withdrawTrialIn(tx, { trialId, reason: 'Seed lots were mixed up before sowing', ...withdrawal });
+      await withdrawTrial(tx, { trialId, reason: 'Seed lots were mixed up before sowing', ...withdrawal });
     }
   }
 }
@@ -93,7 +93,7 @@ async function publishSwapped(
   };
   await swap();
   const reason = 'Checked against the field book';
-  await publishTrialIn(tx, { trialId, authorId, reason, revision: 1, at });
+  await publishTrial(tx, { trialId, authorId, reason, revision: 1, at });
   await swap();
   await tx
     .update(trials)

@@ -10,7 +10,7 @@ import {
 } from '#shared/trial-desk.ts';
 import { toTonnesPerHectare, type YieldUnit } from '#shared/units.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
-import { sqlStateOf, type Database, type DatabaseOrTransaction } from '#server/db.ts';
+import { sqlStateOf, type DatabaseOrTransaction } from '#server/db.ts';
 import { insertTrialContents } from '#server/trials/trial-content-insert.ts';
 import { readImportCatalogue, type ImportCatalogue } from './import-catalogue.ts';
 import type { ColumnChoice } from './match-columns.ts';
@@ -73,7 +73,7 @@ export async function checkTrialFile(
  * @throws CodedError import-refused with the problems as issues, trial-exists
  */
 export async function storeTrialFile(
-  db: Database,
+  db: DatabaseOrTransaction,
   { report, catalogue, content }: CheckedImport,
   authorId: string | null,
 ): Promise<string> {

@@ -3,7 +3,7 @@ import { entryMeans, trials, trialVersions, versionFits } from '#drizzle/schema/
 import { CodedError } from '#shared/error-codes.ts';
 import type { TrialState } from '#shared/trial.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
-import type { Database, DatabaseOrTransaction } from '#server/db.ts';
+import type { DatabaseOrTransaction } from '#server/db.ts';
 import { analyseContent } from './analyse-content.ts';
 import { hashTrialContent } from './trial-content-hash.ts';
 import { loadTrialContent, type StoredTrial } from './trial-content-store.ts';
@@ -26,17 +26,17 @@ const allowedFrom: Record<'publish' | 'withdraw', readonly TrialState[]> = {
 };
 
 /**
- * Publishes the working copy as the next version: content, hash, fits and entry means in one transaction.
+ * Publishes the working copy as the next version: content, hash, fits and entry means, all or nothing, also within a
+ * transaction of the caller's.
  * @returns the version's number
  * @throws CodedError not-found, revision-conflict, trial-not-analysable when no trait has an analysis,
  *   state-conflict when the newest version already holds the same content
  */
-export async function publishTrial(db: Database, publication: Publication): Promise<number> {
-  return db.transaction((tx) => publishTrialIn(tx, publication));
+export function publishTrial(db: DatabaseOrTransaction, publication: Publication): Promise<number> {
+  return db.transaction((tx) => insertPublication(tx, publication));
 }
 
-/** As `publishTrial`, inside a transaction of the caller's. */
-export async function publishTrialIn(tx: DatabaseOrTransaction, publication: Publication): Promise<number> {
+async function insertPublication(tx: DatabaseOrTransaction, publication: Publication): Promise<number> {
   const stored = await lockTrial(tx, publication, 'publish');
   const sha256 = hashTrialContent(stored.content);
   const newest = await readNewestVersion(tx, publication.trialId);
@@ -66,12 +66,11 @@ export async function publishTrialIn(tx: DatabaseOrTransaction, publication: Pub
  * @returns the version's number
  * @throws CodedError not-found, revision-conflict, state-conflict when it is not published
  */
-export async function withdrawTrial(db: Database, publication: Publication): Promise<number> {
-  return db.transaction((tx) => withdrawTrialIn(tx, publication));
+export function withdrawTrial(db: DatabaseOrTransaction, publication: Publication): Promise<number> {
+  return db.transaction((tx) => insertWithdrawal(tx, publication));
 }
 
-/** As `withdrawTrial`, inside a transaction of the caller's. */
-export async function withdrawTrialIn(tx: DatabaseOrTransaction, publication: Publication): Promise<number> {
+async function insertWithdrawal(tx: DatabaseOrTransaction, publication: Publication): Promise<number> {
   await lockTrial(tx, publication, 'withdraw');
   const newest = await readNewestVersion(tx, publication.trialId);
   if (newest === undefined) throw new CodedError('state-conflict');

@@ -223,6 +223,18 @@ describe('the command itself', () => {
     expect(stdout).toMatch(/Trial [0-9a-f-]{36}/);
   });
 
+  test('keeps no draft of a trial that was to be published and cannot be', async () => {
+    const path = join(temporary, 'thin.csv');
+    writeFileSync(path, 'entry,rep,yield\nA,1,5.1\nB,2,\n');
+    const args = [path, ...common, '--design', 'rcbd', '--name', 'Thin'];
+    const refused: string[] = [];
+    const print = { say: () => undefined, refuse: (line: string) => refused.push(line) };
+    expect(await runImport(world.database.db, [...args, '--publish', 'Checked'], print)).toBe(1);
+    expect(refused).toEqual(['This trial cannot be analysed as it stands.']);
+    // The same name is still free.
+    expect(await runImport(world.database.db, args, print)).toBe(0);
+  });
+
   test('names every bad row, stores nothing and exits with 1', async () => {
     const path = join(temporary, 'bad.csv');
     writeFileSync(path, 'entry;bloc;rendement\nA;1;5,1\nB;1;beaucoup\n;1;4,9\n');
