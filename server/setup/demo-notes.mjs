@@ -29,6 +29,7 @@ export function readDemoNotes() {
  * @param {string} url where the client is served
  */
 export function printDemoNotes({ accounts, growerPath }, url) {
+  if (accounts.length === 0) return;
   const widthOf = (field) => Math.max(...accounts.map((account) => account[field].length));
   const [role, email] = [widthOf('role'), widthOf('email')];
   console.log('\nAccounts of the demo (role, e-mail, password):');
