@@ -6,8 +6,10 @@ export type CropSlug = 'spring-barley' | 'field-pea' | 'winter-wheat';
 /** Standard deviations of yield at standard moisture, t/ha, and the mean they lie around. */
 export type YieldComponents = {
   mean: number;
-  /** Between varieties of the crop. */
+  /** Between varieties of the crop, besides what breeding gains. */
   variety: number;
+  /** What a year of breeding adds: newer varieties are better on average. */
+  gainPerYear: number;
   varietySite: number;
   varietyYear: number;
   /** Variety × site × year: what is left of an entry in one trial. */
@@ -26,6 +28,7 @@ export const yieldComponents: Readonly<Record<CropSlug, YieldComponents>> = {
   'spring-barley': {
     mean: 5.2,
     variety: 0.3,
+    gainPerYear: 0.03,
     varietySite: 0.12,
     varietyYear: 0.12,
     rest: 0.18,
@@ -38,6 +41,7 @@ export const yieldComponents: Readonly<Record<CropSlug, YieldComponents>> = {
   'field-pea': {
     mean: 2.9,
     variety: 0.17,
+    gainPerYear: 0.018,
     varietySite: 0.07,
     varietyYear: 0.07,
     rest: 0.1,
@@ -50,6 +54,7 @@ export const yieldComponents: Readonly<Record<CropSlug, YieldComponents>> = {
   'winter-wheat': {
     mean: 6.4,
     variety: 0.36,
+    gainPerYear: 0.06,
     varietySite: 0.15,
     varietyYear: 0.15,
     rest: 0.22,

@@ -18,9 +18,13 @@ export function drawTruth(): CropTruth[] {
     crop: crop.slug,
     varieties: new Map(
       crop.traits.map((trait) => {
-        const spread = trait.grown?.variety ?? yieldComponents[crop.slug].variety;
+        const { variety: yieldSpread, gainPerYear } = yieldComponents[crop.slug];
+        const spread = trait.grown?.variety ?? yieldSpread;
+        const gain = trait.grown === null ? gainPerYear : 0;
         const random = openRandomSource(demoSeed, `truth ${crop.slug} ${trait.slug}`);
-        const drawn = crop.varieties.map((variety) => [variety.name, spread * random.normal()] as const);
+        const drawn = crop.varieties.map(
+          (variety) => [variety.name, spread * random.normal() + gain * variety.from] as const,
+        );
         const mean = drawn.reduce((sum, [, effect]) => sum + effect, 0) / drawn.length;
         return [trait.slug, new Map(drawn.map(([name, effect]) => [name, effect - mean]))] as const;
       }),
