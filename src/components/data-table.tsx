@@ -1,10 +1,13 @@
 import { useId, useMemo, useState, type ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
+import { Button } from './button.tsx';
+import { Field } from './field.tsx';
+import { Select } from './select.tsx';
 import { useLanguage } from './use-language.ts';
 
 export type Column<Row> = {
   id: string;
-  header: ReactNode;
+  header: string;
   cell: (row: Row) => ReactNode;
   /** Makes the column sortable; null sorts last in both directions. */
   sortValue?: (row: Row) => number | string | null;
@@ -75,45 +78,81 @@ export function DataTable<Row>({
   const headId = headColumnId ?? columns[0]?.id;
   const isTurned = whenNarrow === 'turn';
   return (
-    <div
-      className={isTurned ? '@container' : 'overflow-x-auto'}
-      {...(isTurned ? {} : { tabIndex: 0, role: 'group', 'aria-labelledby': captionId })}
-    >
-      {/* Roles are repeated because a turned table is laid out as blocks, and browsers then drop its meaning. */}
-      <table role="table" className="w-full border-collapse text-left">
-        <caption
-          id={captionId}
-          className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}
-        >
-          {caption}
-        </caption>
-        <thead role="rowgroup" className={isTurned ? '@max-xl:sr-only' : ''}>
-          <tr role="row" className="border-b-2 border-ink">
-            {columns.map((column) => (
-              <HeadCell key={column.id} column={column} sort={sort} onSort={setSort} />
-            ))}
-          </tr>
-        </thead>
-        <tbody role="rowgroup">
-          {sorted.map((row) => (
-            <tr
-              role="row"
-              key={rowKey(row)}
-              className={`border-b border-rule ${isTurned ? '@max-xl:block @max-xl:py-3' : ''}`}
-            >
+    // A container of its own keeps a wide table from widening the page around it.
+    <div className="@container">
+      {isTurned && columns.some((column) => column.sortValue) && (
+        <SortChooser columns={columns} sort={sort} onSort={setSort} />
+      )}
+      <div
+        className={isTurned ? '' : 'overflow-x-auto'}
+        {...(isTurned ? {} : { tabIndex: 0, role: 'group', 'aria-labelledby': captionId })}
+      >
+        {/* Roles are repeated because a turned table is laid out as blocks, and browsers then drop its meaning. */}
+        <table role="table" className="w-full border-collapse text-left">
+          <caption
+            id={captionId}
+            className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}
+          >
+            {caption}
+          </caption>
+          <thead role="rowgroup" className={isTurned ? '@max-xl:hidden' : ''}>
+            <tr role="row" className="border-b-2 border-ink">
               {columns.map((column) => (
-                <BodyCell
-                  key={column.id}
-                  column={column}
-                  row={row}
-                  isHead={column.id === headId}
-                  isTurned={isTurned}
-                />
+                <HeadCell key={column.id} column={column} sort={sort} onSort={setSort} />
               ))}
             </tr>
-          ))}
-        </tbody>
-      </table>
+          </thead>
+          <tbody role="rowgroup">
+            {sorted.map((row) => (
+              <tr
+                role="row"
+                key={rowKey(row)}
+                className={`border-b border-rule ${isTurned ? '@max-xl:block @max-xl:py-3' : ''}`}
+              >
+                {columns.map((column) => (
+                  <BodyCell
+                    key={column.id}
+                    column={column}
+                    row={row}
+                    isHead={column.id === headId}
+                    isTurned={isTurned}
+                  />
+                ))}
+              </tr>
+            ))}
+          </tbody>
+        </table>
+      </div>
+    </div>
+  );
+}
+
+type SortProps<Row> = {
+  columns: readonly Column<Row>[];
+  sort: SortState | undefined;
+  onSort: (sort: SortState) => void;
+};
+
+/** Takes the place of the headings where they are not in view: on a turned table. */
+function SortChooser<Row>({ columns, sort, onSort }: SortProps<Row>) {
+  const { t } = useTranslation('common');
+  return (
+    <div className="hidden items-end gap-3 border-b-2 border-ink pb-3 @max-xl:flex">
+      <Field label={t('table.sortBy')} className="grow">
+        <Select
+          placeholder={t('table.unsorted')}
+          value={sort?.columnId ?? ''}
+          onChange={(event) => onSort({ columnId: event.target.value, isDescending: false })}
+          options={columns
+            .filter((column) => column.sortValue)
+            .map((column) => ({ value: column.id, label: column.header }))}
+        />
+      </Field>
+      {sort && sort.columnId !== '' && (
+        <Button onClick={() => onSort({ ...sort, isDescending: !sort.isDescending })}>
+          {sort.isDescending ? t('table.descending') : t('table.ascending')}
+        </Button>
+      )}
     </div>
   );
 }
@@ -128,7 +167,7 @@ function HeadCell<Row>({ column, sort, onSort }: HeadCellProps<Row>) {
   const { t } = useTranslation('common');
   const isSorted = sort?.columnId === column.id;
   const side = column.align === 'end' ? 'text-right' : 'text-left';
-  const space = 'px-2 first:pl-0 last:pr-0 text-sm font-semibold text-faded align-bottom';
+  const space = 'px-2 @max-xl:px-1 first:pl-0 last:pr-0 text-sm font-semibold text-faded align-bottom';
   if (!column.sortValue) {
     return (
       <th role="columnheader" scope="col" className={`${space} py-2 ${side}`}>
@@ -169,7 +208,7 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
       <th
         role="rowheader"
         scope="row"
-        className={`${space} ${side} font-semibold ${isTurned ? '@max-xl:block @max-xl:px-0 @max-xl:pt-0 @max-xl:text-left' : ''}`}
+        className={`${space} ${side} font-semibold ${isTurned ? '@max-xl:block @max-xl:px-0 @max-xl:pt-0 @max-xl:text-left' : '@max-xl:px-1 @max-xl:text-sm'}`}
       >
         {column.cell(row)}
       </th>
@@ -177,7 +216,7 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
   }
   if (!isTurned) {
     return (
-      <td role="cell" className={`${space} ${side}`}>
+      <td role="cell" className={`${space} ${side} @max-xl:px-1 @max-xl:text-sm`}>
         {column.cell(row)}
       </td>
     );
@@ -187,9 +226,7 @@ function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
       role="cell"
       className={`${space} ${side} @max-xl:flex @max-xl:items-baseline @max-xl:justify-between @max-xl:gap-4 @max-xl:px-0 @max-xl:py-1 @max-xl:text-right`}
     >
-      <span aria-hidden="true" className="hidden shrink-0 text-left text-sm text-faded @max-xl:inline">
-        {column.header}
-      </span>
+      <span className="hidden shrink-0 text-left text-sm text-faded @max-xl:inline">{column.header}</span>
       <span className="min-w-0">{column.cell(row)}</span>
     </td>
   );

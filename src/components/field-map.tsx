@@ -69,35 +69,42 @@ export function FieldMap({ title, plots, unit, decimals, shade }: FieldMapProps)
       title={title}
       isPicture
       drawing={
-        <div className="overflow-x-auto pb-2" role="group" aria-label={t('fieldMap.scrollHint')} tabIndex={0}>
+        <div className="@container">
           <div
-            role="img"
-            aria-label={t('fieldMap.summary', {
-              rows: Math.max(...rows) - firstRow + 1,
-              columns: columnCount,
-              used: count('used'),
-              excluded: count('excluded'),
-              missing: count('missing'),
-            })}
-            className="grid gap-0.5"
-            style={{
-              gridTemplateColumns: `repeat(${columnCount}, minmax(5.75rem, 1fr))`,
-              maxWidth: `${columnCount * 8}rem`,
-            }}
+            className="overflow-x-auto pb-2"
+            role="group"
+            aria-label={t('fieldMap.scrollHint')}
+            tabIndex={0}
           >
-            {placed.map((plot) => (
-              <PlotCell
-                key={plot.id}
-                plot={plot}
-                decimals={decimals}
-                shade={shade}
-                style={{
-                  gridRow: plot.row - firstRow + 1,
-                  gridColumn: plot.col - firstColumn + 1,
-                  backgroundColor: stateOfPlot(plot) === 'used' ? shadeOf(shareOf(plot)) : undefined,
-                }}
-              />
-            ))}
+            <div
+              role="img"
+              aria-label={t('fieldMap.summary', {
+                rows: Math.max(...rows) - firstRow + 1,
+                columns: columnCount,
+                used: count('used'),
+                excluded: count('excluded'),
+                missing: count('missing'),
+              })}
+              className="grid gap-0.5"
+              style={{
+                gridTemplateColumns: `repeat(${columnCount}, minmax(6.25rem, 1fr))`,
+                maxWidth: `${columnCount * 8}rem`,
+              }}
+            >
+              {placed.map((plot) => (
+                <PlotCell
+                  key={plot.id}
+                  plot={plot}
+                  decimals={decimals}
+                  shade={shade}
+                  style={{
+                    gridRow: plot.row - firstRow + 1,
+                    gridColumn: plot.col - firstColumn + 1,
+                    backgroundColor: stateOfPlot(plot) === 'used' ? shadeOf(shareOf(plot)) : undefined,
+                  }}
+                />
+              ))}
+            </div>
           </div>
         </div>
       }

@@ -39,6 +39,16 @@ describe('the table', () => {
     expect(order()).toEqual(['Alder', 'Écluse', 'Foss', 'Wyke']);
   });
 
+  it('is sorted by a chooser too, for where its headings are not in view', async () => {
+    await renderClient(table);
+    await userEvent.selectOptions(screen.getByLabelText('Sort by'), 'Mean');
+    expect(order()).toEqual(['Wyke', 'Foss', 'Alder', 'Écluse']);
+    await userEvent.click(screen.getByRole('button', { name: /Ascending/ }));
+    expect(order()).toEqual(['Alder', 'Foss', 'Wyke', 'Écluse']);
+    await userEvent.selectOptions(screen.getByLabelText('Sort by'), 'As listed');
+    expect(order()).toEqual(['Wyke', 'Écluse', 'Alder', 'Foss']);
+  });
+
   it('is named and has its rows headed', async () => {
     await renderClient(table);
     const found = screen.getByRole('table', { name: 'Sites' });
