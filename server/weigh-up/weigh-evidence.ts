@@ -223,16 +223,11 @@ function toDeviations({ fit }: TraitWeighing): WeighUpResult['components'] {
   return { site: Math.sqrt(site), season: Math.sqrt(year), rest: Math.sqrt(rest) };
 }
 
-/** Sentences about one trial of several name it. */
-const namedCodes: ReadonlySet<string> = new Set(['trial-weak-cv', 'trial-f-not-significant']);
-
-function toCaution({ code, severity, numbers }: EvidenceCaution): Caution {
-  return {
-    code,
-    severity,
-    values: namedCodes.has(code) ? { ...numbers, context: 'named' } : { ...numbers },
-  };
-}
+const toCaution = ({ code, severity, numbers }: EvidenceCaution): Caution => ({
+  code,
+  severity,
+  values: { ...numbers },
+});
 
 /** Traits without usual variances rest on the trials alone: said once, however many they are. */
 function cautionOtherTraits(traits: readonly TraitWeighing[]): Caution[] {

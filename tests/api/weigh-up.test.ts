@@ -1,5 +1,6 @@
 import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import { cautionValues } from '#shared/caution.ts';
 import { weighMoney, type MoneyAssumptions } from '#shared/money.ts';
 import type { CandidateResult, WeighUpInput, WeighUpResult } from '#shared/weigh-up.ts';
 import { combineTrials, defaultUsualVariances } from '#server/stats/engine.ts';
@@ -94,7 +95,15 @@ const question = (change: Partial<WeighUpInput> = {}): WeighUpInput => ({
 
 async function weigh(change: Partial<WeighUpInput> = {}): Promise<WeighUpResult> {
   const made = await advisor.agent.post('/api/weigh-ups').send(question(change)).expect(200);
-  return (await advisor.agent.get(`/api/weigh-ups/${made.body.weighUp.id}`).expect(200)).body.result;
+  const { result } = (await advisor.agent.get(`/api/weigh-ups/${made.body.weighUp.id}`).expect(200)).body;
+  checkCautions(result);
+  return result;
+}
+
+/** Every caution brings the values that its sentence needs. */
+function checkCautions({ cautions, candidates }: WeighUpResult): void {
+  for (const { code, values } of [...cautions, ...candidates.flatMap((one) => one.cautions)])
+    expect([code, Object.keys(values)]).toEqual([code, expect.arrayContaining([...cautionValues[code]])]);
 }
 
 const candidateIn = (result: WeighUpResult, name: string): CandidateResult => {
