@@ -19,10 +19,15 @@ const DECAY = 0.5;
 /** Correlations this near to λ_i λ_j are taken as equal: the effect on p is smaller still. */
 const EXACT_REST = 1e-9;
 const QUADRATURE_ERROR = 1e-9;
-/** Error above which the lattice is asked: absolute, and as a part of p. */
-const ERROR_ALLOWED = 1e-5;
-const SHARE_ALLOWED = 1e-3;
+const COARSE_ERROR = 1e-7;
 const LATTICE_TARGET = 1e-6;
+/** Deviates beyond which no error is left to see. */
+const FARTHEST = 36;
+
+/** Error above which the slow lattice is asked; less is wanted of a p that no verdict hangs on. */
+function errorAllowed(p: number): number {
+  return p > 0.3 ? 0.02 : 2e-4 + 5e-3 * p;
+}
 
 /** P(max |Z_i| > w) tabulated, and what a p at t may be wrong by. */
 interface FamilyTail {
@@ -53,9 +58,10 @@ function buildFamilyTail(correlation: Correlation): FamilyTail {
   return {
     factor,
     isExact: false,
-    tail: tabulateTail((w) => evaluate(w).upper, DECAY),
+    tail: tabulateTail((w) => evaluate(w).upper, DECAY, false),
     // The estimated scale moves w around t.
-    errorAt: (t) => QUADRATURE_ERROR + Math.max(...[0.7, 1, 1.3].map((scale) => evaluate(t * scale).error)),
+    errorAt: (t) =>
+      COARSE_ERROR + Math.max(...[0.7, 1, 1.3].map((scale) => evaluate(Math.min(FARTHEST, t * scale)).error)),
   };
 }
 
@@ -68,7 +74,7 @@ function adjustOne(
 ): { readonly p: number; readonly error: number; readonly usesLattice: boolean } {
   const p = averageOverScale(family.tail, t, df);
   const error = family.errorAt(t);
-  if (error <= ERROR_ALLOWED + SHARE_ALLOWED * p) return { p, error, usesLattice: false };
+  if (error <= errorAllowed(p)) return { p, error, usesLattice: false };
   const approximate = averageOverScale(
     tabulateTail(oneFactorTail(family.factor.loadings, true), DECAY),
     t,

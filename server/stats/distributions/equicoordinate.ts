@@ -4,42 +4,45 @@ import type { OneFactor } from './one-factor.ts';
 const INV_SQRT_2PI = 0.3989422804014327;
 /** Sizes of a normal deviate beyond which nothing is left to add. */
 const REACH = 8.7;
-/** Largest correlation outside the factor up to which the third order, of cost m³, changes no p by 1e-7. */
-const NEGLIGIBLE_THIRD = 0.004;
+/** Largest correlation outside the factor up to which the third order, of cost m³, changes no p by 1e-6. */
+const NEGLIGIBLE_THIRD = 0.01;
 
 /**
- * How one variable, given the shared factor, lies against its bounds. Derivatives of its density, integrated between
- * the bounds and taken as a part of P(inside), act as moments; here are their cumulants.
+ * How the variables, given the shared factor, lie against their bounds. Derivatives of a variable's density,
+ * integrated between the bounds and taken as a part of P(inside), act as moments; here are their cumulants.
  */
-interface Conditional {
-  /** log P(inside). */
-  logInside: number;
-  mean: number;
-  variance: number;
-  skew: number;
+interface Conditionals {
+  readonly mean: Float64Array;
+  readonly variance: Float64Array;
+  readonly skew: Float64Array;
 }
 
 /** P(outside) of a variable with mean `shift` and the given spread: it lies within ±w, or below w. */
 function outsideOf(w: number, shift: number, spread: number, isTwoSided: boolean): number {
-  const above = normalUpper((w - shift) / spread);
-  return isTwoSided ? Math.min(1, above + normalUpper((w + shift) / spread)) : above;
+  if (!isTwoSided) return normalUpper((w - shift) / spread);
+  const size = Math.abs(shift);
+  const nearer = normalUpper((w - size) / spread);
+  // The other bound is e^(2 w size / spread²) times less likely: not worth a call where that shows no more.
+  return 2 * w * size > 40 * spread * spread
+    ? nearer
+    : Math.min(1, nearer + normalUpper((w + size) / spread));
 }
 
-/** Fills in the cumulants of a variable, see outsideOf. */
+/** Fills in the cumulants of variable i, see outsideOf; returns log P(inside). */
 function fillConditional(
-  into: Conditional,
+  into: Conditionals,
+  i: number,
   w: number,
   shift: number,
   spread: number,
   isTwoSided: boolean,
-): void {
+): number {
   const outside = outsideOf(w, shift, spread, isTwoSided);
-  into.logInside = Math.log1p(-outside);
   if (outside > 1 - 1e-15) {
-    into.mean = 0;
-    into.variance = 0;
-    into.skew = 0;
-    return;
+    into.mean[i] = 0;
+    into.variance[i] = 0;
+    into.skew[i] = 0;
+    return -Infinity;
   }
   const above = (w - shift) / spread;
   const below = (w + shift) / spread;
@@ -49,57 +52,69 @@ function fillConditional(
   const first = upper - lower;
   const second = -(above * upper + below * lower) / spread;
   const third = ((above * above - 1) * upper - (below * below - 1) * lower) / (spread * spread);
-  into.mean = first;
-  into.variance = second - first * first;
-  into.skew = third - 3 * second * first + 2 * first * first * first;
+  into.mean[i] = first;
+  into.variance[i] = second - first * first;
+  into.skew[i] = third - 3 * second * first + 2 * first * first * first;
+  return Math.log1p(-outside);
 }
 
 /**
  * Effects of first, second and third order, as parts of P(all inside), of correlations ε outside the shared factor.
  * Raising ρ_ij acts on a normal density as ∂²/∂x_i ∂x_j, so that all of ε acts as exp(Q), Q = Σ_{i<j} ε_ij ∂_i ∂_j.
  * The variables being independent given the factor, Q is a quadratic form in independent quantities with the
- * cumulants of `Conditional`, and the effects are E Q, E Q²/2 and E Q³/6.
+ * cumulants of `Conditionals`, and the effects are E Q, E Q²/2 and E Q³/6.
  */
-function restEffects(
-  own: readonly Conditional[],
-  rest: Float64Array,
-  hasThird: boolean,
-  effects: Float64Array,
-): void {
-  const m = own.length;
-  let square = 0;
-  let cube = 0;
-  let mean = 0;
+function restEffects(own: Conditionals, rest: Float64Array, hasThird: boolean, effects: Float64Array): void {
+  const { mean, variance } = own;
+  const m = mean.length;
   const slopes = new Float64Array(m);
+  let expected = 0;
+  let square = 0;
   for (let i = 0; i < m; i += 1) {
     let slope = 0;
-    for (let j = 0; j < m; j += 1) slope += (rest[i * m + j] as number) * (own[j] as Conditional).mean;
-    slopes[i] = slope;
-    mean += 0.5 * slope * (own[i] as Conditional).mean;
-  }
-  for (let i = 0; i < m; i += 1) {
-    const { variance, skew } = own[i] as Conditional;
-    const slope = slopes[i] as number;
-    square += slope * slope * variance;
-    cube += slope * slope * slope * skew;
+    let spread = 0;
     for (let j = 0; j < m; j += 1) {
       const epsilon = rest[i * m + j] as number;
-      const other = own[j] as Conditional;
-      square += 0.5 * epsilon * epsilon * variance * other.variance;
-      if (!hasThird) continue;
-      cube += 3 * epsilon * slope * (slopes[j] as number) * variance * other.variance;
-      cube += 3 * epsilon * epsilon * slope * skew * other.variance;
-      cube += 0.5 * epsilon * epsilon * epsilon * skew * other.skew;
+      slope += epsilon * (mean[j] as number);
+      spread += epsilon * epsilon * (variance[j] as number);
+    }
+    slopes[i] = slope;
+    expected += 0.5 * slope * (mean[i] as number);
+    square += (slope * slope + 0.5 * spread) * (variance[i] as number);
+  }
+  effects[0] = expected;
+  effects[1] = (expected * expected + square) / 2;
+  effects[2] = hasThird
+    ? (expected * expected * expected + 3 * expected * square + centredCube(own, rest, slopes)) / 6
+    : 0;
+}
+
+/** E (Q − E Q)³ for the quadratic form of restEffects, whose slopes are ε times the means. */
+function centredCube({ variance, skew }: Conditionals, rest: Float64Array, slopes: Float64Array): number {
+  const m = slopes.length;
+  let cube = 0;
+  for (let i = 0; i < m; i += 1) {
+    const slope = slopes[i] as number;
+    const ownVariance = variance[i] as number;
+    const ownSkew = skew[i] as number;
+    cube += slope * slope * slope * ownSkew;
+    for (let j = 0; j < i; j += 1) {
+      const epsilon = rest[i * m + j] as number;
+      const otherVariance = variance[j] as number;
+      const otherSkew = skew[j] as number;
+      const otherSlope = slopes[j] as number;
+      // Rows i and j of ε (diagonal 0): paths from i to j over any third variable.
       let paths = 0;
       for (let k = 0; k < m; k += 1) {
-        paths += (rest[i * m + k] as number) * (own[k] as Conditional).variance * (rest[k * m + j] as number);
+        paths += (rest[i * m + k] as number) * (variance[k] as number) * (rest[j * m + k] as number);
       }
-      cube += epsilon * variance * other.variance * paths;
+      cube += 2 * epsilon * ownVariance * otherVariance * (3 * slope * otherSlope + paths);
+      cube +=
+        3 * epsilon * epsilon * (slope * ownSkew * otherVariance + otherSlope * otherSkew * ownVariance);
+      cube += epsilon * epsilon * epsilon * ownSkew * otherSkew;
     }
   }
-  effects[0] = mean;
-  effects[1] = (mean * mean + square) / 2;
-  effects[2] = hasThird ? (mean * mean * mean + 3 * mean * square + cube) / 6 : 0;
+  return cube;
 }
 
 /** The tail of the largest of m correlated standard normals, or of the largest of their sizes. */
@@ -183,24 +198,27 @@ export function expandedTail(factor: OneFactor, isTwoSided: boolean): (w: number
   const { loadings, rest, largestRest } = factor;
   const grid = factorGrid(loadings, isTwoSided);
   const spreads = loadings.map((loading) => Math.sqrt(1 - loading * loading));
-  const own = Array.from(loadings, (): Conditional => ({ logInside: 0, mean: 0, variance: 0, skew: 0 }));
+  const zeros = (): Float64Array => new Float64Array(loadings.length);
+  const own: Conditionals = { mean: zeros(), variance: zeros(), skew: zeros() };
   const hasThird = largestRest > NEGLIGIBLE_THIRD;
   const effects = new Float64Array(3);
   return (w) => {
     const [start, last] = grid.span(w);
+    const negligible = 1e-12 * Math.exp(-0.5 * w * w);
     let upper = 0;
     const orders: [number, number, number] = [0, 0, 0];
     for (let j = start; j <= last; j += 1) {
       const z = j * grid.step;
       let logInside = 0;
-      own.forEach((conditional, i) => {
-        fillConditional(conditional, w, (loadings[i] as number) * z, spreads[i] as number, isTwoSided);
-        logInside += conditional.logInside;
-      });
-      restEffects(own, rest, hasThird, effects);
+      for (let i = 0; i < loadings.length; i += 1) {
+        const shift = (loadings[i] as number) * z;
+        logInside += fillConditional(own, i, w, shift, spreads[i] as number, isTwoSided);
+      }
       const weight = (isTwoSided && j > 0 ? 2 : 1) * grid.step * INV_SQRT_2PI * Math.exp(-0.5 * z * z);
       const inside = weight * Math.exp(logInside);
       upper -= weight * Math.expm1(logInside);
+      if (inside < negligible) continue;
+      restEffects(own, rest, hasThird, effects);
       orders[0] -= inside * (effects[0] as number);
       orders[1] -= inside * (effects[1] as number);
       orders[2] -= inside * (effects[2] as number);

@@ -39,7 +39,7 @@ export function oneSidedDunnettQuantile(alpha: number, df: number, correlation: 
   const expand = expandedTail(factor, false);
   const upper =
     factor.largestRest <= EXACT_REST ? oneFactorTail(factor.loadings, false) : (w: number) => expand(w).upper;
-  const tail = tabulateTail(upper, DECAY);
+  const tail = tabulateTail(upper, DECAY, false);
   return findUpperQuantile((d) => averageOverScale(tail, d, df), alpha, 2);
 }
 

@@ -2,7 +2,7 @@
 const SEED = 20_240_917;
 const SHIFTS = 8;
 const FIRST_POINTS = 500;
-const MOST_POINTS = 4_000;
+const MOST_POINTS = 2_000;
 /** Standard errors, of 8 shifts, within which the truth is stated to lie. */
 const ERROR_FACTOR = 3.5;
 
