@@ -4,10 +4,11 @@ import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { timeTask, type BenchSuite, type BenchTask } from './bench/bench-task.ts';
+import { networkSuite } from './bench/network-suite.ts';
 import { trialSuite } from './bench/trial-suite.ts';
 
 // Engine and R on the same work, side by side: medians in warm processes. `--no-r` leaves R out.
-const suites: readonly BenchSuite[] = [trialSuite];
+const suites: readonly BenchSuite[] = [trialSuite, networkSuite];
 
 const scripts = fileURLToPath(new URL('./bench/', import.meta.url));
 const hasR = !process.argv.includes('--no-r') && spawnSync('Rscript', ['--version']).status === 0;

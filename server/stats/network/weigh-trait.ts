@@ -66,7 +66,7 @@ function weighCells(frame: NetworkFrame, trait: TraitEvidence, question: WeighQu
 /** Verdicts, were the usual variances another factor of what they are; a candidate without gap has none. */
 function judgeWithFactor(ground: TraitGround, factor: number): ReadonlyMap<string, TraitVerdict> {
   const { frame, trait, question } = ground;
-  const penalty = choosePenalty(trait, factor);
+  const penalty = question.withoutSensitivity === true ? null : choosePenalty(trait, factor);
   const fit = frame && penalty && fitNetwork(frame, penalty);
   if (frame === null || fit === null || fit.outcome === 'not-fitted') return new Map();
   const members = findMembers(frame, question);
