@@ -56,7 +56,7 @@ export const candidateResult = z.object({
   sharedSiteYears: z.number().int(),
   /**
    * The gap that money is reckoned on, as it may come out on the grower's own land in another season: shrunken where
-   * several candidates were compared. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
+   * several candidates were compared, null where the evidence is too thin to judge. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
    */
   moneyGap: gapDistribution.nullable(),
   money: moneyResult.nullable(),

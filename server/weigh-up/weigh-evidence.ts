@@ -96,7 +96,9 @@ function describeCandidate(
   const { candidate: varietyId, gap } = weighing;
   const varietyName = names.get(varietyId) ?? varietyId;
   const { money, currentVarietyId } = question;
-  const moneyGap = gap === null ? null : chooseMoneyGap(gap, question.candidateIds.length > 1);
+  // What the evidence is too thin to judge, it is too thin to price.
+  const isPriced = gap !== null && weighing.verdict !== 'thin';
+  const moneyGap = isPriced ? chooseMoneyGap(gap, question.candidateIds.length > 1) : null;
   const isCosted = money?.seedCosts[varietyId] !== undefined;
   return {
     varietyId,

@@ -261,7 +261,7 @@ test('one season alone says so; one site-year gives no verdict at all', async ()
   const { db } = world.database;
   await publishPlanted(db, small, planted('elm', 2019));
   const single = candidateIn(await weigh({ seasonFrom: 2019, seasonTo: 2019 }), 'Birch');
-  expect(single).toMatchObject({ verdict: 'thin', siteYears: 1 });
+  expect(single).toMatchObject({ verdict: 'thin', siteYears: 1, moneyGap: null, money: null });
   expect(codes(single.cautions)).toEqual(expect.arrayContaining(['few-site-years', 'old-seasons']));
 });
 
