@@ -8,6 +8,7 @@ import { DiagnosticList, OutcomeList, RecoveredError } from './analysis-notes.ts
 import { AnovaTable } from './anova-table.tsx';
 import { FieldMap } from './field-map.tsx';
 import { MeansChart } from './means-chart.tsx';
+import { MeansTable } from './means-table.tsx';
 import { PairsTable } from './pairs-table.tsx';
 import { RatingTable } from './rating-table.tsx';
 import { SpatialModels } from './spatial-models.tsx';
@@ -27,7 +28,7 @@ type AnalysisViewProps = {
 
 /** One trait of one trial, from the sentence to the tables. What the trial does not give is left out, and said. */
 export function AnalysisView(props: AnalysisViewProps) {
-  const { analysis, traitName, unit, children, entry = null, onEntry } = props;
+  const { analysis, traitName, unit, hasLetters, children, entry = null, onEntry } = props;
   const decimals = decimalsOfAnalysis(analysis, unit);
   return (
     <div className="flex flex-col gap-7">
@@ -42,6 +43,7 @@ export function AnalysisView(props: AnalysisViewProps) {
         <AnovaTable analysis={analysis} traitName={traitName} />
         <DiagnosticList diagnostics={analysis.diagnostics} />
       </div>
+      {hasLetters && <MeansTable analysis={analysis} unit={unit} decimals={decimals} />}
       <SpatialModels models={analysis.spatial} unit={unit} decimals={decimals} />
       {onEntry && analysis.gaps.length > 0 && (
         <PairsTable analysis={analysis} unit={unit} decimals={decimals} entry={entry} onEntry={onEntry} />
@@ -72,7 +74,6 @@ function AnalysisDrawings({
             alpha={analysis.alpha}
             hasLetters={hasLetters}
           />
-          {hasLetters && <p className="mt-2 text-sm text-faded">{t('letters')}</p>}
         </div>
       )}
       {analysis.plots.length > 0 && (

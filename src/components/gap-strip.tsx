@@ -35,6 +35,8 @@ type GapStripProps = {
   unit: string;
   /** Of the figures in words; see `decimalsFor`. */
   decimals: number;
+  /** Level of the candidates' names in the page's outline. */
+  headingLevel?: 2 | 3;
 };
 
 /** Too few trials for a verdict are too few for an interval: whatever a model would give is not shown. */
@@ -66,7 +68,14 @@ export function scaleOfRows(rows: readonly GapStripRow[]): Scale {
 }
 
 /** The signature drawing: a list of gaps to the current variety on one shared scale, with what is left uncertain. */
-export function GapStrip({ title, rows: given, currentName, unit, decimals }: GapStripProps) {
+export function GapStrip({
+  title,
+  rows: given,
+  currentName,
+  unit,
+  decimals,
+  headingLevel = 2,
+}: GapStripProps) {
   const { t } = useTranslation('drawings');
   const rows = given.map(withoutThinIntervals);
   const scale = scaleOfRows(rows);
@@ -84,7 +93,7 @@ export function GapStrip({ title, rows: given, currentName, unit, decimals }: Ga
           </div>
           <ul className="border-t-2 border-ink">
             {rows.map((row) => (
-              <StripRow key={row.id} row={row} {...shared} />
+              <StripRow key={row.id} row={row} headingLevel={headingLevel} {...shared} />
             ))}
           </ul>
           <StripKey rows={rows} />
@@ -97,16 +106,19 @@ export function GapStrip({ title, rows: given, currentName, unit, decimals }: Ga
 
 type SharedProps = { scale: Scale; currentName: string; unit: string; decimals: number };
 
-function StripRow({ row, scale, currentName, unit, decimals }: { row: GapStripRow } & SharedProps) {
+type StripRowProps = SharedProps & { row: GapStripRow; headingLevel: 2 | 3 };
+
+function StripRow({ row, scale, currentName, unit, decimals, headingLevel }: StripRowProps) {
+  const Heading = `h${headingLevel}` as const;
   const { t } = useTranslation('drawings');
   const format = useFormat();
   const sentence = useGapSentence(currentName, unit, decimals)(row);
   return (
     <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-3 @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
       <div>
-        <h3 className="text-lg font-bold [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
+        <Heading className="text-lg font-bold [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
           {row.head ?? row.name}
-        </h3>
+        </Heading>
         <VerdictMark verdict={row.verdict} className="text-sm" />
       </div>
       <div className="relative col-span-2 row-start-2 py-6 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1">

@@ -48,9 +48,14 @@ export function AuditLogPage() {
   );
 }
 
+/** Ids and fingerprints say nothing to a reader beyond their first signs. */
+const longCode = /^[0-9a-f-]{30,}$/;
+const shownCode = 8;
+
 /** One value of an event's detail as text; lists are joined. */
 function writeDetail(value: unknown): string {
   if (value === null || value === undefined) return '–';
+  if (typeof value === 'string' && longCode.test(value)) return value.slice(0, shownCode);
   if (Array.isArray(value)) return value.map(writeDetail).join(', ');
   return typeof value === 'object' ? JSON.stringify(value) : String(value);
 }
@@ -63,6 +68,11 @@ function useEventColumns(): Column<AuditEvent>[] {
     i18n.exists(`accounts:audit.actions.${action}`)
       ? t(`audit.actions.${action}` as 'audit.actions.trial.imported')
       : action;
+  const detailName = (name: string) =>
+    i18n.exists(`accounts:audit.details.${name}`)
+      ? // The key was just found to exist; its type cannot be known here.
+        t(`audit.details.${name}` as 'audit.details.reason')
+      : name;
   const subjectText = (kind: string) =>
     i18n.exists(`accounts:audit.subject.${kind}`)
       ? // The key was just found to exist; its type cannot be known here.
@@ -94,7 +104,9 @@ function useEventColumns(): Column<AuditEvent>[] {
       cell: (event) => (
         <span className="text-sm break-words">
           {Object.entries(event.detail)
-            .map(([name, value]) => `${name}: ${writeDetail(value)}`)
+            .map(([name, value]) =>
+              t('audit.detailOf', { name: detailName(name), value: writeDetail(value) }),
+            )
             .join(' · ')}
         </span>
       ),

@@ -26,6 +26,7 @@ export function usePlotColumns(
       cell: (plot) => (
         <Checkbox
           label={plot.plotNumber}
+          className="-my-2"
           aria-label={t('plots.choose', { plot: plot.plotNumber, entry: plot.entryLabel })}
           checked={chosenIds.includes(plot.id)}
           onChange={(event) => toggle(plot.id, event.target.checked)}

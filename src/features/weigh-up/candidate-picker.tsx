@@ -29,6 +29,7 @@ export function CandidatePicker({ candidates, chosenIds, currentName }: Candidat
   const columns = useCandidateColumns((candidate) => (
     <Checkbox
       label={candidate.varietyName}
+      className="-my-2"
       checked={chosenIds.includes(candidate.varietyId)}
       disabled={isFull && !chosenIds.includes(candidate.varietyId)}
       onChange={(event) => choose(candidate.varietyId, event.target.checked)}

@@ -47,14 +47,12 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
       ...(isOpen && { below: <OpenRow {...story} /> }),
     };
   });
+  const title = t('gapTitle', { current: currentName });
   return (
-    <GapStrip
-      title={t('gapTitle', { current: currentName })}
-      rows={rows}
-      currentName={currentName}
-      unit={unit}
-      decimals={decimals}
-    />
+    <section>
+      <h2 className="sr-only">{title}</h2>
+      <GapStrip title={title} rows={rows} currentName={currentName} unit={unit} decimals={decimals} />
+    </section>
   );
 }
 
