@@ -4,7 +4,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as sleep } from 'node:timers/promises';
 import { projectRoot } from './ground.mjs';
-import { undoAtEnd } from './process-end.mjs';
+import { isEnding, undoAtEnd } from './process-end.mjs';
 import { formatSeconds } from './progress.mjs';
 
 /** No check takes a quarter of this, even on a busy machine. */
@@ -79,6 +79,8 @@ function readCounts(path) {
  */
 function runShown(program, args, env) {
   return new Promise((resolve) => {
+    // Nothing more is begun, and nothing counted, on the way out.
+    if (isEnding()) return;
     const child = spawn(program, args, {
       cwd: projectRoot,
       env: { ...process.env, ...env },
@@ -107,7 +109,7 @@ function runShown(program, args, env) {
     void closed.then((code) => {
       clearTimeout(tooLong);
       isOver = true;
-      resolve({ code: code ?? 1 });
+      if (!isEnding()) resolve({ code: code ?? 1 });
     });
   });
 }
