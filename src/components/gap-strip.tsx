@@ -149,6 +149,7 @@ function StripRow({ row, scale, currentName, unit, decimals, headingLevel }: Str
         )}
       </div>
       <div className="col-start-2 row-start-1 text-right @2xl:col-start-3">{row.aside}</div>
+      {row.below && <div className="col-span-full min-w-0">{row.below}</div>}
     </li>
   );
 }
