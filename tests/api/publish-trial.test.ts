@@ -1,4 +1,4 @@
-import { eq, sql } from 'drizzle-orm';
+import { and, eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { entryMeans, trialVersions, versionFits } from '#drizzle/schema/trials.ts';
 import { trialContent } from '#shared/trial-content.ts';
@@ -39,8 +39,23 @@ beforeAll(async () => {
 });
 afterAll(() => database.close());
 
+/** Waits until so many queries of this database wait for a lock. */
+async function waitUntilWaiting(count: number): Promise<void> {
+  for (;;) {
+    const { rows } = await database.db.execute<{ waiting: number }>(
+      sql`select count(*)::int as waiting from pg_stat_activity
+        where datname = current_database() and wait_event_type = 'Lock'`,
+    );
+    if ((rows[0]?.waiting ?? 0) >= count) return;
+  }
+}
+
+/** The first version. */
 async function readVersion() {
-  const [version] = await database.db.select().from(trialVersions).where(eq(trialVersions.trialId, trialId));
+  const [version] = await database.db
+    .select()
+    .from(trialVersions)
+    .where(and(eq(trialVersions.trialId, trialId), eq(trialVersions.number, 1)));
   if (version === undefined) throw new Error('No version was stored');
   return version;
 }
@@ -96,17 +111,36 @@ describe('a publication', () => {
     expect((await readVersion()).reason).toBe('Checked');
   });
 
+  test('is one, however many publish at once', async () => {
+    const { db } = database;
+    await db.execute(
+      sql`update plots set excluded_reason = 'Birds' where trial_id = ${trialId} and block = '4'`,
+    );
+    const { revision } = await loadTrialContent(db, trialId);
+    const publish = () => publishTrial(db, { trialId, authorId: null, reason: 'Birds', revision });
+    // Both have begun before either can go on: a third holds the trial meanwhile.
+    const replies = await db.transaction(async (tx) => {
+      await tx.execute(sql`select from trials where id = ${trialId} for update`);
+      const begun = [publish(), publish()].map((one) => one.catch((error: unknown) => error));
+      await waitUntilWaiting(2);
+      return begun;
+    });
+    const outcomes = await Promise.all(replies);
+    expect(outcomes).toContain(2);
+    expect(outcomes).toContainEqual(expect.objectContaining({ code: 'revision-conflict' }));
+  });
+
   test('leaves nothing behind when it fails half way', async () => {
     const { db } = database;
     const before = await db.execute(sql`select count(*)::int as count from trial_versions`);
     // An author that does not exist breaks the version's reference after the analysis has been made.
     const authorId = '00000000-0000-4000-8000-000000000000';
     await db.execute(sql`update trials set name = 'Renamed' where id = ${trialId}`);
-    await expect(publishTrial(db, { trialId, authorId, reason: 'Renamed', revision: 2 })).rejects.toThrow();
+    await expect(publishTrial(db, { trialId, authorId, reason: 'Renamed', revision: 3 })).rejects.toThrow();
     const after = await db.execute(sql`select count(*)::int as count from trial_versions`);
     expect(after.rows).toEqual(before.rows);
     const { rows } = await db.execute(sql`select revision, state from trials where id = ${trialId}`);
-    expect(rows).toEqual([{ revision: 2, state: 'published' }]);
+    expect(rows).toEqual([{ revision: 3, state: 'published' }]);
   });
 });
 

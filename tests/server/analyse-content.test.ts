@@ -111,7 +111,11 @@ describe('a trial of plots', () => {
     expect(p('holm')).toBeGreaterThanOrEqual(p('lsd'));
     expect(p('protected-lsd')).toBe(p('lsd'));
     expect(view(rice, yieldTrait, 'lsd', 0.01).lsd?.mean).toBeGreaterThan(view(rice).lsd?.mean ?? 9);
-    expect(view(rice, yieldTrait, 'lsd', 0.01).alpha).toBe(0.01);
+    const strict = view(rice, yieldTrait, 'lsd', 0.01);
+    expect(strict.alpha).toBe(0.01);
+    const beyond = strict.gaps.filter((gap) => Math.abs(gap.estimate ?? 0) > (strict.lsd?.mean ?? 0));
+    expect(strict.pairsDifferent).toBe(beyond.length);
+    expect(strict.pairsDifferent).toBeLessThan(view(rice).pairsDifferent);
   });
 
   test('Dunnett compares with the check alone, and says so when there is none', () => {
