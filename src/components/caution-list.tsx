@@ -38,7 +38,7 @@ export function CautionList({ title, items, headingLevel = 2 }: CautionListProps
         {sorted.map((item) => (
           <li key={item.id} className="grid grid-cols-[1.5rem_minmax(0,1fr)] gap-x-2">
             <SeverityGlyph severity={item.severity} />
-            <p className="max-w-prose">
+            <p className="max-w-[46rem]">
               <strong className={`font-semibold ${tones[item.severity]}`}>
                 {t(`severity.${item.severity}`)}
               </strong>{' '}
