@@ -1,6 +1,6 @@
 import { AnalysisError } from '#server/stats/analysis-error.ts';
 import { dunnettAdjust } from '#server/stats/distributions/dunnett.ts';
-import type { MeanEstimates } from './gap-table.ts';
+import { leastTestDf, type MeanEstimates } from './gap-table.ts';
 import { isEstimable } from './mean-family.ts';
 import type { DunnettResult } from './trial-result.ts';
 
@@ -24,8 +24,9 @@ export function compareWithCheck(
       missing.includes(check) ? `the check ${check} has no values` : `no entry is named ${check}`,
     );
   if (!covariance || estimates.isExact) return null;
+  const dfOf = (i: number) => estimates.dfOf(Math.min(i, c), Math.max(i, c));
   const others = Array.from({ length: size }, (_, i) => i).filter(
-    (i) => i !== c && isEstimable(family, i, c),
+    (i) => i !== c && isEstimable(family, i, c) && dfOf(i) >= leastTestDf,
   );
   if (others.length === 0) return null;
   const product = (i: number, j: number) =>
@@ -35,7 +36,7 @@ export function compareWithCheck(
     covariance[c * size + c]!;
   const se = others.map((i) => Math.sqrt(product(i, i)));
   const ts = others.map((i, k) => (values[i]! - values[c]!) / se[k]!);
-  const dfs = others.map((i) => estimates.dfOf(Math.min(i, c), Math.max(i, c)));
+  const dfs = others.map(dfOf);
   const correlation = others.map((i, k) =>
     Float64Array.from(others, (j, l) => (k === l ? 1 : product(i, j) / (se[k]! * se[l]!))),
   );

@@ -21,6 +21,9 @@ export interface MeanEstimates {
   readonly isExact: boolean;
 }
 
+/** Kenward–Roger df below this mean that the error is hardly known: there is no test and no LSD then. */
+export const leastTestDf = 0.2;
+
 const lsdLevels = [0.05, 0.1, 0.01] as const;
 
 /**
@@ -38,6 +41,8 @@ export function tabulateFamily(
   const pairs = estimatePairs(estimates);
   const adjusted = adjustPairs(pairs, family);
   const { groups, notices } = groupMeans(estimates, pairs, alpha);
+  if (pairs.df.some((df, g) => pairs.estimable[g] === 1 && df > 0 && !(df >= leastTestDf)))
+    notices.push({ code: 'no-residual-df' });
   const place = new Map(order.map((label, i) => [label, i]));
   const quantiles = new Map<number, readonly [number, number, number]>();
   const gaps: Gap[] = new Array<Gap>(pairs.a.length);
@@ -92,7 +97,7 @@ function estimatePairs(estimates: MeanEstimates): Pairs {
       const variance = covariance[a * size + a]! + covariance[b * size + b]! - 2 * covariance[a * size + b]!;
       pairs.se[g] = Math.sqrt(Math.max(0, variance));
       pairs.df[g] = estimates.dfOf(a, b);
-      if (estimates.isExact || !(pairs.se[g]! > 0)) continue;
+      if (estimates.isExact || !(pairs.se[g]! > 0) || !(pairs.df[g]! >= leastTestDf)) continue;
       pairs.t[g] = pairs.estimate[g]! / pairs.se[g]!;
       pairs.p[g] = tTwoSided(pairs.t[g]!, pairs.df[g]!);
     }
@@ -140,7 +145,7 @@ function describeGap(
   const df = pairs.df[g]!;
   const se = pairs.se[g]!;
   let quantile = quantiles.get(df);
-  if (!quantile && hasVariance) {
+  if (!quantile && hasVariance && df >= leastTestDf) {
     quantile = [tQuantileUpper(0.025, df), tQuantileUpper(0.05, df), tQuantileUpper(0.005, df)];
     quantiles.set(df, quantile);
   }
@@ -215,7 +220,10 @@ function summariseLsd(gaps: readonly Gap[], pairs: Pairs, alpha: number): Record
   if (!lists.some(([level]) => level === alpha))
     lists.push([
       alpha,
-      (gap, g) => (gap.se === null ? null : tQuantileUpper(alpha / 2, pairs.df[g]!) * gap.se),
+      (gap, g) =>
+        gap.se === null || pairs.df[g]! < leastTestDf
+          ? null
+          : tQuantileUpper(alpha / 2, pairs.df[g]!) * gap.se,
     ]);
   for (const [level, pick] of lists) {
     let [sum, count, min, max] = [0, 0, Infinity, -Infinity];

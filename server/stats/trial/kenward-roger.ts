@@ -106,7 +106,7 @@ function testColumns(
   fit: MixedFit,
   basis: MixedBasis,
   columns: readonly number[],
-): { df: number; denDf: number; f: number; p: number } {
+): Pick<VarianceRow, 'df' | 'denDf' | 'f' | 'p'> {
   const { theta, random, w } = fit;
   const rank = basis.kept.length;
   const q = fit.root.length;
@@ -152,6 +152,8 @@ function testColumns(
     }
   const { scale, denDf } = matchMoments(df, a1, a2);
   const statistic = scale * wald;
+  // with hardly any replication the two moments are not those of an F: no test then
+  if (!(denDf > 0 && denDf < Infinity && scale > 0)) return { df, denDf: null, f: null, p: null };
   return { df, denDf, f: statistic, p: fUpper(statistic, df, denDf) };
 }
 

@@ -54,9 +54,13 @@ export function prepareRandom(fixed: FixedFit): RandomPart | null {
     : buildRandomPart(fixed);
 }
 
-/** @param random with at least one term */
-export function fitMixed(fixed: FixedFit, random: RandomPart): MixedFit {
+/**
+ * @param random with at least one term
+ * @returns null where the random terms leave no residual variance
+ */
+export function fitMixed(fixed: FixedFit, random: RandomPart): MixedFit | null {
   const components = fitComponents(random);
+  if (components.isResidualZero) return null;
   const { theta, expected } = components.point;
   const count = theta.length;
   const w = invertInformation(expected, count);

@@ -65,7 +65,7 @@ function findConfounded(part: Omit<RandomPart, 'notIdentifiable'>): number | nul
     if (own <= leastShare * all) return k;
   }
   if (terms.length === 0) return null;
-  const { expected } = evaluatePoint(part, new Float64Array(terms.length + 1).fill(1));
+  const { expected } = evaluatePoint(part, new Float64Array(terms.length + 1).fill(1))!;
   // the residual first, so that what is confounded with it is the random term
   const order = [terms.length, ...terms.map((_, k) => k)];
   const count = order.length;

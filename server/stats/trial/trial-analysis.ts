@@ -11,13 +11,15 @@ import { sortLabels } from './model-terms.ts';
 import { readPlots, type UsedPlots } from './read-plots.ts';
 import type { TrialDesign, TrialOptions, TrialPlot } from './trial-data.ts';
 import { diagnose, type FitResiduals } from './trial-diagnostics.ts';
-import { buildModel, type TrialModel } from './trial-model.ts';
+import { buildModel, takeAsFixed, type TrialModel } from './trial-model.ts';
 import { noticeGaps } from './trial-notices.ts';
 import type { FamilyTable, FitSummary, TrialAnalysis, TrialNotice, VarianceRow } from './trial-result.ts';
 import { tabulateVariance } from './variance-table.ts';
 
 /** A fit of either kind, as far as the tables need it. */
 interface ModelAnalysis {
+  /** the fixed part, which says what is estimable */
+  readonly fixed: FixedFit;
   readonly summary: FitSummary;
   readonly anova: readonly VarianceRow[];
   readonly estimate: (family: MeanFamily) => MeanEstimates;
@@ -39,9 +41,10 @@ export function analyseTrial(
   if (!(alpha > 0 && alpha < 1)) throw new AnalysisError('bad-option', 'alpha must lie between 0 and 1');
   const used = readPlots(plots, options.allowNegative ?? false);
   const model = buildModel(used, design);
-  const fixed = fitFixed(model, used.values);
-  const analysis = analyseModel(fixed, used);
-  const [own, ...others] = model.families.map((family) => buildFamily(fixed, family.name, family.factors));
+  const analysis = analyseModel(fitFixed(model, used.values), used);
+  const [own, ...others] = model.families.map((family) =>
+    buildFamily(analysis.fixed, family.name, family.factors),
+  );
   const missing = labelsWithoutData(plots, used, model);
   const order = missing.length === 0 ? own!.labels : sortLabels([...own!.labels, ...missing]);
   const estimates = analysis.estimate(own!);
@@ -62,14 +65,19 @@ export function analyseTrial(
     factors,
     diagnostics,
     residuals,
-    notices: [...noticeGaps(fixed, own!, missing), ...analysis.notices, ...table.notices],
+    notices: [...noticeGaps(analysis.fixed, own!, missing), ...analysis.notices, ...table.notices],
   };
 }
 
 /** By REML where the design has random effects and the data can tell them, else by least squares. */
 function analyseModel(fixed: FixedFit, used: UsedPlots): ModelAnalysis {
   const random = prepareRandom(fixed);
-  if (random && random.terms.length > 0) return analyseMixed(fitMixed(fixed, random), used);
+  if (random && random.terms.length > 0) {
+    const mixed = fitMixed(fixed, random);
+    if (mixed) return analyseMixed(mixed, used);
+    // nothing is left over once the random terms are known: as fixed terms they say so exactly
+    return analyseFixed(fitFixed(takeAsFixed(fixed.model, random.terms), used.values), used, []);
+  }
   const components = random ? random.notIdentifiable : [];
   return analyseFixed(
     fixed,
@@ -80,6 +88,7 @@ function analyseModel(fixed: FixedFit, used: UsedPlots): ModelAnalysis {
 
 function analyseFixed(fit: FixedFit, used: UsedPlots, notices: readonly TrialNotice[]): ModelAnalysis {
   return {
+    fixed: fit,
     summary: summariseFixedFit(fit, used.total),
     anova: tabulateVariance(fit),
     estimate: (family) => estimateFixedMeans(fit, family),
@@ -90,6 +99,7 @@ function analyseFixed(fit: FixedFit, used: UsedPlots, notices: readonly TrialNot
 
 function analyseMixed(fit: MixedFit, used: UsedPlots): ModelAnalysis {
   return {
+    fixed: fit.fixed,
     summary: summariseMixedFit(fit, used.total),
     anova: testMixedTerms(fit),
     estimate: (family) => estimateMixedMeans(fit, family),

@@ -64,6 +64,18 @@ export function buildModel(used: UsedPlots, design: TrialDesign): TrialModel {
   return { design, count, fixed, random, width, families, blocking: recipe.blocking };
 }
 
+/** The model with random terms as fixed ones, before the last fixed term, so that blocks still stand first. */
+export function takeAsFixed(model: TrialModel, random: readonly RandomTerm[]): TrialModel {
+  let width = model.width;
+  const added = random.map((term) => {
+    const factor: Factor = { name: term.name, levels: term.levels, codes: term.cells };
+    const fixed = buildFixedTerm([factor], model.count, width);
+    width += fixed.width;
+    return fixed;
+  });
+  return { ...model, fixed: [...model.fixed, ...added], random: [], width };
+}
+
 interface Recipe {
   readonly fixed: readonly (readonly Factor[])[];
   readonly random: readonly (readonly Factor[])[];

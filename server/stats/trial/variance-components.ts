@@ -22,6 +22,7 @@ export interface RestrictedPoint {
   readonly theta: Float64Array;
   /** −½[(n−p) log 2π + (n−p) log σ² + log|I + Γ½ Z'MZ Γ½| + y'Py], Γ = D/σ²: the restricted one plus ½ log|X'X| */
   readonly logLik: number;
+  readonly ypy: number;
   /** S = Z'PZ, q × q */
   readonly s: Float64Array;
   /** u = Z'Py, q */
@@ -37,21 +38,25 @@ export interface ComponentFit {
   readonly point: RestrictedPoint;
   readonly converged: boolean;
   readonly iterations: number;
+  /** whether the residual variance fell to 0: the random terms explain all that the fixed ones leave */
+  readonly isResidualZero: boolean;
 }
 
 const mostIterations = 200;
 /** Newton steps below this share of the total variance end the search; one more step follows. */
 const stepTolerance = 1e-11;
+/** Where the criterion cannot rise any more for rounding, a step below this still counts as arrival. */
+const stuckTolerance = 1e-6;
 /** σ² may not fall below this share of the total variance. */
 const leastResidual = 1e-9;
 
 /**
- * REML estimates of variance components: Newton on the observed information where it is positive definite, on the
- * average information elsewhere, projected on θ ≥ 0; a component stays at 0 while its gradient is not positive.
+ * REML estimates of variance components: Newton on the observed information where it is positive definite and leads
+ * upwards, on the expected information elsewhere, projected on θ ≥ 0; a component stays at 0 while its gradient is
+ * not positive.
  * Source: Patterson & Thompson (1971), Biometrika 58:545–554; Gilmour, Thompson & Cullis (1995), Biometrics 51:1440–1450.
  */
 export function fitComponents(model: AbsorbedModel): ComponentFit {
-  const count = model.starts.length; // K components and σ²
   const unit = model.ymy / model.residualDf;
   // in units of the residual mean square, so that tolerances mean the same for any trait
   const scaled: AbsorbedModel = {
@@ -59,30 +64,25 @@ export function fitComponents(model: AbsorbedModel): ComponentFit {
     zmy: model.zmy.map((v) => v / Math.sqrt(unit)),
     ymy: model.residualDf,
   };
-  let theta = startComponents(scaled);
-  let point = evaluatePoint(scaled, theta);
+  let point = startPoint(scaled);
   let converged = false;
   let iterations = 0;
-  for (; iterations < mostIterations; iterations++) {
-    const free = freeComponents(point);
-    const step = newtonStep(point, free, count);
-    const size = largestMove(theta, step);
-    const next = searchAlong(scaled, point, step);
-    if (next) {
-      theta = next.theta;
-      point = next;
-    }
-    if (size < stepTolerance || (!next && size < 1e-7)) {
-      converged = !hasPositiveGradientAtZero(point);
-      if (converged) break;
-    }
-    if (!next) break;
+  for (; iterations < mostIterations && !converged; iterations++) {
+    const move = climb(scaled, point);
+    if (move.next) point = move.next;
+    // the step that Newton asks for, not the one taken, says how far the optimum is
+    converged = move.size < (move.next ? stepTolerance : stuckTolerance) && !hasPositiveGradientAtZero(point);
+    if (!move.next) break;
   }
-  return { point: inOriginalUnits(point, unit, model), converged, iterations };
+  const total = point.theta.reduce((sum, value) => sum + value, 0);
+  // near 0 the criterion is flat in σ² and too rough to be climbed
+  const nearZero = converged ? 10 * leastResidual : 1e-4;
+  const isResidualZero = point.theta[point.theta.length - 1]! <= nearZero * total;
+  return { point: inOriginalUnits(point, unit, model), converged, iterations, isResidualZero };
 }
 
-/** Criterion, gradient and both informations at θ (σ² last). */
-export function evaluatePoint(model: AbsorbedModel, theta: Float64Array): RestrictedPoint {
+/** Criterion, gradient and both informations at θ (σ² last); null where θ is too far above σ² for the arithmetic. */
+export function evaluatePoint(model: AbsorbedModel, theta: Float64Array): RestrictedPoint | null {
   const { zmz, zmy, ymy, residualDf, starts } = model;
   const q = zmy.length;
   const terms = starts.length - 1;
@@ -97,7 +97,8 @@ export function evaluatePoint(model: AbsorbedModel, theta: Float64Array): Restri
       b[i * q + j] = scaled;
       h[i * q + j] = scaled * root[j]! + (i === j ? 1 : 0);
     }
-  const r = choleskyUpper(h, q)!;
+  const r = choleskyUpper(h, q);
+  if (!r) return null;
   let logDet = 0;
   for (let i = 0; i < q; i++) logDet += 2 * Math.log(r[i * q + i]!);
   solveTransposedRows(r, q, b, q);
@@ -113,7 +114,7 @@ export function evaluatePoint(model: AbsorbedModel, theta: Float64Array): Restri
   for (let i = 0; i < q; i++) u[i] = (zmy[i]! - u[i]!) / sigma2;
   const ypy = (ymy - w.reduce((sum, value) => sum + value * value, 0)) / sigma2;
   const logLik = -0.5 * (residualDf * Math.log(2 * Math.PI * sigma2) + logDet + ypy);
-  return { theta, logLik, s, u, ...differentiate(model, theta, s, u, ypy) };
+  return { theta, logLik, ypy, s, u, ...differentiate(model, theta, s, u, ypy) };
 }
 
 /** Since PVP = P, all traces and products that involve the residual follow from S and u. */
@@ -186,10 +187,41 @@ function sumProduct(theta: Float64Array, values: Float64Array): number {
   return sum;
 }
 
-/** Equal shares of the variance, each random term in the unit of one of its effects. */
-function startComponents({ starts }: AbsorbedModel): Float64Array {
-  const count = starts.length;
-  return new Float64Array(count).fill(0.5 / Math.max(1, count - 1), 0, count - 1).fill(0.6, count - 1);
+/** Ratios of every component to σ² from which the search may start: few plots can make two hills. */
+const startRatios = [1, 0.1, 10, 100, 1e3, 1e5];
+/** With more levels than this the criterion has one hill in practice, and the first ratio serves. */
+const manyLevels = 120;
+
+/** The best of a few points with equal ratios, σ² being the best for each. */
+function startPoint(model: AbsorbedModel): RestrictedPoint {
+  const terms = model.starts.length - 1;
+  const ratios = model.zmy.length > manyLevels ? startRatios.slice(0, 1) : startRatios;
+  let best: RestrictedPoint | null = null;
+  for (const ratio of ratios) {
+    const unscaled = evaluatePoint(model, new Float64Array(terms + 1).fill(ratio, 0, terms).fill(1, terms));
+    if (!unscaled) continue;
+    const sigma2 = Math.max(leastResidual, unscaled.ypy / model.residualDf);
+    const point = evaluatePoint(
+      model,
+      unscaled.theta.map((value) => value * sigma2),
+    );
+    if (point && (!best || point.logLik > best.logLik)) best = point;
+  }
+  return best!;
+}
+
+/** One step up: the move made, null where none is, and the size of the one that was asked for. */
+function climb(model: AbsorbedModel, point: RestrictedPoint): { next: RestrictedPoint | null; size: number } {
+  const free = freeComponents(point);
+  const observed = newtonStep(point, free, (i) => 2 * point.average[i]! - point.expected[i]!);
+  const first = observed && searchAlong(model, point, observed, 1 / 8);
+  if (observed && first) return { next: first, size: largestMove(point.theta, observed) };
+  const scoring = newtonStep(point, free, (i) => point.expected[i]!);
+  if (!scoring) return { next: null, size: Infinity };
+  return {
+    next: searchAlong(model, point, scoring, 1e-6),
+    size: largestMove(point.theta, observed ?? scoring),
+  };
 }
 
 function freeComponents({ theta, gradient }: RestrictedPoint): number[] {
@@ -201,34 +233,23 @@ function hasPositiveGradientAtZero({ theta, gradient }: RestrictedPoint): boolea
   return theta.some((value, k) => k < theta.length - 1 && value === 0 && gradient[k]! > 1e-8);
 }
 
-/** Step of the free components, 0 for the others. */
-function newtonStep(point: RestrictedPoint, free: readonly number[], count: number): Float64Array {
+/** Step of the free components on the given information, 0 for the others; null where it is not positive definite. */
+function newtonStep(
+  point: RestrictedPoint,
+  free: readonly number[],
+  information: (element: number) => number,
+): Float64Array | null {
   const size = free.length;
-  const step = new Float64Array(count);
-  const pick = (value: (i: number) => number) => {
-    const out = new Float64Array(size * size);
-    for (let a = 0; a < size; a++)
-      for (let b = 0; b < size; b++) out[a * size + b] = value(free[a]! * count + free[b]!);
-    return out;
-  };
-  const triangle =
-    choleskyUpper(
-      pick((i) => 2 * point.average[i]! - point.expected[i]!),
-      size,
-    ) ??
-    choleskyUpper(
-      pick((i) => point.average[i]!),
-      size,
-    ) ??
-    choleskyUpper(
-      pick((i) => point.expected[i]!),
-      size,
-    );
+  const count = point.theta.length;
+  const own = new Float64Array(size * size);
+  for (let a = 0; a < size; a++)
+    for (let b = 0; b < size; b++) own[a * size + b] = information(free[a]! * count + free[b]!);
+  const triangle = choleskyUpper(own, size);
+  if (!triangle) return null;
   const move = Float64Array.from(free, (k) => point.gradient[k]!);
-  if (triangle) {
-    solveTransposed(triangle, size, move);
-    solveUpper(triangle, size, move);
-  }
+  solveTransposed(triangle, size, move);
+  solveUpper(triangle, size, move);
+  const step = new Float64Array(count);
   free.forEach((k, a) => (step[k] = move[a]!));
   return step;
 }
@@ -246,15 +267,16 @@ function searchAlong(
   model: AbsorbedModel,
   from: RestrictedPoint,
   step: Float64Array,
+  leastShare: number,
 ): RestrictedPoint | null {
   const last = step.length - 1;
   const slack = 1e-13 * Math.abs(from.logLik);
-  for (let share = 1; share > 1e-9; share /= 2) {
+  for (let share = 1; share >= leastShare; share /= 2) {
     const theta = from.theta.map((value, k) =>
       k < last ? Math.max(0, value + share * step[k]!) : Math.max(leastResidual, value + share * step[k]!),
     );
     const next = evaluatePoint(model, theta);
-    if (next.logLik >= from.logLik - slack) return next;
+    if (next && next.logLik >= from.logLik - slack) return next;
   }
   return null;
 }
@@ -267,6 +289,7 @@ function inOriginalUnits(
 ): RestrictedPoint {
   const information = (value: number) => value / unit / unit;
   return {
+    ...point,
     theta: point.theta.map((value) => value * unit),
     logLik: point.logLik - 0.5 * residualDf * Math.log(unit),
     s: point.s.map((value) => value / unit),

@@ -4,15 +4,22 @@ import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { promisify } from 'node:util';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { TrialAnalysis } from '#server/stats/trial/trial-result.ts';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
+
+// a command takes a second, on a busy machine many
+vi.setConfig({ testTimeout: 60_000 });
 
 const root = fileURLToPath(new URL('../../../', import.meta.url));
 const cases = path.join(root, 'tests/reference/open');
 const run = promisify(execFile);
 
+/** What a line may hold: an analysis, or an error. */
+type Line = TrialAnalysis & { readonly error: { readonly code: string; readonly rows: readonly number[] } };
+
 interface Reply {
   readonly code: number;
-  readonly lines: Record<string, any>[];
+  readonly lines: Line[];
 }
 
 let folder: string;
@@ -53,7 +60,7 @@ describe('analyse trial', () => {
       fit: { method: 'ols', plots: 30, used: 30, converged: true },
       dunnett: null,
     });
-    expect(Object.keys(lines[1]!['gaps'][0])).toEqual(
+    expect(Object.keys(lines[1]!.gaps[0]!)).toEqual(
       expect.arrayContaining([
         'a',
         'b',
@@ -68,30 +75,17 @@ describe('analyse trial', () => {
         'pHolm',
       ]),
     );
-    expect(Object.keys(lines[1]!['lsd'])).toEqual(expect.arrayContaining(['0.05', '0.1']));
+    expect(Object.keys(lines[1]!.lsd)).toEqual(expect.arrayContaining(['0.05', '0.1']));
   });
 
   it('takes the columns of a split plot by name and gives each factor', async () => {
     const file = `${cases}/08-splitplot-oats/plots.csv`;
     const args = ['--design', 'split-plot', '--response', 'yield', '--main', 'variety', '--sub', 'nitro'];
     const { lines } = await analyse('trial', file, ...args);
-    expect(lines[0]!['means'].map((mean: { entry: string }) => mean.entry)).toEqual([
-      '0',
-      '0.2',
-      '0.4',
-      '0.6',
-    ]);
-    expect(lines[0]!['anova'].map((row: { term: string }) => row.term)).toEqual([
-      'block',
-      'variety',
-      'nitro',
-      'variety:nitro',
-    ]);
-    expect(lines[0]!['fit'].components.map((c: { name: string }) => c.name)).toEqual([
-      'block:variety',
-      'residual',
-    ]);
-    expect(Object.keys(lines[0]!['factors'])).toEqual(['variety', 'nitro', 'variety:nitro']);
+    expect(lines[0]!.means.map((mean) => mean.entry)).toEqual(['0', '0.2', '0.4', '0.6']);
+    expect(lines[0]!.anova.map((row) => row.term)).toEqual(['block', 'variety', 'nitro', 'variety:nitro']);
+    expect(lines[0]!.fit.components.map((c) => c.name)).toEqual(['block:variety', 'residual']);
+    expect(Object.keys(lines[0]!.factors)).toEqual(['variety', 'nitro', 'variety:nitro']);
   });
 
   it('takes the factors of a factorial and renamed columns', async () => {
@@ -111,11 +105,7 @@ describe('analyse trial', () => {
       '--block',
       'Wdh',
     );
-    expect(renamed.lines[0]!['anova'].map((row: { term: string }) => row.term)).toEqual([
-      'Wdh',
-      'Sorte',
-      'residual',
-    ]);
+    expect(renamed.lines[0]!.anova.map((row) => row.term)).toEqual(['Wdh', 'Sorte', 'residual']);
     const factorial = await analyse(
       'trial',
       file,
@@ -126,13 +116,8 @@ describe('analyse trial', () => {
       '--factors',
       'a,b',
     );
-    expect(factorial.lines[0]!['means'].map((mean: { entry: string }) => mean.entry)).toEqual([
-      '1:1',
-      '2:1',
-      '1:2',
-      '2:2',
-    ]);
-    expect(Object.keys(factorial.lines[0]!['factors'])).toEqual(['a', 'b']);
+    expect(factorial.lines[0]!.means.map((mean) => mean.entry)).toEqual(['1:1', '2:1', '1:2', '2:2']);
+    expect(Object.keys(factorial.lines[0]!.factors)).toEqual(['a', 'b']);
   });
 
   it('names the lines of the file that cannot be analysed and exits with 2', async () => {
@@ -156,7 +141,7 @@ describe('analyse trial', () => {
       analyse('forecast', file),
     ]);
     expect(refusals.map((reply) => reply.code)).toEqual([2, 2, 2, 2]);
-    expect(refusals.map((reply) => reply.lines[0]!['error'].code)).toEqual([
+    expect(refusals.map((reply) => reply.lines[0]!.error.code)).toEqual([
       'missing-column',
       'unknown-design',
       'bad-option',

@@ -87,13 +87,13 @@ describe('derivatives of the restricted likelihood', () => {
     [4.1, 4.9, 4.2],
   ]);
   const at = Float64Array.of(0.7, 0.4);
-  const point = evaluatePoint(model, at);
+  const point = evaluatePoint(model, at)!;
   const step = 1e-5;
   const moved = (k: number, by: number) =>
     evaluatePoint(
       model,
       at.map((value, i) => (i === k ? value + by : value)),
-    );
+    )!;
 
   it('agree with differences of the criterion', () => {
     for (const k of [0, 1]) {

@@ -46,7 +46,8 @@ function changeValues(plots: readonly TrialPlot[], change: (value: number) => nu
 
 /** Compares gaps after a change of the data: estimates and SE by a factor, t, p, df unchanged. */
 function expectSameGaps(actual: TrialAnalysis, base: TrialAnalysis, factor: number, digits: number): void {
-  const scale = Math.max(...base.gaps.map((gap) => gap.se ?? 0));
+  // a gap is measured against its error, or against the values' own size where there is none
+  const scale = Math.max(...base.gaps.map((gap) => gap.se ?? 0)) || base.fit.grandMean;
   const byPair = new Map(actual.gaps.flatMap((gap) => [[`${gap.a}|${gap.b}`, gap] as const]));
   for (const gap of base.gaps) {
     const own = byPair.get(`${gap.a}|${gap.b}`);
@@ -54,7 +55,8 @@ function expectSameGaps(actual: TrialAnalysis, base: TrialAnalysis, factor: numb
     if (gap.estimate === null || own?.estimate === undefined || own.estimate === null) continue;
     expect((own.estimate / factor - gap.estimate) / scale).toBeCloseTo(0, digits);
     if (gap.se === null || own.se === null) continue;
-    expect(own.se / factor / gap.se).toBeCloseTo(1, digits);
+    if (gap.se === 0) expect(own.se).toBe(0);
+    else expect(own.se / factor / gap.se).toBeCloseTo(1, digits);
     expect(own.df! / gap.df!).toBeCloseTo(1, digits - 2);
     if (gap.p !== null) expect(own.p).toBeCloseTo(gap.p, digits - 2);
   }
