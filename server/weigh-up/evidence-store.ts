@@ -87,7 +87,8 @@ function selectFits(db: Database, versionIds: string[]): Promise<EvidenceFit[]> 
       entryP: versionFits.entryP,
     })
     .from(versionFits)
-    .where(inArray(versionFits.versionId, versionIds));
+    .where(inArray(versionFits.versionId, versionIds))
+    .orderBy(versionFits.versionId, versionFits.traitId);
 }
 
 /** Entries that are no variety (a seeding rate, an unknown name) connect to nothing and are left to their trial's page. */
@@ -102,6 +103,8 @@ async function selectMeans(db: Database, versionIds: string[]): Promise<Evidence
       df: entryMeans.df,
     })
     .from(entryMeans)
-    .where(and(inArray(entryMeans.versionId, versionIds), isNotNull(entryMeans.varietyId)));
+    .where(and(inArray(entryMeans.versionId, versionIds), isNotNull(entryMeans.varietyId)))
+    // In one order always: sums come out the same to the last digit.
+    .orderBy(entryMeans.versionId, entryMeans.traitId, entryMeans.entryLabel);
   return rows.flatMap(({ varietyId, ...row }) => (varietyId === null ? [] : [{ ...row, varietyId }]));
 }

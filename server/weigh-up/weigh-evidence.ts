@@ -8,7 +8,6 @@ import type {
   WeighUpResult,
 } from '#shared/weigh-up.ts';
 import {
-  weighCandidates,
   type CandidateGap,
   type CandidateWeighing,
   type EvidenceCaution,
@@ -20,13 +19,14 @@ import type { Evidence } from './evidence.ts';
 import { cautionMoney } from './money-cautions.ts';
 import { compareRatings } from './ordinal-medians.ts';
 import type { Question } from './question.ts';
+import { weighOnce } from './weighing-memory.ts';
 
 /** Degrees of freedom beyond this are as good as infinite, which JSON cannot say. */
 const mostDf = 1e6;
 
 /** Answers a question from the evidence: pure, so that the same versions and assumptions give the same answer. */
 export function weighEvidence(evidence: Evidence, question: Question): WeighUpResult {
-  const weighed = weighCandidates(layOutNetwork(evidence, question.traits), {
+  const weighed = weighOnce(layOutNetwork(evidence, question.traits), {
     current: question.currentVarietyId,
     candidates: question.candidateIds,
     kind: question.candidateIds.length === 1 ? 'pair' : 'named',

@@ -12,9 +12,10 @@ let crops: Crop[];
 const agents: Agent[] = [];
 beforeAll(async () => {
   world = await openApiWorld('demo');
-  for (const { email, password } of [demoAccounts.advisor, demoAccounts.agronomist])
-    agents.push(await world.signIn(email, password));
-  ({ regions, crops } = (await agents[0]?.get('/api/catalogue'))?.body);
+  const advisor = await world.signIn(demoAccounts.advisor.email, demoAccounts.advisor.password);
+  const agronomist = await world.signIn(demoAccounts.agronomist.email, demoAccounts.agronomist.password);
+  agents.push(advisor, agronomist);
+  ({ regions, crops } = (await advisor.get('/api/catalogue').expect(200)).body);
 });
 afterAll(() => world.close());
 

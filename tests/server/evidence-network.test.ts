@@ -1,5 +1,6 @@
 import { expect, test } from 'vitest';
 import { poolErrorVariances } from '#server/stats/engine.ts';
+import { weighOnce } from '#server/weigh-up/weighing-memory.ts';
 import { layOutNetwork } from '#server/weigh-up/evidence-network.ts';
 import type { Evidence, EvidenceTrial } from '#server/weigh-up/evidence.ts';
 
@@ -138,4 +139,17 @@ test('strips are told from small plots, and management only where it was said', 
   const network = layOutNetwork({ ...evidence, trials }, 'all');
   expect(network.trials.map((one) => one.plotSize)).toEqual(['small-plots', 'small-plots', 'field-strips']);
   expect(network.trials.map((one) => one.management)).toEqual([{ fungicide: 'true' }, {}, {}]);
+});
+
+test('the same question of the same evidence is weighed once; a published correction asks anew', () => {
+  const evidence = makeEvidence();
+  const question = { current: 'a', candidates: ['b'], kind: 'pair', askedInSeason: 2026 } as const;
+  const first = weighOnce(layOutNetwork(evidence, 'yield'), question);
+  expect(weighOnce(layOutNetwork(makeEvidence(), 'yield'), question)).toBe(first);
+  const means = evidence.means.map((mean, i) => (i === 1 ? { ...mean, mean: mean.mean + 0.2 } : mean));
+  const corrected = weighOnce(layOutNetwork({ ...evidence, means }, 'yield'), question);
+  expect(corrected).not.toBe(first);
+  expect(corrected.traits[0]?.candidates[0]?.gap?.estimate).toBeGreaterThan(
+    first.traits[0]?.candidates[0]?.gap?.estimate ?? NaN,
+  );
 });
