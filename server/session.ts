@@ -40,6 +40,7 @@ export function buildSession(db: Database, pool: pg.Pool, settings: ServerSettin
       rolling: true,
       cookie: { httpOnly: true, sameSite: 'lax', secure: settings.isBehindHttpsProxy, maxAge: 7 * dayMs },
     }),
-    authenticator.session(),
+    // Its types promise nothing; it is a handler like the others.
+    authenticator.session() as RequestHandler,
   ];
 }

@@ -1,4 +1,4 @@
-import type { Request, Response, Router } from 'express';
+import type { Request, RequestHandler, Response, Router } from 'express';
 import passport from 'passport';
 import { Strategy } from 'passport-local';
 import { signIn, signOut, type Me } from '#shared/account.ts';
@@ -68,7 +68,9 @@ function authenticate(
       else if (me) resolve(me);
       else reject(new CodedError('wrong-credentials'));
     };
-    authenticator.authenticate('local', { session: false }, answer)(request, response, reject);
+    // Its types promise nothing; it is a handler like the others.
+    const check = authenticator.authenticate('local', { session: false }, answer) as RequestHandler;
+    void check(request, response, reject);
   });
 }
 
