@@ -82,6 +82,8 @@ export function MoneyPanel({ weighUp, varieties, money, saving }: MoneyPanelProp
   );
 }
 
+const prices = ['priceLow', 'priceMiddle', 'priceHigh'] as const;
+
 type FigureFieldProps = { form: MoneyFormApi; name: Path<MoneyDraft>; label: string; unit: string };
 
 function FigureField({ form, name, label, unit }: FigureFieldProps) {
@@ -94,7 +96,11 @@ function FigureField({ form, name, label, unit }: FigureFieldProps) {
         <Field label={label} error={fieldErrorText(error)}>
           <NumberInput
             value={typeof value === 'number' ? value : null}
-            onValueChange={onChange}
+            onValueChange={(figure) => {
+              onChange(figure);
+              // Prices are held against each other and against the costs per tonne, whichever is typed.
+              if (name !== 'areaHectares') void form.trigger(prices);
+            }}
             onBlur={onBlur}
             ref={ref}
             unit={unit}
