@@ -192,15 +192,19 @@ export function oneFactorTail(loadings: Float64Array, isTwoSided: boolean): (w: 
  * shared factor leaves.
  * @param factor the correlation matrix split by fitOneFactor
  * @param isTwoSided whether sizes are meant
+ * @param hasThird whether to go beyond the second order, of cost m², to the third, of cost m³
  * Source: as oneFactorTail, with Plackett (1954), Biometrika 41:351–360.
  */
-export function expandedTail(factor: OneFactor, isTwoSided: boolean): (w: number) => EquicoordinateTail {
+export function expandedTail(
+  factor: OneFactor,
+  isTwoSided: boolean,
+  hasThird = factor.largestRest > NEGLIGIBLE_THIRD,
+): (w: number) => EquicoordinateTail {
   const { loadings, rest, largestRest } = factor;
   const grid = factorGrid(loadings, isTwoSided);
   const spreads = loadings.map((loading) => Math.sqrt(1 - loading * loading));
   const zeros = (): Float64Array => new Float64Array(loadings.length);
   const own: Conditionals = { mean: zeros(), variance: zeros(), skew: zeros() };
-  const hasThird = largestRest > NEGLIGIBLE_THIRD;
   const effects = new Float64Array(3);
   return (w) => {
     const [start, last] = grid.span(w);

@@ -36,7 +36,8 @@ export interface BestQuestion {
 /** Critical value of one-sided comparisons of all others with one entry: P(max T > d) = alpha. */
 export function oneSidedDunnettQuantile(alpha: number, df: number, correlation: Correlation): number {
   const factor = fitOneFactor(correlation);
-  const expand = expandedTail(factor, false);
+  // A critical value asks for four digits, and every entry asks for its own: the second order is enough.
+  const expand = expandedTail(factor, false, false);
   const upper =
     factor.largestRest <= EXACT_REST ? oneFactorTail(factor.loadings, false) : (w: number) => expand(w).upper;
   const tail = tabulateTail(upper, DECAY, false);
