@@ -30,8 +30,8 @@ export type CheckedImport = {
 
 /** SQLSTATE of a broken unique constraint. */
 const uniqueViolation = '23505';
-/** A median yield this many times the crop's usual one is in another unit. */
-const doubtfulFactor = 8;
+/** A median yield beyond these shares of the crop's usual one is in another unit, or lost its decimal sign. */
+const doubtfulShares = { low: 1 / 20, high: 8 };
 
 /**
  * Reads a file against the catalogue; stores nothing.
@@ -155,7 +155,8 @@ function findUnitProblem(
   const { bushelWeightLb, typicalYield } = catalogue.crop;
   const middle = yields.toSorted((a, b) => a - b)[Math.floor(yields.length / 2)] ?? 0;
   const median = toTonnesPerHectare(middle, unit ?? 't/ha', bushelWeightLb);
-  if (median <= doubtfulFactor * typicalYield) return null;
+  const share = median / typicalYield;
+  if (share === 0 || (share >= doubtfulShares.low && share <= doubtfulShares.high)) return null;
   return problem('unit-doubtful', { median, typical: typicalYield });
 }
 

@@ -121,6 +121,9 @@ describe('checking a file', () => {
     const path = '/api/desk/import-checks';
     const asStored = await upload(agronomist.agent, path, kilograms).expect(200);
     expect(asStored.body.report.problems).toMatchObject([{ reason: 'unit-doubtful' }]);
+    const grouped = kilograms.replaceAll(/,(\d)(\d{3})\n/g, ',$1.$2\n');
+    const tiny = await upload(agronomist.agent, path, grouped, { unit: 'kg/ha' }).expect(200);
+    expect(tiny.body.report.problems).toMatchObject([{ reason: 'unit-doubtful' }]);
     const right = await upload(agronomist.agent, path, kilograms, { unit: 'kg/ha' }).expect(200);
     expect(right.body.analysis.grandMean).toBeCloseTo(5.024, 6);
     const stated = await upload(agronomist.agent, path, kilograms.replace('yield', 'yield (kg/ha)')).expect(

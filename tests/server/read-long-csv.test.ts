@@ -1,3 +1,4 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import english from '#locales/en/problems.json' with { type: 'json' };
 import { problemReasons } from '#server/trial-desk/row-problems.ts';
@@ -235,5 +236,65 @@ describe('what is refused', () => {
     const file = read(`entry,block,yield\n${'A,1,x\n'.repeat(1000)}`);
     expect(file.problemsTotal).toBe(1000);
     expect(file.problems).toHaveLength(200);
+  });
+});
+
+describe('whatever the bytes', () => {
+  test('a file is read or refused with reasons, and never breaks the reader', () => {
+    const piece = fc.constantFrom(
+      ...[
+        'entry',
+        'block',
+        'plot',
+        'yield',
+        'trait',
+        'A',
+        '1',
+        '5,1',
+        '5.1',
+        '1,250',
+        '-',
+        'NaN',
+        '',
+        '"',
+        ' ',
+      ],
+      ...[',', ';', '\t', '\n', '\r\n', '\ufeff', 'é', '\0', '9'.repeat(400)],
+    );
+    const text = fc
+      .array(piece, { maxLength: 60 })
+      .map((pieces) => new TextEncoder().encode(pieces.join('')));
+    fc.assert(
+      fc.property(fc.oneof(text, fc.uint8Array({ maxLength: 200 })), (bytes) => {
+        const file = read(bytes);
+        expect(file.plots.length > 0).toBe(file.problemsTotal === 0);
+        for (const plot of file.plots)
+          for (const value of Object.values(plot.values)) expect(Number.isFinite(value)).toBe(true);
+      }),
+      { numRuns: 2000 },
+    );
+  });
+
+  test('delimiter and decimal sign change nothing', () => {
+    const rows = fc.array(fc.tuple(fc.integer({ min: 1, max: 4 }), fc.integer({ min: 0, max: 99_999 })), {
+      minLength: 2,
+      maxLength: 12,
+    });
+    const write = (of: [number, number][], delimiter: string, sign: string): string =>
+      [
+        ['entry', 'block', 'yield'].join(delimiter),
+        ...of.map(([block, value], i) =>
+          [`E${i}`, block, (value / 1000).toFixed(4).replace('.', sign)].join(delimiter),
+        ),
+      ].join('\n');
+    fc.assert(
+      fc.property(rows, (of) => {
+        const plain = read(write(of, ',', '.'));
+        expect(plain.problems).toEqual([]);
+        expect(read(write(of, ';', ','))).toEqual(plain);
+        expect(read(write(of, '\t', '.'))).toEqual(plain);
+        expect(values(plain)).toEqual(of.map(([, value]) => value / 1000));
+      }),
+    );
   });
 });
