@@ -84,6 +84,17 @@ export function fitFixed(model: TrialModel, values: Float64Array): FixedFit {
   };
 }
 
+/** (I − H) v: what least squares on the fixed part leaves of a vector. */
+export function residualise({ model, factor, triangle }: FixedFit, v: Float64Array): Float64Array {
+  const rhs = gather(projectFixed(model, v), factor);
+  solveTransposed(triangle, factor.rank, rhs);
+  solveUpper(triangle, factor.rank, rhs);
+  const beta = new Float64Array(model.width);
+  for (let i = 0; i < factor.rank; i++) beta[factor.kept[i]!] = rhs[i]!;
+  const fitted = predictFixed(model, beta);
+  return v.map((value, i) => value - fitted[i]!);
+}
+
 export function sumOfSquares(values: Float64Array): number {
   let sum = 0;
   for (let i = 0; i < values.length; i++) sum += values[i]! * values[i]!;

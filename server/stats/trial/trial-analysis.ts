@@ -1,7 +1,9 @@
 import { AnalysisError } from '#server/stats/analysis-error.ts';
+import { compareAllWithBest } from './best-comparison.ts';
 import { compareWithCheck } from './check-comparison.ts';
 import { describeFixedResiduals, estimateFixedMeans, summariseFixedFit } from './fixed-analysis.ts';
 import { fitFixed, type FixedFit } from './fixed-fit.ts';
+import { checkFurther } from './further-checks.ts';
 import { tabulateFamily, type MeanEstimates } from './gap-table.ts';
 import { estimateMixedMeans, testMixedTerms } from './kenward-roger.ts';
 import { buildFamily, type MeanFamily } from './mean-family.ts';
@@ -49,9 +51,9 @@ export function analyseTrial(
   const order = missing.length === 0 ? own!.labels : sortLabels([...own!.labels, ...missing]);
   const estimates = analysis.estimate(own!);
   const table = tabulateFamily(estimates, alpha, missing, order);
-  const factors: Record<string, FamilyTable> = {};
-  for (const family of others)
-    factors[family.name] = withoutNotices(tabulateFamily(analysis.estimate(family), alpha));
+  const factors = Object.fromEntries(
+    others.map((family) => [family.name, withoutNotices(tabulateFamily(analysis.estimate(family), alpha))]),
+  );
   const { diagnostics, residuals } = diagnose(used, model, analysis.residuals);
   return {
     design: design.kind,
@@ -61,6 +63,8 @@ export function analyseTrial(
     gaps: table.gaps,
     lsd: table.lsd,
     dunnett: options.check ? compareWithCheck(estimates, options.check, missing) : null,
+    best: options.comparisons ? compareAllWithBest(estimates, alpha, options.better ?? 'higher') : null,
+    checks: options.checks ? checkFurther(model, used) : null,
     groups: table.groups,
     factors,
     diagnostics,

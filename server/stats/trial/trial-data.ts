@@ -50,8 +50,12 @@ export interface TrialOptions {
   readonly allowNegative?: boolean;
   /** whether spatial models are fitted beside the design's, where rows and columns are known */
   readonly spatial?: boolean;
-  /** whether Dunnett's p is computed (it needs a check) and Hsu's comparison with the best; true unless told */
+  /** whether every entry is compared with the best of the others by Hsu's method */
   readonly comparisons?: boolean;
+  /** which end of the trait is the better one, for the comparison with the best; 'higher' unless told */
+  readonly better?: 'higher' | 'lower';
+  /** whether non-additivity, trends over the field, likeness of neighbours and repeatability are computed */
+  readonly checks?: boolean;
 }
 
 /** Limits above which an analysis is refused rather than run for minutes. */

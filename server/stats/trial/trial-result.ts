@@ -140,11 +140,42 @@ export interface TrialDiagnostics {
   } | null;
 }
 
+/** Hsu's comparison of an entry with the best of the others. */
+export interface BestRow {
+  readonly entry: string;
+  /** its mean minus the best of the others', with simultaneous limits of which the upper is at least and the lower at most 0 */
+  readonly estimate: number;
+  readonly lower: number;
+  readonly upper: number;
+  readonly mayBeBest: boolean;
+  readonly isBest: boolean;
+}
+
+/** Checks made on request; null where the data give none. */
+export interface FurtherChecks {
+  /** Tukey's one degree of freedom */
+  readonly nonAdditivity: TestResult | null;
+  readonly rowTrend: (TestResult & { readonly slope: number }) | null;
+  readonly colTrend: (TestResult & { readonly slope: number }) | null;
+  readonly moran: {
+    readonly i: number;
+    readonly expected: number;
+    readonly z: number;
+    readonly p: number;
+  } | null;
+  /** of entry means, 0 … 1 (Cullis et al. 2006) */
+  readonly repeatability: number | null;
+}
+
 export interface TrialAnalysis extends FamilyTable {
   readonly design: DesignKind;
   readonly fit: FitSummary;
   readonly anova: readonly VarianceRow[];
   readonly dunnett: DunnettResult | null;
+  /** null unless asked for, or where not every gap can be tested */
+  readonly best: readonly BestRow[] | null;
+  /** null unless asked for */
+  readonly checks: FurtherChecks | null;
   /** families besides the trial's own: each factor, and combinations */
   readonly factors: Readonly<Record<string, FamilyTable>>;
   readonly diagnostics: TrialDiagnostics;
