@@ -131,8 +131,9 @@ function printBins(name: string, plan: WorldPlan, bins: readonly ReliabilityBin[
   }
 }
 
-function printReliability({ plan, single, picked }: ReliabilityResult): void {
+function printReliability({ plan, single, singleShrunken, picked }: ReliabilityResult): void {
   printBins('planned, by its estimate', plan, single);
+  printBins('planned, shrunken', plan, singleShrunken);
   printBins('best of 12, shrunken', plan, picked);
 }
 

@@ -104,7 +104,10 @@ export interface ReliabilityBin {
 
 export interface ReliabilityResult {
   readonly plan: WorldPlan;
+  /** one planned candidate, by its estimate and by its shrunken gap */
   readonly single: readonly ReliabilityBin[];
+  readonly singleShrunken: readonly ReliabilityBin[];
+  /** the best of the list, by its shrunken gap */
   readonly picked: readonly ReliabilityBin[];
   /** mean lead of the best of the list over the current variety: true, by the estimate, by the shrunken gap, t/ha */
   readonly lead: { readonly truth: Share; readonly estimate: Share; readonly shrunken: Share };
@@ -144,7 +147,7 @@ class Bins {
 
 /**
  * Chance that a candidate clears a break-even gap on the grower's own land next season: as stated, and as it is true.
- * One planned candidate by its estimate, the best of the list by its shrunken gap.
+ * One planned candidate by its estimate and by its shrunken gap, the best of the list by its shrunken gap.
  */
 export function measureReliability(
   plan: WorldPlan,
@@ -153,6 +156,7 @@ export function measureReliability(
   breakEven = 0.1,
 ): ReliabilityResult {
   const single = new Bins();
+  const singleShrunken = new Bins();
   const picked = new Bins();
   const truth = new Tally();
   const estimate = new Tally();
@@ -167,6 +171,7 @@ export function measureReliability(
       normalCdf((trueGap(row) - breakEven) / Math.sqrt(world.ownSeasonVariance));
     const [planned] = rows;
     single.add(chanceAbove(planned!.gap!, breakEven, 'own-season'), comesTrue(planned!));
+    singleShrunken.add(chanceAbove(planned!.gap!, breakEven, 'own-season', true), comesTrue(planned!));
     const best = rows.reduce((a, b) => (b.gap!.estimate > a.gap!.estimate ? b : a));
     picked.add(chanceAbove(best.gap!, breakEven, 'own-season', true), comesTrue(best));
     truth.add(trueGap(best));
@@ -176,6 +181,7 @@ export function measureReliability(
   return {
     plan,
     single: single.list(),
+    singleShrunken: singleShrunken.list(),
     picked: picked.list(),
     lead: { truth: truth.share(), estimate: estimate.share(), shrunken: shrunken.share() },
   };
