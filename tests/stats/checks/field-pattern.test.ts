@@ -86,7 +86,9 @@ test('a trend that the model already holds cannot be tested', () => {
     scab.map((plot) => Number(plot['inf'])),
     columns.map(String),
   );
-  expect(fieldTrend(columnModel, rows, columns).column).toEqual({ computed: false, reason: 'confounded' });
+  // Thirds leave rounding behind where whole columns would leave exact zeros.
+  const thirds = columns.map((column) => column / 3);
+  expect(fieldTrend(columnModel, rows, thirds).column).toEqual({ computed: false, reason: 'confounded' });
 });
 
 test('Tukey’s one degree of freedom in the seed-rate trial', () => {
@@ -106,8 +108,8 @@ test('Tukey’s one degree of freedom in the seed-rate trial', () => {
   expect(result.p).toBeCloseTo(0.2891647, 7);
   const shifted = nonAdditivity(
     model,
-    fitted.map((value) => value + 1e6),
+    fitted.map((value) => value + 1e10),
   );
   if (!shifted.computed) throw new Error(shifted.reason);
-  expect(shifted.f).toBeCloseTo(result.f, 6);
+  expect(shifted.f).toBeCloseTo(result.f, 5);
 });

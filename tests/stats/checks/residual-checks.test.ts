@@ -114,10 +114,11 @@ test('Brown–Forsythe says why it has no result', () => {
 });
 
 test('a plot that the model fits exactly has no studentised residual, and no test is counted for it', () => {
-  const result = studentiseResiduals([0, 1, -1, 0.5, -0.5], [1, 0.25, 0.25, 0.25, 0.25], 3);
+  const result = studentiseResiduals([0, 2, -1, -2, 1], [1, 0.25, 0.25, 0.25, 0.25], 30);
   if (!result.computed) throw new Error(result.reason);
   expect(result.values[0]).toBeNull();
   expect(result.largest.tests).toBe(4);
+  expect(result.largest.pBonferroni).toBe(Math.min(1, 4 * result.largest.p));
   expect(studentiseResiduals([1, -1], [0.5, 0.5], 1)).toEqual({ computed: false, reason: 'no-residual-df' });
   expect(studentiseResiduals([0, 0, 0], [0.3, 0.3, 0.3], 2)).toEqual({
     computed: false,
