@@ -35,6 +35,7 @@ function cautionPrecision(analysis: ContentAnalysis, limit: number): Caution[] {
 
 function cautionResiduals(analysis: ContentAnalysis): Caution[] {
   if (analysis.kind !== 'numeric') return [];
+  const { checks } = analysis.result;
   const { shapiroWilk, brownForsythe, largestStudentised } = analysis.result.diagnostics;
   const cautions: Caution[] = [];
   if (shapiroWilk !== null && shapiroWilk.p < residualLevel)
@@ -45,6 +46,10 @@ function cautionResiduals(analysis: ContentAnalysis): Caution[] {
     const { plot, value, pBonferroni } = largestStudentised;
     cautions.push(makeCaution('outlying-plot', 'warning', { plot, value, p: pBonferroni }));
   }
+  const field = [checks?.rowTrend, checks?.colTrend, checks?.moran].flatMap((test) => test?.p ?? []);
+  // Three looks at one field: Bonferroni keeps the level.
+  if (field.some((p) => p * field.length < residualLevel))
+    cautions.push(makeCaution('spatial-trend', 'warning', {}));
   return cautions;
 }
 

@@ -46,6 +46,7 @@ export function viewAnalysis(
   const analysis = analyseContent(content, trait, {
     ...(alpha !== undefined && { alpha }),
     withComparisons: comparison === 'dunnett' || comparison === 'best',
+    withChecks: true,
   });
   const { counts } = analysis;
   return {

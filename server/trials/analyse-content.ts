@@ -16,6 +16,8 @@ export type AnalyseOptions = {
   alpha?: number;
   /** Whether Dunnett's and Hsu's comparisons are computed: they cost more than all the rest. */
   withComparisons?: boolean;
+  /** Whether the field is looked over for trends, which costs more than the analysis itself. */
+  withChecks?: boolean;
 };
 
 /** Plots of a trial in one trait. Excluded plots count as excluded whether or not they have a value. */
@@ -58,6 +60,7 @@ export function analyseContent(
         alpha,
         check: withComparisons && hasValue(plots, check) ? check : null,
         comparisons: withComparisons,
+        checks: options.withChecks ?? false,
         allowNegative: (trait.scaleMin ?? 0) < 0,
       },
     );

@@ -68,6 +68,19 @@ describe('the seeded demo', () => {
     expect(body.trial.versions[0].sha256).not.toBe(body.trial.versions[1].sha256);
   });
 
+  test('cautions of the drift across the one field that has it', async () => {
+    const query = '/api/trials?crop=winter-wheat&season=2025';
+    const { trials } = (await agent.get(query).expect(200)).body;
+    const cautioned: string[] = [];
+    for (const trial of trials) {
+      const { analysis } = (await agent.get(`/api/trials/${trial.id}/analysis`).expect(200)).body;
+      if (analysis.cautions.some((caution: { code: string }) => caution.code === 'spatial-trend'))
+        cautioned.push(trial.siteName);
+    }
+    expect(trials.length).toBeGreaterThan(4);
+    expect(cautioned).toEqual(['Marrowfen']);
+  });
+
   test('leaves the lost comma for the agronomist to find', async () => {
     const { trials } = (await agent.get('/api/desk/trials?state=draft').expect(200)).body;
     expect(trials).toHaveLength(1);
