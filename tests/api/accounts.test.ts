@@ -5,6 +5,7 @@ import { auditEvents } from '#drizzle/schema/audit.ts';
 import { regions } from '#drizzle/schema/geography.ts';
 import type { Account } from '#shared/account.ts';
 import { openApiWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
+import { waitForBlocked } from './wait-for-blocked.ts';
 
 let world: ApiWorld;
 let chief: SignedIn;
@@ -111,12 +112,12 @@ test('a suspended account is signed out everywhere at once, and can be brought b
   const person = await world.signInAs('advisor');
   const phone = await world.signIn(person.email);
   await chief.agent.patch(`/api/accounts/${person.id}`).send({ status: 'suspended' }).expect(200);
-  for (const agent of [person.agent, phone]) expect((await agent.get('/api/catalogue')).status).toBe(401);
   const left = await world.database.db.$count(
     sessions,
     sql`${sessions.sess} -> 'passport' ->> 'user' = ${person.id}`,
   );
   expect(left).toBe(0);
+  for (const agent of [person.agent, phone]) expect((await agent.get('/api/catalogue')).status).toBe(401);
   await chief.agent.patch(`/api/accounts/${person.id}`).send({ status: 'active' }).expect(200);
   expect((await person.agent.get('/api/catalogue')).status).toBe(401);
   await world.signIn(person.email);
@@ -146,10 +147,17 @@ test('the last active administrator stays, also when two suspend each other at t
     .where(
       sql`${users.role} = 'administrator' and ${users.id} not in (${chief.id}::uuid, ${other.id}::uuid)`,
     );
-  const replies = await Promise.all([
+  // The log is held shut, so that both have looked and neither is done before both go on.
+  const holder = await world.database.pool.connect();
+  await holder.query('begin; lock table audit_events in access exclusive mode');
+  const suspensions = Promise.all([
     chief.agent.patch(`/api/accounts/${other.id}`).send({ status: 'suspended' }),
     other.agent.patch(`/api/accounts/${chief.id}`).send({ status: 'suspended' }),
   ]);
+  await waitForBlocked(db, 2);
+  await holder.query('rollback');
+  holder.release();
+  const replies = await suspensions;
   expect(replies.filter((reply) => reply.status === 200)).toHaveLength(1);
   expect(await db.$count(users, sql`role = 'administrator' and status = 'active'`)).toBe(1);
   await db.update(users).set({ status: 'active' }).where(eq(users.id, chief.id));

@@ -6,6 +6,7 @@ import { createTestDatabase, type TestDatabase } from '#tests/support/test-datab
 import { buildWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
 import { openDatabaseProxy, type DatabaseProxy } from './database-proxy.ts';
 import { foundSmallWorld, idIn, type SmallWorld } from './small-world.ts';
+import { waitForBlocked } from './wait-for-blocked.ts';
 
 let direct: TestDatabase;
 let proxy: DatabaseProxy;
@@ -91,7 +92,7 @@ test('a save that loses the database on its way stores nothing by half', async (
     .put(`/api/weigh-ups/${id}`)
     .send({ revision: 1, weighUp: question('After') })
     .then((reply) => reply);
-  await waitForBlocked();
+  await waitForBlocked(direct.db, 1);
   proxy.cut();
   const reply = await saving;
   expect([reply.status, reply.body]).toEqual([503, away]);
@@ -116,14 +117,3 @@ test('a connection that the server of the database ends is replaced without a re
   for (const status of replies) expect([200, 503]).toContain(status);
   expect(await direct.db.$count(weighUps)).toBeGreaterThan(0);
 });
-
-/** Waits until a statement of this database waits for a lock. */
-async function waitForBlocked(): Promise<void> {
-  for (let i = 0; i < 200; i += 1) {
-    const { rows } = await direct.db.execute<{ waiting: number }>(sql`select count(*)::int as waiting
-      from pg_stat_activity where datname = current_database() and wait_event_type = 'Lock'`);
-    if (rows[0]?.waiting === 1) return;
-    await new Promise((resolve) => setTimeout(resolve, 20));
-  }
-  throw new Error('nothing waited for the lock');
-}
