@@ -45,7 +45,7 @@ export function viewAnalysis(
 ): TrialAnalysisView {
   const analysis = analyseContent(content, trait, {
     ...(alpha !== undefined && { alpha }),
-    withComparisons: comparison === 'dunnett' || comparison === 'best',
+    withDunnett: comparison === 'dunnett',
     withChecks: true,
   });
   const { counts } = analysis;
@@ -94,7 +94,7 @@ function viewFigures(analysis: ContentAnalysis, comparison: ComparisonMethod): V
     case 'none':
       return { ...nothing, outcomes: [{ code: analysis.reason, values: {} }] };
     case 'ordinal':
-      return { ...nothing, kind: 'ordinal', ordinal: viewScores(analysis.scores) };
+      return { ...nothing, kind: 'ordinal', ordinal: viewScores(analysis.result.entries) };
     case 'summary':
       return viewTable(analysis.result);
     case 'numeric':
@@ -176,7 +176,7 @@ function viewNotice(notice: TrialNotice): AnalysisOutcome {
 }
 
 function viewScores(
-  scores: Extract<ContentAnalysis, { kind: 'ordinal' }>['scores'],
+  scores: Extract<ContentAnalysis, { kind: 'ordinal' }>['result']['entries'],
 ): TrialAnalysisView['ordinal'] {
   return scores
     .map((row) => ({

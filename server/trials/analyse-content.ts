@@ -1,9 +1,9 @@
 import {
   AnalysisError,
+  analyseOrdinal,
   analyseTrial,
-  summariseOrdinal,
   type AnalysisErrorCode,
-  type OrdinalSummary,
+  type OrdinalAnalysis,
   type TrialAnalysis,
   type TrialPlot,
 } from '#server/stats/engine.ts';
@@ -14,8 +14,8 @@ import type { ContentTrait } from './trial-content-store.ts';
 export type AnalyseOptions = {
   /** Level of "different"; the trial's own unless told. */
   alpha?: number;
-  /** Whether Dunnett's and Hsu's comparisons are computed: they cost more than all the rest. */
-  withComparisons?: boolean;
+  /** Whether the entries are compared with the check by Dunnett's test: it costs more than all the rest. */
+  withDunnett?: boolean;
   /** Whether the field is looked over for trends, which costs more than the analysis itself. */
   withChecks?: boolean;
 };
@@ -26,7 +26,7 @@ export type PlotCounts = { total: number; used: number; excluded: number; missin
 /** What one trait of a trial says; `none` with the reason where nothing can be said. */
 export type ContentAnalysis = { alpha: number; counts: PlotCounts } & (
   | { kind: 'numeric'; result: TrialAnalysis; check: string | null }
-  | { kind: 'ordinal'; scores: readonly OrdinalSummary[] }
+  | { kind: 'ordinal'; result: OrdinalAnalysis }
   | { kind: 'summary'; result: SummaryAnalysis }
   | { kind: 'none'; reason: AnalysisErrorCode }
 );
@@ -50,20 +50,16 @@ export function analyseContent(
       const result = analyseSummaryColumn(column, content.design, alpha);
       return { kind: 'summary', result, alpha, counts };
     }
-    if (trait.kind === 'ordinal') return { ...analyseScores(plots), alpha, counts };
+    const design = { kind: content.design, factors: factorNames(content) };
+    if (trait.kind === 'ordinal')
+      return { kind: 'ordinal', result: analyseOrdinal(plots, design), alpha, counts };
     const check = content.entries.find((entry) => entry.isCheck)?.label ?? null;
-    const withComparisons = options.withComparisons ?? false;
-    const result = analyseTrial(
-      plots,
-      { kind: content.design, factors: factorNames(content) },
-      {
-        alpha,
-        check: withComparisons && hasValue(plots, check) ? check : null,
-        comparisons: withComparisons,
-        checks: options.withChecks ?? false,
-        allowNegative: (trait.scaleMin ?? 0) < 0,
-      },
-    );
+    const result = analyseTrial(plots, design, {
+      alpha,
+      check: options.withDunnett && hasValue(plots, check) ? check : null,
+      checks: options.withChecks ?? false,
+      allowNegative: (trait.scaleMin ?? 0) < 0,
+    });
     return { kind: 'numeric', result, check, alpha, counts };
   } catch (error) {
     if (error instanceof AnalysisError) return { kind: 'none', reason: error.code, alpha, counts };
@@ -90,20 +86,6 @@ function countPlots(plots: readonly TrialPlot[]): PlotCounts {
   const excluded = plots.filter((plot) => plot.excluded).length;
   const used = plots.filter((plot) => !plot.excluded && plot.value !== null).length;
   return { total: plots.length, used, excluded, missing: plots.length - used - excluded };
-}
-
-function analyseScores(
-  plots: readonly TrialPlot[],
-): { kind: 'ordinal'; scores: readonly OrdinalSummary[] } | { kind: 'none'; reason: AnalysisErrorCode } {
-  const scored = plots.flatMap((plot) =>
-    plot.excluded || plot.value === null ? [] : [{ entry: plot.entry, score: plot.value }],
-  );
-  if (scored.length === 0) return { kind: 'none', reason: 'no-values' };
-  const scores = summariseOrdinal(
-    scored.map((plot) => plot.score),
-    scored.map((plot) => plot.entry),
-  );
-  return { kind: 'ordinal', scores };
 }
 
 function factorNames(content: TrialContent): string[] {

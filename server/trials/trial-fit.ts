@@ -43,13 +43,13 @@ export function summariseFit(analysis: ContentAnalysis): TraitFit | null {
     case 'ordinal':
       return {
         ...plots,
-        grandMean: medianOf(analysis.scores.map((row) => row.median)),
+        grandMean: medianOf(analysis.result.entries.map((row) => row.median)),
         residualMs: null,
         residualDf: null,
         cvPercent: null,
-        entryP: null,
+        entryP: analysis.result.test?.p ?? null,
         lsd: null,
-        means: analysis.scores.map((row) => ({
+        means: analysis.result.entries.map((row) => ({
           entryLabel: String(row.entry),
           mean: row.median,
           variance: null,
