@@ -16,7 +16,7 @@ import { handleError } from './error-handler.ts';
 import { addGrowerCopyRoutes } from './grower-copy/grower-copy-routes.ts';
 import { addHealthRoute } from './health.ts';
 import { requireSameOrigin } from './same-origin.ts';
-import { buildSession } from './session.ts';
+import { buildSession } from './sign-in-session.ts';
 import { addTrialDeskRoutes } from './trial-desk/trial-desk-routes.ts';
 import { addTrialRoutes } from './trials/trial-routes.ts';
 import { addWeighUpRoutes } from './weigh-up/weigh-up-routes.ts';

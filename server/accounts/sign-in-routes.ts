@@ -5,7 +5,7 @@ import { signIn, signOut, type Me } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { Database } from '#server/db.ts';
 import { route } from '#server/route.ts';
-import { sessionCookieName } from '#server/session.ts';
+import { sessionCookieName } from '#server/sign-in-session.ts';
 import { findSignInAccount, noteSignIn } from './account-store.ts';
 import { checkPassword } from './password.ts';
 import { limitSignIns } from './sign-in-limits.ts';

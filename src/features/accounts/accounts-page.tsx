@@ -3,7 +3,7 @@ import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { useSearchParams } from 'react-router-dom';
 import type { Account } from '#shared/account.ts';
-import { catalogueQuery, findRegion, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, findRegion, type Catalogue } from '#src/catalogue-query.ts';
 import { Button, LinkButton } from '#src/components/button.tsx';
 import { DataTable, type Column } from '#src/components/data-table.tsx';
 import { EmptyState } from '#src/components/empty-state.tsx';

@@ -5,7 +5,7 @@ import { useTranslation } from 'react-i18next';
 import { Link, useNavigate } from 'react-router-dom';
 import { createAccount, newAccountInput, type NewAccountInput } from '#shared/account.ts';
 import { ApiError, callApi } from '#src/api-client.ts';
-import { catalogueQuery, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';

@@ -37,6 +37,8 @@ export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
   const level = (value: number) => format.percent(value * 100);
   return (
     <section aria-label={t('candidates')} className="flex flex-col">
+      <p className="text-sm text-faded">{t('axis', { current: weighUp.currentVarietyName, unit })}</p>
+      <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
       {candidates.map((candidate) => (
         <CopyCandidate
           key={candidate.varietyId}
@@ -46,20 +48,16 @@ export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
           decimals={decimals}
         />
       ))}
-      <div className="border-t-2 border-ink pt-1">
-        <p className="text-sm text-faded">{t('axis', { current: weighUp.currentVarietyName, unit })}</p>
-        <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
-        {shown && (
-          <p className="mt-1 text-sm text-faded">
-            {shown.ownSeason
-              ? t('key', {
-                  regionLevel: level(shown.region.level),
-                  ownLevel: level(shown.ownSeason.level),
-                })
-              : t('keyWithoutOwn', { regionLevel: level(shown.region.level) })}
-          </p>
-        )}
-      </div>
+      {shown && (
+        <p className="border-t-2 border-ink pt-2 text-sm text-faded">
+          {shown.ownSeason
+            ? t('key', {
+                regionLevel: level(shown.region.level),
+                ownLevel: level(shown.ownSeason.level),
+              })
+            : t('keyWithoutOwn', { regionLevel: level(shown.region.level) })}
+        </p>
+      )}
     </section>
   );
 }
@@ -104,6 +102,9 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
           isThin={verdict === 'thin'}
           sentence={sentence}
         />
+        <GapLabel scale={scale} value={0} className="bottom-0.5 text-faded">
+          {weighUp.currentVarietyName}
+        </GapLabel>
       </div>
       <div className="flex flex-col gap-1.5">
         {gap && verdict !== 'thin' && <IntervalSentences gap={gap} unit={unit} decimals={decimals} />}

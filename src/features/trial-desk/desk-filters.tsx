@@ -5,7 +5,7 @@ import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useTrialWords } from '#src/components/trial-words.ts';
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import { useMe } from '#src/session.ts';
 import type { DeskFilter } from './desk-queries.ts';

@@ -10,7 +10,7 @@ import { Skeleton } from '#src/components/skeleton.tsx';
 import { useTrialColumns } from '#src/components/trial-columns.tsx';
 import { useTrialWords } from '#src/components/trial-words.ts';
 import { useFormat } from '#src/components/use-format.ts';
-import { catalogueQuery, findCrop, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, findCrop, type Catalogue } from '#src/catalogue-query.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useUrlPatch } from '#src/url-state.ts';

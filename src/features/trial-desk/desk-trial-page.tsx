@@ -3,7 +3,7 @@ import { useTranslation } from 'react-i18next';
 import { Link, useParams, useSearchParams } from 'react-router-dom';
 import type { Crop } from '#shared/catalogue.ts';
 import type { TrialDetail } from '#shared/trial.ts';
-import { catalogueQuery, findCrop, findTrait } from '#src/catalogue.ts';
+import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { AnalysisView } from '#src/components/analysis-view.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { Field } from '#src/components/field.tsx';

@@ -3,7 +3,7 @@ import { useTranslation } from 'react-i18next';
 import { z } from 'zod';
 import { importFields, type ImportFields } from '#shared/trial-desk.ts';
 import { trialDesigns } from '#shared/trial.ts';
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
 import { TextInput } from '#src/components/text-input.tsx';

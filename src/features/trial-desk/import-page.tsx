@@ -6,7 +6,7 @@ import { useTranslation } from 'react-i18next';
 import { Link, useNavigate } from 'react-router-dom';
 import { checkImport, importTrial, type ImportFields } from '#shared/trial-desk.ts';
 import { callApi } from '#src/api-client.ts';
-import { catalogueQuery, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';

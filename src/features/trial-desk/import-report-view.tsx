@@ -1,7 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import type { ImportReport, RowProblem } from '#shared/trial-desk.ts';
 import type { TrialAnalysisView } from '#shared/trial.ts';
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import { AnalysisView } from '#src/components/analysis-view.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { DataTable, type Column } from '#src/components/data-table.tsx';

@@ -39,7 +39,7 @@ export function TrialChoices({ traits, choice, alpha }: TrialChoicesProps) {
     <form
       aria-label={t('trials:page.choices')}
       onSubmit={(event) => event.preventDefault()}
-      className="mb-6 grid gap-3 sm:grid-cols-3"
+      className="grid gap-3 sm:grid-cols-3"
     >
       <Field label={t('trials:page.trait')}>
         <Select

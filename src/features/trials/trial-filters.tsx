@@ -4,7 +4,7 @@ import type { TrialFilter } from '#shared/trial.ts';
 import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 
 /** The choice that the address holds; what it does not understand is left out. */

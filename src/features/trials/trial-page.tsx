@@ -12,7 +12,7 @@ import { useTrialWords } from '#src/components/trial-words.ts';
 import { UrlTabs, useUrlTab } from '#src/components/url-tabs.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { VersionHistory } from '#src/components/version-history.tsx';
-import { catalogueQuery, findCrop, findRegion, findTrait, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, findCrop, findRegion, findTrait, type Catalogue } from '#src/catalogue-query.ts';
 import { paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useUrlPatch } from '#src/url-state.ts';
@@ -114,29 +114,34 @@ function TrialReading({ trial, crop, isAnalysis }: TrialReadingProps) {
   const analysis = useQuery(trialAnalysisQuery(trial.id, choice));
   const traits = crop.traits.filter((trait) => trial.traitSlugs.includes(trait.slug));
   const trait = findTrait(crop, analysis.data?.traitSlug ?? choice.trait);
+  const choices = (
+    <TrialChoices
+      traits={traits}
+      choice={choice}
+      alpha={choice.alpha ?? analysis.data?.alpha ?? trial.alpha}
+    />
+  );
+  if (analysis.isPending || analysis.isError || !trait) {
+    return (
+      <>
+        {choices}
+        {analysis.isError ? <QueryErrorState query={analysis} /> : <Skeleton lines={10} />}
+      </>
+    );
+  }
   return (
-    <>
-      <TrialChoices
-        traits={traits}
-        choice={choice}
-        alpha={choice.alpha ?? analysis.data?.alpha ?? trial.alpha}
-      />
-      {analysis.isPending && <Skeleton lines={10} />}
-      {analysis.isError && <QueryErrorState query={analysis} />}
-      {analysis.data && trait && (
-        <AnalysisView
-          analysis={analysis.data}
-          traitName={format.name(trait.name)}
-          unit={trait.unit}
-          hasLetters={isAnalysis}
-          {...(isAnalysis && {
-            entry: search.get('entry'),
-            onEntry: (entry: string | null) => patch({ entry }),
-          })}
-        >
-          <CautionList title={t('page.cautions')} items={cautionItems(analysis.data.cautions)} />
-        </AnalysisView>
-      )}
-    </>
+    <AnalysisView
+      analysis={analysis.data}
+      traitName={format.name(trait.name)}
+      unit={trait.unit}
+      hasLetters={isAnalysis}
+      {...(isAnalysis && {
+        entry: search.get('entry'),
+        onEntry: (entry: string | null) => patch({ entry }),
+      })}
+    >
+      {choices}
+      <CautionList title={t('page.cautions')} items={cautionItems(analysis.data.cautions)} />
+    </AnalysisView>
   );
 }

@@ -47,12 +47,14 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
       ...(isOpen && { below: <OpenRow {...story} /> }),
     };
   });
-  const title = t('gapTitle', { current: currentName });
   return (
-    <section>
-      <h2 className="sr-only">{title}</h2>
-      <GapStrip title={title} rows={rows} currentName={currentName} unit={unit} decimals={decimals} />
-    </section>
+    <GapStrip
+      title={t('gapTitle', { current: currentName })}
+      rows={rows}
+      currentName={currentName}
+      unit={unit}
+      decimals={decimals}
+    />
   );
 }
 
@@ -111,7 +113,7 @@ function OpenRow(story: StoryProps) {
         headingLevel={3}
       />
       <section>
-        <h4 className="mb-1 font-semibold">{t('story.perTrial')}</h4>
+        <h3 className="mb-1">{t('story.perTrial')}</h3>
         {candidate.trials.length === 0 ? (
           <p>{t('story.noShared')}</p>
         ) : (

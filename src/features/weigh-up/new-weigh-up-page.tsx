@@ -7,7 +7,7 @@ import { useNavigate, useSearchParams } from 'react-router-dom';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { createWeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
-import { catalogueQuery, type Catalogue } from '#src/catalogue.ts';
+import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';

@@ -1,4 +1,4 @@
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import type { Crop, Region } from '#shared/catalogue.ts';
 import type { CandidateQuestion } from './weigh-up-queries.ts';
 

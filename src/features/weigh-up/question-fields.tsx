@@ -4,7 +4,7 @@ import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
-import type { Catalogue } from '#src/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { QuestionDraft } from './question-draft.ts';

@@ -4,7 +4,7 @@ import { Link, useParams } from 'react-router-dom';
 import type { Crop } from '#shared/catalogue.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
-import { catalogueQuery, findCrop, findTrait } from '#src/catalogue.ts';
+import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
@@ -155,10 +155,15 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <section className="flex flex-col gap-4">
           <h2>{t('method:title')}</h2>
           <MethodNotes result={result} />
-          <EvidenceTrials
-            result={result}
-            linkTrial={(trialId, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
-          />
+          <details>
+            <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
+              {t('method:showTrials', { count: result.trials.length })}
+            </summary>
+            <EvidenceTrials
+              result={result}
+              linkTrial={(trialId, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
+            />
+          </details>
         </section>
       </div>
     </div>
