@@ -10,7 +10,6 @@ export {
 } from './trial/trial-data.ts';
 export type * from './trial/trial-result.ts';
 export { analyseOrdinal, type OrdinalAnalysis } from './trial/ordinal-analysis.ts';
-export { summariseOrdinal, type OrdinalSummary } from './checks/ordinal.ts';
 export { smallestShownDifference } from './checks/power.ts';
 export { tQuantileUpper } from './distributions/student-t.ts';
 export { groupUndiffering } from './trial/different-groups.ts';
