@@ -142,6 +142,7 @@ export function combineTrials(
   const components = { site, year, rest };
   const estimates = estimateEntries(fit);
   const shrunken = shrinkEffects(
+    fit,
     estimates,
     options.usualEntry ?? totalVariance(penalty?.usual ?? components),
   );

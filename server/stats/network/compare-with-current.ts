@@ -38,7 +38,8 @@ function correlate(estimates: EntryEstimates, members: readonly number[], base: 
 }
 
 /**
- * Gaps of the candidates at positions `members` from the entry at position `base`, all connected to it.
+ * Gaps of the candidates at positions `members` of the estimates from the entry at position `base`, all connected to it.
+ * @param shrunken of all entries of the network
  * @param isFamily true: intervals and pAdjusted by Dunnett on the model's covariance, Kenward–Roger SE and df; false: each pair alone
  */
 export function compareWithCurrent(
@@ -52,14 +53,15 @@ export function compareWithCurrent(
   const gaps = members.flatMap((r) => measureGap(estimates, r, base) ?? []);
   const family =
     isFamily && gaps.length > 1 ? widenForFamily(gaps, correlate(estimates, members, base), level) : null;
-  const m = estimates.chosen.length;
+  const m = shrunken.effects.length;
+  const b = estimates.chosen[base]!;
   const interaction = 2 * estimates.fit.point.theta.reduce((sum, value) => sum + value, 0);
   return gaps.map((gap, index) => {
-    const r = members[index]!;
+    const r = estimates.chosen[members[index]!]!;
     const { estimate, se, df, p, ownSeason } = gap;
     const lsd = tQuantileUpper((1 - level) / 2, df) * se;
     const left = shrunken.covariance;
-    const leftOver = Math.max(0, left[r * m + r]! + left[base * m + base]! - 2 * left[r * m + base]!);
+    const leftOver = Math.max(0, left[r * m + r]! + left[b * m + b]! - 2 * left[r * m + b]!);
     return {
       estimate,
       se,
@@ -75,7 +77,7 @@ export function compareWithCurrent(
         df: ownSeason.df,
       },
       shrunken: {
-        estimate: shrunken.effects[r]! - shrunken.effects[base]!,
+        estimate: shrunken.effects[r]! - shrunken.effects[b]!,
         se: Math.sqrt(leftOver),
         ownSeasonSe: Math.sqrt(leftOver + interaction),
       },

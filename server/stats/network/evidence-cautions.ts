@@ -66,7 +66,8 @@ export function cautionCandidate(evidence: CandidateEvidence): EvidenceCaution[]
     if (question.askedInSeason - newest >= OLD_AFTER_SEASONS)
       found.push(caution('old-seasons', 'warning', { variety, season: newest }));
   }
-  if (shared === 0) {
+  // without a trial of its own there is no gap to be worked out through others
+  if (shared === 0 && stood.length > 0) {
     found.push(caution('never-together', 'warning', { variety, current }));
     const links = findLinks(tables, candidate, question.current);
     if (links.length > 0 && links.length <= FEW_LINKS)

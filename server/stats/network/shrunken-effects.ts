@@ -1,14 +1,14 @@
 import { choleskyUpper } from '#server/stats/linear/dense.ts';
 import { invertFromTriangle } from '#server/stats/linear/skipping-factor.ts';
 import { findRoot } from '#server/stats/distributions/find-root.ts';
-import type { EntryEstimates } from './entry-estimates.ts';
-import type { VariancePenalty } from './fit-network.ts';
+import type { EntryEffects } from './entry-estimates.ts';
+import type { NetworkFit, VariancePenalty } from './fit-network.ts';
 
 /** Entries as a sample: each effect pulled towards the mean of its connected part. */
 export interface ShrunkenEffects {
   /** variance of the entries' effects in each connected part, unit squared */
   readonly entryVariances: readonly number[];
-  /** effects of the chosen entries, comparable within a part */
+  /** effects in the order of the frame's entries, comparable within a part */
   readonly effects: Float64Array;
   /** covariance of what is left to know of them, m × m; read it through contrasts only */
   readonly covariance: Float64Array;
@@ -74,11 +74,16 @@ function findEntryVariance(
 }
 
 /**
- * Best linear unbiased predictions of the chosen entries with θ held at the fit.
+ * Best linear unbiased predictions of all entries with θ held at the fit.
+ * @param all effects of every entry of the frame
  * @param usualEntryVariance s_g², what entries of the crop usually vary by
  */
-export function shrinkEffects(estimates: EntryEstimates, usualEntryVariance: number): ShrunkenEffects {
-  const { fit, chosen, covariance } = estimates;
+export function shrinkEffects(
+  fit: NetworkFit,
+  all: EntryEffects,
+  usualEntryVariance: number,
+): ShrunkenEffects {
+  const { chosen, covariance } = all;
   const m = chosen.length;
   const effects = new Float64Array(m);
   const left = new Float64Array(m * m);
@@ -92,8 +97,8 @@ export function shrinkEffects(estimates: EntryEstimates, usualEntryVariance: num
     }
     const phi = new Float64Array(size * size);
     members.forEach((r, a) => members.forEach((c, b) => (phi[a * size + b] = covariance[r * m + c]!)));
-    const centre = estimates.effects[members[0]!]!;
-    const own = Float64Array.from(members, (r) => estimates.effects[r]! - centre);
+    const centre = all.effects[members[0]!]!;
+    const own = Float64Array.from(members, (r) => all.effects[r]! - centre);
     const entryVariance = findEntryVariance(phi, own, size, fit.penalty, usualEntryVariance);
     entryVariances.push(entryVariance);
     const projection = entryVariance > 0 ? projectPart(phi, own, size, entryVariance) : null;

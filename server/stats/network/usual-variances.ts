@@ -76,7 +76,7 @@ export function estimateUsualVariances(cells: readonly TrialCell[]): UsualEstima
   if (fit.outcome === 'not-fitted' || fit.dropped.length > 0) return { outcome: 'not-fitted', ...counts };
   const estimates = estimateEntries(fit);
   const { variances, intervals } = describeVariances(estimates);
-  const between = shrinkEffects(estimates, totalVariance(variances)).entryVariances;
+  const between = shrinkEffects(fit, estimates, totalVariance(variances)).entryVariances;
   const entry = Math.max(...between, LEAST_SHARE * totalVariance(variances));
   return { outcome: 'estimated', variances: { ...variances, entry }, intervals, ...counts };
 }

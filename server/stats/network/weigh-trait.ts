@@ -1,7 +1,7 @@
 import { chooseEvidence, type ChosenEvidence } from './choose-evidence.ts';
 import { compareWithCurrent, judgeAgainstCurrent } from './compare-with-current.ts';
 import { standAgainstBest } from './compare-with-best.ts';
-import { estimateEntries, type EntryEstimates } from './entry-estimates.ts';
+import { estimateEffects, estimateEntries, type EntryEstimates } from './entry-estimates.ts';
 import { answersFor, gradeEvidence, type EvidenceTier } from './evidence-tier.ts';
 import { cautionCandidate, cautionEvidence } from './evidence-cautions.ts';
 import { fitNetwork, type NetworkFit, type VariancePenalty } from './fit-network.ts';
@@ -29,7 +29,7 @@ import type { BestStanding, CandidateWeighing, TraitWeighing } from './weigh-res
 const LEVEL = 0.95;
 const PENALTY = 3;
 
-/** A fit of the chosen cells and the candidates' gaps in it. */
+/** A fit of the chosen cells, estimates of current variety and candidates, and the candidates' gaps. */
 interface Weighed {
   readonly fit: NetworkFit;
   readonly estimates: EntryEstimates;
@@ -52,14 +52,14 @@ function findMembers(frame: NetworkFrame, question: WeighQuestion): number[] {
 function weighCells(frame: NetworkFrame, trait: TraitEvidence, question: WeighQuestion): Weighed | null {
   const fit = fitNetwork(frame, choosePenalty(trait, 1));
   if (fit.outcome === 'not-fitted') return null;
-  const estimates = estimateEntries(fit);
+  const members = findMembers(frame, question);
+  const estimates = estimateEntries(fit, [frame.entries.indexOf(question.current), ...members]);
   const [site, year, rest] = fit.point.theta;
   const usualEntry =
     trait.usual?.entry ?? totalVariance(trait.usual ?? { site: site!, year: year!, rest: rest! });
-  const members = findMembers(frame, question);
-  const base = frame.entries.indexOf(question.current);
-  const shrunken = shrinkEffects(estimates, usualEntry);
-  const gaps = compareWithCurrent(estimates, shrunken, members, base, question.kind !== 'pair', LEVEL);
+  const shrunken = shrinkEffects(fit, estimateEffects(frame, fit.point), usualEntry);
+  const positions = members.map((_, index) => index + 1);
+  const gaps = compareWithCurrent(estimates, shrunken, positions, 0, question.kind !== 'pair', LEVEL);
   return { fit, estimates, gaps: new Map(members.map((at, index) => [frame.entries[at]!, gaps[index]!])) };
 }
 
@@ -224,14 +224,8 @@ function weighOne(
 /** Current variety and candidates against the best of them. */
 function standings({ question, trait, weighed }: TraitGround): BestStanding[] | null {
   if (question.kind !== 'best' || trait.better === 'neutral' || weighed === null) return null;
-  const { entries } = weighed.fit.frame;
-  const members = [question.current, ...question.candidates].map((entry) => entries.indexOf(entry));
-  return standAgainstBest(
-    weighed.estimates,
-    members.filter((at) => at >= 0),
-    trait.better,
-    LEVEL,
-  );
+  const positions = weighed.estimates.chosen.map((_, position) => position);
+  return standAgainstBest(weighed.estimates, positions, trait.better, LEVEL);
 }
 
 function measureStability(tables: readonly TrialTable[]): Map<string, EntryStability> {

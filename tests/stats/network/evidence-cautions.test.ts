@@ -257,6 +257,15 @@ describe('best-of-many', () => {
   });
 });
 
+describe('a variety without a trial', () => {
+  it('is told to rest on none, and nothing else', () => {
+    const [trait] = weighCandidates(good, askAbout(['Unheard of'])).traits;
+    expect(trait!.candidates[0]!.cautions).toEqual([
+      { code: 'few-site-years', severity: 'stop', numbers: { variety: 'Unheard of', count: 0 } },
+    ]);
+  });
+});
+
 describe('names in cautions', () => {
   it('are those of the network, not its keys', () => {
     const named = { ...three, names: { New: 'Nouvelle', Now: 'Ancienne' } };
