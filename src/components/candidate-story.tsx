@@ -49,7 +49,7 @@ export function CandidateStory(props: StoryProps) {
 function Part({ title, children }: { title: string; children: ReactNode }) {
   return (
     <section>
-      <h4 className="font-semibold">{title}</h4>
+      <h3>{title}</h3>
       {children}
     </section>
   );
