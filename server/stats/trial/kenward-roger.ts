@@ -4,6 +4,7 @@ import { solveTransposed } from '#server/stats/linear/skipping-factor.ts';
 import type { MeanEstimates } from './gap-table.ts';
 import { covarianceOfMeans, predictMeans, type MeanFamily } from './mean-family.ts';
 import { reorderBasis, type MixedBasis, type MixedFit } from './mixed-fit.ts';
+import type { NamedTerm } from './random-part.ts';
 import type { FixedTerm } from './model-terms.ts';
 import type { VarianceRow } from './trial-result.ts';
 import { confoundedTerms, orderLast } from './variance-table.ts';
@@ -12,7 +13,7 @@ import { confoundedTerms, orderLast } from './variance-table.ts';
  * Means of a family under REML with Kenward–Roger covariance and df.
  * Source: Kenward & Roger (1997), Biometrics 53:983–997.
  */
-export function estimateMixedMeans(fit: MixedFit, family: MeanFamily): MeanEstimates {
+export function estimateMixedMeans(fit: MixedFit<NamedTerm>, family: MeanFamily): MeanEstimates {
   const { fixed, basis, theta, random, w } = fit;
   const { width } = fixed.model;
   const size = family.labels.length;
@@ -83,7 +84,7 @@ function adjustCovariance(
 }
 
 /** Kenward–Roger F tests of the fixed terms, each after all others. */
-export function testMixedTerms(fit: MixedFit): VarianceRow[] {
+export function testMixedTerms(fit: MixedFit<NamedTerm>): VarianceRow[] {
   const confounded = new Set(confoundedTerms(fit.fixed));
   return fit.fixed.model.fixed.slice(1).map((term) => {
     const empty = { term: term.name, df: 0, denDf: null, ss: null, ms: null, f: null, p: null };
@@ -103,7 +104,7 @@ function columnsOf(basis: MixedBasis, term: FixedTerm): number[] {
 
 /** F test that the coefficients in the given places are all 0; Kenward & Roger (1997), section 3. */
 function testColumns(
-  fit: MixedFit,
+  fit: MixedFit<NamedTerm>,
   basis: MixedBasis,
   columns: readonly number[],
 ): Pick<VarianceRow, 'df' | 'denDf' | 'f' | 'p'> {

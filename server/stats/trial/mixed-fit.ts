@@ -13,13 +13,14 @@ import {
 } from '#server/stats/linear/skipping-factor.ts';
 import { projectFixed } from './cross-products.ts';
 import type { FixedFit } from './fixed-fit.ts';
-import { buildRandomPart, type RandomPart } from './random-part.ts';
+import type { RandomTerm } from './model-terms.ts';
+import { buildRandomPart, type NamedTerm, type RandomPart } from './random-part.ts';
 import { fitComponents, type ComponentFit } from './variance-components.ts';
 
 /** A model with random effects, fitted by REML, and all that Kenward and Roger's method needs of it. */
-export interface MixedFit {
+export interface MixedFit<Term extends NamedTerm = RandomTerm> {
   readonly fixed: FixedFit;
-  readonly random: RandomPart;
+  readonly random: RandomPart<Term>;
   readonly components: ComponentFit;
   /** θ_1 … θ_K, σ² */
   readonly theta: Float64Array;
@@ -58,7 +59,10 @@ export function prepareRandom(fixed: FixedFit): RandomPart | null {
  * @param random with at least one term
  * @returns null where the random terms leave no residual variance
  */
-export function fitMixed(fixed: FixedFit, random: RandomPart): MixedFit | null {
+export function fitMixed<Term extends NamedTerm>(
+  fixed: FixedFit,
+  random: RandomPart<Term>,
+): MixedFit<Term> | null {
   const components = fitComponents(random);
   if (components.isResidualZero) return null;
   const { theta, expected } = components.point;
@@ -79,7 +83,7 @@ export function fitMixed(fixed: FixedFit, random: RandomPart): MixedFit | null {
 }
 
 /** GLS on independent columns chosen with the given order of preference (columns of the model matrix). */
-export function reorderBasis(fit: MixedFit, order: readonly number[]): MixedBasis {
+export function reorderBasis(fit: MixedFit<NamedTerm>, order: readonly number[]): MixedBasis {
   const { xtx, model } = fit.fixed;
   const size = order.length;
   const permuted = new Float64Array(size * size);
@@ -96,7 +100,7 @@ export function reorderBasis(fit: MixedFit, order: readonly number[]): MixedBasi
  * @param triangle R of their cross products
  */
 function solveBasis(
-  fit: Omit<MixedFit, 'basis'>,
+  fit: Omit<MixedFit<NamedTerm>, 'basis'>,
   kept: Int32Array,
   triangle: Float64Array,
   inverse: Float64Array,
@@ -134,7 +138,7 @@ function solveBasis(
 
 /** β of generalised least squares: least squares, then Φ X'V⁻¹ applied to its residuals (whose X'r is 0). */
 function solveCoefficients(
-  { fixed, random, root, zTriangle, theta }: Omit<MixedFit, 'basis'>,
+  { fixed, random, root, zTriangle, theta }: Omit<MixedFit<NamedTerm>, 'basis'>,
   kept: Int32Array,
   triangle: Float64Array,
   y: Float64Array,
@@ -175,7 +179,7 @@ function invertInformation(expected: Float64Array, count: number): Float64Array 
 }
 
 function weighCorrection(
-  { starts, zmy }: RandomPart,
+  { starts, zmy }: RandomPart<NamedTerm>,
   s: Float64Array,
   theta: Float64Array,
   w: Float64Array,

@@ -4,15 +4,22 @@ import type { FixedFit } from './fixed-fit.ts';
 import type { RandomTerm } from './model-terms.ts';
 import { evaluatePoint, type AbsorbedModel } from './variance-components.ts';
 
-/** The random side of a model, with the fixed effects absorbed. */
-export interface RandomPart extends AbsorbedModel {
-  /** terms whose variance the data can tell from the others and from the residual */
-  readonly terms: readonly RandomTerm[];
-  readonly notIdentifiable: readonly string[];
+/** Random terms with the fixed effects absorbed. */
+export interface AbsorbedTerms<Term extends NamedTerm = RandomTerm> extends AbsorbedModel {
+  readonly terms: readonly Term[];
   /** Z'Z, q × q */
   readonly ztz: Float64Array;
   /** Z'X, q × model width */
   readonly ztx: Float64Array;
+}
+
+/** The random side of a model: the terms whose variance the data can tell from the others and from the residual. */
+export interface RandomPart<Term extends NamedTerm = RandomTerm> extends AbsorbedTerms<Term> {
+  readonly notIdentifiable: readonly string[];
+}
+
+export interface NamedTerm {
+  readonly name: string;
 }
 
 /** Share of a term's own variation left beside the fixed effects, below which it is confounded with them. */
@@ -20,12 +27,20 @@ const leastShare = 1e-9;
 /** Smallest pivot of the scaled information that still tells a component from the others. */
 const leastPivot = 1e-8;
 
-/** Absorbs the fixed effects and drops the random terms whose variance is confounded, one after the other. */
+/** The model's own random terms. */
 export function buildRandomPart(fit: FixedFit): RandomPart {
-  let terms: readonly RandomTerm[] = fit.model.random;
+  return dropConfounded(fit.model.random, (terms) => absorb(fit, terms));
+}
+
+/** Drops the terms whose variance is confounded, one after the other. */
+export function dropConfounded<Term extends NamedTerm>(
+  all: readonly Term[],
+  absorbTerms: (terms: readonly Term[]) => AbsorbedTerms<Term>,
+): RandomPart<Term> {
+  let terms = all;
   const notIdentifiable: string[] = [];
   for (;;) {
-    const part = absorb(fit, terms);
+    const part = absorbTerms(terms);
     const bad = findConfounded(part);
     if (bad === null) return { ...part, notIdentifiable };
     notIdentifiable.push(terms[bad]!.name);
@@ -33,7 +48,7 @@ export function buildRandomPart(fit: FixedFit): RandomPart {
   }
 }
 
-function absorb(fit: FixedFit, terms: readonly RandomTerm[]): Omit<RandomPart, 'notIdentifiable'> {
+function absorb(fit: FixedFit, terms: readonly RandomTerm[]): AbsorbedTerms {
   const { model, factor, triangle } = fit;
   const starts = [0];
   for (const term of terms) starts.push(starts[starts.length - 1]! + term.size);
@@ -53,7 +68,7 @@ function absorb(fit: FixedFit, terms: readonly RandomTerm[]): Omit<RandomPart, '
 }
 
 /** The first term whose variance cannot be told from the fixed effects, from earlier terms or from the residual. */
-function findConfounded(part: Omit<RandomPart, 'notIdentifiable'>): number | null {
+function findConfounded(part: AbsorbedTerms<NamedTerm>): number | null {
   const { terms, starts, zmz, ztz } = part;
   const q = starts[terms.length]!;
   for (let k = 0; k < terms.length; k++) {

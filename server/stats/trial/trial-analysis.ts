@@ -11,6 +11,7 @@ import { describeMixedResiduals, noticeComponents, summariseMixedFit } from './m
 import { fitMixed, prepareRandom, type MixedFit } from './mixed-fit.ts';
 import { sortLabels } from './model-terms.ts';
 import { readPlots, type UsedPlots } from './read-plots.ts';
+import { compareSpatial } from './spatial-models.ts';
 import type { TrialDesign, TrialOptions, TrialPlot } from './trial-data.ts';
 import { diagnose, type FitResiduals } from './trial-diagnostics.ts';
 import { buildModel, takeAsFixed, type TrialModel } from './trial-model.ts';
@@ -65,6 +66,9 @@ export function analyseTrial(
     dunnett: options.check ? compareWithCheck(estimates, options.check, missing) : null,
     best: options.comparisons ? compareAllWithBest(estimates, alpha, options.better ?? 'higher') : null,
     checks: options.checks ? checkFurther(model, used) : null,
+    spatial: options.spatial
+      ? compareSpatial(model, used, { summary: analysis.summary, table }, alpha)
+      : null,
     groups: table.groups,
     factors,
     diagnostics,

@@ -167,6 +167,27 @@ export interface FurtherChecks {
   readonly repeatability: number | null;
 }
 
+/** A model of the field's trend beside the design's: the same fixed effects, so that their AIC compare. */
+export interface SpatialModel extends FamilyTable {
+  /** design: as analysed; autoregressive: errors alike along rows and columns; surface: a smooth one over the field */
+  readonly code: 'design' | 'autoregressive' | 'surface';
+  /** −2 restricted log-likelihood + 2 × parameters of the covariance; smaller is better */
+  readonly aic: number;
+  readonly logLik: number;
+  readonly parameters: number;
+  readonly residualMs: number;
+  readonly components: readonly { readonly name: string; readonly variance: number }[];
+  /** of neighbours along the rows' axis and along the columns' axis */
+  readonly correlations: { readonly row: number; readonly col: number } | null;
+}
+
+export interface SpatialComparison {
+  /** the design's model first */
+  readonly models: readonly SpatialModel[];
+  /** the model of smallest AIC */
+  readonly preferred: SpatialModel['code'];
+}
+
 export interface TrialAnalysis extends FamilyTable {
   readonly design: DesignKind;
   readonly fit: FitSummary;
@@ -176,6 +197,8 @@ export interface TrialAnalysis extends FamilyTable {
   readonly best: readonly BestRow[] | null;
   /** null unless asked for */
   readonly checks: FurtherChecks | null;
+  /** null unless asked for, or where rows and columns are not known or the models cannot be fitted */
+  readonly spatial: SpatialComparison | null;
   /** families besides the trial's own: each factor, and combinations */
   readonly factors: Readonly<Record<string, FamilyTable>>;
   readonly diagnostics: TrialDiagnostics;
