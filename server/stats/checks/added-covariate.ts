@@ -43,6 +43,8 @@ export function testAddedCovariate(
   const product = sumOfProducts(own, model.residuals);
   const df2 = model.residualDf - 1;
   const explained = (product * product) / ownSs;
-  const f = explained / (Math.max(0, rss - explained) / df2);
+  // the covariate explains all that is left: nothing remains to test it by
+  if (!(explained < rss)) return notComputed('no-spread');
+  const f = explained / ((rss - explained) / df2);
   return { computed: true, slope: product / ownSs, f, df1: 1, df2, p: fUpper(f, 1, df2) };
 }

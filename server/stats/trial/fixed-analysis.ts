@@ -65,7 +65,7 @@ export function describeFixedResiduals(fit: FixedFit): FitResiduals {
     residuals: fit.residuals,
     fitted: fit.y.map((value, i) => fit.center + (value - fit.residuals[i]!)),
     leverage,
-    studentised: studentised?.computed ? studentised : null,
+    studentised: studentised?.computed && Number.isFinite(studentised.largest.value) ? studentised : null,
     isEmpty,
   };
 }

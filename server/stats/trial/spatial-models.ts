@@ -12,9 +12,9 @@ import type { TrialModel } from './trial-model.ts';
 import type { FamilyTable, FitSummary, SpatialComparison, SpatialModel } from './trial-result.ts';
 
 /** Sizes above which spatial models would keep a person waiting. */
-const mostPlaces = 900;
-const mostColumns = 260;
-const mostAbsent = 100;
+const mostPlaces = 600;
+const mostColumns = 160;
+const mostAbsent = 60;
 
 /**
  * Models of the field's trend beside the design's. Random blocks of the design give way to the trend; fixed ones stay.
