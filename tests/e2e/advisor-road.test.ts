@@ -51,7 +51,7 @@ async function askQuestion(page: Page, language: Language): Promise<string[]> {
     say(language, 'weigh-up:new.region'),
     language === 'en' ? 'Sarrow Coast' : 'Côte de Sarrow',
   );
-  const noVerdict = page.getByRole('heading', { name: say(language, 'common:noVerdict.title') });
+  const noVerdict = page.getByRole('heading', { name: say(language, 'verdicts:noTrials.title') });
   await noVerdict.waitFor();
   await expectSoundPage(page);
   await chooseByStart(
@@ -65,7 +65,9 @@ async function askQuestion(page: Page, language: Language): Promise<string[]> {
   const names: string[] = [];
   for (const index of [1, 2]) {
     const box = boxes.nth(index);
-    await box.check();
+    await box.click();
+    // The choice is kept in the address, so the tick follows it.
+    await page.waitForFunction(`document.querySelectorAll('input[type=checkbox]')[${index}].checked`);
     names.push(((await box.locator('xpath=ancestor::label').textContent()) ?? '').trim());
   }
   await expectSoundPage(page);

@@ -9,9 +9,13 @@ const fallbackCurrency = 'CAD';
 const { growerName, farmName, areaHectares } = weighUpInput.shape;
 const { priceLow, priceMiddle, priceHigh } = moneyAssumptions.shape;
 
-/** A figure that may not have been typed yet; nothing is refused as any text that is no figure. */
+/** A figure that may not have been typed yet: asked for in words of its own, apart from one that does not fit. */
 const typed = <Schema extends z.ZodType<number, number>>(schema: Schema) =>
-  z.number().nullable().pipe(schema);
+  z
+    .number()
+    .nullable()
+    .refine((value) => value !== null, { message: 'required', abort: true })
+    .pipe(schema);
 
 /** What is typed on the page of a new weigh-up; the question itself stands in the address. */
 export const newWeighUpForm = z
