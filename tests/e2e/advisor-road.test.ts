@@ -67,7 +67,7 @@ async function askQuestion(page: Page, language: Language): Promise<string[]> {
     const box = boxes.nth(index);
     await box.click();
     // The choice is kept in the address, so the tick follows it.
-    await page.waitForFunction(`document.querySelectorAll('input[type=checkbox]')[${index}].checked`);
+    await page.getByRole('checkbox', { checked: true }).nth(names.length).waitFor();
     names.push(((await box.locator('xpath=ancestor::label').textContent()) ?? '').trim());
   }
   await expectSoundPage(page);
