@@ -15,7 +15,8 @@ await startI18n();
 createRoot(root).render(
   <StrictMode>
     <QueryClientProvider client={makeQueryClient()}>
-      <BrowserRouter>
+      {/* The address holds what is chosen and typed: in a transition such a control would lag behind the finger. */}
+      <BrowserRouter useTransitions={false}>
         <AppRoutes />
       </BrowserRouter>
     </QueryClientProvider>

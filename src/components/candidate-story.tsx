@@ -48,7 +48,7 @@ export function CandidateStory(props: StoryProps) {
 
 function Part({ title, children }: { title: string; children: ReactNode }) {
   return (
-    <section>
+    <section className="flex flex-col gap-1">
       <h3>{title}</h3>
       {children}
     </section>

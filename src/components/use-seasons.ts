@@ -9,3 +9,12 @@ export function useSeasons(): (chance: number) => string {
     return key === 'whole' ? t('seasons.whole', { count }) : t(`seasons.${key}`);
   };
 }
+
+/** Says beside a strip how often a candidate pays, in as few words as fit there. */
+export function usePaysIn(): (chance: number) => string {
+  const { t } = useTranslation('verdicts');
+  return (chance) => {
+    const { key, count } = sayChance(chance);
+    return key === 'whole' ? t('paysIn.whole', { count }) : t(`paysIn.${key}`);
+  };
+}

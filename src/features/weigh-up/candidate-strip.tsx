@@ -7,7 +7,7 @@ import { CautionList } from '#src/components/caution-list.tsx';
 import { GapStrip, type GapStripRow } from '#src/components/gap-strip.tsx';
 import { SiteLines } from '#src/components/site-lines.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import { useSeasons } from '#src/components/use-seasons.ts';
+import { usePaysIn } from '#src/components/use-seasons.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
@@ -78,7 +78,7 @@ function RowToggle({ candidate, isOpen }: { candidate: CandidateResult; isOpen: 
 function RowAside({ candidate, currency }: { candidate: CandidateResult; currency: string }) {
   const { t } = useTranslation('verdicts');
   const format = useFormat();
-  const seasons = useSeasons();
+  const paysIn = usePaysIn();
   const { money, verdict, siteYears, cautions } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
   return (
@@ -89,7 +89,7 @@ function RowAside({ candidate, currency }: { candidate: CandidateResult; currenc
           : t('cantSay')}
       </span>
       {hasMoney && money.chancePays !== null && (
-        <span className="block text-sm">{t('paysIn', { seasons: seasons(money.chancePays) })}</span>
+        <span className="block text-sm">{paysIn(money.chancePays)}</span>
       )}
       <span className="block text-sm text-faded">{t('siteYears', { count: siteYears })}</span>
       {cautions.length > 0 && (
@@ -112,21 +112,18 @@ function OpenRow(story: StoryProps) {
         items={cautionItems(candidate.cautions)}
         headingLevel={3}
       />
-      <section>
-        <h3 className="mb-1">{t('story.perTrial')}</h3>
-        {candidate.trials.length === 0 ? (
-          <p>{t('story.noShared')}</p>
-        ) : (
-          <SiteLines
-            candidateName={candidate.varietyName}
-            currentName={currentName}
-            trials={candidate.trials}
-            unit={unit}
-            decimals={decimals}
-            linkTrial={({ trialId }, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
-          />
-        )}
-      </section>
+      {candidate.trials.length === 0 ? (
+        <p>{t('story.noShared')}</p>
+      ) : (
+        <SiteLines
+          candidateName={candidate.varietyName}
+          currentName={currentName}
+          trials={candidate.trials}
+          unit={unit}
+          decimals={decimals}
+          linkTrial={({ trialId }, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
+        />
+      )}
     </div>
   );
 }

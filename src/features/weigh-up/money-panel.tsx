@@ -118,8 +118,13 @@ function SaveState({ form, isValid, saving }: SaveStateProps) {
   const { t } = useTranslation('weigh-up');
   const { isDirty } = form.formState;
   if (saving.conflict) return <SaveConflict saving={saving} />;
+  // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen.
+  const foot =
+    isDirty || !isValid
+      ? 'sticky bottom-0 -mx-4 border-t border-rule bg-card px-4 py-3 sm:-mx-5 sm:px-5'
+      : '';
   return (
-    <>
+    <div className={`flex flex-col gap-2 ${foot}`}>
       <p role="status" className="text-sm">
         {!isValid ? t('money.invalid') : isDirty ? t('money.unsaved') : ''}
       </p>
@@ -138,6 +143,6 @@ function SaveState({ form, isValid, saving }: SaveStateProps) {
           </Button>
         </div>
       )}
-    </>
+    </div>
   );
 }

@@ -5,6 +5,7 @@ import { Select } from '#src/components/select.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
 import type { Catalogue } from '#src/catalogue-query.ts';
+import { useMe } from '#src/session.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { QuestionDraft } from './question-draft.ts';
@@ -17,6 +18,9 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
   const format = useFormat();
   const patch = useUrlPatch();
   const { crop, region } = draft;
+  const me = useMe();
+  // Elsewhere the server refuses; a region that the address names all the same stays in view with its refusal.
+  const regions = catalogue.regions.filter(({ id }) => me.regionIds.includes(id) || id === region?.id);
   const regionLabel = (name: string, count: number) =>
     crop === undefined
       ? name
@@ -40,7 +44,7 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
           value={region?.slug ?? ''}
           onChange={(event) => patch({ region: event.target.value, candidates: null })}
           placeholder={t('new.chooseRegion')}
-          options={catalogue.regions.map(({ slug, name, publishedTrials }) => ({
+          options={regions.map(({ slug, name, publishedTrials }) => ({
             value: slug,
             label: regionLabel(format.name(name), publishedTrials[crop?.slug ?? ''] ?? 0),
           }))}

@@ -1,27 +1,31 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import { renderHook } from '@testing-library/react';
 import { languages } from '#shared/account.ts';
-import { cautionCodes, cautionValues, type CautionCode } from '#shared/caution.ts';
+import { cautionCodes, cautionValues, type Caution, type CautionCode } from '#shared/caution.ts';
 import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
 
 /** A value that each placeholder may hold. */
-const samples: Record<string, string | number> = {
+const samples: Caution['values'] = {
   count: 3,
   total: 40,
   season: '2024',
   date: '2024-02-01',
   context: '',
   plot: '207',
+  regions: [
+    { en: 'Lower Velmar', fr: 'Bas-Velmar' },
+    { en: 'Upper Velmar', fr: 'Haut-Velmar' },
+  ],
 };
 
-function sample(code: CautionCode): Record<string, string | number> {
-  const figures = new Set(['count', 'total', 'cv', 'limit', 'p', 'sd', 'estimate', 'shrunken', 'given']);
+function sample(code: CautionCode): Caution['values'] {
+  const figures = new Set([
+    ...['count', 'total', 'cv', 'limit', 'p', 'sd', 'estimate', 'shrunken', 'given', 'expected', 'value'],
+    ...['difference', 'distance', 'similar', 'yield', 'from', 'to'],
+  ]);
   return Object.fromEntries(
-    cautionValues[code].map((name) => [
-      name,
-      samples[name] ?? (figures.has(name) || name === 'expected' || name === 'value' ? 0.25 : 'Tallis'),
-    ]),
+    cautionValues[code].map((name) => [name, samples[name] ?? (figures.has(name) ? 0.25 : 'Tallis')]),
   );
 }
 
@@ -53,5 +57,16 @@ describe.each(languages)('cautions in %s', (language) => {
     expect(items).toHaveLength(2);
     expect(items[0]?.text).toContain('Pont-Desserre');
     expect(items[0]?.text).toContain(language === 'fr' ? '28,4\u202f%' : '28.4%');
+  });
+
+  it('names regions in its own language, joined as it joins names', async () => {
+    await changeLanguage(language);
+    await i18n.loadNamespaces('cautions');
+    const { result } = renderHook(() => useCautionItems());
+    const values = { context: 'elsewhere', regions: samples.regions ?? [] };
+    const [item] = result.current([{ code: 'no-trial-in-region', severity: 'stop', values }]);
+    expect(item?.text).toContain(
+      language === 'fr' ? 'Bas-Velmar et Haut-Velmar' : 'Lower Velmar and Upper Velmar',
+    );
   });
 });
