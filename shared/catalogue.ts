@@ -45,6 +45,19 @@ export const site = z.object({
 });
 export type Site = z.infer<typeof site>;
 
+/** A town that may be named for a farm, with the normal of its growing season. */
+export const place = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  regionId: z.uuid(),
+  latitude: z.number(),
+  longitude: z.number(),
+  seasonRainMm: z.number(),
+  heatSumDegreeDays: z.number(),
+  soilTexture: z.string(),
+});
+export type Place = z.infer<typeof place>;
+
 export const variety = z.object({
   id: z.uuid(),
   name: z.string(),
@@ -69,10 +82,15 @@ export const crop = z.object({
 });
 export type Crop = z.infer<typeof crop>;
 
-/** Regions, sites and crops with their traits and varieties: small, asked once, kept by the client. */
+/** Regions, sites, towns and crops with their traits and varieties: small, asked once, kept by the client. */
 export const readCatalogue = defineContract({
   method: 'GET',
   path: '/api/catalogue',
   access: 'signed-in',
-  reply: z.object({ regions: z.array(region), sites: z.array(site), crops: z.array(crop) }),
+  reply: z.object({
+    regions: z.array(region),
+    sites: z.array(site),
+    places: z.array(place).default([]),
+    crops: z.array(crop),
+  }),
 });

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { bilingualName, type BilingualName } from './catalogue.ts';
 
 export const cautionSeverity = z.enum(['note', 'warning', 'stop']);
 export type CautionSeverity = z.infer<typeof cautionSeverity>;
@@ -6,12 +7,24 @@ export type CautionSeverity = z.infer<typeof cautionSeverity>;
 /**
  * Where the evidence stops: every caution with the placeholders its sentence always needs, `cautions:<code>` in locales/.
  * `count` is the number the sentence counts by, `context` picks one of its variants (`<code>_<context>`);
- * percents, prices and t/ha come unrounded, names as stored.
+ * percents, prices, t/ha, mm, °C·d and km come unrounded, names as stored; regions as a list of names in both languages.
  */
 export const cautionValues = {
   'few-site-years': ['variety', 'count'],
   'one-season': ['variety', 'season'],
   'no-trial-in-region': [],
+  'trials-from-elsewhere': ['count', 'regions'],
+  'farm-far': ['site', 'distance', 'count'],
+  'farm-drier': ['difference', 'count'],
+  'farm-wetter': ['difference', 'count'],
+  'farm-cooler': ['difference', 'count'],
+  'farm-warmer': ['difference', 'count'],
+  'farm-lighter-soil': ['count'],
+  'farm-heavier-soil': ['count'],
+  'farm-other-soil': ['count'],
+  'farm-unlike-sites': ['similar', 'count', 'distance'],
+  'usual-yield-outside-trials': ['variety', 'yield', 'from', 'to'],
+  'no-yield-line': ['variety', 'current'],
   'old-seasons': ['variety', 'season'],
   'never-together': ['variety', 'current'],
   'linked-through-check': ['variety', 'current', 'checks'],
@@ -47,7 +60,7 @@ export const cautionValues = {
 } as const satisfies Record<string, readonly string[]>;
 
 /** Placeholders that only a variant of a sentence has. */
-type VariantValue = 'context' | 'count' | 'site' | 'season' | 'cv' | 'limit';
+type VariantValue = 'context' | 'count' | 'site' | 'season' | 'cv' | 'limit' | 'regions';
 
 export type CautionCode = keyof typeof cautionValues;
 
@@ -59,11 +72,11 @@ export const caution = z.object({
   code: cautionCode,
   severity: cautionSeverity,
   /** The placeholders of the sentence: numbers unrounded, names as stored. */
-  values: z.record(z.string(), z.union([z.string(), z.number()])),
+  values: z.record(z.string(), z.union([z.string(), z.number(), z.array(bilingualName)])),
 });
 export type Caution = z.infer<typeof caution>;
 
-type Value = string | number;
+type Value = string | number | BilingualName[];
 
 /** Builds a caution with every value its sentence needs. */
 export function makeCaution<Code extends CautionCode>(

@@ -1,18 +1,19 @@
 import { asc, count, desc, eq } from 'drizzle-orm';
 import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
-import { regions, sites } from '#drizzle/schema/geography.ts';
+import { places, regions, sites } from '#drizzle/schema/geography.ts';
 import { trials } from '#drizzle/schema/trials.ts';
-import type { Crop, Region, Site } from '#shared/catalogue.ts';
+import type { Crop, Place, Region, Site } from '#shared/catalogue.ts';
 import type { Database } from '#server/db.ts';
 import { newestVersions } from '#server/trials/latest-versions.ts';
 
-export type Catalogue = { regions: Region[]; sites: Site[]; crops: Crop[] };
+export type Catalogue = { regions: Region[]; sites: Site[]; places: Place[]; crops: Crop[] };
 
 /** Everything there is to choose from, with how many published trials stand behind each choice. */
 export async function loadCatalogue(db: Database): Promise<Catalogue> {
-  const [regionRows, siteRows, cropRows, traitRows, varietyRows, published] = await Promise.all([
+  const [regionRows, siteRows, placeRows, cropRows, traitRows, varietyRows, published] = await Promise.all([
     db.select().from(regions).orderBy(asc(regions.nameEn)),
     db.select().from(sites).orderBy(asc(sites.name)),
+    db.select().from(places).orderBy(asc(places.name)),
     db.select().from(crops).orderBy(asc(crops.nameEn)),
     db.select().from(traits).orderBy(asc(traits.position), asc(traits.slug)),
     db.select().from(varieties).orderBy(asc(varieties.name)),
@@ -20,6 +21,7 @@ export async function loadCatalogue(db: Database): Promise<Catalogue> {
   ]);
   return {
     sites: siteRows,
+    places: placeRows,
     regions: regionRows.map((region) => ({
       id: region.id,
       slug: region.slug,

@@ -1,6 +1,6 @@
 import { userRegions, users } from '#drizzle/schema/accounts.ts';
 import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
-import { regions, sites } from '#drizzle/schema/geography.ts';
+import { places, regions, sites } from '#drizzle/schema/geography.ts';
 import { priceSheets, seedCosts } from '#drizzle/schema/price-sheets.ts';
 import { hashPassword } from '#server/accounts/password.ts';
 import type { DatabaseOrTransaction } from '#server/db.ts';
@@ -9,7 +9,7 @@ import { demoCrops } from './demo-crops.ts';
 import type { DemoPriceSheet } from './demo-prices.ts';
 import { demoSeed, yieldComponents } from './demo-settings.ts';
 import { openRandomSource } from './random-source.ts';
-import { velmarRegions, velmarSites } from './velmar-geography.ts';
+import { velmarRegions, velmarSites, velmarTowns } from './velmar-geography.ts';
 
 /** Ids of what the demo's trials, sheets and weigh-ups refer to, by slug or name. */
 export type CatalogueIds = {
@@ -49,7 +49,7 @@ export function listDemoIds(): CatalogueIds {
   };
 }
 
-/** Stores regions, sites, crops with traits and varieties, and accounts. */
+/** Stores regions, sites, towns, crops with traits and varieties, and accounts. */
 export async function storeDemoCatalogue(tx: DatabaseOrTransaction, ids: CatalogueIds): Promise<void> {
   await tx
     .insert(regions)
@@ -59,6 +59,13 @@ export async function storeDemoCatalogue(tx: DatabaseOrTransaction, ids: Catalog
       id: pick(ids.sites, site.slug),
       regionId: pick(ids.regions, region),
       ...site,
+    })),
+  );
+  await tx.insert(places).values(
+    velmarTowns.map(({ region, ...town }) => ({
+      id: demoId(`town ${town.name}`),
+      regionId: pick(ids.regions, region),
+      ...town,
     })),
   );
   await storeCrops(tx, ids.crops);

@@ -4,6 +4,7 @@ import { crops, varieties } from '#drizzle/schema/crops.ts';
 import { regions } from '#drizzle/schema/geography.ts';
 import { weighUpCandidates, weighUps } from '#drizzle/schema/weigh-ups.ts';
 import { CodedError } from '#shared/error-codes.ts';
+import { soilTexture } from '#shared/farm.ts';
 import { moneyAssumptions } from '#shared/money.ts';
 import type { WeighUp, WeighUpInput, WeighUpLine } from '#shared/weigh-up.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
@@ -69,6 +70,7 @@ export async function readOwnWeighUp(
   return {
     ...weighUp,
     ...named,
+    farmSoilTexture: soilTexture.nullable().parse(weighUp.farmSoilTexture),
     assumptions: moneyAssumptions.parse(weighUp.assumptions),
     createdAt: weighUp.createdAt.toISOString(),
     updatedAt: weighUp.updatedAt.toISOString(),
@@ -116,11 +118,19 @@ export async function updateWeighUp(
   });
 }
 
-function toColumns({
-  candidateIds: _candidates,
-  ...columns
-}: WeighUpInput): Omit<WeighUpInput, 'candidateIds'> {
-  return columns;
+/** A question is saved whole: what it leaves unsaid about the farm is not known any more. */
+function toColumns({ candidateIds: _candidates, ...columns }: WeighUpInput) {
+  return {
+    ...columns,
+    farmLatitude: columns.farmLatitude ?? null,
+    farmLongitude: columns.farmLongitude ?? null,
+    farmSeasonRainMm: columns.farmSeasonRainMm ?? null,
+    farmHeatSumDegreeDays: columns.farmHeatSumDegreeDays ?? null,
+    farmSoilTexture: columns.farmSoilTexture ?? null,
+    usualYield: columns.usualYield ?? null,
+    trialChoice: columns.trialChoice ?? 'region',
+    includeNeighbours: columns.includeNeighbours ?? false,
+  };
 }
 
 async function insertCandidates(tx: DatabaseOrTransaction, weighUpId: string, ids: string[]): Promise<void> {

@@ -70,6 +70,8 @@ export interface WeighQuestion {
   readonly keepWeakTrials?: boolean;
   /** for a list's best: the number of entries it was picked from; without it all entries of the network */
   readonly listSize?: number;
+  /** lets trials of other regions answer where the region has none; whoever asks so has to say it beside the verdict */
+  readonly acceptsOtherRegions?: boolean;
   /** leaves out the verdicts with the usual variances halved and doubled, two thirds of the work */
   readonly withoutSensitivity?: boolean;
   /** by trait and candidate: a margin wider than the trait's own, such as the break-even gap */
