@@ -4,6 +4,7 @@ import {
   poolErrorVariances,
   type EvidenceNetwork,
   type NetworkCell,
+  type UsualVariances,
 } from '#server/stats/engine.ts';
 import type { Evidence, EvidenceMean, EvidenceTrial } from './evidence.ts';
 import { groupBy } from './group-by.ts';
@@ -43,17 +44,21 @@ export function layOutNetwork(evidence: Evidence, traits: Question['traits']): E
         trait: trait.slug,
         better: trait.direction,
         practicalMargin: trait.practicalMargin ?? 0,
-        usual: usualVariancesOf(trait, evidence.crop.typicalYield),
+        usual: usualVariancesOf(trait, evidence),
         cells: layOutCells(evidence, trait.id, weakVersions),
         cvLimitPercent,
       })),
   };
 }
 
-/** Only yield has values that are usual for the crop; other traits rest on the trials at hand. */
-function usualVariancesOf(trait: Trait, typicalYield: number) {
+/** The organisation's own where they were estimated; else only yield has values that are usual for the crop. */
+function usualVariancesOf(trait: Trait, { usual, crop }: Evidence): UsualVariances | null {
+  const own = usual.find((one) => one.traitId === trait.id);
+  if (own !== undefined) {
+    return { site: own.site, year: own.season, rest: own.rest, source: 'own-trials' };
+  }
   if (trait.slug !== yieldSlug) return null;
-  return { ...defaultUsualVariances(typicalYield), source: 'crop-default' as const };
+  return { ...defaultUsualVariances(crop.typicalYield), source: 'crop-default' };
 }
 
 /** What was said of practices that change the ranking of varieties. */

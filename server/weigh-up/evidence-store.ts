@@ -1,51 +1,65 @@
-import { and, asc, between, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
+import { and, asc, between, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
 import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
 import { sites } from '#drizzle/schema/geography.ts';
 import { entryMeans, trials, versionFits } from '#drizzle/schema/trials.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { Database } from '#server/db.ts';
 import { newestVersions } from '#server/trials/latest-versions.ts';
-import type { Evidence, EvidenceFit, EvidenceMean, EvidenceTrial } from './evidence.ts';
+import { readUsualVariances } from '#server/usual-variances/usual-variances-store.ts';
+import type { Evidence, EvidenceFit, EvidenceGround, EvidenceMean, EvidenceTrial } from './evidence.ts';
 
 export type EvidenceScope = { cropId: string; regionId: string; seasonFrom: number; seasonTo: number };
 
 /**
- * Reads the evidence of a crop in a region and span of seasons: five queries, however many trials there are.
+ * Which trials a question rests on, and what is known of their crop, without the figures.
  * @throws CodedError not-found when there is no such crop
  */
-export async function loadEvidence(db: Database, scope: EvidenceScope): Promise<Evidence> {
-  const [[crop], traitRows, varietyRows, trialRows] = await Promise.all([
-    db.select().from(crops).where(eq(crops.id, scope.cropId)),
-    db
-      .select()
-      .from(traits)
-      .where(eq(traits.cropId, scope.cropId))
-      .orderBy(asc(traits.position), asc(traits.slug)),
+export function loadEvidenceGround(db: Database, scope: EvidenceScope): Promise<EvidenceGround> {
+  const { seasonFrom, seasonTo } = scope;
+  const inScope = and(eq(sites.regionId, scope.regionId), between(trials.season, seasonFrom, seasonTo));
+  return loadGround(db, scope.cropId, inScope);
+}
+
+/**
+ * The ground of all published trials of a crop.
+ * @throws CodedError not-found when there is no such crop
+ */
+export function loadCropGround(db: Database, cropId: string): Promise<EvidenceGround> {
+  return loadGround(db, cropId, undefined);
+}
+
+async function loadGround(db: Database, cropId: string, choose: SQL | undefined): Promise<EvidenceGround> {
+  const [[crop], traitRows, varietyRows, trialRows, usual] = await Promise.all([
+    db.select().from(crops).where(eq(crops.id, cropId)),
+    db.select().from(traits).where(eq(traits.cropId, cropId)).orderBy(asc(traits.position), asc(traits.slug)),
     db
       .select({ id: varieties.id, name: varieties.name, isCheck: varieties.isCheck })
       .from(varieties)
-      .where(eq(varieties.cropId, scope.cropId))
+      .where(eq(varieties.cropId, cropId))
       .orderBy(asc(varieties.name)),
-    selectTrials(db, scope),
+    selectTrials(db, and(eq(trials.cropId, cropId), choose)),
+    readUsualVariances(db, cropId),
   ]);
   if (crop === undefined) throw new CodedError('not-found');
-  const versionIds = trialRows.map((trial) => trial.versionId);
-  const [fits, means] =
-    versionIds.length === 0
-      ? [[], []]
-      : await Promise.all([selectFits(db, versionIds), selectMeans(db, versionIds)]);
   return {
     crop,
     traits: traitRows.map((trait) => ({ ...trait, name: { en: trait.nameEn, fr: trait.nameFr } })),
     varieties: varietyRows,
     trials: trialRows,
-    fits,
-    means,
+    usual,
   };
 }
 
+/** The figures of the trials of a ground: two queries, however many there are. */
+export async function loadFigures(db: Database, ground: EvidenceGround): Promise<Evidence> {
+  const versionIds = ground.trials.map((trial) => trial.versionId);
+  if (versionIds.length === 0) return { ...ground, fits: [], means: [] };
+  const [fits, means] = await Promise.all([selectFits(db, versionIds), selectMeans(db, versionIds)]);
+  return { ...ground, fits, means };
+}
+
 /** Trials whose newest version is a publication: withdrawn ones give no evidence. */
-function selectTrials(db: Database, scope: EvidenceScope): Promise<EvidenceTrial[]> {
+function selectTrials(db: Database, choose: SQL | undefined): Promise<EvidenceTrial[]> {
   const newest = newestVersions(db);
   return db
     .select({
@@ -64,14 +78,7 @@ function selectTrials(db: Database, scope: EvidenceScope): Promise<EvidenceTrial
     .from(trials)
     .innerJoin(sites, eq(sites.id, trials.siteId))
     .innerJoin(newest, eq(newest.trialId, trials.id))
-    .where(
-      and(
-        eq(trials.cropId, scope.cropId),
-        eq(sites.regionId, scope.regionId),
-        between(trials.season, scope.seasonFrom, scope.seasonTo),
-        eq(newest.action, 'publish'),
-      ),
-    )
+    .where(and(choose, eq(newest.action, 'publish')))
     .orderBy(desc(trials.season), asc(sites.name), asc(trials.name));
 }
 
@@ -107,4 +114,21 @@ async function selectMeans(db: Database, versionIds: string[]): Promise<Evidence
     // In one order always: sums come out the same to the last digit.
     .orderBy(entryMeans.versionId, entryMeans.traitId, entryMeans.entryLabel);
   return rows.flatMap(({ varietyId, ...row }) => (varietyId === null ? [] : [{ ...row, varietyId }]));
+}
+
+/** Ids of the varieties with a figure of a trait in one of the ground's trials, in the order of their names. */
+export async function listStanding(
+  db: Database,
+  ground: EvidenceGround,
+  traitSlug: string,
+): Promise<string[]> {
+  const trait = ground.traits.find(({ slug }) => slug === traitSlug);
+  const versionIds = ground.trials.map((trial) => trial.versionId);
+  if (trait === undefined || versionIds.length === 0) return [];
+  const rows = await db
+    .selectDistinct({ varietyId: entryMeans.varietyId })
+    .from(entryMeans)
+    .where(and(eq(entryMeans.traitId, trait.id), inArray(entryMeans.versionId, versionIds)));
+  const standing = new Set(rows.map((row) => row.varietyId));
+  return ground.varieties.flatMap((variety) => (standing.has(variety.id) ? [variety.id] : []));
 }

@@ -40,12 +40,27 @@ export type EvidenceMean = {
 
 export type EvidenceVariety = { id: string; name: string; isCheck: boolean };
 
-/** Everything that a question is answered from. */
-export type Evidence = {
+/** Usual variances of a trait from the organisation's own trials, in the trait's unit squared. */
+export type EvidenceUsual = {
+  id: string;
+  traitId: string;
+  site: number;
+  season: number;
+  rest: number;
+  estimatedAt: Date;
+};
+
+/** Which evidence a question rests on: small, and read afresh each time, to know whether an answer still holds. */
+export type EvidenceGround = {
   crop: { id: string; cvLimitPercent: number; typicalYield: number };
   traits: Trait[];
   varieties: EvidenceVariety[];
   trials: EvidenceTrial[];
+  usual: EvidenceUsual[];
+};
+
+/** Everything that a question is answered from. */
+export type Evidence = EvidenceGround & {
   fits: EvidenceFit[];
   means: EvidenceMean[];
 };

@@ -1,12 +1,20 @@
 import type { MoneyAssumptions } from '#shared/money.ts';
 
-/** What is asked of the evidence. */
+/** What is asked of the evidence. The whole of it is part of an answer's key, so it holds nothing that an answer does not hang on. */
 export type Question = {
   currentVarietyId: string;
   /** In the order in which they are answered. */
   candidateIds: readonly string[];
   /** all: every trait of the crop; yield: a list of candidates needs no more, and is asked for often */
   traits: 'all' | 'yield';
+  /** What is old is old from here. */
+  askedInSeason: number;
+  /** By candidate, yield gaps that do not matter although they are wider than the trait's own margin, t/ha. */
+  margins: Readonly<Record<string, number>>;
+};
+
+/** What an answer is priced with. */
+export type MoneyGround = {
   /** null: no price sheet and nothing entered, so no money verdict */
   money: MoneyAssumptions | null;
   /** The price sheet in force: what the assumptions are held against. */

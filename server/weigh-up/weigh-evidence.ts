@@ -1,5 +1,5 @@
 import { makeCaution, type Caution } from '#shared/caution.ts';
-import { weighMoney, type GapDistribution } from '#shared/money.ts';
+import type { GapDistribution } from '#shared/money.ts';
 import type {
   CandidateResult,
   GapEstimate,
@@ -8,6 +8,7 @@ import type {
   WeighUpResult,
 } from '#shared/weigh-up.ts';
 import {
+  weighCandidates,
   type CandidateGap,
   type CandidateWeighing,
   type EvidenceCaution,
@@ -16,25 +17,26 @@ import {
 import { engineVersion } from '#server/trials/trial-fit.ts';
 import { layOutNetwork, yieldSlug } from './evidence-network.ts';
 import type { Evidence } from './evidence.ts';
-import { cautionMoney } from './money-cautions.ts';
 import { compareRatings } from './ordinal-medians.ts';
 import type { Question } from './question.ts';
-import { weighOnce } from './weighing-memory.ts';
 
 /** Degrees of freedom beyond this are as good as infinite, which JSON cannot say. */
 const mostDf = 1e6;
 
-/** Answers a question from the evidence: pure, so that the same versions and assumptions give the same answer. */
+/**
+ * Answers a question from the evidence, all but its money (priceAnswer). Pure apart from the clock: the same versions
+ * give the same answer.
+ */
 export function weighEvidence(evidence: Evidence, question: Question): WeighUpResult {
-  const weighed = weighOnce(layOutNetwork(evidence, question.traits), {
+  const weighed = weighCandidates(layOutNetwork(evidence, question.traits), {
     current: question.currentVarietyId,
     candidates: question.candidateIds,
     kind: question.candidateIds.length === 1 ? 'pair' : 'named',
-    askedInSeason: question.askedAt.getUTCFullYear(),
-    margins: { [yieldSlug]: breakEvenMargins(question) },
+    askedInSeason: question.askedInSeason,
+    margins: { [yieldSlug]: question.margins },
   });
   const names = new Map(evidence.varieties.map((variety) => [variety.id, variety.name]));
-  const ground = { computedAt: question.askedAt.toISOString(), engineVersion };
+  const ground = { computedAt: new Date().toISOString(), engineVersion };
   const yields = weighed.traits.find((trait) => trait.trait === yieldSlug);
   if (weighed.answer === 'no-trials' || yields === undefined) {
     return {
@@ -47,6 +49,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
       leftOut: [],
       components: null,
       usualVariancesFrom: null,
+      usualVariancesAt: null,
       candidates: [],
       cautions: [...weighed.cautions.map(toCaution), makeCaution('local-advice', 'note', {})],
     };
@@ -59,7 +62,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     seasons: [...yields.seasons],
     ...listTrials(evidence, yields),
     components: toDeviations(yields),
-    usualVariancesFrom: yields.fit?.usual ? 'crop-default' : null,
+    ...tellUsual(evidence, yields),
     candidates: warnOfLeader(
       yields.candidates.map((weighing) =>
         describeCandidate(evidence, question, names, weighed.traits, weighing),
@@ -69,21 +72,9 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     cautions: [
       ...yields.cautions.map(toCaution),
       ...cautionOtherTraits(weighed.traits),
-      ...cautionMoney(question, names),
       makeCaution('local-advice', 'note', {}),
     ],
   };
-}
-
-/** By candidate, the size of its break-even gap: a gap smaller than that does not matter either. */
-function breakEvenMargins({ candidateIds, currentVarietyId, money }: Question): Record<string, number> {
-  if (money === null) return {};
-  return Object.fromEntries(
-    candidateIds.flatMap((id) => {
-      const result = weighMoney(id, currentVarietyId, 0, null, money);
-      return result === null ? [] : [[id, Math.abs(result.breakEvenGap)] as const];
-    }),
-  );
 }
 
 function describeCandidate(
@@ -95,11 +86,10 @@ function describeCandidate(
 ): CandidateResult {
   const { candidate: varietyId, gap } = weighing;
   const varietyName = names.get(varietyId) ?? varietyId;
-  const { money, currentVarietyId } = question;
+  const { currentVarietyId } = question;
   // What the evidence is too thin to judge, it is too thin to price.
   const isPriced = gap !== null && weighing.verdict !== 'thin';
   const moneyGap = isPriced ? chooseMoneyGap(gap, question.candidateIds.length > 1) : null;
-  const isCosted = money?.seedCosts[varietyId] !== undefined;
   return {
     varietyId,
     varietyName,
@@ -108,11 +98,9 @@ function describeCandidate(
     siteYears: weighing.siteYears,
     sharedSiteYears: weighing.sharedSiteYears,
     moneyGap,
-    money:
-      money === null || moneyGap === null
-        ? null
-        : weighMoney(varietyId, currentVarietyId, moneyGap.estimate, moneyGap, money),
+    money: null,
     siteYearsToSettle: weighing.siteYearsToSettle,
+    sensitivity: weighing.sensitivity,
     trials: weighing.trials
       .map(({ trial, siteName, season, trialMean, estimate, interval }) => ({
         trialId: trial,
@@ -124,10 +112,7 @@ function describeCandidate(
       }))
       .sort((a, b) => a.trialMean - b.trialMean),
     traits: describeTraits(evidence, traits, varietyId, currentVarietyId),
-    cautions: [
-      ...weighing.cautions.map(toCaution),
-      ...(isCosted ? [] : [makeCaution('no-seed-cost', 'warning', { variety: varietyName })]),
-    ],
+    cautions: weighing.cautions.map(toCaution),
   };
 }
 
@@ -223,6 +208,19 @@ function toDeviations({ fit }: TraitWeighing): WeighUpResult['components'] {
   if (fit === null) return null;
   const { site, year, rest } = fit.components;
   return { site: Math.sqrt(site), season: Math.sqrt(year), rest: Math.sqrt(rest) };
+}
+
+/** Where the usual variances of yield came from, and when they were estimated. */
+function tellUsual(
+  { usual, traits }: Evidence,
+  { fit }: TraitWeighing,
+): Pick<WeighUpResult, 'usualVariancesFrom' | 'usualVariancesAt'> {
+  if (!fit?.usual) return { usualVariancesFrom: null, usualVariancesAt: null };
+  const yieldId = traits.find((trait) => trait.slug === yieldSlug)?.id;
+  const own = usual.find((one) => one.traitId === yieldId);
+  return own === undefined
+    ? { usualVariancesFrom: 'crop-default', usualVariancesAt: null }
+    : { usualVariancesFrom: 'own-trials', usualVariancesAt: own.estimatedAt.toISOString() };
 }
 
 const toCaution = ({ code, severity, numbers }: EvidenceCaution): Caution => ({

@@ -1,6 +1,5 @@
 import { expect, test } from 'vitest';
 import { poolErrorVariances } from '#server/stats/engine.ts';
-import { weighOnce } from '#server/weigh-up/weighing-memory.ts';
 import { layOutNetwork } from '#server/weigh-up/evidence-network.ts';
 import type { Evidence, EvidenceTrial } from '#server/weigh-up/evidence.ts';
 
@@ -24,6 +23,10 @@ const trial = (n: number, management: EvidenceTrial['management'] = {}): Evidenc
   name: '',
   siteId: `site ${n}`,
   siteName: `Site ${n}`,
+  place: { latitude: 50, longitude: -100, seasonRainMm: 300, heatSumDegreeDays: 1500, soilTexture: 'loam' },
+  regionId: 'north',
+  regionName: { en: 'North', fr: 'Nord' },
+  inRegion: true,
   season: 2024,
   kind: 'plots',
   isStrips: n === 2,
@@ -63,6 +66,7 @@ function makeEvidence(): Evidence {
     traits: [trait('yield'), trait('protein'), trait('lodging', 'ordinal')],
     varieties: ['a', 'b'].map((id) => ({ id, name: id.toUpperCase(), isCheck: id === 'a' })),
     trials: errors.map((_, n) => trial(n)),
+    usual: [],
     fits,
     means,
   };
@@ -77,12 +81,25 @@ test('numeric traits go to the engine, ratings do not, and a list asks for yield
   expect(layOutNetwork(evidence, 'yield').traits.map((one) => one.trait)).toEqual(['yield']);
 });
 
-test('only yield has usual variances: 3, 2.5 and 5 % of the crop’s typical yield (domain.md)', () => {
+test('without own ones only yield has usual variances: 3, 2.5 and 5 % of the crop’s typical yield (domain.md)', () => {
   const [yields, protein] = layOutNetwork(makeEvidence(), 'all').traits;
   expect(yields?.usual?.site).toBeCloseTo(0.15 ** 2, 12);
   expect(yields?.usual?.year).toBeCloseTo(0.125 ** 2, 12);
   expect(yields?.usual?.rest).toBeCloseTo(0.25 ** 2, 12);
   expect(protein?.usual).toBeNull();
+});
+
+test('usual variances from the organisation’s own trials come before the defaults, for every trait', () => {
+  const own = { site: 0.01, season: 0.02, rest: 0.03 };
+  const usual = ['yield', 'protein'].map((slug) => ({
+    ...own,
+    id: slug,
+    traitId: `trait ${slug}`,
+    estimatedAt: new Date(0),
+  }));
+  const { traits } = layOutNetwork({ ...makeEvidence(), usual }, 'all');
+  for (const one of traits)
+    expect(one.usual).toEqual({ site: 0.01, year: 0.02, rest: 0.03, source: 'own-trials' });
 });
 
 test('the error of each trial is pulled towards what the trials have in common', () => {
@@ -139,17 +156,4 @@ test('strips are told from small plots, and management only where it was said', 
   const network = layOutNetwork({ ...evidence, trials }, 'all');
   expect(network.trials.map((one) => one.plotSize)).toEqual(['small-plots', 'small-plots', 'field-strips']);
   expect(network.trials.map((one) => one.management)).toEqual([{ fungicide: 'true' }, {}, {}]);
-});
-
-test('the same question of the same evidence is weighed once; a published correction asks anew', () => {
-  const evidence = makeEvidence();
-  const question = { current: 'a', candidates: ['b'], kind: 'pair', askedInSeason: 2026 } as const;
-  const first = weighOnce(layOutNetwork(evidence, 'yield'), question);
-  expect(weighOnce(layOutNetwork(makeEvidence(), 'yield'), question)).toBe(first);
-  const means = evidence.means.map((mean, i) => (i === 1 ? { ...mean, mean: mean.mean + 0.2 } : mean));
-  const corrected = weighOnce(layOutNetwork({ ...evidence, means }, 'yield'), question);
-  expect(corrected).not.toBe(first);
-  expect(corrected.traits[0]?.candidates[0]?.gap?.estimate).toBeGreaterThan(
-    first.traits[0]?.candidates[0]?.gap?.estimate ?? NaN,
-  );
 });
