@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { bilingualName } from './catalogue.ts';
 import { caution } from './caution.ts';
 import { defineContract } from './contract.ts';
+import { farmAnswer, farmInput, farmQuery, farmRange, hasPlaceForChoice, isWholePlace } from './farm.ts';
 import { gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
 import { interval, verdictCode } from './verdict.ts';
 
@@ -31,6 +32,8 @@ export const trialGap = z.object({
   trialMean: z.number(),
   estimate: z.number(),
   interval,
+  /** False for a trial that stood in another region than the question's. */
+  inRegion: z.boolean().optional(),
 });
 export type TrialGap = z.infer<typeof trialGap>;
 
@@ -45,6 +48,38 @@ export const traitVerdict = z.object({
   medianCurrent: z.number().nullable(),
 });
 export type TraitVerdict = z.infer<typeof traitVerdict>;
+
+/** The gap as a line over the trials' mean yields, t/ha: at the centre, gap and slope are uncorrelated. */
+export const gapLine = z.object({
+  trials: z.number().int(),
+  centre: z.number(),
+  gapAtCentre: z.number(),
+  gapSe: z.number(),
+  /** t/ha of gap per t/ha of mean yield */
+  slope: z.number(),
+  slopeSe: z.number(),
+  df: z.number(),
+  /** p of "the gap is the same on low- and high-yielding fields". */
+  slopeP: z.number(),
+  /** variance of the true gaps about the line */
+  tau2: z.number(),
+  /** The span of the trials' mean yields. */
+  from: z.number(),
+  to: z.number(),
+});
+export type GapLine = z.infer<typeof gapLine>;
+
+/** The gap read off that line over the trials' mean yields, at the yield that the grower usually gets; t/ha. */
+export const gapAtYield = z.object({
+  usualYield: z.number(),
+  estimate: z.number(),
+  se: z.number(),
+  df: z.number(),
+  interval,
+  /** False where the usual yield lies outside the span of the trials' mean yields: then the line is not to be read there. */
+  isCarried: z.boolean(),
+});
+export type GapAtYield = z.infer<typeof gapAtYield>;
 
 export const candidateResult = z.object({
   varietyId: z.uuid(),
@@ -64,6 +99,10 @@ export const candidateResult = z.object({
   siteYearsToSettle: z.number().int().nullable(),
   /** Verdict with the usual variances halved and doubled; null without usual variances, and in older copies. */
   sensitivity: z.object({ half: verdictCode.nullable(), double: verdictCode.nullable() }).nullish(),
+  /** null where too few trials held both, or all of them yielded alike. */
+  gapLine: gapLine.nullish(),
+  /** null where no usual yield was given or no line could be fitted; absent in answers made before it was asked. */
+  gapAtUsualYield: gapAtYield.nullish(),
   trials: z.array(trialGap),
   traits: z.array(traitVerdict),
   cautions: z.array(caution),
@@ -79,6 +118,9 @@ export const usedTrial = z.object({
   sha256: z.string(),
   meanYield: z.number().nullable(),
   cvPercent: z.number().nullable(),
+  /** False for a trial that stood in another region than the question's, with that region's name. */
+  inRegion: z.boolean().optional(),
+  regionName: bilingualName.optional(),
 });
 export type UsedTrial = z.infer<typeof usedTrial>;
 
@@ -103,6 +145,8 @@ export const weighUpResult = z.object({
   usualVariancesFrom: z.enum(['crop-default', 'own-trials']).nullable(),
   /** When the organisation's own were estimated; a copy frozen before this was told has none. */
   usualVariancesAt: z.iso.datetime().nullish(),
+  /** How the farm lies to the sites of the trials used; null where nobody has said where the farm is. */
+  farmRange: farmRange.nullish(),
   candidates: z.array(candidateResult),
   cautions: z.array(caution),
 });
@@ -124,7 +168,10 @@ export const weighUpInput = z
     currentVarietyId: z.uuid(),
     candidateIds: z.array(z.uuid()).min(1).max(8),
     assumptions: moneyAssumptions,
+    ...farmInput,
   })
+  .refine(isWholePlace, { path: ['farmLongitude'], message: 'half-a-place' })
+  .refine(hasPlaceForChoice, { path: ['trialChoice'], message: 'nearest-needs-farm' })
   .refine((input) => input.seasonFrom <= input.seasonTo, { path: ['seasonTo'], message: 'season-order' })
   .refine((input) => new Set(input.candidateIds).size === input.candidateIds.length, {
     path: ['candidateIds'],
@@ -153,6 +200,7 @@ export const weighUp = z.object({
   currentVarietyName: z.string(),
   candidateIds: z.array(z.uuid()),
   assumptions: moneyAssumptions,
+  ...farmAnswer,
   createdAt: z.iso.datetime(),
   updatedAt: z.iso.datetime(),
 });
@@ -170,14 +218,18 @@ export const weighUpLine = z.object({
 });
 export type WeighUpLine = z.infer<typeof weighUpLine>;
 
-export const candidateQuery = z.object({
-  cropId: z.uuid(),
-  regionId: z.uuid(),
-  currentVarietyId: z.uuid(),
-  ...seasonSpan,
-});
+export const candidateQuery = z
+  .object({
+    cropId: z.uuid(),
+    regionId: z.uuid(),
+    currentVarietyId: z.uuid(),
+    ...seasonSpan,
+    ...farmQuery,
+  })
+  .refine(isWholePlace, { path: ['farmLongitude'], message: 'half-a-place' })
+  .refine(hasPlaceForChoice, { path: ['trialChoice'], message: 'nearest-needs-farm' });
 
-/** All varieties of the crop with trials in the region, each weighed against the current one, largest gap first. */
+/** All varieties of the crop with trials in the region (or those chosen instead), each weighed against the current one, largest gap first. */
 export const listCandidates = defineContract({
   method: 'GET',
   path: '/api/candidates',
