@@ -126,7 +126,12 @@ function analyseTable(table: Table, command: TrialCommand): unknown {
       },
     ),
   );
-  return command.withResiduals ? { ...result, residuals } : result;
+  const { largestStudentised: largest } = result.diagnostics;
+  const diagnostics = {
+    ...result.diagnostics,
+    largestStudentised: largest && { ...largest, plot: asWritten(largest.plot) },
+  };
+  return { ...result, diagnostics, ...(command.withResiduals ? { residuals } : {}) };
 }
 
 function readPlotRows(table: Table, command: TrialCommand): TrialPlot[] {
@@ -173,6 +178,11 @@ function readPlotRows(table: Table, command: TrialCommand): TrialPlot[] {
       excluded: cell(row, place.excluded),
     };
   });
+}
+
+/** A plot's number as a number, any other name as text: as a reader of the file would take it. */
+function asWritten(plot: string): string | number {
+  return /^(0|[1-9]\d{0,14})$/.test(plot) ? Number(plot) : plot;
 }
 
 /** What a plot is compared as; a factorial's combination takes the place of the entry. */

@@ -112,22 +112,38 @@ interface AdjustedP {
 
 /** Adjusts over all tested gaps of the family; NaN where a gap is not tested. */
 function adjustPairs(pairs: Pairs, family: MeanFamily): AdjustedP {
-  const tested: number[] = [];
-  for (let g = 0; g < pairs.p.length; g++) if (!Number.isNaN(pairs.p[g]!)) tested.push(g);
-  const spread = (values: Float64Array) => {
-    const out = new Float64Array(pairs.p.length).fill(Number.NaN);
-    tested.forEach((g, i) => (out[g] = values[i]!));
-    return out;
+  const count = pairs.p.length;
+  const tested = new Int32Array(count);
+  let tests = 0;
+  for (let g = 0; g < count; g++) if (!Number.isNaN(pairs.p[g]!)) tested[tests++] = g;
+  const isWhole = tests === count;
+  const pick = (values: Float64Array) => (isWhole ? values : gather(values, tested.subarray(0, tests)));
+  const spread = (values: Float64Array) => (isWhole ? values : scatter(values, tested, count));
+  const ps = pick(pairs.p);
+  const ts = pick(pairs.t);
+  return {
+    tukey: spread(adjustTukey(ts, pick(pairs.df), family.labels.length, pairs.hasSharedDf)),
+    holm: spread(holmAdjust(ps)),
+    bonferroni: spread(bonferroniAdjust(ps)),
   };
-  const ps = Float64Array.from(tested, (g) => pairs.p[g]!);
-  const ts = Float64Array.from(tested, (g) => pairs.t[g]!);
-  const members = family.labels.length;
-  let tukey: Float64Array = new Float64Array(0);
-  if (tested.length > 0)
-    tukey = pairs.hasSharedDf
-      ? tukeyAdjust(ts, members, pairs.df[tested[0]!]!)
-      : ts.map((t, i) => studentisedRangeUpper(Math.SQRT2 * Math.abs(t), members, pairs.df[tested[i]!]!));
-  return { tukey: spread(tukey), holm: spread(holmAdjust(ps)), bonferroni: spread(bonferroniAdjust(ps)) };
+}
+
+function adjustTukey(ts: Float64Array, dfs: Float64Array, members: number, isShared: boolean): Float64Array {
+  if (ts.length === 0) return ts;
+  if (isShared) return tukeyAdjust(ts, members, dfs[0]!);
+  return ts.map((t, i) => studentisedRangeUpper(Math.SQRT2 * Math.abs(t), members, dfs[i]!));
+}
+
+function gather(values: Float64Array, places: Int32Array): Float64Array {
+  const out = new Float64Array(places.length);
+  for (let i = 0; i < out.length; i++) out[i] = values[places[i]!]!;
+  return out;
+}
+
+function scatter(values: Float64Array, places: Int32Array, count: number): Float64Array {
+  const out = new Float64Array(count).fill(Number.NaN);
+  for (let i = 0; i < values.length; i++) out[places[i]!] = values[i]!;
+  return out;
 }
 
 function describeGap(

@@ -189,13 +189,13 @@ function sumProduct(theta: Float64Array, values: Float64Array): number {
 
 /** Ratios of every component to σ² from which the search may start: few plots can make two hills. */
 const startRatios = [1, 0.1, 10, 100, 1e3, 1e5];
-/** With more levels than this the criterion has one hill in practice, and the first ratio serves. */
-const manyLevels = 120;
+/** With more residual df than this the criterion has one hill in practice, and the first ratio serves. */
+const manyDf = 40;
 
 /** The best of a few points with equal ratios, σ² being the best for each. */
 function startPoint(model: AbsorbedModel): RestrictedPoint {
   const terms = model.starts.length - 1;
-  const ratios = model.zmy.length > manyLevels ? startRatios.slice(0, 1) : startRatios;
+  const ratios = model.residualDf > manyDf ? startRatios.slice(0, 1) : startRatios;
   let best: RestrictedPoint | null = null;
   for (const ratio of ratios) {
     const unscaled = evaluatePoint(model, new Float64Array(terms + 1).fill(ratio, 0, terms).fill(1, terms));
