@@ -109,6 +109,25 @@ describe('shrunken gaps', () => {
     expect(ratios[0]).toBeCloseTo((between - noise) / between, 6);
   });
 
+  it('have the entry variance that the penalty asks for', () => {
+    const usual = { site: 0.05, year: 0.04, rest: 0.1 };
+    const usualEntry = 0.3;
+    const { gaps, means } = combine(cells, { usual, usualEntry });
+    const effects = means.map(({ estimate }) => estimate);
+    const centre = effects.reduce((sum, x) => sum + x, 0) / effects.length;
+    const squares = effects.reduce((sum, x) => sum + (x - centre) ** 2, 0);
+    const noise = gaps[0]!.modelSe ** 2 / 2;
+    const ratio = gaps[0]!.shrunken / gaps[0]!.estimate;
+    const theta = (ratio * noise) / (1 - ratio);
+    // slope in θ of −½[(k−1) log(θ + s²) + SS/(θ + s²)] − (3/2)(log θ + u/θ)
+    const slope =
+      (-0.5 * (effects.length - 1)) / (theta + noise) +
+      (0.5 * squares) / (theta + noise) ** 2 -
+      1.5 / theta +
+      (1.5 * usualEntry) / theta ** 2;
+    expect(theta * slope).toBeCloseTo(0, 6);
+  });
+
   it('never point the other way and never outgrow the gap in a complete table', () => {
     for (const { shrunken, estimate } of combine(cells, { usual: { site: 0.05, year: 0.04, rest: 0.1 } })
       .gaps) {

@@ -6,6 +6,8 @@ import { gradeEvidence } from '#server/stats/network/evidence-tier.ts';
 import { weighCandidates } from '#server/stats/network/weigh-candidates.ts';
 import type { EvidenceNetwork, LevelInterval, WeighQuestion } from '#server/stats/network/weigh-question.ts';
 import type { CandidateWeighing, TraitWeighing } from '#server/stats/network/weigh-result.ts';
+import { countSiteYearsToSettle } from '#server/stats/network/site-years-to-settle.ts';
+import { dunnettQuantile } from '#server/stats/distributions/dunnett.ts';
 import { tQuantile } from '#server/stats/distributions/student-t.ts';
 import {
   askAbout,
@@ -53,7 +55,8 @@ describe('tiers', () => {
   const count = { siteYears: 12, environments: 12, sites: 4, seasons: 3, entries: 8, hasUsual: true };
   it.each([
     ['data-alone', {}],
-    ['supported', { environments: 8 }],
+    ['data-alone', { environments: 10, sites: 2, seasons: 2, entries: 5 }],
+    ['supported', { environments: 9 }],
     ['supported', { entries: 4 }],
     ['one-season', { seasons: 1 }],
     ['few', { seasons: 1, hasUsual: false }],
@@ -143,6 +146,15 @@ describe('weighing several', () => {
     }
   });
 
+  it('is Dunnett’s width at correlation one half, where all stood everywhere', () => {
+    const half = names.map((_, i) => names.map((__, j) => (i === j ? 1 : 0.5)));
+    for (const { gap } of named.candidates) {
+      const width = dunnettQuantile({ alpha: 0.05, df: gap!.df, correlation: half }) * gap!.se;
+      expect(gap!.region.high - gap!.estimate).toBeCloseTo(width, 7);
+      expect(gap!.estimate - gap!.region.low).toBeCloseTo(width, 7);
+    }
+  });
+
   it('has interval and adjusted p agree on 0', () => {
     for (const { gap } of named.candidates)
       expect(gap!.region.low > 0 || gap!.region.high < 0).toBe(gap!.pAdjusted < 0.05);
@@ -228,6 +240,34 @@ describe('trials left out', () => {
 });
 
 describe('site-years to settle', () => {
+  // known variances, no site or season part: (8 + m)/8 ≥ ((1.95996 + 0.84162)·0.2/0.3)² = 3.488, so m = 20
+  const question = {
+    estimate: 0.3,
+    se: 0.2,
+    df: 1e9,
+    level: 0.95,
+    components: { site: 1e-9, year: 1e-9, rest: 0.08 },
+    cellVariance: 0.08,
+    entries: 6,
+    sites: 4,
+    seasons: 2,
+    environments: 8,
+    penalty: 1e12,
+  };
+
+  it('are the first number with power .8', () => {
+    expect(countSiteYearsToSettle(question)).toBe(20);
+    expect(countSiteYearsToSettle({ ...question, estimate: -0.3 })).toBe(20);
+  });
+
+  it('are more than forty for a small gap, or for one that the same sites cannot settle', () => {
+    expect(countSiteYearsToSettle({ ...question, estimate: 0.1 })).toBe(41);
+    expect(countSiteYearsToSettle({ ...question, estimate: 0 })).toBe(41);
+    expect(countSiteYearsToSettle({ ...question, components: { site: 0.3, year: 1e-9, rest: 0.08 } })).toBe(
+      41,
+    );
+  });
+
   it('are none where it is settled, fewer the larger the gap', () => {
     expect(weighOne(network, 'Best').siteYearsToSettle).toBeNull();
     const further = [0.15, 0.3, 0.45].map((gap) => {
