@@ -3,6 +3,9 @@ import { sayFrequency } from '#shared/natural-frequency.ts';
 import type { TrialAnalysisView } from '#shared/trial.ts';
 import { useFormat } from './use-format.ts';
 
+/** What the means belong to: the entries, or in a split plot its sub factor. */
+const entryTerms: ReadonlySet<string> = new Set(['entry', 'sub']);
+
 type AnalysisHeadlineProps = { analysis: TrialAnalysisView; unit: string; decimals: number };
 
 /** What the trial can and cannot say, in sentences, before any figure. */
@@ -52,7 +55,7 @@ function PairCount({ analysis }: { analysis: TrialAnalysisView }) {
 function IfAllEqual({ analysis }: { analysis: TrialAnalysisView }) {
   const { t } = useTranslation('analysis');
   const format = useFormat();
-  const p = analysis.anova.find((row) => row.term === 'entry')?.p ?? null;
+  const p = analysis.anova.find((row) => entryTerms.has(row.term))?.p ?? null;
   if (p === null) return null;
   const { key, count } = sayFrequency(p);
   return t(`headline.ifEqual.${key}`, {

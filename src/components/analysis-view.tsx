@@ -66,7 +66,7 @@ function AnalysisDrawings({
       {means.length > 0 && (
         <div className="min-w-0">
           <MeansChart
-            title={t('meansTitle')}
+            title={analysis.kind === 'summary' ? t('publishedMeansTitle') : t('meansTitle')}
             means={means}
             unit={unit}
             decimals={decimals}

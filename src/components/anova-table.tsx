@@ -4,14 +4,13 @@ import { decimalsOfSquares } from './analysis-decimals.ts';
 import { DataTable, type Column } from './data-table.tsx';
 import { useFormat } from './use-format.ts';
 
-/** Names a term of the model: ours by their words, a factor by its own name. */
+/** Names a term of the model: ours by their words, a factor by its own name, an interaction by its parts. */
 export function useTermName(): (term: string) => string {
   const { t, i18n } = useTranslation('analysis');
-  return (term) =>
+  const namePart = (part: string) =>
     // The key was just found to exist; its type cannot be known here.
-    i18n.exists(`analysis:anova.terms.${term}`, { nsSeparator: ':' })
-      ? t(`anova.terms.${term}` as 'anova.terms.entry')
-      : term.replaceAll(':', ' × ');
+    i18n.exists(`analysis:anova.terms.${part}`) ? t(`anova.terms.${part}` as 'anova.terms.entry') : part;
+  return (term) => term.split(':').map(namePart).join(' × ');
 }
 
 /** The analysis of variance; figures that a term does not have stay empty, and a p is never 0. */
@@ -60,7 +59,7 @@ export function AnovaTable({ analysis, traitName }: { analysis: TrialAnalysisVie
         rowKey={(row) => row.term}
         whenNarrow="scroll"
       />
-      {analysis.components.length > 0 && <ComponentList analysis={analysis} />}
+      {analysis.components.length > 1 && <ComponentList analysis={analysis} />}
     </section>
   );
 }

@@ -24,12 +24,14 @@ export function readAnalysisChoice(search: URLSearchParams, traitSlugs: readonly
 type TrialChoicesProps = {
   traits: readonly Trait[];
   choice: AnalysisQuery;
+  /** A published summary gives one LSD and no choice of comparison. */
+  hasComparison: boolean;
   /** In force: that of the address, or the trial's own. */
   alpha: number;
 };
 
 /** What to look at: one trait, at one level, by one comparison. */
-export function TrialChoices({ traits, choice, alpha }: TrialChoicesProps) {
+export function TrialChoices({ traits, choice, hasComparison, alpha }: TrialChoicesProps) {
   const { t } = useTranslation(['trials', 'analysis']);
   const format = useFormat();
   const language = useLanguage();
@@ -60,16 +62,18 @@ export function TrialChoices({ traits, choice, alpha }: TrialChoicesProps) {
               }))}
             />
           </Field>
-          <Field label={t('trials:page.comparison')}>
-            <Select
-              value={choice.comparison}
-              onChange={(event) => patch({ comparison: event.target.value })}
-              options={methods.map((method) => ({
-                value: method,
-                label: t(`analysis:comparison.${method}`),
-              }))}
-            />
-          </Field>
+          {hasComparison && (
+            <Field label={t('trials:page.comparison')}>
+              <Select
+                value={choice.comparison}
+                onChange={(event) => patch({ comparison: event.target.value })}
+                options={methods.map((method) => ({
+                  value: method,
+                  label: t(`analysis:comparison.${method}`),
+                }))}
+              />
+            </Field>
+          )}
         </>
       )}
     </form>

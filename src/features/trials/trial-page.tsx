@@ -118,6 +118,7 @@ function TrialReading({ trial, crop, isAnalysis }: TrialReadingProps) {
     <TrialChoices
       traits={traits}
       choice={choice}
+      hasComparison={trial.kind === 'plots'}
       alpha={choice.alpha ?? analysis.data?.alpha ?? trial.alpha}
     />
   );
