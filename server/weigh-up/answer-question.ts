@@ -1,29 +1,39 @@
 import type { Trait } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
+import { codeMark, compute } from '#server/computing/compute.ts';
 import type { Database } from '#server/db.ts';
 import { keepAnswer, keyAnswer, recallAnswer } from './answer-store.ts';
 import { yieldSlug } from './evidence-network.ts';
-import { listStanding, loadEvidenceGround, loadFigures, type EvidenceScope } from './evidence-store.ts';
+import { listStanding, loadEvidenceGround, loadFigures } from './evidence-store.ts';
 import type { EvidenceGround } from './evidence.ts';
+import { readFarm } from './farm-place.ts';
 import { loadMoneyDefaults } from './money-defaults.ts';
+import { placeAnswer } from './place-answer.ts';
 import { breakEvenMargins, priceAnswer } from './price-answer.ts';
 import type { MoneyGround, Question } from './question.ts';
-import { weighEvidence } from './weigh-evidence.ts';
+import { asksForOtherRegions, type EvidenceScope } from './trial-choice.ts';
 import { checkVarietiesOfCrop } from './weigh-up-store.ts';
 
 /** The answer to a weigh-up from the trials as they are published now, with the traits it speaks of. */
 export async function answerWeighUp(
   db: Database,
   weighUp: WeighUp,
+  signal?: AbortSignal,
 ): Promise<{ result: WeighUpResult; traits: Trait[] }> {
   const [ground, priceSheet] = await Promise.all([
     loadEvidenceGround(db, weighUp),
     loadMoneyDefaults(db, weighUp.cropId, weighUp.regionId),
   ]);
   const { currentVarietyId, candidateIds, assumptions: money } = weighUp;
-  const asked = { currentVarietyId, candidateIds, traits: 'all' } as const;
-  const result = await answerPriced(db, ground, asked, { money, priceSheet, askedAt: new Date() });
+  const acceptsOtherRegions = asksForOtherRegions(weighUp);
+  const asked = { currentVarietyId, candidateIds, traits: 'all', acceptsOtherRegions } as const;
+  const priced = await answerPriced(db, ground, asked, { money, priceSheet, askedAt: new Date() }, signal);
+  const result = placeAnswer(priced, ground, {
+    farm: readFarm(weighUp),
+    usualYield: weighUp.usualYield,
+    currentName: weighUp.currentVarietyName,
+  });
   return { result, traits: ground.traits };
 }
 
@@ -35,6 +45,7 @@ export async function answerWeighUp(
 export async function rankCandidates(
   db: Database,
   scope: EvidenceScope & { currentVarietyId: string },
+  signal?: AbortSignal,
 ): Promise<{ result: WeighUpResult; assumptions: MoneyAssumptions | null }> {
   const { currentVarietyId } = scope;
   const [ground, priceSheet] = await Promise.all([
@@ -47,9 +58,12 @@ export async function rankCandidates(
     currentVarietyId,
     candidateIds: standing.filter((id) => id !== currentVarietyId),
     traits: 'yield',
+    acceptsOtherRegions: asksForOtherRegions(scope),
   } as const;
   const money = { money: priceSheet, priceSheet, askedAt: new Date() };
-  const result = await answerPriced(db, ground, asked, money);
+  const priced = await answerPriced(db, ground, asked, money, signal);
+  // The list is not read at the grower's usual yield: that is for the few that are kept.
+  const result = placeAnswer(priced, ground, { farm: readFarm(scope), usualYield: null, currentName: '' });
   const candidates = result.candidates.toSorted(
     (a, b) => (b.gap?.estimate ?? -Infinity) - (a.gap?.estimate ?? -Infinity),
   );
@@ -62,24 +76,35 @@ async function answerPriced(
   ground: EvidenceGround,
   asked: Omit<Question, 'askedInSeason' | 'margins'>,
   money: MoneyGround,
+  signal?: AbortSignal,
 ): Promise<WeighUpResult> {
   const { currentVarietyId: id, candidateIds } = asked;
   const ownMargin = ground.traits.find((trait) => trait.slug === yieldSlug)?.practicalMargin ?? 0;
-  const answer = await answerOnce(db, ground, {
-    ...asked,
-    askedInSeason: money.askedAt.getUTCFullYear(),
-    margins: breakEvenMargins(id, candidateIds, money.money, ownMargin),
-  });
+  const answer = await answerOnce(
+    db,
+    ground,
+    {
+      ...asked,
+      askedInSeason: money.askedAt.getUTCFullYear(),
+      margins: breakEvenMargins(id, candidateIds, money.money, ownMargin),
+    },
+    signal,
+  );
   const name = ground.varieties.find((variety) => variety.id === id)?.name;
   return priceAnswer(answer, { id, name }, money);
 }
 
 /** The stored answer where what it hangs on is unchanged; else it is weighed, and kept. */
-async function answerOnce(db: Database, ground: EvidenceGround, question: Question): Promise<WeighUpResult> {
-  const key = keyAnswer(ground, question, '');
+async function answerOnce(
+  db: Database,
+  ground: EvidenceGround,
+  question: Question,
+  signal?: AbortSignal,
+): Promise<WeighUpResult> {
+  const key = keyAnswer(ground, question, codeMark);
   const stored = await recallAnswer(db, key);
   if (stored !== null) return stored;
-  const answer = weighEvidence(await loadFigures(db, ground), question);
+  const answer = await compute('weighEvidence', [await loadFigures(db, ground), question], signal);
   await keepAnswer(db, key, answer);
   return answer;
 }

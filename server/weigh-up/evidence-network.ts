@@ -30,7 +30,7 @@ export function layOutNetwork(evidence: Evidence, traits: Question['traits']): E
       site: trial.siteId,
       siteName: trial.siteName,
       season: trial.season,
-      inRegion: true,
+      inRegion: trial.inRegion,
       kind: trial.kind,
       plotSize: trial.isStrips ? 'field-strips' : 'small-plots',
       // A trial whose yields scatter too widely is doubtful in its other traits as well.

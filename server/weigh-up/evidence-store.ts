@@ -1,23 +1,40 @@
 import { and, asc, between, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
 import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
-import { sites } from '#drizzle/schema/geography.ts';
+import { places, regions, sites } from '#drizzle/schema/geography.ts';
 import { entryMeans, trials, versionFits } from '#drizzle/schema/trials.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { Database } from '#server/db.ts';
 import { newestVersions } from '#server/trials/latest-versions.ts';
 import { readUsualVariances } from '#server/usual-variances/usual-variances-store.ts';
 import type { Evidence, EvidenceFit, EvidenceGround, EvidenceMean, EvidenceTrial } from './evidence.ts';
-
-export type EvidenceScope = { cropId: string; regionId: string; seasonFrom: number; seasonTo: number };
+import { asksForOtherRegions, chooseTrials, type EvidenceScope, type Geography } from './trial-choice.ts';
 
 /**
  * Which trials a question rests on, and what is known of their crop, without the figures.
  * @throws CodedError not-found when there is no such crop
  */
-export function loadEvidenceGround(db: Database, scope: EvidenceScope): Promise<EvidenceGround> {
-  const { seasonFrom, seasonTo } = scope;
-  const inScope = and(eq(sites.regionId, scope.regionId), between(trials.season, seasonFrom, seasonTo));
-  return loadGround(db, scope.cropId, inScope);
+export async function loadEvidenceGround(db: Database, scope: EvidenceScope): Promise<EvidenceGround> {
+  const { cropId, regionId, seasonFrom, seasonTo } = scope;
+  const inSeasons = between(trials.season, seasonFrom, seasonTo);
+  if (!asksForOtherRegions(scope))
+    return loadGround(db, cropId, and(eq(sites.regionId, regionId), inSeasons));
+  const [ground, geography] = await Promise.all([loadGround(db, cropId, inSeasons), loadGeography(db)]);
+  const chosen = chooseTrials(ground.trials, scope, geography);
+  return {
+    ...ground,
+    trials: chosen.map((trial) => ({ ...trial, inRegion: trial.regionId === regionId })),
+  };
+}
+
+/** Where the sites and towns of all regions lie. */
+async function loadGeography(db: Database): Promise<Geography> {
+  const [siteRows, townRows] = await Promise.all([
+    db.select({ regionId: sites.regionId, latitude: sites.latitude, longitude: sites.longitude }).from(sites),
+    db
+      .select({ regionId: places.regionId, latitude: places.latitude, longitude: places.longitude })
+      .from(places),
+  ]);
+  return { sites: siteRows, towns: townRows };
 }
 
 /**
@@ -59,9 +76,9 @@ export async function loadFigures(db: Database, ground: EvidenceGround): Promise
 }
 
 /** Trials whose newest version is a publication: withdrawn ones give no evidence. */
-function selectTrials(db: Database, choose: SQL | undefined): Promise<EvidenceTrial[]> {
+async function selectTrials(db: Database, choose: SQL | undefined): Promise<EvidenceTrial[]> {
   const newest = newestVersions(db);
-  return db
+  const rows = await db
     .select({
       trialId: trials.id,
       versionId: newest.versionId,
@@ -70,6 +87,15 @@ function selectTrials(db: Database, choose: SQL | undefined): Promise<EvidenceTr
       name: trials.name,
       siteId: sites.id,
       siteName: sites.name,
+      place: {
+        latitude: sites.latitude,
+        longitude: sites.longitude,
+        seasonRainMm: sites.seasonRainMm,
+        heatSumDegreeDays: sites.heatSumDegreeDays,
+        soilTexture: sites.soilTexture,
+      },
+      regionId: sites.regionId,
+      regionName: { en: regions.nameEn, fr: regions.nameFr },
       season: trials.season,
       kind: trials.kind,
       isStrips: sql<boolean>`${trials.design} = 'strips'`,
@@ -77,9 +103,11 @@ function selectTrials(db: Database, choose: SQL | undefined): Promise<EvidenceTr
     })
     .from(trials)
     .innerJoin(sites, eq(sites.id, trials.siteId))
+    .innerJoin(regions, eq(regions.id, sites.regionId))
     .innerJoin(newest, eq(newest.trialId, trials.id))
     .where(and(choose, eq(newest.action, 'publish')))
     .orderBy(desc(trials.season), asc(sites.name), asc(trials.name));
+  return rows.map((row) => ({ ...row, inRegion: true }));
 }
 
 function selectFits(db: Database, versionIds: string[]): Promise<EvidenceFit[]> {

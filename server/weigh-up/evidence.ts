@@ -1,6 +1,7 @@
-import type { Trait } from '#shared/catalogue.ts';
+import type { BilingualName, Trait } from '#shared/catalogue.ts';
+import type { SitePlace } from './farm-place.ts';
 
-/** A published trial of the crop, region and seasons asked for, under the version that counts now. */
+/** A published trial of the crop and seasons asked for, in a region asked for or near the farm, under the version that counts now. */
 export type EvidenceTrial = {
   trialId: string;
   versionId: string;
@@ -9,6 +10,12 @@ export type EvidenceTrial = {
   name: string;
   siteId: string;
   siteName: string;
+  /** Where the site lies and what grows there. */
+  place: SitePlace;
+  regionId: string;
+  regionName: BilingualName;
+  /** False where the site lies in another region than the question's. */
+  inRegion: boolean;
   season: number;
   kind: 'plots' | 'summary';
   isStrips: boolean;

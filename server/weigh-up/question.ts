@@ -7,6 +7,8 @@ export type Question = {
   candidateIds: readonly string[];
   /** all: every trait of the crop; yield: a list of candidates needs no more, and is asked for often */
   traits: 'all' | 'yield';
+  /** Whether trials of other regions may answer alone, which the advisor has to ask for. */
+  acceptsOtherRegions: boolean;
   /** What is old is old from here. */
   askedInSeason: number;
   /** By candidate, yield gaps that do not matter although they are wider than the trait's own margin, t/ha. */

@@ -3,6 +3,7 @@ import type { GapDistribution } from '#shared/money.ts';
 import type {
   CandidateResult,
   GapEstimate,
+  GapLine,
   TraitVerdict,
   UsedTrial,
   WeighUpResult,
@@ -32,6 +33,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     current: question.currentVarietyId,
     candidates: question.candidateIds,
     kind: question.candidateIds.length === 1 ? 'pair' : 'named',
+    acceptsOtherRegions: question.acceptsOtherRegions,
     askedInSeason: question.askedInSeason,
     margins: { [yieldSlug]: question.margins },
   });
@@ -101,6 +103,7 @@ function describeCandidate(
     money: null,
     siteYearsToSettle: weighing.siteYearsToSettle,
     sensitivity: weighing.sensitivity,
+    gapLine: toGapLine(weighing),
     trials: weighing.trials
       .map(({ trial, siteName, season, trialMean, estimate, interval }) => ({
         trialId: trial,
@@ -208,6 +211,12 @@ function toDeviations({ fit }: TraitWeighing): WeighUpResult['components'] {
   if (fit === null) return null;
   const { site, year, rest } = fit.components;
   return { site: Math.sqrt(site), season: Math.sqrt(year), rest: Math.sqrt(rest) };
+}
+
+function toGapLine({ gapLine }: CandidateWeighing): GapLine | null {
+  if (gapLine.outcome === 'not-fitted') return null;
+  const { outcome: _, ...line } = gapLine;
+  return line;
 }
 
 /** Where the usual variances of yield came from, and when they were estimated. */
