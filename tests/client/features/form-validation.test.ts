@@ -1,0 +1,89 @@
+import { describe, expect, it } from 'vitest';
+import type { GrowerCopyLine } from '#shared/grower-copy.ts';
+import { importForm } from '#src/features/trial-desk/import-fieldset.tsx';
+import { stateOfCopy } from '#src/features/weigh-up/copy-list.tsx';
+import { moneyForm, toAssumptions, toMoneyDraft } from '#src/features/weigh-up/money-form.ts';
+import { newWeighUpForm } from '#src/features/weigh-up/new-weigh-up-form.ts';
+import { matchesSearch } from '#src/features/weigh-up/weigh-ups-page.tsx';
+import { assumptions, buildWeighUp, idOf } from '#tests/client/support/weigh-up-factory.ts';
+
+/** Paths and reasons of what a schema refuses. */
+function refusals(schema: typeof moneyForm | typeof newWeighUpForm | typeof importForm, value: unknown) {
+  const parsed = schema.safeParse(value);
+  return parsed.success ? [] : parsed.error.issues.map((issue) => issue.path.join('.'));
+}
+
+const farm = {
+  growerName: 'Maren Oske',
+  farmName: 'Tallow Farm',
+  areaHectares: 120,
+  priceLow: 255,
+  priceMiddle: 290,
+  priceHigh: 340,
+};
+
+describe('the form of a new weigh-up', () => {
+  it('takes what fits and names each field that does not', () => {
+    expect(refusals(newWeighUpForm, farm)).toEqual([]);
+    expect(refusals(newWeighUpForm, { ...farm, growerName: '  ', areaHectares: null })).toEqual([
+      'growerName',
+      'areaHectares',
+    ]);
+    expect(refusals(newWeighUpForm, { ...farm, areaHectares: Number.NaN })).toEqual(['areaHectares']);
+    expect(refusals(newWeighUpForm, { ...farm, areaHectares: -1 })).toEqual(['areaHectares']);
+    expect(refusals(newWeighUpForm, { ...farm, priceLow: 300 })).toEqual(['priceMiddle']);
+  });
+});
+
+describe('the money form', () => {
+  const draft = toMoneyDraft(buildWeighUp());
+
+  it('refuses a price that does not cover its own haulage and drying', () => {
+    expect(refusals(moneyForm, draft)).toEqual([]);
+    expect(refusals(moneyForm, { ...draft, haulagePerTonne: 250 })).toEqual(['priceLow']);
+  });
+
+  it('keeps an open seed cost open and an unnamed treatment at nothing', () => {
+    const open = { seedPerHectare: null, treatmentPerHectare: null, royaltyPerHectare: null };
+    const bare = { ...open, seedPerHectare: 90 };
+    const form = moneyForm.parse({ ...draft, seedCosts: { [idOf(2)]: open, [idOf(3)]: bare } });
+    const { seedCosts } = toAssumptions(form, assumptions);
+    expect(seedCosts[idOf(2)]).toBeUndefined();
+    expect(seedCosts[idOf(3)]).toEqual({ seedPerHectare: 90, treatmentPerHectare: 0, royaltyPerHectare: 0 });
+  });
+});
+
+describe('the import form', () => {
+  const fields = { crop: 'field-pea', site: 'brasque', season: '2026', design: 'rcbd', name: 'Late series' };
+
+  it('reads a typed season and refuses text in its place', () => {
+    expect(importForm.parse(fields)).toMatchObject({ season: 2026, trait: 'yield', unit: 'as-stored' });
+    expect(refusals(importForm, { ...fields, season: 'last' })).toEqual(['season']);
+    expect(refusals(importForm, { ...fields, crop: '', design: '' })).toEqual(['crop', 'design']);
+  });
+});
+
+describe('lists of a weigh-up', () => {
+  it('finds every word in either language, accents and case aside', () => {
+    const line = { ...buildWeighUp({ growerName: 'Élise Tremblay' }), candidates: 2 };
+    expect(matchesSearch(line, 'elise POIS')).toBe(true);
+    expect(matchesSearch(line, 'elise barley')).toBe(false);
+    expect(matchesSearch(line, '')).toBe(true);
+  });
+
+  it('calls a copy revoked before expired, and expired from the very moment', () => {
+    const copy: GrowerCopyLine = {
+      id: idOf(50),
+      language: 'fr',
+      createdAt: '2026-12-01T09:00:00.000Z',
+      expiresAt: '2027-12-01T09:00:00.000Z',
+      revokedAt: null,
+      openings: 0,
+      lastOpenedAt: null,
+      laterChanges: [],
+    };
+    expect(stateOfCopy(copy, new Date('2027-11-30T00:00:00Z'))).toBe('active');
+    expect(stateOfCopy(copy, new Date(copy.expiresAt))).toBe('expired');
+    expect(stateOfCopy({ ...copy, revokedAt: copy.createdAt }, new Date('2028-01-01'))).toBe('revoked');
+  });
+});
