@@ -13,6 +13,7 @@ const statusOf = {
   'cross-site-request': 403,
   'body-too-large': 413,
   'database-away': 503,
+  busy: 503,
   internal: 500,
   'revision-conflict': 409,
   'state-conflict': 409,
@@ -34,11 +35,13 @@ const statusOf = {
 /** Text or figures that PostgreSQL cannot hold: a NUL in text, in JSON, a number out of range. */
 const unstorableStates: ReadonlySet<string | null> = new Set(['22021', '22P05', '22003']);
 
-/** Seconds after which a client may try again when the database is away. */
+/** Seconds after which a client may try again when the database is away or the computing threads are taken. */
 const retrySeconds = 5;
 
 /** The one place where a failure becomes a status and a code; routes never catch. */
 export const handleError: ErrorRequestHandler = (error: unknown, request, response, next) => {
+  // Whoever asked is gone: there is nobody to answer, and an ended computation is no failure.
+  if (response.closed) return;
   if (response.headersSent) {
     next(error);
     return;
@@ -46,7 +49,7 @@ export const handleError: ErrorRequestHandler = (error: unknown, request, respon
   const coded = codeFailure(error);
   if (coded.code === 'internal' || coded.code === 'database-away')
     request.log?.error({ err: error }, coded.code);
-  if (coded.code === 'database-away') response.set('Retry-After', String(retrySeconds));
+  if (statusOf[coded.code] === 503) response.set('Retry-After', String(retrySeconds));
   const reply: ErrorReply = {
     error: {
       code: coded.code,

@@ -2,6 +2,7 @@ import { createServer, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { pino } from 'pino';
 import { buildApp } from './app.ts';
+import { closeComputing } from './computing/compute.ts';
 import { connectDatabase } from './db.ts';
 import type { ServerSettings } from './env.ts';
 
@@ -40,6 +41,7 @@ export async function startServer(settings: ServerSettings): Promise<RunningServ
       const giveUp = setTimeout(() => server.closeAllConnections(), 3000);
       await closed;
       clearTimeout(giveUp);
+      await closeComputing();
       await closeDatabase();
     },
   };

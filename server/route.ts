@@ -27,6 +27,8 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
     file: { name: string; bytes: Buffer } | null;
     request: Request;
     response: Response;
+    /** Aborted when the client goes away before it is answered. */
+    signal: AbortSignal;
   }) => Promise<z.input<R>>,
 ): void {
   const serve: RequestHandler = async (request, response) => {
@@ -39,6 +41,7 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
         request.file === undefined ? null : { name: request.file.originalname, bytes: request.file.buffer },
       request,
       response,
+      signal: signalOf(response),
     });
     response.json(contract.reply.parse(reply));
   };
@@ -48,6 +51,14 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
   };
   const upload: RequestHandler[] = contract.upload === undefined ? [] : [readUpload.single(contract.upload)];
   router[methodNames[contract.method]](contract.path, guard, ...upload, serve);
+}
+
+function signalOf(response: Response): AbortSignal {
+  const leaving = new AbortController();
+  response.once('close', () => {
+    if (!response.writableFinished) leaving.abort();
+  });
+  return leaving.signal;
 }
 
 const methodNames = { GET: 'get', POST: 'post', PUT: 'put', PATCH: 'patch', DELETE: 'delete' } as const;

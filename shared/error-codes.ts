@@ -12,6 +12,7 @@ export const errorCodes = [
   'cross-site-request',
   'body-too-large',
   'database-away',
+  'busy',
   'internal',
   'revision-conflict',
   'state-conflict',

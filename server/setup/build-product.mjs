@@ -41,7 +41,12 @@ export function buildServer(projectRoot) {
     try {
       await build({
         absWorkingDir: projectRoot,
-        entryPoints: { main: 'server/main.ts', db: 'server/db.ts', 'seed-demo': 'server/demo/seed-demo.ts' },
+        entryPoints: {
+          main: 'server/main.ts',
+          db: 'server/db.ts',
+          'seed-demo': 'server/demo/seed-demo.ts',
+          'computing-worker': 'server/computing/computing-worker.ts',
+        },
         outdir: 'dist/server',
         bundle: true,
         splitting: true,

@@ -8,9 +8,9 @@ import { answerWeighUp, rankCandidates } from './answer-question.ts';
 import { insertWeighUp, listOwnWeighUps, readOwnWeighUp, updateWeighUp } from './weigh-up-store.ts';
 
 export function addWeighUpRoutes(router: Router, db: Database): void {
-  route(router, listCandidates, async ({ me, query }) => {
+  route(router, listCandidates, async ({ me, query, signal }) => {
     requireOwnRegion(requireMe(me), query.regionId);
-    return rankCandidates(db, query);
+    return rankCandidates(db, query, signal);
   });
 
   route(router, listWeighUps, async ({ me }) => ({ weighUps: await listOwnWeighUps(db, requireMe(me).id) }));
@@ -21,18 +21,18 @@ export function addWeighUpRoutes(router: Router, db: Database): void {
     return { weighUp: await insertWeighUp(db, owner.id, body) };
   });
 
-  route(router, readWeighUp, async ({ me, params }) => {
+  route(router, readWeighUp, async ({ me, params, signal }) => {
     const weighUp = await readOwnWeighUp(db, requireMe(me).id, params.weighUpId);
-    const { result } = await answerWeighUp(db, weighUp);
+    const { result } = await answerWeighUp(db, weighUp, signal);
     return { weighUp, result };
   });
 
-  route(router, changeWeighUp, async ({ me, params, body }) => {
+  route(router, changeWeighUp, async ({ me, params, body, signal }) => {
     const owner = requireMe(me);
     await readOwnWeighUp(db, owner.id, params.weighUpId);
     requireOwnRegion(owner, body.weighUp.regionId);
     const weighUp = await updateWeighUp(db, owner.id, params.weighUpId, body.revision, body.weighUp);
-    const { result } = await answerWeighUp(db, weighUp);
+    const { result } = await answerWeighUp(db, weighUp, signal);
     return { weighUp, result };
   });
 }
