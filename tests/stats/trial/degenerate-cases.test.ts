@@ -46,6 +46,21 @@ describe('12b, blocks and entries add up without a remainder', () => {
   });
 });
 
+describe('entries and blocks that add up in decimals, which doubles hold with a rounding', () => {
+  it.each([0, 1e9])('leave no residual variance either, at an offset of %d', (offset) => {
+    const plots = Array.from({ length: 20 }, (_, i) => ({
+      plot: String(i),
+      entry: `E${i % 5}`,
+      block: String(Math.floor(i / 5)),
+      value: offset + 4.1 + 0.7 * (i % 5) + 0.3 * Math.floor(i / 5),
+    }));
+    const { fit, gaps } = analyseTrial(plots, { kind: 'rcbd' });
+    expect(fit.residualMs).toBe(0);
+    expect(gaps[0]).toMatchObject({ ...untested, se: 0 });
+    expect(gaps[0]!.estimate).toBeCloseTo(-0.7, 6);
+  });
+});
+
 describe('12c, an entry without a harvested plot', () => {
   const { plots } = readCase('12c-entry-all-missing', { block: 'block' });
   const actual = analyseTrial(plots, { kind: 'rcbd' });
