@@ -100,12 +100,14 @@ export function judgeAgainstCurrent<Verdict>(
 ): Verdict[] {
   const gaps = members.flatMap((r) => measureGap(estimates, r, base) ?? []);
   const tail = (1 - level) / 2;
+  // One matrix for all of them: Dunnett's table of the family is kept with it.
+  let correlation: Float64Array[] | null = null;
   return gaps.map(({ estimate, se, df }, index) => {
     const alone = judge(around(estimate, tQuantileUpper(tail, df) * se, level), index);
     if (!isFamily || gaps.length < 2) return alone;
     const widest = judge(around(estimate, tQuantileUpper(tail / gaps.length, df) * se, level), index);
     if (widest === alone) return alone;
-    const correlation = correlate(estimates, members, base);
+    correlation ??= correlate(estimates, members, base);
     return judge(around(estimate, dunnettQuantile({ alpha: 1 - level, df, correlation }) * se, level), index);
   });
 }
