@@ -34,6 +34,8 @@ interface TrialCommand {
   readonly columns: Readonly<Record<DesignPart | 'plot', string>>;
   readonly told: ReadonlySet<string>;
   readonly spatial: boolean;
+  /** whether the comparison with the best and the checks that cost more are printed too */
+  readonly checks: boolean;
   /** whether each plot's fitted value and residual are printed */
   readonly withResiduals: boolean;
   readonly allowNegative: boolean;
@@ -76,6 +78,7 @@ function readCommand(args: readonly string[]): TrialCommand {
       main: text,
       sub: text,
       spatial: flag,
+      checks: flag,
       residuals: flag,
       'allow-negative': flag,
     },
@@ -107,6 +110,7 @@ function readCommand(args: readonly string[]): TrialCommand {
     },
     told: new Set(['plot', ...parts].filter((part) => Object.hasOwn(values, part))),
     spatial: values.spatial,
+    checks: values.checks,
     withResiduals: values.residuals,
     allowNegative: values['allow-negative'],
   };
@@ -122,6 +126,8 @@ function analyseTable(table: Table, command: TrialCommand): unknown {
         check: command.check ?? null,
         alpha: command.alpha,
         spatial: command.spatial,
+        checks: command.checks,
+        comparisons: command.checks,
         allowNegative: command.allowNegative,
       },
     ),

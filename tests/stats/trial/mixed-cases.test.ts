@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { analyseTrial } from '#server/stats/trial/trial-analysis.ts';
 import type { TrialDesign } from '#server/stats/trial/trial-data.ts';
-import { DeviationLog } from '#tests/support/deviation.ts';
+import { deviationOf, DeviationLog } from '#tests/support/deviation.ts';
 import { readCase, type CaseColumns } from '#tests/support/reference-case.ts';
 import { compareMixedCase, sortGroups } from '#tests/support/trial-deviation.ts';
 
@@ -47,6 +47,21 @@ describe.each(cases)('%s', (name, section, design, columns) => {
     compareMixedCase(log, actual, mixed, isSplit ? 'variety' : null);
     expect(overTolerance(log)).toEqual({});
   });
+
+  if (!isSplit)
+    it('has Dunnett’s p within what mvtnorm knows, which takes whole df only', () => {
+      const dunnett = mixed['dunnett_kr']!;
+      const rows = analyseTrial(read, design, { check: String(dunnett['control']) }).dunnett!.rows;
+      expect(rows).toHaveLength(dunnett['rows']!.length);
+      for (const row of dunnett['rows']!) {
+        const own = rows.find((one) => one.entry === String(row['entry']))!;
+        const rounding = Math.abs(Number(row['df_kr']) - Number(row['df_used'])) / Number(row['df_used']);
+        const slack = 3 * Number(row['achieved_error']) + 0.2 * rounding * Number(row['p_dunnett']) + 1e-6;
+        expect(Math.abs(own.p - Number(row['p_dunnett']))).toBeLessThan(slack);
+        expect(deviationOf(own.estimate, row['estimate'])).toBeLessThan(1e-6);
+        expect(deviationOf(own.df, row['df_kr'])).toBeLessThan(1e-6);
+      }
+    });
 
   it('groups as R does', () => {
     const groups = isSplit ? actual.factors['variety']!.groups : actual.groups;
