@@ -7,6 +7,7 @@ import type { CandidateResult } from '#shared/weigh-up.ts';
 import { TurningPoints } from './turning-points.tsx';
 import { useFormat } from './use-format.ts';
 import { useSeasons } from './use-seasons.ts';
+import { UsualYieldSentences } from './usual-yield-sentences.tsx';
 
 export type StoryProps = {
   candidate: CandidateResult;
@@ -75,6 +76,7 @@ function TrialSentences({ candidate, currentName: current, unit, decimals }: Sto
         })}
       </p>
       <IntervalSentences gap={gap} unit={unit} decimals={decimals} />
+      <UsualYieldSentences candidate={candidate} unit={unit} decimals={decimals} />
     </>
   );
 }

@@ -54,10 +54,15 @@ function useUsedColumns(linkTrial: EvidenceTrialsProps['linkTrial']): Column<Use
     {
       id: 'trial',
       header: t('column.trial'),
-      cell: ({ trialId, siteName, name }) => (
+      cell: ({ trialId, siteName, name, inRegion, regionName }) => (
         <>
           {linkTrial ? linkTrial(trialId, siteName) : siteName}
           <span className="block text-sm font-normal text-faded">{name}</span>
+          {inRegion === false && regionName && (
+            <span className="block text-sm font-normal text-break-even">
+              {t('elsewhere', { region: format.name(regionName) })}
+            </span>
+          )}
         </>
       ),
       sortValue: (trial) => trial.siteName,

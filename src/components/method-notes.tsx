@@ -1,4 +1,5 @@
 import { useTranslation } from 'react-i18next';
+import type { FarmRange } from '#shared/farm.ts';
 import type { WeighUpResult } from '#shared/weigh-up.ts';
 import { useFormat } from './use-format.ts';
 
@@ -20,6 +21,7 @@ export function MethodNotes({ result }: MethodNotesProps) {
           seasons: from === to ? t('method:oneSeason', { season: from }) : t('method:seasons', { from, to }),
         })}
       </p>
+      {result.farmRange && <FarmSentence range={result.farmRange} />}
       <p>{t(`method:${result.comparison}`)}</p>
       <p>{t('method:twoTargets')}</p>
       {result.components && (
@@ -37,5 +39,21 @@ export function MethodNotes({ result }: MethodNotesProps) {
         {t('method:computed', { at: format.dateTime(result.computedAt), engine: result.engineVersion })}
       </p>
     </div>
+  );
+}
+
+/** How far the farm is from where the figures were grown, in km and in kind. */
+function FarmSentence({ range }: { range: FarmRange }) {
+  const { t } = useTranslation('method');
+  const format = useFormat();
+  return (
+    <p>
+      {t('farm', {
+        distance: format.quantity(range.nearestKm, 'km', { decimals: 0 }),
+        site: range.nearestSite,
+      })}
+      {range.similarSites !== null &&
+        ` ${t('farmAlike', { count: range.similarSites, sites: format.number(range.sites) })}`}
+    </p>
   );
 }

@@ -33,7 +33,18 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
   const level = format.percent((sorted[0]?.interval.level ?? 0.95) * 100);
   const gap = (value: number) => format.gap(value, unit, decimals);
   const columns: Column<TrialGap>[] = [
-    { id: 'site', header: t('siteLines.trial'), cell: (trial) => trial.siteName },
+    {
+      id: 'site',
+      header: t('siteLines.trial'),
+      cell: (trial) => (
+        <>
+          {trial.siteName}
+          {trial.inRegion === false && (
+            <span className="block text-sm font-normal text-break-even">{t('siteLines.elsewhere')}</span>
+          )}
+        </>
+      ),
+    },
     { id: 'season', header: t('siteLines.season'), align: 'end', cell: (trial) => String(trial.season) },
     {
       id: 'mean',
@@ -77,6 +88,9 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
                     <span className="whitespace-nowrap text-faded">
                       {t('siteLines.mean', { mean: format.quantity(trial.trialMean, unit, { decimals }) })}
                     </span>
+                    {trial.inRegion === false && (
+                      <span className="block text-break-even">{t('siteLines.elsewhere')}</span>
+                    )}
                   </span>
                   <span className="text-right text-sm font-semibold @2xl:col-start-3 @2xl:row-start-1">
                     {gap(trial.estimate)}

@@ -10,7 +10,7 @@ import { useLanguage } from '#src/components/use-language.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import type { NewWeighUpFormApi } from './new-weigh-up-page.tsx';
 
-/** For whom: names stand on the copy, the area turns a return per hectare into one for the farm. */
+/** For whom: names stand on the copy, the area turns a return per hectare into one for the farm, the usual yield tells where its fields stand. */
 export function FarmFields({ form }: { form: NewWeighUpFormApi }) {
   const { t } = useTranslation('weigh-up');
   const fieldErrorText = useFieldErrorText();
@@ -35,6 +35,20 @@ export function FarmFields({ form }: { form: NewWeighUpFormApi }) {
           />
         </Field>
       </div>
+      <Field
+        label={t('farm.usualYield')}
+        hint={t('farm.usualYieldHint')}
+        error={fieldErrorText(errors.usualYield)}
+        className="sm:max-w-sm"
+      >
+        <Controller
+          control={form.control}
+          name="usualYield"
+          render={({ field: { value, onChange, onBlur, ref } }) => (
+            <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="t/ha" />
+          )}
+        />
+      </Field>
     </section>
   );
 }

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { moneyAssumptions, type MoneyAssumptions } from '#shared/money.ts';
 import { weighUpInput, type WeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
+import { toInput } from './weigh-up-input.ts';
 
 const { priceLow, priceMiddle, priceHigh, haulagePerTonne, dryingPerTonne } = moneyAssumptions.shape;
 
@@ -86,17 +87,8 @@ export function toAssumptions(form: MoneyForm, saved: MoneyAssumptions): MoneyAs
 
 /** The whole weigh-up with the panel's numbers, as it is saved. */
 export function toChangedInput(weighUp: WeighUp, form: MoneyForm): WeighUpInput {
-  const { cropId, regionId, seasonFrom, seasonTo, growerName, farmName, currentVarietyId, candidateIds } =
-    weighUp;
   return {
-    cropId,
-    regionId,
-    seasonFrom,
-    seasonTo,
-    growerName,
-    farmName,
-    currentVarietyId,
-    candidateIds,
+    ...toInput(weighUp),
     areaHectares: form.areaHectares,
     assumptions: toAssumptions(form, weighUp.assumptions),
   };

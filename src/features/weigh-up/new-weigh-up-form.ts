@@ -6,7 +6,7 @@ import type { CandidateQuestion } from './weigh-up-queries.ts';
 /** Currency where no price sheet names one. */
 const fallbackCurrency = 'CAD';
 
-const { growerName, farmName, areaHectares } = weighUpInput.shape;
+const { growerName, farmName, areaHectares, usualYield } = weighUpInput.shape;
 const { priceLow, priceMiddle, priceHigh } = moneyAssumptions.shape;
 
 /** A figure that may not have been typed yet: asked for in words of its own, apart from one that does not fit. */
@@ -23,6 +23,7 @@ export const newWeighUpForm = z
     growerName,
     farmName,
     areaHectares: typed(areaHectares),
+    usualYield: usualYield.unwrap(),
     priceLow: typed(priceLow),
     priceMiddle: typed(priceMiddle),
     priceHigh: typed(priceHigh),
@@ -50,6 +51,7 @@ export function toWeighUpInput(
     growerName: form.growerName,
     farmName: form.farmName,
     areaHectares: form.areaHectares,
+    usualYield: form.usualYield,
     assumptions: {
       currency: defaults?.currency ?? fallbackCurrency,
       priceLow: low,

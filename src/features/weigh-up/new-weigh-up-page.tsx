@@ -67,6 +67,7 @@ function QuestionForm({ catalogue }: { catalogue: Catalogue }) {
       growerName: '',
       farmName: '',
       areaHectares: null,
+      usualYield: null,
       priceLow: null,
       priceMiddle: null,
       priceHigh: null,

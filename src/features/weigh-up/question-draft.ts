@@ -1,5 +1,14 @@
-import type { Catalogue } from '#src/catalogue-query.ts';
 import type { Crop, Region } from '#shared/catalogue.ts';
+import type { Catalogue } from '#src/catalogue-query.ts';
+import { readChoice } from '#src/url-state.ts';
+import {
+  listKnownPlaces,
+  readFarmParameter,
+  toTrialFields,
+  trialChoices,
+  type ChosenFarm,
+  type ChosenTrials,
+} from './chosen-farm.ts';
 import type { CandidateQuestion } from './weigh-up-queries.ts';
 
 /** Most candidates of one weigh-up; the contract refuses more. */
@@ -16,9 +25,11 @@ export type QuestionDraft = {
   seasonTo: number;
   currentVarietyId: string;
   candidateIds: readonly string[];
+  farm: ChosenFarm | null;
+  trials: ChosenTrials;
 };
 
-/** Reads the question from the address: crop and region by slug, varieties by id; what the catalogue lacks is dropped. */
+/** Reads the question from the address: crop and region by slug, varieties and place by id; what the catalogue lacks is dropped. */
 export function readQuestion(search: URLSearchParams, catalogue: Catalogue): QuestionDraft {
   const crop = catalogue.crops.find(({ slug }) => slug === search.get('crop'));
   const region = catalogue.regions.find(({ slug }) => slug === search.get('region'));
@@ -36,6 +47,8 @@ export function readQuestion(search: URLSearchParams, catalogue: Catalogue): Que
     .split(',')
     .filter((id, place, all) => isVariety(id) && id !== currentVarietyId && all.indexOf(id) === place)
     .slice(0, mostCandidates);
+  const farm = readFarmParameter(search.get('farm'), listKnownPlaces(catalogue));
+  const trials = readChoice(search, 'trials', trialChoices);
   return {
     crop,
     region,
@@ -43,17 +56,28 @@ export function readQuestion(search: URLSearchParams, catalogue: Catalogue): Que
     seasonTo: season('to', newest),
     currentVarietyId,
     candidateIds,
+    farm,
+    trials: trials === 'nearest' && farm === null ? 'region' : trials,
   };
 }
 
-/** Whether the region has no published trial of the crop: then there is no verdict, and it is said at once. */
-export function lacksTrials({ crop, region }: QuestionDraft): boolean {
+/** Whether the region has no published trial of the crop, and no others are asked: then there is no verdict, and it is said at once. */
+export function lacksTrials({ crop, region, trials }: QuestionDraft): boolean {
+  if (trials !== 'region') return false;
   return crop !== undefined && region !== undefined && (region.publishedTrials[crop.slug] ?? 0) === 0;
 }
 
 /** The question for the list of candidates; null until it is whole. */
 export function toCandidateQuestion(draft: QuestionDraft): CandidateQuestion | null {
-  const { crop, region, seasonFrom, seasonTo, currentVarietyId } = draft;
+  const { crop, region, seasonFrom, seasonTo, currentVarietyId, farm, trials } = draft;
   if (!crop || !region || currentVarietyId === '' || seasonFrom > seasonTo || lacksTrials(draft)) return null;
-  return { cropId: crop.id, regionId: region.id, seasonFrom, seasonTo, currentVarietyId };
+  return {
+    ...{ cropId: crop.id, regionId: region.id, seasonFrom, seasonTo, currentVarietyId },
+    ...toTrialFields(trials),
+    farmLatitude: farm?.latitude,
+    farmLongitude: farm?.longitude,
+    farmSeasonRainMm: farm?.seasonRainMm ?? undefined,
+    farmHeatSumDegreeDays: farm?.heatSumDegreeDays ?? undefined,
+    farmSoilTexture: farm?.soilTexture ?? undefined,
+  };
 }

@@ -8,11 +8,14 @@ import type { Catalogue } from '#src/catalogue-query.ts';
 import { useMe } from '#src/session.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
+import { listKnownPlaces, writeFarmParameter } from './chosen-farm.ts';
+import { PlaceField } from './place-field.tsx';
 import type { QuestionDraft } from './question-draft.ts';
+import { TrialChoiceField } from './trial-choice-field.tsx';
 
 type QuestionFieldsProps = { draft: QuestionDraft; catalogue: Catalogue };
 
-/** Crop, region, seasons and current variety: kept in the address, so that a question can be reloaded and sent. */
+/** Crop, region, seasons, current variety, the farm's place and the trials that answer: kept in the address, so that a question can be reloaded and sent. */
 export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
@@ -52,7 +55,27 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
       </Field>
       {crop && <SeasonFields draft={draft} crop={crop} />}
       {crop && <CurrentVarietyField draft={draft} crop={crop} />}
+      {crop && <FarmAndTrialsFields draft={draft} catalogue={catalogue} />}
     </div>
+  );
+}
+
+/** Where the farm lies, and whether trials beyond the region may answer. */
+function FarmAndTrialsFields({ draft, catalogue }: QuestionFieldsProps) {
+  const patch = useUrlPatch();
+  return (
+    <>
+      <PlaceField
+        catalogue={catalogue}
+        value={draft.farm}
+        onChange={(farm) => patch({ farm: writeFarmParameter(farm, listKnownPlaces(catalogue)) })}
+      />
+      <TrialChoiceField
+        value={draft.trials}
+        onChange={(chosen) => patch({ trials: chosen === 'region' ? null : chosen })}
+        hasPlace={draft.farm !== null}
+      />
+    </>
   );
 }
 

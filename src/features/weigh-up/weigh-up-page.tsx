@@ -18,6 +18,7 @@ import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CandidateStrip } from './candidate-strip.tsx';
+import { FarmPanel } from './farm-panel.tsx';
 import { HandOver } from './hand-over.tsx';
 import { MoneyPanel } from './money-panel.tsx';
 import { useMoneyForm } from './use-money-form.ts';
@@ -113,6 +114,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
         to={weighUp.seasonTo}
       />
       <CautionList title={t('cautionsTitle')} items={cautionItems(result.cautions)} />
+      <FarmPanel weighUp={weighUp} />
     </div>
   );
 }
@@ -151,6 +153,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <MoneyPanel weighUp={weighUp} varieties={varieties} money={money} saving={saving} />
       </div>
       <div className="flex min-w-0 flex-col gap-8">
+        <FarmPanel weighUp={weighUp} />
         <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
         <section className="flex flex-col gap-4">
           <h2>{t('method:title')}</h2>

@@ -1,0 +1,36 @@
+import { useTranslation } from 'react-i18next';
+import type { CandidateResult } from '#shared/weigh-up.ts';
+import { useFormat } from './use-format.ts';
+
+type UsualYieldSentencesProps = { candidate: CandidateResult; unit: string; decimals: number };
+
+/** A slope with a smaller p than this is said to be there. */
+const slopeLevel = 0.05;
+
+/** The gap where the grower's fields usually yield; nothing where the trials do not carry it, which a caution says. */
+export function UsualYieldSentences({ candidate, unit, decimals }: UsualYieldSentencesProps) {
+  const { t } = useTranslation('verdicts');
+  const format = useFormat();
+  const { gapAtUsualYield: read, gapLine: line } = candidate;
+  if (!read?.isCarried || !line) return null;
+  const p = format.pValue(line.slopeP);
+  return (
+    <>
+      <p>
+        {t('story.usualYield', {
+          yield: format.quantity(read.usualYield, unit, { decimals: 1 }),
+          trials: t('trialCount', { count: line.trials }),
+          gap: format.gap(read.estimate, unit, decimals),
+          low: format.number(read.interval.low, { decimals, isSigned: true }),
+          high: format.gap(read.interval.high, unit, decimals),
+          level: format.percent(read.interval.level * 100),
+        })}
+      </p>
+      <p>
+        {line.slopeP < slopeLevel
+          ? t('story.slopeReal', { slope: format.gap(line.slope, unit, decimals), p })
+          : t('story.slopeOpen', { p })}
+      </p>
+    </>
+  );
+}
