@@ -1,5 +1,6 @@
 import { join } from 'node:path';
 import compression from 'compression';
+import { DrizzleQueryError } from 'drizzle-orm/errors';
 import express, { type Express, Router } from 'express';
 import helmet from 'helmet';
 import type pg from 'pg';
@@ -19,6 +20,7 @@ import { requireSameOrigin } from './same-origin.ts';
 import { buildSession } from './sign-in-session.ts';
 import { addTrialDeskRoutes } from './trial-desk/trial-desk-routes.ts';
 import { addTrialRoutes } from './trials/trial-routes.ts';
+import { addUsualVariancesRoutes } from './usual-variances/usual-variances-routes.ts';
 import { addWeighUpRoutes } from './weigh-up/weigh-up-routes.ts';
 
 const capabilities = [
@@ -29,6 +31,7 @@ const capabilities = [
   addTrialRoutes,
   addTrialDeskRoutes,
   addWeighUpRoutes,
+  addUsualVariancesRoutes,
   addGrowerCopyRoutes,
 ];
 
@@ -41,6 +44,7 @@ export function buildApp(db: Database, pool: pg.Pool, settings: ServerSettings, 
     pinoHttp({
       logger,
       redact: ['req.headers.cookie', 'req.headers.authorization', 'res.headers["set-cookie"]'],
+      serializers: { err: describeFailure },
     }),
   );
   app.use(buildHelmet(settings));
@@ -49,6 +53,15 @@ export function buildApp(db: Database, pool: pg.Pool, settings: ServerSettings, 
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
   app.use(handleError);
   return app;
+}
+
+/**
+ * A failure as the log may hold it. A failed query carries its parameters, which can be a person's address or the hash
+ * of a password: its cause says what went wrong without them.
+ */
+function describeFailure(error: Error): { type: string; message: string; stack: string | undefined } {
+  const told = error instanceof DrizzleQueryError && error.cause !== undefined ? error.cause : error;
+  return { type: told.name, message: told.message, stack: told.stack };
 }
 
 /** Contracts carry whole paths, so the routers are mounted at the root and only the guards at /api. */

@@ -74,7 +74,12 @@ export function formatQuantity(
 ): string {
   if (unit === '') return formatNumber(value, language, style);
   if (unit === '%') return formatPercent(value, language, style);
-  return formatNumber(value, language, style) + noBreakSpace + unit;
+  return formatNumber(value, language, style) + noBreakSpace + sayUnit(unit, language);
+}
+
+/** A unit as it is written in the language: days are `d` in English and `j` in French, the others are alike. */
+export function sayUnit(unit: string, language: Language): string {
+  return unit === 'd' && language === 'fr' ? 'j' : unit;
 }
 
 /** A percentage that is already in hundredths: 13.5 gives `13.5%` and `13,5 %`. */

@@ -1,9 +1,11 @@
 import type { CSSProperties, ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
+import { sayUnit } from '#shared/format-number.ts';
 import type { PlotView } from '#shared/trial.ts';
 import { DataTable, type Column } from './data-table.tsx';
 import { DrawingFrame } from './drawing-frame.tsx';
 import { useFormat } from './use-format.ts';
+import { useLanguage } from './use-language.ts';
 
 type FieldMapProps = {
   title: ReactNode;
@@ -162,9 +164,10 @@ type MapKeyProps = { unit: string; shade: 'residual' | 'value'; hasExcluded: boo
 
 function MapKey({ unit, shade, hasExcluded, hasMissing }: MapKeyProps) {
   const { t } = useTranslation('drawings');
+  const said = { unit: sayUnit(unit, useLanguage()) };
   return (
     <ul className="mt-1 flex flex-wrap gap-x-6 text-sm text-faded">
-      <li>{shade === 'residual' ? t('fieldMap.keyResidual', { unit }) : t('fieldMap.keyValue', { unit })}</li>
+      <li>{shade === 'residual' ? t('fieldMap.keyResidual', said) : t('fieldMap.keyValue', said)}</li>
       {hasExcluded && <li>{t('fieldMap.keyExcluded')}</li>}
       {hasMissing && <li>{t('fieldMap.keyMissing')}</li>}
     </ul>

@@ -35,6 +35,8 @@ describe('figures', () => {
     expect(formatQuantity(4.32, 't/ha', 'fr', { decimals: 2 })).toBe('4,32\u00a0t/ha');
     expect(formatQuantity(13.5, '%', 'fr', { decimals: 1 })).toBe('13,5\u202f%');
     expect(formatQuantity(3, '', 'en')).toBe('3');
+    expect(formatQuantity(95, 'd', 'en')).toBe('95\u00a0d');
+    expect(formatQuantity(95, 'd', 'fr')).toBe('95\u00a0j');
     expect(formatPercent(28, 'en')).toBe('28%');
     expect(formatArea(120, 'en')).toBe('120\u00a0ha');
     expect(formatArea(12.5, 'fr')).toBe('12,5\u00a0ha');
