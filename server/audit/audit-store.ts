@@ -12,7 +12,7 @@ export type NewAuditEvent = {
   actorId: string | null;
   /** subject and past participle: `account.created`, `trial.published` */
   action: string;
-  subjectKind: 'account' | 'trial' | 'weigh-up' | 'grower-copy';
+  subjectKind: 'account' | 'trial' | 'weigh-up' | 'grower-copy' | 'crop';
   subjectId: string;
   detail?: Record<string, unknown>;
   /** now unless an older record is being entered */

@@ -15,7 +15,7 @@ export { tQuantileUpper } from './distributions/student-t.ts';
 export { groupUndiffering } from './trial/different-groups.ts';
 export { analyseTwoWay, type TwoWayAnalysis, type TwoWayRefused } from './network/two-way-analysis.ts';
 export { combineTrials, type CombinedTrials, type CombineOptions } from './network/combine-trials.ts';
-export type { InteractionVariances, TrialCell } from './network/network-cell.ts';
+export { interactionTerms, type InteractionVariances, type TrialCell } from './network/network-cell.ts';
 export { synthesisePair, type PairEffect, type PairSynthesis } from './network/pair-synthesis.ts';
 export { weighCandidates } from './network/weigh-candidates.ts';
 export { chanceAbove, chanceOver } from './network/gap-chance.ts';
@@ -28,8 +28,9 @@ export { fitGapLine, readGapAt, type GapLine, type GapPoint, type NoGapLine } fr
 export {
   estimateUsualVariances,
   NEEDED_FOR_USUAL,
+  varianceInterval,
   type UsualEstimate,
   type NoUsualEstimate,
-} from './network/usual-variances.ts';
+} from './network/estimate-usual-variances.ts';
 export { recoverError, type RecoveredError } from './summary/recover-error.ts';
 export { poolErrorVariances, type PooledErrors, type TrialError } from './network/pool-error-variances.ts';

@@ -1,31 +1,63 @@
-import { desc, eq } from 'drizzle-orm';
+import { asc, avg, desc, eq } from 'drizzle-orm';
 import { users } from '#drizzle/schema/accounts.ts';
-import { traits } from '#drizzle/schema/crops.ts';
+import { crops, traits } from '#drizzle/schema/crops.ts';
+import { versionFits } from '#drizzle/schema/trials.ts';
 import { usualVariances } from '#drizzle/schema/usual-variances.ts';
 import type { DatabaseOrTransaction } from '#server/db.ts';
+import { newestVersions } from '#server/trials/latest-versions.ts';
 
 /** An estimate as it is stored: variances in the trait's unit squared, newest first among those of its trait. */
 export type StoredUsualVariances = typeof usualVariances.$inferSelect & {
-  traitSlug: string;
   /** null: estimated by a command */
   estimatedByName: string | null;
 };
 
 export type NewUsualVariances = typeof usualVariances.$inferInsert;
 
-/** Every estimate of a crop's traits, or of all crops, newest first. */
-export async function listStoredVariances(
-  db: DatabaseOrTransaction,
-  cropId?: string,
-): Promise<StoredUsualVariances[]> {
+/** Every estimate there is, newest first. */
+export async function listStoredVariances(db: DatabaseOrTransaction): Promise<StoredUsualVariances[]> {
   const rows = await db
-    .select({ stored: usualVariances, traitSlug: traits.slug, estimatedByName: users.name })
+    .select({ stored: usualVariances, estimatedByName: users.name })
     .from(usualVariances)
-    .innerJoin(traits, eq(traits.id, usualVariances.traitId))
     .leftJoin(users, eq(users.id, usualVariances.estimatedBy))
-    .where(cropId === undefined ? undefined : eq(usualVariances.cropId, cropId))
     .orderBy(desc(usualVariances.estimatedAt), usualVariances.id);
-  return rows.map(({ stored, ...named }) => ({ ...stored, ...named }));
+  return rows.map(({ stored, estimatedByName }) => ({ ...stored, estimatedByName }));
+}
+
+/** A trait that is measured, not rated. */
+export type MeasuredTrait = {
+  id: string;
+  cropId: string;
+  slug: string;
+  /** Of the crop, t/ha. */
+  typicalYield: number;
+  /** Mean over the published trials; null where there are none. */
+  mean: number | null;
+};
+
+/** The measured traits of every crop, crops by name and traits in their crop's order. */
+export async function listMeasuredTraits(db: DatabaseOrTransaction): Promise<MeasuredTrait[]> {
+  const newest = newestVersions(db);
+  const means = db
+    .select({ traitId: versionFits.traitId, mean: avg(versionFits.grandMean).mapWith(Number).as('mean') })
+    .from(versionFits)
+    .innerJoin(newest, eq(newest.versionId, versionFits.versionId))
+    .where(eq(newest.action, 'publish'))
+    .groupBy(versionFits.traitId)
+    .as('trait_means');
+  return db
+    .select({
+      id: traits.id,
+      cropId: traits.cropId,
+      slug: traits.slug,
+      typicalYield: crops.typicalYield,
+      mean: means.mean,
+    })
+    .from(traits)
+    .innerJoin(crops, eq(crops.id, traits.cropId))
+    .leftJoin(means, eq(means.traitId, traits.id))
+    .where(eq(traits.kind, 'numeric'))
+    .orderBy(asc(crops.nameEn), asc(traits.position), asc(traits.slug));
 }
 
 /** Usual variances of one trait as they hold now. */

@@ -7,6 +7,7 @@ import type { Contract } from '#shared/contract.ts';
 import * as growerCopy from '#shared/grower-copy.ts';
 import * as trialDesk from '#shared/trial-desk.ts';
 import * as trial from '#shared/trial.ts';
+import * as usualVariance from '#shared/usual-variance.ts';
 import * as weighUp from '#shared/weigh-up.ts';
 import { openApiWorld, type Agent, type ApiWorld } from './api-world.ts';
 
@@ -38,6 +39,8 @@ const allowed: Record<string, Who[]> = {
   'PATCH /api/desk/trials/:trialId/plots': ['agronomist'],
   'POST /api/desk/trials/:trialId/publications': ['agronomist'],
   'POST /api/desk/trials/:trialId/withdrawals': ['agronomist'],
+  'GET /api/usual-variances': weighers,
+  'POST /api/usual-variances': ['agronomist'],
   'GET /api/candidates': weighers,
   'GET /api/weigh-ups': weighers,
   'POST /api/weigh-ups': weighers,
@@ -52,7 +55,7 @@ const allowed: Record<string, Who[]> = {
 const isContract = (value: unknown): value is Contract =>
   typeof value === 'object' && value !== null && 'method' in value && 'access' in value && 'reply' in value;
 
-const contracts = [account, catalogue, growerCopy, trialDesk, trial, weighUp]
+const contracts = [account, catalogue, growerCopy, trialDesk, trial, usualVariance, weighUp]
   .flatMap((module) => Object.values(module))
   .filter(isContract);
 

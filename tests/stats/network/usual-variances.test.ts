@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { combineTrials } from '#server/stats/network/combine-trials.ts';
 import { defaultUsualVariances } from '#server/stats/network/interaction-variances.ts';
-import { estimateUsualVariances } from '#server/stats/network/usual-variances.ts';
+import { estimateUsualVariances } from '#server/stats/network/estimate-usual-variances.ts';
 import { growCells } from '#tests/support/random-network.ts';
 import { readNetworkCase, toCells } from '#tests/support/network-case.ts';
 

@@ -16,7 +16,9 @@ const LEAST_SHARE = 0.05;
 export interface UsualEstimate {
   readonly outcome: 'estimated';
   readonly variances: InteractionVariances & { readonly entry: number };
-  /** 95 %, by a scaled χ² with the variance's own df; null for a term at its least share */
+  /** by the expected information; null for a term at its least share */
+  readonly standardErrors: Readonly<Record<keyof InteractionVariances, number | null>>;
+  /** 95 %, see varianceInterval; null for a term at its least share */
   readonly intervals: Readonly<Record<keyof InteractionVariances, readonly [number, number] | null>>;
   readonly environments: number;
   readonly seasons: number;
@@ -30,8 +32,12 @@ export interface NoUsualEstimate {
   readonly entries: number;
 }
 
-function intervalOf(variance: number, spread: number): readonly [number, number] {
-  const df = (2 * variance * variance) / spread;
+/**
+ * 95 % interval of a variance, by a scaled χ² whose df give the variance's standard error.
+ * Source: Satterthwaite (1946), Biometrics Bull. 2:110–114.
+ */
+export function varianceInterval(variance: number, standardError: number): readonly [number, number] {
+  const df = 2 * (variance / standardError) ** 2;
   const quantile = (tail: number): number => findUpperQuantile((x) => chiSquareUpper(x, df), tail, df);
   return [(df * variance) / quantile(0.025), (df * variance) / quantile(0.975)];
 }
@@ -39,16 +45,20 @@ function intervalOf(variance: number, spread: number): readonly [number, number]
 function describeVariances({
   fit,
   thetaCovariance,
-}: EntryEstimates): Pick<UsualEstimate, 'intervals'> & { variances: InteractionVariances } {
+}: EntryEstimates): Pick<UsualEstimate, 'intervals' | 'standardErrors'> & {
+  variances: InteractionVariances;
+} {
   const total = fit.point.theta.reduce((sum, x) => sum + x, 0);
   const meanVariance = fit.frame.v.reduce((sum, x) => sum + x, 0) / fit.frame.cellCount;
   const least = LEAST_SHARE * (total > 0 ? total : meanVariance);
   const values = interactionTerms.map((_, k) => Math.max(fit.point.theta[k]!, least));
-  const intervals = interactionTerms.map((_, k) =>
-    fit.point.theta[k]! > least ? intervalOf(fit.point.theta[k]!, thetaCovariance[k * 4]!) : null,
+  const errors = interactionTerms.map((_, k) =>
+    fit.point.theta[k]! > least ? Math.sqrt(thetaCovariance[k * 4]!) : null,
   );
+  const intervals = errors.map((error, k) => (error === null ? null : varianceInterval(values[k]!, error)));
   return {
     variances: { site: values[0]!, year: values[1]!, rest: values[2]! },
+    standardErrors: { site: errors[0] ?? null, year: errors[1] ?? null, rest: errors[2] ?? null },
     intervals: { site: intervals[0]!, year: intervals[1]!, rest: intervals[2]! },
   };
 }
@@ -75,8 +85,8 @@ export function estimateUsualVariances(cells: readonly TrialCell[]): UsualEstima
   const fit = fitNetwork(frame, null);
   if (fit.outcome === 'not-fitted' || fit.dropped.length > 0) return { outcome: 'not-fitted', ...counts };
   const estimates = estimateEntries(fit);
-  const { variances, intervals } = describeVariances(estimates);
+  const { variances, intervals, standardErrors } = describeVariances(estimates);
   const between = shrinkEffects(fit, estimates, totalVariance(variances)).entryVariances;
   const entry = Math.max(...between, LEAST_SHARE * totalVariance(variances));
-  return { outcome: 'estimated', variances: { ...variances, entry }, intervals, ...counts };
+  return { outcome: 'estimated', variances: { ...variances, entry }, standardErrors, intervals, ...counts };
 }
