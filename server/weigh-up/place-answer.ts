@@ -1,6 +1,13 @@
 import { makeCaution, type Caution } from '#shared/caution.ts';
 import type { BilingualName } from '#shared/catalogue.ts';
-import type { CandidateResult, GapAtYield, UsedTrial, WeighUpResult } from '#shared/weigh-up.ts';
+import type {
+  CandidateResult,
+  GapAtYield,
+  GapEstimate,
+  GapLine,
+  UsedTrial,
+  WeighUpResult,
+} from '#shared/weigh-up.ts';
 import { readGapAt } from '#server/stats/engine.ts';
 import type { EvidenceGround, EvidenceTrial } from './evidence.ts';
 import type { FarmPlace } from './farm-place.ts';
@@ -78,23 +85,30 @@ function cautionRegions(used: readonly EvidenceTrial[]): Caution[] {
     : [makeCaution('trials-from-elsewhere', 'warning', { count: elsewhere.length, regions })];
 }
 
+/**
+ * The line takes trials for independent, and so knows nothing of what a season does to a variety everywhere at once.
+ * Its level is therefore never told more surely than the model of all trials tells it.
+ */
+const holdToModel = (line: GapLine, { se, df }: GapEstimate): Parameters<typeof readGapAt>[0] => ({
+  ...line,
+  outcome: 'fitted',
+  gapSe: Math.max(line.gapSe, se),
+  df: Math.min(line.df, df),
+});
+
 /** The gap where the grower's fields usually yield, and what keeps it from being read there. */
 function readAtUsualYield(
   candidate: CandidateResult,
   { usualYield, currentName }: FarmGround,
 ): CandidateResult {
-  const { gapLine, varietyName: variety, verdict } = candidate;
+  const { gap, gapLine, varietyName: variety, verdict } = candidate;
   // What the evidence is too thin to judge, it is too thin to draw a line through.
   if (usualYield === null || verdict === 'thin') return { ...candidate, gapAtUsualYield: null };
-  if (!gapLine) {
+  if (!gapLine || gap === null) {
     const caution = makeCaution('no-yield-line', 'note', { variety, current: currentName });
     return { ...candidate, gapAtUsualYield: null, cautions: [...candidate.cautions, caution] };
   }
-  const {
-    isCovered: isCarried,
-    interval95,
-    ...read
-  } = readGapAt({ outcome: 'fitted', ...gapLine }, usualYield);
+  const { isCovered: isCarried, interval95, ...read } = readGapAt(holdToModel(gapLine, gap), usualYield);
   const [low, high] = interval95;
   const gapAtUsualYield: GapAtYield = {
     usualYield,

@@ -4,11 +4,13 @@ import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { useForm, type UseFormReturn } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
 import { useNavigate, useSearchParams } from 'react-router-dom';
+import type { CautionCode } from '#shared/caution.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { createWeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
+import { CautionList } from '#src/components/caution-list.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
@@ -16,6 +18,7 @@ import { Skeleton } from '#src/components/skeleton.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
+import { useCautionItems } from '#src/use-caution-items.ts';
 import { CandidatePicker } from './candidate-picker.tsx';
 import { FarmFields, PriceFields } from './farm-fields.tsx';
 import {
@@ -106,11 +109,19 @@ function useSheetPrices(form: NewWeighUpFormApi, defaults: MoneyAssumptions | nu
   }, [form, defaults]);
 }
 
+/** Said here already: what follows from the choice of trials and from where the farm lies. The others wait for the answer. */
+const placeCautions: ReadonlySet<CautionCode> = new Set([
+  ...(['no-trial-in-region', 'trials-from-elsewhere', 'farm-far', 'farm-unlike-sites'] as const),
+  ...(['farm-drier', 'farm-wetter', 'farm-cooler', 'farm-warmer'] as const),
+  ...(['farm-lighter-soil', 'farm-heavier-soil', 'farm-other-soil'] as const),
+]);
+
 function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
   const { t } = useTranslation('weigh-up');
   const errorText = useErrorText();
   const candidates = useQuery(candidatesQuery(question));
   const creation = useCreateWeighUp();
+  const cautionItems = useCautionItems();
   const defaults = candidates.data?.assumptions ?? null;
   useSheetPrices(form, defaults);
   if (candidates.isPending) return <Skeleton lines={8} />;
@@ -135,6 +146,11 @@ function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
       <section className="flex flex-col gap-3">
         <h2>{t('new.candidates')}</h2>
         <p className="text-faded">{t('new.candidatesLead')}</p>
+        <CautionList
+          title={t('new.placeCautions')}
+          headingLevel={3}
+          items={cautionItems(result.cautions.filter(({ code }) => placeCautions.has(code)))}
+        />
         {result.candidates.length === 0 ? (
           <p>{t('new.noCandidates')}</p>
         ) : (

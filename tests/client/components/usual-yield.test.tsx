@@ -39,15 +39,15 @@ describe('the gap at the usual yield', () => {
       'On fields that yield about 4.6 t/ha, the line through 9 trials gives a gap of +0.08 t/ha',
     );
     expect(text()).toContain(
-      'between \u22120.08 and +0.24 t/ha (95% interval for the average field of that yield)',
+      'between \u22120.08 and +0.24 t/ha (95% interval for the average field of that yield, this pair alone)',
     );
-    expect(text()).toContain('really changes with the yield of the field: +0.31 t/ha');
+    expect(text()).toContain('the gap changes with the yield of the field: +0.31 t/ha');
   });
 
   it('claims no slope where the trials show none', async () => {
     await tell({ gapLine: { ...line, slopeP: 0.4 }, gapAtUsualYield: read });
     expect(text()).toContain('is not settled (p 0.40)');
-    expect(text()).not.toContain('really changes');
+    expect(text()).not.toContain('the gap changes');
   });
 
   it('is not told where the trials do not reach, nor where nobody has said the yield', async () => {

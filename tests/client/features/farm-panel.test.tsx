@@ -47,7 +47,7 @@ async function open(change: Partial<WeighUp> = {}) {
     at: '/',
     namespaces: ['weigh-up', 'errors'],
   });
-  const place = await screen.findByLabelText('Where the farm lies');
+  const place = await screen.findByLabelText('Town or coordinates');
   return { user, place };
 }
 
@@ -69,7 +69,7 @@ describe('the farm of a weigh-up', () => {
     expect(screen.getByLabelText('Rain in season')).toHaveProperty('value', '322');
     expect(nearest().disabled).toBe(false);
     await user.selectOptions(screen.getByLabelText('Trials that answer'), nearest());
-    await user.type(screen.getByLabelText('Usual yield of the crop'), '4.5');
+    await user.type(screen.getByLabelText('Usual yield'), '4.5');
     await user.click(screen.getByRole('button', { name: 'Weigh again for this farm' }));
     await waitFor(() => expect(saved).toHaveLength(1));
     expect(saved[0]).toMatchObject({
@@ -134,7 +134,7 @@ describe('the farm of a weigh-up', () => {
   it('refuses a yield that is none, in words beside the field', async () => {
     const saved = serve();
     const { user } = await open();
-    await user.type(screen.getByLabelText('Usual yield of the crop'), 'good');
+    await user.type(screen.getByLabelText('Usual yield'), 'good');
     await user.click(screen.getByRole('button', { name: 'Weigh again for this farm' }));
     expect(await screen.findByText(/value of the right kind/)).toBeTruthy();
     expect(saved).toHaveLength(0);
