@@ -101,7 +101,7 @@ const analyse = ({ plots, design }: Layout) => analyseTrial(plots, design);
 
 /** Single trials: what the engine is held to, then growth to 2,000 plots. */
 export const trialSuite: BenchSuite = {
-  title: 'One trial',
+  title: 'One trial (warm: the curve of Tukey’s p for a number of entries and df is kept between runs)',
   script: 'trial-tasks.R',
   tasks: [
     {

@@ -94,6 +94,8 @@ const LAST_TABULATED = 16;
 const PANEL_WIDTH = 1.6;
 /** Pairs from which tabulating the tail over q is cheaper than one integral a pair. */
 const MANY_PAIRS = 120;
+/** Curves kept at a time. */
+const MOST_CURVES = 64;
 
 /**
  * Tukey–Kramer adjusted p values of gaps among k entries.
@@ -107,10 +109,27 @@ const MANY_PAIRS = 120;
 export function tukeyAdjust(ts: ArrayLike<number>, k: number, df: number): Float64Array {
   const qs = Float64Array.from(ts, (t) => Math.SQRT2 * Math.abs(t));
   if (qs.length < MANY_PAIRS || df === Infinity) return qs.map((q) => studentisedRangeUpper(q, k, df));
-  // exp(−s² q²/4) averaged over the scale s: what the tail falls like, so that their ratio is smooth.
-  const logFall = (q: number): number => -0.5 * df * Math.log1p((q * q) / (2 * df));
-  const ratio = tabulate((q) => studentisedRangeUpper(q, k, df) * Math.exp(-logFall(q)), PANEL_WIDTH);
+  const ratio = rangeCurve(k, df);
   return qs.map((q) =>
-    q < LAST_TABULATED ? Math.min(1, ratio(q) * Math.exp(logFall(q))) : studentisedRangeUpper(q, k, df),
+    q < LAST_TABULATED ? Math.min(1, ratio(q) * Math.exp(logFall(q, df))) : studentisedRangeUpper(q, k, df),
   );
+}
+
+/** ln of exp(−s² q²/4) averaged over the scale s: what the tail falls like, so that their ratio is smooth. */
+function logFall(q: number, df: number): number {
+  return -0.5 * df * Math.log1p((q * q) / (2 * df));
+}
+
+const curves = new Map<string, (q: number) => number>();
+
+/** P(Q > q) over exp(logFall), tabulated; kept, since the traits of a trial and every visit to it ask for the same. */
+function rangeCurve(k: number, df: number): (q: number) => number {
+  const key = `${k} ${df}`;
+  let curve = curves.get(key);
+  if (!curve) {
+    curve = tabulate((q) => studentisedRangeUpper(q, k, df) * Math.exp(-logFall(q, df)), PANEL_WIDTH);
+    if (curves.size >= MOST_CURVES) curves.clear();
+    curves.set(key, curve);
+  }
+  return curve;
 }
