@@ -90,8 +90,8 @@ export const candidateResult = z.object({
   siteYears: z.number().int(),
   sharedSiteYears: z.number().int(),
   /**
-   * The gap that money is reckoned on, as it may come out on the grower's own land in another season: shrunken where
-   * several candidates were compared, null where the evidence is too thin to judge. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
+   * The gap that money is reckoned on, as it may come out on the grower's own land in another season: shrunken, since
+   * candidates are picked from a list; null where the evidence is too thin to judge. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
    */
   moneyGap: gapDistribution.nullable(),
   money: moneyResult.nullable(),

@@ -91,7 +91,7 @@ function describeCandidate(
   const { currentVarietyId } = question;
   // What the evidence is too thin to judge, it is too thin to price.
   const isPriced = gap !== null && weighing.verdict !== 'thin';
-  const moneyGap = isPriced ? chooseMoneyGap(gap, question.candidateIds.length > 1) : null;
+  const moneyGap = isPriced ? toMoneyGap(gap) : null;
   return {
     varietyId,
     varietyName,
@@ -134,13 +134,12 @@ function warnOfLeader(candidates: CandidateResult[], entries: number): Candidate
   });
 }
 
-/** Where several were compared, the gap is pulled back for having been picked: engine.md, verdict and money. */
-function chooseMoneyGap(gap: CandidateGap, isPicked: boolean): GapDistribution {
-  const { ownSeason, shrunken } = gap;
-  const df = Math.min(ownSeason.df, mostDf);
-  return isPicked
-    ? { estimate: shrunken.estimate, se: shrunken.ownSeasonSe, df }
-    : { estimate: gap.estimate, se: ownSeason.se, df };
+/**
+ * Candidates come from a list, also when one alone is kept, so money rests on the gap pulled back for that. By the plain
+ * estimate the chance that it pays is overconfident where trials are few: the calibration in DEVELOPERS.md.
+ */
+function toMoneyGap({ ownSeason, shrunken }: CandidateGap): GapDistribution {
+  return { estimate: shrunken.estimate, se: shrunken.ownSeasonSe, df: Math.min(ownSeason.df, mostDf) };
 }
 
 function toGapEstimate(gap: CandidateGap): GapEstimate {
