@@ -21,6 +21,7 @@ import { buildSession } from './sign-in-session.ts';
 import { addTrialDeskRoutes } from './trial-desk/trial-desk-routes.ts';
 import { addTrialRoutes } from './trials/trial-routes.ts';
 import { addUsualVariancesRoutes } from './usual-variances/usual-variances-routes.ts';
+import { addWeighUpRecordRoutes } from './weigh-up/weigh-up-record-routes.ts';
 import { addWeighUpRoutes } from './weigh-up/weigh-up-routes.ts';
 
 const capabilities = [
@@ -31,12 +32,22 @@ const capabilities = [
   addTrialRoutes,
   addTrialDeskRoutes,
   addWeighUpRoutes,
+  addWeighUpRecordRoutes,
   addUsualVariancesRoutes,
   addGrowerCopyRoutes,
 ];
 
-/** Builds the application: API under /api, the client on every other path. Listens to nothing yet. */
-export function buildApp(db: Database, pool: pg.Pool, settings: ServerSettings, logger: Logger): Express {
+/**
+ * Builds the application: API under /api, the client on every other path. Listens to nothing yet.
+ * @param onMailQueued told when a mail was put into the outbox, so that it need not wait for the next look
+ */
+export function buildApp(
+  db: Database,
+  pool: pg.Pool,
+  settings: ServerSettings,
+  logger: Logger,
+  onMailQueued: () => void = () => undefined,
+): Express {
   const app = express();
   app.disable('x-powered-by');
   app.set('trust proxy', settings.isBehindHttpsProxy ? 1 : false);
@@ -49,7 +60,7 @@ export function buildApp(db: Database, pool: pg.Pool, settings: ServerSettings, 
   );
   app.use(buildHelmet(settings));
   app.use(compression());
-  addApi(app, db, pool, settings);
+  addApi(app, db, pool, settings, onMailQueued);
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
   app.use(handleError);
   return app;
@@ -65,7 +76,13 @@ function describeFailure(error: Error): { type: string; message: string; stack: 
 }
 
 /** Contracts carry whole paths, so the routers are mounted at the root and only the guards at /api. */
-function addApi(app: Express, db: Database, pool: pg.Pool, settings: ServerSettings): void {
+function addApi(
+  app: Express,
+  db: Database,
+  pool: pg.Pool,
+  settings: ServerSettings,
+  onMailQueued: () => void,
+): void {
   app.use('/api', (_request, response, next) => {
     response.set('Cache-Control', 'no-store');
     next();
@@ -74,7 +91,7 @@ function addApi(app: Express, db: Database, pool: pg.Pool, settings: ServerSetti
   const router = Router();
   addHealthRoute(router, db);
   router.use('/api', buildSession(db, pool, settings));
-  for (const addRoutes of capabilities) addRoutes(router, db);
+  for (const addRoutes of capabilities) addRoutes(router, db, settings, onMailQueued);
   app.use(router);
   app.use('/api', () => {
     throw new CodedError('not-found');

@@ -125,9 +125,15 @@ export const usedTrial = z.object({
 export type UsedTrial = z.infer<typeof usedTrial>;
 
 export const leftOutTrial = usedTrial.extend({
-  reason: z.enum(['weak-cv', 'no-variance', 'not-connected', 'set-aside']),
+  reason: z.enum(['weak-cv', 'no-variance', 'not-connected', 'set-aside', 'ticked-off']),
+  /** The advisor's words where the trial was ticked off. */
+  reasonText: z.string().optional(),
 });
 export type LeftOutTrial = z.infer<typeof leftOutTrial>;
+
+/** A trial that the advisor takes out of a weigh-up, and why. */
+export const tickedOffTrial = z.object({ trialId: z.uuid(), reason: z.string().trim().min(1).max(500) });
+export type TickedOffTrial = z.infer<typeof tickedOffTrial>;
 
 export const weighUpResult = z.object({
   /** no-trials: the region has none of the crop in these seasons, so there is no verdict at all. */
@@ -201,6 +207,7 @@ export const weighUp = z.object({
   candidateIds: z.array(z.uuid()),
   assumptions: moneyAssumptions,
   ...farmAnswer,
+  tickedOff: z.array(tickedOffTrial).default([]),
   createdAt: z.iso.datetime(),
   updatedAt: z.iso.datetime(),
 });

@@ -10,7 +10,7 @@ import type { WeighUp, WeighUpInput, WeighUpLine } from '#shared/weigh-up.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
 
 /** The one predicate of ownership: somebody else's weigh-up answers like one that does not exist. */
-const isOwn = (ownerId: string, weighUpId: string) =>
+export const isOwn = (ownerId: string, weighUpId: string) =>
   and(eq(weighUps.id, weighUpId), eq(weighUps.ownerId, ownerId));
 
 /** The weigh-ups of one person, last changed first. */
@@ -100,13 +100,7 @@ export async function updateWeighUp(
   input: WeighUpInput,
 ): Promise<WeighUp> {
   return db.transaction(async (tx) => {
-    const [held] = await tx
-      .select({ revision: weighUps.revision })
-      .from(weighUps)
-      .where(isOwn(ownerId, weighUpId))
-      .for('update');
-    if (held === undefined) throw new CodedError('not-found');
-    if (held.revision !== revision) throw new CodedError('revision-conflict');
+    await lockOwnWeighUp(tx, ownerId, weighUpId, revision);
     await checkReferences(tx, input);
     await tx
       .update(weighUps)
@@ -116,6 +110,25 @@ export async function updateWeighUp(
     await insertCandidates(tx, weighUpId, input.candidateIds);
     return readOwnWeighUp(tx, ownerId, weighUpId);
   });
+}
+
+/**
+ * Holds a weigh-up until the transaction ends, at the revision that the change was made over.
+ * @throws CodedError not-found, revision-conflict
+ */
+export async function lockOwnWeighUp(
+  tx: DatabaseOrTransaction,
+  ownerId: string,
+  weighUpId: string,
+  revision: number,
+): Promise<void> {
+  const [held] = await tx
+    .select({ revision: weighUps.revision })
+    .from(weighUps)
+    .where(isOwn(ownerId, weighUpId))
+    .for('update');
+  if (held === undefined) throw new CodedError('not-found');
+  if (held.revision !== revision) throw new CodedError('revision-conflict');
 }
 
 /** A question is saved whole: what it leaves unsaid about the farm is not known any more. */

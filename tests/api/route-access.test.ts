@@ -8,6 +8,7 @@ import * as growerCopy from '#shared/grower-copy.ts';
 import * as trialDesk from '#shared/trial-desk.ts';
 import * as trial from '#shared/trial.ts';
 import * as usualVariance from '#shared/usual-variance.ts';
+import * as weighUpRecord from '#shared/weigh-up-record.ts';
 import * as weighUp from '#shared/weigh-up.ts';
 import { openApiWorld, type Agent, type ApiWorld } from './api-world.ts';
 
@@ -46,16 +47,20 @@ const allowed: Record<string, Who[]> = {
   'POST /api/weigh-ups': weighers,
   'GET /api/weigh-ups/:weighUpId': weighers,
   'PUT /api/weigh-ups/:weighUpId': weighers,
+  'GET /api/weigh-ups/:weighUpId/decision': weighers,
+  'PUT /api/weigh-ups/:weighUpId/decision': weighers,
   'GET /api/weigh-ups/:weighUpId/grower-copies': weighers,
   'POST /api/weigh-ups/:weighUpId/grower-copies': weighers,
   'DELETE /api/grower-copies/:copyId': weighers,
+  'POST /api/grower-copies/:copyId/mails': weighers,
+  'POST /api/grower-copies/:copyId/mail-retries': weighers,
   'GET /api/copies/:token': everyone,
 };
 
 const isContract = (value: unknown): value is Contract =>
   typeof value === 'object' && value !== null && 'method' in value && 'access' in value && 'reply' in value;
 
-const contracts = [account, catalogue, growerCopy, trialDesk, trial, usualVariance, weighUp]
+const contracts = [account, catalogue, growerCopy, trialDesk, trial, usualVariance, weighUp, weighUpRecord]
   .flatMap((module) => Object.values(module))
   .filter(isContract);
 

@@ -87,6 +87,7 @@ export function buildWeighUp(change: Partial<WeighUp> = {}): WeighUp {
     usualYield: null,
     trialChoice: 'region',
     includeNeighbours: false,
+    tickedOff: [],
     createdAt: '2026-12-01T09:00:00.000Z',
     updatedAt: '2026-12-01T09:00:00.000Z',
     ...change,

@@ -1,0 +1,26 @@
+import { z } from 'zod';
+import { defineContract } from './contract.ts';
+import { decision, decisionInput, earlierDecision } from './decision.ts';
+import { weighUp } from './weigh-up.ts';
+
+const access = ['advisor', 'agronomist'] as const;
+const params = z.object({ weighUpId: z.uuid() });
+
+/** What was decided, and what was decided for the same farm and crop in earlier seasons, newest first. */
+export const readDecisions = defineContract({
+  method: 'GET',
+  path: '/api/weigh-ups/:weighUpId/decision',
+  access,
+  params,
+  reply: z.object({ decision: decision.nullable(), earlier: z.array(earlierDecision) }),
+});
+
+/** Records a decision with what the evidence says now, or takes it back (null); `revision-conflict` as in changeWeighUp. */
+export const recordDecision = defineContract({
+  method: 'PUT',
+  path: '/api/weigh-ups/:weighUpId/decision',
+  access,
+  params,
+  body: z.object({ revision: z.number().int(), decision: decisionInput.nullable() }),
+  reply: z.object({ weighUp, decision: decision.nullable() }),
+});
