@@ -9,6 +9,7 @@ export const paths = {
   trial: '/trials/:trialId',
   trialDesk: '/desk',
   deskImport: '/desk/import',
+  usualVariances: '/desk/usual-variances',
   deskTrial: '/desk/trials/:trialId',
   accounts: '/accounts',
   newAccount: '/accounts/new',

@@ -44,6 +44,10 @@ const DeskTrialPage = lazyPage(
   async () => (await import('./features/trial-desk/desk-trial-page.tsx')).DeskTrialPage,
   ['desk', 'trials', 'analysis', 'cautions', 'drawings'],
 );
+const UsualVariancesPage = lazyPage(
+  async () => (await import('./features/trial-desk/usual-variances-page.tsx')).UsualVariancesPage,
+  ['desk'],
+);
 const AccountsPage = lazyPage(
   async () => (await import('./features/accounts/accounts-page.tsx')).AccountsPage,
   ['accounts'],
@@ -76,6 +80,7 @@ export function AppRoutes() {
           <Route path={paths.weighUps} element={<WeighUpsPage />} />
           <Route path={paths.newWeighUp} element={<NewWeighUpPage />} />
           <Route path={paths.weighUp} element={<WeighUpPage />} />
+          <Route path={paths.usualVariances} element={<UsualVariancesPage />} />
         </Route>
         <Route element={<SignedInOnly roles={['agronomist']} />}>
           <Route path={paths.trialDesk} element={<DeskPage />} />

@@ -1,6 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import type { FarmRange } from '#shared/farm.ts';
-import type { WeighUpResult } from '#shared/weigh-up.ts';
+import type { VerdictCode } from '#shared/verdict.ts';
+import type { CandidateResult, WeighUpResult } from '#shared/weigh-up.ts';
 import { useFormat } from './use-format.ts';
 
 type MethodNotesProps = { result: WeighUpResult };
@@ -31,13 +32,43 @@ export function MethodNotes({ result }: MethodNotesProps) {
             season: spread(result.components.season),
             rest: spread(result.components.rest),
           })}{' '}
-          {result.usualVariancesFrom && t(`method:from.${result.usualVariancesFrom}`)}
+          {result.usualVariancesFrom &&
+            t(`method:from.${result.usualVariancesFrom}`, {
+              date: result.usualVariancesAt ? format.date(result.usualVariancesAt) : '',
+            })}
         </p>
       )}
+      <SensitivityNotes candidates={result.candidates} />
       <p>{t('method:money')}</p>
       <p className="text-sm text-faded">
         {t('method:computed', { at: format.dateTime(result.computedAt), engine: result.engineVersion })}
       </p>
+    </div>
+  );
+}
+
+/** What the verdicts would be, were the usual variances half or twice what they are taken for. */
+function SensitivityNotes({ candidates }: { candidates: readonly CandidateResult[] }) {
+  const { t } = useTranslation(['method', 'common']);
+  const varied = candidates.flatMap(({ varietyName: variety, verdict, sensitivity }) =>
+    sensitivity?.half && sensitivity.double ? [{ variety, verdict, ...sensitivity }] : [],
+  );
+  if (varied.length === 0) return null;
+  const changing = varied.filter(({ verdict, half, double }) => half !== verdict || double !== verdict);
+  const say = (verdict: VerdictCode | null) => (verdict === null ? '–' : t(`common:verdict.${verdict}`));
+  if (changing.length === 0) return <p>{t('method:sensitivity.holds')}</p>;
+  return (
+    <div>
+      <p>{t('method:sensitivity.changes')}</p>
+      <ul className="list-disc pl-5">
+        {changing.map(({ variety, verdict, half, double }) => (
+          <li key={variety}>
+            {t('method:sensitivity.line', {
+              ...{ variety, verdict: say(verdict), half: say(half), double: say(double) },
+            })}
+          </li>
+        ))}
+      </ul>
     </div>
   );
 }

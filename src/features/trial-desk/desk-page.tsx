@@ -27,9 +27,12 @@ export function DeskPage() {
         title={t('title')}
         below={t('lead')}
         actions={
-          <LinkButton to={paths.deskImport} tone="main">
-            {t('import')}
-          </LinkButton>
+          <>
+            <LinkButton to={paths.usualVariances}>{t('usual.title')}</LinkButton>
+            <LinkButton to={paths.deskImport} tone="main">
+              {t('import')}
+            </LinkButton>
+          </>
         }
       />
       {catalogue.isPending && <Skeleton />}

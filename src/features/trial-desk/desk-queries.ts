@@ -2,6 +2,7 @@ import { keepPreviousData, queryOptions, type QueryClient } from '@tanstack/reac
 import type { z } from 'zod';
 import { listDeskTrials, readDeskAnalysis, readDeskTrial } from '#shared/trial-desk.ts';
 import type { TrialDetail } from '#shared/trial.ts';
+import { listUsualVariances } from '#shared/usual-variance.ts';
 import { callApi } from '#src/api-client.ts';
 
 export type DeskFilter = z.output<NonNullable<typeof listDeskTrials.query>>;
@@ -28,6 +29,12 @@ export const deskAnalysisQuery = (trialId: string, trait: string) =>
       (await callApi(readDeskAnalysis, { params: { trialId }, query: { trait } }, signal)).analysis,
     placeholderData: keepPreviousData,
   });
+
+/** Of every crop, with their history. */
+export const usualVariancesQuery = queryOptions({
+  queryKey: ['usual-variances'],
+  queryFn: async ({ signal }) => (await callApi(listUsualVariances, {}, signal)).crops,
+});
 
 /** Takes over a changed trial and asks again for whatever hangs on it. */
 export async function takeDeskTrial(client: QueryClient, trial: TrialDetail): Promise<void> {

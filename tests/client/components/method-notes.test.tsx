@@ -1,0 +1,36 @@
+import { screen } from '@testing-library/react';
+import { expect, test } from 'vitest';
+import { MethodNotes } from '#src/components/method-notes.tsx';
+import { renderClient } from '#tests/client/support/render-client.tsx';
+import { buildCandidate, buildResult } from '#tests/client/support/weigh-up-factory.ts';
+
+const namespaces = ['method', 'verdicts'] as const;
+const holding = buildCandidate({ sensitivity: { half: 'ahead', double: 'ahead' } });
+const changing = buildCandidate({ varietyName: 'Sorrel', sensitivity: { half: 'ahead', double: 'open' } });
+
+const show = (result: ReturnType<typeof buildResult>) =>
+  renderClient(<MethodNotes result={result} />, { namespaces: [...namespaces] });
+
+test('verdicts that stand with the usual variances halved and doubled are said to stand', async () => {
+  await show(buildResult([holding]));
+  expect(screen.getByText(/halved or doubled, every verdict stays as it is/)).toBeTruthy();
+  expect(screen.queryByRole('listitem')).toBeNull();
+});
+
+test('a verdict that changes is named with what it would be', async () => {
+  await show(buildResult([holding, changing]));
+  const [line, ...others] = screen.getAllByRole('listitem').map((item) => item.textContent);
+  expect(line).toBe('Sorrel: Really ahead when halved, Not settled when doubled; now Really ahead.');
+  expect(others).toEqual([]);
+});
+
+test('without usual variances nothing is said of them', async () => {
+  await show(buildResult([buildCandidate({ sensitivity: null })]));
+  expect(screen.queryByText(/halved or doubled/)).toBeNull();
+});
+
+test('own variances are told with the day they were estimated', async () => {
+  const own = { usualVariancesFrom: 'own-trials', usualVariancesAt: '2026-11-02T09:00:00.000Z' } as const;
+  await show({ ...buildResult([holding]), ...own });
+  expect(screen.getByText(/as estimated on 2 November 2026/)).toBeTruthy();
+});
