@@ -30,6 +30,10 @@ export async function storeDemoWeighUp(
     growerName: 'Joss Penhallow',
     farmName: 'Cold Acre',
     areaHectares: 120,
+    // Between Penhollow and Haverlin, in the midst of the region's sites.
+    ...{ farmLatitude: 47.58, farmLongitude: -38.7, farmSeasonRainMm: 320, farmHeatSumDegreeDays: 1380 },
+    farmSoilTexture: 'loam',
+    usualYield: 4.8,
     currentVarietyId: pick(varieties, current),
     candidateIds: candidates.map((name) => pick(varieties, name)),
     assumptions: assume(sheet, varieties),

@@ -75,22 +75,26 @@ function TrialSentences({ candidate, currentName: current, unit, decimals }: Sto
           shared: format.number(candidate.sharedSiteYears),
         })}
       </p>
-      <IntervalSentences gap={gap} unit={unit} decimals={decimals} />
+      <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />
       <UsualYieldSentences candidate={candidate} unit={unit} decimals={decimals} />
     </>
   );
 }
 
 type IntervalSentencesProps = {
-  gap: NonNullable<CandidateResult['gap']>;
+  candidate: Pick<CandidateResult, 'gap' | 'trials'>;
   unit: string;
   decimals: number;
 };
 
 /** Both intervals in words, each with its level and what it is an interval of. */
-export function IntervalSentences({ gap, unit, decimals }: IntervalSentencesProps) {
+export function IntervalSentences({ candidate, unit, decimals }: IntervalSentencesProps) {
   const { t } = useTranslation('verdicts');
   const format = useFormat();
+  const { gap, trials } = candidate;
+  if (gap === null) return null;
+  // With trials of other regions among them, the interval is not one of the region's average.
+  const isBeyondRegion = trials.some(({ inRegion }) => inRegion === false);
   const ends = (interval: Interval) => ({
     low: format.number(interval.low, { decimals, isSigned: true }),
     high: format.gap(interval.high, unit, decimals),
@@ -98,7 +102,7 @@ export function IntervalSentences({ gap, unit, decimals }: IntervalSentencesProp
   });
   return (
     <>
-      <p>{t('story.region', ends(gap.region))}</p>
+      <p>{t(isBeyondRegion ? 'story.regionSites' : 'story.region', ends(gap.region))}</p>
       {gap.ownSeason && <p>{t('story.ownSeason', ends(gap.ownSeason))}</p>}
     </>
   );

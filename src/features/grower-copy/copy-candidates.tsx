@@ -4,6 +4,7 @@ import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
 import { IntervalSentences } from '#src/components/candidate-story.tsx';
+import { UsualYieldSentences } from '#src/components/usual-yield-sentences.tsx';
 import { scaleOfRows, useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
@@ -70,7 +71,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
   const { currency } = weighUp.assumptions;
   const row = toRow(candidate);
   const sentence = useGapSentence(weighUp.currentVarietyName, unit, decimals)(row);
-  const { money, verdict, gap, siteYears } = candidate;
+  const { money, verdict, siteYears } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
   return (
     <article className="border-t-2 border-ink py-4">
@@ -107,7 +108,8 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
         </GapLabel>
       </div>
       <div className="flex flex-col gap-1.5">
-        {gap && verdict !== 'thin' && <IntervalSentences gap={gap} unit={unit} decimals={decimals} />}
+        {verdict !== 'thin' && <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />}
+        <UsualYieldSentences candidate={candidate} unit={unit} decimals={decimals} />
         {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
         <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
         <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>

@@ -1,6 +1,7 @@
 import { screen } from '@testing-library/react';
 import { describe, expect, it } from 'vitest';
 import type { CandidateResult } from '#shared/weigh-up.ts';
+import { IntervalSentences } from '#src/components/candidate-story.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { SiteLines } from '#src/components/site-lines.tsx';
@@ -63,6 +64,23 @@ describe('trials of other regions', () => {
     siteName: inRegion ? 'Haverlin' : 'Brasque',
     season: 2025,
     inRegion,
+  });
+
+  it('keep the interval from being called the region’s average', async () => {
+    const gap = { trialMean: 5, estimate: 0.1, interval };
+    const sentences = (inRegion: boolean) => (
+      <IntervalSentences
+        candidate={buildCandidate({ trials: [{ ...trial(1, inRegion), ...gap }] })}
+        unit="t/ha"
+        decimals={2}
+      />
+    );
+    const { unmount } = await renderClient(sentences(true), { at: '/', namespaces: ['verdicts'] });
+    expect(text()).toContain('For the region’s average');
+    unmount();
+    await renderClient(sentences(false), { at: '/', namespaces: ['verdicts'] });
+    expect(text()).toContain('some of them in other regions');
+    expect(text()).not.toContain('For the region’s average');
   });
 
   it('are marked in the lines per trial', async () => {

@@ -53,7 +53,7 @@ async function open(change: Partial<WeighUp> = {}) {
 
 const nearest = () =>
   within(screen.getByLabelText('Trials that answer')).getByRole<HTMLOptionElement>('option', {
-    name: 'Those of the sites nearest the farm',
+    name: 'Of the sites nearest the farm',
   });
 
 afterEach(() => vi.unstubAllGlobals());
