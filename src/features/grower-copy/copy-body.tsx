@@ -68,9 +68,15 @@ function WeighedCopy({ snapshot }: { snapshot: GrowerCopySnapshot }) {
   const cautionItems = useCautionItems();
   const { weighUp, result, traits } = snapshot;
   const currentName = weighUp.currentVarietyName;
-  const cautions = [...result.cautions, ...result.candidates.flatMap((candidate) => candidate.cautions)];
+  // What stops the whole evidence is read before the verdict, not after it.
+  const stops = result.cautions.filter(({ severity }) => severity === 'stop');
+  const cautions = [
+    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
+    ...result.candidates.flatMap((candidate) => candidate.cautions),
+  ];
   return (
     <>
+      <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
       <VerdictHeadline candidates={result.candidates} currentName={currentName} />
       <CopyCandidates weighUp={weighUp} candidates={result.candidates} />
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />

@@ -131,7 +131,12 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     findTrait(crop, 'yield')?.practicalMargin ?? null,
   );
   const currentName = weighUp.currentVarietyName;
-  const cautions = [...result.cautions, ...candidates.flatMap((candidate) => candidate.cautions)];
+  // What stops the whole evidence is read before the verdict, not after it.
+  const stops = result.cautions.filter(({ severity }) => severity === 'stop');
+  const cautions = [
+    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
+    ...candidates.flatMap((candidate) => candidate.cautions),
+  ];
   const varieties = [
     { id: weighUp.currentVarietyId, name: currentName },
     ...candidates.map(({ varietyId, varietyName }) => ({ id: varietyId, name: varietyName })),
@@ -139,6 +144,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   return (
     <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem]">
       <div className="flex min-w-0 flex-col gap-8">
+        <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
         <CandidateStrip
           candidates={candidates}

@@ -31,7 +31,7 @@ const catalogue = {
 type Asked = { method: string; path: string; body: unknown };
 
 /** Answers like the server and keeps what was asked. */
-function serve(answerToSave: (asked: Asked) => Response): Asked[] {
+function serve(answerToSave: (asked: Asked) => Response, answer: unknown = opened): Asked[] {
   const asked: Asked[] = [];
   vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
     const call = { method: init.method ?? 'GET', path, body: JSON.parse(String(init.body ?? 'null')) };
@@ -39,7 +39,7 @@ function serve(answerToSave: (asked: Asked) => Response): Asked[] {
     if (call.method === 'PUT') return Promise.resolve(answerToSave(call));
     if (path === '/api/catalogue') return Promise.resolve(Response.json(catalogue));
     if (path.endsWith('/grower-copies')) return Promise.resolve(Response.json({ copies: [] }));
-    return Promise.resolve(Response.json(opened));
+    return Promise.resolve(Response.json(answer));
   });
   return asked;
 }
@@ -134,5 +134,23 @@ describe('a candidate’s row', () => {
     ).toBeTruthy();
     expect(screen.getByText(/about 1 time in 250/)).toBeTruthy();
     expect(screen.getByText('a price under $95/t')).toBeTruthy();
+  });
+});
+
+describe('an answer that no trial of the region stands behind', () => {
+  it('says so before the verdict, once', async () => {
+    const regions = [{ en: 'Upper Velmar', fr: 'Haut-Velmar' }];
+    const stop = {
+      code: 'no-trial-in-region' as const,
+      severity: 'stop' as const,
+      values: { context: 'elsewhere', regions },
+    };
+    const result = { ...opened.result, cautions: [stop] };
+    serve(() => Response.json(opened), { weighUp, result });
+    await open();
+    const said = await screen.findByText(/come from other regions alone \(Upper Velmar\)/);
+    const verdict = screen.getByText(/is really ahead of Brindle/);
+    expect(said.compareDocumentPosition(verdict) & Node.DOCUMENT_POSITION_FOLLOWING).not.toBe(0);
+    expect(screen.getAllByText(/come from other regions alone/)).toHaveLength(1);
   });
 });
