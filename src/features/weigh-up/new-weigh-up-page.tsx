@@ -15,6 +15,7 @@ import { ErrorState } from '#src/components/error-state.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
+import { WeighingProgress } from '#src/components/weighing-progress.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -124,7 +125,7 @@ function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
   const cautionItems = useCautionItems();
   const defaults = candidates.data?.assumptions ?? null;
   useSheetPrices(form, defaults);
-  if (candidates.isPending) return <Skeleton lines={8} />;
+  if (candidates.isPending) return <WeighingProgress lines={8} />;
   if (candidates.isError) return <QueryErrorState query={candidates} />;
   const { result } = candidates.data;
   const { crop, region } = draft;
