@@ -11,9 +11,9 @@ import { MethodNotes } from '#src/components/method-notes.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
-import { Skeleton } from '#src/components/skeleton.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { VerdictHeadline } from '#src/components/verdict-headline.tsx';
+import { WeighingProgress } from '#src/components/weighing-progress.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
@@ -32,7 +32,7 @@ export function WeighUpPage() {
   const catalogue = useQuery(catalogueQuery);
   if (weighUp.isError) return <QueryErrorState query={weighUp} />;
   if (catalogue.isError) return <QueryErrorState query={catalogue} />;
-  if (!weighUp.data || !catalogue.data) return <Skeleton lines={10} />;
+  if (!weighUp.data || !catalogue.data) return <WeighingProgress lines={10} />;
   const { weighUp: question, result } = weighUp.data;
   const crop = findCrop(catalogue.data, question.cropId);
   return (
