@@ -60,7 +60,20 @@ export const cautionValues = {
 } as const satisfies Record<string, readonly string[]>;
 
 /** Placeholders that only a variant of a sentence has. */
-type VariantValue = 'context' | 'count' | 'site' | 'season' | 'cv' | 'limit' | 'regions';
+type VariantValue =
+  | 'context'
+  | 'count'
+  | 'site'
+  | 'season'
+  | 'cv'
+  | 'limit'
+  | 'regions'
+  | 'lsd'
+  | 'usual'
+  | 'share'
+  | 'variety'
+  | 'from'
+  | 'to';
 
 export type CautionCode = keyof typeof cautionValues;
 

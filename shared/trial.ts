@@ -151,13 +151,72 @@ export const ordinalSummary = z.object({
   counts: z.array(z.object({ score: z.number(), plots: z.number().int() })),
 });
 
+/** design: as laid out; autoregressive: errors alike along rows and columns; surface: a smooth one over the field. */
 export const spatialModelView = z.object({
-  code: z.string(),
+  code: z.enum(['design', 'autoregressive', 'surface']),
   aic: z.number(),
   residualMs: z.number(),
   lsd: z.number().nullable(),
+  /** Rank 1 is the best end of the trait. */
   means: z.array(z.object({ entry: z.string(), mean: z.number(), rank: z.number().int() })),
 });
+export type SpatialModelView = z.infer<typeof spatialModelView>;
+
+/** Hsu's comparison of an entry with the best of the others, with simultaneous limits at the analysis' level. */
+export const bestComparison = z.object({
+  entry: z.string(),
+  /** Its mean minus the best mean of the others. */
+  estimate: z.number(),
+  lower: z.number(),
+  upper: z.number(),
+  mayBeBest: z.boolean(),
+  isBest: z.boolean(),
+});
+export type BestComparison = z.infer<typeof bestComparison>;
+
+/** Means and gaps of one factor, or of combinations of factors, of a split plot or factorial. */
+export const factorFamily = z.object({
+  /** A term of the model: `main`, a factor's name, or several joined by `:`. */
+  name: z.string(),
+  means: z.array(adjustedMean),
+  gaps: z.array(pairGap),
+  lsd: z.object({ mean: z.number(), min: z.number(), max: z.number() }).nullable(),
+});
+export type FactorFamily = z.infer<typeof factorFamily>;
+
+/** What the layout breaks or lacks. The sentence is `analysis:layout.<code>`. */
+export const layoutFinding = z.object({
+  code: z.enum([
+    'plot-named-twice',
+    'position-taken-twice',
+    'entry-repeated-in-block',
+    'entry-missing-from-block',
+    'unequal-replication',
+    'entry-not-replicated',
+    'entries-disconnected',
+  ]),
+  values: z.record(z.string(), z.union([z.string(), z.number()])),
+});
+export type LayoutFindingView = z.infer<typeof layoutFinding>;
+
+const fTest = z.object({ f: z.number(), df1: z.number(), df2: z.number(), p: z.number() });
+
+/** Checks of what the model leaves over; null where the data give none. */
+export const analysisDiagnostics = z.object({
+  shapiroWilk: z.object({ w: z.number(), p: z.number() }).nullable(),
+  brownForsythe: fTest.nullable(),
+  /** Over blocks, replicates or rows. */
+  brownForsytheBlocks: fTest.nullable(),
+  largestStudentised: z.object({ plot: z.string(), value: z.number(), pBonferroni: z.number() }).nullable(),
+  /** Tukey's one degree of freedom. */
+  nonAdditivity: fTest.nullable(),
+  rowTrend: fTest.nullable(),
+  colTrend: fTest.nullable(),
+  moran: z.object({ i: z.number(), expected: z.number(), p: z.number() }).nullable(),
+  /** Of entry means, 0 to 1. */
+  repeatability: z.number().nullable(),
+});
+export type AnalysisDiagnostics = z.infer<typeof analysisDiagnostics>;
 
 export const trialAnalysis = z.object({
   trialId: z.uuid(),
@@ -192,16 +251,17 @@ export const trialAnalysis = z.object({
   ordinal: z.array(ordinalSummary),
   /** How the standard error of a summary trial was recovered: lsd, cv, se, residual-ms. */
   recoveredFrom: z.string().nullable(),
-  diagnostics: z
-    .object({
-      shapiroWilk: z.object({ w: z.number(), p: z.number() }).nullable(),
-      brownForsythe: z.object({ f: z.number(), df1: z.number(), df2: z.number(), p: z.number() }).nullable(),
-      largestStudentised: z
-        .object({ plot: z.string(), value: z.number(), pBonferroni: z.number() })
-        .nullable(),
-    })
-    .nullable(),
-  /** The design's model and the spatial ones side by side; empty where rows and columns are not known. */
+  diagnostics: analysisDiagnostics.nullable(),
+  /** Under the comparison with the best alone. */
+  best: z.array(bestComparison),
+  /** Families of means beside the trial's own, of split plots and factorials. */
+  factors: z.array(factorFamily),
+  /** What the layout breaks or lacks; null without plots. */
+  layout: z.array(layoutFinding).nullable(),
+  /**
+   * The design's model and the spatial ones side by side; empty where rows and columns are not known, and in the
+   * plain reading of a trial whose residuals show no trend.
+   */
   spatial: z.array(spatialModelView),
   plots: z.array(plotView),
   cautions: z.array(caution),
@@ -215,6 +275,8 @@ export const analysisQuery = z.object({
     .pipe(z.union([z.literal(0.01), z.literal(0.05), z.literal(0.1)]))
     .optional(),
   comparison: comparisonMethod.default('lsd'),
+  /** The whole analysis adds what takes longer than the rest together: the spatial models. */
+  view: z.enum(['reading', 'analysis']).default('reading'),
 });
 export type AnalysisQuery = z.infer<typeof analysisQuery>;
 

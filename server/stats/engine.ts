@@ -10,6 +10,7 @@ export {
 } from './trial/trial-data.ts';
 export type * from './trial/trial-result.ts';
 export { analyseOrdinal, type OrdinalAnalysis } from './trial/ordinal-analysis.ts';
+export { checkLayout, type LayoutFinding, type PlacedPlot } from './checks/field-layout.ts';
 export { smallestShownDifference } from './checks/power.ts';
 export { tQuantileUpper } from './distributions/student-t.ts';
 export { groupUndiffering } from './trial/different-groups.ts';

@@ -6,7 +6,12 @@ import type { DatabaseOrTransaction } from '#server/db.ts';
 import type { ReadableTrait } from './read-row.ts';
 
 export type ImportVariety = { id: string; name: string; isCheck: boolean };
-export type ImportTrait = ReadableTrait & { id: string; unit: string; kind: 'numeric' | 'ordinal' };
+export type ImportTrait = ReadableTrait & {
+  id: string;
+  unit: string;
+  kind: 'numeric' | 'ordinal';
+  direction: 'higher' | 'lower' | 'neutral';
+};
 
 /** What a file of a crop and site is read against. */
 export type ImportCatalogue = {
@@ -54,6 +59,7 @@ export async function readImportCatalogue(
       slug: trait.slug,
       unit: trait.unit,
       kind: trait.kind,
+      direction: trait.direction,
       names: [trait.slug, trait.nameEn, trait.nameFr, ...(trait.slug === 'yield' ? usualYieldNames : [])],
       min: trait.scaleMin ?? 0,
       max: trait.scaleMax ?? Number.POSITIVE_INFINITY,

@@ -27,7 +27,7 @@ function addReadingRoutes(router: Router, db: Database): void {
   }));
   route(router, desk.readDeskAnalysis, async ({ me, params, query }) => {
     await requireDeskTrial(db, requireMe(me), params.trialId);
-    const question = { trait: query.trait, comparison: 'lsd' } as const;
+    const question = { trait: query.trait, comparison: 'lsd', view: 'analysis' } as const;
     return { analysis: await readDraftAnalysis(db, params.trialId, question) };
   });
 }
@@ -86,5 +86,5 @@ function previewAnalysis({ content, catalogue }: CheckedImport, traitSlug: strin
     isSingleAuthor: false,
   } as const;
   const scale = { scaleMin: trait.min, scaleMax: Number.isFinite(trait.max) ? trait.max : null };
-  return viewAnalysis(content, { ...trait, ...scale }, { comparison: 'lsd' }, context);
+  return viewAnalysis(content, { ...trait, ...scale }, { comparison: 'lsd', view: 'reading' }, context);
 }

@@ -1,22 +1,28 @@
 import { makeCaution, type Caution } from '#shared/caution.ts';
+import type { SpatialModelView } from '#shared/trial.ts';
 import type { ContentAnalysis } from './analyse-content.ts';
+import { cautionTrend, hasFieldTrend, residualLevel } from './analyse-content-spatial.ts';
 import { findEntryTest } from './trial-fit.ts';
 
-/** A check of residuals looks at every trial there is: at 5 % one sound trial in twenty would be called odd. */
-const residualLevel = 0.01;
 /** p of the largest studentised residual, already multiplied by the number of plots. */
 const outlierLevel = 0.05;
 
 export type CautionContext = { cvLimitPercent: number; isSingleAuthor: boolean };
 
+/** Models of the field's trend, where they were fitted, and whether the trait is told in t/ha. */
+type TrendContext = { spatial: readonly SpatialModelView[]; isYield: boolean };
+
 /** Where the evidence of one trial stops, for one trait. */
 export function cautionTrial(
   analysis: ContentAnalysis,
-  { cvLimitPercent, isSingleAuthor }: CautionContext,
+  { cvLimitPercent, isSingleAuthor, spatial, isYield }: CautionContext & TrendContext,
 ): Caution[] {
   return [
     ...cautionPrecision(analysis, cvLimitPercent),
     ...cautionResiduals(analysis),
+    ...(analysis.kind === 'numeric' && hasFieldTrend(analysis.result.checks)
+      ? [cautionTrend(spatial, isYield)]
+      : []),
     ...cautionPlots(analysis),
     ...(analysis.kind === 'summary' ? cautionTable(analysis.result) : []),
     ...(isSingleAuthor ? [makeCaution('single-author', 'note', {})] : []),
@@ -35,7 +41,6 @@ function cautionPrecision(analysis: ContentAnalysis, limit: number): Caution[] {
 
 function cautionResiduals(analysis: ContentAnalysis): Caution[] {
   if (analysis.kind !== 'numeric') return [];
-  const { checks } = analysis.result;
   const { shapiroWilk, brownForsythe, largestStudentised } = analysis.result.diagnostics;
   const cautions: Caution[] = [];
   if (shapiroWilk !== null && shapiroWilk.p < residualLevel)
@@ -46,10 +51,6 @@ function cautionResiduals(analysis: ContentAnalysis): Caution[] {
     const { plot, value, pBonferroni } = largestStudentised;
     cautions.push(makeCaution('outlying-plot', 'warning', { plot, value, p: pBonferroni }));
   }
-  const field = [checks?.rowTrend, checks?.colTrend, checks?.moran].flatMap((test) => test?.p ?? []);
-  // Three looks at one field: Bonferroni keeps the level.
-  if (field.some((p) => p * field.length < residualLevel))
-    cautions.push(makeCaution('spatial-trend', 'warning', {}));
   return cautions;
 }
 

@@ -1,16 +1,14 @@
-import { groupUndiffering, type TrialAnalysis } from '#server/stats/engine.ts';
+import { groupUndiffering, type FamilyTable, type TrialAnalysis } from '#server/stats/engine.ts';
 import type { AnalysisOutcome, ComparisonMethod, PairGap } from '#shared/trial.ts';
 import { findEntryTest } from './trial-fit.ts';
 
-/** The gaps of a trial under one comparison. */
+/** The gaps of a family of means under one comparison. */
 export type ComparedPairs = {
   gaps: PairGap[];
   /** By entry; '' where the comparison gives none. */
   letters: ReadonlyMap<string, string>;
   pairsDifferent: number;
   pairsTotal: number;
-  /** Why the comparison asked for could not be made. */
-  outcome: AnalysisOutcome | null;
 };
 
 type Gap = TrialAnalysis['gaps'][number];
@@ -22,18 +20,38 @@ const alphabet = 'abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ';
 /**
  * Judges every pair by one comparison. A pair differs when p < alpha, strictly.
  * @param check the entry that Dunnett's test compares with; null where the trial has none
+ * @returns with `outcome` why the comparison asked for could not be made
  */
 export function comparePairs(
   result: TrialAnalysis,
   comparison: ComparisonMethod,
   alpha: number,
   check: string | null,
-): ComparedPairs {
+): ComparedPairs & { outcome: AnalysisOutcome | null } {
   const { test, outcome } = chooseTest(result, comparison, check);
-  const tested = result.gaps.map((gap) => ({ gap, p: test(gap) }));
+  return { ...judgePairs(result, test, alpha), outcome };
+}
+
+/**
+ * Judges the pairs of a factor's levels. Comparisons that speak of entries alone, with a check or with the best, do not
+ * apply to them: the LSD stands in.
+ * @param overall p of the factor's own F test
+ */
+export function compareLevels(
+  table: FamilyTable,
+  comparison: ComparisonMethod,
+  alpha: number,
+  overall: number | null,
+): ComparedPairs {
+  const isOfEntries = comparison === 'dunnett' || comparison === 'best';
+  return judgePairs(table, testByPairs(isOfEntries ? 'lsd' : comparison, overall), alpha);
+}
+
+function judgePairs(table: FamilyTable, test: PairTest, alpha: number): ComparedPairs {
+  const tested = table.gaps.map((gap) => ({ gap, p: test(gap) }));
   const compared = tested.filter(({ p }) => p !== null);
   const different = compared.filter(({ p }) => p !== null && p < alpha);
-  const isWhole = compared.length === result.gaps.length && compared.length > 0;
+  const isWhole = compared.length === table.gaps.length && compared.length > 0;
   return {
     gaps: tested.map(({ gap, p }) => ({
       a: gap.a,
@@ -46,13 +64,12 @@ export function comparePairs(
     })),
     letters: isWhole
       ? giveLetters(
-          result,
+          table,
           different.map(({ gap }) => gap),
         )
       : new Map<string, string>(),
     pairsDifferent: different.length,
     pairsTotal: compared.length,
-    outcome,
   };
 }
 
@@ -61,22 +78,7 @@ function chooseTest(
   comparison: ComparisonMethod,
   check: string | null,
 ): { test: PairTest; outcome: AnalysisOutcome | null } {
-  const byLsd: PairTest = (gap) => gap.p;
   switch (comparison) {
-    case 'lsd':
-      return { test: byLsd, outcome: null };
-    case 'protected-lsd': {
-      // No pair is told apart unless the F test of all entries is; the larger of the two p says both at once.
-      const overall = findEntryTest(result.anova)?.p ?? null;
-      const test: PairTest = (gap) => (overall === null || gap.p === null ? null : Math.max(gap.p, overall));
-      return { test, outcome: null };
-    }
-    case 'tukey':
-      return { test: (gap) => gap.pTukey, outcome: null };
-    case 'holm':
-      return { test: (gap) => gap.pHolm, outcome: null };
-    case 'bonferroni':
-      return { test: (gap) => gap.pBonferroni, outcome: null };
     case 'dunnett': {
       if (check === null) return { test: () => null, outcome: { code: 'unknown-check', values: {} } };
       const byEntry = new Map(result.dunnett?.rows.map((row) => [row.entry, row.p]));
@@ -87,7 +89,32 @@ function chooseTest(
       return { test, outcome: null };
     }
     case 'best':
-      return { test: byLsd, outcome: { code: 'comparison-not-available', values: {} } };
+      // The comparison with the best judges entries, not pairs; without it the LSD stands in, and that is said.
+      return result.best === null
+        ? { test: testByPairs('lsd', null), outcome: { code: 'comparison-not-available', values: {} } }
+        : { test: () => null, outcome: null };
+    default:
+      return { test: testByPairs(comparison, findEntryTest(result.anova)?.p ?? null), outcome: null };
+  }
+}
+
+/** @param overall p of the F test that guards the protected LSD */
+function testByPairs(
+  comparison: Exclude<ComparisonMethod, 'dunnett' | 'best'>,
+  overall: number | null,
+): PairTest {
+  switch (comparison) {
+    case 'lsd':
+      return (gap) => gap.p;
+    case 'protected-lsd':
+      // No pair is told apart unless the F test of all is; the larger of the two p says both at once.
+      return (gap) => (overall === null || gap.p === null ? null : Math.max(gap.p, overall));
+    case 'tukey':
+      return (gap) => gap.pTukey;
+    case 'holm':
+      return (gap) => gap.pHolm;
+    case 'bonferroni':
+      return (gap) => gap.pBonferroni;
   }
 }
 
@@ -99,8 +126,8 @@ function lsdOf(gap: Gap, alpha: number): number | null {
 }
 
 /** Entries that share a letter are not told apart (Piepho 2004); largest mean first. */
-function giveLetters(result: TrialAnalysis, different: readonly Gap[]): Map<string, string> {
-  const order = result.means
+function giveLetters(table: FamilyTable, different: readonly Gap[]): Map<string, string> {
+  const order = table.means
     .filter((row) => row.mean !== null)
     .toSorted((x, y) => (y.mean ?? 0) - (x.mean ?? 0))
     .map((row) => row.entry);

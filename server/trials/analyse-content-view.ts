@@ -1,9 +1,18 @@
-import { smallestShownDifference, type TrialNotice } from '#server/stats/engine.ts';
+import { smallestShownDifference, type TrialAnalysis, type TrialNotice } from '#server/stats/engine.ts';
 import type { TrialContent } from '#shared/trial-content.ts';
-import type { AnalysisOutcome, ComparisonMethod, PlotView, TrialAnalysisView } from '#shared/trial.ts';
+import type {
+  AnalysisOutcome,
+  AnalysisQuery,
+  ComparisonMethod,
+  PlotView,
+  TrialAnalysisView,
+} from '#shared/trial.ts';
 import { analyseContent, type ContentAnalysis } from './analyse-content.ts';
 import { cautionTrial, type CautionContext } from './analyse-content-cautions.ts';
 import { comparePairs } from './analyse-content-compare.ts';
+import { viewFactors, viewMeans } from './analyse-content-factors.ts';
+import { checkContentLayout, nameSome } from './analyse-content-layout.ts';
+import { viewSpatial } from './analyse-content-spatial.ts';
 import type { ContentTrait } from './trial-content-store.ts';
 
 /** What the content does not know of itself. */
@@ -15,7 +24,11 @@ export type ViewContext = CautionContext & {
   plotIds: ReadonlyMap<string, string>;
 };
 
-export type ViewQuery = { alpha?: number | undefined; comparison: ComparisonMethod };
+export type ViewQuery = {
+  alpha?: number | undefined;
+  comparison: ComparisonMethod;
+  view: AnalysisQuery['view'];
+};
 
 type ViewFigures = Omit<
   TrialAnalysisView,
@@ -29,6 +42,7 @@ type ViewFigures = Omit<
   | 'plotsUsed'
   | 'plotsExcluded'
   | 'plotsMissing'
+  | 'layout'
   | 'plots'
   | 'cautions'
 >;
@@ -40,15 +54,19 @@ const noId = '00000000-0000-0000-0000-000000000000';
 export function viewAnalysis(
   content: TrialContent,
   trait: ContentTrait,
-  { alpha, comparison }: ViewQuery,
+  { alpha, comparison, view }: ViewQuery,
   context: ViewContext,
 ): TrialAnalysisView {
   const analysis = analyseContent(content, trait, {
     ...(alpha !== undefined && { alpha }),
     withDunnett: comparison === 'dunnett',
+    withBest: comparison === 'best',
     withChecks: true,
+    // A spatial model costs as much as many analyses: the plain reading pays for it only where the field drifts.
+    spatial: view === 'analysis' ? 'always' : 'when-drifting',
   });
   const { counts } = analysis;
+  const figures = viewFigures(analysis, comparison, trait);
   return {
     trialId: context.trialId,
     traitSlug: trait.slug,
@@ -60,9 +78,14 @@ export function viewAnalysis(
     plotsUsed: counts.used,
     plotsExcluded: counts.excluded,
     plotsMissing: counts.missing,
-    ...viewFigures(analysis, comparison),
+    ...figures,
+    layout: content.kind === 'plots' ? checkContentLayout(content) : null,
     plots: viewPlots(content, trait.slug, analysis, context.plotIds),
-    cautions: cautionTrial(analysis, context),
+    cautions: cautionTrial(analysis, {
+      ...context,
+      spatial: figures.spatial,
+      isYield: trait.slug === 'yield',
+    }),
   };
 }
 
@@ -86,27 +109,34 @@ const nothing: ViewFigures = {
   ordinal: [],
   recoveredFrom: null,
   diagnostics: null,
+  best: [],
+  factors: [],
   spatial: [],
 };
 
-function viewFigures(analysis: ContentAnalysis, comparison: ComparisonMethod): ViewFigures {
+function viewFigures(
+  analysis: ContentAnalysis,
+  comparison: ComparisonMethod,
+  trait: ContentTrait,
+): ViewFigures {
   switch (analysis.kind) {
     case 'none':
-      return { ...nothing, outcomes: [{ code: analysis.reason, values: {} }] };
+      return { ...nothing, outcomes: [viewRefusal(analysis)] };
     case 'ordinal':
       return { ...nothing, kind: 'ordinal', ordinal: viewScores(analysis.result.entries) };
     case 'summary':
       return viewTable(analysis.result);
     case 'numeric':
-      return viewNumeric(analysis, comparison);
+      return viewNumeric(analysis, comparison, trait);
   }
 }
 
 function viewNumeric(
   { result, alpha, check }: Extract<ContentAnalysis, { kind: 'numeric' }>,
   comparison: ComparisonMethod,
+  trait: ContentTrait,
 ): ViewFigures {
-  const { fit, diagnostics } = result;
+  const { fit } = result;
   const pairs = comparePairs(result, comparison, alpha, check);
   return {
     ...nothing,
@@ -120,26 +150,41 @@ function viewNumeric(
     r2: fit.r2,
     components: [...fit.components],
     anova: result.anova.map(({ term, df, denDf, ss, ms, f, p }) => ({ term, df, denDf, ss, ms, f, p })),
-    means: result.means
-      .map(({ entry, n, mean, se, df }) => ({
-        entry,
-        n,
-        mean,
-        se,
-        df,
-        letters: pairs.letters.get(entry) ?? '',
-      }))
-      .toSorted((a, b) => (b.mean ?? Number.NEGATIVE_INFINITY) - (a.mean ?? Number.NEGATIVE_INFINITY)),
+    means: viewMeans(result.means, pairs.letters),
     gaps: pairs.gaps,
     lsd: result.lsd[String(alpha)] ?? null,
     pairsDifferent: pairs.pairsDifferent,
     pairsTotal: pairs.pairsTotal,
     detectable: findDetectable(pairs.gaps, alpha),
-    diagnostics: {
-      shapiroWilk: diagnostics.shapiroWilk,
-      brownForsythe: diagnostics.brownForsythe,
-      largestStudentised: diagnostics.largestStudentised,
-    },
+    diagnostics: viewDiagnostics(result),
+    best: result.best === null ? [] : viewBest(result.best, trait),
+    factors: viewFactors(result, comparison, alpha),
+    spatial: viewSpatial(result.spatial, alpha, trait.direction === 'lower' ? 'lower' : 'higher'),
+  };
+}
+
+/** In order of merit: the best end of the trait first. */
+function viewBest(
+  best: NonNullable<TrialAnalysis['best']>,
+  { direction }: ContentTrait,
+): TrialAnalysisView['best'] {
+  return [...best].sort((a, b) =>
+    direction === 'lower' ? a.estimate - b.estimate : b.estimate - a.estimate,
+  );
+}
+
+function viewDiagnostics({ diagnostics, checks }: TrialAnalysis): TrialAnalysisView['diagnostics'] {
+  const { shapiroWilk, brownForsythe, brownForsytheBlocks, largestStudentised } = diagnostics;
+  return {
+    shapiroWilk,
+    brownForsythe,
+    brownForsytheBlocks,
+    largestStudentised,
+    nonAdditivity: checks?.nonAdditivity ?? null,
+    rowTrend: checks?.rowTrend ?? null,
+    colTrend: checks?.colTrend ?? null,
+    moran: checks?.moran ?? null,
+    repeatability: checks?.repeatability ?? null,
   };
 }
 
@@ -153,6 +198,11 @@ function findDetectable(
   const se = Math.sqrt(known.reduce((sum, gap) => sum + gap.se ** 2, 0) / known.length);
   const df = known.reduce((sum, gap) => sum + gap.df, 0) / known.length;
   return smallestShownDifference({ se, df, alpha });
+}
+
+function viewRefusal({ reason, plotsAtFault }: Extract<ContentAnalysis, { kind: 'none' }>): AnalysisOutcome {
+  if (plotsAtFault.length === 0) return { code: reason, values: {} };
+  return { code: reason, values: { context: 'plots', plots: nameSome(plotsAtFault) } };
 }
 
 function viewNotice(notice: TrialNotice): AnalysisOutcome {

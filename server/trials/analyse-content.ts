@@ -9,6 +9,7 @@ import {
 } from '#server/stats/engine.ts';
 import type { TrialContent } from '#shared/trial-content.ts';
 import { analyseSummaryColumn, type SummaryAnalysis } from './analyse-content-summary.ts';
+import { hasFieldTrend } from './analyse-content-spatial.ts';
 import type { ContentTrait } from './trial-content-store.ts';
 
 export type AnalyseOptions = {
@@ -18,6 +19,13 @@ export type AnalyseOptions = {
   withDunnett?: boolean;
   /** Whether the field is looked over for trends, which costs more than the analysis itself. */
   withChecks?: boolean;
+  /** Whether every entry is compared with the best of the others. */
+  withBest?: boolean;
+  /**
+   * Models of the field's trend beside the design's, each as costly as many analyses: `always`, or only `when-drifting`,
+   * where the checks have found a trend that asks for them.
+   */
+  spatial?: 'always' | 'when-drifting';
 };
 
 /** Plots of a trial in one trait. Excluded plots count as excluded whether or not they have a value. */
@@ -28,7 +36,7 @@ export type ContentAnalysis = { alpha: number; counts: PlotCounts } & (
   | { kind: 'numeric'; result: TrialAnalysis; check: string | null }
   | { kind: 'ordinal'; result: OrdinalAnalysis }
   | { kind: 'summary'; result: SummaryAnalysis }
-  | { kind: 'none'; reason: AnalysisErrorCode }
+  | { kind: 'none'; reason: AnalysisErrorCode; plotsAtFault: string[] }
 );
 
 /**
@@ -46,7 +54,7 @@ export function analyseContent(
   try {
     if (content.kind === 'summary') {
       const column = content.summary.find((part) => part.trait === trait.slug);
-      if (column === undefined) return { kind: 'none', reason: 'no-values', alpha, counts };
+      if (column === undefined) return { kind: 'none', reason: 'no-values', plotsAtFault: [], alpha, counts };
       const result = analyseSummaryColumn(column, content.design, alpha);
       return { kind: 'summary', result, alpha, counts };
     }
@@ -54,17 +62,31 @@ export function analyseContent(
     if (trait.kind === 'ordinal')
       return { kind: 'ordinal', result: analyseOrdinal(plots, design), alpha, counts };
     const check = content.entries.find((entry) => entry.isCheck)?.label ?? null;
-    const result = analyseTrial(plots, design, {
+    const asked = {
       alpha,
       check: options.withDunnett && hasValue(plots, check) ? check : null,
       checks: options.withChecks ?? false,
+      // Of a trait without a better end there is no best.
+      comparisons: (options.withBest ?? false) && trait.direction !== 'neutral',
+      better: trait.direction === 'lower' ? 'lower' : 'higher',
+      spatial: options.spatial === 'always',
       allowNegative: (trait.scaleMin ?? 0) < 0,
-    });
-    return { kind: 'numeric', result, check, alpha, counts };
+    } as const;
+    const first = analyseTrial(plots, design, asked);
+    const needsTrend = options.spatial === 'when-drifting' && hasFieldTrend(first.checks);
+    const spatial = needsTrend
+      ? analyseTrial(plots, design, { alpha, spatial: true, allowNegative: asked.allowNegative }).spatial
+      : first.spatial;
+    return { kind: 'numeric', result: { ...first, spatial }, check, alpha, counts };
   } catch (error) {
-    if (error instanceof AnalysisError) return { kind: 'none', reason: error.code, alpha, counts };
-    throw error;
+    if (!(error instanceof AnalysisError)) throw error;
+    return { kind: 'none', reason: error.code, plotsAtFault: namePlots(plots, error.rows), alpha, counts };
   }
+}
+
+/** The engine counts rows from 1. */
+function namePlots(plots: readonly TrialPlot[], rows: readonly number[]): string[] {
+  return rows.flatMap((row) => plots[row - 1]?.plot ?? []);
 }
 
 function toEnginePlots(content: TrialContent, traitSlug: string): TrialPlot[] {

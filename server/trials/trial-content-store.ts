@@ -12,6 +12,8 @@ export type ContentTrait = {
   id: string;
   slug: string;
   kind: 'numeric' | 'ordinal';
+  /** Which end is the better one. */
+  direction: 'higher' | 'lower' | 'neutral';
   scaleMin: number | null;
   scaleMax: number | null;
 };
@@ -130,6 +132,7 @@ export function readCropTraits(db: DatabaseOrTransaction, cropId: string): Promi
       id: traits.id,
       slug: traits.slug,
       kind: traits.kind,
+      direction: traits.direction,
       scaleMin: traits.scaleMin,
       scaleMax: traits.scaleMax,
     })

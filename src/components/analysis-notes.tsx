@@ -1,10 +1,11 @@
 import { useTranslation } from 'react-i18next';
-import type { AnalysisOutcome, TrialAnalysisView } from '#shared/trial.ts';
-import { useFormat } from './use-format.ts';
+import type { AnalysisOutcome } from '#shared/trial.ts';
+import { useTermName } from './anova-table.tsx';
 
 /** Why a figure is missing, one sentence for each outcome. */
 export function OutcomeList({ outcomes }: { outcomes: readonly AnalysisOutcome[] }) {
   const { t, i18n } = useTranslation('analysis');
+  const termName = useTermName();
   if (outcomes.length === 0) return null;
   return (
     <section className="rounded-lg border border-edge bg-card px-4 py-4 sm:px-5">
@@ -14,7 +15,7 @@ export function OutcomeList({ outcomes }: { outcomes: readonly AnalysisOutcome[]
           <li key={`${code} ${JSON.stringify(values)}`}>
             {i18n.exists(`analysis:outcomes.${code}`)
               ? // The key was just found to exist; its type cannot be known here.
-                t(`outcomes.${code}` as 'outcomes.no-values', values)
+                t(`outcomes.${code}` as 'outcomes.no-values', nameTerms(values, termName))
               : t('outcomes.other', { code })}
           </li>
         ))}
@@ -22,6 +23,21 @@ export function OutcomeList({ outcomes }: { outcomes: readonly AnalysisOutcome[]
     </section>
   );
 }
+
+/** Terms of the model, such as `rep:block`, in the words of the analysis of variance. */
+function nameTerms(
+  values: AnalysisOutcome['values'],
+  termName: (term: string) => string,
+): AnalysisOutcome['values'] {
+  return Object.fromEntries(
+    Object.entries(values).map(([name, value]) => [
+      name,
+      termValues.has(name) ? String(value).split(', ').map(termName).join(', ') : value,
+    ]),
+  );
+}
+
+const termValues: ReadonlySet<string> = new Set(['terms', 'components']);
 
 const recoveries = ['lsd', 'cv', 'se', 'residual-ms'] as const;
 
@@ -36,49 +52,6 @@ export function RecoveredError({ from }: { from: string | null }) {
       <p>
         {known ? t(`recovered.${known}`) : t('recovered.other', { from })} {t('recovered.limits')}
       </p>
-    </section>
-  );
-}
-
-/** The tests of what is left after the model, in sentences. */
-export function DiagnosticList({ diagnostics }: { diagnostics: TrialAnalysisView['diagnostics'] }) {
-  const { t } = useTranslation('analysis');
-  const format = useFormat();
-  if (!diagnostics) return null;
-  const { shapiroWilk, brownForsythe, largestStudentised } = diagnostics;
-  if (!shapiroWilk && !brownForsythe && !largestStudentised) return null;
-  return (
-    <section className="max-w-prose">
-      <h2 className="mb-2">{t('diagnostics.title')}</h2>
-      <ul className="flex flex-col gap-1">
-        {shapiroWilk && (
-          <li>
-            {t('diagnostics.normal', {
-              w: format.number(shapiroWilk.w, { decimals: 3 }),
-              p: format.pValue(shapiroWilk.p),
-            })}
-          </li>
-        )}
-        {brownForsythe && (
-          <li>
-            {t('diagnostics.spread', {
-              f: format.number(brownForsythe.f, { decimals: 2 }),
-              df1: format.number(brownForsythe.df1),
-              df2: format.number(brownForsythe.df2),
-              p: format.pValue(brownForsythe.p),
-            })}
-          </li>
-        )}
-        {largestStudentised && (
-          <li>
-            {t('diagnostics.outlier', {
-              plot: largestStudentised.plot,
-              value: format.number(largestStudentised.value, { decimals: 1 }),
-              p: format.pValue(largestStudentised.pBonferroni),
-            })}
-          </li>
-        )}
-      </ul>
     </section>
   );
 }

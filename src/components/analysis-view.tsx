@@ -4,9 +4,13 @@ import type { TrialAnalysisView } from '#shared/trial.ts';
 import { decimalsOfAnalysis } from './analysis-decimals.ts';
 import { AnalysisFacts } from './analysis-facts.tsx';
 import { AnalysisHeadline } from './analysis-headline.tsx';
-import { DiagnosticList, OutcomeList, RecoveredError } from './analysis-notes.tsx';
+import { OutcomeList, RecoveredError } from './analysis-notes.tsx';
 import { AnovaTable } from './anova-table.tsx';
+import { BestTable } from './best-table.tsx';
+import { DiagnosticList } from './diagnostic-list.tsx';
+import { FactorFamilies, FactorLead } from './factor-families.tsx';
 import { FieldMap } from './field-map.tsx';
+import { LayoutCheck } from './layout-check.tsx';
 import { MeansChart } from './means-chart.tsx';
 import { MeansTable } from './means-table.tsx';
 import { PairsTable } from './pairs-table.tsx';
@@ -17,7 +21,7 @@ type AnalysisViewProps = {
   analysis: TrialAnalysisView;
   traitName: string;
   unit: string;
-  /** Letters belong to the analysis view of a trial, not to its first reading. */
+  /** Letters, factors and models of the field belong to the analysis view of a trial, not to its first reading. */
   hasLetters: boolean;
   /** Pairs with this entry only; without `onEntry` the table of pairs is left out. */
   entry?: string | null;
@@ -33,18 +37,28 @@ export function AnalysisView(props: AnalysisViewProps) {
   return (
     <div className="flex flex-col gap-7">
       <AnalysisHeadline analysis={analysis} unit={unit} decimals={decimals} />
+      <FactorLead analysis={analysis} />
       {analysis.kind !== 'none' && <AnalysisFacts analysis={analysis} unit={unit} decimals={decimals} />}
       {children}
       <OutcomeList outcomes={analysis.outcomes} />
+      <BestTable analysis={analysis} unit={unit} decimals={decimals} />
       <AnalysisDrawings {...props} decimals={decimals} />
       {analysis.kind === 'ordinal' && <RatingTable ratings={analysis.ordinal} traitName={traitName} />}
       <RecoveredError from={analysis.recoveredFrom} />
       <div className="grid gap-7 xl:grid-cols-2">
         <AnovaTable analysis={analysis} traitName={traitName} />
-        <DiagnosticList diagnostics={analysis.diagnostics} />
+        <div className="flex flex-col gap-7">
+          <DiagnosticList diagnostics={analysis.diagnostics} />
+          {hasLetters && <LayoutCheck findings={analysis.layout} />}
+        </div>
       </div>
-      {hasLetters && <MeansTable analysis={analysis} unit={unit} decimals={decimals} />}
-      <SpatialModels models={analysis.spatial} unit={unit} decimals={decimals} />
+      {hasLetters && (
+        <>
+          <MeansTable analysis={analysis} unit={unit} decimals={decimals} />
+          <FactorFamilies analysis={analysis} unit={unit} decimals={decimals} />
+          <SpatialModels models={analysis.spatial} unit={unit} decimals={decimals} />
+        </>
+      )}
       {onEntry && analysis.gaps.length > 0 && (
         <PairsTable analysis={analysis} unit={unit} decimals={decimals} entry={entry} onEntry={onEntry} />
       )}

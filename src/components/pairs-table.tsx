@@ -31,7 +31,7 @@ export function PairsTable({ analysis, unit, decimals, entry, onEntry }: PairsTa
   const { t } = useTranslation('analysis');
   const format = useFormat();
   const [isWhole, setWhole] = useState(false);
-  const columns = usePairColumns(analysis, unit, decimals);
+  const columns = usePairColumns(analysis, unit, decimals, analysis.best.length === 0);
   const names = analysis.means.map((mean) => mean.entry);
   const pairs = analysis.gaps
     .filter((gap) => entry === null || gap.a === entry || gap.b === entry)
@@ -68,13 +68,21 @@ export function PairsTable({ analysis, unit, decimals, entry, onEntry }: PairsTa
   );
 }
 
-function usePairColumns(analysis: TrialAnalysisView, unit: string, decimals: number): Column<PairGap>[] {
+/**
+ * Columns of a table of pairs. Under the comparison with the best no pair has a p: the columns that judge are left out.
+ */
+export function usePairColumns(
+  analysis: Pick<TrialAnalysisView, 'alpha' | 'comparison'>,
+  unit: string,
+  decimals: number,
+  hasJudgement = true,
+): Column<PairGap>[] {
   const { t } = useTranslation('analysis');
   const format = useFormat();
   const quantity = (value: number | null) =>
     value === null ? '–' : format.quantity(value, unit, { decimals });
   const isApart = (gap: PairGap) => gap.p !== null && gap.p < analysis.alpha;
-  return [
+  const columns: Column<PairGap>[] = [
     {
       id: 'pair',
       header: t('pairs.pair'),
@@ -102,6 +110,8 @@ function usePairColumns(analysis: TrialAnalysisView, unit: string, decimals: num
       cell: ({ lsd }) => quantity(lsd),
       sortValue: ({ lsd }) => lsd,
     },
+  ];
+  const judging: Column<PairGap>[] = [
     {
       id: 'p',
       header: t('pairs.p', { comparison: t(`comparison.${analysis.comparison}`) }),
@@ -116,4 +126,5 @@ function usePairColumns(analysis: TrialAnalysisView, unit: string, decimals: num
       sortValue: (gap) => (gap.p === null ? null : Number(!isApart(gap))),
     },
   ];
+  return hasJudgement ? [...columns, ...judging] : columns;
 }

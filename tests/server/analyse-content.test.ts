@@ -6,8 +6,22 @@ import { viewAnalysis } from '#server/trials/analyse-content-view.ts';
 import type { ContentTrait } from '#server/trials/trial-content-store.ts';
 import { summariseFit } from '#server/trials/trial-fit.ts';
 
-const yieldTrait: ContentTrait = { id: '1', slug: 'yield', kind: 'numeric', scaleMin: 0, scaleMax: null };
-const lodging: ContentTrait = { id: '2', slug: 'lodging', kind: 'ordinal', scaleMin: 1, scaleMax: 9 };
+const yieldTrait: ContentTrait = {
+  id: '1',
+  slug: 'yield',
+  kind: 'numeric',
+  direction: 'higher',
+  scaleMin: 0,
+  scaleMax: null,
+};
+const lodging: ContentTrait = {
+  id: '2',
+  slug: 'lodging',
+  kind: 'ordinal',
+  direction: 'lower',
+  scaleMin: 1,
+  scaleMax: 9,
+};
 
 type Plot = TrialContent['plots'][number];
 
@@ -57,7 +71,7 @@ function view(trial: TrialContent, trait = yieldTrait, comparison: ComparisonMet
   const analysis = viewAnalysis(
     trial,
     trait,
-    { comparison, alpha },
+    { comparison, alpha, view: 'reading' },
     {
       trialId: '11111111-1111-4111-8111-111111111111',
       source: 'draft',

@@ -4,7 +4,8 @@ import fr from '#locales/fr/cautions.json' with { type: 'json' };
 import { cautionCodes, cautionValues, type CautionCode } from '#shared/caution.ts';
 
 /** Placeholders that a variant of a sentence may have beyond those that its code always brings. */
-const variantValues = ['count', 'site', 'season', 'cv', 'limit', 'regions'];
+const trendValues = ['lsd', 'usual', 'share', 'variety', 'from', 'to'];
+const variantValues = ['count', 'site', 'season', 'cv', 'limit', 'regions', ...trendValues];
 
 /** i18next's plural forms and our contexts come after an underscore. */
 const codeOf = (key: string): string => key.replace(/_.*$/, '');

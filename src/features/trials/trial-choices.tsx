@@ -13,12 +13,16 @@ const [, ...otherMethods] = comparisonMethods;
 const methods: [ComparisonMethod, ...ComparisonMethod[]] = ['lsd', ...otherMethods];
 
 /** Trait, alpha and comparison as the address holds them; without alpha the trial's own counts. */
-export function readAnalysisChoice(search: URLSearchParams, traitSlugs: readonly string[]): AnalysisQuery {
+export function readAnalysisChoice(
+  search: URLSearchParams,
+  traitSlugs: readonly string[],
+  view: AnalysisQuery['view'],
+): AnalysisQuery {
   const asked = search.get('trait');
   const first = traitSlugs.includes('yield') ? 'yield' : (traitSlugs[0] ?? 'yield');
   const trait = asked !== null && traitSlugs.includes(asked) ? asked : first;
   const alpha = alphas.find((value) => String(value) === search.get('alpha'));
-  return { trait, comparison: readChoice(search, 'comparison', methods), ...(alpha && { alpha }) };
+  return { trait, view, comparison: readChoice(search, 'comparison', methods), ...(alpha && { alpha }) };
 }
 
 type TrialChoicesProps = {

@@ -110,7 +110,7 @@ function TrialReading({ trial, crop, isAnalysis }: TrialReadingProps) {
   const [search] = useSearchParams();
   const patch = useUrlPatch();
   const cautionItems = useCautionItems();
-  const choice = readAnalysisChoice(search, trial.traitSlugs);
+  const choice = readAnalysisChoice(search, trial.traitSlugs, isAnalysis ? 'analysis' : 'reading');
   const analysis = useQuery(trialAnalysisQuery(trial.id, choice));
   const traits = crop.traits.filter((trait) => trial.traitSlugs.includes(trait.slug));
   const trait = findTrait(crop, analysis.data?.traitSlug ?? choice.trait);
