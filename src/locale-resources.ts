@@ -8,6 +8,7 @@ import type drawings from '#locales/en/drawings.json';
 import type errors from '#locales/en/errors.json';
 import type method from '#locales/en/method.json';
 import type problems from '#locales/en/problems.json';
+import type record from '#locales/en/record.json';
 import type signIn from '#locales/en/sign-in.json';
 import type trials from '#locales/en/trials.json';
 import type verdicts from '#locales/en/verdicts.json';
@@ -25,6 +26,7 @@ type LocaleResources = {
   errors: typeof errors;
   method: typeof method;
   problems: typeof problems;
+  record: typeof record;
   'sign-in': typeof signIn;
   trials: typeof trials;
   verdicts: typeof verdicts;

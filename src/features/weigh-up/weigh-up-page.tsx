@@ -18,6 +18,7 @@ import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CandidateStrip } from './candidate-strip.tsx';
+import { DecisionPanel } from './decision-panel.tsx';
 import { FarmPanel } from './farm-panel.tsx';
 import { HandOver } from './hand-over.tsx';
 import { MoneyPanel } from './money-panel.tsx';
@@ -115,6 +116,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
       />
       <CautionList title={t('cautionsTitle')} items={cautionItems(result.cautions)} />
       <FarmPanel weighUp={weighUp} />
+      <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={false} />
     </div>
   );
 }
@@ -161,6 +163,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
       <div className="flex min-w-0 flex-col gap-8">
         <FarmPanel weighUp={weighUp} />
         <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
+        <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
         <section className="flex flex-col gap-4">
           <h2>{t('method:title')}</h2>
           <MethodNotes result={result} />

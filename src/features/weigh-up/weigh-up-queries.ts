@@ -1,6 +1,7 @@
 import { keepPreviousData, queryOptions } from '@tanstack/react-query';
 import { listGrowerCopies } from '#shared/grower-copy.ts';
 import { listCandidates, listWeighUps, readWeighUp, type candidateQuery } from '#shared/weigh-up.ts';
+import { readDecisions } from '#shared/weigh-up-record.ts';
 import type { z } from 'zod';
 import { callApi } from '#src/api-client.ts';
 
@@ -32,4 +33,11 @@ export const growerCopiesQuery = (weighUpId: string) =>
     queryKey: ['weigh-up', weighUpId, 'grower-copies'],
     queryFn: async ({ signal }) =>
       (await callApi(listGrowerCopies, { params: { weighUpId } }, signal)).copies,
+  });
+
+/** What was decided on a weigh-up, and in earlier seasons for the same farm and crop. */
+export const decisionsQuery = (weighUpId: string) =>
+  queryOptions({
+    queryKey: ['weigh-up', weighUpId, 'decision'],
+    queryFn: ({ signal }) => callApi(readDecisions, { params: { weighUpId } }, signal),
   });

@@ -1,0 +1,132 @@
+import { useState } from 'react';
+import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { useTranslation } from 'react-i18next';
+import { Link } from 'react-router-dom';
+import type { Decision, DecisionInput, EarlierDecision } from '#shared/decision.ts';
+import { recordDecision } from '#shared/weigh-up-record.ts';
+import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
+import { ApiError, callApi } from '#src/api-client.ts';
+import { Button } from '#src/components/button.tsx';
+import { ErrorState } from '#src/components/error-state.tsx';
+import { Skeleton } from '#src/components/skeleton.tsx';
+import { showToast } from '#src/components/toaster.tsx';
+import { fillPath, paths } from '#src/paths.ts';
+import { QueryErrorState } from '#src/query-error-state.tsx';
+import { useErrorText } from '#src/use-error-text.ts';
+import { DecisionFormFields } from './decision-form-fields.tsx';
+import { RecordedDecision } from './recorded-decision.tsx';
+import { hasMoved, pairThenAndNow } from './then-and-now.ts';
+import { decisionsQuery, weighUpQuery, weighUpsQuery } from './weigh-up-queries.ts';
+
+type DecisionPanelProps = { weighUp: WeighUp; result: WeighUpResult; hasUnsaved: boolean };
+
+/** What the grower decided, and what was decided in earlier seasons beside what the evidence says now. */
+export function DecisionPanel({ weighUp, result, hasUnsaved }: DecisionPanelProps) {
+  const { t } = useTranslation('record');
+  const decisions = useQuery(decisionsQuery(weighUp.id));
+  return (
+    <section aria-labelledby="decision-title" className="flex flex-col gap-4">
+      <div>
+        <h2 id="decision-title">{t('decision.title')}</h2>
+        <p className="text-faded">{t('decision.lead')}</p>
+      </div>
+      {decisions.isPending && <Skeleton lines={3} />}
+      {decisions.isError && <QueryErrorState query={decisions} />}
+      {decisions.data && (
+        <>
+          <OwnDecision
+            weighUp={weighUp}
+            result={result}
+            decision={decisions.data.decision}
+            hasUnsaved={hasUnsaved}
+          />
+          {decisions.data.earlier.map((one) => (
+            <EarlierSeason key={one.weighUpId} earlier={one} weighUp={weighUp} result={result} />
+          ))}
+        </>
+      )}
+    </section>
+  );
+}
+
+function OwnDecision({
+  weighUp,
+  result,
+  decision,
+  hasUnsaved,
+}: DecisionPanelProps & { decision: Decision | null }) {
+  const { t } = useTranslation('record');
+  const errorText = useErrorText();
+  const [isChanging, setIsChanging] = useState(false);
+  const saving = useDecisionSaving(weighUp, () => setIsChanging(false));
+  const rows = decision === null ? [] : pairThenAndNow(decision.said, weighUp, result);
+  return (
+    <>
+      {decision !== null && <RecordedDecision decision={decision} rows={hasMoved(rows) ? rows : []} />}
+      {saving.isError && <ErrorState message={errorText(saving.error)} />}
+      {decision === null || isChanging ? (
+        <DecisionFormFields
+          key={decision?.decidedAt ?? 'open'}
+          {...{ weighUp, result, decision, hasUnsaved }}
+          isBusy={saving.isPending}
+          onSave={(input) => saving.mutate(input)}
+          onCancel={decision && (() => setIsChanging(false))}
+        />
+      ) : (
+        <div className="flex flex-wrap gap-3">
+          <Button onClick={() => setIsChanging(true)}>{t('decision.change')}</Button>
+          <Button tone="quiet" isBusy={saving.isPending} onClick={() => saving.mutate(null)}>
+            {t('decision.takeBack')}
+          </Button>
+        </div>
+      )}
+    </>
+  );
+}
+
+/** Records under the revision on the page; where somebody saved in between, the page shows theirs and says so. */
+function useDecisionSaving(weighUp: WeighUp, onSaved: () => void) {
+  const { t } = useTranslation('record');
+  const client = useQueryClient();
+  const [query, own] = [decisionsQuery(weighUp.id), weighUpQuery(weighUp.id)];
+  return useMutation({
+    mutationFn: (decision: DecisionInput | null) =>
+      callApi(recordDecision, {
+        params: { weighUpId: weighUp.id },
+        body: { revision: weighUp.revision, decision },
+      }),
+    onSuccess: (saved) => {
+      client.setQueryData(query.queryKey, (held) => held && { ...held, decision: saved.decision });
+      client.setQueryData(own.queryKey, (held) => held && { ...held, weighUp: saved.weighUp });
+      void client.invalidateQueries({ queryKey: weighUpsQuery.queryKey });
+      showToast(t(saved.decision === null ? 'decision.takenBack' : 'decision.recorded'));
+      onSaved();
+    },
+    onError: (error) => {
+      if (!(error instanceof ApiError) || error.code !== 'revision-conflict') return;
+      void client.invalidateQueries({ queryKey: query.queryKey });
+      void client.invalidateQueries({ queryKey: own.queryKey });
+    },
+  });
+}
+
+type EarlierSeasonProps = { earlier: EarlierDecision; weighUp: WeighUp; result: WeighUpResult };
+
+function EarlierSeason({ earlier: { weighUpId, decision }, weighUp, result }: EarlierSeasonProps) {
+  const { t } = useTranslation('record');
+  const { said } = decision;
+  const isOtherCurrent = said.currentVarietyId !== weighUp.currentVarietyId;
+  return (
+    <section className="flex flex-col gap-2">
+      <h3>
+        <Link to={fillPath(paths.weighUp, { weighUpId })}>
+          {t('decision.earlier', { from: said.seasonFrom, to: said.seasonTo })}
+        </Link>
+      </h3>
+      <RecordedDecision decision={decision} rows={pairThenAndNow(said, weighUp, result)} />
+      {isOtherCurrent && (
+        <p className="text-sm text-faded">{t('then.otherCurrent', { current: said.currentVarietyName })}</p>
+      )}
+    </section>
+  );
+}
