@@ -30,6 +30,7 @@ const statusOf = {
   'link-unknown': 404,
   'link-expired': 410,
   'link-revoked': 410,
+  'mail-not-set-up': 409,
 } satisfies Record<ErrorCode, number>;
 
 /** Text or figures that PostgreSQL cannot hold: a NUL in text, in JSON, a number out of range. */

@@ -5,6 +5,7 @@ import { buildApp } from './app.ts';
 import { closeComputing } from './computing/compute.ts';
 import { connectDatabase } from './db.ts';
 import type { ServerSettings } from './env.ts';
+import { startMailWorker } from './mail/outbox-worker.ts';
 
 export { readSettings } from './env.ts';
 export { migrateDatabase } from './migrate-database.ts';
@@ -24,10 +25,12 @@ export async function startServer(settings: ServerSettings): Promise<RunningServ
   } = connectDatabase(settings.databaseUrl, (error) =>
     logger.warn({ err: error }, 'an idle database connection was lost'),
   );
-  const server = createServer(buildApp(db, pool, settings, logger));
+  const mailWorker = settings.mail === null ? null : startMailWorker(db, settings.mail, logger);
+  const server = createServer(buildApp(db, pool, settings, logger, () => mailWorker?.kick()));
   try {
     await listen(server, settings);
   } catch (error) {
+    await mailWorker?.close();
     await closeDatabase();
     throw error;
   }
@@ -41,6 +44,7 @@ export async function startServer(settings: ServerSettings): Promise<RunningServ
       const giveUp = setTimeout(() => server.closeAllConnections(), 3000);
       await closed;
       clearTimeout(giveUp);
+      await mailWorker?.close();
       await closeComputing();
       await closeDatabase();
     },

@@ -29,6 +29,7 @@ export const errorCodes = [
   'link-unknown',
   'link-expired',
   'link-revoked',
+  'mail-not-set-up',
 ] as const;
 
 export type ErrorCode = (typeof errorCodes)[number];

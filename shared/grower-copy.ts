@@ -26,6 +26,32 @@ export const laterChange = z.object({
 });
 export type LaterChange = z.infer<typeof laterChange>;
 
+/** Why a mail has not arrived (`weigh-up:copies.mail.failure.<code>`). */
+export const mailFailure = z.enum([
+  'server-away',
+  'sign-in-refused',
+  'put-off',
+  'recipient-refused',
+  'mail-refused',
+  'link-closed',
+]);
+export type MailFailure = z.infer<typeof mailFailure>;
+
+/** What became of the mail that brings a copy. */
+export const copyMail = z.object({
+  recipient: z.string(),
+  state: z.enum(['waiting', 'sending', 'sent', 'failed']),
+  attempts: z.number().int(),
+  sentAt: z.iso.datetime().nullable(),
+  /** When it is tried next; null where nothing waits. */
+  nextAttemptAt: z.iso.datetime().nullable(),
+  /** Of the last try. */
+  failure: mailFailure.nullable(),
+  /** The mail server's own words about it. */
+  serverWords: z.string().nullable(),
+});
+export type CopyMail = z.infer<typeof copyMail>;
+
 /** The copy as the advisor sees it: the link itself is shown once, at its making, and never stored. */
 export const growerCopyLine = z.object({
   id: z.uuid(),
@@ -36,8 +62,13 @@ export const growerCopyLine = z.object({
   openings: z.number().int(),
   lastOpenedAt: z.iso.datetime().nullable(),
   laterChanges: z.array(laterChange),
+  /** The newest mail that brings it; null where none was asked for. */
+  mail: copyMail.nullable(),
 });
 export type GrowerCopyLine = z.infer<typeof growerCopyLine>;
+
+const copyParams = z.object({ copyId: z.uuid() });
+const recipient = z.string().trim().pipe(z.email().max(254));
 
 const weighUpParams = z.object({ weighUpId: z.uuid() });
 
@@ -46,7 +77,8 @@ export const listGrowerCopies = defineContract({
   path: '/api/weigh-ups/:weighUpId/grower-copies',
   access: ['advisor', 'agronomist'],
   params: weighUpParams,
-  reply: z.object({ copies: z.array(growerCopyLine) }),
+  /** Without a mail server in the settings, copies are handed over by link alone. */
+  reply: z.object({ copies: z.array(growerCopyLine), isMailSetUp: z.boolean() }),
 });
 
 export const makeGrowerCopy = defineContract({
@@ -54,16 +86,40 @@ export const makeGrowerCopy = defineContract({
   path: '/api/weigh-ups/:weighUpId/grower-copies',
   access: ['advisor', 'agronomist'],
   params: weighUpParams,
-  body: z.object({ language, validDays: z.number().int().min(1).max(1095).default(365) }),
-  /** `path` holds the secret: `/copy/<token>`. */
-  reply: z.object({ copy: growerCopyLine, path: z.string() }),
+  body: z.object({
+    language,
+    validDays: z.number().int().min(1).max(1095).default(365),
+    /** Where to send the link; left out, nothing is sent. */
+    email: recipient.optional(),
+  }),
+  /** `path` holds the secret, `/copy/<token>`; `link` is the same with the public address before it. */
+  reply: z.object({ copy: growerCopyLine, path: z.string(), link: z.url() }),
+});
+
+/** Sends the link of a copy, to another address say. The caller gives the secret: the server does not keep it. */
+export const mailGrowerCopy = defineContract({
+  method: 'POST',
+  path: '/api/grower-copies/:copyId/mails',
+  access: ['advisor', 'agronomist'],
+  params: copyParams,
+  body: z.object({ email: recipient, token: z.string().min(1).max(500) }),
+  reply: z.object({ copy: growerCopyLine }),
+});
+
+/** Tries a mail that waits for its next try at once. */
+export const retryGrowerCopyMail = defineContract({
+  method: 'POST',
+  path: '/api/grower-copies/:copyId/mail-retries',
+  access: ['advisor', 'agronomist'],
+  params: copyParams,
+  reply: z.object({ copy: growerCopyLine }),
 });
 
 export const revokeGrowerCopy = defineContract({
   method: 'DELETE',
   path: '/api/grower-copies/:copyId',
   access: ['advisor', 'agronomist'],
-  params: z.object({ copyId: z.uuid() }),
+  params: copyParams,
   reply: z.object({ copy: growerCopyLine }),
 });
 

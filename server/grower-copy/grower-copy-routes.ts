@@ -1,20 +1,62 @@
-import type { Response, Router } from 'express';
-import { listGrowerCopies, makeGrowerCopy, openGrowerCopy, revokeGrowerCopy } from '#shared/grower-copy.ts';
+import type { Request, Response, Router } from 'express';
+import { CodedError } from '#shared/error-codes.ts';
+import {
+  listGrowerCopies,
+  mailGrowerCopy,
+  makeGrowerCopy,
+  openGrowerCopy,
+  retryGrowerCopyMail,
+  revokeGrowerCopy,
+} from '#shared/grower-copy.ts';
 import type { Database } from '#server/db.ts';
+import type { ServerSettings } from '#server/env.ts';
 import { requireMe, route } from '#server/route.ts';
 import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
 import { listCopies, openCopy, revokeOwnCopy } from './grower-copy-store.ts';
+import { mailCopyAgain, retryMailOfCopy } from './mail-copy.ts';
 import { makeCopy } from './make-copy.ts';
 
-export function addGrowerCopyRoutes(router: Router, db: Database): void {
+export function addGrowerCopyRoutes(
+  router: Router,
+  db: Database,
+  settings: ServerSettings,
+  onMailQueued: () => void,
+): void {
+  const isMailSetUp = settings.mail !== null;
+  const originOf = (request: Request) =>
+    settings.publicOrigin ?? `${request.protocol}://${request.get('host') ?? 'localhost'}`;
+  const requireMail = () => {
+    if (!isMailSetUp) throw new CodedError('mail-not-set-up');
+  };
+
   route(router, listGrowerCopies, async ({ me, params }) => {
     const weighUp = await readOwnWeighUp(db, requireMe(me).id, params.weighUpId);
-    return { copies: await listCopies(db, weighUp.id) };
+    return { copies: await listCopies(db, weighUp.id), isMailSetUp };
   });
 
-  route(router, makeGrowerCopy, async ({ me, params, body }) =>
-    makeCopy(db, requireMe(me), params.weighUpId, body),
-  );
+  route(router, makeGrowerCopy, async ({ me, params, body, request }) => {
+    const { email: recipient, ...wish } = body;
+    const origin = originOf(request);
+    if (recipient !== undefined) requireMail();
+    const mailed = recipient === undefined ? wish : { ...wish, mail: { recipient, origin } };
+    const made = await makeCopy(db, requireMe(me), params.weighUpId, mailed);
+    if (recipient !== undefined) onMailQueued();
+    return { ...made, link: `${origin}${made.path}` };
+  });
+
+  route(router, mailGrowerCopy, async ({ me, params, body, request }) => {
+    requireMail();
+    const copy = await mailCopyAgain(db, requireMe(me).id, params.copyId, body, originOf(request));
+    onMailQueued();
+    return { copy };
+  });
+
+  route(router, retryGrowerCopyMail, async ({ me, params }) => {
+    requireMail();
+    const copy = await retryMailOfCopy(db, requireMe(me).id, params.copyId);
+    onMailQueued();
+    return { copy };
+  });
 
   route(router, revokeGrowerCopy, async ({ me, params }) => ({
     copy: await revokeOwnCopy(db, requireMe(me).id, params.copyId),

@@ -4,18 +4,20 @@ import type { Language } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import {
   growerCopySnapshot,
+  type CopyMail,
   type GrowerCopyLine,
   type GrowerCopySnapshot,
   type LaterChange,
 } from '#shared/grower-copy.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
+import { cancelMails, queueCopyMail, readNewestMails } from '#server/mail/outbox-store.ts';
 import { findLaterChanges } from './later-changes.ts';
 import { hashLinkSecret } from './link-secret.ts';
 
 const dayMs = 24 * 60 * 60 * 1000;
 
-type CopyRow = typeof growerCopies.$inferSelect;
+export type CopyRow = typeof growerCopies.$inferSelect;
 
 /** The copies of a weigh-up, newest first. The caller has seen to it that the weigh-up is the person's own. */
 export async function listCopies(db: Database, weighUpId: string): Promise<GrowerCopyLine[]> {
@@ -34,6 +36,8 @@ export type NewCopy = {
   validDays: number;
   snapshot: GrowerCopySnapshot;
   createdBy: string;
+  /** The mail that brings the link, stored with the copy or not at all. */
+  mail: { recipient: string; link: string } | null;
 };
 
 export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCopyLine> {
@@ -58,8 +62,56 @@ export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCop
       subjectId: row.id,
       detail: { weighUpId, expiresAt: row.expiresAt.toISOString() },
     });
-    return toLine(row, []);
+    if (copy.mail !== null) await queueMailOf(tx, row, copy.mail, createdBy);
+    return toLine(row, [], (await readNewestMails(tx, [row.id])).get(row.id));
   });
+}
+
+/** Puts the mail that brings a copy's link into the outbox. */
+export async function queueMailOf(
+  tx: DatabaseOrTransaction,
+  row: CopyRow,
+  { recipient, link }: { recipient: string; link: string },
+  createdBy: string,
+): Promise<void> {
+  const { weighUp, advisorName, advisorEmail } = growerCopySnapshot.parse(row.snapshot);
+  const { growerName, farmName, cropName } = weighUp;
+  const expiresAt = row.expiresAt.toISOString();
+  const content = { growerName, farmName, cropName, advisorName, advisorEmail, expiresAt, link };
+  await queueCopyMail(tx, { copyId: row.id, recipient, language: row.language, content, createdBy });
+  await recordAuditEvent(tx, {
+    actorId: createdBy,
+    action: 'grower-copy.mailed',
+    subjectKind: 'grower-copy',
+    subjectId: row.id,
+  });
+}
+
+/**
+ * A copy of one's own weigh-up, held until the transaction ends.
+ * @throws CodedError not-found, also for a copy of somebody else's weigh-up
+ */
+export async function lockOwnCopy(
+  tx: DatabaseOrTransaction,
+  ownerId: string,
+  copyId: string,
+): Promise<CopyRow> {
+  const [held] = await tx
+    .select({ copy: growerCopies })
+    .from(growerCopies)
+    .innerJoin(weighUps, eq(weighUps.id, growerCopies.weighUpId))
+    .where(and(eq(growerCopies.id, copyId), eq(weighUps.ownerId, ownerId)))
+    .for('update', { of: growerCopies });
+  if (held === undefined) throw new CodedError('not-found');
+  return held.copy;
+}
+
+/** @throws CodedError not-found */
+export async function readCopyLine(tx: DatabaseOrTransaction, copyId: string): Promise<GrowerCopyLine> {
+  const rows = await tx.select().from(growerCopies).where(eq(growerCopies.id, copyId));
+  const [line] = await toLines(tx, rows);
+  if (line === undefined) throw new CodedError('not-found');
+  return line;
 }
 
 /**
@@ -68,18 +120,13 @@ export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCop
  */
 export async function revokeOwnCopy(db: Database, ownerId: string, copyId: string): Promise<GrowerCopyLine> {
   return db.transaction(async (tx) => {
-    const [held] = await tx
-      .select({ revokedAt: growerCopies.revokedAt })
-      .from(growerCopies)
-      .innerJoin(weighUps, eq(weighUps.id, growerCopies.weighUpId))
-      .where(and(eq(growerCopies.id, copyId), eq(weighUps.ownerId, ownerId)))
-      .for('update', { of: growerCopies });
-    if (held === undefined) throw new CodedError('not-found');
+    const held = await lockOwnCopy(tx, ownerId, copyId);
     if (held.revokedAt === null) {
       await tx
         .update(growerCopies)
         .set({ revokedAt: sql`now()` })
         .where(eq(growerCopies.id, copyId));
+      await cancelMails(tx, copyId);
       await recordAuditEvent(tx, {
         actorId: ownerId,
         action: 'grower-copy.revoked',
@@ -87,10 +134,7 @@ export async function revokeOwnCopy(db: Database, ownerId: string, copyId: strin
         subjectId: copyId,
       });
     }
-    const rows = await tx.select().from(growerCopies).where(eq(growerCopies.id, copyId));
-    const [line] = await toLines(tx, rows);
-    if (line === undefined) throw new CodedError('not-found');
-    return line;
+    return readCopyLine(tx, copyId);
   });
 }
 
@@ -136,10 +180,14 @@ async function refuseOpening(db: Database, tokenHash: string): Promise<never> {
 async function toLines(db: DatabaseOrTransaction, rows: readonly CopyRow[]): Promise<GrowerCopyLine[]> {
   const snapshots = rows.map((row) => growerCopySnapshot.parse(row.snapshot));
   const changes = await findLaterChanges(db, snapshots);
-  return rows.map((row, index) => toLine(row, changes[index] ?? []));
+  const mails = await readNewestMails(
+    db,
+    rows.map((row) => row.id),
+  );
+  return rows.map((row, index) => toLine(row, changes[index] ?? [], mails.get(row.id)));
 }
 
-const toLine = (row: CopyRow, laterChanges: LaterChange[]): GrowerCopyLine => ({
+const toLine = (row: CopyRow, laterChanges: LaterChange[], mail: CopyMail | undefined): GrowerCopyLine => ({
   id: row.id,
   language: row.language,
   createdAt: row.createdAt.toISOString(),
@@ -148,4 +196,5 @@ const toLine = (row: CopyRow, laterChanges: LaterChange[]): GrowerCopyLine => ({
   openings: row.openings,
   lastOpenedAt: row.lastOpenedAt?.toISOString() ?? null,
   laterChanges,
+  mail: mail ?? null,
 });

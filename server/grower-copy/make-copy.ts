@@ -6,7 +6,12 @@ import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
 import { insertCopy } from './grower-copy-store.ts';
 import { makeLinkSecret } from './link-secret.ts';
 
-export type CopyWish = { language: Language; validDays: number };
+export type CopyWish = {
+  language: Language;
+  validDays: number;
+  /** Where to send the link, and the public address that it begins with. */
+  mail?: { recipient: string; origin: string };
+};
 
 /**
  * Freezes a weigh-up as it is now behind a new link.
@@ -17,12 +22,20 @@ export async function makeCopy(
   db: Database,
   advisor: Pick<Me, 'id' | 'name' | 'email'>,
   weighUpId: string,
-  wish: CopyWish,
+  { mail, ...wish }: CopyWish,
 ): Promise<{ copy: GrowerCopyLine; path: string }> {
   const snapshot = await takeSnapshot(db, advisor, weighUpId);
   const secret = makeLinkSecret();
-  const copy = await insertCopy(db, { ...wish, weighUpId, secret, snapshot, createdBy: advisor.id });
-  return { copy, path: `/copy/${secret}` };
+  const path = `/copy/${secret}`;
+  const copy = await insertCopy(db, {
+    ...wish,
+    weighUpId,
+    secret,
+    snapshot,
+    createdBy: advisor.id,
+    mail: mail === undefined ? null : { recipient: mail.recipient, link: `${mail.origin}${path}` },
+  });
+  return { copy, path };
 }
 
 /** Everything the copy will show, as it is now; the parse keeps out what a copy does not declare. */

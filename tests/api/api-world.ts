@@ -29,16 +29,19 @@ export type ApiWorld = {
 
 export type SignedIn = { agent: Agent; id: string; email: string };
 
-/** The API on a database of its own: empty, or with the demo in it. */
-export async function openApiWorld(content: 'empty' | 'demo'): Promise<ApiWorld> {
+/** The API on a database of its own: empty, or with the demo in it; with further settings where a test asks. */
+export async function openApiWorld(
+  content: 'empty' | 'demo',
+  environment: NodeJS.ProcessEnv = {},
+): Promise<ApiWorld> {
   const database = content === 'demo' ? await createDemoDatabase() : await createTestDatabase();
-  return buildWorld(database);
+  return buildWorld(database, environment);
 }
 
 /** The API on a given database, which the world closes when it is closed. */
-export function buildWorld(database: TestDatabase): ApiWorld {
+export function buildWorld(database: TestDatabase, environment: NodeJS.ProcessEnv = {}): ApiWorld {
   const settings = readSettings(
-    { DATABASE_URL: database.url, SESSION_SECRET: 'a secret of no worth, for tests alone' },
+    { DATABASE_URL: database.url, SESSION_SECRET: 'a secret of no worth, for tests alone', ...environment },
     null,
   );
   const app = buildApp(database.db, database.pool, settings, pino({ level: 'silent' }));

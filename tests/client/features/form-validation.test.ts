@@ -81,6 +81,7 @@ describe('lists of a weigh-up', () => {
       openings: 0,
       lastOpenedAt: null,
       laterChanges: [],
+      mail: null,
     };
     expect(stateOfCopy(copy, new Date('2027-11-30T00:00:00Z'))).toBe('active');
     expect(stateOfCopy(copy, new Date(copy.expiresAt))).toBe('expired');
