@@ -23,8 +23,14 @@ import { weighUpQuery } from './weigh-up-queries.ts';
 
 type FarmFormApi = UseFormReturn<FarmDraft, unknown, FarmForm>;
 
+type FarmPanelProps = {
+  weighUp: WeighUp;
+  /** Numbers of the money panel that are not saved: a save from here would be met as somebody else's. */
+  hasUnsaved: boolean;
+};
+
 /** Where the farm lies, what it usually yields and which trials answer: changed here, the question is weighed again. */
-export function FarmPanel({ weighUp }: { weighUp: WeighUp }) {
+export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
   const { t } = useTranslation('weigh-up');
   const errorText = useErrorText();
   const form = useForm<FarmDraft, unknown, FarmForm>({
@@ -51,7 +57,8 @@ export function FarmPanel({ weighUp }: { weighUp: WeighUp }) {
         </FigureField>
         <GroundFields form={form} />
         {saving.isError && <ErrorState message={errorText(saving.error)} />}
-        <Button type="submit" isBusy={saving.isPending} className="self-start">
+        {hasUnsaved && <p className="text-sm text-faded">{t('farm.saveFirst')}</p>}
+        <Button type="submit" disabled={hasUnsaved} isBusy={saving.isPending} className="self-start">
           {saving.isPending ? t('farm.saving') : t('farm.save')}
         </Button>
       </form>

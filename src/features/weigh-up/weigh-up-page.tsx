@@ -115,7 +115,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
         to={weighUp.seasonTo}
       />
       <CautionList title={t('cautionsTitle')} items={cautionItems(result.cautions)} />
-      <FarmPanel weighUp={weighUp} />
+      <FarmPanel weighUp={weighUp} hasUnsaved={false} />
       <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={false} />
     </div>
   );
@@ -161,7 +161,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <MoneyPanel weighUp={weighUp} varieties={varieties} money={money} saving={saving} />
       </div>
       <div className="flex min-w-0 flex-col gap-8">
-        <FarmPanel weighUp={weighUp} />
+        <FarmPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
         <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
         <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
         <section className="flex flex-col gap-4">

@@ -41,9 +41,9 @@ function serve(): Saved[] {
   return saved;
 }
 
-async function open(change: Partial<WeighUp> = {}) {
+async function open(change: Partial<WeighUp> = {}, hasUnsaved = false) {
   const user = userEvent.setup();
-  await renderClient(<FarmPanel weighUp={buildWeighUp(change)} />, {
+  await renderClient(<FarmPanel weighUp={buildWeighUp(change)} hasUnsaved={hasUnsaved} />, {
     at: '/',
     namespaces: ['weigh-up', 'errors'],
   });
@@ -129,6 +129,16 @@ describe('the farm of a weigh-up', () => {
       farmSeasonRainMm: null,
       trialChoice: 'region',
     });
+  });
+
+  it('waits for the numbers of the money panel to be saved', async () => {
+    serve();
+    await open({}, true);
+    expect(screen.getByText(/Save or reset your numbers first/)).toBeTruthy();
+    expect(screen.getByRole('button', { name: 'Weigh again for this farm' })).toHaveProperty(
+      'disabled',
+      true,
+    );
   });
 
   it('refuses a yield that is none, in words beside the field', async () => {
