@@ -11,7 +11,7 @@ export function addTrialRoutes(router: Router, db: Database): void {
 
   route(router, readTrial, async ({ params }) => ({ trial: await readPublishedTrial(db, params.trialId) }));
 
-  route(router, readTrialAnalysis, async ({ params, query }) => ({
-    analysis: await readPublishedAnalysis(db, params.trialId, query),
+  route(router, readTrialAnalysis, async ({ params, query, signal }) => ({
+    analysis: await readPublishedAnalysis(db, params.trialId, query, signal),
   }));
 }
