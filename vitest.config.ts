@@ -2,6 +2,15 @@ import react from '@vitejs/plugin-react';
 import { defineConfig } from 'vitest/config';
 import { SummaryReporter } from './tests/support/summary-reporter.ts';
 
+/** Held to the world outside: R, published tables, simulation. Slower than the rest, so not in the fast loop. */
+const referenceChecks = [
+  'tests/stats/**/*-cases.test.ts',
+  'tests/stats/**/published-examples.test.ts',
+  'tests/stats/**/reference-grids.test.ts',
+  'tests/stats/**/pair-synthesis.test.ts',
+  'tests/stats/**/network-calibration.test.ts',
+];
+
 export default defineConfig({
   test: {
     maxWorkers: 2,
@@ -14,6 +23,7 @@ export default defineConfig({
         test: {
           name: 'unit',
           include: ['tests/{stats,shared,structure,server}/**/*.test.ts'],
+          exclude: referenceChecks,
         },
       },
       {
@@ -27,7 +37,7 @@ export default defineConfig({
       },
       {
         extends: true,
-        test: { name: 'reference', include: ['tests/reference/**/*.test.ts'] },
+        test: { name: 'reference', include: referenceChecks },
       },
       {
         extends: true,

@@ -44,7 +44,7 @@ export function beginTestRun() {
       console.log(`\n• ${label}`);
       const summary = join(folder, `${projects.join('-')}.json`);
       const args = [
-        ...['node_modules/vitest/vitest.mjs', 'run', '--passWithNoTests'],
+        ...['node_modules/vitest/vitest.mjs', 'run'],
         ...['--silent=passed-only'],
         ...projects.map((name) => `--project=${name}`),
       ];

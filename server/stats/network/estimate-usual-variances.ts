@@ -42,10 +42,10 @@ export function varianceInterval(variance: number, standardError: number): reado
   return [(df * variance) / quantile(0.025), (df * variance) / quantile(0.975)];
 }
 
-function describeVariances({
-  fit,
-  thetaCovariance,
-}: EntryEstimates): Pick<UsualEstimate, 'intervals' | 'standardErrors'> & {
+function describeVariances({ fit, thetaCovariance }: EntryEstimates): Pick<
+  UsualEstimate,
+  'intervals' | 'standardErrors'
+> & {
   variances: InteractionVariances;
 } {
   const total = fit.point.theta.reduce((sum, x) => sum + x, 0);

@@ -132,9 +132,9 @@ describe('the skeleton', () => {
     await renderClient(null);
     vi.useFakeTimers();
     render(<Skeleton />);
-    act(() => vi.advanceTimersByTime(199));
+    await act(() => vi.advanceTimersByTimeAsync(199));
     expect(screen.queryByText('Loading…')).toBeNull();
-    act(() => vi.advanceTimersByTime(1));
+    await act(() => vi.advanceTimersByTimeAsync(1));
     expect(screen.getByText('Loading…')).toBeTruthy();
   });
 });

@@ -17,6 +17,7 @@ const farm = {
   growerName: 'Maren Oske',
   farmName: 'Tallow Farm',
   areaHectares: 120,
+  usualYield: null,
   priceLow: 255,
   priceMiddle: 290,
   priceHigh: 340,

@@ -12,7 +12,7 @@ import {
   changeTrials,
   growEvidence,
   usualYield,
-} from '#tests/support/evidence-network.ts';
+} from '#tests/support/sown-network.ts';
 
 const entries = { Now: 0, New: 0.1, Check: 0.05, Fourth: -0.1, Fifth: 0.2, Sixth: 0 };
 const good = growEvidence({ entries });

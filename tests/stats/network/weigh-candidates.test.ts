@@ -15,7 +15,7 @@ import {
   changeTrials,
   growEvidence,
   usualYield,
-} from '#tests/support/evidence-network.ts';
+} from '#tests/support/sown-network.ts';
 
 const entries = { Now: 0, Best: 1.2, Like: 0.02, Worse: -1.2, Close: 0.3, Other: 0 };
 const network = growEvidence({ entries, sites: 5 });
