@@ -16,9 +16,9 @@ export function weighCandidates(network: EvidenceNetwork, question: WeighQuestio
   if (new Set(question.candidates).size !== question.candidates.length)
     throw new AnalysisError('bad-option', 'a candidate is named twice');
   const trials = selectTrials(network.trials, question);
-  const answering =
-    question.acceptsOtherRegions === true ? trials : trials.filter(({ inRegion }) => inRegion);
-  if (answering.length === 0) return { answer: 'no-trials', traits: [], cautions: [cautionNoTrialInRegion] };
+  const mayAnswer = question.acceptsOtherRegions === true || trials.some(({ inRegion }) => inRegion);
+  if (trials.length === 0 || !mayAnswer)
+    return { answer: 'no-trials', traits: [], cautions: [cautionNoTrialInRegion] };
   return {
     answer: 'weighed',
     traits: network.traits.map((trait) => weighTrait(network, trials, trait, question)),
