@@ -24,3 +24,22 @@ export const recordDecision = defineContract({
   body: z.object({ revision: z.number().int(), decision: decisionInput.nullable() }),
   reply: z.object({ weighUp, decision: decision.nullable() }),
 });
+
+/** Puts a weigh-up away or brings it back: archived ones are listed only when asked for. */
+export const archiveWeighUp = defineContract({
+  method: 'PUT',
+  path: '/api/weigh-ups/:weighUpId/archived',
+  access,
+  params,
+  body: z.object({ isArchived: z.boolean() }),
+  reply: z.object({ archivedAt: z.iso.datetime().nullable() }),
+});
+
+/** Asks the same question over a span of seasons one later, as a weigh-up of its own. */
+export const duplicateWeighUp = defineContract({
+  method: 'POST',
+  path: '/api/weigh-ups/:weighUpId/duplicates',
+  access,
+  params,
+  reply: z.object({ weighUp }),
+});

@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { bilingualName } from './catalogue.ts';
 import { caution } from './caution.ts';
 import { defineContract } from './contract.ts';
+import { decisionLine } from './decision.ts';
 import { farmAnswer, farmInput, farmQuery, farmRange, hasPlaceForChoice, isWholePlace } from './farm.ts';
 import { gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
 import { interval, verdictCode } from './verdict.ts';
@@ -221,6 +222,10 @@ export const weighUpLine = z.object({
   farmName: z.string(),
   currentVarietyName: z.string(),
   candidates: z.number().int(),
+  seasonFrom: z.number().int(),
+  seasonTo: z.number().int(),
+  decision: decisionLine.nullable(),
+  archivedAt: z.iso.datetime().nullable(),
   updatedAt: z.iso.datetime(),
 });
 export type WeighUpLine = z.infer<typeof weighUpLine>;

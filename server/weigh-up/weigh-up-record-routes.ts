@@ -1,11 +1,13 @@
 import type { Router } from 'express';
 import { CodedError } from '#shared/error-codes.ts';
-import { readDecisions, recordDecision } from '#shared/weigh-up-record.ts';
+import { archiveWeighUp, duplicateWeighUp, readDecisions, recordDecision } from '#shared/weigh-up-record.ts';
 import type { Database } from '#server/db.ts';
 import { requireMe, route } from '#server/route.ts';
 import { answerWeighUp } from './answer-question.ts';
 import { readOwnDecisions, saveDecision } from './decision-store.ts';
 import { describeDecision } from './describe-decision.ts';
+import { requireOwnRegion } from './own-region.ts';
+import { duplicateToNextSeason, setArchived } from './weigh-up-keeping.ts';
 import { readOwnWeighUp } from './weigh-up-store.ts';
 
 /** What is kept of a weigh-up beside its question. */
@@ -26,5 +28,16 @@ export function addWeighUpRecordRoutes(router: Router, db: Database): void {
       weighUp: await saveDecision(db, ownerId, { weighUpId: weighUp.id, ...body }, decision),
       decision,
     };
+  });
+
+  route(router, archiveWeighUp, async ({ me, params, body }) => {
+    const archivedAt = await setArchived(db, requireMe(me).id, params.weighUpId, body.isArchived);
+    return { archivedAt: archivedAt?.toISOString() ?? null };
+  });
+
+  route(router, duplicateWeighUp, async ({ me, params }) => {
+    const owner = requireMe(me);
+    requireOwnRegion(owner, (await readOwnWeighUp(db, owner.id, params.weighUpId)).regionId);
+    return { weighUp: await duplicateToNextSeason(db, owner.id, params.weighUpId) };
   });
 }

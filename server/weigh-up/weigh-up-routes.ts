@@ -1,10 +1,9 @@
 import type { Router } from 'express';
-import type { Me } from '#shared/account.ts';
-import { CodedError } from '#shared/error-codes.ts';
 import { changeWeighUp, createWeighUp, listCandidates, listWeighUps, readWeighUp } from '#shared/weigh-up.ts';
 import type { Database } from '#server/db.ts';
 import { requireMe, route } from '#server/route.ts';
 import { answerWeighUp, rankCandidates } from './answer-question.ts';
+import { requireOwnRegion } from './own-region.ts';
 import { insertWeighUp, listOwnWeighUps, readOwnWeighUp, updateWeighUp } from './weigh-up-store.ts';
 
 export function addWeighUpRoutes(router: Router, db: Database): void {
@@ -35,13 +34,4 @@ export function addWeighUpRoutes(router: Router, db: Database): void {
     const { result } = await answerWeighUp(db, weighUp, signal);
     return { weighUp, result };
   });
-}
-
-/**
- * New questions are asked in one's own regions. What was weighed before a region was taken away stays readable:
- * the grower holds a copy of it.
- * @throws CodedError region-not-yours
- */
-function requireOwnRegion(me: Me, regionId: string): void {
-  if (!me.regionIds.includes(regionId)) throw new CodedError('region-not-yours');
 }

@@ -3,6 +3,7 @@ import { users } from '#drizzle/schema/accounts.ts';
 import { crops, varieties } from '#drizzle/schema/crops.ts';
 import { regions } from '#drizzle/schema/geography.ts';
 import { weighUpCandidates, weighUps } from '#drizzle/schema/weigh-ups.ts';
+import { decisionLine } from '#shared/decision.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { soilTexture } from '#shared/farm.ts';
 import { moneyAssumptions } from '#shared/money.ts';
@@ -13,7 +14,14 @@ import type { Database, DatabaseOrTransaction } from '#server/db.ts';
 export const isOwn = (ownerId: string, weighUpId: string) =>
   and(eq(weighUps.id, weighUpId), eq(weighUps.ownerId, ownerId));
 
-/** The weigh-ups of one person, last changed first. */
+/** What of a decision stands in a list; the evidence frozen with it stays in the database. */
+const selectDecisionLine = sql<unknown>`case when ${weighUps.decision} is not null then jsonb_build_object(
+  'choice', ${weighUps.decision} -> 'choice',
+  'varietyName', ${weighUps.decision} -> 'varietyName',
+  'areaHectares', ${weighUps.decision} -> 'areaHectares'
+) end`;
+
+/** The weigh-ups of one person, archived ones too, last changed first. */
 export async function listOwnWeighUps(db: Database, ownerId: string): Promise<WeighUpLine[]> {
   const rows = await db
     .select({
@@ -26,6 +34,10 @@ export async function listOwnWeighUps(db: Database, ownerId: string): Promise<We
       farmName: weighUps.farmName,
       currentVarietyName: varieties.name,
       candidates: sql<number>`(select count(*)::int from weigh_up_candidates where weigh_up_id = ${weighUps.id})`,
+      seasonFrom: weighUps.seasonFrom,
+      seasonTo: weighUps.seasonTo,
+      decision: selectDecisionLine,
+      archivedAt: weighUps.archivedAt,
       updatedAt: weighUps.updatedAt,
     })
     .from(weighUps)
@@ -38,6 +50,8 @@ export async function listOwnWeighUps(db: Database, ownerId: string): Promise<We
     ...row,
     cropName: { en: row.cropNameEn, fr: row.cropNameFr },
     regionName: { en: row.regionNameEn, fr: row.regionNameFr },
+    decision: decisionLine.nullable().parse(row.decision),
+    archivedAt: row.archivedAt?.toISOString() ?? null,
     updatedAt: row.updatedAt.toISOString(),
   }));
 }

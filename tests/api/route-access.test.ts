@@ -49,6 +49,8 @@ const allowed: Record<string, Who[]> = {
   'PUT /api/weigh-ups/:weighUpId': weighers,
   'GET /api/weigh-ups/:weighUpId/decision': weighers,
   'PUT /api/weigh-ups/:weighUpId/decision': weighers,
+  'PUT /api/weigh-ups/:weighUpId/archived': weighers,
+  'POST /api/weigh-ups/:weighUpId/duplicates': weighers,
   'GET /api/weigh-ups/:weighUpId/grower-copies': weighers,
   'POST /api/weigh-ups/:weighUpId/grower-copies': weighers,
   'DELETE /api/grower-copies/:copyId': weighers,

@@ -66,7 +66,12 @@ describe('the import form', () => {
 
 describe('lists of a weigh-up', () => {
   it('finds every word in either language, accents and case aside', () => {
-    const line = { ...buildWeighUp({ growerName: 'Élise Tremblay' }), candidates: 2 };
+    const line = {
+      ...buildWeighUp({ growerName: 'Élise Tremblay' }),
+      candidates: 2,
+      decision: null,
+      archivedAt: null,
+    };
     expect(matchesSearch(line, 'elise POIS')).toBe(true);
     expect(matchesSearch(line, 'elise barley')).toBe(false);
     expect(matchesSearch(line, '')).toBe(true);
