@@ -1,4 +1,4 @@
-import { Worker } from 'node:worker_threads';
+import { type Worker } from 'node:worker_threads';
 import { CodedError } from '#shared/error-codes.ts';
 import { unpackFailure, type ComputingOrder, type ComputingReply } from './computing-message.ts';
 
