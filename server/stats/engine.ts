@@ -16,7 +16,7 @@ export { tQuantileUpper } from './distributions/student-t.ts';
 export { groupUndiffering } from './trial/different-groups.ts';
 export { analyseTwoWay, type TwoWayAnalysis, type TwoWayRefused } from './network/two-way-analysis.ts';
 export { combineTrials, type CombinedTrials, type CombineOptions } from './network/combine-trials.ts';
-export { interactionTerms, type InteractionVariances, type TrialCell } from './network/network-cell.ts';
+export type { InteractionVariances, TrialCell } from './network/network-cell.ts';
 export { synthesisePair, type PairEffect, type PairSynthesis } from './network/pair-synthesis.ts';
 export { weighCandidates } from './network/weigh-candidates.ts';
 export { chanceAbove, chanceOver } from './network/gap-chance.ts';
