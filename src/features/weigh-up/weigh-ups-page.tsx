@@ -5,17 +5,19 @@ import type { WeighUpLine } from '#shared/weigh-up.ts';
 import { Button, LinkButton } from '#src/components/button.tsx';
 import { DataTable, type Column } from '#src/components/data-table.tsx';
 import { EmptyState } from '#src/components/empty-state.tsx';
-import { Field } from '#src/components/field.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
-import { TextInput } from '#src/components/text-input.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useUrlPatch } from '#src/url-state.ts';
+import { useDecisionWords } from './recorded-decision.tsx';
+import { listFilterChoices, noFilter, passesFilter, readWeighUpFilter } from './weigh-up-filter.ts';
+import { WeighUpFilters } from './weigh-up-filters.tsx';
 import { weighUpsQuery } from './weigh-up-queries.ts';
+import { WeighUpSteps } from './weigh-up-steps.tsx';
 
-/** One's weigh-ups, searched by grower, farm or variety. */
+/** One's weigh-ups: searched, filtered, put away and carried into the next season. */
 export function WeighUpsPage() {
   const { t } = useTranslation('weigh-up');
   const weighUps = useQuery(weighUpsQuery);
@@ -44,58 +46,44 @@ export function WeighUpsPage() {
   );
 }
 
-function fold(text: string): string {
-  return text
-    .normalize('NFD')
-    .replace(/\p{Diacritic}/gu, '')
-    .toLowerCase();
-}
-
-/** Whether every word searched for is somewhere in the line, accents and case aside. */
-export function matchesSearch(line: WeighUpLine, search: string): boolean {
-  const names = [line.cropName.en, line.cropName.fr, line.regionName.en, line.regionName.fr];
-  const text = fold([line.growerName, line.farmName, line.currentVarietyName, ...names].join(' '));
-  return fold(search)
-    .split(/\s+/)
-    .every((word) => text.includes(word));
-}
-
 function WeighUpList({ weighUps }: { weighUps: readonly WeighUpLine[] }) {
-  const { t } = useTranslation('weigh-up');
+  const { t } = useTranslation(['record', 'weigh-up']);
   const [search] = useSearchParams();
   const patch = useUrlPatch();
   const columns = useWeighUpColumns();
-  const asked = search.get('q') ?? '';
-  const found = weighUps.filter((line) => matchesSearch(line, asked));
+  const filter = readWeighUpFilter(search);
+  const found = weighUps.filter((line) => passesFilter(line, filter));
   return (
     <>
-      <form role="search" onSubmit={(event) => event.preventDefault()} className="mb-4 max-w-md">
-        <Field label={t('list.search')}>
-          <TextInput type="search" value={asked} onChange={(event) => patch({ q: event.target.value })} />
-        </Field>
-      </form>
+      <WeighUpFilters filter={filter} choices={listFilterChoices(weighUps)} />
       <p role="status" className="mb-2 text-sm text-faded">
-        {t('list.count', { count: found.length })}
+        {t('weigh-up:list.count', { count: found.length })}
       </p>
       {found.length === 0 ? (
         <EmptyState
-          title={t('list.emptySearch')}
-          action={<Button onClick={() => patch({ q: null })}>{t('list.clearSearch')}</Button>}
+          title={t(filter.shown === 'archived' ? 'record:list.emptyArchived' : 'record:list.emptyFilter')}
+          action={<Button onClick={() => patch(noFilter)}>{t('record:list.showAll')}</Button>}
         />
       ) : (
-        <DataTable caption={t('list.caption')} columns={columns} rows={found} rowKey={(line) => line.id} />
+        <DataTable
+          caption={t('weigh-up:list.caption')}
+          columns={columns}
+          rows={found}
+          rowKey={(line) => line.id}
+        />
       )}
     </>
   );
 }
 
 function useWeighUpColumns(): Column<WeighUpLine>[] {
-  const { t } = useTranslation('weigh-up');
+  const { t } = useTranslation(['record', 'weigh-up']);
   const format = useFormat();
+  const sayDecision = useDecisionWords();
   return [
     {
       id: 'grower',
-      header: t('list.column.grower'),
+      header: t('weigh-up:list.column.grower'),
       cell: (line) => (
         <>
           <Link to={fillPath(paths.weighUp, { weighUpId: line.id })}>{line.growerName}</Link>
@@ -106,34 +94,45 @@ function useWeighUpColumns(): Column<WeighUpLine>[] {
     },
     {
       id: 'crop',
-      header: t('list.column.crop'),
+      header: t('weigh-up:list.column.crop'),
       cell: (line) => format.name(line.cropName),
       sortValue: (line) => format.name(line.cropName),
     },
     {
       id: 'region',
-      header: t('list.column.region'),
+      header: t('weigh-up:list.column.region'),
       cell: (line) => format.name(line.regionName),
       sortValue: (line) => format.name(line.regionName),
     },
     {
       id: 'current',
-      header: t('list.column.current'),
+      header: t('weigh-up:list.column.current'),
       cell: (line) => line.currentVarietyName,
       sortValue: (line) => line.currentVarietyName,
     },
     {
-      id: 'candidates',
-      header: t('list.column.candidates'),
-      align: 'end',
-      cell: (line) => format.number(line.candidates),
-      sortValue: (line) => line.candidates,
+      id: 'seasons',
+      header: t('record:list.seasons'),
+      cell: ({ seasonFrom: from, seasonTo: to }) =>
+        from === to ? String(to) : t('record:list.span', { from, to }),
+      sortValue: (line) => line.seasonTo,
+    },
+    {
+      id: 'decision',
+      header: t('record:decision.title'),
+      cell: ({ decision }) => (decision === null ? t('record:list.decidedNo') : sayDecision(decision)),
+      sortValue: ({ decision }) => (decision === null ? null : sayDecision(decision)),
     },
     {
       id: 'updated',
-      header: t('list.column.updated'),
+      header: t('weigh-up:list.column.updated'),
       cell: (line) => format.date(line.updatedAt),
       sortValue: (line) => line.updatedAt,
+    },
+    {
+      id: 'steps',
+      header: t('record:list.steps'),
+      cell: (line) => <WeighUpSteps line={line} />,
     },
   ];
 }

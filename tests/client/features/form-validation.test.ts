@@ -4,7 +4,7 @@ import { importForm } from '#src/features/trial-desk/import-fieldset.tsx';
 import { stateOfCopy } from '#src/features/weigh-up/copy-list.tsx';
 import { moneyForm, toAssumptions, toMoneyDraft } from '#src/features/weigh-up/money-form.ts';
 import { newWeighUpForm } from '#src/features/weigh-up/new-weigh-up-form.ts';
-import { matchesSearch } from '#src/features/weigh-up/weigh-ups-page.tsx';
+import { matchesSearch } from '#src/features/weigh-up/weigh-up-filter.ts';
 import { assumptions, buildWeighUp, idOf } from '#tests/client/support/weigh-up-factory.ts';
 
 /** Paths and reasons of what a schema refuses. */
