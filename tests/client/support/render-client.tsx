@@ -1,5 +1,5 @@
 import type { ReactNode } from 'react';
-import { cleanup, render } from '@testing-library/react';
+import { cleanup, configure, render } from '@testing-library/react';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { MemoryRouter } from 'react-router-dom';
 import { afterEach, beforeAll } from 'vitest';
@@ -7,6 +7,9 @@ import type { Language } from '#shared/account.ts';
 import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
 import type { Namespace } from '#src/locale-resources.ts';
 import { makeQueryClient } from '#src/query-client.ts';
+
+// A loaded machine takes its time; a test is not about how long a page takes to appear.
+configure({ asyncUtilTimeout: 10_000 });
 
 beforeAll(async () => {
   await startI18n();
