@@ -10,6 +10,9 @@ type Term = (typeof terms)[number];
 /** A movement that holds now, in the trait's unit. */
 type Movement = { term: Term; sd: number; interval: UsualEstimate['intervals']['site'] };
 
+/** An upper bound this many times the estimate says only that the trials set none. */
+const unboundedFrom = 10;
+
 type UsualOfTraitProps = { trait: Trait; usual: UsualOfTrait };
 
 /** What holds for one trait now, where it came from, and what held before. */
@@ -74,13 +77,13 @@ function MovementTable({ trait, movements, mean }: MovementTableProps) {
       id: 'interval',
       header: t('usual.column.interval'),
       align: 'end',
-      cell: ({ interval }) =>
-        interval === null
-          ? t('usual.leastShare')
-          : t('usual.interval', {
-              low: format.number(interval.low, { decimals: 2 }),
-              high: format.quantity(interval.high, trait.unit, { decimals: 2 }),
-            }),
+      cell: ({ sd, interval }) => {
+        if (interval === null) return t('usual.leastShare');
+        const write = (bound: number) => format.quantity(bound, trait.unit, { decimals: 2 });
+        if (interval.high > unboundedFrom * sd) return t('usual.intervalOpen', { low: write(interval.low) });
+        const low = format.number(interval.low, { decimals: 2 });
+        return t('usual.interval', { low, high: write(interval.high) });
+      },
     },
   ];
   if (movements.length === 0) return null;

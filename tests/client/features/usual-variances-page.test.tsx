@@ -30,7 +30,11 @@ const catalogue = {
 const estimateOf = (n: number, site: number): UsualEstimate => ({
   id: `00000000-0000-4000-8000-00000000002${n}`,
   sd: { site, season: 0.12, rest: 0.24 },
-  intervals: { site: { low: 0.11, high: 0.31, level: 0.95 }, season: null, rest: null },
+  intervals: {
+    site: { low: 0.11, high: 0.31, level: 0.95 },
+    season: null,
+    rest: { low: 0.12, high: 240, level: 0.95 },
+  },
   ...{ environments: 36, seasons: 4, entries: 18, engineVersion: '1' },
   ...{ estimatedAt: `2026-11-0${n}T09:00:00.000Z`, estimatedBy: n === 1 ? null : 'Ines Quarrel' },
 });
@@ -91,8 +95,9 @@ test('an agronomist estimates anew, reads what is missing, and keeps the earlier
   await userEvent.click(screen.getByRole('button', { name: /Estimate/ }));
   expect(await screen.findByText(/Protein: not enough trials.*Site-years: 4, needed 10/)).toBeTruthy();
   expect(await screen.findByText(/by Ines Quarrel from 36 site-years/)).toBeTruthy();
-  const [, site, season] = within(screen.getByRole('table', { name: /^Yield/ })).getAllByRole('row');
+  const [, site, season, rest] = within(screen.getByRole('table', { name: /^Yield/ })).getAllByRole('row');
   expect(site?.textContent).toMatch(/0\.11 to 0\.31\st\/ha/);
   expect(season?.textContent).toContain('too small to show');
+  expect(rest?.textContent).toMatch(/at least 0\.12\st\/ha/);
   expect(screen.getByText(/a command: site 0.40\st\/ha/)).toBeTruthy();
 });
