@@ -68,7 +68,8 @@ export const growerCopyLine = z.object({
 export type GrowerCopyLine = z.infer<typeof growerCopyLine>;
 
 const copyParams = z.object({ copyId: z.uuid() });
-const recipient = z.string().trim().pipe(z.email().max(254));
+/** Where a copy's link is sent: one whole address. */
+export const mailRecipient = z.string().trim().pipe(z.email().max(254));
 
 const weighUpParams = z.object({ weighUpId: z.uuid() });
 
@@ -90,7 +91,7 @@ export const makeGrowerCopy = defineContract({
     language,
     validDays: z.number().int().min(1).max(1095).default(365),
     /** Where to send the link; left out, nothing is sent. */
-    email: recipient.optional(),
+    email: mailRecipient.optional(),
   }),
   /** `path` holds the secret, `/copy/<token>`; `link` is the same with the public address before it. */
   reply: z.object({ copy: growerCopyLine, path: z.string(), link: z.url() }),
@@ -102,7 +103,7 @@ export const mailGrowerCopy = defineContract({
   path: '/api/grower-copies/:copyId/mails',
   access: ['advisor', 'agronomist'],
   params: copyParams,
-  body: z.object({ email: recipient, token: z.string().min(1).max(500) }),
+  body: z.object({ email: mailRecipient, token: z.string().min(1).max(500) }),
   reply: z.object({ copy: growerCopyLine }),
 });
 

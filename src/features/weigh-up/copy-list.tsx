@@ -10,6 +10,7 @@ import { ErrorState } from '#src/components/error-state.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useErrorText } from '#src/use-error-text.ts';
+import { CopyMailState } from './copy-mail-state.tsx';
 import { growerCopiesQuery } from './weigh-up-queries.ts';
 
 type CopyListProps = { weighUpId: string; copies: readonly GrowerCopyLine[] };
@@ -24,11 +25,14 @@ export function stateOfCopy(copy: GrowerCopyLine, now: Date): 'active' | 'expire
 export function CopyList({ weighUpId, copies }: CopyListProps) {
   const { t } = useTranslation('weigh-up');
   const [leaving, setLeaving] = useState<GrowerCopyLine | null>(null);
-  const columns = useCopyColumns(setLeaving);
+  const columns = useCopyColumns(weighUpId, setLeaving);
   if (copies.length === 0) return <p className="text-faded">{t('copies.empty')}</p>;
   return (
     <>
       <DataTable caption={t('copies.caption')} columns={columns} rows={copies} rowKey={(copy) => copy.id} />
+      {copies.some(({ mail }) => mail?.state === 'sent' || mail?.state === 'failed') && (
+        <p className="max-w-prose text-sm text-faded">{t('copies.linkNotKept')}</p>
+      )}
       {leaving && (
         <RevokeDialog
           key={leaving.id}
@@ -41,7 +45,10 @@ export function CopyList({ weighUpId, copies }: CopyListProps) {
   );
 }
 
-function useCopyColumns(onRevoke: (copy: GrowerCopyLine) => void): Column<GrowerCopyLine>[] {
+function useCopyColumns(
+  weighUpId: string,
+  onRevoke: (copy: GrowerCopyLine) => void,
+): Column<GrowerCopyLine>[] {
   const { t } = useTranslation(['weigh-up', 'common']);
   const format = useFormat();
   const now = new Date();
@@ -73,6 +80,11 @@ function useCopyColumns(onRevoke: (copy: GrowerCopyLine) => void): Column<Grower
         lastOpenedAt === null
           ? t('weigh-up:copies.neverOpened')
           : t('weigh-up:copies.openings', { count: openings, date: format.date(lastOpenedAt) }),
+    },
+    {
+      id: 'mail',
+      header: t('weigh-up:copies.column.mail'),
+      cell: (copy) => <CopyMailState weighUpId={weighUpId} copy={copy} />,
     },
     {
       id: 'state',

@@ -28,11 +28,18 @@ export const candidatesQuery = (question: CandidateQuestion) =>
     placeholderData: keepPreviousData,
   });
 
+/** How often the list is asked again while a mail is on its way, ms. */
+const mailLookEvery = 4000;
+
+/** The copies of a weigh-up, and whether the server can send them by mail. */
 export const growerCopiesQuery = (weighUpId: string) =>
   queryOptions({
     queryKey: ['weigh-up', weighUpId, 'grower-copies'],
-    queryFn: async ({ signal }) =>
-      (await callApi(listGrowerCopies, { params: { weighUpId } }, signal)).copies,
+    queryFn: ({ signal }) => callApi(listGrowerCopies, { params: { weighUpId } }, signal),
+    refetchInterval: ({ state }) =>
+      state.data?.copies.some(({ mail }) => mail?.state === 'waiting' || mail?.state === 'sending')
+        ? mailLookEvery
+        : false,
   });
 
 /** What was decided on a weigh-up, and in earlier seasons for the same farm and crop. */
