@@ -3,7 +3,7 @@ import type { ComparisonMethod, FactorFamily, AdjustedMean as MeanView } from '#
 import { compareLevels } from './analyse-content-compare.ts';
 
 /** Combinations beyond this many have means and an LSD, but no list of pairs: it grows with the square. */
-const mostPairedLevels = 12;
+const mostPairedLevels = 6;
 
 /**
  * Families of means beside the trial's own: each factor of a split plot or factorial, and their combinations, in the

@@ -1,4 +1,9 @@
-import { smallestShownDifference, type TrialAnalysis, type TrialNotice } from '#server/stats/engine.ts';
+import {
+  smallestShownDifference,
+  type TestResult,
+  type TrialAnalysis,
+  type TrialNotice,
+} from '#server/stats/engine.ts';
 import type { TrialContent } from '#shared/trial-content.ts';
 import type {
   AnalysisOutcome,
@@ -173,6 +178,10 @@ function viewBest(
   );
 }
 
+function viewTest(test: TestResult | null | undefined): TestResult | null {
+  return test ? { f: test.f, df1: test.df1, df2: test.df2, p: test.p } : null;
+}
+
 function viewDiagnostics({ diagnostics, checks }: TrialAnalysis): TrialAnalysisView['diagnostics'] {
   const { shapiroWilk, brownForsythe, brownForsytheBlocks, largestStudentised } = diagnostics;
   return {
@@ -181,9 +190,9 @@ function viewDiagnostics({ diagnostics, checks }: TrialAnalysis): TrialAnalysisV
     brownForsytheBlocks,
     largestStudentised,
     nonAdditivity: checks?.nonAdditivity ?? null,
-    rowTrend: checks?.rowTrend ?? null,
-    colTrend: checks?.colTrend ?? null,
-    moran: checks?.moran ?? null,
+    rowTrend: viewTest(checks?.rowTrend),
+    colTrend: viewTest(checks?.colTrend),
+    moran: checks?.moran ? { i: checks.moran.i, expected: checks.moran.expected, p: checks.moran.p } : null,
     repeatability: checks?.repeatability ?? null,
   };
 }

@@ -101,7 +101,7 @@ function RankTable({ models, unit, decimals }: SpatialModelsProps) {
     { id: 'entry', header: t('ordinal.entry'), cell: (entry) => entry, sortValue: (entry) => entry },
     ...models.map((model): Column<string> => ({
       id: model.code,
-      header: t(`spatial.${model.code}`),
+      header: t(`spatial.short.${model.code}`),
       align: 'end',
       cell: (entry) => {
         const found = meanOf(model, entry);
