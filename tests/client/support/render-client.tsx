@@ -1,5 +1,5 @@
 import type { ReactNode } from 'react';
-import { cleanup, configure, render } from '@testing-library/react';
+import { cleanup, configure, render, type RenderResult } from '@testing-library/react';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { MemoryRouter } from 'react-router-dom';
 import { afterEach, beforeAll } from 'vitest';
@@ -21,7 +21,7 @@ afterEach(cleanup);
 export async function renderClient(
   part: ReactNode,
   options: { language?: Language; namespaces?: Namespace[]; at?: string } = {},
-) {
+): Promise<RenderResult> {
   await changeLanguage(options.language ?? 'en');
   await i18n.loadNamespaces(options.namespaces ?? ['drawings']);
   const queryClient = makeQueryClient();
