@@ -1,4 +1,5 @@
 import type { ReactNode } from 'react';
+import type { Queries } from '@testing-library/dom';
 import { cleanup, configure, render, type RenderResult } from '@testing-library/react';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { MemoryRouter } from 'react-router-dom';
@@ -21,7 +22,7 @@ afterEach(cleanup);
 export async function renderClient(
   part: ReactNode,
   options: { language?: Language; namespaces?: Namespace[]; at?: string } = {},
-): Promise<RenderResult> {
+): Promise<RenderResult<Queries>> {
   await changeLanguage(options.language ?? 'en');
   await i18n.loadNamespaces(options.namespaces ?? ['drawings']);
   const queryClient = makeQueryClient();
