@@ -7,7 +7,7 @@ export type CautionSeverity = z.infer<typeof cautionSeverity>;
 /**
  * Where the evidence stops: every caution with the placeholders its sentence always needs, `cautions:<code>` in locales/.
  * `count` is the number the sentence counts by, `context` picks one of its variants (`<code>_<context>`);
- * percents, prices, t/ha, mm, °C·d and km come unrounded, names as stored; regions as a list of names in both languages.
+ * percents, prices, t/ha, mm, °C·d and km come unrounded, names as stored; regions and sites as a list of names in both languages.
  */
 export const cautionValues = {
   'few-site-years': ['variety', 'count'],
@@ -29,6 +29,7 @@ export const cautionValues = {
   'never-together': ['variety', 'current'],
   'linked-through-check': ['variety', 'current', 'checks'],
   disconnected: ['variety', 'current'],
+  'trial-ticked-off': ['count', 'sites'],
   'trial-left-out': ['site', 'season', 'context'],
   'trial-weak-cv': ['cv', 'limit'],
   'trial-f-not-significant': ['p'],

@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { defineContract } from './contract.ts';
 import { decision, decisionInput, earlierDecision } from './decision.ts';
-import { weighUp } from './weigh-up.ts';
+import { tickedOffTrial, weighUp, weighUpResult } from './weigh-up.ts';
 
 const access = ['advisor', 'agronomist'] as const;
 const params = z.object({ weighUpId: z.uuid() });
@@ -42,4 +42,20 @@ export const duplicateWeighUp = defineContract({
   access,
   params,
   reply: z.object({ weighUp }),
+});
+
+/** Says which trials do not count, the whole list with their reasons, and answers without them; `revision-conflict` as in changeWeighUp. */
+export const tickOffTrials = defineContract({
+  method: 'PUT',
+  path: '/api/weigh-ups/:weighUpId/ticked-off',
+  access,
+  params,
+  body: z.object({
+    revision: z.number().int(),
+    tickedOff: z
+      .array(tickedOffTrial)
+      .max(200)
+      .refine((trials) => new Set(trials.map(({ trialId }) => trialId)).size === trials.length),
+  }),
+  reply: z.object({ weighUp, result: weighUpResult }),
 });

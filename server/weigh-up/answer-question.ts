@@ -12,6 +12,7 @@ import { loadMoneyDefaults } from './money-defaults.ts';
 import { placeAnswer } from './place-answer.ts';
 import { breakEvenMargins, priceAnswer } from './price-answer.ts';
 import type { MoneyGround, Question } from './question.ts';
+import { partTickedOff, tellTickedOff } from './ticked-off.ts';
 import { asksForOtherRegions, type EvidenceScope } from './trial-choice.ts';
 import { checkVarietiesOfCrop } from './weigh-up-store.ts';
 
@@ -21,19 +22,21 @@ export async function answerWeighUp(
   weighUp: WeighUp,
   signal?: AbortSignal,
 ): Promise<{ result: WeighUpResult; traits: Trait[] }> {
-  const [ground, priceSheet] = await Promise.all([
+  const [found, priceSheet] = await Promise.all([
     loadEvidenceGround(db, weighUp),
     loadMoneyDefaults(db, weighUp.cropId, weighUp.regionId),
   ]);
+  const { counted: ground, out } = partTickedOff(found, weighUp.tickedOff);
   const { currentVarietyId, candidateIds, assumptions: money } = weighUp;
   const acceptsOtherRegions = asksForOtherRegions(weighUp);
   const asked = { currentVarietyId, candidateIds, traits: 'all', acceptsOtherRegions } as const;
   const priced = await answerPriced(db, ground, asked, { money, priceSheet, askedAt: new Date() }, signal);
-  const result = placeAnswer(priced, ground, {
+  const placed = placeAnswer(priced, ground, {
     farm: readFarm(weighUp),
     usualYield: weighUp.usualYield,
     currentName: weighUp.currentVarietyName,
   });
+  const result = tellTickedOff(placed, await loadFigures(db, out), weighUp.tickedOff);
   return { result, traits: ground.traits };
 }
 

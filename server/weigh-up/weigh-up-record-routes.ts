@@ -1,12 +1,19 @@
 import type { Router } from 'express';
 import { CodedError } from '#shared/error-codes.ts';
-import { archiveWeighUp, duplicateWeighUp, readDecisions, recordDecision } from '#shared/weigh-up-record.ts';
+import {
+  archiveWeighUp,
+  duplicateWeighUp,
+  readDecisions,
+  recordDecision,
+  tickOffTrials,
+} from '#shared/weigh-up-record.ts';
 import type { Database } from '#server/db.ts';
 import { requireMe, route } from '#server/route.ts';
 import { answerWeighUp } from './answer-question.ts';
 import { readOwnDecisions, saveDecision } from './decision-store.ts';
 import { describeDecision } from './describe-decision.ts';
 import { requireOwnRegion } from './own-region.ts';
+import { saveTickedOff } from './ticked-off.ts';
 import { duplicateToNextSeason, setArchived } from './weigh-up-keeping.ts';
 import { readOwnWeighUp } from './weigh-up-store.ts';
 
@@ -39,5 +46,12 @@ export function addWeighUpRecordRoutes(router: Router, db: Database): void {
     const owner = requireMe(me);
     requireOwnRegion(owner, (await readOwnWeighUp(db, owner.id, params.weighUpId)).regionId);
     return { weighUp: await duplicateToNextSeason(db, owner.id, params.weighUpId) };
+  });
+
+  route(router, tickOffTrials, async ({ me, params, body, signal }) => {
+    const at = { weighUpId: params.weighUpId, revision: body.revision };
+    const weighUp = await saveTickedOff(db, requireMe(me).id, at, body.tickedOff);
+    const { result } = await answerWeighUp(db, weighUp, signal);
+    return { weighUp, result };
   });
 }

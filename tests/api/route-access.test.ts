@@ -50,6 +50,7 @@ const allowed: Record<string, Who[]> = {
   'GET /api/weigh-ups/:weighUpId/decision': weighers,
   'PUT /api/weigh-ups/:weighUpId/decision': weighers,
   'PUT /api/weigh-ups/:weighUpId/archived': weighers,
+  'PUT /api/weigh-ups/:weighUpId/ticked-off': weighers,
   'POST /api/weigh-ups/:weighUpId/duplicates': weighers,
   'GET /api/weigh-ups/:weighUpId/grower-copies': weighers,
   'POST /api/weigh-ups/:weighUpId/grower-copies': weighers,
