@@ -8,24 +8,36 @@ type EvidenceTrialsProps = {
   result: WeighUpResult;
   /** Turns a trial's name into a link to it. */
   linkTrial?: (trialId: string, words: string) => ReactNode;
+  /** What can be done with a trial that counts, and with one that was ticked off. */
+  stepOf?: (trial: UsedTrial) => ReactNode;
 };
 
 /** The trials behind the figures, and those left out with the reason: nothing is left out in silence. */
-export function EvidenceTrials({ result, linkTrial }: EvidenceTrialsProps) {
+export function EvidenceTrials({ result, linkTrial, stepOf }: EvidenceTrialsProps) {
   const { t } = useTranslation('method');
   const columns = useUsedColumns(linkTrial);
   const reasonColumn: Column<LeftOutTrial> = {
     id: 'reason',
     header: t('column.reason'),
-    cell: (trial) => t(`reason.${trial.reason}`),
+    cell: ({ reason, reasonText }) => (
+      <>
+        {t(`reason.${reason}`)}
+        {reasonText && <span className="block text-sm">{t('reasonWords', { words: reasonText })}</span>}
+      </>
+    ),
   };
+  const step = { id: 'step', header: t('column.step') };
+  const stepColumn: Column<UsedTrial>[] = stepOf ? [{ ...step, cell: stepOf }] : [];
+  const backColumn: Column<LeftOutTrial>[] = stepOf
+    ? [{ ...step, cell: (trial) => (trial.reason === 'ticked-off' ? stepOf(trial) : '–') }]
+    : [];
   return (
     <div className="flex flex-col gap-5">
       <section className="flex flex-col gap-2">
         <h3>{t('trialsUsed')}</h3>
         <DataTable
           caption={t('trialsUsedCaption')}
-          columns={columns}
+          columns={[...columns, ...stepColumn]}
           rows={result.trials}
           rowKey={(trial) => trial.trialId}
         />
@@ -37,7 +49,7 @@ export function EvidenceTrials({ result, linkTrial }: EvidenceTrialsProps) {
         ) : (
           <DataTable
             caption={t('leftOutCaption')}
-            columns={[...columns, reasonColumn]}
+            columns={[...columns, reasonColumn, ...backColumn]}
             rows={result.leftOut}
             rowKey={(trial) => trial.trialId}
           />

@@ -22,6 +22,7 @@ import { DecisionPanel } from './decision-panel.tsx';
 import { FarmPanel } from './farm-panel.tsx';
 import { HandOver } from './hand-over.tsx';
 import { MoneyPanel } from './money-panel.tsx';
+import { TickOffStep } from './tick-off.tsx';
 import { useMoneyForm } from './use-money-form.ts';
 import { useMoneySaving } from './use-money-saving.ts';
 import { weighUpQuery } from './weigh-up-queries.ts';
@@ -115,6 +116,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
         to={weighUp.seasonTo}
       />
       <CautionList title={t('cautionsTitle')} items={cautionItems(result.cautions)} />
+      {result.leftOut.length > 0 && <OwnEvidence weighUp={weighUp} result={result} />}
       <FarmPanel weighUp={weighUp} hasUnsaved={false} />
       <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={false} />
     </div>
@@ -171,13 +173,21 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
             <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
               {t('method:showTrials', { count: result.trials.length })}
             </summary>
-            <EvidenceTrials
-              result={result}
-              linkTrial={(trialId, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
-            />
+            <OwnEvidence weighUp={weighUp} result={result} />
           </details>
         </section>
       </div>
     </div>
+  );
+}
+
+/** The trials, each with the way to its page and out of the figures. */
+function OwnEvidence({ weighUp, result }: AnswerProps) {
+  return (
+    <EvidenceTrials
+      result={result}
+      linkTrial={(trialId, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
+      stepOf={(trial) => <TickOffStep weighUp={weighUp} trial={trial} />}
+    />
   );
 }
