@@ -60,6 +60,11 @@ describe.each(Object.entries({ en, fr }))('outcomes in %s', (_language, { outcom
     expect(placeholdersOf(sentences[code] ?? '').sort()).toEqual([...values].sort());
   });
 
+  it('no sentence is without a code, but the one for whatever comes unforeseen', () => {
+    const codes = new Set([...Object.keys(refusals), ...Object.keys(notices), ...ownCodes, 'other']);
+    expect(Object.keys(outcomes).filter((key) => !codes.has(key.replace(/_.*$/, '')))).toEqual([]);
+  });
+
   it('a refusal with plots at fault names them, and only those', () => {
     for (const [key, sentence] of Object.entries(outcomes))
       if (key.endsWith('_plots')) expect(placeholdersOf(sentence)).toEqual(['plots']);

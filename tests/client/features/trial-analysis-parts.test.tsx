@@ -196,7 +196,7 @@ describe('a split plot', () => {
 
   it('gives means, LSD and gaps, the higher level first', async () => {
     const text = await say(<FactorFamilies analysis={split} unit="t/ha" decimals={2} />);
-    expect(text).toContain('Told apart when they differ by 0.30\u00a0t/ha or more (5%).');
+    expect(text).toContain('Levels are told apart when they differ by 0.30\u00a0t/ha or more (5%).');
     expect(text).toContain('treated over untreated');
     expect(text).toContain('+0.40\u00a0t/ha');
     expect(text).toContain('Means of Main factor × Sub factor');
@@ -237,9 +237,7 @@ describe('checks', () => {
         }}
       />,
     );
-    expect(text).toContain(
-      'No drift by column number: F 21.33 on 1 and 24 df, p\u00a0<\u00a00.001.'.slice(0, 50),
-    );
+    expect(text).toContain('No drift by column number: F 21.33 on 1 and 24 df, p <');
     expect(text).toContain('Tukey’s one degree of freedom');
     expect(text).toContain('Moran');
     expect(text).toContain('0.84');
