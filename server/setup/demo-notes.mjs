@@ -42,3 +42,8 @@ export function printDemoNotes({ accounts, growerPath }, url) {
     );
   }
 }
+
+/** @param {string | null} url where caught mail is shown; null where none is caught */
+export function printMailPage(url) {
+  if (url !== null) console.log(`\nMail that the demo sends goes nowhere else and is shown here:\n  ${url}`);
+}

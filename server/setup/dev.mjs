@@ -1,8 +1,9 @@
 import { spawn } from 'node:child_process';
-import { printDemoNotes, readDemoNotes } from './demo-notes.mjs';
+import { printDemoNotes, printMailPage, readDemoNotes } from './demo-notes.mjs';
 import { projectRoot } from './ground.mjs';
 import { endOnSignals, endProcess, isEnding, undoAtEnd } from './process-end.mjs';
 import {
+  catchDemoMail,
   givenUrl,
   host,
   keepSessionSecret,
@@ -27,9 +28,11 @@ async function develop(port) {
   const apiPort = Number(process.env.API_PORT ?? port + 1);
   await prepareGround(port);
   const databaseUrl = await prepareDatabase();
+  const mail = await catchDemoMail();
   const env = {
     SESSION_SECRET: keepSessionSecret(),
     LOG_LEVEL: 'warn',
+    ...mail.environment,
     ...process.env,
     DATABASE_URL: databaseUrl,
     API_PORT: String(apiPort),
@@ -52,6 +55,7 @@ async function develop(port) {
   );
   const notes = givenUrl === '' ? readDemoNotes() : null;
   if (notes !== null) printDemoNotes(notes, `http://localhost:${port}`);
+  printMailPage(mail.pageUrl);
   console.log('');
 }
 

@@ -121,6 +121,27 @@ async function seedOnce(databaseUrl) {
   });
 }
 
+/**
+ * Catches the mail of the project's own database on loopback and shows it on a page, unless SMTP_URL names a mail
+ * server (or, set to nothing, none). The sink is a development package: it is imported here alone.
+ * @returns {Promise<{ environment: Record<string, string>, pageUrl: string | null }>}
+ */
+export async function catchDemoMail() {
+  if (givenUrl !== '' || process.env.SMTP_URL !== undefined) return { environment: {}, pageUrl: null };
+  return runStep('Mail', async (tell) => {
+    const [{ openMailSink }, { openMailPage }] = [
+      await import('./mail-sink.mjs'),
+      await import('./mail-page.mjs'),
+    ];
+    const sink = await openMailSink();
+    undoAtEnd(() => sink.close());
+    const page = await openMailPage(sink.mails);
+    undoAtEnd(() => page.close());
+    tell('caught on this machine');
+    return { environment: { SMTP_URL: sink.url, MAIL_FROM: 'gavelrow@example.org' }, pageUrl: page.url };
+  });
+}
+
 /** A part of the built server: main, db or seed-demo. */
 export function importBuilt(name) {
   return import(pathToFileURL(join(projectRoot, 'dist', 'server', `${name}.js`)).href);

@@ -1,10 +1,11 @@
 import { join } from 'node:path';
 import { buildClient } from './build-product.mjs';
-import { printDemoNotes, readDemoNotes } from './demo-notes.mjs';
+import { printDemoNotes, printMailPage, readDemoNotes } from './demo-notes.mjs';
 import { projectRoot } from './ground.mjs';
 import { endOnSignals, endProcess, isEnding, undoAtEnd } from './process-end.mjs';
 import { runStep, secondsSoFar } from './progress.mjs';
 import {
+  catchDemoMail,
   explainListening,
   givenUrl,
   importBuilt,
@@ -31,10 +32,12 @@ async function start(port) {
   await prepareGround(port);
   await runStep('Client', async (tell) => tell((await buildClient(projectRoot)) ? 'built' : 'up to date'));
   const databaseUrl = await prepareDatabase();
+  const mail = await catchDemoMail();
   const { readSettings, startServer } = await importBuilt('main');
   const environment = {
     SESSION_SECRET: keepSessionSecret(),
     LOG_LEVEL: 'warn',
+    ...mail.environment,
     ...process.env,
     DATABASE_URL: databaseUrl,
   };
@@ -47,5 +50,6 @@ async function start(port) {
   console.log(`\nReady after ${secondsSoFar()}. Open ${server.url}`);
   const notes = givenUrl === '' ? readDemoNotes() : null;
   if (notes !== null) printDemoNotes(notes, server.url);
+  printMailPage(mail.pageUrl);
   console.log('\nCtrl-C stops the server and its database.');
 }
