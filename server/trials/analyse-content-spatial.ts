@@ -42,7 +42,8 @@ export function cautionTrend(models: readonly SpatialModelView[], isYield: boole
   const best = others.toSorted((a, b) => a.aic - b.aic)[0];
   if (design === undefined || best === undefined) return makeCaution('spatial-trend', 'warning', {});
   if (best.aic >= design.aic) return makeCaution('spatial-trend', 'warning', { context: 'no-better' });
-  if (design.lsd === null || best.lsd === null)
+  // The LSD of AR1 takes its correlations as known and is too small: it is shown with that remark, not quoted alone.
+  if (design.lsd === null || best.lsd === null || best.code === 'autoregressive')
     return makeCaution('spatial-trend', 'warning', { context: 'beside' });
   const mover = findMover(design, best);
   return makeCaution('spatial-trend', 'warning', {

@@ -2,6 +2,7 @@ import { describe, expect, test } from 'vitest';
 import type { TrialContent } from '#shared/trial-content.ts';
 import { trialAnalysis, type AnalysisQuery } from '#shared/trial.ts';
 import { generateDemo } from '#server/demo/generate-demo.ts';
+import { cautionTrend } from '#server/trials/analyse-content-spatial.ts';
 import { viewAnalysis } from '#server/trials/analyse-content-view.ts';
 import type { ContentTrait } from '#server/trials/trial-content-store.ts';
 
@@ -84,6 +85,20 @@ describe('a trend across the field', () => {
     const { values } = cautions.find(({ code }) => code === 'spatial-trend') ?? {};
     expect(values?.['context']).toBe('share-moved');
     expect(values?.['share']).toBeCloseTo(73, 0);
+  });
+
+  test('is told without an LSD where AR1 fits best, whose LSD is too small, or where no model fits better', () => {
+    const [design, autoregressive, surface] = view(drifting).spatial;
+    if (!design || !autoregressive || !surface) throw new Error('A model is missing');
+    const contextOf = (...models: (typeof design)[]) => cautionTrend(models, true).values;
+    expect(contextOf(design, autoregressive)).toEqual({ context: 'beside' });
+    expect(contextOf(design, { ...surface, aic: design.aic })).toEqual({ context: 'no-better' });
+    expect(contextOf(design, { ...surface, means: design.means })).toEqual({
+      context: 'yield',
+      lsd: surface.lsd,
+      usual: design.lsd,
+    });
+    expect(contextOf(design)).toEqual({});
   });
 
   test('is not looked for by models in the plain reading of a sound trial', () => {
