@@ -4,6 +4,7 @@ import { afterAll, beforeAll, beforeEach, expect, test, vi } from 'vitest';
 import { auditEvents } from '#drizzle/schema/audit.ts';
 import { outboxMails } from '#drizzle/schema/outbox.ts';
 import { growerCopies } from '#drizzle/schema/weigh-ups.ts';
+import { readSettings } from '#server/env.ts';
 import { openMailSender, type MailSender } from '#server/mail/mail-sender.ts';
 import { claimDueMail } from '#server/mail/outbox-store.ts';
 import { deliverMail, sendDueMails, startMailWorker } from '#server/mail/outbox-worker.ts';
@@ -309,4 +310,16 @@ test('without a mail server copies are made by link alone, and the page is told'
   const made = await make().expect(200);
   // Without a public address of its own, a link begins where the request came in.
   expect(made.body.link).toMatch(/^http:\/\/127\.0\.0\.1:\d+\/copy\//);
+});
+
+test('settings name both halves of sending mail or neither, and nothing set is nothing said', () => {
+  const base = { DATABASE_URL: 'x', SESSION_SECRET: 'a secret of no worth, for tests alone' };
+  const read = (environment: NodeJS.ProcessEnv) => readSettings({ ...base, ...environment }, null);
+  expect(() => read({ SMTP_URL: sink.url })).toThrow(/MAIL_FROM/);
+  expect(() => read({ SMTP_URL: 'http://mail.example.org', MAIL_FROM: from })).toThrow(/SMTP_URL/);
+  expect(read({ SMTP_URL: '', MAIL_FROM: '', PUBLIC_URL: '' })).toMatchObject({
+    mail: null,
+    publicOrigin: null,
+  });
+  expect(read({ SMTP_URL: sink.url, MAIL_FROM: from }).mail).toEqual({ smtpUrl: sink.url, from });
 });

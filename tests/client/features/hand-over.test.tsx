@@ -66,7 +66,7 @@ describe('handing a copy over', () => {
         body: { language: 'en', validDays: 365 },
       },
     ]);
-    const code = screen.getByRole('img', { name: 'QR code of the link to the grower copy' });
+    const code = screen.getByRole('img', { name: 'QR code that opens the grower copy' });
     await waitFor(() => expect(code.querySelector('path')).not.toBeNull());
     // 65 characters need version 5 at level M: 37 modules, four of quiet on each side (ISO/IEC 18004, from memory).
     expect(code.getAttribute('viewBox')).toBe('0 0 45 45');
