@@ -5,7 +5,7 @@ import type { Language } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { CopyMail } from '#shared/grower-copy.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
-import { copyMailContent, type CopyMailContent } from './mail-content.ts';
+import type { CopyMailContent } from './mail-content.ts';
 import { readFailure, writeFailure, type FailedSending } from './mail-failure.ts';
 
 /** Minutes to wait after each failed try; after the last one the mail is given up. */
@@ -18,7 +18,8 @@ export type ClaimedMail = {
   id: string;
   recipient: string;
   language: Language;
-  content: CopyMailContent;
+  /** CopyMailContent, read at its sending: one that cannot be read must not hold the others up. */
+  content: unknown;
   /** Which try this is, from 1; also tells this claim from a later one. */
   attempt: number;
   /** The link still opens; a mail with a closed one is not sent. */
@@ -72,7 +73,7 @@ export async function claimDueMail(db: Database): Promise<ClaimedMail | null> {
       id: row.id,
       recipient: row.recipient,
       language: row.language,
-      content: copyMailContent.parse(row.content),
+      content: row.content,
       attempt: row.attempts,
       isLinkOpen: await isCopyOpen(tx, due.copyId),
     };

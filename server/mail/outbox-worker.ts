@@ -1,5 +1,6 @@
 import type { Logger } from 'pino';
 import type { Database } from '#server/db.ts';
+import { copyMailContent } from './mail-content.ts';
 import { explainSendingError, type FailedSending } from './mail-failure.ts';
 import { messageIdOf, openMailSender, type MailSender, type MailSettings } from './mail-sender.ts';
 import { claimDueMail, recordFailure, recordSent, type ClaimedMail } from './outbox-store.ts';
@@ -74,9 +75,9 @@ export async function deliverMail(
   mail: ClaimedMail,
   from: string,
 ): Promise<FailedSending | null> {
-  const { content } = mail;
-  if (content.link === null || !mail.isLinkOpen) return { reason: 'link-closed', words: '', isFinal: true };
   try {
+    const content = copyMailContent.parse(mail.content);
+    if (content.link === null || !mail.isLinkOpen) return { reason: 'link-closed', words: '', isFinal: true };
     await sender.send({
       ...renderCopyMail(content, content.link, mail.language),
       messageId: messageIdOf(mail.id, from),

@@ -242,6 +242,16 @@ test('two claims at once never take the same mail', async () => {
   expect(claims.filter((claim) => claim !== null)).toHaveLength(1);
 });
 
+test('a row that cannot be read does not hold the mails behind it up', async () => {
+  const { db } = world.database;
+  const broken = await makeCopy('broken@example.org');
+  await db.update(outboxMails).set({ content: {}, nextAttemptAt: sql`now() - interval '1 hour'` });
+  await makeCopy('behind@example.org');
+  await pass();
+  expect(mailsTo('behind@example.org')).toHaveLength(1);
+  expect(await mailOf(broken.copyId)).toMatchObject({ state: 'waiting', attempts: 1 });
+});
+
 test('the worker sends what it is told of, and ends with its mail', async () => {
   const { db } = world.database;
   const worker = startMailWorker(db, { smtpUrl: sink.url, from }, pino({ level: 'silent' }));
