@@ -21,6 +21,7 @@ import { buildSession } from './sign-in-session.ts';
 import { addTrialDeskRoutes } from './trial-desk/trial-desk-routes.ts';
 import { addTrialRoutes } from './trials/trial-routes.ts';
 import { addUsualVariancesRoutes } from './usual-variances/usual-variances-routes.ts';
+import { addDraftRoutes } from './weigh-up/draft-routes.ts';
 import { addWeighUpRecordRoutes } from './weigh-up/weigh-up-record-routes.ts';
 import { addWeighUpRoutes } from './weigh-up/weigh-up-routes.ts';
 
@@ -33,6 +34,7 @@ const capabilities = [
   addTrialDeskRoutes,
   addWeighUpRoutes,
   addWeighUpRecordRoutes,
+  addDraftRoutes,
   addUsualVariancesRoutes,
   addGrowerCopyRoutes,
 ];

@@ -257,10 +257,12 @@ export const listWeighUps = defineContract({
   reply: z.object({ weighUps: z.array(weighUpLine) }),
 });
 
+/** Stores a question; the draft that it was written in is gone with that. */
 export const createWeighUp = defineContract({
   method: 'POST',
   path: '/api/weigh-ups',
   access: ['advisor', 'agronomist'],
+  query: z.object({ draftId: z.uuid().optional() }),
   body: weighUpInput,
   reply: z.object({ weighUp }),
 });

@@ -14,10 +14,10 @@ export function addWeighUpRoutes(router: Router, db: Database): void {
 
   route(router, listWeighUps, async ({ me }) => ({ weighUps: await listOwnWeighUps(db, requireMe(me).id) }));
 
-  route(router, createWeighUp, async ({ me, body }) => {
+  route(router, createWeighUp, async ({ me, query, body }) => {
     const owner = requireMe(me);
     requireOwnRegion(owner, body.regionId);
-    return { weighUp: await insertWeighUp(db, owner.id, body) };
+    return { weighUp: await insertWeighUp(db, owner.id, body, query.draftId) };
   });
 
   route(router, readWeighUp, async ({ me, params, signal }) => {

@@ -9,6 +9,7 @@ import { soilTexture } from '#shared/farm.ts';
 import { moneyAssumptions } from '#shared/money.ts';
 import type { WeighUp, WeighUpInput, WeighUpLine } from '#shared/weigh-up.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
+import { deleteOwnDraft } from './draft-store.ts';
 
 /** The one predicate of ownership: somebody else's weigh-up answers like one that does not exist. */
 export const isOwn = (ownerId: string, weighUpId: string) =>
@@ -91,8 +92,16 @@ export async function readOwnWeighUp(
   };
 }
 
-/** @throws CodedError variety-not-of-crop; invalid-input for a crop or region that does not exist */
-export async function insertWeighUp(db: Database, ownerId: string, input: WeighUpInput): Promise<WeighUp> {
+/**
+ * @param draftId the draft that the question was written in: it goes with the same step
+ * @throws CodedError variety-not-of-crop; invalid-input for a crop or region that does not exist
+ */
+export async function insertWeighUp(
+  db: Database,
+  ownerId: string,
+  input: WeighUpInput,
+  draftId?: string,
+): Promise<WeighUp> {
   return db.transaction(async (tx) => {
     await checkReferences(tx, input);
     const [row] = await tx
@@ -101,6 +110,7 @@ export async function insertWeighUp(db: Database, ownerId: string, input: WeighU
       .returning({ id: weighUps.id });
     if (row === undefined) throw new CodedError('internal');
     await insertCandidates(tx, row.id, input.candidateIds);
+    if (draftId !== undefined) await deleteOwnDraft(tx, ownerId, draftId);
     return readOwnWeighUp(tx, ownerId, row.id);
   });
 }

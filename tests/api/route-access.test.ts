@@ -8,6 +8,7 @@ import * as growerCopy from '#shared/grower-copy.ts';
 import * as trialDesk from '#shared/trial-desk.ts';
 import * as trial from '#shared/trial.ts';
 import * as usualVariance from '#shared/usual-variance.ts';
+import * as weighUpDraft from '#shared/weigh-up-draft.ts';
 import * as weighUpRecord from '#shared/weigh-up-record.ts';
 import * as weighUp from '#shared/weigh-up.ts';
 import { openApiWorld, type Agent, type ApiWorld } from './api-world.ts';
@@ -43,6 +44,10 @@ const allowed: Record<string, Who[]> = {
   'GET /api/usual-variances': weighers,
   'POST /api/usual-variances': ['agronomist'],
   'GET /api/candidates': weighers,
+  'GET /api/weigh-up-drafts': weighers,
+  'POST /api/weigh-up-drafts': weighers,
+  'PUT /api/weigh-up-drafts/:draftId': weighers,
+  'DELETE /api/weigh-up-drafts/:draftId': weighers,
   'GET /api/weigh-ups': weighers,
   'POST /api/weigh-ups': weighers,
   'GET /api/weigh-ups/:weighUpId': weighers,
@@ -63,7 +68,17 @@ const allowed: Record<string, Who[]> = {
 const isContract = (value: unknown): value is Contract =>
   typeof value === 'object' && value !== null && 'method' in value && 'access' in value && 'reply' in value;
 
-const contracts = [account, catalogue, growerCopy, trialDesk, trial, usualVariance, weighUp, weighUpRecord]
+const contracts = [
+  account,
+  catalogue,
+  growerCopy,
+  trialDesk,
+  trial,
+  usualVariance,
+  weighUp,
+  weighUpDraft,
+  weighUpRecord,
+]
   .flatMap((module) => Object.values(module))
   .filter(isContract);
 

@@ -1,4 +1,4 @@
-import { useEffect } from 'react';
+import { useEffect, useState } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { useForm, type UseFormReturn } from 'react-hook-form';
@@ -6,6 +6,7 @@ import { useTranslation } from 'react-i18next';
 import { useNavigate, useSearchParams } from 'react-router-dom';
 import type { CautionCode } from '#shared/caution.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import type { WeighUpDraft } from '#shared/weigh-up-draft.ts';
 import { createWeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
@@ -21,6 +22,7 @@ import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CandidatePicker } from './candidate-picker.tsx';
+import { toFormDraft, typePrices, useDraftSaving } from './draft-saving.ts';
 import { FarmFields, PriceFields } from './farm-fields.tsx';
 import {
   newWeighUpForm,
@@ -30,7 +32,7 @@ import {
 } from './new-weigh-up-form.ts';
 import { lacksTrials, readQuestion, toCandidateQuestion, type QuestionDraft } from './question-draft.ts';
 import { QuestionFields } from './question-fields.tsx';
-import { candidatesQuery, weighUpsQuery, type CandidateQuestion } from './weigh-up-queries.ts';
+import { candidatesQuery, draftsQuery, weighUpsQuery, type CandidateQuestion } from './weigh-up-queries.ts';
 
 export type NewWeighUpFormApi = UseFormReturn<NewWeighUpDraft, unknown, NewWeighUpForm>;
 
@@ -38,12 +40,18 @@ export type NewWeighUpFormApi = UseFormReturn<NewWeighUpDraft, unknown, NewWeigh
 export function NewWeighUpPage() {
   const { t } = useTranslation('weigh-up');
   const catalogue = useQuery(catalogueQuery);
+  const [search] = useSearchParams();
+  // Only the draft that the page was opened with is read; the one it keeps itself stands in its fields already.
+  const [openedId] = useState(search.get('draft'));
+  const drafts = useQuery({ ...draftsQuery, enabled: openedId !== null, refetchOnMount: 'always' });
+  const isOpening = openedId !== null && drafts.isFetching && !drafts.isFetchedAfterMount;
+  const opened = drafts.data?.find(({ id }) => id === openedId);
   return (
     <>
       <PageHeading title={t('new.title')} below={t('new.lead')} />
-      {catalogue.isPending && <Skeleton lines={6} />}
+      {(catalogue.isPending || isOpening) && <Skeleton lines={6} />}
       {catalogue.isError && <QueryErrorState query={catalogue} />}
-      {catalogue.data && <QuestionForm catalogue={catalogue.data} />}
+      {catalogue.data && !isOpening && <QuestionForm catalogue={catalogue.data} opened={opened} />}
     </>
   );
 }
@@ -52,31 +60,31 @@ function useCreateWeighUp() {
   const client = useQueryClient();
   const navigate = useNavigate();
   return useMutation({
-    mutationFn: async (body: WeighUpInput) => (await callApi(createWeighUp, { body })).weighUp,
+    mutationFn: async ({ body, draftId }: { body: WeighUpInput; draftId: string | null }) =>
+      (await callApi(createWeighUp, { body, query: draftId === null ? {} : { draftId } })).weighUp,
     onSuccess: async (weighUp) => {
+      void client.invalidateQueries({ queryKey: draftsQuery.queryKey });
       await client.invalidateQueries({ queryKey: weighUpsQuery.queryKey });
       void navigate(fillPath(paths.weighUp, { weighUpId: weighUp.id }));
     },
   });
 }
 
-function QuestionForm({ catalogue }: { catalogue: Catalogue }) {
+type QuestionFormProps = { catalogue: Catalogue; opened: WeighUpDraft | undefined };
+
+function QuestionForm({ catalogue, opened: found }: QuestionFormProps) {
+  // As it was when the page was opened: what is saved from here must not come back over what is being typed.
+  const [opened] = useState(found);
   const { t } = useTranslation('weigh-up');
   const [search] = useSearchParams();
   const draft = readQuestion(search, catalogue);
   const question = toCandidateQuestion(draft);
   const form = useForm<NewWeighUpDraft, unknown, NewWeighUpForm>({
     resolver: zodResolver(newWeighUpForm),
-    defaultValues: {
-      growerName: '',
-      farmName: '',
-      areaHectares: null,
-      usualYield: null,
-      priceLow: null,
-      priceMiddle: null,
-      priceHigh: null,
-    },
+    defaultValues: toFormDraft(opened?.content),
   });
+  useEffect(() => typePrices(form, opened?.content), [form, opened]);
+  const kept = useDraftSaving(form, opened);
   return (
     <div className="flex flex-col gap-8">
       <section className="flex flex-col gap-4">
@@ -92,12 +100,17 @@ function QuestionForm({ catalogue }: { catalogue: Catalogue }) {
         />
       )}
       {!lacksTrials(draft) && !question && <p className="text-faded">{t('new.candidatesWait')}</p>}
-      {question && <CandidatesAndFarm draft={draft} question={question} form={form} />}
+      {question && <CandidatesAndFarm draft={draft} question={question} form={form} kept={kept} />}
     </div>
   );
 }
 
-type CandidatesAndFarmProps = { draft: QuestionDraft; question: CandidateQuestion; form: NewWeighUpFormApi };
+type CandidatesAndFarmProps = {
+  draft: QuestionDraft;
+  question: CandidateQuestion;
+  form: NewWeighUpFormApi;
+  kept: ReturnType<typeof useDraftSaving>;
+};
 
 /** The prices of the sheet stand in the form until they are typed over. */
 function useSheetPrices(form: NewWeighUpFormApi, defaults: MoneyAssumptions | null): void {
@@ -117,7 +130,7 @@ const placeCautions: ReadonlySet<CautionCode> = new Set([
   ...(['farm-lighter-soil', 'farm-heavier-soil', 'farm-other-soil'] as const),
 ]);
 
-function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
+function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmProps) {
   const { t } = useTranslation('weigh-up');
   const errorText = useErrorText();
   const candidates = useQuery(candidatesQuery(question));
@@ -140,7 +153,9 @@ function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
       className="flex flex-col gap-8"
       onSubmit={(event) =>
         void form.handleSubmit((typed) => {
-          if (isChosen) creation.mutate(toWeighUpInput(typed, question, draft.candidateIds, defaults));
+          if (!isChosen) return;
+          const body = toWeighUpInput(typed, question, draft.candidateIds, defaults);
+          creation.mutate({ body, draftId: kept.draftId });
         })(event)
       }
     >
@@ -170,9 +185,23 @@ function CandidatesAndFarm({ draft, question, form }: CandidatesAndFarmProps) {
       <FarmFields form={form} />
       <PriceFields form={form} defaults={defaults} />
       {creation.isError && <ErrorState message={errorText(creation.error)} />}
+      <DraftState kept={kept} />
       <Button type="submit" tone="main" isBusy={creation.isPending} className="self-start">
         {creation.isPending ? t('new.creating') : t('new.create')}
       </Button>
     </form>
+  );
+}
+
+/** Whether what is typed is kept, said where the page is left. */
+function DraftState({ kept }: { kept: ReturnType<typeof useDraftSaving> }) {
+  const { t } = useTranslation('record');
+  const errorText = useErrorText();
+  if (kept.error) return <p role="status">{t('drafts.failed', { reason: errorText(kept.error) })}</p>;
+  if (kept.draftId === null) return null;
+  return (
+    <p role="status" className="text-sm text-faded">
+      {t(kept.isKept ? 'drafts.kept' : 'drafts.keeping')}
+    </p>
   );
 }

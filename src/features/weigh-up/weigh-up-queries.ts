@@ -1,6 +1,7 @@
 import { keepPreviousData, queryOptions } from '@tanstack/react-query';
 import { listGrowerCopies } from '#shared/grower-copy.ts';
 import { listCandidates, listWeighUps, readWeighUp, type candidateQuery } from '#shared/weigh-up.ts';
+import { listDrafts } from '#shared/weigh-up-draft.ts';
 import { readDecisions } from '#shared/weigh-up-record.ts';
 import type { z } from 'zod';
 import { callApi } from '#src/api-client.ts';
@@ -48,3 +49,10 @@ export const decisionsQuery = (weighUpId: string) =>
     queryKey: ['weigh-up', weighUpId, 'decision'],
     queryFn: ({ signal }) => callApi(readDecisions, { params: { weighUpId } }, signal),
   });
+
+/** One's drafts; asked for afresh each time, since they change while they are written. */
+export const draftsQuery = queryOptions({
+  queryKey: ['weigh-up-drafts'],
+  queryFn: async ({ signal }) => (await callApi(listDrafts, {}, signal)).drafts,
+  staleTime: 0,
+});

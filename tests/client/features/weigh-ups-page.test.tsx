@@ -41,7 +41,7 @@ function serve(held: WeighUpLine[] = lines): unknown[] {
       asked.push(path);
       return Promise.resolve(Response.json({ weighUp: buildWeighUp({ id: idOf(77) }) }));
     }
-    return Promise.resolve(Response.json({ weighUps: now }));
+    return Promise.resolve(Response.json(path === '/api/weigh-ups' ? { weighUps: now } : { drafts: [] }));
   });
   return asked;
 }

@@ -1,0 +1,112 @@
+import { zodResolver } from '@hookform/resolvers/zod';
+import { screen, waitFor } from '@testing-library/react';
+import userEvent from '@testing-library/user-event';
+import type { ReactNode } from 'react';
+import { useForm } from 'react-hook-form';
+import { useLocation } from 'react-router-dom';
+import { afterEach, describe, expect, it, vi } from 'vitest';
+import type { DraftContent, WeighUpDraft } from '#shared/weigh-up-draft.ts';
+import { DraftList } from '#src/features/weigh-up/draft-list.tsx';
+import { toFormDraft, useDraftSaving } from '#src/features/weigh-up/draft-saving.ts';
+import { FarmFields } from '#src/features/weigh-up/farm-fields.tsx';
+import {
+  newWeighUpForm,
+  type NewWeighUpDraft,
+  type NewWeighUpForm,
+} from '#src/features/weigh-up/new-weigh-up-form.ts';
+import { renderClient } from '#tests/client/support/render-client.tsx';
+import { idOf } from '#tests/client/support/weigh-up-factory.ts';
+
+const content: DraftContent = {
+  question: 'crop=pea&region=north',
+  growerName: 'Ada',
+  farmName: '',
+  areaHectares: null,
+  usualYield: null,
+  priceLow: null,
+  priceMiddle: null,
+  priceHigh: null,
+};
+const draft: WeighUpDraft = {
+  id: idOf(5),
+  revision: 1,
+  updatedAt: '2026-12-01T09:00:00.000Z',
+  content,
+};
+
+type Asked = [method: string, path: string, body: Record<string, unknown> | null];
+
+/** Keeps one draft as the server does. */
+function serve(): Asked[] {
+  const asked: Asked[] = [];
+  let held: WeighUpDraft | null = draft;
+  vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
+    const method = init.method ?? 'GET';
+    if (method === 'GET') return Promise.resolve(Response.json({ drafts: held === null ? [] : [held] }));
+    asked.push([method, path, init.body === undefined ? null : JSON.parse(String(init.body))]);
+    if (method === 'DELETE') held = null;
+    return Promise.resolve(Response.json(method === 'DELETE' ? {} : { draft: { ...draft, revision: 2 } }));
+  });
+  return asked;
+}
+
+function Typing({ opened }: { opened?: WeighUpDraft }) {
+  const form = useForm<NewWeighUpDraft, unknown, NewWeighUpForm>({
+    resolver: zodResolver(newWeighUpForm),
+    defaultValues: toFormDraft(opened?.content),
+  });
+  const kept = useDraftSaving(form, opened);
+  return (
+    <>
+      <FarmFields form={form} />
+      <output aria-label="kept">{String(kept.isKept)}</output>
+      <output aria-label="address">{useLocation().search}</output>
+    </>
+  );
+}
+
+const options = { at: '/weigh-ups/new?crop=pea', namespaces: ['weigh-up', 'record', 'errors'] as const };
+const render = (part: ReactNode) =>
+  renderClient(part, { at: options.at, namespaces: [...options.namespaces] });
+
+afterEach(() => vi.unstubAllGlobals());
+
+describe('a draft', () => {
+  it('is begun a while after the last edit, once, and named in the address', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    await render(<Typing />);
+    await user.type(screen.getByLabelText('Grower'), 'Ada');
+    expect(asked).toEqual([]);
+    await waitFor(() => expect(screen.getByLabelText('kept').textContent).toBe('true'), { timeout: 5000 });
+    const expected = { content: { ...content, question: 'crop=pea' } };
+    expect(asked).toEqual([['POST', '/api/weigh-up-drafts', expected]]);
+    expect(screen.getByLabelText('address').textContent).toBe(`?crop=pea&draft=${draft.id}`);
+  });
+
+  it('is written on under its revision when it is opened again', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    await render(<Typing opened={{ ...draft, content: { ...content, question: 'crop=pea' } }} />);
+    expect(screen.getByLabelText('Grower')).toHaveProperty('value', 'Ada');
+    expect(screen.getByLabelText('kept').textContent).toBe('true');
+    await user.type(screen.getByLabelText('Farm'), 'Low Field');
+    await waitFor(() => expect(asked).toHaveLength(1), { timeout: 5000 });
+    expect(asked[0]).toMatchObject([
+      'PUT',
+      `/api/weigh-up-drafts/${draft.id}`,
+      { revision: 1, content: { growerName: 'Ada', farmName: 'Low Field' } },
+    ]);
+  });
+
+  it('leads back to its question from the list, and is deleted there', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    await render(<DraftList />);
+    const link = await screen.findByRole('link', { name: 'Ada' });
+    expect(link.getAttribute('href')).toBe(`/weigh-ups/new?crop=pea&region=north&draft=${draft.id}`);
+    await user.click(screen.getByRole('button', { name: 'Delete the draft Ada' }));
+    await waitFor(() => expect(screen.queryByText('Drafts')).toBeNull());
+    expect(asked).toEqual([['DELETE', `/api/weigh-up-drafts/${draft.id}`, null]]);
+  });
+});
