@@ -38,7 +38,8 @@ function serve(answerToSave: (asked: Asked) => Response, answer: unknown = opene
     asked.push(call);
     if (call.method === 'PUT') return Promise.resolve(answerToSave(call));
     if (path === '/api/catalogue') return Promise.resolve(Response.json(catalogue));
-    if (path.endsWith('/grower-copies')) return Promise.resolve(Response.json({ copies: [], isMailSetUp: false }));
+    if (path.endsWith('/grower-copies'))
+      return Promise.resolve(Response.json({ copies: [], isMailSetUp: false }));
     return Promise.resolve(Response.json(answer));
   });
   return asked;
