@@ -36,13 +36,14 @@ export function placeAnswer(
   const sites = [
     ...new Map(used.map(({ siteId, siteName, place }) => [siteId, { ...place, name: siteName }])).values(),
   ];
+  const isForeign = used.length > 0 && used.every(({ inRegion }) => !inRegion);
   const mark = <Trial extends UsedTrial>(trial: Trial): Trial => ({ ...trial, ...tellRegion(byId, trial) });
   return {
     ...answer,
     trials: answer.trials.map(mark),
     leftOut: answer.leftOut.map(mark),
     farmRange: ground.farm && measureFarmRange(ground.farm, sites),
-    candidates: answer.candidates.map((candidate) =>
+    candidates: answer.candidates.map(isForeign ? withholdVerdict : keepVerdict).map((candidate) =>
       readAtUsualYield(
         {
           ...candidate,
@@ -59,6 +60,23 @@ export function placeAnswer(
       ...(ground.farm === null ? [] : cautionFarm(ground.farm, sites)),
       ...answer.cautions,
     ],
+  };
+}
+
+const keepVerdict = (candidate: CandidateResult): CandidateResult => candidate;
+
+/**
+ * A region without trials gets no verdict, also where trials of other regions were asked for: their estimates are shown,
+ * and nothing is judged or priced by them.
+ */
+function withholdVerdict(candidate: CandidateResult): CandidateResult {
+  return {
+    ...candidate,
+    verdict: 'thin',
+    moneyGap: null,
+    money: null,
+    siteYearsToSettle: null,
+    traits: candidate.traits.map((trait) => ({ ...trait, verdict: trait.verdict === null ? null : 'thin' })),
   };
 }
 

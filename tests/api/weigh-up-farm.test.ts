@@ -144,7 +144,7 @@ describe('a region without trials', () => {
     expect(result.cautions).toContainEqual({ code: 'no-trial-in-region', severity: 'stop', values: {} });
   });
 
-  test('is answered from its neighbours only on request, and never without saying so', async () => {
+  test('shows its neighbours’ estimates only on request, says so, and is given no verdict by them', async () => {
     const result = await weigh({ ...coast(), includeNeighbours: true });
     expect([result.answer, sitesOf(result)]).toEqual(['weighed', ['HEATH']]);
     expect(result.cautions[0]).toEqual({
@@ -152,7 +152,12 @@ describe('a region without trials', () => {
       severity: 'stop',
       values: { context: 'elsewhere', regions: [{ en: 'south', fr: 'south (fr)' }] },
     });
+    expect(result.candidates.map(({ verdict, money }) => [verdict, money])).toEqual(
+      result.candidates.map(() => ['thin', null]),
+    );
+    expect(result.candidates.some(({ gap }) => gap !== null)).toBe(true);
     const nearest = await weigh({ ...coast(), trialChoice: 'nearest', ...farmAt(49) });
+    expect(nearest.candidates.every(({ verdict }) => verdict === 'thin')).toBe(true);
     expect(nearest.cautions[0]).toMatchObject({
       severity: 'stop',
       values: { regions: [{ en: 'north' }, { en: 'south' }] },
