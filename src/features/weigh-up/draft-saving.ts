@@ -2,7 +2,13 @@ import { useEffect, useRef, useState } from 'react';
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useFormState, useWatch, type UseFormReturn } from 'react-hook-form';
 import { useSearchParams } from 'react-router-dom';
-import { createDraft, saveDraft, type DraftContent, type WeighUpDraft } from '#shared/weigh-up-draft.ts';
+import {
+  createDraft,
+  draftContent,
+  saveDraft,
+  type DraftContent,
+  type WeighUpDraft,
+} from '#shared/weigh-up-draft.ts';
 import { callApi } from '#src/api-client.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { NewWeighUpDraft, NewWeighUpForm } from './new-weigh-up-form.ts';
@@ -79,8 +85,7 @@ export function useDraftSaving(
     // One at a time: the revision of one saving is what the next is made over.
     scope: { id: 'weigh-up-draft' },
     mutationFn: async (written: string) => {
-      const next: DraftContent = JSON.parse(written);
-      held.current = await keep(held.current, next);
+      held.current = await keep(held.current, draftContent.parse(JSON.parse(written)));
       return held.current.id;
     },
     onSuccess: () => client.invalidateQueries({ queryKey: draftsQuery.queryKey }),
