@@ -40,6 +40,7 @@ export function MethodNotes({ result }: MethodNotesProps) {
       )}
       <SensitivityNotes candidates={result.candidates} />
       <p>{t('method:money')}</p>
+      <p>{t('method:calibration')}</p>
       <p className="text-sm text-faded">
         {t('method:computed', { at: format.dateTime(result.computedAt), engine: result.engineVersion })}
       </p>
