@@ -69,6 +69,8 @@ async function take(browser: Browser, picture: Picture): Promise<void> {
   });
   const { email, password } = demoAccounts.advisor;
   await context.request.post('/api/session', { data: { email, password } });
+  // The account's language wins over the browser's.
+  await context.request.patch('/api/me', { data: { language } });
   const page = await context.newPage();
   await picture.open(page);
   await page.getByRole('heading', { level: 1 }).waitFor();
