@@ -85,8 +85,15 @@ async function readAccount(db: DatabaseOrTransaction, id: string): Promise<Accou
   return toAccount(row);
 }
 
-/** @throws CodedError email-taken; invalid-input for a region that does not exist */
-export async function insertAccount(db: Database, actorId: string, input: NewAccountInput): Promise<Account> {
+/**
+ * @param actorId who creates it; null for the first administrator, whom nobody could
+ * @throws CodedError email-taken; invalid-input for a region that does not exist
+ */
+export async function insertAccount(
+  db: Database,
+  actorId: string | null,
+  input: NewAccountInput,
+): Promise<Account> {
   const passwordHash = await hashPassword(input.password);
   return refuseByName(() =>
     db.transaction(async (tx) => {

@@ -4,6 +4,7 @@ import { sessions, users } from '#drizzle/schema/accounts.ts';
 import { auditEvents } from '#drizzle/schema/audit.ts';
 import { regions } from '#drizzle/schema/geography.ts';
 import type { Account } from '#shared/account.ts';
+import { createFirstAdministrator } from '#server/accounts/first-administrator.ts';
 import { openApiWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
 import { waitForBlocked } from './wait-for-blocked.ts';
 
@@ -214,4 +215,26 @@ test('the log is read newest first, page by page, and the database refuses to ch
   const second = await chief.agent.get('/api/audit-events').query({ before: ids.at(-1) });
   expect(second.body.events[0].id).toBeLessThan(ids.at(-1));
   await expect(world.database.db.execute(sql`delete from audit_events`)).rejects.toThrow();
+});
+
+test('the first administrator is made by the command, and only where there is none', async () => {
+  const fresh = await openApiWorld('empty');
+  const typed = {
+    name: 'Ama Verrin',
+    email: 'ama@example.org',
+    password: 'a long enough password',
+    language: 'en',
+  };
+  const { db } = fresh.database;
+  await expect(createFirstAdministrator(db, { ...typed, password: 'short' })).rejects.toMatchObject({
+    code: 'invalid-input',
+    issues: [{ path: 'password' }],
+  });
+  const made = await createFirstAdministrator(db, typed);
+  expect(made).toMatchObject({ role: 'administrator', status: 'active' });
+  await fresh.signIn(typed.email, typed.password);
+  await expect(createFirstAdministrator(db, { ...typed, email: 'other@example.org' })).rejects.toMatchObject({
+    code: 'state-conflict',
+  });
+  await fresh.close();
 });
