@@ -76,12 +76,16 @@ describe('a draft', () => {
     const asked = serve();
     const user = userEvent.setup();
     await render(<Typing />);
-    await user.type(screen.getByLabelText('Grower'), 'Ada');
+    // One edit, whole: typed letter by letter, a slow machine could pause in between as a person does.
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
     expect(asked).toEqual([]);
-    await waitFor(() => expect(screen.getByLabelText('kept').textContent).toBe('true'), { timeout: 5000 });
+    await waitFor(() => expect(screen.getByLabelText('kept').textContent).toBe('true'));
     const expected = { content: { ...content, question: 'crop=pea' } };
     expect(asked).toEqual([['POST', '/api/weigh-up-drafts', expected]]);
-    expect(screen.getByLabelText('address').textContent).toBe(`?crop=pea&draft=${draft.id}`);
+    // The address follows in a render of its own.
+    const named = `?crop=pea&draft=${draft.id}`;
+    await waitFor(() => expect(screen.getByLabelText('address').textContent).toBe(named));
   });
 
   it('is written on under its revision when it is opened again', async () => {
@@ -90,8 +94,9 @@ describe('a draft', () => {
     await render(<Typing opened={{ ...draft, content: { ...content, question: 'crop=pea' } }} />);
     expect(screen.getByLabelText('Grower')).toHaveProperty('value', 'Ada');
     expect(screen.getByLabelText('kept').textContent).toBe('true');
-    await user.type(screen.getByLabelText('Farm'), 'Low Field');
-    await waitFor(() => expect(asked).toHaveLength(1), { timeout: 5000 });
+    await user.click(screen.getByLabelText('Farm'));
+    await user.paste('Low Field');
+    await waitFor(() => expect(asked).toHaveLength(1));
     expect(asked[0]).toMatchObject([
       'PUT',
       `/api/weigh-up-drafts/${draft.id}`,
