@@ -54,6 +54,9 @@ export function sqlStateOf(error: unknown): string | null {
   return null;
 }
 
+/** Whether a failed query broke a unique constraint: what it was to write is there already. */
+export const isUniqueViolation = (error: unknown): boolean => sqlStateOf(error) === '23505';
+
 const connectionCodes = new Set(['ECONNREFUSED', 'ECONNRESET', 'ENOTFOUND', 'ETIMEDOUT', 'EPIPE']);
 /** Shutting down, starting up, crashed, too many connections, connection failures. */
 const awayStates = /^(57P0[123]|53300|08...)$/;

@@ -11,7 +11,9 @@ import {
   text,
   timestamp,
   unique,
+  uniqueIndex,
   uuid,
+  type AnyPgColumn,
 } from 'drizzle-orm/pg-core';
 import { users } from './accounts.ts';
 import { crops, varieties } from './crops.ts';
@@ -121,9 +123,15 @@ export const growerCopies = pgTable(
     revokedAt: timestamp('revoked_at', { withTimezone: true }),
     openings: integer('openings').notNull().default(0),
     lastOpenedAt: timestamp('last_opened_at', { withTimezone: true }),
+    /** The copy whose place this one takes, since trials in that one have changed. */
+    followsId: uuid('follows_id').references((): AnyPgColumn => growerCopies.id, { onDelete: 'set null' }),
   },
   (table) => [
     index('grower_copies_weigh_up_idx').on(table.weighUpId),
+    // Two clicks, or two tabs, make one fresh copy; a revoked one leaves its place to the next.
+    uniqueIndex('grower_copies_follows_unique')
+      .on(table.followsId)
+      .where(sql`${table.revokedAt} is null`),
     check('grower_copies_token_hash_shape', sql`${table.tokenHash} ~ '^[0-9a-f]{64}$'`),
     check('grower_copies_language', sql`${table.language} in ('en', 'fr')`),
     check('grower_copies_expiry_order', sql`${table.expiresAt} > ${table.createdAt}`),

@@ -3,7 +3,7 @@ import { sessions, userRegions, users } from '#drizzle/schema/accounts.ts';
 import type { Account, AccountChangeInput, Language, Me, NewAccountInput } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
-import { sqlStateOf, type Database, type DatabaseOrTransaction } from '#server/db.ts';
+import { isUniqueViolation, sqlStateOf, type Database, type DatabaseOrTransaction } from '#server/db.ts';
 import { hashPassword } from './password.ts';
 
 const regionIds = sql<
@@ -204,9 +204,8 @@ async function refuseByName<T>(write: () => Promise<T>): Promise<T> {
   try {
     return await write();
   } catch (error) {
-    const state = sqlStateOf(error);
-    if (state === '23505') throw new CodedError('email-taken', { cause: error });
-    if (state === '23503') {
+    if (isUniqueViolation(error)) throw new CodedError('email-taken', { cause: error });
+    if (sqlStateOf(error) === '23503') {
       const issues = [{ path: 'regionIds', reason: 'invalid_value' }];
       throw new CodedError('invalid-input', { issues, cause: error });
     }

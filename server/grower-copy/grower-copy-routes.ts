@@ -8,13 +8,16 @@ import {
   retryGrowerCopyMail,
   revokeGrowerCopy,
 } from '#shared/grower-copy.ts';
+import { listAffectedCopies, renewGrowerCopy } from '#shared/affected-copy.ts';
 import type { Database } from '#server/db.ts';
 import type { ServerSettings } from '#server/env.ts';
 import { requireMe, route } from '#server/route.ts';
 import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
+import { findAffectedCopies } from './affected-copies.ts';
 import { listCopies, openCopy, revokeOwnCopy } from './grower-copy-store.ts';
 import { mailCopyAgain, retryMailOfCopy } from './mail-copy.ts';
 import { makeCopy } from './make-copy.ts';
+import { renewCopy } from './renew-copy.ts';
 
 export function addGrowerCopyRoutes(
   router: Router,
@@ -61,6 +64,19 @@ export function addGrowerCopyRoutes(
   route(router, revokeGrowerCopy, async ({ me, params }) => ({
     copy: await revokeOwnCopy(db, requireMe(me).id, params.copyId),
   }));
+
+  route(router, listAffectedCopies, async ({ me }) => ({
+    copies: await findAffectedCopies(db, requireMe(me).id),
+    isMailSetUp,
+  }));
+
+  route(router, renewGrowerCopy, async ({ me, params, body, request }) => {
+    if (body.isSent) requireMail();
+    const origin = originOf(request);
+    const made = await renewCopy(db, requireMe(me), params.copyId, body.isSent ? origin : null);
+    if (made.isMailed) onMailQueued();
+    return { copy: made.copy, link: `${origin}${made.path}` };
+  });
 
   route(router, openGrowerCopy, async ({ params, response }) => {
     keepLinkPrivate(response);

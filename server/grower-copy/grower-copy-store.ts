@@ -36,12 +36,14 @@ export type NewCopy = {
   validDays: number;
   snapshot: GrowerCopySnapshot;
   createdBy: string;
+  /** The copy whose place it takes; null for a first one. */
+  followsId: string | null;
   /** The mail that brings the link, stored with the copy or not at all. */
   mail: { recipient: string; link: string } | null;
 };
 
 export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCopyLine> {
-  const { weighUpId, language, snapshot, createdBy } = copy;
+  const { weighUpId, language, snapshot, createdBy, followsId } = copy;
   return db.transaction(async (tx) => {
     const [row] = await tx
       .insert(growerCopies)
@@ -50,6 +52,7 @@ export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCop
         language,
         snapshot,
         createdBy,
+        followsId,
         tokenHash: hashLinkSecret(copy.secret),
         expiresAt: new Date(Date.now() + copy.validDays * dayMs),
       })
@@ -60,7 +63,11 @@ export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCop
       action: 'grower-copy.made',
       subjectKind: 'grower-copy',
       subjectId: row.id,
-      detail: { weighUpId, expiresAt: row.expiresAt.toISOString() },
+      detail: {
+        weighUpId,
+        expiresAt: row.expiresAt.toISOString(),
+        ...(followsId === null ? {} : { follows: followsId }),
+      },
     });
     if (copy.mail !== null) await queueMailOf(tx, row, copy.mail, createdBy);
     return toLine(row, [], (await readNewestMails(tx, [row.id])).get(row.id));

@@ -11,6 +11,8 @@ export type CopyWish = {
   validDays: number;
   /** Where to send the link, and the public address that it begins with. */
   mail?: { recipient: string; origin: string };
+  /** The copy whose place it takes. */
+  followsId?: string;
 };
 
 /**
@@ -22,7 +24,7 @@ export async function makeCopy(
   db: Database,
   advisor: Pick<Me, 'id' | 'name' | 'email'>,
   weighUpId: string,
-  { mail, ...wish }: CopyWish,
+  { mail, followsId, ...wish }: CopyWish,
 ): Promise<{ copy: GrowerCopyLine; path: string }> {
   const snapshot = await takeSnapshot(db, advisor, weighUpId);
   const secret = makeLinkSecret();
@@ -33,6 +35,7 @@ export async function makeCopy(
     secret,
     snapshot,
     createdBy: advisor.id,
+    followsId: followsId ?? null,
     mail: mail === undefined ? null : { recipient: mail.recipient, link: `${mail.origin}${path}` },
   });
   return { copy, path };

@@ -10,7 +10,7 @@ import {
 } from '#shared/trial-desk.ts';
 import { toTonnesPerHectare, type YieldUnit } from '#shared/units.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
-import { sqlStateOf, type DatabaseOrTransaction } from '#server/db.ts';
+import { isUniqueViolation, type DatabaseOrTransaction } from '#server/db.ts';
 import { insertTrialContents } from '#server/trials/trial-content-insert.ts';
 import { readImportCatalogue, type ImportCatalogue } from './import-catalogue.ts';
 import type { ColumnChoice } from './match-columns.ts';
@@ -28,8 +28,6 @@ export type CheckedImport = {
   content: TrialContent | null;
 };
 
-/** SQLSTATE of a broken unique constraint. */
-const uniqueViolation = '23505';
 /** A median yield beyond these shares of the crop's usual one is in another unit, or lost its decimal sign. */
 const doubtfulShares = { low: 1 / 20, high: 8 };
 
@@ -108,7 +106,7 @@ export async function storeTrialFile(
       });
     });
   } catch (error) {
-    if (sqlStateOf(error) === uniqueViolation) throw new CodedError('trial-exists', { cause: error });
+    if (isUniqueViolation(error)) throw new CodedError('trial-exists', { cause: error });
     throw error;
   }
   return id;

@@ -38,8 +38,8 @@ export type RecordWorld = {
 };
 
 /** Three sites by three seasons in the north, an advisor of the region and another one. */
-export async function openRecordWorld(): Promise<RecordWorld> {
-  const world = await openApiWorld('empty');
+export async function openRecordWorld(environment: NodeJS.ProcessEnv = {}): Promise<RecordWorld> {
+  const world = await openApiWorld('empty', environment);
   const { db } = world.database;
   const small = await foundSmallWorld(db);
   const trialIds = new Map<string, string>();

@@ -2,6 +2,7 @@ import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { users } from '#drizzle/schema/accounts.ts';
 import * as account from '#shared/account.ts';
+import * as affectedCopy from '#shared/affected-copy.ts';
 import * as catalogue from '#shared/catalogue.ts';
 import type { Contract } from '#shared/contract.ts';
 import * as growerCopy from '#shared/grower-copy.ts';
@@ -62,6 +63,8 @@ const allowed: Record<string, Who[]> = {
   'DELETE /api/grower-copies/:copyId': weighers,
   'POST /api/grower-copies/:copyId/mails': weighers,
   'POST /api/grower-copies/:copyId/mail-retries': weighers,
+  'GET /api/affected-copies': weighers,
+  'POST /api/grower-copies/:copyId/fresh': weighers,
   'GET /api/copies/:token': everyone,
 };
 
@@ -70,6 +73,7 @@ const isContract = (value: unknown): value is Contract =>
 
 const contracts = [
   account,
+  affectedCopy,
   catalogue,
   growerCopy,
   trialDesk,

@@ -1,4 +1,5 @@
 import { keepPreviousData, queryOptions } from '@tanstack/react-query';
+import { listAffectedCopies } from '#shared/affected-copy.ts';
 import { listGrowerCopies } from '#shared/grower-copy.ts';
 import { listCandidates, listWeighUps, readWeighUp, type candidateQuery } from '#shared/weigh-up.ts';
 import { listDrafts } from '#shared/weigh-up-draft.ts';
@@ -42,6 +43,13 @@ export const growerCopiesQuery = (weighUpId: string) =>
         ? mailLookEvery
         : false,
   });
+
+/** One's open copies whose trials have changed since; a correction may come any time, so it is asked for afresh. */
+export const affectedCopiesQuery = queryOptions({
+  queryKey: ['affected-copies'],
+  queryFn: ({ signal }) => callApi(listAffectedCopies, {}, signal),
+  staleTime: 0,
+});
 
 /** What was decided on a weigh-up, and in earlier seasons for the same farm and crop. */
 export const decisionsQuery = (weighUpId: string) =>

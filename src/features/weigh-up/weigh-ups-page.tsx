@@ -11,6 +11,7 @@ import { useFormat } from '#src/components/use-format.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useUrlPatch } from '#src/url-state.ts';
+import { AffectedCopies } from './affected-copies.tsx';
 import { DraftList } from './draft-list.tsx';
 import { useDecisionWords } from './recorded-decision.tsx';
 import { listFilterChoices, noFilter, passesFilter, readWeighUpFilter } from './weigh-up-filter.ts';
@@ -32,6 +33,7 @@ export function WeighUpsPage() {
           </LinkButton>
         }
       />
+      <AffectedCopies />
       <DraftList />
       {weighUps.isPending && <Skeleton lines={6} />}
       {weighUps.isError && <QueryErrorState query={weighUps} />}

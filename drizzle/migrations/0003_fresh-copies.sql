@@ -1,0 +1,3 @@
+ALTER TABLE "grower_copies" ADD COLUMN "follows_id" uuid;--> statement-breakpoint
+ALTER TABLE "grower_copies" ADD CONSTRAINT "grower_copies_follows_id_grower_copies_id_fk" FOREIGN KEY ("follows_id") REFERENCES "public"."grower_copies"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
+CREATE UNIQUE INDEX "grower_copies_follows_unique" ON "grower_copies" USING btree ("follows_id") WHERE "grower_copies"."revoked_at" is null;
