@@ -1,11 +1,11 @@
 import { z } from 'zod';
 import { defineContract } from './contract.ts';
+import { languages } from './language.ts';
 
 export const roles = ['advisor', 'agronomist', 'administrator'] as const;
 export const role = z.enum(roles);
 export type Role = z.infer<typeof role>;
 
-export const languages = ['en', 'fr'] as const;
 export const language = z.enum(languages);
 export type Language = z.infer<typeof language>;
 

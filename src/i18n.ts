@@ -1,6 +1,7 @@
 import { createInstance, type BackendModule, type i18n as I18n, type ResourceKey } from 'i18next';
 import { initReactI18next } from 'react-i18next';
-import { language as languageCode, languages, type Language } from '#shared/account.ts';
+import { language as languageCode } from '#shared/account.ts';
+import { languages, readLanguage, type Language } from '#shared/language.ts';
 import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
 import { ApiError } from './api-client.ts';
 import type { Namespace } from './locale-resources.ts';
@@ -80,13 +81,12 @@ export async function startI18n(): Promise<void> {
 /** Lets a sentence name our own formats behind a placeholder, in place of the library's. */
 function addSentenceFormats(): void {
   const formatter = i18n.services.formatter;
-  const languageOf = (tag: string | undefined) => languageCode.catch('en').parse(tag);
   for (const [name, format] of Object.entries(sentenceFormats)) {
     formatter?.add(name, (value: unknown, tag, options: SentenceFormatOptions) =>
-      typeof value === 'number' ? format(value, languageOf(tag), options) : String(value),
+      typeof value === 'number' ? format(value, readLanguage(tag), options) : String(value),
     );
   }
-  formatter?.add('date', (value: unknown, tag) => formatSentenceDate(String(value), languageOf(tag)));
+  formatter?.add('date', (value: unknown, tag) => formatSentenceDate(String(value), readLanguage(tag)));
 }
 
 /**

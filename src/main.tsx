@@ -5,7 +5,7 @@ import { BrowserRouter } from 'react-router-dom';
 import { startI18n } from './i18n.ts';
 import { makeQueryClient } from './query-client.ts';
 import { AppRoutes } from './routes.tsx';
-import './styles.css';
+import './app.css';
 
 const root = document.getElementById('root');
 if (!root) throw new Error('index.html has no #root');

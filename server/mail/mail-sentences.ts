@@ -1,5 +1,5 @@
 import { createInstance, type i18n } from 'i18next';
-import { languages, type Language } from '#shared/account.ts';
+import { languages, type Language } from '#shared/language.ts';
 import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
 import enMail from '#locales/en/mail.json' with { type: 'json' };
 import frMail from '#locales/fr/mail.json' with { type: 'json' };

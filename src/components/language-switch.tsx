@@ -1,5 +1,5 @@
 import { useTranslation } from 'react-i18next';
-import { languages, type Language } from '#shared/account.ts';
+import { languages, type Language } from '#shared/language.ts';
 import { useLanguage } from './use-language.ts';
 
 /** Offers each other language in that language's own name. */

@@ -1,8 +1,8 @@
 import { useTranslation } from 'react-i18next';
-import { language, type Language } from '#shared/account.ts';
+import { readLanguage, type Language } from '#shared/language.ts';
 
 /** The language the page is in. */
 export function useLanguage(): Language {
   const { i18n } = useTranslation();
-  return language.catch('en').parse(i18n.language);
+  return readLanguage(i18n.language);
 }

@@ -1,6 +1,7 @@
 import { Controller, useWatch, type Control } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
-import { languages, roles, type Language, type Role } from '#shared/account.ts';
+import { roles, type Role } from '#shared/account.ts';
+import { languages, type Language } from '#shared/language.ts';
 import type { Region } from '#shared/catalogue.ts';
 import { Checkbox } from '#src/components/checkbox.tsx';
 import { Field } from '#src/components/field.tsx';

@@ -1,6 +1,6 @@
 import { useRef, useState } from 'react';
 import { useTranslation } from 'react-i18next';
-import { languages, type Language } from '#shared/account.ts';
+import { languages, type Language } from '#shared/language.ts';
 import { mailRecipient } from '#shared/grower-copy.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';

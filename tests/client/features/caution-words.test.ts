@@ -1,6 +1,6 @@
 import { beforeAll, describe, expect, it } from 'vitest';
 import { renderHook } from '@testing-library/react';
-import { languages } from '#shared/account.ts';
+import { languages } from '#shared/language.ts';
 import { cautionCodes, cautionValues, type Caution, type CautionCode } from '#shared/caution.ts';
 import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
