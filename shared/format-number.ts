@@ -14,6 +14,8 @@ const numberLocales: Record<Language, string> = { en: 'en-CA', fr: 'fr-CA' };
 const mostDecimals: Record<string, number> = {
   't/ha': 2,
   'kg/ha': 0,
+  'q/ha': 1,
+  'bu/ac': 1,
   '%': 2,
   'kg/hL': 1,
   g: 1,
@@ -77,14 +79,22 @@ export function formatQuantity(
   return formatNumber(value, language, style) + noBreakSpace + sayUnit(unit, language);
 }
 
-/** A unit as it is written in the language: days are `d` in English and `j` in French, the others are alike. */
+/** Units that French writes otherwise: days, bushels. */
+const frenchUnits: Record<string, string> = { d: 'j', bu: 'bo', 'bu/ac': 'bo/ac' };
+
+/** A unit as it is written in the language: days are `d` in English and `j` in French, most others are alike. */
 export function sayUnit(unit: string, language: Language): string {
-  return unit === 'd' && language === 'fr' ? 'j' : unit;
+  return (language === 'fr' && frenchUnits[unit]) || unit;
 }
 
 /** A percentage that is already in hundredths: 13.5 gives `13.5%` and `13,5 %`. */
 export function formatPercent(value: number, language: Language, style: NumberStyle = {}): string {
   return formatNumber(value, language, style) + (language === 'fr' ? `${narrowSpace}%` : '%');
+}
+
+/** Decimals that are not more than the unit bears: figures given to a fixed place stay sensible in another unit. */
+export function boundDecimals(decimals: number, unit: string): number {
+  return Math.min(decimals, mostDecimals[unit] ?? decimals);
 }
 
 /**
@@ -116,7 +126,7 @@ export function formatMoney(
   return joinParts(format.formatToParts(amount), language);
 }
 
-/** Money for one of something: `$290/t`, `290 $/t`. */
+/** Money for one of something: `$290/t`, `290 $/t`; for so little as a bushel to the cent, `$7.89/bu`. */
 export function formatMoneyPer(
   amount: number,
   currency: string,
@@ -124,7 +134,8 @@ export function formatMoneyPer(
   language: Language,
   style: NumberStyle = {},
 ): string {
-  return `${formatMoney(amount, currency, language, style)}/${per}`;
+  const decimals = style.decimals ?? (per === 'bu' ? 2 : 0);
+  return `${formatMoney(amount, currency, language, { ...style, decimals })}/${sayUnit(per, language)}`;
 }
 
 /** The sign of a currency alone, for a field's unit: `$`, `€`. */
@@ -133,9 +144,17 @@ export function currencySign(currency: string, language: Language): string {
   return parts.find((part) => part.type === 'currency')?.value ?? currency;
 }
 
-/** An area in hectares, with a decimal only where it has one: `120 ha`, `12.5 ha`. */
-export function formatArea(hectares: number, language: Language): string {
-  return formatQuantity(hectares, 'ha', language, { decimals: Number.isInteger(hectares) ? 0 : 1 });
+/** Whether one decimal would be a nought: 100 acres are brought to hectares and back with a last digit of their own. */
+function isNearlyWhole(value: number): boolean {
+  return Math.abs(value - Math.round(value)) < 0.05;
+}
+
+/**
+ * An area, with a decimal only where it has one: `120 ha`, `12.5 ha`, `296.5 ac`.
+ * @param unit of the area: ha, or ac
+ */
+export function formatArea(area: number, language: Language, unit = 'ha'): string {
+  return formatQuantity(area, unit, language, { decimals: isNearlyWhole(area) ? 0 : 1 });
 }
 
 /**

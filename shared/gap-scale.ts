@@ -1,5 +1,5 @@
 /** A linear scale that a drawing lays across its width: `low` at 0 %, `high` at 100 %, both in the data's unit. */
-export type Scale = { low: number; high: number; ticks: readonly number[] };
+export type Scale = { low: number; high: number };
 
 /** Room left at both ends, so that a mark or its label does not touch the edge. */
 const padding = 0.06;
@@ -18,22 +18,32 @@ function chooseStep(span: number, most: number): number {
 /**
  * One scale for all the values of a list, zero always on it.
  * @param values estimates, interval ends and break-even gaps, one unit; what is not finite is left out
- * @param mostSteps the most steps between labelled ticks
  */
-export function spanScale(values: readonly number[], mostSteps = 9): Scale {
+export function spanScale(values: readonly number[]): Scale {
   const finite = values.filter((value) => Number.isFinite(value));
   const lowest = Math.min(0, ...finite);
   const highest = Math.max(0, ...finite);
   const span = highest - lowest > smallestSpan ? highest - lowest : 1;
-  const low = lowest - span * padding;
-  const high = highest + span * padding;
-  const step = chooseStep(high - low, mostSteps);
-  const ticks: number[] = [];
-  for (let count = Math.ceil(low / step); count * step <= high; count += 1) {
+  return { low: lowest - span * padding, high: highest + span * padding };
+}
+
+/** A round figure in the unit that is read, and where it lies in the unit of the scale. */
+export type Tick = { label: number; value: number };
+
+/**
+ * The ticks of a scale, round in the unit that is read: steps of 1, 2 or 5 times a power of ten.
+ * @param factor of the unit that is read in one of the scale's
+ * @param mostSteps the most steps between labelled ticks
+ */
+export function findTicks({ low, high }: Scale, factor = 1, mostSteps = 9): Tick[] {
+  const step = chooseStep((high - low) * factor, mostSteps);
+  const ticks: Tick[] = [];
+  for (let count = Math.ceil((low * factor) / step); count * step <= high * factor; count += 1) {
     // Adding zero turns −0 into 0.
-    ticks.push(Number((count * step).toPrecision(12)) + 0);
+    const label = Number((count * step).toPrecision(12)) + 0;
+    ticks.push({ label, value: label / factor });
   }
-  return { low, high, ticks };
+  return ticks;
 }
 
 /** Where a value lies on the scale, in percent of the width, kept between 0 and 100. */
@@ -42,11 +52,11 @@ export function placeOnScale(scale: Scale, value: number): number {
   return Math.min(Math.max(share, 0), 100);
 }
 
-/** Decimals that tell the ticks of a scale apart. */
-export function tickDecimals(scale: Scale): number {
-  const [first, second] = scale.ticks;
+/** Decimals that tell the labels of ticks apart. */
+export function tickDecimals(ticks: readonly Tick[]): number {
+  const [first, second] = ticks;
   if (first === undefined || second === undefined) return 1;
-  return Math.max(0, -Math.floor(Math.log10(second - first) + 1e-9));
+  return Math.max(0, -Math.floor(Math.log10(second.label - first.label) + 1e-9));
 }
 
 /** Whether a value lies within the drawing at all. */

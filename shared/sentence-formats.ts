@@ -1,11 +1,37 @@
 import type { Language } from './account.ts';
 import { formatDate } from './format-date.ts';
-import { formatMoney, formatNumber, formatPercent, formatPValue, formatQuantity } from './format-number.ts';
+import {
+  boundDecimals,
+  formatMoney,
+  formatNumber,
+  formatPercent,
+  formatPValue,
+  formatQuantity,
+} from './format-number.ts';
+import { readerUnit, storedUnits, toReader, type ReaderUnits } from './reader-units.ts';
 
-/** Options as a sentence gives them: `{{gap, gap(decimals: 2; unit: t/ha)}}`. */
-export type SentenceFormatOptions = { decimals?: number; unit?: string; currency?: string };
+/**
+ * Options as a sentence gives them: `{{gap, gap(decimals: 2; unit: t/ha)}}`. Whoever says the sentence may name the
+ * reader's units among its values: figures in t/ha then follow them.
+ */
+export type SentenceFormatOptions = {
+  decimals?: number;
+  unit?: string;
+  currency?: string;
+  readerUnits?: ReaderUnits;
+};
 
 type SentenceFormat = (value: number, language: Language, options: SentenceFormatOptions) => string;
+
+/** A figure of a sentence in the reader's unit, with no more decimals than that unit bears. */
+function read(value: number, { decimals = 2, unit = '', readerUnits = storedUnits }: SentenceFormatOptions) {
+  const asRead = readerUnit(unit, readerUnits);
+  return {
+    value: toReader(value, unit, readerUnits),
+    unit: asRead,
+    decimals: asRead === unit ? decimals : boundDecimals(decimals, asRead),
+  };
+}
 
 /**
  * Formats that a sentence in locales/ may name behind a placeholder, so that every figure in a sentence is written
@@ -13,10 +39,19 @@ type SentenceFormat = (value: number, language: Language, options: SentenceForma
  */
 export const sentenceFormats: Record<string, SentenceFormat> = {
   number: (value, language, { decimals = 0 }) => formatNumber(value, language, { decimals }),
-  quantity: (value, language, { decimals = 2, unit = '' }) =>
-    formatQuantity(value, unit, language, { decimals }),
-  gap: (value, language, { decimals = 2, unit = '' }) =>
-    formatQuantity(value, unit, language, { decimals, isSigned: true }),
+  quantity: (given, language, options) => {
+    const { value, unit, decimals } = read(given, options);
+    return formatQuantity(value, unit, language, { decimals });
+  },
+  /** As `quantity`, with the unit left to the figure that follows: `from 2.1 to 4.3 t/ha`. */
+  figure: (given, language, options) => {
+    const { value, decimals } = read(given, options);
+    return formatNumber(value, language, { decimals });
+  },
+  gap: (given, language, options) => {
+    const { value, unit, decimals } = read(given, options);
+    return formatQuantity(value, unit, language, { decimals, isSigned: true });
+  },
   percent: (value, language, { decimals = 0 }) => formatPercent(value, language, { decimals }),
   money: (value, language, { decimals = 0, currency = 'CAD' }) =>
     formatMoney(value, currency, language, { decimals }),

@@ -1,11 +1,19 @@
 /** International avoirdupois pound, exact. */
 const kilogramsPerPound = 0.45359237;
 /** International acre, exact. */
-const hectaresPerAcre = 0.40468564224;
+export const hectaresPerAcre = 0.40468564224;
 
 /** Units in which a file may state yield. */
 export const yieldUnits = ['t/ha', 'kg/ha', 'q/ha', 'bu/ac'] as const;
 export type YieldUnit = (typeof yieldUnits)[number];
+
+/**
+ * What a bushel of account weighs, in tonnes.
+ * @param bushelWeightLb the crop's, in pounds
+ */
+export function tonnesPerBushel(bushelWeightLb: number): number {
+  return (bushelWeightLb * kilogramsPerPound) / 1000;
+}
 
 /**
  * The factor that brings a yield to t/ha.
@@ -20,7 +28,7 @@ export function tonnesPerHectareFactor(unit: YieldUnit, bushelWeightLb: number):
     case 'q/ha':
       return 0.1;
     case 'bu/ac':
-      return (bushelWeightLb * kilogramsPerPound) / 1000 / hectaresPerAcre;
+      return tonnesPerBushel(bushelWeightLb) / hectaresPerAcre;
   }
 }
 

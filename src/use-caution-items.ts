@@ -2,17 +2,19 @@ import { useTranslation } from 'react-i18next';
 import type { Language } from '#shared/account.ts';
 import type { Caution } from '#shared/caution.ts';
 import type { CautionItem } from './components/caution-list.tsx';
+import { useReaderUnits } from './components/reader-units-context.tsx';
 import { useLanguage } from './components/use-language.ts';
 
 /** Turns cautions into their sentences. The same caution twice, of two candidates say, is said once. */
 export function useCautionItems(): (cautions: readonly Caution[]) => CautionItem[] {
   const { t, i18n } = useTranslation('cautions');
   const language = useLanguage();
+  const readerUnits = useReaderUnits();
   return (cautions) => {
     const items = new Map<string, CautionItem>();
     for (const { code, severity, values } of cautions) {
       const context = chooseContext(code, values, (key) => i18n.exists(`cautions:${key}`));
-      const text = t(code, { ...nameLists(values, language), ...(context && { context }) });
+      const text = t(code, { ...nameLists(values, language), readerUnits, ...(context && { context }) });
       if (!items.has(text)) items.set(text, { id: text, severity, text });
     }
     return [...items.values()];

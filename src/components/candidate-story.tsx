@@ -95,11 +95,7 @@ export function IntervalSentences({ candidate, unit, decimals }: IntervalSentenc
   if (gap === null) return null;
   // With trials of other regions among them, the interval is not one of the region's average.
   const isBeyondRegion = trials.some(({ inRegion }) => inRegion === false);
-  const ends = (interval: Interval) => ({
-    low: format.number(interval.low, { decimals, isSigned: true }),
-    high: format.gap(interval.high, unit, decimals),
-    level: format.percent(interval.level * 100),
-  });
+  const ends = (interval: Interval) => format.ends(interval, unit, decimals);
   return (
     <>
       <p>{t(isBeyondRegion ? 'story.regionSites' : 'story.region', ends(gap.region))}</p>

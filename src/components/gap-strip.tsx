@@ -14,7 +14,7 @@ export type GapStripRow = {
   /** What stands as the name where it is more than words: a link. */
   head?: ReactNode;
   verdict: VerdictCode;
-  /** Candidate minus current, in `unit`; null where the data give none. */
+  /** Candidate minus current, in t/ha as everything drawn; null where the data give none. */
   estimate: number | null;
   /** For the region's average. */
   region: Interval | null;
@@ -33,7 +33,7 @@ type GapStripProps = {
   rows: readonly GapStripRow[];
   currentName: string;
   unit: string;
-  /** Of the figures in words; see `decimalsFor`. */
+  /** Of the figures in words, in the unit that is read; see `useFormat().decimals`. */
   decimals: number;
   /** Level of the candidates' names in the page's outline. */
   headingLevel?: 2 | 3;
@@ -77,6 +77,7 @@ export function GapStrip({
   headingLevel = 2,
 }: GapStripProps) {
   const { t } = useTranslation('drawings');
+  const format = useFormat();
   const rows = given.map(withoutThinIntervals);
   const scale = scaleOfRows(rows);
   const shared = { scale, currentName, unit, decimals };
@@ -87,7 +88,7 @@ export function GapStrip({
         <div className="@container">
           <div className="grid @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
             <p className="self-end pb-1 text-sm text-faded">
-              {t('gapStrip.axis', { current: currentName, unit })}
+              {t('gapStrip.axis', { current: currentName, unit: format.unit(unit) })}
             </p>
             <GapAxis scale={scale} zeroLabel={currentName} />
           </div>
@@ -255,12 +256,7 @@ function StripTable({
   const gap = (value: number | null) =>
     value === null ? t('gapStrip.none') : format.gap(value, unit, decimals);
   const fromTo = (interval: Interval | null) =>
-    interval === null
-      ? t('gapStrip.none')
-      : t('gapStrip.fromTo', {
-          low: format.number(interval.low, { decimals, isSigned: true }),
-          high: format.gap(interval.high, unit, decimals),
-        });
+    interval === null ? t('gapStrip.none') : t('gapStrip.fromTo', format.ends(interval, unit, decimals));
   const firstRegion = rows.find((row) => row.region)?.region;
   const firstOwnSeason = rows.find((row) => row.ownSeason)?.ownSeason;
   const columns: Column<GapStripRow>[] = [

@@ -1,5 +1,14 @@
-import { isOnScale, placeOnScale, tickDecimals, type Scale } from '#shared/gap-scale.ts';
+import {
+  findTicks,
+  isOnScale,
+  placeOnScale,
+  tickDecimals,
+  type Scale,
+  type Tick,
+} from '#shared/gap-scale.ts';
+import { toReader } from '#shared/reader-units.ts';
 import type { Interval } from '#shared/verdict.ts';
+import { useReaderUnits } from './reader-units-context.tsx';
 import { useFormat } from './use-format.ts';
 
 /** A position on the scale as CSS, kept so far from both edges that a centred label of twice `half` fits. */
@@ -10,17 +19,22 @@ function labelLeft(scale: Scale, value: number, half: string): string {
 const percent = (scale: Scale, value: number) => `${placeOnScale(scale, value)}%`;
 
 /** Every second tick from zero on: the figures that a phone has room for. */
-function isEverySecond(scale: Scale, tick: number): boolean {
-  const [first = 0, second = 1] = scale.ticks;
-  return Math.round(tick / (second - first)) % 2 === 0;
+function isEverySecond([first, second]: readonly Tick[], { label }: Tick): boolean {
+  if (first === undefined || second === undefined) return true;
+  return Math.round(label / (second.label - first.label)) % 2 === 0;
 }
 
-type GapAxisProps = { scale: Scale; zeroLabel: string };
+type GapAxisProps = {
+  /** In t/ha, as all gaps are; the figures stand at round places of the unit that the page is read in. */
+  scale: Scale;
+  zeroLabel: string;
+};
 
 /** The head of a list of gaps: what zero stands for, and the figures of the one scale that all rows share. */
 export function GapAxis({ scale, zeroLabel }: GapAxisProps) {
   const format = useFormat();
-  const decimals = tickDecimals(scale);
+  const ticks = findTicks(scale, toReader(1, 't/ha', useReaderUnits()));
+  const decimals = tickDecimals(ticks);
   return (
     <div className="relative h-12 text-sm text-faded" aria-hidden="true">
       <span
@@ -29,21 +43,21 @@ export function GapAxis({ scale, zeroLabel }: GapAxisProps) {
       >
         {zeroLabel}
       </span>
-      {scale.ticks.map((tick) => (
+      {ticks.map((tick) => (
         <span
-          key={tick}
-          className={`absolute top-5 -translate-x-1/2 whitespace-nowrap ${isEverySecond(scale, tick) ? '' : '@max-lg:hidden'}`}
-          style={{ left: percent(scale, tick) }}
+          key={tick.label}
+          className={`absolute top-5 -translate-x-1/2 whitespace-nowrap ${isEverySecond(ticks, tick) ? '' : '@max-lg:hidden'}`}
+          style={{ left: percent(scale, tick.value) }}
         >
-          {format.number(tick, { decimals: tick === 0 ? 0 : decimals, isSigned: true })}
+          {format.number(tick.label, { decimals: tick.label === 0 ? 0 : decimals, isSigned: true })}
         </span>
       ))}
       <svg className="absolute bottom-0 h-1.5 w-full overflow-visible">
-        {scale.ticks.map((tick) => (
+        {ticks.map(({ label, value }) => (
           <line
-            key={tick}
-            x1={percent(scale, tick)}
-            x2={percent(scale, tick)}
+            key={label}
+            x1={percent(scale, value)}
+            x2={percent(scale, value)}
             y1="0"
             y2="6"
             stroke="var(--color-edge)"

@@ -5,7 +5,7 @@ import { useFieldWiring } from './field.tsx';
 import { controlShape } from './text-input.tsx';
 import { useLanguage } from './use-language.ts';
 
-type NumberInputProps = Omit<ComponentProps<'input'>, 'value' | 'onChange' | 'type'> & {
+export type NumberInputProps = Omit<ComponentProps<'input'>, 'value' | 'onChange' | 'type'> & {
   /** null for nothing; NaN for text that is no figure, which a zod number refuses. */
   value: number | null | undefined;
   onValueChange: (value: number | null) => void;

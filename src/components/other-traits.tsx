@@ -1,6 +1,5 @@
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
-import { decimalsFor } from '#shared/format-number.ts';
 import type { CandidateResult, TraitVerdict } from '#shared/weigh-up.ts';
 import { VerdictMark } from './beam.tsx';
 import { DataTable, type Column } from './data-table.tsx';
@@ -90,7 +89,7 @@ function TraitCell({ verdict, trait, currentName }: TraitCellProps) {
   }
   if (verdict.gap === null) return <span className="text-faded">{t('traits.none')}</span>;
   const { estimate, se, region } = verdict.gap;
-  const decimals = decimalsFor(se, trait.unit);
+  const decimals = format.decimals(se, trait.unit);
   return (
     <>
       <span className="block font-semibold">{format.gap(estimate, trait.unit, decimals)}</span>
@@ -101,10 +100,7 @@ function TraitCell({ verdict, trait, currentName }: TraitCellProps) {
       )}
       {verdict.verdict !== 'thin' && (
         <span className="block text-sm text-faded">
-          {t('traits.fromTo', {
-            low: format.number(region.low, { decimals, isSigned: true }),
-            high: format.gap(region.high, trait.unit, decimals),
-          })}
+          {t('traits.fromTo', format.ends(region, trait.unit, decimals))}
         </span>
       )}
     </>

@@ -57,11 +57,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
       id: 'interval',
       header: t('siteLines.interval', { level }),
       align: 'end',
-      cell: ({ interval }) =>
-        t('gapStrip.fromTo', {
-          low: format.number(interval.low, { decimals, isSigned: true }),
-          high: gap(interval.high),
-        }),
+      cell: ({ interval }) => t('gapStrip.fromTo', format.ends(interval, unit, decimals)),
     },
   ];
   const title = t('siteLines.title', { candidate: candidateName, current: currentName });

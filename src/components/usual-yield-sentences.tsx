@@ -1,4 +1,5 @@
 import { useTranslation } from 'react-i18next';
+import { decimalsFor } from '#shared/format-number.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { useFormat } from './use-format.ts';
 
@@ -14,6 +15,8 @@ export function UsualYieldSentences({ candidate, unit, decimals }: UsualYieldSen
   const { gapAtUsualYield: read, gapLine: line } = candidate;
   if (!read?.isCarried || !line) return null;
   const p = format.pValue(line.slopeP);
+  // A slope has no unit of its own: so much more gap for each unit of yield, whichever that is.
+  const slope = format.number(line.slope, { decimals: decimalsFor(line.slopeSe, ''), isSigned: true });
   return (
     <>
       <p>
@@ -21,14 +24,12 @@ export function UsualYieldSentences({ candidate, unit, decimals }: UsualYieldSen
           yield: format.quantity(read.usualYield, unit, { decimals: 1 }),
           trials: t('trialCount', { count: line.trials }),
           gap: format.gap(read.estimate, unit, decimals),
-          low: format.number(read.interval.low, { decimals, isSigned: true }),
-          high: format.gap(read.interval.high, unit, decimals),
-          level: format.percent(read.interval.level * 100),
+          ...format.ends(read.interval, unit, decimals),
         })}
       </p>
       <p>
         {line.slopeP < slopeLevel
-          ? t('story.slopeReal', { slope: format.gap(line.slope, unit, decimals), p })
+          ? t('story.slopeReal', { slope, unit: format.unit(unit), p })
           : t('story.slopeOpen', { p })}
       </p>
     </>

@@ -40,6 +40,8 @@ describe('figures', () => {
     expect(formatPercent(28, 'en')).toBe('28%');
     expect(formatArea(120, 'en')).toBe('120\u00a0ha');
     expect(formatArea(12.5, 'fr')).toBe('12,5\u00a0ha');
+    expect(formatArea(296.526, 'en', 'ac')).toBe('296.5\u00a0ac');
+    expect(formatArea(100.0000001, 'en', 'ac')).toBe('100\u00a0ac');
   });
 });
 
@@ -49,6 +51,8 @@ describe('money', () => {
     expect(formatMoney(8760, 'CAD', 'fr')).toBe('8\u202f760\u00a0$');
     expect(formatMoneyPer(-28.4, 'CAD', 'ha', 'en')).toBe('\u2212$28/ha');
     expect(formatMoneyPer(73, 'CAD', 'ha', 'fr', { isSigned: true })).toBe('+73\u00a0$/ha');
+    expect(formatMoneyPer(7.8925, 'CAD', 'bu', 'en')).toBe('$7.89/bu');
+    expect(formatMoneyPer(7.8925, 'CAD', 'bu', 'fr')).toBe('7,89\u00a0$/bo');
     expect(formatMoney(148, 'EUR', 'fr', { decimals: 2 })).toBe('148,00\u00a0€');
     expect(currencySign('CAD', 'en')).toBe('$');
   });

@@ -1,14 +1,15 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { placeOnScale, spanScale, tickDecimals } from '#shared/gap-scale.ts';
+import { findTicks, placeOnScale, spanScale, tickDecimals } from '#shared/gap-scale.ts';
 
 describe('the shared scale', () => {
   it('holds zero, every value and round ticks', () => {
     const scale = spanScale([0.38, -0.09, 0.85, 0.11]);
     expect(scale.low).toBeLessThan(-0.09);
     expect(scale.high).toBeGreaterThan(0.85);
-    expect(scale.ticks).toEqual([0, 0.2, 0.4, 0.6, 0.8]);
-    expect(tickDecimals(scale)).toBe(1);
+    const ticks = findTicks(scale);
+    expect(ticks.map(({ label }) => label)).toEqual([0, 0.2, 0.4, 0.6, 0.8]);
+    expect(tickDecimals(ticks)).toBe(1);
   });
 
   it('keeps zero where all gaps lie on one side', () => {
@@ -18,8 +19,19 @@ describe('the shared scale', () => {
   });
 
   it('stands without any value', () => {
-    expect(spanScale([]).ticks).toContain(0);
-    expect(spanScale([Number.NaN, Number.POSITIVE_INFINITY, 0]).ticks).toContain(0);
+    const zero = { label: 0, value: 0 };
+    expect(findTicks(spanScale([]))).toContainEqual(zero);
+    expect(findTicks(spanScale([Number.NaN, Number.POSITIVE_INFINITY, 0]))).toContainEqual(zero);
+  });
+
+  it('has its ticks at round figures of the unit that is read, where they lie in its own', () => {
+    const scale = spanScale([0.38, -0.09, 0.85, 0.11]);
+    // −0.15 to 0.91 t/ha are −2.2 to 13.5 bu/ac of wheat
+    const bushels = findTicks(scale, 1 / 0.06725);
+    expect(bushels.map(({ label }) => label)).toEqual([-2, 0, 2, 4, 6, 8, 10, 12]);
+    expect(bushels.at(-1)?.value).toBeCloseTo(12 * 0.06725, 12);
+    expect(tickDecimals(bushels)).toBe(0);
+    expect(findTicks(scale, 1000).map(({ label }) => label)).toEqual([0, 200, 400, 600, 800]);
   });
 
   it('places values in order, all within the drawing, with few ticks', () => {
@@ -31,8 +43,9 @@ describe('the shared scale', () => {
         expect(places).toEqual([...places].sort((a, b) => a - b));
         expect(Math.min(...places)).toBeGreaterThan(0);
         expect(Math.max(...places)).toBeLessThan(100);
-        expect(scale.ticks.length).toBeLessThanOrEqual(10);
-        expect(scale.ticks).toContain(0);
+        const ticks = findTicks(scale);
+        expect(ticks.length).toBeLessThanOrEqual(10);
+        expect(ticks).toContainEqual({ label: 0, value: 0 });
       }),
     );
   });

@@ -1,6 +1,5 @@
 import type { ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
-import { decimalsFor } from '#shared/format-number.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { VerdictMark } from '#src/components/beam.tsx';
 import { Checkbox } from '#src/components/checkbox.tsx';
@@ -69,7 +68,7 @@ function useCandidateColumns(
       header: t('new.column.gap'),
       align: 'end',
       cell: ({ gap }) =>
-        gap === null ? t('new.noGap') : format.gap(gap.estimate, unit, decimalsFor(gap.se, unit)),
+        gap === null ? t('new.noGap') : format.gap(gap.estimate, unit, format.decimals(gap.se, unit)),
       sortValue: ({ gap }) => gap?.estimate ?? null,
     },
     {

@@ -1,6 +1,5 @@
 import { useTranslation } from 'react-i18next';
 import { Link, useSearchParams } from 'react-router-dom';
-import { decimalsFor } from '#shared/format-number.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { CandidateStory, type StoryProps } from '#src/components/candidate-story.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
@@ -19,17 +18,13 @@ type CandidateStripProps = Pick<StoryProps, 'currentName' | 'money' | 'areaHecta
   candidates: readonly CandidateResult[];
 };
 
-/** Decimals that the gaps of a list support. */
-export function decimalsOfGaps(candidates: readonly CandidateResult[]): number {
-  return decimalsFor(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
-}
-
 /** One row per candidate on one scale; a row opens to its story, and the address remembers which. */
 export function CandidateStrip({ candidates, currentName, money, areaHectares }: CandidateStripProps) {
   const { t } = useTranslation('verdicts');
   const [search] = useSearchParams();
   const openId = search.get('open');
-  const decimals = decimalsOfGaps(candidates);
+  const format = useFormat();
+  const decimals = format.decimals(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
   const rows = candidates.map((candidate): GapStripRow => {
     const isOpen = candidate.varietyId === openId;
     const story = { candidate, currentName, money, areaHectares, unit, decimals };

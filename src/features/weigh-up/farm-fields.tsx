@@ -1,13 +1,12 @@
 import { Controller } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
-import { currencySign } from '#shared/format-number.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { Field } from '#src/components/field.tsx';
-import { NumberInput } from '#src/components/number-input.tsx';
+import { MeasureInput, PriceInput } from '#src/components/measure-input.tsx';
 import { TextInput } from '#src/components/text-input.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import { useLanguage } from '#src/components/use-language.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
+import { fallbackCurrency } from './new-weigh-up-form.ts';
 import type { NewWeighUpFormApi } from './new-weigh-up-page.tsx';
 
 /** For whom: names stand on the copy, the area turns a return per hectare into one for the farm, the usual yield tells where its fields stand. */
@@ -30,7 +29,7 @@ export function FarmFields({ form }: { form: NewWeighUpFormApi }) {
             control={form.control}
             name="areaHectares"
             render={({ field: { value, onChange, onBlur, ref } }) => (
-              <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="ha" />
+              <MeasureInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="ha" />
             )}
           />
         </Field>
@@ -45,7 +44,7 @@ export function FarmFields({ form }: { form: NewWeighUpFormApi }) {
           control={form.control}
           name="usualYield"
           render={({ field: { value, onChange, onBlur, ref } }) => (
-            <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="t/ha" />
+            <MeasureInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="t/ha" />
           )}
         />
       </Field>
@@ -61,10 +60,8 @@ const prices = ['priceLow', 'priceMiddle', 'priceHigh'] as const;
 export function PriceFields({ form, defaults }: PriceFieldsProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
-  const language = useLanguage();
   const fieldErrorText = useFieldErrorText();
   const { errors } = form.formState;
-  const unit = defaults ? `${currencySign(defaults.currency, language)}/t` : '';
   return (
     <section className="flex flex-col gap-4">
       <h2>{t('new.prices')}</h2>
@@ -75,7 +72,14 @@ export function PriceFields({ form, defaults }: PriceFieldsProps) {
               control={form.control}
               name={name}
               render={({ field: { value, onChange, onBlur, ref } }) => (
-                <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit={unit} />
+                <PriceInput
+                  value={value}
+                  onValueChange={onChange}
+                  onBlur={onBlur}
+                  ref={ref}
+                  currency={defaults?.currency ?? fallbackCurrency}
+                  per="t"
+                />
               )}
             />
           </Field>

@@ -10,7 +10,7 @@ import { catalogueQuery } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
-import { NumberInput } from '#src/components/number-input.tsx';
+import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -174,7 +174,7 @@ function FigureField({ form, name, label, unit, children }: FigureFieldProps) {
       name={name}
       render={({ field: { value, onChange, onBlur, ref }, fieldState: { error } }) => (
         <Field label={label} hint={children} error={fieldErrorText(error)}>
-          <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit={unit} />
+          <MeasureInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit={unit} />
         </Field>
       )}
     />

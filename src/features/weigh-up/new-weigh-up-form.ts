@@ -4,7 +4,7 @@ import { weighUpInput, type WeighUpInput } from '#shared/weigh-up.ts';
 import type { CandidateQuestion } from './weigh-up-queries.ts';
 
 /** Currency where no price sheet names one. */
-const fallbackCurrency = 'CAD';
+export const fallbackCurrency = 'CAD';
 
 const { growerName, farmName, areaHectares, usualYield } = weighUpInput.shape;
 const { priceLow, priceMiddle, priceHigh } = moneyAssumptions.shape;

@@ -6,10 +6,12 @@ import { useTranslation } from 'react-i18next';
 import { useNavigate, useSearchParams } from 'react-router-dom';
 import type { CautionCode } from '#shared/caution.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import { storedUnits } from '#shared/reader-units.ts';
 import type { WeighUpDraft } from '#shared/weigh-up-draft.ts';
 import { createWeighUp, type WeighUpInput } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { catalogueQuery, type Catalogue } from '#src/catalogue-query.ts';
+import { CropUnits } from '#src/chosen-units.tsx';
 import { Button } from '#src/components/button.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
@@ -86,22 +88,24 @@ function QuestionForm({ catalogue, opened: found }: QuestionFormProps) {
   useEffect(() => typePrices(form, opened?.content), [form, opened]);
   const kept = useDraftSaving(form, opened);
   return (
-    <div className="flex flex-col gap-8">
-      <section className="flex flex-col gap-4">
-        <h2>{t('new.question')}</h2>
-        <QuestionFields draft={draft} catalogue={catalogue} />
-      </section>
-      {lacksTrials(draft) && draft.crop && draft.region && (
-        <NoVerdict
-          crop={draft.crop.name}
-          region={draft.region.name}
-          from={draft.seasonFrom}
-          to={draft.seasonTo}
-        />
-      )}
-      {!lacksTrials(draft) && !question && <p className="text-faded">{t('new.candidatesWait')}</p>}
-      {question && <CandidatesAndFarm draft={draft} question={question} form={form} kept={kept} />}
-    </div>
+    <CropUnits bushelWeightLb={draft.crop?.bushelWeightLb ?? storedUnits.bushelWeightLb}>
+      <div className="flex flex-col gap-8">
+        <section className="flex flex-col gap-4">
+          <h2>{t('new.question')}</h2>
+          <QuestionFields draft={draft} catalogue={catalogue} />
+        </section>
+        {lacksTrials(draft) && draft.crop && draft.region && (
+          <NoVerdict
+            crop={draft.crop.name}
+            region={draft.region.name}
+            from={draft.seasonFrom}
+            to={draft.seasonTo}
+          />
+        )}
+        {!lacksTrials(draft) && !question && <p className="text-faded">{t('new.candidatesWait')}</p>}
+        {question && <CandidatesAndFarm draft={draft} question={question} form={form} kept={kept} />}
+      </div>
+    </CropUnits>
   );
 }
 

@@ -3,14 +3,17 @@ import { useTranslation } from 'react-i18next';
 import { Link, useParams } from 'react-router-dom';
 import type { Crop } from '#shared/catalogue.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
+import { storedUnits } from '#shared/reader-units.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
+import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
+import { UnitSwitch } from '#src/components/unit-switch.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { VerdictHeadline } from '#src/components/verdict-headline.tsx';
 import { WeighingProgress } from '#src/components/weighing-progress.tsx';
@@ -38,14 +41,14 @@ export function WeighUpPage() {
   const { weighUp: question, result } = weighUp.data;
   const crop = findCrop(catalogue.data, question.cropId);
   return (
-    <>
+    <CropUnits bushelWeightLb={crop?.bushelWeightLb ?? storedUnits.bushelWeightLb}>
       <WeighUpHeading weighUp={question} result={result} />
       {result.answer === 'no-trials' || !crop ? (
         <NoTrialsAnswer weighUp={question} result={result} />
       ) : (
         <WeighedAnswer key={question.id} weighUp={question} result={result} crop={crop} />
       )}
-    </>
+    </CropUnits>
   );
 }
 
@@ -126,6 +129,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
 function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
   const { t } = useTranslation(['verdicts', 'method']);
   const cautionItems = useCautionItems();
+  const chooseUnit = useUnitChoice();
   const money = useMoneyForm(weighUp);
   const saving = useMoneySaving(money);
   const candidates = reckonCandidates(
@@ -150,6 +154,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
       <div className="flex min-w-0 flex-col gap-8">
         <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
+        <UnitSwitch onChoose={chooseUnit} />
         <CandidateStrip
           candidates={candidates}
           currentName={currentName}
