@@ -1,3 +1,6 @@
+import type { Language } from './account.ts';
+import { saySeasons } from './say-seasons.ts';
+import type { Say } from './say-sentences.ts';
 import type { CandidateResult } from './weigh-up.ts';
 
 /** A sentence of a weigh-up's headline: its key under `verdicts:headline` and what stands in it. */
@@ -66,4 +69,25 @@ export function buildHeadline(candidates: readonly CandidateResult[]): HeadlineP
     ];
   });
   return [...lead, ...groups];
+}
+
+type HeadlineKey =
+  | `verdicts:headline.${HeadlinePart['key']}`
+  | 'verdicts:trialCount'
+  | `verdicts:seasons.${'fewer' | 'whole' | 'more'}`;
+
+/** Turns a part of the headline into its sentence. */
+export function sayHeadline(
+  { key, names, chance, siteYears }: HeadlinePart,
+  current: string,
+  language: Language,
+  say: Say<HeadlineKey>,
+): string {
+  return say(`verdicts:headline.${key}`, {
+    names: new Intl.ListFormat(language, { type: 'conjunction' }).format(names),
+    count: names.length,
+    current,
+    seasons: chance === null ? '' : saySeasons(chance, say),
+    trials: say('verdicts:trialCount', { count: siteYears }),
+  });
 }

@@ -1,25 +1,6 @@
 import { useTranslation } from 'react-i18next';
+import { moneyTilts, verdictTilts, type BeamTilt } from '#shared/beam-tilt.ts';
 import type { MoneyVerdictCode, VerdictCode } from '#shared/verdict.ts';
-
-/** How the balance stands: down on the candidate's side (right), on the current variety's (left), level, undecided, or unloaded. */
-export type BeamTilt = 'candidate' | 'current' | 'level' | 'swinging' | 'bare';
-
-export const verdictTilts: Record<VerdictCode, BeamTilt> = {
-  ahead: 'candidate',
-  behind: 'current',
-  level: 'level',
-  open: 'swinging',
-  thin: 'bare',
-};
-
-export const moneyTilts: Record<MoneyVerdictCode, BeamTilt> = {
-  pays: 'candidate',
-  likely: 'candidate',
-  toss: 'swinging',
-  unlikely: 'current',
-  costs: 'current',
-  unknown: 'bare',
-};
 
 const tones: Record<BeamTilt, string> = {
   candidate: 'text-ahead',

@@ -1,8 +1,7 @@
 import { useTranslation } from 'react-i18next';
-import { buildHeadline, type HeadlinePart } from '#shared/headline.ts';
+import { buildHeadline, sayHeadline, type HeadlinePart } from '#shared/headline.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { useLanguage } from './use-language.ts';
-import { useSeasons } from './use-seasons.ts';
 
 type VerdictHeadlineProps = { candidates: readonly CandidateResult[]; currentName: string };
 
@@ -28,16 +27,7 @@ export function VerdictHeadline({ candidates, currentName }: VerdictHeadlineProp
 
 /** Turns a part of the headline into its sentence. */
 export function useHeadlineSentence(current: string): (part: HeadlinePart) => string {
-  const { t } = useTranslation('verdicts');
+  const { t } = useTranslation(['verdicts']);
   const language = useLanguage();
-  const seasons = useSeasons();
-  const list = new Intl.ListFormat(language, { type: 'conjunction' });
-  return ({ key, names, chance, siteYears }) =>
-    t(`headline.${key}`, {
-      names: list.format(names),
-      count: names.length,
-      current,
-      seasons: chance === null ? '' : seasons(chance),
-      trials: t('trialCount', { count: siteYears }),
-    });
+  return (part) => sayHeadline(part, current, language, t);
 }
