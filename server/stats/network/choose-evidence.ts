@@ -1,5 +1,6 @@
 import type { TrialCell } from './network-cell.ts';
-import { environmentKey, frameNetwork } from './network-frame.ts';
+import { environmentKey } from './cell-codes.ts';
+import { frameNetwork } from './network-frame.ts';
 import { tabulateTrials, type TrialTable } from './trial-lines.ts';
 import type { NetworkTrial, TraitEvidence, WeighQuestion } from './weigh-question.ts';
 import type { LeftOutTrial } from './weigh-result.ts';

@@ -1,7 +1,7 @@
-import { crossEntry } from './entry-absorption.ts';
 import { applyP } from './environment-system.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
+import { multiplyRows } from './row-products.ts';
 
 /** First derivatives of the restricted log-likelihood in θ, and the average information (3 × 3, row-major). */
 export interface CriterionDerivatives {
@@ -9,162 +9,196 @@ export interface CriterionDerivatives {
   readonly averageInformation: Float64Array;
 }
 
-/** Working space of one entry; q × q blocks, row-major. */
+/** Working space of one entry with q inner levels and n cells: rows of q, then q × q. */
 interface TraceScratch {
-  readonly dSquared: Float64Array;
-  readonly t: Float64Array;
-  readonly h: Float64Array;
-  readonly h2: Float64Array;
-  readonly n2: Float64Array;
-  readonly kn1: Float64Array;
-  readonly kn2: Float64Array;
-  readonly kh: Float64Array;
-  readonly hk: Float64Array;
-  readonly hl: Float64Array;
-  readonly own: Float64Array;
+  /** a row of C⁻¹ over the entry's cells */
+  readonly inverseRow: Float64Array;
+  /** U = C⁻¹X over the entry's environments, and B X, both with a row for each cell */
+  readonly u: Float64Array;
+  readonly bx: Float64Array;
+  readonly blockSums: Float64Array;
+  /** X'U, X'X, PP' with P = X'Z_o, Σ P_b (U'B1_b)', U'BX */
+  readonly xu: Float64Array;
+  readonly xx: Float64Array;
+  readonly pp: Float64Array;
+  readonly pu: Float64Array;
+  readonly ubx: Float64Array;
+  readonly product: Float64Array;
+  readonly sandwich: Float64Array;
 }
 
-function makeScratch(frame: NetworkFrame, q: number): TraceScratch {
-  let cells = 0;
-  for (let i = 0; i < frame.entries.length; i++)
-    cells = Math.max(cells, frame.start[i + 1]! - frame.start[i]!);
-  const block = () => new Float64Array(q * q);
+function makeScratch({ maxLevels, maxCells }: NetworkFrame): TraceScratch {
+  const square = () => new Float64Array(maxLevels * maxLevels);
+  const rows = () => new Float64Array(maxLevels * maxCells);
   return {
-    dSquared: new Float64Array(frame.cellCount),
-    t: new Float64Array(cells * q),
-    h: block(),
-    h2: block(),
-    n2: block(),
-    kn1: block(),
-    kn2: block(),
-    kh: block(),
-    hk: block(),
-    hl: block(),
-    own: new Float64Array(q),
+    inverseRow: new Float64Array(maxCells),
+    u: rows(),
+    bx: rows(),
+    blockSums: new Float64Array(2 * maxLevels),
+    xu: square(),
+    xx: square(),
+    pp: square(),
+    pu: square(),
+    ubx: square(),
+    product: square(),
+    sandwich: square(),
   };
 }
 
-/** out = K N for N = Z'·Z of one entry, whose sites (and years) never meet each other. */
-export function multiplyByCross(
-  k: Float64Array,
-  ka: number,
-  n: Float64Array,
-  na: number,
-  q: number,
-  sites: number,
-  out: Float64Array,
-): void {
-  const firstYear = sites + 1;
-  for (let r = 0; r < q; r++) {
-    const row = ka + r * q;
-    const target = r * q;
-    const own = k[row]!;
-    let first = own * n[na]!;
-    for (let s = 1; s < q; s++) {
-      const value = k[row + s]!;
-      first += value * n[na + s]!;
-      out[target + s] = own * n[na + s]! + value * n[na + s * q + s]!;
-    }
-    out[target] = first;
-    for (let y = firstYear; y < q; y++) {
-      const value = k[row + y]!;
-      const source = na + y * q;
-      for (let s = 1; s < firstYear; s++) out[target + s]! += value * n[source + s]!;
-    }
-    for (let s = 1; s < firstYear; s++) {
-      const value = k[row + s]!;
-      const source = na + s * q;
-      for (let y = firstYear; y < q; y++) out[target + y]! += value * n[source + y]!;
-    }
-  }
-}
-
-/** out = A B, q × q, A at offset aa. Four rows of B at a time: the row of out is then read and written a quarter as often. */
-export function multiplyBlock(
-  a: Float64Array,
-  aa: number,
-  b: Float64Array,
-  q: number,
-  out: Float64Array,
-): void {
-  const whole = q - (q % 4);
-  for (let r = 0; r < q; r++) {
-    const target = r * q;
-    const row = aa + target;
-    out.fill(0, target, target + q);
-    for (let s = 0; s < whole; s += 4) {
-      const f0 = a[row + s]!;
-      const f1 = a[row + s + 1]!;
-      const f2 = a[row + s + 2]!;
-      const f3 = a[row + s + 3]!;
-      const b0 = s * q;
-      const b1 = b0 + q;
-      const b2 = b1 + q;
-      const b3 = b2 + q;
-      for (let c = 0; c < q; c++)
-        out[target + c]! += f0 * b[b0 + c]! + f1 * b[b1 + c]! + f2 * b[b2 + c]! + f3 * b[b3 + c]!;
-    }
-    for (let s = whole; s < q; s++) {
-      const factor = a[row + s]!;
-      for (let c = 0; c < q; c++) out[target + c]! += factor * b[s * q + c]!;
-    }
-  }
-}
-
-/** tr(A'B), q × q, A at offset aa: tr(A B) where A is symmetric. */
-export function traceOfProduct(a: Float64Array, aa: number, b: Float64Array, q: number): number {
+/** Σ A_rs B_rs, q × q, A at offset aa: tr(A B) where one of them is symmetric. */
+function traceOfProduct(a: Float64Array, aa: number, b: Float64Array, q: number): number {
   let sum = 0;
   for (let r = 0; r < q * q; r++) sum += a[aa + r]! * b[r]!;
   return sum;
 }
 
-/** T = C⁻¹ D Z over the entry's environments, then H = Z'D T and H2 = Z'D² T. */
+/** out[0 … q − 1] = X'·row: sums of a row of cells against the columns of X, four at a time. */
+function projectRow(
+  x: Float64Array,
+  xAt: number,
+  length: number,
+  q: number,
+  row: Float64Array,
+  out: Float64Array,
+  outAt: number,
+): void {
+  let r = 0;
+  for (; r + 4 <= q; r += 4) {
+    const x0 = xAt + r * length;
+    const x1 = x0 + length;
+    const x2 = x1 + length;
+    const x3 = x2 + length;
+    let s0 = 0;
+    let s1 = 0;
+    let s2 = 0;
+    let s3 = 0;
+    for (let l = 0; l < length; l++) {
+      const value = row[l]!;
+      s0 += value * x[x0 + l]!;
+      s1 += value * x[x1 + l]!;
+      s2 += value * x[x2 + l]!;
+      s3 += value * x[x3 + l]!;
+    }
+    out[outAt + r] = s0;
+    out[outAt + r + 1] = s1;
+    out[outAt + r + 2] = s2;
+    out[outAt + r + 3] = s3;
+  }
+  for (; r < q; r++) {
+    const at = xAt + r * length;
+    let sum = 0;
+    for (let l = 0; l < length; l++) sum += row[l]! * x[at + l]!;
+    out[outAt + r] = sum;
+  }
+}
+
+/**
+ * U = C⁻¹X of entry i, and what of tr(C⁻¹ E'B V_k B E) lies within blocks.
+ * @returns the parts of V_outer and V_rest
+ */
 function projectInverse(
   frame: NetworkFrame,
   point: NetworkPoint,
   i: number,
-  q: number,
-  scratch: TraceScratch,
-): void {
+  { inverseRow, u }: TraceScratch,
+): [number, number] {
   const { inverse } = point.system;
-  const { d } = point.absorption;
-  const { t, h, h2 } = scratch;
-  const { column, siteColumn, yearColumn } = frame;
+  const { d, x, blockFactor, blockShrink, projectedStart } = point.absorption;
+  const { column, blockStart } = frame;
   const size = frame.columnCount;
+  const q = frame.levelCount[i]!;
   const first = frame.start[i]!;
-  const end = frame.start[i + 1]!;
-  h.fill(0, 0, q * q);
-  h2.fill(0, 0, q * q);
-  for (let j = first; j < end; j++) {
-    const ej = column[j]!;
-    if (ej < 0) continue;
-    const row = (j - first) * q;
-    t.fill(0, row, row + q);
-    for (let l = first; l < end; l++) {
-      const el = column[l]!;
-      if (el < 0) continue;
-      const value = inverse[ej * size + el]! * d[l]!;
-      t[row]! += value;
-      t[row + siteColumn[l]!]! += value;
-      t[row + yearColumn[l]!]! += value;
+  const length = frame.start[i + 1]! - first;
+  let outer = 0;
+  let rest = 0;
+  for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+    const begin = blockStart[b]!;
+    const end = blockStart[b + 1]!;
+    const f = blockFactor[b]!;
+    let squares = 0;
+    for (let j = begin; j < end; j++) squares += d[j]! * d[j]!;
+    for (let j = begin; j < end; j++) {
+      const ej = column[j]!;
+      if (ej < 0) {
+        u.fill(0, (j - first) * q, (j - first + 1) * q);
+        continue;
+      }
+      const row = ej * size;
+      // a cell without a column can only be the first
+      inverseRow[0] = column[first]! < 0 ? 0 : inverse[row + column[first]!]!;
+      for (let l = 1; l < length; l++) inverseRow[l] = inverse[row + column[first + l]!]!;
+      projectRow(x, projectedStart[i]!, length, q, inverseRow, u, (j - first) * q);
+      const dj = d[j]!;
+      rest += dj * dj * inverseRow[j - first]!;
+      let sum = 0;
+      for (let l = begin; l < end; l++) {
+        const joint = dj * d[l]! * inverseRow[l - first]!;
+        sum += joint;
+        rest += f * joint * (f * squares - dj - d[l]!);
+      }
+      outer += blockShrink[b]! * blockShrink[b]! * sum;
     }
-    const dj = d[j]!;
-    const site = siteColumn[j]! * q;
-    const year = yearColumn[j]! * q;
-    for (let s = 0; s < q; s++) {
-      const once = dj * t[row + s]!;
-      const twice = dj * once;
-      h[s]! += once;
-      h[site + s]! += once;
-      h[year + s]! += once;
-      h2[s]! += twice;
-      h2[site + s]! += twice;
-      h2[year + s]! += twice;
+  }
+  return [outer, rest];
+}
+
+/** Small products of one entry: X'U, X'X, U'BX over its cells, PP' and Σ P_b (U'B1_b)' over its blocks. */
+function gatherProducts(frame: NetworkFrame, point: NetworkPoint, i: number, scratch: TraceScratch): void {
+  const { d, x, blockFactor, blockShrink, projectedStart } = point.absorption;
+  const { u, bx, blockSums, xu, xx, pp, pu, ubx } = scratch;
+  const q = frame.levelCount[i]!;
+  const first = frame.start[i]!;
+  const length = frame.start[i + 1]! - first;
+  const xAt = projectedStart[i]! - first;
+  for (const square of [xu, xx, pp, pu, ubx]) square.fill(0, 0, q * q);
+  for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+    const begin = frame.blockStart[b]!;
+    const end = frame.blockStart[b + 1]!;
+    // 1_b'DX, 1_b'DU; P_b = X'1_b, U'B1_b
+    for (let r = 0; r < q; r++) {
+      let ofX = 0;
+      let ofU = 0;
+      let p = 0;
+      for (let j = begin; j < end; j++) {
+        ofX += d[j]! * x[xAt + r * length + j]!;
+        ofU += d[j]! * u[(j - first) * q + r]!;
+        p += x[xAt + r * length + j]!;
+      }
+      for (let j = begin; j < end; j++)
+        bx[(j - first) * q + r] = d[j]! * (x[xAt + r * length + j]! - blockFactor[b]! * ofX);
+      blockSums[r] = p;
+      blockSums[q + r] = blockShrink[b]! * ofU;
+    }
+    for (let r = 0; r < q; r++) {
+      const p = blockSums[r]!;
+      for (let t = 0; t < q; t++) {
+        pp[r * q + t]! += p * blockSums[t]!;
+        pu[r * q + t]! += p * blockSums[q + t]!;
+      }
+    }
+    // Z_i'BX = X'X
+    for (let j = begin; j < end; j++) {
+      const at = (j - first) * q;
+      const own = frame.level[j]! * q;
+      for (let t = 0; t < q; t++) xx[own + t]! += bx[at + t]!;
+      for (let r = 0; r < q; r++) {
+        const value = u[at + r]!;
+        const xr = x[xAt + r * length + j]!;
+        for (let t = 0; t < q; t++) {
+          ubx[r * q + t]! += value * bx[at + t]!;
+          xu[r * q + t]! += xr * u[at + t]!;
+        }
+      }
     }
   }
 }
 
-/** Adds entry i's part of tr(PV_site), tr(PV_year), tr(PV_rest) to traces. */
+/**
+ * Adds entry i's part of tr(PV_k) to traces, P = Q − Q E C⁻¹E'Q with Q = B − XSX':
+ *   outer   Σ_b 1_b'B1_b − tr(S PP')   less   Σ_b 1_b'BC⁻¹B1_b − 2 tr(S Σ P_b (U'B1_b)') + tr(SX'US PP')
+ *   inner   tr(N L)                    less   tr(LL'X'U),  L = I − SN
+ *   rest    tr(B) − tr(S X'X)          less   tr(C⁻¹BB) − 2 tr(S U'BX) + tr(SX'US X'X)
+ */
 function addTraces(
   frame: NetworkFrame,
   point: NetworkPoint,
@@ -172,66 +206,62 @@ function addTraces(
   scratch: TraceScratch,
   traces: Float64Array,
 ): void {
-  const { absorption, system } = point;
-  const { d, k, n1, blockStart } = absorption;
-  const q = frame.width[i]!;
-  const sites = frame.siteWidth[i]!;
-  const at = blockStart[i]!;
-  projectInverse(frame, point, i, q, scratch);
-  const { dSquared, h, h2, n2, kn1, kn2, kh, hk, hl, own } = scratch;
-  crossEntry(frame, i, dSquared, n2, 0);
-  multiplyByCross(k, at, n1, at, q, sites, kn1);
-  multiplyByCross(k, at, n2, 0, q, sites, kn2);
-  multiplyBlock(k, at, h, q, kh);
+  const { d, n, s, blockSum, blockShrink, blockFactor, squareStart } = point.absorption;
+  const q = frame.levelCount[i]!;
+  const at = squareStart[i]!;
+  const [blockOuter, blockRest] = projectInverse(frame, point, i, scratch);
+  gatherProducts(frame, point, i, scratch);
+  const { xu, xx, pp, pu, ubx, product, sandwich } = scratch;
+  multiplyRows(product, xu, 0, s, at, q, q, q);
+  multiplyRows(sandwich, s, at, product, 0, q, q, q);
 
-  // H L = H − H K N1, with H K = (K H)'
-  for (let r = 0; r < q; r++) for (let s = 0; s < q; s++) hk[s * q + r] = kh[r * q + s]!;
-  multiplyByCross(hk, 0, n1, at, q, sites, hl);
-  for (let r = 0; r < q * q; r++) hl[r] = h[r]! - hl[r]!;
-
-  own.fill(0, 0, q);
-  for (let r = 0; r < q; r++)
-    for (let c = 0; c < q; c++) {
-      const rc = r * q + c;
-      const product = kn1[rc]!;
-      own[c]! -= product * (n1[at + rc]! - hl[rc]!);
-    }
-  for (let c = 1; c < q; c++) traces[c <= sites ? 0 : 1]! += n1[at + c * q + c]! - hl[c * q + c]! + own[c]!;
-
-  const size = frame.columnCount;
-  let rest = 2 * traceOfProduct(k, at, h2, q) - traceOfProduct(kn2, 0, hk, q);
-  for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
-    const dj = d[j]!;
-    const s = frame.siteColumn[j]!;
-    const y = frame.yearColumn[j]!;
-    const hat =
-      k[at]! + k[at + s * q + s]! + k[at + y * q + y]! + 2 * (k[at + s]! + k[at + y]! + k[at + s * q + y]!);
-    const e = frame.column[j]!;
-    rest += dj - dj * dj * (hat + (e < 0 ? 0 : system.inverse[e * size + e]!));
+  let outer = traceOfProduct(sandwich, 0, pp, q) - 2 * traceOfProduct(s, at, pu, q) + blockOuter;
+  outer = -outer - traceOfProduct(s, at, pp, q);
+  let rest = traceOfProduct(sandwich, 0, xx, q) - 2 * traceOfProduct(s, at, ubx, q) + blockRest;
+  rest = -rest - traceOfProduct(s, at, xx, q);
+  for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+    outer += blockSum[b]! * blockShrink[b]!;
+    for (let j = frame.blockStart[b]!; j < frame.blockStart[b + 1]!; j++)
+      rest += d[j]! * (1 - blockFactor[b]! * d[j]!);
   }
+
+  // L, then LL'
+  multiplyRows(product, s, at, n, at, q, q, q);
+  for (let r = 0; r < q; r++)
+    for (let t = 0; t < q; t++) product[r * q + t] = (r === t ? 1 : 0) - product[r * q + t]!;
+  let inner = traceOfProduct(n, at, product, q);
+  for (let r = 0; r < q; r++)
+    for (let t = 0; t < q; t++) {
+      let sum = 0;
+      for (let k = 0; k < q; k++) sum += product[r * q + k]! * product[t * q + k]!;
+      inner -= sum * xu[r * q + t]!;
+    }
+  traces[frame.outerTerm]! += outer;
+  traces[frame.innerTerm]! += inner;
   traces[2]! += rest;
 }
 
-/** V_k x for all three terms: site and year sums within an entry spread back over its cells, and x itself. */
+/** V_k x for the terms in the order of θ: sums over an entry's sites and over its years spread back over its cells, and x itself. */
 export function spreadByTerm(
   frame: NetworkFrame,
   x: Float64Array,
 ): [Float64Array, Float64Array, Float64Array] {
-  const site = new Float64Array(frame.cellCount);
-  const year = new Float64Array(frame.cellCount);
-  const sums = new Float64Array(frame.width.reduce((max, q) => Math.max(max, q), 0));
+  const outer = new Float64Array(frame.cellCount);
+  const inner = new Float64Array(frame.cellCount);
+  const sums = new Float64Array(frame.maxLevels);
   for (let i = 0; i < frame.entries.length; i++) {
-    sums.fill(0, 0, frame.width[i]!);
-    for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
-      sums[frame.siteColumn[j]!]! += x[j]!;
-      sums[frame.yearColumn[j]!]! += x[j]!;
+    sums.fill(0, 0, frame.levelCount[i]);
+    for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+      let sum = 0;
+      for (let j = frame.blockStart[b]!; j < frame.blockStart[b + 1]!; j++) {
+        sum += x[j]!;
+        sums[frame.level[j]!]! += x[j]!;
+      }
+      outer.fill(sum, frame.blockStart[b], frame.blockStart[b + 1]);
     }
-    for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
-      site[j] = sums[frame.siteColumn[j]!]!;
-      year[j] = sums[frame.yearColumn[j]!]!;
-    }
+    for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) inner[j] = sums[frame.level[j]!]!;
   }
-  return [site, year, x];
+  return frame.outerTerm === 0 ? [outer, inner, x] : [inner, outer, x];
 }
 
 /** Four sums side by side, since one alone waits for each addition to end. */
@@ -257,8 +287,7 @@ export function dot(a: Float64Array, b: Float64Array): number {
  */
 export function differentiateCriterion(frame: NetworkFrame, point: NetworkPoint): CriterionDerivatives {
   const { absorption, system } = point;
-  const scratch = makeScratch(frame, absorption.maxWidth);
-  for (let j = 0; j < frame.cellCount; j++) scratch.dSquared[j] = absorption.d[j]! * absorption.d[j]!;
+  const scratch = makeScratch(frame);
   const traces = new Float64Array(3);
   for (let i = 0; i < frame.entries.length; i++) addTraces(frame, point, i, scratch, traces);
 

@@ -4,79 +4,58 @@ import type { NetworkFrame } from './network-frame.ts';
 export type Theta = Float64Array;
 
 /**
- * What is left of each entry's cells once its own effect is taken out as fixed:
- * Q_i = D − D Z K Z' D with D = diag(1 / (θ_r + v)), never formed.
- * Blocks of entry i lie at blockStart[i] (q_i × q_i) and vectorStart[i] (q_i).
+ * What is left of each entry's cells once its own effect is taken out as fixed: Q = B − X S X', never formed, with
+ *   D = diag(1 / (θ_r + v)),
+ *   B = (D⁻¹ + θ_outer Z_o Z_o')⁻¹, which joins cells of one block only: D − f D 11'D in a block, f = θ_outer / (1 + θ_outer 1'D1),
+ *   X = B Z_i, one column for each inner level, N = Z_i'B Z_i,
+ *   S = θ_inner (I + θ_inner N)⁻¹ + aa'/c, where a = (I + θ_inner N)⁻¹1 gives V⁻¹1 = X a and c = 1'V⁻¹1.
+ * With q inner levels of entry i, S and N lie at squareStart[i] (q × q), X at projectedStart[i] (q rows as long as its cells).
  */
 export interface EntryAbsorption {
-  readonly blockStart: Int32Array;
-  readonly vectorStart: Int32Array;
-  readonly maxWidth: number;
+  readonly squareStart: Int32Array;
+  readonly projectedStart: Int32Array;
   /** 1 / (θ_r + v) of each cell */
   readonly d: Float64Array;
-  /** N1_i = Z' D Z */
-  readonly n1: Float64Array;
-  /** K_i, the entry's own effect included */
-  readonly k: Float64Array;
-  /** a_i, so that w = D Z a is V⁻¹1 */
-  readonly a: Float64Array;
-  /** c_i = 1'V⁻¹1 */
+  /** 1'D1, 1 / (1 + θ_outer 1'D1) and f of each block */
+  readonly blockSum: Float64Array;
+  readonly blockShrink: Float64Array;
+  readonly blockFactor: Float64Array;
+  readonly n: Float64Array;
+  readonly s: Float64Array;
+  /** X', so that the cells of an inner level lie side by side */
+  readonly x: Float64Array;
+  /** V⁻¹1 of each cell over its own entry */
+  readonly w: Float64Array;
+  /** c of each entry */
   readonly c: Float64Array;
-  /** Σ log(θ_r + v) + Σ log|M| + Σ log c; set by absorbEntries */
+  /** Σ log|V| + Σ log c; set by absorbEntries */
   logDeterminant: number;
 }
 
 export function prepareAbsorption(frame: NetworkFrame): EntryAbsorption {
   const entries = frame.entries.length;
-  const blockStart = new Int32Array(entries + 1);
-  const vectorStart = new Int32Array(entries + 1);
-  let maxWidth = 0;
+  const squareStart = new Int32Array(entries + 1);
+  const projectedStart = new Int32Array(entries + 1);
   for (let i = 0; i < entries; i++) {
-    const q = frame.width[i]!;
-    blockStart[i + 1] = blockStart[i]! + q * q;
-    vectorStart[i + 1] = vectorStart[i]! + q;
-    if (q > maxWidth) maxWidth = q;
+    const q = frame.levelCount[i]!;
+    squareStart[i + 1] = squareStart[i]! + q * q;
+    projectedStart[i + 1] = projectedStart[i]! + q * (frame.start[i + 1]! - frame.start[i]!);
   }
+  const blocks = frame.blockStart.length - 1;
   return {
-    blockStart,
-    vectorStart,
-    maxWidth,
+    squareStart,
+    projectedStart,
     d: new Float64Array(frame.cellCount),
-    n1: new Float64Array(blockStart[entries]!),
-    k: new Float64Array(blockStart[entries]!),
-    a: new Float64Array(vectorStart[entries]!),
+    blockSum: new Float64Array(blocks),
+    blockShrink: new Float64Array(blocks),
+    blockFactor: new Float64Array(blocks),
+    n: new Float64Array(squareStart[entries]!),
+    s: new Float64Array(squareStart[entries]!),
+    x: new Float64Array(projectedStart[entries]!),
+    w: new Float64Array(frame.cellCount),
     c: new Float64Array(entries),
     logDeterminant: 0,
   };
-}
-
-/** Z' diag(weight) Z of entry i into out at offset at; symmetric, row-major, q wide. */
-export function crossEntry(
-  frame: NetworkFrame,
-  i: number,
-  weight: Float64Array,
-  out: Float64Array,
-  at: number,
-): void {
-  const q = frame.width[i]!;
-  out.fill(0, at, at + q * q);
-  let total = 0;
-  for (let c = frame.start[i]!, end = frame.start[i + 1]!; c < end; c++) {
-    const w = weight[c]!;
-    const s = frame.siteColumn[c]!;
-    const y = frame.yearColumn[c]!;
-    total += w;
-    out[at + s]! += w;
-    out[at + y]! += w;
-    out[at + s * q + y]! += w;
-  }
-  out[at] = total;
-  for (let s = 1; s < q; s++) {
-    out[at + s * q] = out[at + s]!;
-    out[at + s * q + s] = out[at + s]!;
-  }
-  for (let s = 1; s <= frame.siteWidth[i]!; s++)
-    for (let y = frame.siteWidth[i]! + 1; y < q; y++) out[at + y * q + s] = out[at + s * q + y]!;
 }
 
 /** Inverts the positive definite t (size × size, row-major) in place; returns log|t|. */
@@ -99,110 +78,115 @@ function invertInPlace(t: Float64Array, size: number): number {
   return logDeterminant;
 }
 
-interface BlockScratch {
-  readonly schur: Float64Array;
-  readonly coupling: Float64Array;
-  readonly solved: Float64Array;
-}
-
-/**
- * K0 = Λ M⁻¹ Λ with M = I + Λ N1 Λ, Λ = diag(0, √θ_site …, √θ_year …).
- * M is an arrow: sites are diagonal, so only years × years is inverted.
- * @returns log|M|
- */
-function invertArrow(
-  n1: Float64Array,
-  k: Float64Array,
-  at: number,
-  q: number,
-  sites: number,
-  theta: Theta,
-  scratch: BlockScratch,
+/** B of entry i's blocks. @returns log|B⁻¹| less log|D⁻¹| */
+function measureBlocks(
+  frame: NetworkFrame,
+  absorption: EntryAbsorption,
+  i: number,
+  thetaOuter: number,
 ): number {
-  const years = q - 1 - sites;
-  const thetaSite = theta[0]!;
-  const thetaYear = theta[1]!;
-  const cross = Math.sqrt(thetaSite * thetaYear);
-  const { schur, coupling, solved } = scratch;
+  const { d, blockSum, blockShrink, blockFactor } = absorption;
   let logDeterminant = 0;
-  for (let y = 0; y < years; y++)
-    for (let z = 0; z < years; z++)
-      schur[y * years + z] = y === z ? 1 + thetaYear * n1[at + (1 + sites + y) * (q + 1)]! : 0;
-  for (let s = 0; s < sites; s++) {
-    const pivot = 1 + thetaSite * n1[at + (1 + s) * (q + 1)]!;
-    logDeterminant += Math.log(pivot);
-    const row = at + (1 + s) * q + 1 + sites;
-    for (let y = 0; y < years; y++) coupling[s * years + y] = (cross * n1[row + y]!) / pivot;
-    for (let y = 0; y < years; y++) {
-      const b = cross * n1[row + y]!;
-      if (b === 0) continue;
-      for (let z = 0; z < years; z++) schur[y * years + z]! -= b * coupling[s * years + z]!;
-    }
-  }
-  logDeterminant += invertInPlace(schur, years);
-  k.fill(0, at, at + q * q);
-  for (let y = 0; y < years; y++)
-    for (let z = 0; z < years; z++)
-      k[at + (1 + sites + y) * q + 1 + sites + z] = thetaYear * schur[y * years + z]!;
-  for (let s = 0; s < sites; s++) {
-    for (let y = 0; y < years; y++) {
-      let sum = 0;
-      for (let z = 0; z < years; z++) sum += coupling[s * years + z]! * schur[z * years + y]!;
-      solved[s * years + y] = sum;
-      k[at + (1 + s) * q + 1 + sites + y] = -cross * sum;
-      k[at + (1 + sites + y) * q + 1 + s] = -cross * sum;
-    }
-    for (let r = 0; r <= s; r++) {
-      let sum = r === s ? 1 / (1 + thetaSite * n1[at + (1 + s) * (q + 1)]!) : 0;
-      for (let y = 0; y < years; y++) sum += solved[s * years + y]! * coupling[r * years + y]!;
-      k[at + (1 + s) * q + 1 + r] = thetaSite * sum;
-      k[at + (1 + r) * q + 1 + s] = thetaSite * sum;
-    }
+  for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+    let sum = 0;
+    for (let j = frame.blockStart[b]!; j < frame.blockStart[b + 1]!; j++) sum += d[j]!;
+    blockSum[b] = sum;
+    blockShrink[b] = 1 / (1 + thetaOuter * sum);
+    blockFactor[b] = thetaOuter * blockShrink[b]!;
+    logDeterminant += Math.log1p(thetaOuter * sum);
   }
   return logDeterminant;
 }
 
-/** a = e1 − K0 N1 e1, c = (N1 a)[1], K = K0 + aa'/c. */
-function absorbOwnEffect(absorption: EntryAbsorption, i: number, q: number): void {
-  const { n1, k, a, c } = absorption;
-  const at = absorption.blockStart[i]!;
-  const va = absorption.vectorStart[i]!;
-  for (let r = 0; r < q; r++) {
-    let sum = r === 0 ? 1 : 0;
-    for (let s = 0; s < q; s++) sum -= k[at + r * q + s]! * n1[at + s]!;
-    a[va + r] = sum;
+/** X and N of entry i; sums without a difference in them, so that a large θ costs N no digits. `rowSums` becomes N 1. */
+function projectLevels(
+  frame: NetworkFrame,
+  absorption: EntryAbsorption,
+  i: number,
+  rowSums: Float64Array,
+): void {
+  const { d, blockShrink, blockFactor, n, x } = absorption;
+  const { level, blockStart } = frame;
+  const q = frame.levelCount[i]!;
+  const at = absorption.squareStart[i]!;
+  const first = frame.start[i]!;
+  const length = frame.start[i + 1]! - first;
+  const xAt = absorption.projectedStart[i]! - first;
+  n.fill(0, at, at + q * q);
+  rowSums.fill(0, 0, q);
+  x.fill(0, absorption.projectedStart[i], absorption.projectedStart[i + 1]);
+  for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
+    const shrink = blockShrink[b]!;
+    const factor = blockFactor[b]!;
+    for (let j = blockStart[b]!; j < blockStart[b + 1]!; j++) {
+      const dj = d[j]!;
+      const own = level[j]!;
+      rowSums[own]! += dj * shrink;
+      n[at + own * q + own]! += dj * shrink;
+      x[xAt + own * length + j]! += dj;
+      for (let l = blockStart[b]!; l < blockStart[b + 1]!; l++) {
+        const other = level[l]!;
+        const joint = factor * dj * d[l]!;
+        x[xAt + other * length + j]! -= joint;
+        if (other === own) continue;
+        n[at + own * q + other]! -= joint;
+        n[at + own * q + own]! += joint;
+      }
+    }
   }
+}
+
+/** S, V⁻¹1 and c of entry i. @returns log|I + θ_inner N| + log c */
+function absorbLevels(
+  frame: NetworkFrame,
+  absorption: EntryAbsorption,
+  i: number,
+  thetaInner: number,
+  rowSums: Float64Array,
+  a: Float64Array,
+  work: Float64Array,
+): number {
+  const { n, s, x, w, c } = absorption;
+  const q = frame.levelCount[i]!;
+  const at = absorption.squareStart[i]!;
+  for (let r = 0; r < q * q; r++) work[r] = thetaInner * n[at + r]!;
+  for (let r = 0; r < q; r++) work[r * q + r]! += 1;
+  const logDeterminant = invertInPlace(work, q);
   let precision = 0;
-  for (let r = 0; r < q; r++) precision += n1[at + r]! * a[va + r]!;
-  c[i] = precision;
   for (let r = 0; r < q; r++) {
-    const factor = a[va + r]! / precision;
-    for (let s = 0; s < q; s++) k[at + r * q + s]! += factor * a[va + s]!;
+    let sum = 0;
+    for (let t = 0; t < q; t++) sum += work[r * q + t]!;
+    a[r] = sum;
+    precision += sum * rowSums[r]!;
   }
+  c[i] = precision;
+  for (let r = 0; r < q; r++)
+    for (let t = 0; t < q; t++)
+      s[at + r * q + t] = thetaInner * work[r * q + t]! + (a[r]! * a[t]!) / precision;
+  const first = frame.start[i]!;
+  const end = frame.start[i + 1]!;
+  w.fill(0, first, end);
+  for (let r = 0, row = absorption.projectedStart[i]! - first; r < q; r++, row += end - first)
+    for (let j = first; j < end; j++) w[j]! += a[r]! * x[row + j]!;
+  return logDeterminant + Math.log(precision);
 }
 
 /** Fills the absorption for θ; θ_r + v must be positive everywhere. */
 export function absorbEntries(frame: NetworkFrame, theta: Theta, absorption: EntryAbsorption): void {
   const rest = theta[2]!;
   let logDeterminant = 0;
-  for (let c = 0; c < frame.cellCount; c++) {
-    const variance = rest + frame.v[c]!;
-    absorption.d[c] = 1 / variance;
+  for (let j = 0; j < frame.cellCount; j++) {
+    const variance = rest + frame.v[j]!;
+    absorption.d[j] = 1 / variance;
     logDeterminant += Math.log(variance);
   }
-  const size = absorption.maxWidth;
-  const scratch = {
-    schur: new Float64Array(size * size),
-    coupling: new Float64Array(size * size),
-    solved: new Float64Array(size * size),
-  };
+  const rowSums = new Float64Array(frame.maxLevels);
+  const a = new Float64Array(frame.maxLevels);
+  const work = new Float64Array(frame.maxLevels ** 2);
   for (let i = 0; i < frame.entries.length; i++) {
-    const at = absorption.blockStart[i]!;
-    const q = frame.width[i]!;
-    crossEntry(frame, i, absorption.d, absorption.n1, at);
-    logDeterminant += invertArrow(absorption.n1, absorption.k, at, q, frame.siteWidth[i]!, theta, scratch);
-    absorbOwnEffect(absorption, i, q);
-    logDeterminant += Math.log(absorption.c[i]!);
+    logDeterminant += measureBlocks(frame, absorption, i, theta[frame.outerTerm]!);
+    projectLevels(frame, absorption, i, rowSums);
+    logDeterminant += absorbLevels(frame, absorption, i, theta[frame.innerTerm]!, rowSums, a, work);
   }
   absorption.logDeterminant = logDeterminant;
 }

@@ -1,10 +1,11 @@
-import { applyQ, multiplyInverse, sumByEnvironment } from './environment-system.ts';
-import { dot } from './criterion-derivatives.ts';
+import { subtractEnvironments } from './environment-system.ts';
 import { computeExpectedInformation } from './expected-information.ts';
 import { MANY_CELLS, type NetworkFit } from './fit-network.ts';
+import { correctCovariance } from './covariance-correction.ts';
 import { interactionTerms } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
+import { addCross, mirrorUpper, multiplyRows } from './row-products.ts';
 import { invertSmall } from './small-symmetric.ts';
 
 /** Effects of chosen entries at one θ, and their covariance Φ (m × m, row-major). */
@@ -52,170 +53,71 @@ export function thetaCovariance(fit: NetworkFit): Float64Array {
   return out;
 }
 
-/** Column A_t with β̂_t = A_t'y: w/c on the entry's own cells, less Q E g_t with g_t = C⁻¹h_t, h_t = E'w/c. */
-interface EstimatingColumn {
-  readonly column: Float64Array;
+/**
+ * h_t = E'w_t/c_t for the chosen entries, a row for each environment and a column for each entry, and g_t = C⁻¹h_t likewise:
+ * β̂_t = A_t'y with A_t = w_t/c_t on the entry's own cells, less Q E g_t.
+ */
+interface EnvironmentShares {
   readonly h: Float64Array;
   readonly g: Float64Array;
 }
 
-/** w_j/c of one cell: its weight in its own entry's effect. */
-export function ownWeight(frame: NetworkFrame, { absorption }: NetworkPoint, i: number, j: number): number {
-  const { a, c, d, vectorStart } = absorption;
-  const va = vectorStart[i]!;
-  return (d[j]! * (a[va]! + a[va + frame.siteColumn[j]!]! + a[va + frame.yearColumn[j]!]!)) / c[i]!;
-}
-
-function estimatingColumn(frame: NetworkFrame, point: NetworkPoint, i: number): EstimatingColumn {
-  const { absorption, system } = point;
+function shareEnvironments(
+  frame: NetworkFrame,
+  { absorption, system }: NetworkPoint,
+  chosen: readonly number[],
+): EnvironmentShares {
   const size = frame.columnCount;
-  const own = new Float64Array(frame.cellCount);
-  for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) own[j] = ownWeight(frame, point, i, j);
-  const h = sumByEnvironment(frame, own);
-  const g = multiplyInverse(system.inverse, size, h);
-  const spread = new Float64Array(frame.cellCount);
-  for (let j = 0; j < spread.length; j++) spread[j] = frame.column[j]! < 0 ? 0 : g[frame.column[j]!]!;
-  const column = new Float64Array(frame.cellCount);
-  applyQ(frame, absorption, spread, column);
-  for (let j = 0; j < column.length; j++) column[j] = own[j]! - column[j]!;
-  return { column, h, g };
-}
-
-function symmetric(m: number, value: (r: number, c: number) => number): Float64Array {
-  const out = new Float64Array(m * m);
-  for (let r = 0; r < m; r++)
-    for (let c = r; c < m; c++) {
-      const x = value(r, c);
-      out[r * m + c] = x;
-      out[c * m + r] = x;
+  const m = chosen.length;
+  const h = new Float64Array(size * m);
+  chosen.forEach((i, t) => {
+    for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
+      const column = frame.column[j]!;
+      if (column >= 0) h[column * m + t]! += absorption.w[j]! / absorption.c[i]!;
     }
-  return out;
+  });
+  const g = new Float64Array(size * m);
+  multiplyRows(g, system.inverse, 0, h, 0, size, size, m);
+  return { h, g };
 }
 
-/** Φ_tu = δ/c_t + h_t'g_u and β̂_t = A_t'y. */
+/** Φ_tu = δ/c_t + h_t'g_u and β̂_t = w_t'(y − Eβ)/c_t. */
 function measureEffects(
   frame: NetworkFrame,
-  point: NetworkPoint,
+  { absorption, system }: NetworkPoint,
   chosen: readonly number[],
-  columns: readonly EstimatingColumn[],
+  { h, g }: EnvironmentShares,
 ): EntryEffects {
-  return {
-    chosen,
-    effects: Float64Array.from(columns, ({ column }) => dot(column, frame.y)),
-    covariance: symmetric(
-      chosen.length,
-      (r, u) => (r === u ? 1 / point.absorption.c[chosen[r]!]! : 0) + dot(columns[r]!.h, columns[u]!.g),
-    ),
-  };
+  const m = chosen.length;
+  const rest = subtractEnvironments(frame, frame.y, system.beta);
+  const effects = Float64Array.from(chosen, (i) => {
+    let sum = 0;
+    for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) sum += absorption.w[j]! * rest[j]!;
+    return sum / absorption.c[i]!;
+  });
+  const covariance = new Float64Array(m * m);
+  addCross(covariance, m, h, g, frame.columnCount);
+  mirrorUpper(covariance, m);
+  chosen.forEach((i, t) => (covariance[t * m + t]! += 1 / absorption.c[i]!));
+  return { chosen, effects, covariance };
 }
 
 /** Effects of all entries at a point that need not be an optimum. */
 export function estimateEffects(frame: NetworkFrame, point: NetworkPoint): EntryEffects {
   const chosen = frame.entries.map((_, i) => i);
-  return measureEffects(
-    frame,
-    point,
-    chosen,
-    chosen.map((i) => estimatingColumn(frame, point, i)),
-  );
-}
-
-/** Z_k'x for the three terms: sums over an entry's sites, over its years, and x itself. Sums lie where the columns of Z do. */
-function sumByTerm(
-  frame: NetworkFrame,
-  x: Float64Array,
-): readonly [Float64Array, Float64Array, Float64Array] {
-  const { width, siteWidth, start } = frame;
-  const siteCount = siteWidth.reduce((sum, n) => sum + n, 0);
-  const yearCount = width.reduce((sum, q) => sum + q - 1, 0) - siteCount;
-  const site = new Float64Array(siteCount);
-  const year = new Float64Array(yearCount);
-  let siteAt = -1;
-  let yearAt = 0;
-  for (let i = 0; i < frame.entries.length; i++) {
-    yearAt -= siteWidth[i]! + 1;
-    for (let j = start[i]!; j < start[i + 1]!; j++) {
-      site[siteAt + frame.siteColumn[j]!]! += x[j]!;
-      year[yearAt + frame.yearColumn[j]!]! += x[j]!;
-    }
-    siteAt += siteWidth[i]!;
-    yearAt += width[i]!;
-  }
-  return [site, year, x];
-}
-
-/** Z_k s: sums spread back over the cells. */
-function spreadTerm(frame: NetworkFrame, k: number, sums: Float64Array): Float64Array {
-  if (k === 2) return sums;
-  const { width, siteWidth, start } = frame;
-  const columns = k === 0 ? frame.siteColumn : frame.yearColumn;
-  const out = new Float64Array(frame.cellCount);
-  let at = k === 0 ? -1 : 0;
-  for (let i = 0; i < frame.entries.length; i++) {
-    if (k === 1) at -= siteWidth[i]! + 1;
-    for (let j = start[i]!; j < start[i + 1]!; j++) out[j] = sums[at + columns[j]!]!;
-    at += k === 0 ? siteWidth[i]! : width[i]!;
-  }
-  return out;
-}
-
-/**
- * 2 Σ W_kl A'V_kPV_lA over the chosen entries, from Z_k'A alone: with F_l = V_lA and U_l = E'QF_l,
- * F_k'PF_l = (Z_k'A)'Z_k'QF_l − U_k'C⁻¹U_l.
- */
-function correctCovariance(
-  frame: NetworkFrame,
-  point: NetworkPoint,
-  summed: readonly (readonly [Float64Array, Float64Array, Float64Array])[],
-  w: Float64Array,
-): Float64Array {
-  const { absorption, system } = point;
-  const size = frame.columnCount;
-  const projected = new Float64Array(frame.cellCount);
-  const rows = summed.map((own) => {
-    // Σ_l W_kl Z_k'QF_l for each k, and U_l with Σ_l W_kl C⁻¹U_l
-    const weighted = own.map((sums) => new Float64Array(sums.length));
-    const u: Float64Array[] = [];
-    own.forEach((sums, l) => {
-      applyQ(frame, absorption, spreadTerm(frame, l, sums), projected);
-      u.push(sumByEnvironment(frame, projected));
-      sumByTerm(frame, projected).forEach((values, k) => addScaled(weighted[k]!, w[k * 3 + l]!, values));
-    });
-    const mixed = u.map((_, k) => {
-      const out = new Float64Array(size);
-      u.forEach((values, l) => addScaled(out, w[k * 3 + l]!, values));
-      return out;
-    });
-    const solved = mixed.map((values) => multiplyInverse(system.inverse, size, values));
-    return { own, weighted, u, solved };
-  });
-  return symmetric(summed.length, (r, c) => {
-    let sum = 0;
-    for (let k = 0; k < 3; k++)
-      sum += dot(rows[r]!.own[k]!, rows[c]!.weighted[k]!) - dot(rows[r]!.u[k]!, rows[c]!.solved[k]!);
-    return 2 * sum;
-  });
-}
-
-function addScaled(target: Float64Array, factor: number, values: Float64Array): void {
-  if (factor !== 0) for (let j = 0; j < target.length; j++) target[j]! += factor * values[j]!;
+  return measureEffects(frame, point, chosen, shareEnvironments(frame, point, chosen));
 }
 
 /** Effects of the chosen entries, all of them by default. Source of the correction: Kenward & Roger (1997), Biometrics 53:983–997. */
 export function estimateEntries(fit: NetworkFit, chosen?: readonly number[]): EntryEstimates {
   const { frame, point } = fit;
   const picked = chosen ?? frame.entries.map((_, i) => i);
-  const m = picked.length;
   const w = thetaCovariance(fit);
-  const columns = picked.map((i) => estimatingColumn(frame, point, i));
-  const summed = columns.map(({ column }) => sumByTerm(frame, column));
-  const covarianceSlopes = [0, 1, 2].map((k) => symmetric(m, (r, u) => dot(summed[r]![k]!, summed[u]![k]!)));
-  const correction = correctCovariance(frame, point, summed, w);
+  const shares = shareEnvironments(frame, point, picked);
   return {
-    ...measureEffects(frame, point, picked, columns),
+    ...measureEffects(frame, point, picked, shares),
     fit,
-    covarianceSlopes,
-    correction,
+    ...correctCovariance(frame, point, picked, shares.g, w),
     thetaCovariance: w,
   };
 }

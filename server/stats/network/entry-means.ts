@@ -1,4 +1,4 @@
-import { ownWeight, type EntryEffects } from './entry-estimates.ts';
+import type { EntryEffects } from './entry-estimates.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
 
@@ -19,6 +19,7 @@ export function averageEntries(
 ): EntryMean[] {
   const { chosen, effects, covariance } = estimates;
   const { inverse, beta } = point.system;
+  const { w, c } = point.absorption;
   const size = frame.columnCount;
   const keptColumn = new Int32Array(frame.environments.length).fill(-1);
   for (let j = 0; j < frame.cellCount; j++) keptColumn[frame.environment[j]!] = frame.column[j]!;
@@ -50,7 +51,7 @@ export function averageEntries(
     for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
       const column = frame.column[j]!;
       if (column < 0) continue;
-      shared += ownWeight(frame, point, i, j) * part.solved[column]!;
+      shared += (w[j]! / c[i]!) * part.solved[column]!;
     }
     return {
       entry: frame.entries[i]!,

@@ -1,5 +1,5 @@
 import { absorbEntries, prepareAbsorption, type EntryAbsorption, type Theta } from './entry-absorption.ts';
-import { solveEnvironments, type EnvironmentSystem } from './environment-system.ts';
+import { invertEnvironments, solveEnvironments, type EnvironmentSystem } from './environment-system.ts';
 import type { NetworkFrame } from './network-frame.ts';
 
 /** Everything about the fit that depends on θ. */
@@ -37,7 +37,7 @@ export function measureDesign(frame: NetworkFrame): DesignMeasure {
 }
 
 /**
- * ll = −½[(n − p) log 2π + Σ log(θ_r + v) + Σ log|M| + Σ log c + log|C| + y'Py] + ½ log|X'X|
+ * ll = −½[(n − p) log 2π + Σ log|V| + Σ log c + log|C| + y'Py] + ½ log|X'X|
  * @returns null where the equations have lost their rank
  */
 export function evaluateLikelihood(
@@ -47,14 +47,15 @@ export function evaluateLikelihood(
 ): NetworkPoint | null {
   const absorption = prepareAbsorption(frame);
   absorbEntries(frame, theta, absorption);
-  const system = solveEnvironments(frame, absorption);
-  if (system === null) return null;
+  const solution = solveEnvironments(frame, absorption);
+  if (solution === null) return null;
   const logLik =
     -0.5 *
     (residualDf(frame) * Math.log(2 * Math.PI) +
       absorption.logDeterminant +
-      system.logDeterminant +
-      system.quadratic -
+      solution.logDeterminant +
+      solution.quadratic -
       designLogDeterminant);
-  return Number.isFinite(logLik) ? { theta, absorption, system, logLik } : null;
+  if (!Number.isFinite(logLik)) return null;
+  return { theta, absorption, system: invertEnvironments(frame, solution), logLik };
 }

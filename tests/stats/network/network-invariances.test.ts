@@ -56,6 +56,18 @@ describe.each([
     expectSameGaps(combine(lifted, options), plain, 1, 7);
   });
 
+  it('gives each of sites and years what it gave the other, once they change places', () => {
+    const turned = combine(
+      cells.map((cell) => ({ ...cell, site: `${cell.year}`, year: cell.site })),
+      'usual' in options ? { usual: { site: usual.year, year: usual.site, rest: usual.rest } } : options,
+    );
+    expectSameGaps(turned, plain);
+    const { site, year, rest } = plain.fit.components;
+    expect(turned.fit.components.site).toBeCloseTo(year, 9);
+    expect(turned.fit.components.year).toBeCloseTo(site, 9);
+    expect(turned.fit.components.rest).toBeCloseTo(rest, 9);
+  });
+
   it('answers in the unit of the means', () => {
     const factor = 1000;
     const inKilograms = cells.map((cell) => ({
