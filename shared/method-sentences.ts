@@ -4,7 +4,7 @@ import type { VerdictCode } from './verdict.ts';
 import type { CandidateResult, WeighUpResult } from './weigh-up.ts';
 
 type MethodKey =
-  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'twoTargets' | 'components'}`
+  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'pair' | 'best' | 'twoTargets' | 'components'}`
   | `method:from.${'crop-default' | 'own-trials'}`
   | `method:sensitivity.${'holds' | 'changes' | 'line'}`
   | `method:${'farm' | 'farmAlike' | 'money' | 'calibration' | 'computed'}`
@@ -37,7 +37,7 @@ export function tellMethod(result: WeighUpResult, say: Say<MethodKey>, write: Me
       }),
     ),
     ...(result.farmRange ? [paragraph(sayFarm(result.farmRange, say, write))] : []),
-    paragraph(say(`method:${result.comparison}`)),
+    paragraph(say(`method:${nameComparison(result)}`)),
     paragraph(say('method:twoTargets')),
     ...(result.components ? [paragraph(sayComponents(result, result.components, say, write))] : []),
     ...tellSensitivity(result.candidates, say),
@@ -49,6 +49,11 @@ export function tellMethod(result: WeighUpResult, say: Say<MethodKey>, write: Me
       items: [],
     },
   ];
+}
+
+/** The comparison by the question that called for it. */
+function nameComparison({ question, comparison }: WeighUpResult): 'pair' | 'best' | 'dunnett' | 'lsd' {
+  return question === 'pair' || question === 'best' ? question : comparison;
 }
 
 function sayComponents(

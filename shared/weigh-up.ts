@@ -5,6 +5,7 @@ import { defineContract } from './contract.ts';
 import { decisionLine } from './decision.ts';
 import { farmAnswer, farmInput, farmQuery, farmRange, hasPlaceForChoice, isWholePlace } from './farm.ts';
 import { gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
+import { bestOfList, isPairOfOne, questionKind } from './question-kind.ts';
 import { interval, verdictCode } from './verdict.ts';
 
 /** The gap of a candidate to the current variety in one trait; units are the trait's. */
@@ -141,8 +142,12 @@ export const weighUpResult = z.object({
   answer: z.enum(['weighed', 'no-trials']),
   computedAt: z.iso.datetime(),
   engineVersion: z.string(),
+  /** What was asked, which decides the comparison; absent in answers made before there was a choice. */
+  question: questionKind.optional(),
   /** Comparison used, said in one sentence on the page. */
   comparison: z.enum(['dunnett', 'lsd']),
+  /** For the question about the best of the list: which of it can be; null where the evidence judges no two of it. */
+  best: bestOfList.nullish(),
   sites: z.number().int(),
   seasons: z.array(z.number().int()),
   trials: z.array(usedTrial),
@@ -174,9 +179,12 @@ export const weighUpInput = z
     areaHectares: z.number().positive().max(100_000),
     currentVarietyId: z.uuid(),
     candidateIds: z.array(z.uuid()).min(1).max(8),
+    /** Left out, several candidates are compared. */
+    question: questionKind.optional(),
     assumptions: moneyAssumptions,
     ...farmInput,
   })
+  .refine(isPairOfOne, { path: ['question'], message: 'pair-of-one' })
   .refine(isWholePlace, { path: ['farmLongitude'], message: 'half-a-place' })
   .refine(hasPlaceForChoice, { path: ['trialChoice'], message: 'nearest-needs-farm' })
   .refine((input) => input.seasonFrom <= input.seasonTo, { path: ['seasonTo'], message: 'season-order' })
@@ -206,6 +214,7 @@ export const weighUp = z.object({
   currentVarietyId: z.uuid(),
   currentVarietyName: z.string(),
   candidateIds: z.array(z.uuid()),
+  question: questionKind.default('several'),
   assumptions: moneyAssumptions,
   ...farmAnswer,
   tickedOff: z.array(tickedOffTrial).default([]),

@@ -27,9 +27,13 @@ export async function answerWeighUp(
     loadMoneyDefaults(db, weighUp.cropId, weighUp.regionId),
   ]);
   const { counted: ground, out } = partTickedOff(found, weighUp.tickedOff);
-  const { currentVarietyId, candidateIds, assumptions: money } = weighUp;
-  const acceptsOtherRegions = asksForOtherRegions(weighUp);
-  const asked = { currentVarietyId, candidateIds, traits: 'all', acceptsOtherRegions } as const;
+  const { currentVarietyId, candidateIds, question: kind, assumptions: money } = weighUp;
+  const asked = {
+    ...{ currentVarietyId, candidateIds, kind },
+    list: kind === 'best' ? await listPickedFrom(db, ground, weighUp) : [],
+    traits: 'all',
+    acceptsOtherRegions: asksForOtherRegions(weighUp),
+  } as const;
   const priced = await answerPriced(db, ground, asked, { money, priceSheet, askedAt: new Date() }, signal);
   const placed = placeAnswer(priced, ground, {
     farm: readFarm(weighUp),
@@ -38,6 +42,16 @@ export async function answerWeighUp(
   });
   const result = tellTickedOff(placed, await loadFigures(db, out), weighUp.tickedOff);
   return { result, traits: ground.traits };
+}
+
+/** The varieties among which the best was looked for: all that stood in the trials, and those kept in any case. */
+async function listPickedFrom(
+  db: Database,
+  ground: EvidenceGround,
+  { currentVarietyId, candidateIds }: WeighUp,
+): Promise<string[]> {
+  const standing = await listStanding(db, ground, yieldSlug);
+  return [...new Set([...candidateIds, ...standing])].filter((id) => id !== currentVarietyId);
 }
 
 /**
@@ -60,6 +74,8 @@ export async function rankCandidates(
   const asked = {
     currentVarietyId,
     candidateIds: standing.filter((id) => id !== currentVarietyId),
+    kind: 'several',
+    list: [],
     traits: 'yield',
     acceptsOtherRegions: asksForOtherRegions(scope),
   } as const;

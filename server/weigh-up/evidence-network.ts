@@ -8,13 +8,18 @@ import {
 } from '#server/stats/engine.ts';
 import type { Evidence, EvidenceMean, EvidenceTrial } from './evidence.ts';
 import { groupBy } from './group-by.ts';
-import type { Question } from './question.ts';
 
 /** The trait that money and the headline verdict are about. */
 export const yieldSlug = 'yield';
 
+/** Which traits are weighed together. */
+export type TraitChoice = 'all' | 'yield' | 'all-but-yield';
+
+const isChosen = (slug: string, chosen: TraitChoice): boolean =>
+  chosen === 'all' || (slug === yieldSlug) === (chosen === 'yield');
+
 /** Lays the evidence out as the engine takes it: trials by id, entries by variety id, numeric traits only. */
-export function layOutNetwork(evidence: Evidence, traits: Question['traits']): EvidenceNetwork {
+export function layOutNetwork(evidence: Evidence, traits: TraitChoice): EvidenceNetwork {
   const yieldTrait = evidence.traits.find((trait) => trait.slug === yieldSlug);
   const yieldFits = new Map(
     evidence.fits.filter((fit) => fit.traitId === yieldTrait?.id).map((fit) => [fit.versionId, fit]),
@@ -39,7 +44,7 @@ export function layOutNetwork(evidence: Evidence, traits: Question['traits']): E
       management: readManagement(trial),
     })),
     traits: evidence.traits
-      .filter((trait) => trait.kind === 'numeric' && (traits === 'all' || trait.slug === yieldSlug))
+      .filter((trait) => trait.kind === 'numeric' && isChosen(trait.slug, traits))
       .map((trait) => ({
         trait: trait.slug,
         better: trait.direction,

@@ -43,6 +43,7 @@ export function placeAnswer(
     trials: answer.trials.map(mark),
     leftOut: answer.leftOut.map(mark),
     farmRange: ground.farm && measureFarmRange(ground.farm, sites),
+    best: isForeign ? null : answer.best,
     candidates: answer.candidates.map(isForeign ? withholdVerdict : keepVerdict).map((candidate) =>
       readAtUsualYield(
         {

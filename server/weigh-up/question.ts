@@ -1,10 +1,14 @@
 import type { MoneyAssumptions } from '#shared/money.ts';
+import type { QuestionKind } from '#shared/question-kind.ts';
 
 /** What is asked of the evidence. The whole of it is part of an answer's key, so it holds nothing that an answer does not hang on. */
 export type Question = {
   currentVarietyId: string;
   /** In the order in which they are answered. */
   candidateIds: readonly string[];
+  kind: QuestionKind;
+  /** For the best of a list, all of the list but the current variety, the candidates among them; else empty. */
+  list: readonly string[];
   /** all: every trait of the crop; yield: a list of candidates needs no more, and is asked for often */
   traits: 'all' | 'yield';
   /** Whether trials of other regions may answer alone, which the advisor has to ask for. */

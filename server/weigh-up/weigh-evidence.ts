@@ -1,5 +1,6 @@
 import { makeCaution, type Caution } from '#shared/caution.ts';
 import type { GapDistribution } from '#shared/money.ts';
+import type { BestOfList } from '#shared/question-kind.ts';
 import type {
   CandidateResult,
   GapEstimate,
@@ -14,9 +15,10 @@ import {
   type CandidateWeighing,
   type EvidenceCaution,
   type TraitWeighing,
+  type WeighedCandidates,
 } from '#server/stats/engine.ts';
 import { engineVersion } from '#server/trials/trial-fit.ts';
-import { layOutNetwork, yieldSlug } from './evidence-network.ts';
+import { layOutNetwork, yieldSlug, type TraitChoice } from './evidence-network.ts';
 import type { Evidence } from './evidence.ts';
 import { compareRatings } from './ordinal-medians.ts';
 import type { Question } from './question.ts';
@@ -29,14 +31,7 @@ const mostDf = 1e6;
  * give the same answer.
  */
 export function weighEvidence(evidence: Evidence, question: Question): WeighUpResult {
-  const weighed = weighCandidates(layOutNetwork(evidence, question.traits), {
-    current: question.currentVarietyId,
-    candidates: question.candidateIds,
-    kind: question.candidateIds.length === 1 ? 'pair' : 'named',
-    acceptsOtherRegions: question.acceptsOtherRegions,
-    askedInSeason: question.askedInSeason,
-    margins: { [yieldSlug]: question.margins },
-  });
+  const weighed = weighTraits(evidence, question);
   const names = new Map(evidence.varieties.map((variety) => [variety.id, variety.name]));
   const ground = { computedAt: new Date().toISOString(), engineVersion };
   const yields = weighed.traits.find((trait) => trait.trait === yieldSlug);
@@ -44,6 +39,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     return {
       ...ground,
       answer: 'no-trials',
+      question: question.kind,
       comparison: 'lsd',
       sites: 0,
       seasons: [],
@@ -59,16 +55,19 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
   return {
     ...ground,
     answer: 'weighed',
+    question: question.kind,
     comparison: yields.comparison,
+    best: tellBest(question, names, yields),
     sites: yields.sites,
     seasons: [...yields.seasons],
     ...listTrials(evidence, yields),
     components: toDeviations(yields),
     ...tellUsual(evidence, yields),
     candidates: warnOfLeader(
-      yields.candidates.map((weighing) =>
-        describeCandidate(evidence, question, names, weighed.traits, weighing),
-      ),
+      question.candidateIds
+        .flatMap((id) => yields.candidates.find(({ candidate }) => candidate === id) ?? [])
+        .map((weighing) => describeCandidate(evidence, question, names, weighed.traits, weighing)),
+      question.kind,
       yields.entries,
     ),
     cautions: [
@@ -76,6 +75,43 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
       ...cautionOtherTraits(weighed.traits),
       makeCaution('local-advice', 'note', {}),
     ],
+  };
+}
+
+/**
+ * Asks the engine. The best of a list is picked by yield, so yield is weighed over the whole list; in the other traits,
+ * by which nothing was picked, the candidates kept are compared with each other alone.
+ */
+function weighTraits(evidence: Evidence, question: Question): WeighedCandidates {
+  const ask = (traits: TraitChoice, candidates: readonly string[], kind: 'named' | 'pair' | 'best') =>
+    weighCandidates(layOutNetwork(evidence, traits), {
+      current: question.currentVarietyId,
+      ...{ candidates, kind },
+      acceptsOtherRegions: question.acceptsOtherRegions,
+      askedInSeason: question.askedInSeason,
+      margins: { [yieldSlug]: question.margins },
+    });
+  const { kind, traits, candidateIds, list } = question;
+  if (kind !== 'best') return ask(traits, candidateIds, kind === 'pair' ? 'pair' : 'named');
+  const yields = ask('yield', list, 'best');
+  if (traits === 'yield' || yields.answer === 'no-trials') return yields;
+  return { ...yields, traits: [...yields.traits, ...ask('all-but-yield', candidateIds, 'named').traits] };
+}
+
+/** Which of the list can be the best, best first; whom the evidence is too thin to judge is named apart. */
+function tellBest(
+  { kind, currentVarietyId, list }: Question,
+  names: ReadonlyMap<string, string>,
+  { best }: TraitWeighing,
+): BestOfList | null {
+  if (kind !== 'best' || best === null || best.length === 0) return null;
+  const nameOf = (id: string) => names.get(id) ?? id;
+  const judged = new Set(best.map(({ entry }) => entry));
+  return {
+    standings: best
+      .map(({ entry, ...row }) => ({ varietyId: entry, varietyName: nameOf(entry), ...row }))
+      .sort((a, b) => b.estimate - a.estimate),
+    thin: [currentVarietyId, ...list].filter((id) => !judged.has(id)).map(nameOf),
   };
 }
 
@@ -115,16 +151,22 @@ function describeCandidate(
       }))
       .sort((a, b) => a.trialMean - b.trialMean),
     traits: describeTraits(evidence, traits, varietyId, currentVarietyId),
-    cautions: weighing.cautions.map(toCaution),
+    // Who leads is told among the candidates kept: warnOfLeader.
+    cautions: weighing.cautions.filter(({ code }) => code !== 'best-of-many').map(toCaution),
   };
 }
 
 /**
- * Candidates come from a list, and who leads a list leads by too much: the leader's gap is told beside the one pulled back.
+ * Who leads a list leads by too much: the leader's gap is told beside the one pulled back. One candidate alone leads
+ * nothing, unless it was picked as the best.
  * @param entries varieties that the list was made of
  */
-function warnOfLeader(candidates: CandidateResult[], entries: number): CandidateResult[] {
-  if (candidates.length < 2) return candidates;
+function warnOfLeader(
+  candidates: CandidateResult[],
+  kind: Question['kind'],
+  entries: number,
+): CandidateResult[] {
+  if (candidates.length < 2 && kind !== 'best') return candidates;
   const best = Math.max(...candidates.map((one) => one.gap?.estimate ?? -Infinity));
   return candidates.map((one) => {
     const { gap, varietyName: variety } = one;

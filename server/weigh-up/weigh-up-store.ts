@@ -167,6 +167,7 @@ function toColumns({ candidateIds: _candidates, ...columns }: WeighUpInput) {
     usualYield: columns.usualYield ?? null,
     trialChoice: columns.trialChoice ?? 'region',
     includeNeighbours: columns.includeNeighbours ?? false,
+    question: columns.question ?? 'several',
   };
 }
 

@@ -2,7 +2,7 @@ import { asc, eq } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { userRegions } from '#drizzle/schema/accounts.ts';
 import { auditEvents } from '#drizzle/schema/audit.ts';
-import type { WeighUpLine } from '#shared/weigh-up.ts';
+import type { WeighUp, WeighUpLine } from '#shared/weigh-up.ts';
 import { openRecordWorld, type RecordWorld } from './record-world.ts';
 
 let record: RecordWorld;
@@ -65,11 +65,23 @@ test('an archived weigh-up stays readable, and comes back', async () => {
 });
 
 test('the same question a season later is a weigh-up of its own, without the decision', async () => {
-  const first = await record.make({ usualYield: 4.5, seasonFrom: 2022, seasonTo: 2024 });
+  // Nothing of the question as it would be without being said.
+  const asked = await record.make({
+    ...{ seasonFrom: 2022, seasonTo: 2024, usualYield: 4.5, question: 'best' },
+    ...{ farmLatitude: 50, farmLongitude: -100, farmSeasonRainMm: 240, farmHeatSumDegreeDays: 1450 },
+    ...{ farmSoilTexture: 'clay-loam', trialChoice: 'nearest', includeNeighbours: true },
+  });
+  const tickedOff = [{ trialId: record.trialIds.get('elm 2024') ?? '', reason: 'hail' }];
+  const first: WeighUp = (
+    await record.advisor.agent
+      .put(`/api/weigh-ups/${asked.id}/ticked-off`)
+      .send({ revision: 1, tickedOff })
+      .expect(200)
+  ).body.weighUp;
   await record.advisor.agent
     .put(`/api/weigh-ups/${first.id}/decision`)
     .send({
-      revision: 1,
+      revision: 2,
       decision: { choice: 'current', varietyId: null, areaHectares: 42, reason: 'not settled' },
     })
     .expect(200);
@@ -77,6 +89,7 @@ test('the same question a season later is a weigh-up of its own, without the dec
   const made = await record.advisor.agent.post(`/api/weigh-ups/${first.id}/duplicates`).expect(200);
   const { weighUp } = made.body;
   const { id: _id, createdAt: _created, updatedAt: _updated, ...question } = first;
+  expect(question).toMatchObject({ tickedOff, question: 'best', trialChoice: 'nearest' });
   expect(weighUp).toMatchObject({ ...question, seasonFrom: 2023, seasonTo: 2025, revision: 1 });
   expect(weighUp.id).not.toBe(first.id);
   expect(await lineOf(weighUp.id)).toMatchObject({ decision: null, archivedAt: null, candidates: 2 });

@@ -97,6 +97,8 @@ export function askAboutAll({ varieties }: Evidence, traits: Question['traits'])
   return {
     currentVarietyId: current ?? '',
     candidateIds: others,
+    kind: 'several',
+    list: [],
     traits,
     acceptsOtherRegions: false,
     askedInSeason: 2026,

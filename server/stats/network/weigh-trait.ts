@@ -221,10 +221,15 @@ function weighOne(
   };
 }
 
-/** Current variety and candidates against the best of them. */
-function standings({ question, trait, weighed }: TraitGround): BestStanding[] | null {
-  if (question.kind !== 'best' || trait.better === 'neutral' || weighed === null) return null;
-  const positions = weighed.estimates.chosen.map((_, position) => position);
+/** Current variety and candidates against the best of them; whom the evidence is too thin to judge stays out of it. */
+function standings(ground: TraitGround): BestStanding[] | null {
+  const { question, trait, weighed, frame } = ground;
+  if (question.kind !== 'best' || trait.better === 'neutral' || weighed === null || frame === null)
+    return null;
+  const positions = weighed.estimates.chosen.flatMap((at, position) => {
+    const tier = gradeCandidate(ground, countStanding(ground, frame.entries[at]!));
+    return answersFor(tier) ? [position] : [];
+  });
   return standAgainstBest(weighed.estimates, positions, trait.better, LEVEL);
 }
 

@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import type { GrowerCopySnapshot } from '#shared/grower-copy.ts';
+import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
@@ -78,6 +79,9 @@ function WeighedCopy({ snapshot }: { snapshot: GrowerCopySnapshot }) {
     <>
       <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
       <VerdictHeadline candidates={result.candidates} currentName={currentName} />
+      {result.best && (
+        <BestOfListAnswer best={result.best} currentId={weighUp.currentVarietyId} currentName={currentName} />
+      )}
       <CopyCandidates weighUp={weighUp} candidates={result.candidates} />
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
       <OwnPrice weighUp={weighUp} candidates={result.candidates} />

@@ -8,17 +8,17 @@ import { changeWeighUp, type WeighUp } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { catalogueQuery } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
-import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
 import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { showToast } from '#src/components/toaster.tsx';
-import { useErrorText } from '#src/use-error-text.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import type { ChosenFarm } from './chosen-farm.ts';
 import { farmForm, toFarmDraft, toInputWithFarm, type FarmDraft, type FarmForm } from './farm-form.ts';
+import { PanelFailure } from './panel-failure.tsx';
 import { PlaceField } from './place-field.tsx';
 import { TrialChoiceField } from './trial-choice-field.tsx';
+import { useFollowingConflict } from './use-following-conflict.ts';
 import { weighUpQuery } from './weigh-up-queries.ts';
 
 type FarmFormApi = UseFormReturn<FarmDraft, unknown, FarmForm>;
@@ -32,7 +32,6 @@ type FarmPanelProps = {
 /** Where the farm lies, what it usually yields and which trials answer: changed here, the question is weighed again. */
 export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
   const { t } = useTranslation('weigh-up');
-  const errorText = useErrorText();
   const form = useForm<FarmDraft, unknown, FarmForm>({
     resolver: zodResolver(farmForm),
     defaultValues: toFarmDraft(weighUp),
@@ -56,7 +55,7 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
           {t('farm.usualYieldHint')}
         </FigureField>
         <GroundFields form={form} />
-        {saving.isError && <ErrorState message={errorText(saving.error)} />}
+        <PanelFailure error={saving.error} />
         {hasUnsaved && <p className="text-sm text-faded">{t('farm.saveFirst')}</p>}
         <Button type="submit" disabled={hasUnsaved} isBusy={saving.isPending} className="self-start">
           {saving.isPending ? t('farm.saving') : t('farm.save')}
@@ -69,6 +68,7 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
 function useFarmSaving(weighUp: WeighUp, form: FarmFormApi) {
   const { t } = useTranslation('weigh-up');
   const client = useQueryClient();
+  const followConflict = useFollowingConflict(weighUp.id);
   return useMutation({
     mutationFn: (typed: FarmForm) =>
       callApi(changeWeighUp, {
@@ -80,6 +80,7 @@ function useFarmSaving(weighUp: WeighUp, form: FarmFormApi) {
       client.setQueryData(weighUpQuery(weighUp.id).queryKey, saved);
       showToast(t('farm.saved'));
     },
+    onError: followConflict,
   });
 }
 

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { moneyAssumptions, type MoneyAssumptions } from '#shared/money.ts';
 import { weighUpInput, type WeighUpInput } from '#shared/weigh-up.ts';
+import type { QuestionDraft } from './question-draft.ts';
 import type { CandidateQuestion } from './weigh-up-queries.ts';
 
 /** Currency where no price sheet names one. */
@@ -41,12 +42,13 @@ export type NewWeighUpDraft = z.input<typeof newWeighUpForm>;
 export function toWeighUpInput(
   form: NewWeighUpForm,
   question: CandidateQuestion,
-  candidateIds: readonly string[],
+  { kind, candidateIds }: Pick<QuestionDraft, 'kind' | 'candidateIds'>,
   defaults: MoneyAssumptions | null,
 ): WeighUpInput {
   const { priceLow: low, priceMiddle: middle, priceHigh: high } = form;
   return {
     ...question,
+    question: kind,
     candidateIds: [...candidateIds],
     growerName: form.growerName,
     farmName: form.farmName,

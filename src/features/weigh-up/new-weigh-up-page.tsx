@@ -32,6 +32,7 @@ import {
   type NewWeighUpDraft,
   type NewWeighUpForm,
 } from './new-weigh-up-form.ts';
+import { PairCandidateField } from './pair-candidate-field.tsx';
 import { lacksTrials, readQuestion, toCandidateQuestion, type QuestionDraft } from './question-draft.ts';
 import { QuestionFields } from './question-fields.tsx';
 import { candidatesQuery, draftsQuery, weighUpsQuery, type CandidateQuestion } from './weigh-up-queries.ts';
@@ -158,14 +159,14 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
       onSubmit={(event) =>
         void form.handleSubmit((typed) => {
           if (!isChosen) return;
-          const body = toWeighUpInput(typed, question, draft.candidateIds, defaults);
+          const body = toWeighUpInput(typed, question, draft, defaults);
           creation.mutate({ body, draftId: kept.draftId });
         })(event)
       }
     >
       <section className="flex flex-col gap-3">
         <h2>{t('new.candidates')}</h2>
-        <p className="text-faded">{t('new.candidatesLead')}</p>
+        {draft.kind !== 'pair' && <p className="text-faded">{t('new.candidatesLead')}</p>}
         <CautionList
           title={t('new.placeCautions')}
           headingLevel={3}
@@ -173,6 +174,8 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
         />
         {result.candidates.length === 0 ? (
           <p>{t('new.noCandidates')}</p>
+        ) : draft.kind === 'pair' ? (
+          <PairCandidateField candidates={result.candidates} chosenId={draft.candidateIds[0]} />
         ) : (
           <CandidatePicker
             candidates={result.candidates}

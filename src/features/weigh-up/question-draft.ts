@@ -1,4 +1,5 @@
 import type { Crop, Region } from '#shared/catalogue.ts';
+import { isPairOfOne, questionKinds, type QuestionKind } from '#shared/question-kind.ts';
 import type { Catalogue } from '#src/catalogue-query.ts';
 import { readChoice } from '#src/url-state.ts';
 import {
@@ -24,6 +25,7 @@ export type QuestionDraft = {
   seasonFrom: number;
   seasonTo: number;
   currentVarietyId: string;
+  kind: QuestionKind;
   candidateIds: readonly string[];
   farm: ChosenFarm | null;
   trials: ChosenTrials;
@@ -47,6 +49,7 @@ export function readQuestion(search: URLSearchParams, catalogue: Catalogue): Que
     .split(',')
     .filter((id, place, all) => isVariety(id) && id !== currentVarietyId && all.indexOf(id) === place)
     .slice(0, mostCandidates);
+  const kind = readChoice(search, 'question', questionKinds);
   const farm = readFarmParameter(search.get('farm'), listKnownPlaces(catalogue));
   const trials = readChoice(search, 'trials', trialChoices);
   return {
@@ -55,7 +58,9 @@ export function readQuestion(search: URLSearchParams, catalogue: Catalogue): Que
     seasonFrom: season('from', Math.max(oldest, newest - usualSpan + 1)),
     seasonTo: season('to', newest),
     currentVarietyId,
-    candidateIds,
+    kind,
+    // Those kept for another kind of question stay in the address, for whoever turns back to it.
+    candidateIds: isPairOfOne({ question: kind, candidateIds }) ? candidateIds : [],
     farm,
     trials: trials === 'nearest' && farm === null ? 'region' : trials,
   };

@@ -10,12 +10,13 @@ import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import { listKnownPlaces, writeFarmParameter } from './chosen-farm.ts';
 import { PlaceField } from './place-field.tsx';
+import { QuestionChoice } from './question-choice.tsx';
 import type { QuestionDraft } from './question-draft.ts';
 import { TrialChoiceField } from './trial-choice-field.tsx';
 
 type QuestionFieldsProps = { draft: QuestionDraft; catalogue: Catalogue };
 
-/** Crop, region, seasons, current variety, the farm's place and the trials that answer: kept in the address, so that a question can be reloaded and sent. */
+/** Crop, region, seasons, current variety, the farm's place, the trials that answer and what is asked of them: kept in the address, so that a question can be reloaded and sent. */
 export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
@@ -56,6 +57,12 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
       {crop && <SeasonFields draft={draft} crop={crop} />}
       {crop && <CurrentVarietyField draft={draft} crop={crop} />}
       {crop && <FarmAndTrialsFields draft={draft} catalogue={catalogue} />}
+      <div className="sm:col-span-2">
+        <QuestionChoice
+          value={draft.kind}
+          onChange={(kind) => patch({ question: kind === 'several' ? null : kind })}
+        />
+      </div>
     </div>
   );
 }

@@ -7,6 +7,7 @@ import { storedUnits } from '#shared/reader-units.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
+import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
@@ -25,6 +26,7 @@ import { DecisionPanel } from './decision-panel.tsx';
 import { FarmPanel } from './farm-panel.tsx';
 import { HandOver } from './hand-over.tsx';
 import { MoneyPanel } from './money-panel.tsx';
+import { QuestionPanel } from './question-panel.tsx';
 import { TickOffStep } from './tick-off.tsx';
 import { useMoneyForm } from './use-money-form.ts';
 import { useMoneySaving } from './use-money-saving.ts';
@@ -155,6 +157,13 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
         <UnitSwitch onChoose={chooseUnit} />
+        {result.best && (
+          <BestOfListAnswer
+            best={result.best}
+            currentId={weighUp.currentVarietyId}
+            currentName={currentName}
+          />
+        )}
         <CandidateStrip
           candidates={candidates}
           currentName={currentName}
@@ -168,6 +177,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <MoneyPanel weighUp={weighUp} varieties={varieties} money={money} saving={saving} />
       </div>
       <div className="flex min-w-0 flex-col gap-8">
+        <QuestionPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
         <FarmPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
         <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
         <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />

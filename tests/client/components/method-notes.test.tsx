@@ -34,3 +34,15 @@ test('own variances are told with the day they were estimated', async () => {
   await show({ ...buildResult([holding]), ...own });
   expect(screen.getByText(/as estimated on 2 November 2026/)).toBeTruthy();
 });
+
+test.each([
+  [{ question: 'several', comparison: 'dunnett' }, /Several candidates are compared .* Dunnett/],
+  [{ question: 'several', comparison: 'lsd' }, /^One candidate is compared with one variety/],
+  [{ question: 'pair', comparison: 'lsd' }, /chosen before its results were looked at/],
+  [{ question: 'best', comparison: 'dunnett' }, /The best was looked for in the whole list/],
+  // A copy made before there was a choice.
+  [{ comparison: 'dunnett' }, /Several candidates are compared/],
+] as const)('the comparison is said with its reason: %o', async (asked, sentence) => {
+  await show({ ...buildResult([holding]), ...asked });
+  expect(screen.getByText(sentence)).toBeTruthy();
+});

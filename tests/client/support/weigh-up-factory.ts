@@ -78,6 +78,7 @@ export function buildWeighUp(change: Partial<WeighUp> = {}): WeighUp {
     currentVarietyId: currentId,
     currentVarietyName: 'Brindle',
     candidateIds: [idOf(2)],
+    question: 'several',
     assumptions,
     farmLatitude: null,
     farmLongitude: null,

@@ -1,0 +1,75 @@
+import { useTranslation } from 'react-i18next';
+import { tellBest } from '#shared/best-sentences.ts';
+import type { BestOfList, BestStanding } from '#shared/question-kind.ts';
+import { DataTable, type Column } from './data-table.tsx';
+import { useFormat } from './use-format.ts';
+import { useLanguage } from './use-language.ts';
+
+type BestOfListProps = { best: BestOfList; currentId: string; currentName: string };
+
+/** Which of the list can be the best and whether the current variety is one of them, in sentences; the figures fold out. */
+export function BestOfListAnswer({ best, currentId, currentName }: BestOfListProps) {
+  const { t } = useTranslation(['verdicts']);
+  const language = useLanguage();
+  const said = tellBest(best, { id: currentId, name: currentName }, language, t);
+  return (
+    <div className="flex max-w-prose flex-col gap-2">
+      {said.map((text) => (
+        <p key={text}>{text}</p>
+      ))}
+      <details>
+        <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
+          {t('verdicts:best.show')}
+        </summary>
+        <BestStandings standings={best.standings} />
+      </details>
+    </div>
+  );
+}
+
+/** Unit of yield gaps. */
+const unit = 't/ha';
+
+function BestStandings({ standings }: { standings: readonly BestStanding[] }) {
+  const { t } = useTranslation(['verdicts', 'drawings']);
+  const format = useFormat();
+  const [first] = standings;
+  if (first === undefined) return null;
+  const half = Math.max(...standings.map(({ interval }) => interval.high - interval.low)) / 2;
+  const decimals = format.decimals(half / 2, unit);
+  const columns: Column<BestStanding>[] = [
+    {
+      id: 'variety',
+      header: t('verdicts:best.variety'),
+      cell: ({ varietyName }) => varietyName,
+      sortValue: ({ varietyName }) => varietyName,
+    },
+    {
+      id: 'gap',
+      header: t('verdicts:best.gap'),
+      align: 'end',
+      cell: ({ estimate }) => format.gap(estimate, unit, decimals),
+      sortValue: ({ estimate }) => estimate,
+    },
+    {
+      id: 'interval',
+      header: t('verdicts:best.interval', { level: format.percent(first.interval.level * 100) }),
+      align: 'end',
+      cell: ({ interval }) => t('drawings:gapStrip.fromTo', format.ends(interval, unit, decimals)),
+    },
+    {
+      id: 'verdict',
+      header: t('verdicts:best.verdict'),
+      cell: ({ isBest, mayBeBest }) =>
+        t(isBest ? 'verdicts:best.isBest' : mayBeBest ? 'verdicts:best.mayBe' : 'verdicts:best.isNot'),
+    },
+  ];
+  return (
+    <DataTable
+      caption={t('verdicts:best.show')}
+      columns={columns}
+      rows={standings}
+      rowKey={({ varietyId }) => varietyId}
+    />
+  );
+}

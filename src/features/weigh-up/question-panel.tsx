@@ -1,0 +1,73 @@
+import { useState } from 'react';
+import { useMutation, useQueryClient } from '@tanstack/react-query';
+import { useTranslation } from 'react-i18next';
+import type { QuestionKind } from '#shared/question-kind.ts';
+import { changeWeighUp, type WeighUp } from '#shared/weigh-up.ts';
+import { callApi } from '#src/api-client.ts';
+import { Button } from '#src/components/button.tsx';
+import { showToast } from '#src/components/toaster.tsx';
+import { PanelFailure } from './panel-failure.tsx';
+import { QuestionChoice } from './question-choice.tsx';
+import { useFollowingConflict } from './use-following-conflict.ts';
+import { toInput } from './weigh-up-input.ts';
+import { weighUpQuery } from './weigh-up-queries.ts';
+
+type QuestionPanelProps = {
+  weighUp: WeighUp;
+  /** Numbers of the money panel that are not saved: a save from here would be met as somebody else's. */
+  hasUnsaved: boolean;
+};
+
+/** How the candidates are compared: changed here, the question is weighed again. */
+export function QuestionPanel({ weighUp, hasUnsaved }: QuestionPanelProps) {
+  const { t } = useTranslation('weigh-up');
+  const [touched, setTouched] = useState<QuestionKind | null>(null);
+  const chosen = touched ?? weighUp.question;
+  const saving = useQuestionSaving(weighUp, () => setTouched(null));
+  return (
+    <section aria-labelledby="question-title" className="flex flex-col gap-4">
+      <div>
+        <h2 id="question-title">{t('question.panel')}</h2>
+        <p className="text-faded">{t('question.lead')}</p>
+      </div>
+      <form
+        className="flex flex-col gap-4"
+        onSubmit={(event) => {
+          event.preventDefault();
+          saving.mutate(chosen);
+        }}
+      >
+        <QuestionChoice value={chosen} onChange={setTouched} fixedCandidates={weighUp.candidateIds.length} />
+        <PanelFailure error={saving.error} />
+        {hasUnsaved && <p className="text-sm text-faded">{t('farm.saveFirst')}</p>}
+        <Button
+          type="submit"
+          disabled={hasUnsaved || chosen === weighUp.question}
+          isBusy={saving.isPending}
+          className="self-start"
+        >
+          {saving.isPending ? t('question.saving') : t('question.save')}
+        </Button>
+      </form>
+    </section>
+  );
+}
+
+function useQuestionSaving(weighUp: WeighUp, onSaved: () => void) {
+  const { t } = useTranslation('weigh-up');
+  const client = useQueryClient();
+  const followConflict = useFollowingConflict(weighUp.id);
+  return useMutation({
+    mutationFn: (question: QuestionKind) =>
+      callApi(changeWeighUp, {
+        params: { weighUpId: weighUp.id },
+        body: { revision: weighUp.revision, weighUp: { ...toInput(weighUp), question } },
+      }),
+    onSuccess: (saved) => {
+      onSaved();
+      client.setQueryData(weighUpQuery(weighUp.id).queryKey, saved);
+      showToast(t('question.saved'));
+    },
+    onError: followConflict,
+  });
+}
