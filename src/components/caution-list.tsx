@@ -1,6 +1,7 @@
 import { useId, type ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import type { CautionSeverity } from '#shared/caution.ts';
+import { sortByGravity } from '#shared/caution-sentences.ts';
 
 export type CautionItem = { id: string; severity: CautionSeverity; text: ReactNode };
 
@@ -10,8 +11,6 @@ type CautionListProps = {
   /** Level of the title in the page's outline. */
   headingLevel?: 2 | 3;
 };
-
-const order: Record<CautionSeverity, number> = { stop: 0, warning: 1, note: 2 };
 
 const tones: Record<CautionSeverity, string> = {
   stop: 'text-stop',
@@ -24,7 +23,7 @@ export function CautionList({ title, items, headingLevel = 2 }: CautionListProps
   const { t } = useTranslation('common');
   const titleId = useId();
   const Heading = `h${headingLevel}` as const;
-  const sorted = [...items].sort((a, b) => order[a.severity] - order[b.severity]);
+  const sorted = sortByGravity(items);
   if (sorted.length === 0) return null;
   return (
     <section

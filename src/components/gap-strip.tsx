@@ -1,27 +1,18 @@
 import type { ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
-import { spanScale, type Scale } from '#shared/gap-scale.ts';
-import type { Interval, VerdictCode } from '#shared/verdict.ts';
+import { sayGapRow, scaleOfRows, type GapRow } from '#shared/gap-rows.ts';
+import type { Scale } from '#shared/gap-scale.ts';
+import type { Interval } from '#shared/verdict.ts';
 import { VerdictMark, verdictColours } from './beam.tsx';
 import { DataTable, type Column } from './data-table.tsx';
 import { DrawingFrame } from './drawing-frame.tsx';
 import { GapAxis, GapLabel, GapTrack } from './gap-track.tsx';
 import { useFormat } from './use-format.ts';
 
-export type GapStripRow = {
+export type GapStripRow = GapRow & {
   id: string;
-  name: string;
   /** What stands as the name where it is more than words: a link. */
   head?: ReactNode;
-  verdict: VerdictCode;
-  /** Candidate minus current, in t/ha as everything drawn; null where the data give none. */
-  estimate: number | null;
-  /** For the region's average. */
-  region: Interval | null;
-  /** For the grower's own next season. */
-  ownSeason: Interval | null;
-  /** Gap from which the candidate pays; null without costs. */
-  breakEven: number | null;
   /** Beside the strip: return per hectare, trials, cautions. */
   aside?: ReactNode;
   /** Under the strip, over the whole width: the row's story when it is open. */
@@ -42,29 +33,6 @@ type GapStripProps = {
 /** Too few trials for a verdict are too few for an interval: whatever a model would give is not shown. */
 function withoutThinIntervals(row: GapStripRow): GapStripRow {
   return row.verdict === 'thin' ? { ...row, region: null, ownSeason: null } : row;
-}
-
-/**
- * One scale that holds every row's estimate and intervals. A break-even gap far beyond them is left off the scale, so that
- * one absurd cost does not press all rows together: its label then stands at the edge, with an arrow.
- */
-export function scaleOfRows(rows: readonly GapStripRow[]): Scale {
-  const gaps = rows
-    .flatMap((row) => [
-      row.estimate,
-      row.region?.low,
-      row.region?.high,
-      row.ownSeason?.low,
-      row.ownSeason?.high,
-    ])
-    .filter((value) => typeof value === 'number');
-  const { low, high } = spanScale(gaps);
-  const reach = (high - low) / 2;
-  const breakEvens = rows
-    .map((row) => row.breakEven)
-    .filter((value) => value !== null)
-    .filter((value) => gaps.length === 0 || (value >= low - reach && value <= high + reach));
-  return spanScale([...gaps, ...breakEvens]);
 }
 
 /** The signature drawing: a list of gaps to the current variety on one shared scale, with what is left uncertain. */
@@ -156,32 +124,10 @@ function StripRow({ row, scale, currentName, unit, decimals, headingLevel }: Str
 }
 
 /** Says a row in words: what a screen reader gets for the strip. */
-export function useGapSentence(
-  current: string,
-  unit: string,
-  decimals: number,
-): (
-  row: Pick<GapStripRow, 'name' | 'estimate' | 'region' | 'ownSeason' | 'breakEven' | 'verdict'>,
-) => string {
-  const { t } = useTranslation('drawings');
+export function useGapSentence(current: string, unit: string, decimals: number): (row: GapRow) => string {
+  const { t } = useTranslation(['drawings']);
   const format = useFormat();
-  const ends = (interval: Interval) => ({
-    low: format.gap(interval.low, unit, decimals),
-    high: format.gap(interval.high, unit, decimals),
-    level: format.percent(interval.level * 100),
-  });
-  return (row) => {
-    const { name } = row;
-    if (row.estimate === null) return t('gapStrip.sentenceNoEstimate', { name, current });
-    const parts = [t('gapStrip.sentence', { name, current, gap: format.gap(row.estimate, unit, decimals) })];
-    if (row.region) parts.push(t('gapStrip.sentenceRegion', ends(row.region)));
-    if (row.ownSeason) parts.push(t('gapStrip.sentenceOwnSeason', ends(row.ownSeason)));
-    if (row.verdict === 'thin') parts.push(t('gapStrip.sentenceThin'));
-    if (row.breakEven !== null) {
-      parts.push(t('gapStrip.sentenceBreakEven', { gap: format.gap(row.breakEven, unit, decimals) }));
-    }
-    return parts.join(' ');
-  };
+  return (row) => sayGapRow(row, current, { unit, decimals }, t, format);
 }
 
 /** What each kind of mark stands for; only those that occur. */

@@ -1,11 +1,12 @@
 import { useTranslation } from 'react-i18next';
 import { decimalsFor } from '#shared/format-number.ts';
+import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
 import { IntervalSentences } from '#src/components/candidate-story.tsx';
 import { UsualYieldSentences } from '#src/components/usual-yield-sentences.tsx';
-import { scaleOfRows, useGapSentence } from '#src/components/gap-strip.tsx';
+import { useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useSeasons } from '#src/components/use-seasons.ts';
@@ -14,25 +15,11 @@ const unit = 't/ha';
 
 type CopyCandidatesProps = { weighUp: WeighUp; candidates: readonly CandidateResult[] };
 
-/** A candidate as the drawing needs it: what is too thin for an interval has none. */
-function toRow({ varietyId, varietyName, verdict, gap, money }: CandidateResult) {
-  const isThin = verdict === 'thin';
-  return {
-    id: varietyId,
-    name: varietyName,
-    verdict,
-    estimate: gap?.estimate ?? null,
-    region: isThin ? null : (gap?.region ?? null),
-    ownSeason: isThin ? null : (gap?.ownSeason ?? null),
-    breakEven: money?.breakEvenGap ?? null,
-  };
-}
-
 /** Every candidate with its beam, verdict and strip on one scale, and its intervals and worth in sentences. */
 export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
   const { t } = useTranslation('copy');
   const format = useFormat();
-  const scale = scaleOfRows(candidates.map(toRow));
+  const scale = scaleOfRows(candidates.map(gapRowOf));
   const decimals = decimalsFor(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
   const shown = candidates.find(({ gap, verdict }) => gap && verdict !== 'thin')?.gap;
   const level = (value: number) => format.percent(value * 100);
@@ -69,7 +56,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
   const { t } = useTranslation('verdicts');
   const format = useFormat();
   const { currency } = weighUp.assumptions;
-  const row = toRow(candidate);
+  const row = gapRowOf(candidate);
   const sentence = useGapSentence(weighUp.currentVarietyName, unit, decimals)(row);
   const { money, verdict, siteYears } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';

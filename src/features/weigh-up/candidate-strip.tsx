@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import { Link, useSearchParams } from 'react-router-dom';
+import { gapRowOf } from '#shared/gap-rows.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { CandidateStory, type StoryProps } from '#src/components/candidate-story.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
@@ -28,16 +29,10 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
   const rows = candidates.map((candidate): GapStripRow => {
     const isOpen = candidate.varietyId === openId;
     const story = { candidate, currentName, money, areaHectares, unit, decimals };
-    const isThin = candidate.verdict === 'thin';
     return {
       id: candidate.varietyId,
-      name: candidate.varietyName,
+      ...gapRowOf(candidate),
       head: <RowToggle candidate={candidate} isOpen={isOpen} />,
-      verdict: candidate.verdict,
-      estimate: candidate.gap?.estimate ?? null,
-      region: isThin ? null : (candidate.gap?.region ?? null),
-      ownSeason: isThin ? null : (candidate.gap?.ownSeason ?? null),
-      breakEven: candidate.money?.breakEvenGap ?? null,
       aside: <RowAside candidate={candidate} currency={money.currency} />,
       ...(isOpen && { below: <OpenRow {...story} /> }),
     };

@@ -2,7 +2,8 @@ import { screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { describe, expect, it } from 'vitest';
 import { placeOnScale } from '#shared/gap-scale.ts';
-import { GapStrip, scaleOfRows, type GapStripRow } from '#src/components/gap-strip.tsx';
+import { scaleOfRows } from '#shared/gap-rows.ts';
+import { GapStrip, type GapStripRow } from '#src/components/gap-strip.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 
 const at95 = (low: number, high: number) => ({ low, high, level: 0.95 });
