@@ -1,19 +1,54 @@
 import { z } from 'zod';
-import { studentUpperTail } from './student-tail.ts';
-import { judgeMoney, moneyVerdictCode, type MoneyVerdictCode } from './verdict.ts';
+import { findWorstCostPerTonne } from './tonne-costs.ts';
+import { moneyVerdictCode } from './verdict.ts';
 
 const amount = z.number().min(0).max(1_000_000);
 /** No tonne of any crop costs more, in any currency that is likely here. */
-const highestPrice = 1_000_000;
-const price = z.number().positive().max(highestPrice);
+const price = z.number().positive().max(1_000_000);
+const moisture = z.number().min(0).max(60);
 
-/** What a hectare's seed of one variety costs, in the currency of the assumptions. */
+/** How the seed of a variety is told: a cost per hectare, bought by the kilogram, or kept back from the grower's own grain. */
+export const seedBasis = z.enum(['flat', 'rate', 'saved']);
+export type SeedBasis = z.infer<typeof seedBasis>;
+
+/**
+ * What sowing one variety costs and brings besides its yield, in the currency of the assumptions. What is left out is
+ * not known: it is never taken as zero where the answer hangs on it.
+ */
 export const seedCost = z.object({
-  seedPerHectare: amount,
+  /** `flat` where it is left out, as in weigh-ups stored before there was a choice. */
+  basis: seedBasis.optional(),
+  /** Per hectare; counts for the basis `flat`. */
+  seedPerHectare: amount.nullable(),
   treatmentPerHectare: amount,
   royaltyPerHectare: amount,
+  /** Counts for the basis `rate`. */
+  seedPricePerKg: z.number().min(0).max(100_000).optional(),
+  /** What the kg/ha follow from, for the bases `rate` and `saved`. */
+  targetPlantsM2: z.number().positive().max(5000).optional(),
+  thousandKernelWeightG: z.number().positive().max(5000).optional(),
+  germinationPercent: z.number().min(1).max(100).optional(),
+  /** Share of the living seeds that give no plant. */
+  mortalityPercent: z.number().min(0).max(99).optional(),
+  /** Per tonne of seed; counts for the basis `saved`. */
+  cleaningPerTonne: amount.optional(),
+  /** Moisture of the grain when it comes off the field. */
+  harvestMoisturePercent: moisture.optional(),
+  harvestPerHectare: amount.optional(),
+  strawPerHectare: amount.optional(),
 });
 export type SeedCost = z.infer<typeof seedCost>;
+
+/** What a buyer adds to the price of a tonne, or takes off it, for the level of a trait. */
+export const qualityRule = z.object({
+  traitSlug: z.string().min(1).max(80),
+  side: z.enum(['at-least', 'under']),
+  /** In the trait's unit. */
+  limit: z.number().min(-10_000).max(10_000),
+  /** Positive for a premium, negative for a discount. */
+  perTonne: z.number().min(-1_000_000).max(1_000_000),
+});
+export type QualityRule = z.infer<typeof qualityRule>;
 
 /** The money side of a weigh-up: prices per tonne at standard moisture, costs per tonne and per hectare. */
 export const moneyAssumptions = z
@@ -23,7 +58,16 @@ export const moneyAssumptions = z
     priceMiddle: price,
     priceHigh: price,
     haulagePerTonne: amount,
+    /** Whatever its moisture; `dryingPerPoint` comes on top of it. */
     dryingPerTonne: amount,
+    harvestPerTonne: amount.optional(),
+    /** Per tonne and point of moisture above the standard. */
+    dryingPerPoint: amount.optional(),
+    /** Of the crop, as it stood when the assumptions were taken over. */
+    standardMoisturePercent: moisture.optional(),
+    qualityRules: z.array(qualityRule).max(12).optional(),
+    /** By trait, the level of the current variety as the grower knows it; without it that of the trials counts. */
+    currentLevels: z.record(z.string(), z.number().min(-10_000).max(10_000)).optional(),
     /** By variety id, the current variety's among them; a variety without a line has no money verdict. */
     seedCosts: z.record(z.uuid(), seedCost),
     /** Date of the price sheet the defaults came from; null when there was none. */
@@ -33,22 +77,38 @@ export const moneyAssumptions = z
     path: ['priceMiddle'],
     message: 'price-order',
   })
-  .refine((money) => money.priceLow > money.haulagePerTonne + money.dryingPerTonne, {
+  .refine((money) => money.priceLow > findWorstCostPerTonne(money), {
     path: ['priceLow'],
     message: 'price-under-costs',
   });
 export type MoneyAssumptions = z.infer<typeof moneyAssumptions>;
 
-/** A gap as a distribution: location and scale of a t with its df, t/ha. */
+/** A gap as a distribution: location and scale of a t with its df, in the trait's unit. */
 export const gapDistribution = z.object({ estimate: z.number(), se: z.number(), df: z.number() });
 export type GapDistribution = z.infer<typeof gapDistribution>;
 
+/** What the current variety gives in the trials used, in the trait's unit: what premiums and discounts start from. */
+export const currentLevel = z.object({
+  traitSlug: z.string(),
+  /** Mean over the trials in which it stood. */
+  mean: z.number(),
+  /** Standard deviation of its means between those trials: fields and seasons; null for fewer than three. */
+  spread: z.number().nullable(),
+  trials: z.number().int(),
+});
+export type CurrentLevel = z.infer<typeof currentLevel>;
+
+/** Expected premium per tonne of both, negative for a discount. */
+export const qualityWorth = z.object({ current: z.number(), candidate: z.number() });
+export type QualityWorth = z.infer<typeof qualityWorth>;
+
+/** Parts that came later are left out in copies frozen before. */
 export const moneyResult = z.object({
-  /** Candidate's seed, treatment and royalty minus the current variety's, per ha. */
+  /** Candidate's seed, treatment, royalty and harvest less straw, minus the current variety's, per ha at the middle price. */
   extraCostPerHectare: z.number(),
   /** t/ha at which the candidate just pays, at the middle price. */
   breakEvenGap: z.number(),
-  /** Expected return over the current variety, per ha, at the middle price. */
+  /** Return over the current variety, per ha, at the middle price. */
   returnPerHectare: z.number(),
   /** At the low and the high price. */
   returnAtLowPrice: z.number(),
@@ -60,75 +120,18 @@ export const moneyResult = z.object({
   /** Chance, 0 to 1, that it returns more on the grower's own land in another season; null without an own-season interval. */
   chancePays: z.number().nullable(),
   verdict: moneyVerdictCode,
+  /** Chance, 0 to 1, that it returns more in the region on average over seasons. */
+  chanceInRegion: z.number().nullish(),
+  /** Mean over prices, seasons and quality, per ha. */
+  expectedReturn: z.number().nullish(),
+  /** In one season of ten the own land returns less than this, and in one of ten more than the other; per ha. */
+  badReturn: z.number().nullish(),
+  goodReturn: z.number().nullish(),
+  /** What a tonne leaves at the middle price after its costs, premiums reckoned in. */
+  netPrice: z.object({ current: z.number(), candidate: z.number() }).nullish(),
+  /** null without rules; `unknown` where a trait of the rules was not measured on both. */
+  quality: z.union([qualityWorth, z.literal('unknown')]).nullish(),
+  /** Yield of the current variety that unequal net prices count on, t/ha; null where it makes no difference. */
+  baseYield: z.number().nullish(),
 });
 export type MoneyResult = z.infer<typeof moneyResult>;
-
-const sumSeedCost = (cost: SeedCost): number =>
-  cost.seedPerHectare + cost.treatmentPerHectare + cost.royaltyPerHectare;
-
-/**
- * Partial budget of sowing the candidate instead of the current variety: only what changes counts.
- * @param estimate gap on which the return is reckoned, t/ha
- * @param ownSeason distribution of the gap on the grower's own land in another season; null where the evidence gives none
- * @returns null when a seed cost is missing: an unknown cost is not a cost of zero
- * Source: partial budget, domain.md [10]; chance from estimate and SED after Esker & Conley (2012), Crop Sci. 52:351–359.
- */
-export function weighMoney(
-  candidateId: string,
-  currentId: string,
-  estimate: number,
-  ownSeason: GapDistribution | null,
-  money: MoneyAssumptions,
-): MoneyResult | null {
-  const candidateCost = money.seedCosts[candidateId];
-  const currentCost = money.seedCosts[currentId];
-  if (candidateCost === undefined || currentCost === undefined) return null;
-  const extra = sumSeedCost(candidateCost) - sumSeedCost(currentCost);
-  const perTonne = money.haulagePerTonne + money.dryingPerTonne;
-  const returnAt = (priceOfTonne: number): number => estimate * (priceOfTonne - perTonne) - extra;
-  const chance = ownSeason === null ? null : chancePays(ownSeason, extra, perTonne, money);
-  const turningPrice = extra / estimate + perTonne;
-  const turningSeed = sumSeedCost(candidateCost) + returnAt(money.priceMiddle);
-  const verdict: MoneyVerdictCode = judgeMoney(chance);
-  return {
-    extraCostPerHectare: extra,
-    breakEvenGap: extra / (money.priceMiddle - perTonne),
-    returnPerHectare: returnAt(money.priceMiddle),
-    returnAtLowPrice: returnAt(money.priceLow),
-    returnAtHighPrice: returnAt(money.priceHigh),
-    breakEvenPrice: turningPrice > perTonne && turningPrice <= highestPrice ? turningPrice : null,
-    breakEvenSeedCost: turningSeed >= 0 ? turningSeed : null,
-    chancePays: chance,
-    verdict,
-  };
-}
-
-/**
- * P(gap × net price > extra cost), averaged over a triangular price between low, middle and high.
- * The average is a fixed quadrature over the price's quantiles: the same input gives the same output.
- */
-function chancePays(gap: GapDistribution, extra: number, perTonne: number, money: MoneyAssumptions): number {
-  let sum = 0;
-  for (let i = 0; i < priceQuantiles.length; i += 1) {
-    const net = triangularQuantile(priceQuantiles[i] ?? 0.5, money) - perTonne;
-    const threshold = extra / net;
-    sum +=
-      gap.se === 0
-        ? Number(gap.estimate > threshold)
-        : studentUpperTail((threshold - gap.estimate) / gap.se, gap.df);
-  }
-  return sum / priceQuantiles.length;
-}
-
-/** Midpoints of 32 equal slices of probability. */
-const priceQuantiles = Array.from({ length: 32 }, (_, i) => (i + 0.5) / 32);
-
-/** Quantile of the triangular distribution of the price. */
-function triangularQuantile(probability: number, money: MoneyAssumptions): number {
-  const { priceLow: low, priceMiddle: mode, priceHigh: high } = money;
-  if (low === high) return mode;
-  const split = (mode - low) / (high - low);
-  return probability < split
-    ? low + Math.sqrt(probability * (high - low) * (mode - low))
-    : high - Math.sqrt((1 - probability) * (high - low) * (high - mode));
-}

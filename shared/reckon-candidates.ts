@@ -1,4 +1,6 @@
-import { weighMoney, type MoneyAssumptions } from './money.ts';
+import type { MoneyAssumptions } from './money.ts';
+import type { MoneyBasis } from './money-basis.ts';
+import { weighMoney } from './partial-budget.ts';
 import type { Interval, VerdictCode } from './verdict.ts';
 import type { CandidateResult } from './weigh-up.ts';
 
@@ -20,20 +22,20 @@ export function rejudgeYield(
 }
 
 /**
- * The candidates under other money: the same gaps, with return, chance and the verdicts that hang on them anew.
- * Runs in the page at every edit; nothing statistical is estimated here.
+ * The candidates under some money: the same gaps, with return, chance and the verdicts that hang on them anew. The server
+ * answers by it, and the page runs it at every edit; nothing statistical is estimated here.
  * @param practicalMargin of yield for the crop, t/ha; null where none is set
  */
 export function reckonCandidates(
   candidates: readonly CandidateResult[],
-  currentVarietyId: string,
-  money: MoneyAssumptions,
+  basis: MoneyBasis,
+  money: MoneyAssumptions | null,
   practicalMargin: number | null,
 ): CandidateResult[] {
   return candidates.map((candidate) => {
-    const { gap, moneyGap } = candidate;
-    if (gap === null || moneyGap === null) return { ...candidate, money: null };
-    const reckoned = weighMoney(candidate.varietyId, currentVarietyId, moneyGap.estimate, moneyGap, money);
+    const { gap } = candidate;
+    if (gap === null || money === null) return { ...candidate, money: null };
+    const reckoned = weighMoney(candidate, basis, money);
     const verdict = rejudgeYield(
       candidate.verdict,
       gap.region,

@@ -4,7 +4,7 @@ import { caution } from './caution.ts';
 import { defineContract } from './contract.ts';
 import { decisionLine } from './decision.ts';
 import { farmAnswer, farmInput, farmQuery, farmRange, hasPlaceForChoice, isWholePlace } from './farm.ts';
-import { gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
+import { currentLevel, gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
 import { bestOfList, isPairOfOne, questionKind } from './question-kind.ts';
 import { interval, verdictCode } from './verdict.ts';
 
@@ -93,9 +93,11 @@ export const candidateResult = z.object({
   sharedSiteYears: z.number().int(),
   /**
    * The gap that money is reckoned on, as it may come out on the grower's own land in another season: shrunken, since
-   * candidates are picked from a list; null where the evidence is too thin to judge. The page recomputes with it: weighMoney(id, current, moneyGap.estimate, moneyGap, money).
+   * candidates are picked from a list; null where the evidence is too thin to judge. The page recomputes with it: weighMoney(candidate, basis, money).
    */
   moneyGap: gapDistribution.nullable(),
+  /** The same for the region's average over seasons; left out in copies frozen before. */
+  moneyGapInRegion: gapDistribution.nullish(),
   money: moneyResult.nullable(),
   /** Further site-years at which the present gap would be settled; 41 stands for "more than 40"; null where it is settled. */
   siteYearsToSettle: z.number().int().nullable(),
@@ -159,6 +161,8 @@ export const weighUpResult = z.object({
   usualVariancesAt: z.iso.datetime().nullish(),
   /** How the farm lies to the sites of the trials used; null where nobody has said where the farm is. */
   farmRange: farmRange.nullish(),
+  /** What the current variety gives in these trials, yield and numeric traits; left out in copies frozen before. */
+  currentLevels: z.array(currentLevel).nullish(),
   candidates: z.array(candidateResult),
   cautions: z.array(caution),
 });

@@ -27,17 +27,18 @@ export async function answerWeighUp(
     loadMoneyDefaults(db, weighUp.cropId, weighUp.regionId),
   ]);
   const { counted: ground, out } = partTickedOff(found, weighUp.tickedOff);
-  const { currentVarietyId, candidateIds, question: kind, assumptions: money } = weighUp;
+  const { currentVarietyId, candidateIds, question: kind, assumptions: money, usualYield } = weighUp;
   const asked = {
     ...{ currentVarietyId, candidateIds, kind },
     list: kind === 'best' ? await listPickedFrom(db, ground, weighUp) : [],
     traits: 'all',
     acceptsOtherRegions: asksForOtherRegions(weighUp),
   } as const;
-  const priced = await answerPriced(db, ground, asked, { money, priceSheet, askedAt: new Date() }, signal);
+  const pricing = { money, priceSheet, usualYield, askedAt: new Date() };
+  const priced = await answerPriced(db, ground, asked, pricing, signal);
   const placed = placeAnswer(priced, ground, {
     farm: readFarm(weighUp),
-    usualYield: weighUp.usualYield,
+    usualYield,
     currentName: weighUp.currentVarietyName,
   });
   const result = tellTickedOff(placed, await loadFigures(db, out), weighUp.tickedOff);
@@ -79,7 +80,7 @@ export async function rankCandidates(
     traits: 'yield',
     acceptsOtherRegions: asksForOtherRegions(scope),
   } as const;
-  const money = { money: priceSheet, priceSheet, askedAt: new Date() };
+  const money = { money: priceSheet, priceSheet, usualYield: null, askedAt: new Date() };
   const priced = await answerPriced(db, ground, asked, money, signal);
   // The list is not read at the grower's usual yield: that is for the few that are kept.
   const result = placeAnswer(priced, ground, { farm: readFarm(scope), usualYield: null, currentName: '' });
@@ -94,23 +95,23 @@ async function answerPriced(
   db: Database,
   ground: EvidenceGround,
   asked: Omit<Question, 'askedInSeason' | 'margins'>,
-  money: MoneyGround,
+  money: Omit<MoneyGround, 'practicalMargin'>,
   signal?: AbortSignal,
 ): Promise<WeighUpResult> {
   const { currentVarietyId: id, candidateIds } = asked;
-  const ownMargin = ground.traits.find((trait) => trait.slug === yieldSlug)?.practicalMargin ?? 0;
+  const practicalMargin = ground.traits.find((trait) => trait.slug === yieldSlug)?.practicalMargin ?? 0;
   const answer = await answerOnce(
     db,
     ground,
     {
       ...asked,
       askedInSeason: money.askedAt.getUTCFullYear(),
-      margins: breakEvenMargins(id, candidateIds, money.money, ownMargin),
+      margins: breakEvenMargins(id, candidateIds, money.money, practicalMargin),
     },
     signal,
   );
   const name = ground.varieties.find((variety) => variety.id === id)?.name;
-  return priceAnswer(answer, { id, name }, money);
+  return priceAnswer(answer, { id, name }, { ...money, practicalMargin });
 }
 
 /** The stored answer where what it hangs on is unchanged; else it is weighed, and kept. */

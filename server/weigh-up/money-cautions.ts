@@ -1,5 +1,6 @@
 import { makeCaution, type Caution } from '#shared/caution.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import { budgetSeed } from '#shared/seed-budget.ts';
 import type { MoneyGround } from './question.ts';
 
 const dayMs = 24 * 60 * 60 * 1000;
@@ -16,7 +17,7 @@ export function cautionMoney(
   candidateIds: readonly string[],
 ): Caution[] {
   const found: Caution[] = [];
-  if (current.name !== undefined && money?.seedCosts[current.id] === undefined) {
+  if (current.name !== undefined && budgetSeed(money?.seedCosts[current.id]) === null) {
     found.push(makeCaution('no-seed-cost', 'warning', { variety: current.name }));
   }
   if (money === null) return found;
@@ -30,8 +31,8 @@ export function cautionMoney(
   const costs = [current.id, ...candidateIds].flatMap((id) => money.seedCosts[id] ?? []);
   if (costs.some((cost) => cost.treatmentPerHectare > 0))
     found.push(makeCaution('seed-treatment', 'note', {}));
-  // A royalty says that the variety is protected; seed of a free one may be kept.
-  if (costs.some((cost) => cost.royaltyPerHectare > 0))
+  // A royalty says that the variety is protected, and breeders' rights bear on whoever keeps seed back.
+  if (costs.some((cost) => cost.royaltyPerHectare > 0 || cost.basis === 'saved'))
     found.push(makeCaution('farm-saved-seed', 'note', {}));
   return found;
 }

@@ -75,6 +75,7 @@ function withholdVerdict(candidate: CandidateResult): CandidateResult {
     ...candidate,
     verdict: 'thin',
     moneyGap: null,
+    moneyGapInRegion: null,
     money: null,
     siteYearsToSettle: null,
     traits: candidate.traits.map((trait) => ({ ...trait, verdict: trait.verdict === null ? null : 'thin' })),

@@ -1,11 +1,15 @@
 import { makeCaution } from '#shared/caution.ts';
-import { weighMoney, type MoneyAssumptions } from '#shared/money.ts';
+import type { MoneyAssumptions } from '#shared/money.ts';
+import { findCostBreakEven } from '#shared/partial-budget.ts';
+import { reckonCandidates } from '#shared/reckon-candidates.ts';
+import { budgetSeed } from '#shared/seed-budget.ts';
 import type { CandidateResult, WeighUpResult } from '#shared/weigh-up.ts';
 import { cautionMoney } from './money-cautions.ts';
 import type { MoneyGround } from './question.ts';
 
 /**
- * By candidate, the size of its break-even gap: a gap smaller than that does not matter either.
+ * By candidate, the size of its break-even gap: a gap smaller than that does not matter either. Reckoned from costs
+ * alone, before any trial is read; what premiums make of it is judged once the answer is priced.
  * @param ownMargin the trait's practical margin, t/ha: what does not exceed it changes no verdict and is left out
  */
 export function breakEvenMargins(
@@ -17,8 +21,7 @@ export function breakEvenMargins(
   if (money === null) return {};
   return Object.fromEntries(
     candidateIds.flatMap((id) => {
-      const result = weighMoney(id, currentVarietyId, 0, null, money);
-      const margin = result === null ? 0 : Math.abs(result.breakEvenGap);
+      const margin = Math.abs(findCostBreakEven(id, currentVarietyId, money) ?? 0);
       return margin > ownMargin ? [[id, margin] as const] : [];
     }),
   );
@@ -37,26 +40,21 @@ export function priceAnswer(
   const candidateIds = answer.candidates.map((candidate) => candidate.varietyId);
   const localAdvice = answer.cautions.filter(({ code }) => code === 'local-advice');
   const others = answer.cautions.filter(({ code }) => code !== 'local-advice');
+  const basis = {
+    currentVarietyId: current.id,
+    usualYield: ground.usualYield,
+    levels: answer.currentLevels ?? [],
+  };
+  const priced = reckonCandidates(answer.candidates, basis, ground.money, ground.practicalMargin);
   return {
     ...answer,
-    candidates: answer.candidates.map((candidate) => priceCandidate(candidate, current.id, ground.money)),
+    candidates: priced.map((candidate) => cautionUncosted(candidate, ground.money)),
     cautions: [...others, ...cautionMoney(ground, current, candidateIds), ...localAdvice],
   };
 }
 
-function priceCandidate(
-  candidate: CandidateResult,
-  currentId: string,
-  money: MoneyAssumptions | null,
-): CandidateResult {
-  const { varietyId, varietyName: variety, moneyGap, cautions } = candidate;
-  const isCosted = money?.seedCosts[varietyId] !== undefined;
-  return {
-    ...candidate,
-    money:
-      money === null || moneyGap === null
-        ? null
-        : weighMoney(varietyId, currentId, moneyGap.estimate, moneyGap, money),
-    cautions: isCosted ? cautions : [...cautions, makeCaution('no-seed-cost', 'warning', { variety })],
-  };
+function cautionUncosted(candidate: CandidateResult, money: MoneyAssumptions | null): CandidateResult {
+  const { varietyId, varietyName: variety, cautions } = candidate;
+  if (budgetSeed(money?.seedCosts[varietyId]) !== null) return candidate;
+  return { ...candidate, cautions: [...cautions, makeCaution('no-seed-cost', 'warning', { variety })] };
 }

@@ -25,5 +25,9 @@ export type MoneyGround = {
   money: MoneyAssumptions | null;
   /** The price sheet in force: what the assumptions are held against. */
   priceSheet: MoneyAssumptions | null;
+  /** t/ha that the grower usually gets; null where nobody has said */
+  usualYield: number | null;
+  /** Of yield for the crop, t/ha: gaps within it do not matter whatever seed costs. */
+  practicalMargin: number;
   askedAt: Date;
 };

@@ -18,6 +18,7 @@ import {
   type WeighedCandidates,
 } from '#server/stats/engine.ts';
 import { engineVersion } from '#server/trials/trial-fit.ts';
+import { listCurrentLevels } from './current-levels.ts';
 import { layOutNetwork, yieldSlug, type TraitChoice } from './evidence-network.ts';
 import type { Evidence } from './evidence.ts';
 import { compareRatings } from './ordinal-medians.ts';
@@ -63,6 +64,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     ...listTrials(evidence, yields),
     components: toDeviations(yields),
     ...tellUsual(evidence, yields),
+    currentLevels: listCurrentLevels(evidence, weighed.traits, question.currentVarietyId),
     candidates: warnOfLeader(
       question.candidateIds
         .flatMap((id) => yields.candidates.find(({ candidate }) => candidate === id) ?? [])
@@ -127,7 +129,6 @@ function describeCandidate(
   const { currentVarietyId } = question;
   // What the evidence is too thin to judge, it is too thin to price.
   const isPriced = gap !== null && weighing.verdict !== 'thin';
-  const moneyGap = isPriced ? toMoneyGap(gap) : null;
   return {
     varietyId,
     varietyName,
@@ -135,7 +136,8 @@ function describeCandidate(
     gap: gap === null ? null : toGapEstimate(gap),
     siteYears: weighing.siteYears,
     sharedSiteYears: weighing.sharedSiteYears,
-    moneyGap,
+    moneyGap: isPriced ? toMoneyGap(gap) : null,
+    moneyGapInRegion: isPriced ? toMoneyGapInRegion(gap) : null,
     money: null,
     siteYearsToSettle: weighing.siteYearsToSettle,
     sensitivity: weighing.sensitivity,
@@ -182,6 +184,10 @@ function warnOfLeader(
  */
 function toMoneyGap({ ownSeason, shrunken }: CandidateGap): GapDistribution {
   return { estimate: shrunken.estimate, se: shrunken.ownSeasonSe, df: Math.min(ownSeason.df, mostDf) };
+}
+
+function toMoneyGapInRegion({ df, shrunken }: CandidateGap): GapDistribution {
+  return { estimate: shrunken.estimate, se: shrunken.se, df: Math.min(df, mostDf) };
 }
 
 function toGapEstimate(gap: CandidateGap): GapEstimate {

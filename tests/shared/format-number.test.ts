@@ -12,7 +12,7 @@ import {
   formatQuantity,
   sayChance,
 } from '#shared/format-number.ts';
-import { judgeMoney } from '#shared/verdict.ts';
+import { judgeMoney } from '#shared/money-verdict.ts';
 
 // Expected strings: common practice of the two languages; spaces are U+00A0 before units and U+202F in French thousands and before %.
 describe('figures', () => {

@@ -1,4 +1,5 @@
 import { useTranslation } from 'react-i18next';
+import { readMoneyBasis } from '#shared/money-basis.ts';
 import type { GrowerCopySnapshot } from '#shared/grower-copy.ts';
 import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
@@ -84,7 +85,7 @@ function WeighedCopy({ snapshot }: { snapshot: GrowerCopySnapshot }) {
       )}
       <CopyCandidates weighUp={weighUp} candidates={result.candidates} />
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
-      <OwnPrice weighUp={weighUp} candidates={result.candidates} />
+      <OwnPrice weighUp={weighUp} basis={readMoneyBasis(weighUp, result)} candidates={result.candidates} />
       <OtherTraits candidates={result.candidates} traits={traits} currentName={currentName} />
       <details>
         <summary className="tap-target flex items-center text-lg font-bold">{t('copy:howTitle')}</summary>

@@ -1,7 +1,10 @@
 import { useState } from 'react';
 import { useTranslation } from 'react-i18next';
 import { currencySign } from '#shared/format-number.ts';
-import { weighMoney, type MoneyAssumptions } from '#shared/money.ts';
+import type { MoneyAssumptions } from '#shared/money.ts';
+import type { MoneyBasis } from '#shared/money-basis.ts';
+import { weighMoney } from '#shared/partial-budget.ts';
+import { findWorstCostPerTonne } from '#shared/tonne-costs.ts';
 import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
@@ -18,17 +21,17 @@ export function withPrice(assumptions: MoneyAssumptions, price: number): MoneyAs
   return { ...assumptions, priceLow: price, priceMiddle: price, priceHigh: price };
 }
 
-type OwnPriceProps = { weighUp: WeighUp; candidates: readonly CandidateResult[] };
+type OwnPriceProps = { weighUp: WeighUp; basis: MoneyBasis; candidates: readonly CandidateResult[] };
 
 /** The grower's own price, reckoned in the page and marked as such; the copy stays what it is. */
-export function OwnPrice({ weighUp, candidates }: OwnPriceProps) {
+export function OwnPrice({ weighUp, basis, candidates }: OwnPriceProps) {
   const { t } = useTranslation('copy');
   const format = useFormat();
   const language = useLanguage();
   const { assumptions } = weighUp;
   const frozen = assumptions.priceMiddle;
   const [price, setPrice] = useState<number | null>(frozen);
-  const perTonne = assumptions.haulagePerTonne + assumptions.dryingPerTonne;
+  const perTonne = findWorstCostPerTonne(assumptions);
   const isFigure = price !== null && Number.isFinite(price);
   const isCovered = isFigure && price > perTonne;
   const write = (value: number) => format.moneyPer(value, assumptions.currency, 't');
@@ -68,7 +71,7 @@ export function OwnPrice({ weighUp, candidates }: OwnPriceProps) {
                 ? t('own.asFrozen')
                 : t('own.marked', { price: write(price), frozen: write(frozen) })}
             </p>
-            <OwnResults weighUp={weighUp} candidates={candidates} price={price} />
+            <OwnResults weighUp={weighUp} basis={basis} candidates={candidates} price={price} />
           </>
         )}
       </div>
@@ -81,20 +84,18 @@ export function OwnPrice({ weighUp, candidates }: OwnPriceProps) {
   );
 }
 
-function OwnResults({ weighUp, candidates, price }: OwnPriceProps & { price: number }) {
+function OwnResults({ weighUp, basis, candidates, price }: OwnPriceProps & { price: number }) {
   const { t } = useTranslation(['copy', 'verdicts']);
   const format = useFormat();
   const seasons = useSeasons();
-  const { currentVarietyId, areaHectares } = weighUp;
+  const { areaHectares } = weighUp;
   const assumptions = withPrice(weighUp.assumptions, price);
   const { currency } = assumptions;
   return (
     <ul className="mt-1 flex flex-col gap-1">
-      {candidates.map(({ varietyId, varietyName: name, moneyGap, verdict }) => {
-        const money =
-          moneyGap === null || verdict === 'thin'
-            ? null
-            : weighMoney(varietyId, currentVarietyId, moneyGap.estimate, moneyGap, assumptions);
+      {candidates.map((candidate) => {
+        const { varietyId, varietyName: name, verdict } = candidate;
+        const money = verdict === 'thin' ? null : weighMoney(candidate, basis, assumptions);
         if (money === null) return <li key={varietyId}>{`${name} · ${t('verdicts:cantSay')}`}</li>;
         const values = {
           name,

@@ -2,6 +2,7 @@ import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { Link, useParams } from 'react-router-dom';
 import type { Crop } from '#shared/catalogue.ts';
+import { readMoneyBasis } from '#shared/money-basis.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import { storedUnits } from '#shared/reader-units.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
@@ -136,7 +137,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   const saving = useMoneySaving(money);
   const candidates = reckonCandidates(
     result.candidates,
-    weighUp.currentVarietyId,
+    readMoneyBasis(weighUp, result),
     money.assumptions,
     findTrait(crop, 'yield')?.practicalMargin ?? null,
   );

@@ -1,11 +1,17 @@
 import { describe, expect, it } from 'vitest';
 import { reckonCandidates, rejudgeYield } from '#shared/reckon-candidates.ts';
 import { findTurningPoints } from '#shared/turning-points.ts';
-import { weighMoney } from '#shared/money.ts';
-import { assumptions, buildCandidate, currentId, idOf } from '#tests/client/support/weigh-up-factory.ts';
+import { weighMoney } from '#shared/partial-budget.ts';
+import {
+  assumptions,
+  basis,
+  buildCandidate,
+  currentId,
+  idOf,
+} from '#tests/client/support/weigh-up-factory.ts';
 
 const reckon = (candidate = buildCandidate(), money = assumptions, margin: number | null = 0.1) =>
-  reckonCandidates([candidate], currentId, money, margin)[0];
+  reckonCandidates([candidate], basis, money, margin)[0];
 
 describe('the page’s own reckoning', () => {
   it('gives back what the server gave under the same assumptions', () => {
@@ -43,7 +49,8 @@ describe('the page’s own reckoning', () => {
 
 describe('what would turn the answer', () => {
   const turn = (estimate: number, candidate = idOf(2)) => {
-    const result = weighMoney(candidate, currentId, estimate, null, assumptions);
+    const moneyGap = { estimate, se: 0.2, df: 20 };
+    const result = weighMoney({ varietyId: candidate, moneyGap, traits: [] }, basis, assumptions);
     if (!result) throw new Error('no money');
     return { ...findTurningPoints(result, estimate), result };
   };

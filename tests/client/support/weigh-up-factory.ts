@@ -1,6 +1,7 @@
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { CandidateResult, GapEstimate, WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
-import { weighMoney } from '#shared/money.ts';
+import type { MoneyBasis } from '#shared/money-basis.ts';
+import { weighMoney } from '#shared/partial-budget.ts';
 
 /** The n-th invented id, which zod takes for a UUID. */
 export function idOf(n: number): string {
@@ -8,6 +9,9 @@ export function idOf(n: number): string {
 }
 
 export const currentId = idOf(1);
+
+/** Of a question without levels: what money needs as long as net prices are alike. */
+export const basis: MoneyBasis = { currentVarietyId: currentId, usualYield: null, levels: [] };
 
 const seed = (seedPerHectare: number) => ({
   seedPerHectare,
@@ -43,6 +47,8 @@ export function buildCandidate(change: Partial<CandidateResult> = {}): Candidate
   const gap = change.gap === undefined ? buildGap(0.4, 0.2) : change.gap;
   const varietyId = change.varietyId ?? idOf(2);
   const moneyGap = gap === null ? null : { estimate: gap.estimate, se: gap.ownSeason?.se ?? 0.2, df: 20 };
+  const moneyGapInRegion = gap === null ? null : { estimate: gap.estimate, se: gap.se, df: 20 };
+  const traits = change.traits ?? [];
   return {
     varietyId,
     varietyName: 'Ostermoor',
@@ -51,12 +57,12 @@ export function buildCandidate(change: Partial<CandidateResult> = {}): Candidate
     sharedSiteYears: 12,
     siteYearsToSettle: null,
     trials: [],
-    traits: [],
     cautions: [],
     moneyGap,
-    money:
-      moneyGap === null ? null : weighMoney(varietyId, currentId, moneyGap.estimate, moneyGap, assumptions),
+    moneyGapInRegion,
+    money: weighMoney({ varietyId, moneyGap, moneyGapInRegion, traits }, basis, assumptions),
     ...change,
+    traits,
     gap,
   };
 }

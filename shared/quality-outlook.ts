@@ -1,0 +1,40 @@
+import type { GapDistribution, MoneyAssumptions } from './money.ts';
+import type { MoneyBasis } from './money-basis.ts';
+import { groupRules, layOutSteps } from './premium-steps.ts';
+import type { TraitOutlook } from './premium-states.ts';
+import type { CandidateResult } from './weigh-up.ts';
+
+/**
+ * What is known of the traits that a buyer pays by.
+ * @returns nothing where there are no rules; `unknown` where a trait of theirs was not measured on both varieties, or
+ * on the current one in fewer than three trials: then it cannot be told how often a limit is met
+ */
+export function readQualityOutlook(
+  traits: CandidateResult['traits'],
+  { levels }: MoneyBasis,
+  money: Pick<MoneyAssumptions, 'qualityRules' | 'currentLevels'>,
+): TraitOutlook[] | 'unknown' {
+  const outlook: TraitOutlook[] = [];
+  for (const [slug, rules] of groupRules(money.qualityRules ?? [])) {
+    const known = levels.find(({ traitSlug }) => traitSlug === slug);
+    const gaps = readGaps(traits.find(({ traitSlug }) => traitSlug === slug));
+    const level = money.currentLevels?.[slug] ?? known?.mean;
+    const spread = known?.spread ?? null;
+    if (level === undefined || spread === null || gaps === null) return 'unknown';
+    outlook.push({ steps: layOutSteps(rules), level, spread, ...gaps });
+  }
+  return outlook;
+}
+
+/** Pulled back as the yield's gap is; with the standard errors of the plain gap, which are no smaller. */
+function readGaps(
+  trait: CandidateResult['traits'][number] | undefined,
+): { ownSeason: GapDistribution; region: GapDistribution } | null {
+  const gap = trait?.gap ?? null;
+  if (gap === null || gap.ownSeason === null) return null;
+  const estimate = gap.shrunken ?? gap.estimate;
+  return {
+    ownSeason: { estimate, se: gap.ownSeason.se, df: gap.ownSeason.df },
+    region: { estimate, se: gap.se, df: gap.df },
+  };
+}
