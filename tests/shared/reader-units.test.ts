@@ -1,6 +1,5 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { weighMoney } from '#shared/money.ts';
 import {
   fromReader,
   fromReaderPer,
@@ -14,6 +13,7 @@ import {
 } from '#shared/reader-units.ts';
 import { sentenceFormats } from '#shared/sentence-formats.ts';
 import { yieldUnits } from '#shared/units.ts';
+import { atOnePrice, gapOf, seed, weigh } from '#tests/shared/money-questions.ts';
 
 const inBushelsOf = (bushelWeightLb: number): ReaderUnits => ({ yieldUnit: 'bu/ac', bushelWeightLb });
 
@@ -97,28 +97,14 @@ describe('yields in the units of the reader', () => {
   test('certified seed at 3.50 more an acre pays 1 bu/ac at 3.50 a bushel', () => {
     // Whole-crop break-even of extension budgets; domain.md, partial budget.
     const units = inBushelsOf(60);
-    const [candidate, current] = [
-      '00000000-0000-4000-8000-000000000002',
-      '00000000-0000-4000-8000-000000000001',
-    ];
-    const price = fromReaderPer(3.5, 't', units);
-    const seed = (perAcre: number) => ({
-      seedPerHectare: fromReaderPer(perAcre, 'ha', units),
-      treatmentPerHectare: 0,
-      royaltyPerHectare: 0,
+    const perAcre = (amount: number) => seed(fromReaderPer(amount, 'ha', units));
+    const money = atOnePrice(fromReaderPer(3.5, 't', units), {
+      candidate: perAcre(13.5),
+      current: perAcre(10),
     });
-    const result = weighMoney(candidate, current, fromReader(2, 't/ha', units), null, {
-      currency: 'USD',
-      priceLow: price,
-      priceMiddle: price,
-      priceHigh: price,
-      haulagePerTonne: 0,
-      dryingPerTonne: 0,
-      seedCosts: { [candidate]: seed(13.5), [current]: seed(10) },
-      priceSheetDate: null,
-    });
-    expect(toReader(result?.breakEvenGap ?? Number.NaN, 't/ha', units)).toBeCloseTo(1, 12);
-    expect(toReaderPer(result?.returnPerHectare ?? Number.NaN, 'ha', units)).toBeCloseTo(3.5, 12);
+    const result = weigh(money, gapOf(fromReader(2, 't/ha', units)));
+    expect(toReader(result.breakEvenGap, 't/ha', units)).toBeCloseTo(1, 12);
+    expect(toReaderPer(result.returnPerHectare, 'ha', units)).toBeCloseTo(3.5, 12);
   });
 });
 
