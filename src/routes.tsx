@@ -18,7 +18,7 @@ const WeighUpsPage = lazyPage(
 );
 const NewWeighUpPage = lazyPage(
   async () => (await import('./features/weigh-up/new-weigh-up-page.tsx')).NewWeighUpPage,
-  ['weigh-up', 'verdicts'],
+  ['weigh-up', 'verdicts', 'cautions', 'drawings'],
 );
 const WeighUpPage = lazyPage(
   async () => (await import('./features/weigh-up/weigh-up-page.tsx')).WeighUpPage,

@@ -1,8 +1,5 @@
 import { useId, useMemo, useState, type ReactNode } from 'react';
-import { useTranslation } from 'react-i18next';
-import { Button } from './button.tsx';
-import { Field } from './field.tsx';
-import { Select } from './select.tsx';
+import { SortChooser, SortHeading, type SortState } from './sort-controls.tsx';
 import { useLanguage } from './use-language.ts';
 
 export type Column<Row> = {
@@ -14,8 +11,6 @@ export type Column<Row> = {
   /** Figures stand at the end, so that their decimals line up. */
   align?: 'start' | 'end';
 };
-
-export type SortState = { columnId: string; isDescending: boolean };
 
 type DataTableProps<Row> = {
   /** Says what the table holds; read first by a screen reader. */
@@ -81,7 +76,12 @@ export function DataTable<Row>({
     // A container of its own keeps a wide table from widening the page around it.
     <div className="@container">
       {isTurned && columns.some((column) => column.sortValue) && (
-        <SortChooser columns={columns} sort={sort} onSort={setSort} />
+        <SortChooser
+          columns={columns.filter((column) => column.sortValue)}
+          sort={sort}
+          onSort={setSort}
+          className="hidden border-b-2 border-ink pb-3 @max-xl:flex"
+        />
       )}
       <div
         className={isTurned ? '' : 'overflow-x-auto'}
@@ -127,36 +127,6 @@ export function DataTable<Row>({
   );
 }
 
-type SortProps<Row> = {
-  columns: readonly Column<Row>[];
-  sort: SortState | undefined;
-  onSort: (sort: SortState) => void;
-};
-
-/** Takes the place of the headings where they are not in view: on a turned table. */
-function SortChooser<Row>({ columns, sort, onSort }: SortProps<Row>) {
-  const { t } = useTranslation('common');
-  return (
-    <div className="hidden items-end gap-3 border-b-2 border-ink pb-3 @max-xl:flex">
-      <Field label={t('table.sortBy')} className="grow">
-        <Select
-          placeholder={t('table.unsorted')}
-          value={sort?.columnId ?? ''}
-          onChange={(event) => onSort({ columnId: event.target.value, isDescending: false })}
-          options={columns
-            .filter((column) => column.sortValue)
-            .map((column) => ({ value: column.id, label: column.header }))}
-        />
-      </Field>
-      {sort && sort.columnId !== '' && (
-        <Button onClick={() => onSort({ ...sort, isDescending: !sort.isDescending })}>
-          {sort.isDescending ? t('table.descending') : t('table.ascending')}
-        </Button>
-      )}
-    </div>
-  );
-}
-
 type HeadCellProps<Row> = {
   column: Column<Row>;
   sort: SortState | undefined;
@@ -164,7 +134,6 @@ type HeadCellProps<Row> = {
 };
 
 function HeadCell<Row>({ column, sort, onSort }: HeadCellProps<Row>) {
-  const { t } = useTranslation('common');
   const isSorted = sort?.columnId === column.id;
   const side = column.align === 'end' ? 'text-right' : 'text-left';
   const space = 'px-2 @max-xl:px-1 first:pl-0 last:pr-0 text-sm font-semibold text-faded align-bottom';
@@ -183,17 +152,12 @@ function HeadCell<Row>({ column, sort, onSort }: HeadCellProps<Row>) {
       aria-sort={isSorted ? direction : 'none'}
       className={`${space} ${side}`}
     >
-      <button
-        type="button"
-        title={t('table.sort')}
-        className={`tap-target -mx-1 px-1 font-semibold ${side} ${isSorted ? 'text-ink' : ''}`}
-        onClick={() => onSort({ columnId: column.id, isDescending: isSorted ? !sort.isDescending : false })}
-      >
-        {column.header}{' '}
-        <span aria-hidden="true" className={isSorted ? '' : 'opacity-50'}>
-          {isSorted ? (sort.isDescending ? '▼' : '▲') : '↕'}
-        </span>
-      </button>
+      <SortHeading
+        words={column.header}
+        direction={isSorted ? direction : null}
+        onSort={() => onSort({ columnId: column.id, isDescending: isSorted && !sort.isDescending })}
+        className={side}
+      />
     </th>
   );
 }

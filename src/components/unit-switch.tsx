@@ -17,10 +17,9 @@ export function UnitSwitch({ onChoose }: { onChoose: (unit: YieldUnit) => void }
     decimals: Number.isInteger(bushelWeightLb) ? 0 : 1,
   });
   return (
-    <Field label={t('units.label')} className="print:hidden">
+    <Field label={t('units.label')} className="w-60 max-w-full print:hidden">
       <Select
         value={yieldUnit}
-        className="w-auto max-w-full self-start"
         onChange={(event) => {
           const chosen = yieldUnits.find((unit) => unit === event.target.value);
           if (chosen) onChoose(chosen);

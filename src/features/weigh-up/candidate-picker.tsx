@@ -1,105 +1,65 @@
-import type { ReactNode } from 'react';
+import { useCallback } from 'react';
 import { useTranslation } from 'react-i18next';
+import type { Variety } from '#shared/catalogue.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
-import { VerdictMark } from '#src/components/beam.tsx';
-import { Checkbox } from '#src/components/checkbox.tsx';
-import { DataTable, type Column } from '#src/components/data-table.tsx';
+import { useUnitChoice } from '#src/chosen-units.tsx';
+import { UnitSwitch } from '#src/components/unit-switch.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useUrlPatch } from '#src/url-state.ts';
+import { CandidateList } from './candidate-list.tsx';
+import { KeptCandidates } from './kept-candidates.tsx';
 import { mostCandidates } from './question-draft.ts';
-
-const unit = 't/ha';
 
 type CandidatePickerProps = {
   candidates: readonly CandidateResult[];
+  /** In the order in which they will stand. */
   chosenIds: readonly string[];
   currentName: string;
+  /** The crop's, for the other names that they are searched by. */
+  varieties: readonly Variety[];
 };
 
-/** The candidates with their verdicts already there; one to eight are kept, in the order in which they were chosen. */
-export function CandidatePicker({ candidates, chosenIds, currentName }: CandidatePickerProps) {
+/** The candidates with their verdicts already there; those that are kept stand beside the list in their order. */
+export function CandidatePicker({ candidates, chosenIds, currentName, varieties }: CandidatePickerProps) {
   const { t } = useTranslation('weigh-up');
-  const patch = useUrlPatch();
-  const choose = (id: string, isChosen: boolean) => {
-    const next = isChosen ? [...chosenIds, id] : chosenIds.filter((chosen) => chosen !== id);
-    patch({ candidates: next.join(',') });
-  };
-  const isFull = chosenIds.length >= mostCandidates;
-  const columns = useCandidateColumns((candidate) => (
-    <Checkbox
-      label={candidate.varietyName}
-      className="-my-2"
-      checked={chosenIds.includes(candidate.varietyId)}
-      disabled={isFull && !chosenIds.includes(candidate.varietyId)}
-      onChange={(event) => choose(candidate.varietyId, event.target.checked)}
-    />
-  ));
-  return (
-    <>
-      <p role="status" className="text-sm text-faded">
-        {t('new.chosen', { count: chosenIds.length })}
-        {isFull && ` · ${t('new.tooMany')}`}
-      </p>
-      <DataTable
-        caption={t('new.caption', { current: currentName })}
-        columns={columns}
-        rows={candidates}
-        rowKey={(candidate) => candidate.varietyId}
-      />
-      <p className="max-w-prose text-sm text-faded">{t('new.listNote')}</p>
-    </>
-  );
-}
-
-function useCandidateColumns(
-  nameCandidate: (candidate: CandidateResult) => ReactNode,
-): Column<CandidateResult>[] {
-  const { t } = useTranslation(['weigh-up', 'common']);
   const format = useFormat();
-  return [
-    {
-      id: 'candidate',
-      header: t('new.column.candidate'),
-      cell: nameCandidate,
-      sortValue: (candidate) => candidate.varietyName,
-    },
-    {
-      id: 'gap',
-      header: t('new.column.gap'),
-      align: 'end',
-      cell: ({ gap }) =>
-        gap === null ? t('new.noGap') : format.gap(gap.estimate, unit, format.decimals(gap.se, unit)),
-      sortValue: ({ gap }) => gap?.estimate ?? null,
-    },
-    {
-      id: 'verdict',
-      header: t('new.column.verdict'),
-      cell: ({ verdict }) => <VerdictMark verdict={verdict} className="text-sm" />,
-      sortValue: ({ verdict }) => t(`common:verdict.${verdict}`),
-    },
-    {
-      id: 'site-years',
-      header: t('new.column.siteYears'),
-      align: 'end',
-      cell: ({ siteYears }) => format.number(siteYears),
-      sortValue: ({ siteYears }) => siteYears,
-    },
-    {
-      id: 'money',
-      header: t('new.column.money'),
-      align: 'end',
-      cell: ({ money, verdict }) =>
-        money?.chancePays === null || money === null || verdict === 'thin'
-          ? '–'
-          : format.chance(money.chancePays),
-      sortValue: ({ money, verdict }) => (verdict === 'thin' ? null : (money?.chancePays ?? null)),
-    },
-    {
-      id: 'cautions',
-      header: t('new.column.cautions'),
-      align: 'end',
-      cell: ({ cautions }) => format.number(cautions.length),
-      sortValue: ({ cautions }) => cautions.length,
-    },
-  ];
+  const patch = useUrlPatch();
+  const chooseUnit = useUnitChoice();
+  const order = (ids: readonly string[]) => patch({ candidates: ids.join(',') });
+  const kept = chosenIds.flatMap((id) => candidates.find(({ varietyId }) => varietyId === id) ?? []);
+  const aliasesOf = useCallback(
+    (varietyId: string) => varieties.find(({ id }) => id === varietyId)?.aliases ?? [],
+    [varieties],
+  );
+  const hasRoom = chosenIds.length < mostCandidates;
+  const level = candidates.find(({ gap }) => gap)?.gap?.region.level;
+  return (
+    <div className="grid items-start gap-x-8 gap-y-6 lg:grid-cols-[minmax(0,1fr)_20rem]">
+      <div className="flex min-w-0 flex-col gap-3">
+        <CandidateList
+          candidates={candidates}
+          keptIds={chosenIds}
+          hasRoom={hasRoom}
+          onKeep={(id, isKept) =>
+            order(isKept ? [...chosenIds, id] : chosenIds.filter((chosen) => chosen !== id))
+          }
+          currentName={currentName}
+          aliasesOf={aliasesOf}
+        />
+        <p className="max-w-prose text-sm text-faded">
+          {level !== undefined && `${t('new.intervalNote', { level: format.percent(level * 100) })} `}
+          {t('new.listNote')}
+        </p>
+        <UnitSwitch onChoose={chooseUnit} />
+      </div>
+      <section aria-labelledby="kept-title" className="flex flex-col gap-2 lg:sticky lg:top-4">
+        <h3 id="kept-title">{t('new.kept.title')}</h3>
+        <p role="status" className="text-sm text-faded">
+          {t('new.chosen', { count: chosenIds.length })}
+          {!hasRoom && ` ${t('new.tooMany')}`}
+        </p>
+        {kept.length > 0 && <KeptCandidates kept={kept} onOrder={order} />}
+      </section>
+    </div>
+  );
 }

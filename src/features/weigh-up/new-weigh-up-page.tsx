@@ -181,6 +181,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
             candidates={result.candidates}
             chosenIds={draft.candidateIds}
             currentName={currentName}
+            varieties={crop?.varieties ?? []}
           />
         )}
         {form.formState.isSubmitted && !isChosen && (

@@ -1,6 +1,7 @@
 import type { BilingualName } from '#shared/catalogue.ts';
 import type { WeighUpLine } from '#shared/weigh-up.ts';
 import { readChoice } from '#src/url-state.ts';
+import { matchesWords } from './match-words.ts';
 
 /** Which weigh-ups are listed; all of it stands in the address. An empty word asks for all. */
 export type WeighUpFilter = {
@@ -28,13 +29,6 @@ export function readWeighUpFilter(search: URLSearchParams): WeighUpFilter {
   };
 }
 
-function fold(text: string): string {
-  return text
-    .normalize('NFD')
-    .replace(/\p{Diacritic}/gu, '')
-    .toLowerCase();
-}
-
 type SearchedLine = Pick<
   WeighUpLine,
   'growerName' | 'farmName' | 'currentVarietyName' | 'cropName' | 'regionName'
@@ -44,10 +38,7 @@ type SearchedLine = Pick<
 export function matchesSearch(line: SearchedLine, search: string): boolean {
   const names = [line.cropName.en, line.cropName.fr, line.regionName.en, line.regionName.fr];
   const varieties = [line.currentVarietyName, line.decision?.varietyName ?? ''];
-  const text = fold([line.growerName, line.farmName, ...varieties, ...names].join(' '));
-  return fold(search)
-    .split(/\s+/)
-    .every((word) => text.includes(word));
+  return matchesWords([line.growerName, line.farmName, ...varieties, ...names].join(' '), search);
 }
 
 /** Whether a line is asked for. */
