@@ -4,7 +4,7 @@ import type { VerdictCode } from './verdict.ts';
 import type { CandidateResult, WeighUpResult } from './weigh-up.ts';
 
 type MethodKey =
-  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'pair' | 'best' | 'twoTargets' | 'components'}`
+  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'pair' | 'best' | 'twoTargets' | 'components' | 'usualFactor'}`
   | `method:from.${'crop-default' | 'own-trials'}`
   | `method:sensitivity.${'holds' | 'changes' | 'line'}`
   | `method:${'farm' | 'farmAlike' | 'money' | 'calibration' | 'computed'}`
@@ -13,7 +13,7 @@ type MethodKey =
 
 /** How figures are written in the reader's language. */
 type MethodFigures = {
-  number: (value: number) => string;
+  number: (value: number, style?: { decimals: number }) => string;
   quantity: (value: number, unit: string, style: { decimals: number }) => string;
   date: (iso: string) => string;
   dateTime: (iso: string) => string;
@@ -57,7 +57,7 @@ function nameComparison({ question, comparison }: WeighUpResult): 'pair' | 'best
 }
 
 function sayComponents(
-  { usualVariancesFrom, usualVariancesAt }: WeighUpResult,
+  { usualVariancesFrom, usualVariancesAt, usualFactor }: WeighUpResult,
   components: NonNullable<WeighUpResult['components']>,
   say: Say<MethodKey>,
   write: MethodFigures,
@@ -70,7 +70,9 @@ function sayComponents(
   });
   if (usualVariancesFrom === null) return moves;
   const date = usualVariancesAt ? write.date(usualVariancesAt) : '';
-  return `${moves} ${say(`method:from.${usualVariancesFrom}`, { date })}`;
+  const from = `${moves} ${say(`method:from.${usualVariancesFrom}`, { date })}`;
+  if (usualFactor === null || usualFactor === undefined) return from;
+  return `${from} ${say('method:usualFactor', { times: write.number(usualFactor, { decimals: 1 }) })}`;
 }
 
 /** What the verdicts would be, were the usual variances half or twice what they are taken for. */

@@ -156,6 +156,11 @@ export const weighUpResult = z.object({
   leftOut: z.array(leftOutTrial),
   /** Standard deviations of variety × site, × season and rest, t/ha, with where they came from. */
   components: z.object({ site: z.number(), season: z.number(), rest: z.number() }).nullable(),
+  /**
+   * How much varieties moved in these trials against what is usual, as a ratio of standard deviations; null without
+   * usual variances, absent in answers from before it was told.
+   */
+  usualFactor: z.number().nullish(),
   usualVariancesFrom: z.enum(['crop-default', 'own-trials']).nullable(),
   /** When the organisation's own were estimated; a copy frozen before this was told has none. */
   usualVariancesAt: z.iso.datetime().nullish(),

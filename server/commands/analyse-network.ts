@@ -9,7 +9,7 @@ interface NetworkCommand {
   readonly options: CombineOptions;
 }
 
-/** `network CELLS.csv… [--penalty 3 --usual site,year,rest | --penalty 0] [--current NAME]`; returns the exit code. */
+/** `network CELLS.csv… [--penalty 3 --usual site,year,rest [--spread S] | --penalty 0] [--current NAME]`; returns the exit code. */
 export async function runNetwork(args: readonly string[]): Promise<number> {
   let command: NetworkCommand;
   try {
@@ -26,7 +26,7 @@ function readCommand(args: readonly string[]): NetworkCommand {
   const { values, positionals } = parseArgs({
     args: [...args],
     allowPositionals: true,
-    options: { penalty: text, usual: text, current: text },
+    options: { penalty: text, usual: text, spread: text, current: text },
   });
   if (positionals.length === 0) throw new AnalysisError('bad-option', 'say which file to analyse');
   const penalty = values.penalty === undefined ? 3 : Number(values.penalty);
@@ -37,6 +37,7 @@ function readCommand(args: readonly string[]): NetworkCommand {
     options: {
       penalty,
       ...(values.usual !== undefined && { usual: readUsual(values.usual) }),
+      ...(values.spread !== undefined && { spread: Number(values.spread) }),
       ...(values.current !== undefined && { current: values.current }),
     },
   };

@@ -1,8 +1,8 @@
 import type { Gap } from '#server/stats/engine.ts';
 import type { ContentAnalysis } from './analyse-content.ts';
 
-/** Changes when a published trial analysed again could give other figures. */
-export const engineVersion = '1';
+/** Changes when a published trial analysed, or a question weighed, again could give other figures. */
+export const engineVersion = '2';
 
 /** What a version keeps of the analysis of one trait: the rows of version_fits and entry_means, without their ids. */
 export type TraitFit = {

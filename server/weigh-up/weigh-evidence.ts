@@ -47,6 +47,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
       trials: [],
       leftOut: [],
       components: null,
+      usualFactor: null,
       usualVariancesFrom: null,
       usualVariancesAt: null,
       candidates: [],
@@ -63,6 +64,7 @@ export function weighEvidence(evidence: Evidence, question: Question): WeighUpRe
     seasons: [...yields.seasons],
     ...listTrials(evidence, yields),
     components: toDeviations(yields),
+    usualFactor: toRatio(yields),
     ...tellUsual(evidence, yields),
     currentLevels: listCurrentLevels(evidence, weighed.traits, question.currentVarietyId),
     candidates: warnOfLeader(
@@ -258,6 +260,11 @@ function toDeviations({ fit }: TraitWeighing): WeighUpResult['components'] {
   if (fit === null) return null;
   const { site, year, rest } = fit.components;
   return { site: Math.sqrt(site), season: Math.sqrt(year), rest: Math.sqrt(rest) };
+}
+
+/** As a ratio of standard deviations, as the components are told. */
+function toRatio({ fit }: TraitWeighing): number | null {
+  return fit?.usualFactor == null ? null : Math.sqrt(fit.usualFactor);
 }
 
 function toGapLine({ gapLine }: CandidateWeighing): GapLine | null {

@@ -144,7 +144,11 @@ test('the figures are the engine’s own on the cells that the versions hold', a
     join sites on sites.id = site_id join traits on traits.id = trait_id
     where traits.slug = 'yield' and region_id = ${small.regionIds.north} and season between 2023 and 2025`);
   expect(rows).toHaveLength(45);
-  const combined = combineTrials(rows, { usual: defaultUsualVariances(5), current: variety('Anchor') });
+  const combined = combineTrials(rows, {
+    usual: defaultUsualVariances(5),
+    spread: Math.LN2,
+    current: variety('Anchor'),
+  });
   if (combined.outcome !== 'combined') throw new Error('the cells can be combined');
   for (const name of ['Birch', 'Cedar', 'Dogwood']) {
     const gap = candidateIn(result, name).gap;
@@ -179,6 +183,9 @@ test('the answer says what it rests on', async () => {
     usualVariancesFrom: 'crop-default',
     leftOut: [],
   });
+  // Fitted with the three components: the square root of the common factor of the variances.
+  expect(result.usualFactor).toBeGreaterThanOrEqual(0.5);
+  expect(result.usualFactor).toBeLessThan(4);
   expect(result.trials).toHaveLength(9);
   expect(result.trials[0]).toMatchObject({ version: 1, siteName: 'ELM' });
   expect(codes(result.cautions)).toEqual(

@@ -2,7 +2,7 @@ import { AnalysisError } from '#server/stats/analysis-error.ts';
 import { listConnected } from './connected-entries.ts';
 import { estimateEntries, type EntryEstimates } from './entry-estimates.ts';
 import { averageEntries } from './entry-means.ts';
-import { fitNetwork, type NetworkNotFitted, type VariancePenalty } from './fit-network.ts';
+import { fitNetwork, type NetworkNotFitted } from './fit-network.ts';
 import {
   interactionTerms,
   type InteractionTerm,
@@ -13,12 +13,15 @@ import { frameNetwork, type NetworkFrame } from './network-frame.ts';
 import { intervalAround, measureGap } from './network-gap.ts';
 import { shrinkEffects, type ShrunkenEffects } from './shrunken-effects.ts';
 import { defaultUsualVariances, totalVariance } from './interaction-variances.ts';
+import { commonFactor, type VariancePenalty } from './variance-penalty.ts';
 
 export interface CombineOptions {
   /** ν of the penalty; 0 is plain REML. Default 3. */
   readonly penalty?: number;
   /** usual variances of the crop's trait, unit squared; without them the crop defaults in % of the mean of the cells */
   readonly usual?: InteractionVariances;
+  /** how far the usual variances may all be off by one factor: standard deviation of its logarithm; without it they stand */
+  readonly spread?: number;
   /** usual variance between entries; without it the sum of the three interaction variances */
   readonly usualEntry?: number;
   /** only gaps from this entry, candidate minus current */
@@ -57,6 +60,8 @@ export interface CombinedTrials {
     /** terms that the layout cannot tell from others; their component reads 0 */
     readonly dropped: readonly InteractionTerm[];
     readonly usual: InteractionVariances | null;
+    /** the factor by which varieties moved against the usual variances; only with a spread */
+    readonly usualFactor?: number;
     readonly logLik: number;
     readonly gradientNorm: number;
     readonly iterations: number;
@@ -84,7 +89,10 @@ function choosePenalty(cells: readonly TrialCell[], options: CombineOptions): Va
     options.usual ?? defaultUsualVariances(cells.reduce((sum, cell) => sum + cell.mean, 0) / cells.length);
   if (interactionTerms.some((term) => !(usual[term] > 0 && Number.isFinite(usual[term]))))
     throw new AnalysisError('bad-option', 'usual variances must be positive numbers');
-  return { nu, usual };
+  const { spread } = options;
+  if (spread !== undefined && !(spread > 0 && Number.isFinite(spread)))
+    throw new AnalysisError('bad-option', 'the spread must be a positive number');
+  return { nu, usual, ...(spread !== undefined && { spread }) };
 }
 
 /** Pairs of positions: all of them in order, or every entry against the current one. */
@@ -163,6 +171,7 @@ export function combineTrials(
       components,
       dropped: fit.dropped,
       usual: penalty?.usual ?? null,
+      ...(penalty?.spread !== undefined && { usualFactor: commonFactor(penalty, fit.point.theta) }),
       logLik: fit.point.logLik,
       gradientNorm: fit.gradientNorm,
       iterations: fit.iterations,

@@ -7,6 +7,7 @@ import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
 import { addCross, mirrorUpper, multiplyRows } from './row-products.ts';
 import { invertSmall } from './small-symmetric.ts';
+import { penaltyInformation } from './variance-penalty.ts';
 
 /** Effects of chosen entries at one θ, and their covariance Φ (m × m, row-major). */
 export interface EntryEffects {
@@ -31,19 +32,20 @@ export interface EntryEstimates extends EntryEffects {
   readonly thetaCovariance: Float64Array;
 }
 
-/** W = (information + ν/2θ² on the diagonal)⁻¹ over the terms in the model; rows of dropped terms are 0. */
+/** W = (information of the data + that of the penalty)⁻¹ over the terms in the model; rows of dropped terms are 0. */
 export function thetaCovariance(fit: NetworkFit): Float64Array {
   const information =
     fit.frame.cellCount > MANY_CELLS
       ? fit.averageInformation
       : computeExpectedInformation(fit.frame, fit.point);
+  const { theta } = fit.point;
+  const pull = fit.penalty && penaltyInformation(fit.penalty, theta);
   const kept = [0, 1, 2].filter((k) => !fit.dropped.includes(interactionTerms[k]!));
   const block = new Float64Array(kept.length * kept.length);
   kept.forEach((k, r) =>
     kept.forEach((l, c) => {
-      const theta = fit.point.theta[k]!;
-      const pull = fit.penalty !== null && k === l ? fit.penalty.nu / (2 * theta * theta) : 0;
-      block[r * kept.length + c] = information[k * 3 + l]! + pull;
+      const told = pull === null ? 0 : pull[k * 3 + l]! / (theta[k]! * theta[l]!);
+      block[r * kept.length + c] = information[k * 3 + l]! + told;
     }),
   );
   const inverse = invertSmall(block, kept.length);

@@ -1,16 +1,11 @@
 import { differentiateCriterion, type CriterionDerivatives } from './criterion-derivatives.ts';
 import { computeExpectedInformation } from './expected-information.ts';
 import type { Theta } from './entry-absorption.ts';
-import { interactionTerms, type InteractionTerm, type InteractionVariances } from './network-cell.ts';
+import { interactionTerms, type InteractionTerm } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import { evaluateLikelihood, measureDesign, residualDf, type NetworkPoint } from './restricted-likelihood.ts';
 import { solveSmall } from './small-symmetric.ts';
-
-/** ν and s²: the penalty −(ν/2) Σ(ln θ_k + s_k²/θ_k). ν = 0 is plain REML. */
-export interface VariancePenalty {
-  readonly nu: number;
-  readonly usual: InteractionVariances;
-}
+import { holdsAt, loosening, penaltyAt, type VariancePenalty } from './variance-penalty.ts';
 
 export interface NetworkFit {
   readonly outcome: 'fitted';
@@ -59,35 +54,25 @@ interface Search {
   readonly floor: Float64Array;
 }
 
-function usualOf(penalty: VariancePenalty, k: number): number {
-  return penalty.usual[interactionTerms[k]!];
-}
-
-function penaltyAt(penalty: VariancePenalty | null, theta: Theta): number {
-  if (penalty === null) return 0;
-  let sum = 0;
-  for (let k = 0; k < 3; k++) sum += Math.log(theta[k]!) + usualOf(penalty, k) / theta[k]!;
-  return -0.5 * penalty.nu * sum;
-}
-
-/** Objective's slope in ln θ, and its size. */
+/** Objective's slope in ln θ, and its size; at the best κ the slope in κ is 0 and adds nothing. */
 function slopePenalised(ascent: Ascent, penalty: VariancePenalty): Float64Array {
   const { theta } = ascent.point;
-  return theta.map((value, k) => {
-    const pull = (0.5 * penalty.nu * usualOf(penalty, k)) / value;
-    return value * ascent.derivatives.gradient[k]! - 0.5 * penalty.nu + pull;
-  });
+  const holds = holdsAt(penalty, theta);
+  return theta.map((value, k) => value * ascent.derivatives.gradient[k]! - 0.5 * penalty.nu + holds[k]!);
 }
 
 /** Newton step in ln θ: θθ' times the information, plus the penalty's own curvature. */
 function stepPenalised(ascent: Ascent, penalty: VariancePenalty, information: Float64Array): Float64Array {
   const { theta } = ascent.point;
   const slope = slopePenalised(ascent, penalty);
+  const holds = holdsAt(penalty, theta);
+  const loosened = loosening(penalty, theta, holds);
   const curvature = new Float64Array(9);
   for (let k = 0; k < 3; k++) {
-    for (let l = 0; l < 3; l++) curvature[k * 3 + l] = theta[k]! * theta[l]! * information[k * 3 + l]!;
-    const pull = (0.5 * penalty.nu * usualOf(penalty, k)) / theta[k]!;
-    curvature[k * 4]! += pull + Math.max(0, -theta[k]! * ascent.derivatives.gradient[k]!);
+    for (let l = 0; l < 3; l++)
+      curvature[k * 3 + l] =
+        theta[k]! * theta[l]! * information[k * 3 + l]! - loosened * holds[k]! * holds[l]!;
+    curvature[k * 4]! += holds[k]! + Math.max(0, -theta[k]! * ascent.derivatives.gradient[k]!);
   }
   return solveSmall(curvature, slope) ?? slope;
 }
@@ -234,7 +219,7 @@ export function fitNetwork(
   const evaluate = (theta: Theta): Ascent | null => {
     const point = evaluateLikelihood(frame, theta, design.logDeterminant);
     if (point === null) return null;
-    const objective = point.logLik + penaltyAt(penalty, theta);
+    const objective = point.logLik + (penalty === null ? 0 : penaltyAt(penalty, theta));
     return { point, objective, derivatives: differentiateCriterion(frame, point) };
   };
   const bottom = evaluate(start);

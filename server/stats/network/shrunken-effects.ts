@@ -2,7 +2,8 @@ import { choleskyUpper } from '#server/stats/linear/dense.ts';
 import { invertFromTriangle } from '#server/stats/linear/skipping-factor.ts';
 import { findRoot } from '#server/stats/distributions/find-root.ts';
 import type { EntryEffects } from './entry-estimates.ts';
-import type { NetworkFit, VariancePenalty } from './fit-network.ts';
+import type { NetworkFit } from './fit-network.ts';
+import type { VariancePenalty } from './variance-penalty.ts';
 
 /** Entries as a sample: each effect pulled towards the mean of its connected part. */
 export interface ShrunkenEffects {

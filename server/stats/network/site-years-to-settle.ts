@@ -2,6 +2,7 @@ import { tQuantileUpper } from '#server/stats/distributions/student-t.ts';
 import { noncentralTUpper } from '#server/stats/distributions/noncentral-t.ts';
 import type { InteractionVariances } from './network-cell.ts';
 import { invertSmall } from './small-symmetric.ts';
+import { penaltyInformation, type VariancePenalty } from './variance-penalty.ts';
 
 /** How the evidence on a gap lies now. */
 export interface SettleQuestion {
@@ -16,8 +17,8 @@ export interface SettleQuestion {
   readonly sites: number;
   readonly seasons: number;
   readonly environments: number;
-  /** ν of the penalty, 0 for plain REML */
-  readonly penalty: number;
+  /** null for plain REML */
+  readonly penalty: VariancePenalty | null;
 }
 
 /** Reported where more than 40 are needed. */
@@ -41,13 +42,16 @@ function foresee(question: SettleQuestion, seasons: number): { variance: number;
     },
     { jacobian: [0, 0, 1], lambda: rest, df: others * (sites - 1) * Math.max(0, seasons - 1) },
   ];
-  const theta = [components.site, components.year, components.rest];
+  const theta = Float64Array.of(components.site, components.year, components.rest);
+  const pull = penalty && penaltyInformation(penalty, theta);
   const information = new Float64Array(9);
   for (let k = 0; k < 3; k++) {
     for (let l = 0; l < 3; l++)
       for (const { jacobian, lambda, df } of strata)
         information[k * 3 + l]! += (jacobian[k]! * jacobian[l]! * df) / (2 * lambda * lambda);
-    information[k * 4]! += theta[k]! > 0 ? penalty / (2 * theta[k]! * theta[k]!) : 1e300;
+    if (!(theta[k]! > 0)) information[k * 4] = 1e300;
+    else if (pull !== null)
+      for (let l = 0; l < 3; l++) information[k * 3 + l]! += pull[k * 3 + l]! / (theta[k]! * theta[l]!);
   }
   const variance = 2 * (components.site / sites + components.year / seasons + rest / (sites * seasons));
   const slope = [2 / sites, 2 / seasons, 2 / (sites * seasons)];

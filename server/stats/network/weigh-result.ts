@@ -68,6 +68,8 @@ export interface TraitWeighing {
     readonly penalty: number;
     readonly components: InteractionVariances;
     readonly usual: InteractionVariances | null;
+    /** common factor by which varieties moved in these trials, against the usual variances; null without them */
+    readonly usualFactor: number | null;
     readonly logLik: number;
     readonly iterations: number;
   } | null;

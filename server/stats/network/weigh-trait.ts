@@ -4,7 +4,7 @@ import { standAgainstBest } from './compare-with-best.ts';
 import { estimateEffects, estimateEntries, type EntryEstimates } from './entry-estimates.ts';
 import { answersFor, gradeEvidence, type EvidenceTier } from './evidence-tier.ts';
 import { cautionCandidate, cautionEvidence } from './evidence-cautions.ts';
-import { fitNetwork, type NetworkFit, type VariancePenalty } from './fit-network.ts';
+import { fitNetwork, type NetworkFit } from './fit-network.ts';
 import { fitGapLine } from './gap-line.ts';
 import { judgeGap } from './judge-gap.ts';
 import { interactionTerms } from './network-cell.ts';
@@ -15,6 +15,7 @@ import { countSiteYearsToSettle } from './site-years-to-settle.ts';
 import { analyseStability, type EntryStability } from './stability.ts';
 import { drawTrialLines, type TrialTable } from './trial-lines.ts';
 import { scaleVariances, totalVariance } from './interaction-variances.ts';
+import { commonFactor, type VariancePenalty } from './variance-penalty.ts';
 import type {
   CandidateGap,
   EvidenceNetwork,
@@ -28,6 +29,8 @@ import type { BestStanding, CandidateWeighing, TraitWeighing } from './weigh-res
 
 const LEVEL = 0.95;
 const PENALTY = 3;
+/** Usual variances are taken as right up to one common factor, whose standard deviation is a doubling. */
+const FACTOR_SPREAD = Math.LN2;
 
 /** A fit of the chosen cells, estimates of current variety and candidates, and the candidates' gaps. */
 interface Weighed {
@@ -38,7 +41,7 @@ interface Weighed {
 
 function choosePenalty(trait: TraitEvidence, factor: number): VariancePenalty | null {
   if (trait.usual === null || interactionTerms.some((term) => !(trait.usual![term] > 0))) return null;
-  return { nu: PENALTY, usual: scaleVariances(trait.usual, factor) };
+  return { nu: PENALTY, usual: scaleVariances(trait.usual, factor), spread: FACTOR_SPREAD };
 }
 
 /** Positions of the candidates that have cells. */
@@ -143,7 +146,7 @@ function settle(ground: TraitGround, gap: CandidateGap, verdict: TraitVerdict): 
     sites: ground.sites,
     seasons: ground.seasons.length,
     environments: ground.evidence.tables.length,
-    penalty: fit.penalty?.nu ?? 0,
+    penalty: fit.penalty,
   });
 }
 
@@ -281,6 +284,7 @@ export function weighTrait(
             penalty: fit.penalty?.nu ?? 0,
             components,
             usual: fit.penalty?.usual ?? null,
+            usualFactor: fit.penalty && commonFactor(fit.penalty, fit.point.theta),
             logLik: fit.point.logLik,
             iterations: fit.iterations,
           }

@@ -35,6 +35,11 @@ test('own variances are told with the day they were estimated', async () => {
   expect(screen.getByText(/as estimated on 2 November 2026/)).toBeTruthy();
 });
 
+test('how much varieties moved here against what is usual is told, where it is known', async () => {
+  await show({ ...buildResult([holding]), usualFactor: 1.42 });
+  expect(screen.getByText(/In these trials they moved 1\.4 times as much as is usual/)).toBeTruthy();
+});
+
 test.each([
   [{ question: 'several', comparison: 'dunnett' }, /Several candidates are compared .* Dunnett/],
   [{ question: 'several', comparison: 'lsd' }, /^One candidate is compared with one variety/],

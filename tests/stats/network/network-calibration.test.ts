@@ -32,6 +32,13 @@ describe('coverage among equal varieties', () => {
     ['half of the entries away', { ...plan, presence: 0.5 }, 0.94, 0.985, 0.05],
     ['two entries', { ...plan, entries: 2 }, 0.94, 0.98, 0.05],
     ['true variances four times the usual ones', { ...plan, factor: 4 }, 0.9, 1, 0.13],
+    [
+      'two entries, true variances four times the usual ones',
+      { ...plan, entries: 2, factor: 4 },
+      0.9,
+      1,
+      0.13,
+    ],
     ['skewed plots', { ...plan, plots: 'skewed' }, 0.94, 0.98, 0.05],
     ['two hailed trials', { ...plan, hailed: 2 }, 0.94, 0.98, 0.05],
   ] as const)('%s', { timeout: 120_000 }, (_, tried, low, high, falseLimit) => {

@@ -99,7 +99,7 @@ describe('weighing a pair', () => {
       const { site, season } = place.get(trial)!;
       return { entry, trial, site, year: season, mean, variance: variance! };
     });
-    const combined = combineTrials(cells, { usual: usualYield, current: 'Now' });
+    const combined = combineTrials(cells, { usual: usualYield, spread: Math.LN2, current: 'Now' });
     if (combined.outcome === 'not-fitted') throw new Error(combined.reason);
     const same = combined.gaps.find(({ a }) => a === 'Close')!;
     expect(gap!.estimate).toBeCloseTo(same.estimate, 10);
@@ -252,7 +252,7 @@ describe('site-years to settle', () => {
     sites: 4,
     seasons: 2,
     environments: 8,
-    penalty: 1e12,
+    penalty: { nu: 1e12, usual: { site: 1e-9, year: 1e-9, rest: 0.08 } },
   };
 
   it('are the first number with power .8', () => {
