@@ -4,6 +4,7 @@ import {
   date,
   doublePrecision,
   index,
+  jsonb,
   pgTable,
   primaryKey,
   text,
@@ -31,6 +32,11 @@ export const priceSheets = pgTable(
     priceHigh: doublePrecision('price_high').notNull(),
     haulagePerTonne: doublePrecision('haulage_per_tonne').notNull().default(0),
     dryingPerTonne: doublePrecision('drying_per_tonne').notNull().default(0),
+    /** What is paid by the tonne for harvesting, and for each point of moisture above the standard; null where nothing is. */
+    harvestPerTonne: doublePrecision('harvest_per_tonne'),
+    dryingPerPoint: doublePrecision('drying_per_point'),
+    /** What buyers add or take off by the level of a trait: QualityRule[] of shared/money.ts. */
+    qualityRules: jsonb('quality_rules').notNull().default([]),
   },
   (table) => [
     unique('price_sheets_identity_unique').on(table.cropId, table.regionId, table.effectiveOn),
@@ -40,6 +46,10 @@ export const priceSheets = pgTable(
       sql`${table.priceLow} > 0 and ${table.priceLow} <= ${table.priceMiddle} and ${table.priceMiddle} <= ${table.priceHigh}`,
     ),
     check('price_sheets_costs_positive', sql`${table.haulagePerTonne} >= 0 and ${table.dryingPerTonne} >= 0`),
+    check(
+      'price_sheets_harvest_drying_positive',
+      sql`${table.harvestPerTonne} >= 0 and ${table.dryingPerPoint} >= 0`,
+    ),
   ],
 );
 
@@ -62,6 +72,11 @@ export const seedCosts = pgTable(
     germinationPercent: doublePrecision('germination_percent'),
     mortalityPercent: doublePrecision('mortality_percent'),
     targetPlantsM2: doublePrecision('target_plants_m2'),
+    /** Of grain kept back as seed, per tonne. */
+    cleaningPerTonne: doublePrecision('cleaning_per_tonne'),
+    /** Moisture of the variety's grain when it usually comes off the field, and what its straw brings. */
+    harvestMoisturePercent: doublePrecision('harvest_moisture_percent'),
+    strawPerHectare: doublePrecision('straw_per_hectare'),
   },
   (table) => [
     primaryKey({ columns: [table.priceSheetId, table.varietyId] }),
@@ -69,6 +84,16 @@ export const seedCosts = pgTable(
     check(
       'seed_costs_positive',
       sql`${table.seedPerHectare} >= 0 and ${table.treatmentPerHectare} >= 0 and ${table.royaltyPerHectare} >= 0`,
+    ),
+    check(
+      'seed_costs_rate_range',
+      sql`${table.seedPricePerKg} >= 0 and ${table.thousandKernelWeightG} > 0 and ${table.targetPlantsM2} > 0
+        and ${table.germinationPercent} between 1 and 100 and ${table.mortalityPercent} between 0 and 99`,
+    ),
+    check(
+      'seed_costs_grain_range',
+      sql`${table.cleaningPerTonne} >= 0 and ${table.strawPerHectare} >= 0
+        and ${table.harvestMoisturePercent} between 0 and 60`,
     ),
   ],
 );

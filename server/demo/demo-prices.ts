@@ -1,3 +1,5 @@
+import type { QualityRule } from '#shared/money.ts';
+import { reckonSeedingRate } from '#shared/seed-budget.ts';
 import { demoCrops, type DemoCrop } from './demo-crops.ts';
 import { demoSeed, type CropSlug } from './demo-settings.ts';
 import { openRandomSource } from './random-source.ts';
@@ -8,6 +10,14 @@ export type DemoSeedCost = {
   seedPerHectare: number;
   treatmentPerHectare: number;
   royaltyPerHectare: number;
+  seedPricePerKg: number;
+  targetPlantsM2: number;
+  thousandKernelWeightG: number;
+  germinationPercent: number;
+  mortalityPercent: number;
+  cleaningPerTonne: number;
+  harvestMoisturePercent: number;
+  strawPerHectare?: number;
 };
 
 export type DemoPriceSheet = {
@@ -20,18 +30,53 @@ export type DemoPriceSheet = {
   priceHigh: number;
   haulagePerTonne: number;
   dryingPerTonne: number;
+  dryingPerPoint: number;
+  qualityRules: QualityRule[];
   seedCosts: DemoSeedCost[];
 };
 
-/** CAD per tonne at standard moisture, and per hectare for seed: of the size of a Canadian season, invented in detail. */
-const cropPrices: Record<
-  CropSlug,
-  { low: number; middle: number; high: number; drying: number; seed: number; treatment: number }
-> = {
-  'spring-barley': { low: 225, middle: 262, high: 305, drying: 4, seed: 62, treatment: 11 },
-  'field-pea': { low: 325, middle: 390, high: 460, drying: 6, seed: 118, treatment: 19 },
-  'winter-wheat': { low: 255, middle: 298, high: 350, drying: 4, seed: 71, treatment: 13 },
+type CropPrice = {
+  low: number;
+  middle: number;
+  high: number;
+  drying: number;
+  seed: number;
+  treatment: number;
+  /** Of seed: g of a thousand kernels, and the share of living seeds that give no plant, %. */
+  kernelWeight: number;
+  mortality: number;
+  /** Per ha, where straw is sold. */
+  straw: number | null;
+  qualityRules: QualityRule[];
 };
+
+const proteinRule = (side: QualityRule['side'], limit: number, perTonne: number): QualityRule => ({
+  ...{ traitSlug: 'protein', side, limit, perTonne },
+});
+
+/** CAD per tonne at standard moisture, and per hectare for seed: of the size of a Canadian season, invented in detail. */
+const cropPrices: Record<CropSlug, CropPrice> = {
+  'spring-barley': {
+    ...{ low: 225, middle: 262, high: 305, drying: 4, seed: 62, treatment: 11 },
+    ...{ kernelWeight: 46, mortality: 12, straw: 38 },
+    // Maltsters pay for barley that is not too rich.
+    qualityRules: [proteinRule('under', 12, 6)],
+  },
+  'field-pea': {
+    ...{ low: 325, middle: 390, high: 460, drying: 6, seed: 118, treatment: 19 },
+    ...{ kernelWeight: 235, mortality: 10, straw: null },
+    qualityRules: [],
+  },
+  'winter-wheat': {
+    ...{ low: 255, middle: 298, high: 350, drying: 4, seed: 71, treatment: 13 },
+    ...{ kernelWeight: 43, mortality: 13, straw: 34 },
+    qualityRules: [proteinRule('at-least', 12, 5), proteinRule('at-least', 13, 5)],
+  },
+};
+
+/** CAD per tonne and point of moisture. */
+const dryingPerPoint = 1.6;
+const cleaningPerTonne = 62;
 
 /** What a region adds to the price and pays for the road to the elevator, CAD per tonne. */
 const regionTerms: Record<string, { price: number; haulage: number; drying: number }> = {
@@ -48,7 +93,7 @@ export const varietyWithoutSeedCost = 'Larkhollow';
 export function writePriceSheets(): DemoPriceSheet[] {
   return demoCrops.flatMap((crop) => {
     const price = cropPrices[crop.slug];
-    const seedCosts = writeSeedCosts(crop, price.seed, price.treatment);
+    const seedCosts = writeSeedCosts(crop, price);
     return velmarRegions.map((region) => {
       const terms = regionTerms[region.slug] ?? { price: 0, haulage: 0, drying: 0 };
       return {
@@ -61,24 +106,44 @@ export function writePriceSheets(): DemoPriceSheet[] {
         priceHigh: price.high + terms.price,
         haulagePerTonne: terms.haulage,
         dryingPerTonne: price.drying + terms.drying,
+        dryingPerPoint,
+        qualityRules: price.qualityRules,
         seedCosts,
       };
     });
   });
 }
 
-/** Newer varieties cost more seed and carry a royalty. */
-function writeSeedCosts(crop: DemoCrop, seed: number, treatment: number): DemoSeedCost[] {
+/** Newer varieties cost more seed and carry a royalty; each lot of seed has its own weight, germination and moisture. */
+function writeSeedCosts(crop: DemoCrop, price: CropPrice): DemoSeedCost[] {
   const random = openRandomSource(demoSeed, `seed costs ${crop.slug}`);
+  const lots = openRandomSource(demoSeed, `seed lots ${crop.slug}`);
   return crop.varieties
     .filter((variety) => variety.name !== varietyWithoutSeedCost)
     .map((variety) => {
       const age = Math.max(0, variety.from - 2019);
+      const about = Math.round(price.seed * (1 + 0.035 * age) + 4 * random.uniform());
+      const lot = {
+        plantsM2: crop.seedingRatePlantsM2,
+        kernelWeightG: Math.round(price.kernelWeight * (0.94 + 0.12 * lots.uniform()) * 10) / 10,
+        germinationPercent: 93 + lots.integer(6),
+        mortalityPercent: price.mortality,
+      };
+      const rate = reckonSeedingRate(lot);
+      const seedPricePerKg = Math.round((about / rate) * 100) / 100;
       return {
         variety: variety.name,
-        seedPerHectare: Math.round(seed * (1 + 0.035 * age) + 4 * random.uniform()),
-        treatmentPerHectare: treatment,
+        seedPerHectare: Math.round(rate * seedPricePerKg * 10) / 10,
+        treatmentPerHectare: price.treatment,
         royaltyPerHectare: variety.from >= 2022 ? 6.5 : 0,
+        seedPricePerKg,
+        targetPlantsM2: lot.plantsM2,
+        thousandKernelWeightG: lot.kernelWeightG,
+        germinationPercent: lot.germinationPercent,
+        mortalityPercent: lot.mortalityPercent,
+        cleaningPerTonne,
+        harvestMoisturePercent: crop.standardMoisturePercent + Math.round(10 + 20 * lots.uniform()) / 10,
+        ...(price.straw !== null && { strawPerHectare: price.straw + lots.integer(7) }),
       };
     });
 }

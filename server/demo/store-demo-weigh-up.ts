@@ -3,6 +3,7 @@ import type { Database } from '#server/db.ts';
 import { makeCopy } from '#server/grower-copy/make-copy.ts';
 import { insertWeighUp } from '#server/weigh-up/weigh-up-store.ts';
 import { demoAccounts } from './demo-accounts.ts';
+import { demoCrops } from './demo-crops.ts';
 import type { DemoPriceSheet } from './demo-prices.ts';
 import { pick, type CatalogueIds } from './store-demo-catalogue.ts';
 
@@ -44,12 +45,12 @@ export async function storeDemoWeighUp(
 
 /** The sheet as an advisor takes it over: nothing changed. */
 function assume(sheet: DemoPriceSheet, varieties: ReadonlyMap<string, string>): MoneyAssumptions {
-  const { currency, priceLow, priceMiddle, priceHigh, haulagePerTonne, dryingPerTonne } = sheet;
+  const { crop: _, region: _in, effectiveOn, seedCosts, ...terms } = sheet;
+  const moisture = demoCrops.find(({ slug }) => slug === crop)?.standardMoisturePercent;
   return {
-    ...{ currency, priceLow, priceMiddle, priceHigh, haulagePerTonne, dryingPerTonne },
-    seedCosts: Object.fromEntries(
-      sheet.seedCosts.map(({ variety, ...cost }) => [pick(varieties, variety), cost]),
-    ),
-    priceSheetDate: sheet.effectiveOn,
+    ...terms,
+    ...(moisture !== undefined && { standardMoisturePercent: moisture }),
+    seedCosts: Object.fromEntries(seedCosts.map(({ variety, ...cost }) => [pick(varieties, variety), cost])),
+    priceSheetDate: effectiveOn,
   };
 }

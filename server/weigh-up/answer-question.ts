@@ -77,7 +77,7 @@ export async function rankCandidates(
     candidateIds: standing.filter((id) => id !== currentVarietyId),
     kind: 'several',
     list: [],
-    traits: 'yield',
+    traits: listPricedTraits(priceSheet),
     acceptsOtherRegions: asksForOtherRegions(scope),
   } as const;
   const money = { money: priceSheet, priceSheet, usualYield: null, askedAt: new Date() };
@@ -88,6 +88,12 @@ export async function rankCandidates(
     (a, b) => (b.gap?.estimate ?? -Infinity) - (a.gap?.estimate ?? -Infinity),
   );
   return { result: { ...result, candidates }, assumptions: priceSheet };
+}
+
+/** Yield and the traits that premiums hang on: what the money of a list is reckoned from. */
+function listPricedTraits(money: MoneyAssumptions | null): Question['traits'] {
+  const rules = money?.qualityRules ?? [];
+  return rules.length === 0 ? 'yield' : [...new Set([yieldSlug, ...rules.map(({ traitSlug }) => traitSlug)])];
 }
 
 /** Recalls or weighs the answer, and puts the money to it. */

@@ -12,11 +12,13 @@ import { groupBy } from './group-by.ts';
 /** The trait that money and the headline verdict are about. */
 export const yieldSlug = 'yield';
 
-/** Which traits are weighed together. */
-export type TraitChoice = 'all' | 'yield' | 'all-but-yield';
+/** Which traits are weighed together; a list names them. */
+export type TraitChoice = 'all' | 'yield' | 'all-but-yield' | readonly string[];
 
-const isChosen = (slug: string, chosen: TraitChoice): boolean =>
-  chosen === 'all' || (slug === yieldSlug) === (chosen === 'yield');
+function isChosen(slug: string, chosen: TraitChoice): boolean {
+  if (typeof chosen !== 'string') return chosen.includes(slug);
+  return chosen === 'all' || (slug === yieldSlug) === (chosen === 'yield');
+}
 
 /** Lays the evidence out as the engine takes it: trials by id, entries by variety id, numeric traits only. */
 export function layOutNetwork(evidence: Evidence, traits: TraitChoice): EvidenceNetwork {

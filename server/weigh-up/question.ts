@@ -9,8 +9,8 @@ export type Question = {
   kind: QuestionKind;
   /** For the best of a list, all of the list but the current variety, the candidates among them; else empty. */
   list: readonly string[];
-  /** all: every trait of the crop; yield: a list of candidates needs no more, and is asked for often */
-  traits: 'all' | 'yield';
+  /** all: every trait of the crop; a list of candidates needs yield and what buyers pay by, no more, and is asked for often */
+  traits: 'all' | 'yield' | readonly string[];
   /** Whether trials of other regions may answer alone, which the advisor has to ask for. */
   acceptsOtherRegions: boolean;
   /** What is old is old from here. */

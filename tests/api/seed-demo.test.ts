@@ -111,6 +111,20 @@ describe('the seeded demo', () => {
       (candidate: { varietyName: string }) => candidate.varietyName === 'Larkhollow',
     );
     expect(unpriced.money).toBeNull();
+    const priced = body.snapshot.result.candidates.find(
+      (candidate: { varietyName: string }) => candidate.varietyName === 'Quillane',
+    );
+    // Barley under 12 % of protein is paid for: a premium of up to 6 a tonne, seldom sure and seldom out of reach.
+    expect(priced.money.quality.candidate).toBeGreaterThan(0);
+    expect(priced.money.quality.candidate).toBeLessThan(6);
+    expect(priced.money.badReturn).toBeLessThan(priced.money.goodReturn);
+  });
+
+  test('states for every seed cost the rate that it follows from', async () => {
+    const off = sql`select count(*)::int as count from seed_costs where abs(seed_per_hectare - seed_price_per_kg
+      * target_plants_m2 * thousand_kernel_weight_g / (germination_percent * (1 - mortality_percent / 100))) > 0.06
+      or seed_price_per_kg is null or cleaning_per_tonne is null or harvest_moisture_percent is null`;
+    expect(await readNumber(off)).toBe(0);
   });
 });
 

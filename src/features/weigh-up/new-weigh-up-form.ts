@@ -55,6 +55,7 @@ export function toWeighUpInput(
     areaHectares: form.areaHectares,
     usualYield: form.usualYield,
     assumptions: {
+      ...defaults,
       currency: defaults?.currency ?? fallbackCurrency,
       priceLow: low,
       priceMiddle: middle,
