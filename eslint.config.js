@@ -27,6 +27,15 @@ const notServer = {
   message: 'Client and shared code know nothing of the server.',
 };
 const notClient = { regex: '^#src/', message: 'The server knows nothing of the client.' };
+/** Pages of the client that a capability renders itself, each by one front door. */
+const renderedPages = { 'grower-copy': 'features/grower-copy/render-copy-page.ts' };
+const notClientBut = (page) =>
+  page === undefined
+    ? notClient
+    : {
+        regex: `^#src/(?!${page.replaceAll('.', '\\.')}$)`,
+        message: `Of the client this capability renders one page, by ${page}.`,
+      };
 
 /**
  * Who may import what. Made from the list of folders, so that a new capability or feature is guarded without a new
@@ -59,7 +68,7 @@ const importRules = [
     folders: [`server/${name}`],
     forbidden: [
       notTests,
-      notClient,
+      notClientBut(renderedPages[name]),
       {
         regex: '^#server/stats/(?!engine\\.ts$)',
         message: 'The engine is entered by its front door, engine.ts.',

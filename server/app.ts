@@ -14,6 +14,7 @@ import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
 import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
+import { addCopyPage, keepLinkPrivate } from './grower-copy/copy-page-routes.ts';
 import { addGrowerCopyRoutes } from './grower-copy/grower-copy-routes.ts';
 import { addHealthRoute } from './health.ts';
 import { requireSameOrigin } from './same-origin.ts';
@@ -40,7 +41,7 @@ const capabilities = [
 ];
 
 /**
- * Builds the application: API under /api, the client on every other path. Listens to nothing yet.
+ * Builds the application: API under /api, grower copies under /copy, the client on every other path. Listens to nothing yet.
  * @param onMailQueued told when a mail was put into the outbox, so that it need not wait for the next look
  */
 export function buildApp(
@@ -57,12 +58,14 @@ export function buildApp(
     pinoHttp({
       logger,
       redact: ['req.headers.cookie', 'req.headers.authorization', 'res.headers["set-cookie"]'],
-      serializers: { err: describeFailure },
+      serializers: { err: describeFailure, req: hideLinkSecret },
     }),
   );
   app.use(buildHelmet(settings));
   app.use(compression());
   addApi(app, db, pool, settings, onMailQueued);
+  app.use('/copy', keepLinkPrivate);
+  addCopyPage(app, db, settings);
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
   app.use(handleError);
   return app;
@@ -75,6 +78,11 @@ export function buildApp(
 function describeFailure(error: Error): { type: string; message: string; stack: string | undefined } {
   const told = error instanceof DrizzleQueryError && error.cause !== undefined ? error.cause : error;
   return { type: told.name, message: told.message, stack: told.stack };
+}
+
+/** A request as the log may hold it: the link of a copy is the key to it. */
+function hideLinkSecret<T extends { url: string }>(request: T): T {
+  return request.url.startsWith('/copy/') ? { ...request, url: '/copy/…', params: {} } : request;
 }
 
 /** Contracts carry whole paths, so the routers are mounted at the root and only the guards at /api. */
@@ -106,11 +114,8 @@ function serveClient(app: Express, clientFolder: string): void {
     response.status(404).end();
   });
   app.use(express.static(clientFolder, { index: false, maxAge: '1h' }));
-  app.get('/{*path}', (request, response) => {
+  app.get('/{*path}', (_request, response) => {
     response.set('Cache-Control', 'no-cache');
-    if (request.path.startsWith('/copy/')) {
-      response.set({ 'X-Robots-Tag': 'noindex, nofollow', 'Referrer-Policy': 'no-referrer' });
-    }
     response.sendFile(join(clientFolder, 'index.html'));
   });
 }

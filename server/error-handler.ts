@@ -1,4 +1,4 @@
-import type { ErrorRequestHandler } from 'express';
+import type { ErrorRequestHandler, Request, Response } from 'express';
 import { CodedError, type ErrorCode, type ErrorReply } from '#shared/error-codes.ts';
 import { isDatabaseAway, sqlStateOf } from './db.ts';
 
@@ -39,18 +39,30 @@ const unstorableStates: ReadonlySet<string | null> = new Set(['22021', '22P05', 
 /** Seconds after which a client may try again when the database is away or the computing threads are taken. */
 const retrySeconds = 5;
 
-/** The one place where a failure becomes a status and a code; routes never catch. */
-export const handleError: ErrorRequestHandler = (error: unknown, request, response, next) => {
-  // Whoever asked is gone: there is nobody to answer, and an ended computation is no failure.
-  if (response.closed) return;
-  if (response.headersSent) {
-    next(error);
-    return;
-  }
+/**
+ * The one place where a failure becomes a status and a code; routes never catch. Sets the status and what belongs to it,
+ * and notes what only the log may know. How the failure is told is left to who calls.
+ * @returns null where it can no longer be told: the answer has begun
+ */
+export function settleFailure(error: unknown, request: Request, response: Response): CodedError | null {
+  if (response.headersSent) return null;
   const coded = codeFailure(error);
   if (coded.code === 'internal' || coded.code === 'database-away')
     request.log?.error({ err: error }, coded.code);
   if (statusOf[coded.code] === 503) response.set('Retry-After', String(retrySeconds));
+  response.status(statusOf[coded.code]);
+  return coded;
+}
+
+/** Tells a failure as the API does. */
+export const handleError: ErrorRequestHandler = (error: unknown, request, response, next) => {
+  // Whoever asked is gone: there is nobody to answer, and an ended computation is no failure.
+  if (response.closed) return;
+  const coded = settleFailure(error, request, response);
+  if (coded === null) {
+    next(error);
+    return;
+  }
   const reply: ErrorReply = {
     error: {
       code: coded.code,
@@ -58,7 +70,7 @@ export const handleError: ErrorRequestHandler = (error: unknown, request, respon
       ...(coded.issues === undefined ? {} : { issues: coded.issues }),
     },
   };
-  response.status(statusOf[coded.code]).json(reply);
+  response.json(reply);
 };
 
 /** Brings what the body parser, the upload parser, the pool and our own code throw to one type. */

@@ -2,6 +2,7 @@ import { z } from 'zod';
 import { language } from './account.ts';
 import { trait } from './catalogue.ts';
 import { defineContract } from './contract.ts';
+import type { Language } from './language.ts';
 import { weighUp, weighUpResult } from './weigh-up.ts';
 
 /** Everything the copy shows, frozen when it was made; the page renders from this alone. */
@@ -25,6 +26,16 @@ export const laterChange = z.object({
   change: z.enum(['corrected', 'withdrawn']),
 });
 export type LaterChange = z.infer<typeof laterChange>;
+
+/** A copy as whoever has its link reads it. */
+export type OpenedCopy = {
+  snapshot: GrowerCopySnapshot;
+  /** Language that it was made in. */
+  language: Language;
+  /** ISO 8601, UTC. */
+  expiresAt: string;
+  laterChanges: readonly LaterChange[];
+};
 
 /** Why a mail has not arrived (`weigh-up:copies.mail.failure.<code>`). */
 export const mailFailure = z.enum([
@@ -122,19 +133,4 @@ export const revokeGrowerCopy = defineContract({
   access: ['advisor', 'agronomist'],
   params: copyParams,
   reply: z.object({ copy: growerCopyLine }),
-});
-
-/** Opens a copy by the secret of its link: no account needed. Unknown is 404, expired or revoked 410. */
-export const openGrowerCopy = defineContract({
-  method: 'GET',
-  path: '/api/copies/:token',
-  access: 'anyone',
-  /** Whatever stands in the link: one that was cut short is as unknown as an invented one. */
-  params: z.object({ token: z.string().min(1).max(500) }),
-  reply: z.object({
-    snapshot: growerCopySnapshot,
-    language,
-    expiresAt: z.iso.datetime(),
-    laterChanges: z.array(laterChange),
-  }),
 });

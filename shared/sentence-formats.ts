@@ -1,4 +1,3 @@
-import type { Language } from './account.ts';
 import { formatDate } from './format-date.ts';
 import {
   boundDecimals,
@@ -8,13 +7,14 @@ import {
   formatPValue,
   formatQuantity,
 } from './format-number.ts';
+import { readLanguage, type Language } from './language.ts';
 import { readerUnit, storedUnits, toReader, type ReaderUnits } from './reader-units.ts';
 
 /**
  * Options as a sentence gives them: `{{gap, gap(decimals: 2; unit: t/ha)}}`. Whoever says the sentence may name the
  * reader's units among its values: figures in t/ha then follow them.
  */
-export type SentenceFormatOptions = {
+type SentenceFormatOptions = {
   decimals?: number;
   unit?: string;
   currency?: string;
@@ -59,6 +59,21 @@ export const sentenceFormats: Record<string, SentenceFormat> = {
 };
 
 /** Writes an ISO date inside a sentence: `{{on, date}}`. */
-export function formatSentenceDate(value: string, language: Language): string {
+function formatSentenceDate(value: string, language: Language): string {
   return formatDate(value, language);
+}
+
+/** What an i18next formatter offers for taking up a format. */
+type SentenceFormatter = {
+  add: (name: string, write: (value: unknown, tag: string | undefined, options: object) => string) => void;
+};
+
+/** Lets sentences name our own formats behind a placeholder, in place of the translation library's. */
+export function addSentenceFormats(formatter: SentenceFormatter | undefined): void {
+  for (const [name, format] of Object.entries(sentenceFormats)) {
+    formatter?.add(name, (value, tag, options) =>
+      typeof value === 'number' ? format(value, readLanguage(tag), options) : String(value),
+    );
+  }
+  formatter?.add('date', (value, tag) => formatSentenceDate(String(value), readLanguage(tag)));
 }

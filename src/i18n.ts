@@ -1,8 +1,8 @@
 import { createInstance, type BackendModule, type i18n as I18n, type ResourceKey } from 'i18next';
 import { initReactI18next } from 'react-i18next';
 import { language as languageCode } from '#shared/account.ts';
-import { languages, readLanguage, type Language } from '#shared/language.ts';
-import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
+import { languages, type Language } from '#shared/language.ts';
+import { addSentenceFormats } from '#shared/sentence-formats.ts';
 import { ApiError } from './api-client.ts';
 import type { Namespace } from './locale-resources.ts';
 
@@ -75,18 +75,7 @@ export async function startI18n(): Promise<void> {
       interpolation: { escapeValue: false },
       returnNull: false,
     });
-  addSentenceFormats();
-}
-
-/** Lets a sentence name our own formats behind a placeholder, in place of the library's. */
-function addSentenceFormats(): void {
-  const formatter = i18n.services.formatter;
-  for (const [name, format] of Object.entries(sentenceFormats)) {
-    formatter?.add(name, (value: unknown, tag, options: SentenceFormatOptions) =>
-      typeof value === 'number' ? format(value, readLanguage(tag), options) : String(value),
-    );
-  }
-  formatter?.add('date', (value: unknown, tag) => formatSentenceDate(String(value), readLanguage(tag)));
+  addSentenceFormats(i18n.services.formatter);
 }
 
 /**

@@ -14,7 +14,6 @@ export const paths = {
   accounts: '/accounts',
   newAccount: '/accounts/new',
   auditLog: '/accounts/audit-log',
-  growerCopy: '/copy/:token',
 } as const;
 
 /** Fills the parameters of a path in: `fillPath(paths.trial, { trialId })`. */

@@ -1,8 +1,5 @@
-import { Suspense } from 'react';
 import { Route, Routes } from 'react-router-dom';
 import { AppLayout, HomeRedirect, SignedInOnly } from './app-layout.tsx';
-import { BrokenPage } from './broken-page.tsx';
-import { ErrorBoundary } from './components/error-boundary.tsx';
 import { lazyPage } from './lazy-page.tsx';
 import { NotFoundPage } from './not-found-page.tsx';
 import { paths } from './paths.ts';
@@ -60,10 +57,6 @@ const AuditLogPage = lazyPage(
   async () => (await import('./features/accounts/audit-log-page.tsx')).AuditLogPage,
   ['accounts'],
 );
-const GrowerCopyPage = lazyPage(
-  async () => (await import('./features/grower-copy/grower-copy-page.tsx')).GrowerCopyPage,
-  ['copy', 'verdicts', 'cautions', 'method', 'drawings'],
-);
 
 /** Every page of the client. Each feature is fetched when one of its pages is first opened. */
 export function AppRoutes() {
@@ -94,16 +87,6 @@ export function AppRoutes() {
         </Route>
         <Route path="*" element={<NotFoundPage />} />
       </Route>
-      <Route
-        path={paths.growerCopy}
-        element={
-          <ErrorBoundary resetKey={paths.growerCopy} fallback={(error) => <BrokenPage error={error} />}>
-            <Suspense fallback={null}>
-              <GrowerCopyPage />
-            </Suspense>
-          </ErrorBoundary>
-        }
-      />
     </Routes>
   );
 }

@@ -1,5 +1,5 @@
 import { createInstance, type i18n } from 'i18next';
-import { sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
+import { addSentenceFormats } from '#shared/sentence-formats.ts';
 import errors from '#locales/en/errors.json' with { type: 'json' };
 import problems from '#locales/en/problems.json' with { type: 'json' };
 
@@ -11,10 +11,6 @@ export async function openSentences(): Promise<i18n> {
     resources: { en: { errors, problems } },
     interpolation: { escapeValue: false },
   });
-  for (const [name, format] of Object.entries(sentenceFormats)) {
-    sentences.services.formatter?.add(name, (value: unknown, _tag, options: SentenceFormatOptions) =>
-      typeof value === 'number' ? format(value, 'en', options) : String(value),
-    );
-  }
+  addSentenceFormats(sentences.services.formatter);
   return sentences;
 }

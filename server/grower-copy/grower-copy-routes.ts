@@ -1,10 +1,9 @@
-import type { Request, Response, Router } from 'express';
+import type { Request, Router } from 'express';
 import { CodedError } from '#shared/error-codes.ts';
 import {
   listGrowerCopies,
   mailGrowerCopy,
   makeGrowerCopy,
-  openGrowerCopy,
   retryGrowerCopyMail,
   revokeGrowerCopy,
 } from '#shared/grower-copy.ts';
@@ -14,7 +13,7 @@ import type { ServerSettings } from '#server/env.ts';
 import { requireMe, route } from '#server/route.ts';
 import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
 import { findAffectedCopies } from './affected-copies.ts';
-import { listCopies, openCopy, revokeOwnCopy } from './grower-copy-store.ts';
+import { listCopies, revokeOwnCopy } from './grower-copy-store.ts';
 import { mailCopyAgain, retryMailOfCopy } from './mail-copy.ts';
 import { makeCopy } from './make-copy.ts';
 import { renewCopy } from './renew-copy.ts';
@@ -77,14 +76,4 @@ export function addGrowerCopyRoutes(
     if (made.isMailed) onMailQueued();
     return { copy: made.copy, link: `${origin}${made.path}` };
   });
-
-  route(router, openGrowerCopy, async ({ params, response }) => {
-    keepLinkPrivate(response);
-    return openCopy(db, params.token);
-  });
-}
-
-/** The link is the key: it must not reach search engines or, as a referrer, other sites. */
-function keepLinkPrivate(response: Response): void {
-  response.set({ 'X-Robots-Tag': 'noindex, nofollow', 'Referrer-Policy': 'no-referrer' });
 }

@@ -8,6 +8,7 @@ import {
   type GrowerCopyLine,
   type GrowerCopySnapshot,
   type LaterChange,
+  type OpenedCopy,
 } from '#shared/grower-copy.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
@@ -145,22 +146,21 @@ export async function revokeOwnCopy(db: Database, ownerId: string, copyId: strin
   });
 }
 
-export type OpenedCopy = {
-  snapshot: GrowerCopySnapshot;
-  language: Language;
-  expiresAt: string;
-  laterChanges: LaterChange[];
-};
-
 /**
- * Opens a copy by the secret of its link, and counts the opening.
+ * Opens a copy by the secret of its link.
+ * @param isCounted whether this is an opening, and not only another view of what is open already
  * @throws CodedError link-unknown, link-revoked, link-expired
  */
-export async function openCopy(db: Database, secret: string): Promise<OpenedCopy> {
+export async function openCopy(
+  db: Database,
+  secret: string,
+  { isCounted }: { isCounted: boolean },
+): Promise<OpenedCopy> {
   const tokenHash = hashLinkSecret(secret);
+  const counted = { openings: sql`${growerCopies.openings} + 1`, lastOpenedAt: sql`now()` };
   const [row] = await db
     .update(growerCopies)
-    .set({ openings: sql`${growerCopies.openings} + 1`, lastOpenedAt: sql`now()` })
+    .set(isCounted ? counted : { openings: sql`${growerCopies.openings}` })
     .where(
       and(
         eq(growerCopies.tokenHash, tokenHash),

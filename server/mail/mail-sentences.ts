@@ -1,6 +1,6 @@
 import { createInstance, type i18n } from 'i18next';
 import { languages, type Language } from '#shared/language.ts';
-import { formatSentenceDate, sentenceFormats, type SentenceFormatOptions } from '#shared/sentence-formats.ts';
+import { addSentenceFormats } from '#shared/sentence-formats.ts';
 import enMail from '#locales/en/mail.json' with { type: 'json' };
 import frMail from '#locales/fr/mail.json' with { type: 'json' };
 
@@ -17,12 +17,6 @@ export function openMailSentences(language: Language): i18n {
     initAsync: false,
     interpolation: { escapeValue: false },
   });
-  const { formatter } = sentences.services;
-  for (const [name, format] of Object.entries(sentenceFormats)) {
-    formatter?.add(name, (value: unknown, _tag, options: SentenceFormatOptions) =>
-      typeof value === 'number' ? format(value, language, options) : String(value),
-    );
-  }
-  formatter?.add('date', (value: unknown) => formatSentenceDate(String(value), language));
+  addSentenceFormats(sentences.services.formatter);
   return sentences;
 }

@@ -6,7 +6,7 @@ import { runProgram } from './run-program.mjs';
 import { SetupError } from './setup-error.mjs';
 
 const clientSources = ['src', 'shared', 'locales', 'index.html', 'vite.config.ts', 'package-lock.json'];
-const serverSources = ['server', 'shared', 'locales', 'drizzle/schema', 'package-lock.json'];
+const serverSources = ['server', 'shared', 'src', 'locales', 'drizzle/schema', 'package-lock.json'];
 
 /**
  * Builds the client into dist/client where its sources changed since.
@@ -14,20 +14,26 @@ const serverSources = ['server', 'shared', 'locales', 'drizzle/schema', 'package
  * @returns {Promise<boolean>} whether it was built
  */
 export function buildClient(projectRoot) {
-  const vite = ['node_modules/vite/bin/vite.js', 'build', '--logLevel', 'warn'];
   return buildWhenChanged(projectRoot, 'client', clientSources, async () => {
-    const env = { ...process.env, NODE_ENV: 'production' };
-    const { code, output } = await runProgram(process.execPath, vite, {
-      cwd: projectRoot,
-      env,
-      isEndable: true,
-    });
-    if (code !== 0) {
-      throw new SetupError('The client could not be built.', 'npx tsc -b tells where its source is wrong.', {
-        output,
-      });
-    }
+    await runVite(projectRoot, 'production');
+    // The page of a grower copy has a small script and style of its own; see vite.config.ts.
+    await runVite(projectRoot, 'copy');
   });
+}
+
+async function runVite(projectRoot, mode) {
+  const vite = ['node_modules/vite/bin/vite.js', 'build', '--mode', mode, '--logLevel', 'warn'];
+  const env = { ...process.env, NODE_ENV: 'production' };
+  const { code, output } = await runProgram(process.execPath, vite, {
+    cwd: projectRoot,
+    env,
+    isEndable: true,
+  });
+  if (code !== 0) {
+    throw new SetupError('The client could not be built.', 'npx tsc -b tells where its source is wrong.', {
+      output,
+    });
+  }
 }
 
 /**
@@ -54,6 +60,8 @@ export function buildServer(projectRoot) {
         platform: 'node',
         format: 'esm',
         target: 'node20',
+        // The page of a grower copy is rendered here, by the client's own components.
+        jsx: 'automatic',
         sourcemap: true,
         logLevel: 'silent',
       });

@@ -10,12 +10,15 @@ type EvidenceTrialsProps = {
   linkTrial?: (trialId: string, words: string) => ReactNode;
   /** What can be done with a trial that counts, and with one that was ticked off. */
   stepOf?: (trial: UsedTrial) => ReactNode;
+  /** Without controls for sorting, for a page whose tables no script serves. */
+  isStill?: boolean;
 };
 
 /** The trials behind the figures, and those left out with the reason: nothing is left out in silence. */
-export function EvidenceTrials({ result, linkTrial, stepOf }: EvidenceTrialsProps) {
+export function EvidenceTrials({ result, linkTrial, stepOf, isStill = false }: EvidenceTrialsProps) {
   const { t } = useTranslation('method');
-  const columns = useUsedColumns(linkTrial);
+  const sortable = useUsedColumns(linkTrial);
+  const columns = isStill ? sortable.map(({ sortValue: _sortValue, ...column }) => column) : sortable;
   const reasonColumn: Column<LeftOutTrial> = {
     id: 'reason',
     header: t('column.reason'),

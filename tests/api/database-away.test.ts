@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { weighUps } from '#drizzle/schema/weigh-ups.ts';
 import { connectDatabase } from '#server/db.ts';
+import { say } from '#tests/support/say.ts';
 import { createTestDatabase, type TestDatabase } from '#tests/support/test-database.ts';
 import { buildWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
 import { openDatabaseProxy, type DatabaseProxy } from './database-proxy.ts';
@@ -59,12 +60,17 @@ test('while the database is away every answer is 503 with when to try again; aft
     await advisor.agent.get('/api/catalogue'),
     await advisor.agent.get('/api/weigh-ups'),
     await world.visitor().post('/api/session').send({ email: advisor.email, password: testPassword }),
-    await world.visitor().get(`/api/copies/${'A'.repeat(32)}`),
     await world.visitor().get('/api/health'),
   ]) {
     expect([reply.status, reply.body]).toEqual([503, away]);
     expect(Number(reply.headers['retry-after'])).toBeGreaterThan(0);
   }
+  const copy = await world
+    .visitor()
+    .get(`/copy/${'A'.repeat(32)}?lang=fr`)
+    .expect(503);
+  expect(copy.headers['content-type']).toMatch(/^text\/html/);
+  expect(copy.text).toContain(say('fr', 'copy:failed.away.title'));
   proxy.restore();
   await advisor.agent.get('/api/catalogue').expect(200);
   await world.signIn(advisor.email);

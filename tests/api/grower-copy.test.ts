@@ -2,6 +2,8 @@ import { eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { auditEvents } from '#drizzle/schema/audit.ts';
 import { growerCopies } from '#drizzle/schema/weigh-ups.ts';
+import { readCopyData, readWords } from '#tests/support/read-copy-page.ts';
+import { say } from '#tests/support/say.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
 import {
   foundSmallWorld,
@@ -35,9 +37,7 @@ beforeAll(async () => {
 });
 afterAll(() => world.close());
 
-const unknown = { error: { code: 'link-unknown' } };
-
-async function makeWeighUp(person: SignedIn = advisor): Promise<string> {
+async function makeWeighUp(person: SignedIn = advisor, growerName = 'Ada Quern'): Promise<string> {
   const variety = (name: string): string => idIn(small.varietyIds, name);
   const reply = await person.agent
     .post('/api/weigh-ups')
@@ -46,7 +46,7 @@ async function makeWeighUp(person: SignedIn = advisor): Promise<string> {
       regionId: small.regionIds.north,
       seasonFrom: 2022,
       seasonTo: 2025,
-      growerName: 'Ada Quern',
+      growerName,
       farmName: 'Long Furlong',
       areaHectares: 42,
       currentVarietyId: variety('Anchor'),
@@ -77,28 +77,83 @@ async function makeCopy(weighUpId?: string): Promise<Made> {
   return { weighUpId: id, copyId: reply.body.copy.id, token: reply.body.path.replace('/copy/', '') };
 }
 
-const open = (token: string) => world.visitor().get(`/api/copies/${token}`);
+const open = (token: string, query = '') => world.visitor().get(`/copy/${token}${query}`);
 const list = async (weighUpId: string) =>
   (await advisor.agent.get(`/api/weigh-ups/${weighUpId}/grower-copies`).expect(200)).body.copies;
 
 test('a copy opens by its link alone, in the grower’s language, with the figures of the weigh-up', async () => {
   const { weighUpId, token } = await makeCopy();
-  const reply = await open(token).expect(200);
+  const { text } = await open(token)
+    .expect(200)
+    .expect('content-type', /^text\/html/);
   const live = (await advisor.agent.get(`/api/weigh-ups/${weighUpId}`).expect(200)).body;
-  expect(reply.body.language).toBe('fr');
-  expect(reply.body.laterChanges).toEqual([]);
-  expect(reply.body.snapshot.weighUp).toEqual(live.weighUp);
-  expect(reply.body.snapshot.result.candidates).toEqual(live.result.candidates);
-  expect(reply.body.snapshot).toMatchObject({
-    format: 1,
-    advisorName: 'Test advisor',
-    advisorEmail: advisor.email,
-  });
-  expect(reply.body.snapshot.traits.map((trait: { slug: string }) => trait.slug)).toEqual([
-    'yield',
-    'protein',
-    'lodging',
-  ]);
+  const { language, answer } = readCopyData(text);
+  expect(language).toBe('fr');
+  expect(answer.candidates.map(({ gap }) => gap)).toEqual(
+    live.result.candidates.map(({ gap }: { gap: unknown }) => gap),
+  );
+  expect(answer.weighUp.assumptions).toEqual(live.weighUp.assumptions);
+  const [row] = await world.database.db
+    .select()
+    .from(growerCopies)
+    .where(eq(growerCopies.weighUpId, weighUpId));
+  expect(row?.snapshot).toMatchObject({ weighUp: live.weighUp, advisorEmail: advisor.email });
+});
+
+test.each(['en', 'fr'] as const)('everything is said before any script, in %s', async (language) => {
+  const { token } = await makeCopy();
+  const { text } = await open(token, `?lang=${language}`).expect(200);
+  expect(text).toContain(`<html lang="${language}">`);
+  const words = readWords(text);
+  const { candidates } = readCopyData(text).answer;
+  for (const { varietyName, verdict, gap } of candidates) {
+    expect(words).toContain(varietyName);
+    expect(words).toContain(say(language, `common:verdict.${verdict}`));
+    // The figure as the language writes it, at some number of decimals.
+    const tenths = Math.abs(gap?.estimate ?? 0)
+      .toFixed(1)
+      .replace('.', language === 'fr' ? ',' : '.');
+    expect(words).toMatch(new RegExp(`[+\u2212]?${tenths.slice(0, 2)}`));
+  }
+  expect(words).toContain(advisor.email);
+  expect(words).toContain(say(language, 'copy:howTitle'));
+  expect(words).toContain(language === 'fr' ? 'Chiffres figés le' : 'Figures frozen on');
+  // Neither a key, nor a placeholder, nor what JavaScript calls nothing.
+  expect(words).not.toMatch(
+    /\{\{|undefined|NaN|\[object|\b(copy|verdicts|cautions|method|common|drawings):\w/,
+  );
+});
+
+test('the page holds nothing that the security policy forbids, nor anything from elsewhere', async () => {
+  const { token } = await makeCopy();
+  const { text, headers } = await open(token).expect(200);
+  expect(headers['content-security-policy']).toContain("script-src 'self'");
+  const scripts = [...text.matchAll(/<script\b([^>]*)>/g)].map(([, attributes = '']) => attributes);
+  expect(scripts).toHaveLength(2);
+  for (const attributes of scripts) expect(attributes).toMatch(/src="\/|type="application\/json"/);
+  expect(text).not.toMatch(/<style|\son\w+="|(src|href)="(https?:)?\/\//);
+  // Whoever has the link has the page; the page gives the link to nobody.
+  expect(text).not.toContain(token);
+});
+
+test('what a person typed stays text', async () => {
+  const weighUpId = await makeWeighUp(advisor, '</script><script>alert(1)</script><!--');
+  const { token } = await makeCopy(weighUpId);
+  const { text } = await open(token).expect(200);
+  expect(text.includes('<script>alert')).toBe(false);
+  expect(readWords(text)).toContain('</script><script>alert(1)</script><!--');
+});
+
+test('an unchanged page is not sent again, and the opening is counted all the same', async () => {
+  const { weighUpId, token } = await makeCopy();
+  const first = await open(token).expect(200);
+  const tag = first.headers['etag'] ?? '';
+  expect(tag).toMatch(/^"[\w-]{43}"$/);
+  const again = await open(token).set('If-None-Match', tag).expect(304);
+  expect(again.text).toBe('');
+  expect((await list(weighUpId))[0].openings).toBe(2);
+  const english = await open(token, '?lang=en').set('If-None-Match', tag).expect(200);
+  expect(english.headers['etag']).not.toBe(tag);
 });
 
 test('the link is long, random and never stored; what is stored is its hash', async () => {
@@ -119,7 +174,7 @@ test('neither search engines nor other sites learn of the link, opened or refuse
   for (const reply of [await open(token), await open('x'.repeat(32))]) {
     expect(reply.headers['x-robots-tag']).toBe('noindex, nofollow');
     expect(reply.headers['referrer-policy']).toBe('no-referrer');
-    expect(reply.headers['cache-control']).toBe('no-store');
+    expect(reply.headers['cache-control']).toBe('private, no-cache');
     expect(reply.headers['set-cookie']).toBeUndefined();
   }
 });
@@ -130,27 +185,44 @@ test('openings are counted, refused ones not', async () => {
   await open(token).expect(200);
   await open(token).expect(200);
   await open(`${token}x`).expect(404);
+  // The same page in the other language is no second opening, nor is a look at the headers.
+  await open(token, '?lang=en').set('Sec-Fetch-Site', 'same-origin').expect(200);
+  await world.visitor().head(`/copy/${token}`).expect(200);
   const [copy] = await list(weighUpId);
   expect(copy.openings).toBe(2);
   expect(copy.lastOpenedAt).not.toBeNull();
 });
+
+/** Every dead link has a page of its own, in the language that is asked for or that the browser prefers. */
+async function expectClosed(token: string, status: number, failure: string): Promise<void> {
+  for (const language of ['en', 'fr'] as const) {
+    const asked = await open(token, `?lang=${language}`);
+    const preferred = await open(token).set('Accept-Language', language === 'fr' ? 'fr-CA,en;q=0.5' : 'en');
+    for (const reply of [asked, preferred]) {
+      expect(reply.status).toBe(status);
+      expect(reply.headers['content-type']).toMatch(/^text\/html/);
+      expect(reply.text).toContain(`<html lang="${language}">`);
+      const words = readWords(reply.text);
+      expect(words).toContain(say(language, `copy:failed.${failure}.title`));
+      expect(words).toContain(say(language, `copy:failed.${failure}.text`));
+      expect(words).not.toContain('Ada Quern');
+    }
+  }
+}
 
 test.each([
   ['invented', 'A'.repeat(32)],
   ['cut short', 'A'],
   ['no link at all', '%27%20or%20true--'],
   ['far too long', 'A'.repeat(400)],
-])('a link that is %s is unknown', async (_case, token) => {
-  const reply = await open(token);
-  expect([reply.status, reply.body]).toEqual([404, unknown]);
-});
+  ['with a sign that no database holds', 'A%00'],
+])('a link that is %s is unknown', (_case, token) => expectClosed(token, 404, 'link-unknown'));
 
 test('a revoked link is gone at once and stays gone, and the log knows who closed it', async () => {
   const { weighUpId, copyId, token } = await makeCopy();
   const revoked = await advisor.agent.delete(`/api/grower-copies/${copyId}`).expect(200);
   expect(revoked.body.copy.revokedAt).not.toBeNull();
-  const reply = await open(token);
-  expect([reply.status, reply.body]).toEqual([410, { error: { code: 'link-revoked' } }]);
+  await expectClosed(token, 410, 'link-revoked');
   const again = await advisor.agent.delete(`/api/grower-copies/${copyId}`).expect(200);
   expect(again.body.copy.revokedAt).toBe(revoked.body.copy.revokedAt);
   expect((await list(weighUpId))[0].openings).toBe(0);
@@ -169,8 +241,7 @@ test('an expired link says so', async () => {
   const { copyId, token } = await makeCopy();
   await world.database.db.execute(sql`update grower_copies
     set created_at = now() - interval '2 days', expires_at = now() - interval '1 second' where id = ${copyId}`);
-  const reply = await open(token);
-  expect([reply.status, reply.body]).toEqual([410, { error: { code: 'link-expired' } }]);
+  await expectClosed(token, 410, 'link-expired');
 });
 
 test('a link lives a year unless told otherwise, and never longer than three', async () => {
@@ -187,38 +258,46 @@ test('a link lives a year unless told otherwise, and never longer than three', a
 
 test('frozen figures stay when the weigh-up changes', async () => {
   const { weighUpId, token } = await makeCopy();
-  const before = (await open(token)).body.snapshot;
+  const before = (await open(token)).text;
   const { weighUp } = (await advisor.agent.get(`/api/weigh-ups/${weighUpId}`)).body;
   await advisor.agent
     .put(`/api/weigh-ups/${weighUpId}`)
     .send({ revision: 1, weighUp: { ...weighUp, growerName: 'Somebody else', areaHectares: 1 } })
     .expect(200);
-  expect((await open(token)).body.snapshot).toEqual(before);
+  expect((await open(token)).text).toBe(before);
 });
 
 test('frozen figures stay when a trial is corrected or withdrawn, and the copy says what became of it', async () => {
   const { db } = world.database;
   const { weighUpId, token } = await makeCopy();
-  const before = (await open(token)).body.snapshot;
+  const before = await open(token);
   const [, corrected, withdrawn] = trialIds;
   if (corrected === undefined || withdrawn === undefined) throw new Error('there are four trials');
   await db.execute(sql`update plots set excluded_reason = 'drowned'
     where trial_id = ${corrected} and plot_number = '102'`);
   await republish(db, corrected);
   await withdraw(db, withdrawn);
-  const after = (await open(token)).body;
-  expect(after.snapshot).toEqual(before);
+  const after = await open(token).set('If-None-Match', before.headers['etag'] ?? '');
+  expect(after.status).toBe(200);
+  expect(readCopyData(after.text)).toEqual(readCopyData(before.text));
+  const sentences = [
+    say('fr', 'verdicts:changes.corrected', { site: 'ELM', season: 2023 }),
+    say('fr', 'verdicts:changes.withdrawn', { site: 'ELM', season: 2024 }),
+  ];
+  for (const sentence of sentences) {
+    expect(readWords(before.text)).not.toContain(sentence);
+    expect(readWords(after.text)).toContain(sentence);
+  }
   const changes = [
     { trialId: corrected, siteName: 'ELM', season: 2023, change: 'corrected' },
     { trialId: withdrawn, siteName: 'ELM', season: 2024, change: 'withdrawn' },
   ];
-  expect(after.laterChanges).toHaveLength(2);
-  expect(after.laterChanges).toEqual(expect.arrayContaining(changes));
+  expect((await list(weighUpId))[0].laterChanges).toHaveLength(2);
   expect((await list(weighUpId))[0].laterChanges).toEqual(expect.arrayContaining(changes));
   const live = (await advisor.agent.get(`/api/weigh-ups/${weighUpId}`)).body.result;
   expect(live.trials).toHaveLength(3);
   const newer = await makeCopy(weighUpId);
-  expect((await open(newer.token)).body.laterChanges).toEqual([]);
+  expect(readWords((await open(newer.token)).text)).not.toContain(say('fr', 'verdicts:changes.title'));
 });
 
 test('somebody else neither makes, sees nor revokes copies of a weigh-up', async () => {

@@ -118,7 +118,7 @@ test('a mail brings a link that opens, once, in the grower’s language, as text
   expect(mail?.html).toContain(`href="${link}"`);
   expect(mail?.html).not.toMatch(/<(img|script|link)|url\(/i);
   expect(`${mail?.subject}${mail?.text}${mail?.html}`).not.toMatch(/\{\{|copy\.\w/);
-  await world.visitor().get(`/api/copies/${token}`).expect(200);
+  await world.visitor().get(`/copy/${token}`).expect(200);
   const state = await mailOf(copyId);
   expect(state).toMatchObject({ state: 'sent', attempts: 1, failure: null });
   expect(state.sentAt).not.toBeNull();

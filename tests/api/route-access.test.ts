@@ -65,7 +65,6 @@ const allowed: Record<string, Who[]> = {
   'POST /api/grower-copies/:copyId/mail-retries': weighers,
   'GET /api/affected-copies': weighers,
   'POST /api/grower-copies/:copyId/fresh': weighers,
-  'GET /api/copies/:token': everyone,
 };
 
 const isContract = (value: unknown): value is Contract =>
@@ -119,11 +118,14 @@ function listRoutes(stack: Layer[]): string[] {
   );
 }
 
-test('the application serves nothing under /api but the contracts and its health', () => {
+/** What is served as a page and not as JSON; whoever has a copy's link may open it. */
+const pages = ['GET /copy/:token'];
+
+test('the application serves nothing but the contracts, its health and its pages', () => {
   // The router is a function with a stack; its type does not say so.
   const { stack } = world.app.router as unknown as { stack: Layer[] };
   const served = [...new Set(listRoutes(stack))].sort();
-  expect(served).toEqual([...Object.keys(allowed), 'GET /api/health'].sort());
+  expect(served).toEqual([...Object.keys(allowed), 'GET /api/health', ...pages].sort());
 });
 
 describe.each(everyone)('%s', (who) => {

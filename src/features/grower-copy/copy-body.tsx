@@ -1,45 +1,30 @@
 import { useTranslation } from 'react-i18next';
-import { readMoneyBasis } from '#shared/money-basis.ts';
-import type { GrowerCopySnapshot } from '#shared/grower-copy.ts';
-import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
+import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
-import { PageHeading } from '#src/components/page-heading.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import { VerdictHeadline } from '#src/components/verdict-headline.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
-import { CopyCandidates } from './copy-candidates.tsx';
-import type { OpenedCopy } from './grower-copy-query.ts';
-import { OwnPrice } from './own-price.tsx';
+import { answerId } from './copy-script-data.ts';
+
+type CopyBodyProps = {
+  copy: OpenedCopy;
+  /** The answer as its own root, which the script takes over; null where there is none. */
+  answerHtml: string | null;
+};
 
 /** The copy as it was frozen, answer first. */
-export function CopyBody({ copy }: { copy: OpenedCopy }) {
+export function CopyBody({ copy, answerHtml }: CopyBodyProps) {
   const { t } = useTranslation(['copy', 'verdicts']);
-  const format = useFormat();
-  const { snapshot } = copy;
-  const { weighUp } = snapshot;
+  const { weighUp } = copy.snapshot;
   return (
     <>
-      <PageHeading
-        title={t('copy:title', {
-          crop: format.name(weighUp.cropName),
-          region: format.name(weighUp.regionName),
-          current: weighUp.currentVarietyName,
-        })}
-        above={t('copy:for', {
-          grower: weighUp.growerName,
-          farm: weighUp.farmName,
-          area: format.area(weighUp.areaHectares),
-          advisor: snapshot.advisorName,
-          date: format.date(snapshot.madeAt),
-        })}
-      />
+      <CopyHeading copy={copy} />
       <div className="flex flex-col gap-7">
-        <CautionList title={t('verdicts:changes.title')} items={useLaterChanges(copy)} />
-        {snapshot.result.answer === 'no-trials' ? (
+        <CautionList title={t('verdicts:changes.title')} items={useLaterChanges(copy.laterChanges)} />
+        {answerHtml === null ? (
           <NoVerdict
             crop={weighUp.cropName}
             region={weighUp.regionName}
@@ -47,7 +32,7 @@ export function CopyBody({ copy }: { copy: OpenedCopy }) {
             to={weighUp.seasonTo}
           />
         ) : (
-          <WeighedCopy snapshot={snapshot} />
+          <WeighedCopy copy={copy} answerHtml={answerHtml} />
         )}
         <WhoToAsk copy={copy} />
       </div>
@@ -55,8 +40,40 @@ export function CopyBody({ copy }: { copy: OpenedCopy }) {
   );
 }
 
+/** What the copy is about, for its heading and the browser's tab. */
+export function useCopyTitle({ snapshot: { weighUp } }: OpenedCopy): string {
+  const { t } = useTranslation('copy');
+  const format = useFormat();
+  return t('title', {
+    crop: format.name(weighUp.cropName),
+    region: format.name(weighUp.regionName),
+    current: weighUp.currentVarietyName,
+  });
+}
+
+function CopyHeading({ copy }: { copy: OpenedCopy }) {
+  const { t } = useTranslation('copy');
+  const format = useFormat();
+  const title = useCopyTitle(copy);
+  const { weighUp, advisorName, madeAt } = copy.snapshot;
+  return (
+    <div className="mb-5">
+      <p className="text-sm text-faded">
+        {t('for', {
+          grower: weighUp.growerName,
+          farm: weighUp.farmName,
+          area: format.area(weighUp.areaHectares),
+          advisor: advisorName,
+          date: format.date(madeAt),
+        })}
+      </p>
+      <h1>{title}</h1>
+    </div>
+  );
+}
+
 /** What became of the trials since: the frozen figures stay, and the reader is told. */
-function useLaterChanges({ laterChanges }: OpenedCopy): CautionItem[] {
+function useLaterChanges(laterChanges: readonly LaterChange[]): CautionItem[] {
   const { t } = useTranslation('verdicts');
   return laterChanges.map(({ trialId, siteName, season, change }) => ({
     id: trialId,
@@ -65,11 +82,10 @@ function useLaterChanges({ laterChanges }: OpenedCopy): CautionItem[] {
   }));
 }
 
-function WeighedCopy({ snapshot }: { snapshot: GrowerCopySnapshot }) {
+function WeighedCopy({ copy, answerHtml }: { copy: OpenedCopy; answerHtml: string }) {
   const { t } = useTranslation(['copy', 'verdicts']);
   const cautionItems = useCautionItems();
-  const { weighUp, result, traits } = snapshot;
-  const currentName = weighUp.currentVarietyName;
+  const { weighUp, result, traits } = copy.snapshot;
   // What stops the whole evidence is read before the verdict, not after it.
   const stops = result.cautions.filter(({ severity }) => severity === 'stop');
   const cautions = [
@@ -79,19 +95,14 @@ function WeighedCopy({ snapshot }: { snapshot: GrowerCopySnapshot }) {
   return (
     <>
       <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
-      <VerdictHeadline candidates={result.candidates} currentName={currentName} />
-      {result.best && (
-        <BestOfListAnswer best={result.best} currentId={weighUp.currentVarietyId} currentName={currentName} />
-      )}
-      <CopyCandidates weighUp={weighUp} candidates={result.candidates} />
+      <div id={answerId} dangerouslySetInnerHTML={{ __html: answerHtml }} />
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
-      <OwnPrice weighUp={weighUp} basis={readMoneyBasis(weighUp, result)} candidates={result.candidates} />
-      <OtherTraits candidates={result.candidates} traits={traits} currentName={currentName} />
+      <OtherTraits candidates={result.candidates} traits={traits} currentName={weighUp.currentVarietyName} />
       <details>
         <summary className="tap-target flex items-center text-lg font-bold">{t('copy:howTitle')}</summary>
         <div className="mt-2 flex flex-col gap-5">
           <MethodNotes result={result} />
-          <EvidenceTrials result={result} />
+          <EvidenceTrials result={result} isStill />
         </div>
       </details>
     </>

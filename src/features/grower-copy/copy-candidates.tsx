@@ -2,21 +2,28 @@ import { useTranslation } from 'react-i18next';
 import { decimalsFor } from '#shared/format-number.ts';
 import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
 import type { Scale } from '#shared/gap-scale.ts';
-import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
+import type { CandidateResult } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
-import { IntervalSentences } from '#src/components/candidate-story.tsx';
+import { CandidateStory, IntervalSentences } from '#src/components/candidate-story.tsx';
 import { UsualYieldSentences } from '#src/components/usual-yield-sentences.tsx';
 import { useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useSeasons } from '#src/components/use-seasons.ts';
+import type { CopyAnswerProps } from './copy-answer.tsx';
+import { CopyTrialLines } from './copy-trial-lines.tsx';
 
 const unit = 't/ha';
 
-type CopyCandidatesProps = { weighUp: WeighUp; candidates: readonly CandidateResult[] };
+type CopyCandidatesProps = {
+  weighUp: CopyAnswerProps['weighUp'];
+  candidates: readonly CandidateResult[];
+  /** The money is reckoned with the reader's own price. */
+  isOwn: boolean;
+};
 
 /** Every candidate with its beam, verdict and strip on one scale, and its intervals and worth in sentences. */
-export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
+export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesProps) {
   const { t } = useTranslation('copy');
   const format = useFormat();
   const scale = scaleOfRows(candidates.map(gapRowOf));
@@ -34,6 +41,7 @@ export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
           weighUp={weighUp}
           scale={scale}
           decimals={decimals}
+          isOwn={isOwn}
         />
       ))}
       {shown && (
@@ -50,10 +58,14 @@ export function CopyCandidates({ weighUp, candidates }: CopyCandidatesProps) {
   );
 }
 
-type CopyCandidateProps = { candidate: CandidateResult; weighUp: WeighUp; scale: Scale; decimals: number };
+type CopyCandidateProps = Omit<CopyCandidatesProps, 'candidates'> & {
+  candidate: CandidateResult;
+  scale: Scale;
+  decimals: number;
+};
 
-function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidateProps) {
-  const { t } = useTranslation('verdicts');
+function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandidateProps) {
+  const { t } = useTranslation(['verdicts', 'copy']);
   const format = useFormat();
   const { currency } = weighUp.assumptions;
   const row = gapRowOf(candidate);
@@ -68,6 +80,9 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
           {hasMoney
             ? format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true })
             : t('cantSay')}
+          {hasMoney && isOwn && (
+            <span className="block text-right text-sm font-semibold text-action">{t('copy:own.mark')}</span>
+          )}
         </p>
       </div>
       <div className="flex flex-wrap gap-x-6 gap-y-1">
@@ -101,11 +116,32 @@ function CopyCandidate({ candidate, weighUp, scale, decimals }: CopyCandidatePro
         <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
         <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
       </div>
+      <details className="mt-2">
+        <summary className="tap-target flex items-center gap-2 font-semibold text-action">
+          {t('copy:inFull', { name: candidate.varietyName })}
+        </summary>
+        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4">
+          <CandidateStory
+            candidate={candidate}
+            currentName={weighUp.currentVarietyName}
+            money={weighUp.assumptions}
+            areaHectares={weighUp.areaHectares}
+            unit={unit}
+            decimals={decimals}
+          />
+          <CopyTrialLines
+            candidate={candidate}
+            currentName={weighUp.currentVarietyName}
+            unit={unit}
+            decimals={decimals}
+          />
+        </div>
+      </details>
     </article>
   );
 }
 
-type WorthLinesProps = { candidate: CandidateResult; weighUp: WeighUp; decimals: number };
+type WorthLinesProps = Pick<CopyCandidateProps, 'candidate' | 'weighUp' | 'decimals'>;
 
 /** From which gap it pays, how often, and what that is per hectare and on the farm. */
 function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {

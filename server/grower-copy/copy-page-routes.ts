@@ -1,0 +1,79 @@
+import { createHash } from 'node:crypto';
+import type { ErrorRequestHandler, Request, RequestHandler, Response, Router } from 'express';
+import type { ErrorCode } from '#shared/error-codes.ts';
+import { languages, type Language } from '#shared/language.ts';
+import {
+  renderCopyPage,
+  renderFailedCopyPage,
+  type CopyFailure,
+} from '#src/features/grower-copy/render-copy-page.ts';
+import type { Database } from '#server/db.ts';
+import type { ServerSettings } from '#server/env.ts';
+import { settleFailure } from '#server/error-handler.ts';
+import { findCopyPageFiles } from './copy-page-files.ts';
+import { presentSentences } from './copy-sentences.ts';
+import { openCopy } from './grower-copy-store.ts';
+
+/** The link is the key: it must not reach search engines or, as a referrer, other sites. Nobody in between keeps the page. */
+export const keepLinkPrivate: RequestHandler = (_request, response, next) => {
+  response.set({
+    'X-Robots-Tag': 'noindex, nofollow',
+    'Referrer-Policy': 'no-referrer',
+    'Cache-Control': 'private, no-cache',
+  });
+  next();
+};
+
+/** The copy behind its link, as a page: 200, or 404 and 410 with a page of their own. */
+export function addCopyPage(router: Router, db: Database, settings: ServerSettings): void {
+  const files = findCopyPageFiles(settings.clientFolder);
+
+  router.get('/copy/:token', async (request, response) => {
+    const copy = await openCopy(db, request.params.token, { isCounted: isOpening(request) });
+    const language = askedLanguage(request) ?? copy.language;
+    const sentences = presentSentences[language];
+    sendPage(request, response, renderCopyPage(copy, { language, sentences, files }));
+  });
+
+  const showFailure: ErrorRequestHandler = (error: unknown, request, response, next) => {
+    if (response.closed) return;
+    const failure = settleFailure(error, request, response);
+    if (failure === null) {
+      next(error);
+      return;
+    }
+    const language = askedLanguage(request) ?? readerLanguage(request);
+    const page = renderFailedCopyPage(nameFailure(failure.code), {
+      language,
+      sentences: presentSentences[language],
+      files,
+    });
+    response.type('html').send(page);
+  };
+  router.use('/copy', showFailure);
+}
+
+const linkFailures: readonly CopyFailure[] = ['link-unknown', 'link-expired', 'link-revoked'];
+
+const nameFailure = (code: ErrorCode): CopyFailure =>
+  linkFailures.find((failure) => failure === code) ?? 'away';
+
+/** The tag is one of the whole page, so it changes with whatever changes a sign of it. */
+function sendPage(request: Request, response: Response, page: string): void {
+  response.set('ETag', `"${createHash('sha256').update(page).digest('base64url')}"`);
+  if (request.fresh) response.status(304).end();
+  else response.type('html').send(page);
+}
+
+/** A switch of language or unit on the page itself opens nothing anew, and neither does a look at the headers. */
+function isOpening(request: Request): boolean {
+  const isSwitch = request.get('sec-fetch-site') === 'same-origin' && Object.keys(request.query).length > 0;
+  return request.method === 'GET' && !isSwitch;
+}
+
+const askedLanguage = (request: Request): Language | undefined =>
+  languages.find((language) => language === request.query['lang']);
+
+/** Nothing is known of whoever comes by a link that leads nowhere but what the browser says. */
+const readerLanguage = (request: Request): Language =>
+  languages.find((language) => language === request.acceptsLanguages([...languages])) ?? 'en';

@@ -1,0 +1,90 @@
+import type { ReactNode } from 'react';
+import { useTranslation } from 'react-i18next';
+import { languages } from '#shared/language.ts';
+import { GavelMark } from '#src/components/gavel-mark.tsx';
+import { useLanguage } from '#src/components/use-language.ts';
+
+/** Addresses of what the page fetches, all from our own origin. */
+export type CopyPageFiles = {
+  style: string;
+  script: string;
+  /** Of the weights in the first screen. */
+  fonts: readonly string[];
+};
+
+type CopyDocumentProps = {
+  title: string;
+  files: CopyPageFiles;
+  /** For the page's script, which is left out without it. */
+  data?: string;
+  dataId?: string;
+  children: ReactNode;
+};
+
+/** The whole page: search engines are kept out, the link is told to nobody, and every way works without scripts. */
+export function CopyDocument({ title, files, data, dataId, children }: CopyDocumentProps) {
+  const { t } = useTranslation(['copy', 'common']);
+  return (
+    <html lang={useLanguage()}>
+      <head>
+        <meta charSet="utf-8" />
+        <meta name="viewport" content="width=device-width, initial-scale=1" />
+        <meta name="robots" content="noindex, nofollow" />
+        <meta name="referrer" content="no-referrer" />
+        <meta name="theme-color" content="#faf6ec" media="(prefers-color-scheme: light)" />
+        <meta name="theme-color" content="#1b1d18" media="(prefers-color-scheme: dark)" />
+        <title>{t('common:pageTitle', { page: title })}</title>
+        <link rel="stylesheet" href={files.style} />
+        {files.fonts.map((font) => (
+          <link key={font} rel="preload" href={font} as="font" type="font/woff2" crossOrigin="anonymous" />
+        ))}
+        {data !== undefined && <script type="module" src={files.script} />}
+      </head>
+      <body>
+        <a
+          href="#page"
+          className="sr-only focus:not-sr-only focus:absolute focus:left-2 focus:top-2 focus:z-10 focus:rounded-md focus:bg-card focus:p-3"
+        >
+          {t('common:skipToPage')}
+        </a>
+        <header className="border-b border-rule">
+          <div className="mx-auto flex max-w-prose items-center gap-3 px-4 py-1">
+            <GavelMark />
+            <span className="font-bold">
+              Gavelrow <span className="font-normal text-faded">· {t('copy:readOnly')}</span>
+            </span>
+            <nav aria-label={t('copy:language')} className="ml-auto print:hidden">
+              <LanguageLinks />
+            </nav>
+          </div>
+        </header>
+        <main id="page" tabIndex={-1} className="mx-auto max-w-prose px-4 pb-16 pt-5 outline-none">
+          {children}
+        </main>
+        {data !== undefined && (
+          <script id={dataId} type="application/json" dangerouslySetInnerHTML={{ __html: data }} />
+        )}
+      </body>
+    </html>
+  );
+}
+
+/** Each other language in its own name, as a plain link to the same copy. */
+function LanguageLinks() {
+  const { t } = useTranslation('common');
+  const current = useLanguage();
+  return languages
+    .filter((language) => language !== current)
+    .map((language) => (
+      <a
+        key={language}
+        href={`?lang=${language}`}
+        lang={language}
+        hrefLang={language}
+        data-carries-price=""
+        className="tap-target inline-flex items-center px-1"
+      >
+        {t(`languageName.${language}`)}
+      </a>
+    ));
+}

@@ -1,0 +1,36 @@
+import { useTranslation } from 'react-i18next';
+import type { OpenedCopy } from '#shared/grower-copy.ts';
+import { CopyBody, useCopyTitle } from './copy-body.tsx';
+import { CopyDocument, type CopyPageFiles } from './copy-document.tsx';
+import { dataId } from './copy-script-data.ts';
+
+/** Why there is no copy to show. */
+export type CopyFailure = 'link-unknown' | 'link-expired' | 'link-revoked' | 'away';
+
+type CopyPageProps = {
+  copy: OpenedCopy;
+  files: CopyPageFiles;
+  data: string | undefined;
+  answerHtml: string | null;
+};
+
+/** The page of a copy, whole: it says everything before any script has come. */
+export function CopyPage({ copy, files, data, answerHtml }: CopyPageProps) {
+  return (
+    <CopyDocument title={useCopyTitle(copy)} files={files} data={data} dataId={dataId}>
+      <CopyBody copy={copy} answerHtml={answerHtml} />
+    </CopyDocument>
+  );
+}
+
+/** What stands in the place of a copy that a link does not lead to, or that cannot be read at the moment. */
+export function FailedCopyPage({ failure, files }: { failure: CopyFailure; files: CopyPageFiles }) {
+  const { t } = useTranslation('copy');
+  const title = t(`failed.${failure}.title`);
+  return (
+    <CopyDocument title={title} files={files}>
+      <h1 className="mb-5">{title}</h1>
+      <p>{t(`failed.${failure}.text`)}</p>
+    </CopyDocument>
+  );
+}

@@ -1,0 +1,62 @@
+import { createElement, type ReactNode } from 'react';
+import { renderToStaticMarkup, renderToString } from 'react-dom/server';
+import { I18nextProvider } from 'react-i18next';
+import type { OpenedCopy } from '#shared/grower-copy.ts';
+import type { Language } from '#shared/language.ts';
+import { readMoneyBasis } from '#shared/money-basis.ts';
+import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
+import type { CopyPageFiles } from './copy-document.tsx';
+import { CopyPage, FailedCopyPage, type CopyFailure } from './copy-page.tsx';
+import { answerNamespaces, writeScriptData } from './copy-script-data.ts';
+import { openCopySentences, type CopySentences } from './open-copy-sentences.ts';
+
+// The front door for the server. Without JSX: the compiler takes types over from another project's .ts files alone.
+
+export type { CopyPageFiles } from './copy-document.tsx';
+export type { CopyFailure } from './copy-page.tsx';
+export type { CopySentences } from './open-copy-sentences.ts';
+
+type PageOptions = { language: Language; sentences: CopySentences; files: CopyPageFiles };
+
+/** The page of a copy as HTML. */
+export function renderCopyPage(copy: OpenedCopy, { language, sentences, files }: PageOptions): string {
+  const inLanguage = (part: ReactNode) =>
+    createElement(I18nextProvider, { i18n: openCopySentences(language, sentences) }, part);
+  const { result } = copy.snapshot;
+  if (result.answer === 'no-trials') {
+    return writeDocument(
+      inLanguage(createElement(CopyPage, { copy, files, answerHtml: null, data: undefined })),
+    );
+  }
+  const answer = takeAnswer(copy);
+  // A root of its own, so that the script finds in it what it would have rendered itself.
+  const answerHtml = renderToString(inLanguage(createElement(CopyAnswer, answer)));
+  const said = Object.fromEntries(answerNamespaces.map((name) => [name, sentences[name] ?? {}]));
+  const data = writeScriptData({ language, answer, sentences: said });
+  return writeDocument(inLanguage(createElement(CopyPage, { copy, files, answerHtml, data })));
+}
+
+/** The page for a link that leads to no copy, or for a moment at which none can be read. */
+export function renderFailedCopyPage(
+  failure: CopyFailure,
+  { language, sentences, files }: PageOptions,
+): string {
+  const page = createElement(FailedCopyPage, { failure, files });
+  return writeDocument(
+    createElement(I18nextProvider, { i18n: openCopySentences(language, sentences) }, page),
+  );
+}
+
+const writeDocument = (page: ReactNode): string => `<!doctype html>${renderToStaticMarkup(page)}`;
+
+/** Of the snapshot what the answer shows; cautions are told by the page itself. */
+function takeAnswer({ snapshot: { weighUp, result, traits } }: OpenedCopy): CopyAnswerProps {
+  const { currentVarietyName, areaHectares, assumptions } = weighUp;
+  return {
+    weighUp: { currentVarietyName, areaHectares, assumptions },
+    basis: readMoneyBasis(weighUp, result),
+    candidates: result.candidates.map((candidate) => ({ ...candidate, cautions: [] })),
+    best: result.best ?? null,
+    practicalMargin: traits.find(({ slug }) => slug === 'yield')?.practicalMargin ?? null,
+  };
+}

@@ -1,0 +1,132 @@
+import { screen, within } from '@testing-library/react';
+import userEvent from '@testing-library/user-event';
+import { hydrateRoot } from 'react-dom/client';
+import { renderToString } from 'react-dom/server';
+import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { weighMoney } from '#shared/partial-budget.ts';
+import { CopyAnswer, withPrice, type CopyAnswerProps } from '#src/features/grower-copy/copy-answer.tsx';
+import { carryOwnPrice } from '#src/features/grower-copy/own-price-fragment.ts';
+import { renderClient } from '#tests/client/support/render-client.tsx';
+import {
+  assumptions,
+  buildCandidate,
+  buildWeighUp,
+  basis,
+  idOf,
+} from '#tests/client/support/weigh-up-factory.ts';
+
+const answer: CopyAnswerProps = {
+  weighUp: buildWeighUp(),
+  basis,
+  candidates: [
+    buildCandidate(),
+    buildCandidate({ varietyId: idOf(3), varietyName: 'Tallis', verdict: 'open' }),
+    buildCandidate({ varietyId: idOf(4), varietyName: 'Unpriced' }),
+  ],
+  practicalMargin: 0.1,
+  best: null,
+};
+
+const namespaces = ['common', 'copy', 'drawings', 'verdicts'] as const;
+const open = (language: 'en' | 'fr' = 'en') =>
+  renderClient(<CopyAnswer {...answer} />, { language, namespaces: [...namespaces] });
+
+const priceField = () => screen.getByRole('textbox', { name: 'Price per tonne' });
+const articleOf = (name: string) => {
+  const article = screen.getByRole('heading', { level: 2, name }).closest('article');
+  if (article === null) throw new Error(`no part of the page is about ${name}`);
+  return within(article);
+};
+const breakEvenAt = (name: string) =>
+  articleOf(name).getByRole('img').querySelector('[data-mark="break-even"]')?.getAttribute('x1');
+
+async function typePrice(text: string): Promise<void> {
+  await userEvent.clear(priceField());
+  await userEvent.type(priceField(), text);
+}
+
+beforeEach(() => history.replaceState(null, '', '/copy/secret?lang=en'));
+afterEach(() => history.replaceState(null, '', '/'));
+
+describe('the answer of a copy', () => {
+  it('shows the frozen figures first, unmarked', async () => {
+    await open();
+    expect(screen.queryByText(/^Your own number/)).toBeNull();
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+    expect(priceField()).toHaveProperty('value', '290');
+    expect(
+      articleOf('Unpriced').getAllByText('What it is worth cannot be said: a seed cost is missing.'),
+    ).not.toEqual([]);
+  });
+
+  it('reckons return, chance and break-even anew with an own price, and says whose they are', async () => {
+    await open();
+    const frozenLine = breakEvenAt('Ostermoor');
+    await typePrice('180');
+    const money = weighMoney(buildCandidate(), basis, withPrice(assumptions, 180));
+    expect(Math.round(money?.returnPerHectare ?? 0)).toBe(34);
+    expect(screen.getByText(/^Your own number: \$180\/t instead of \$290\/t\./)).toBeDefined();
+    const ostermoor = articleOf('Ostermoor');
+    expect(ostermoor.getByText(/^\+\$34\/ha/).textContent).toContain('own number');
+    expect(ostermoor.getByText(/^At \$180\/t that is \+\$34 per hectare, \+\$4,080 on 120/)).toBeDefined();
+    expect(breakEvenAt('Ostermoor')).not.toBe(frozenLine);
+  });
+
+  it('goes back to the price of the copy', async () => {
+    await open();
+    await typePrice('180');
+    await userEvent.click(
+      screen.getAllByRole('button', { name: 'Back to the price of this copy' })[0] as HTMLElement,
+    );
+    expect(screen.queryByText(/^Your own number/)).toBeNull();
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+    expect(location.hash).toBe('');
+  });
+
+  it.each([
+    ['nothing', ' ', 'Please enter the price as a figure.'],
+    ['no figure', 'abc', 'Please enter the price as a figure.'],
+    ['less than it costs to bring it away', '19', 'This price does not cover haulage and drying ($20/t).'],
+    ['zero', '0', 'This price does not cover haulage and drying ($20/t).'],
+  ])('keeps the frozen figures while the price is %s', async (_case, typed, message) => {
+    await open();
+    await typePrice(typed);
+    expect(screen.getByText(message)).toBeDefined();
+    expect(priceField().getAttribute('aria-invalid')).toBe('true');
+    expect(screen.queryByText(/^Your own number/)).toBeNull();
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+  });
+
+  it('keeps the price in the fragment, which no server is sent, and gives it to a link in another language', async () => {
+    await open();
+    await typePrice('251.5');
+    expect(location.href).toMatch(/\/copy\/secret\?lang=en#price=251\.5$/);
+    const link = document.createElement('a');
+    link.href = '/copy/secret?lang=fr';
+    carryOwnPrice(link);
+    expect(link.href).toMatch(/\?lang=fr#price=251\.5$/);
+  });
+
+  it('takes up the price of its address', async () => {
+    history.replaceState(null, '', '/copy/secret?lang=fr#price=180');
+    await open('fr');
+    expect(screen.getByText(/^Votre chiffre.*180/)).toBeDefined();
+  });
+
+  it('takes over what the server rendered, and opens the field only then', async () => {
+    const { unmount } = await open();
+    unmount();
+    const server = document.createElement('div');
+    server.innerHTML = renderToString(<CopyAnswer {...answer} />);
+    document.body.append(server);
+    expect(server.querySelector('fieldset')?.disabled).toBe(true);
+    const refused: unknown[] = [];
+    const root = hydrateRoot(server, <CopyAnswer {...answer} />, {
+      onRecoverableError: (error) => refused.push(error),
+    });
+    await expect.poll(() => server.querySelector('fieldset')?.disabled).toBe(false);
+    expect(refused).toEqual([]);
+    root.unmount();
+    server.remove();
+  });
+});
