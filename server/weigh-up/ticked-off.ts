@@ -61,11 +61,14 @@ export function tellTickedOff(
     .map(({ siteName, season }) => `${siteName} ${season}`)
     .map((name) => ({ en: name, fr: name }));
   const caution = makeCaution('trial-ticked-off', 'warning', { count: sites.length, sites });
+  // The region has trials: it is only that none of them counts.
+  const isEmptied = answer.answer === 'no-trials' && out.trials.some(({ inRegion }) => inRegion);
+  const others = answer.cautions.filter(({ code }) => !isEmptied || code !== 'no-trial-in-region');
   return {
     ...answer,
     leftOut: [...answer.leftOut, ...listTickedOff(out, tickedOff)],
     candidates: answer.candidates.map((one) => ({ ...one, cautions: [...one.cautions, caution] })),
-    cautions: [caution, ...answer.cautions],
+    cautions: [caution, ...others],
   };
 }
 

@@ -87,6 +87,8 @@ test('with every trial ticked off there is no verdict, and it is said why', asyn
   expect(result).toMatchObject({ answer: 'no-trials', trials: [], candidates: [] });
   expect(result.leftOut).toHaveLength(9);
   expect(result.cautions[0]).toMatchObject({ code: 'trial-ticked-off', values: { count: 9 } });
+  // The region has trials, so it is not said to have none.
+  expect(result.cautions.map(({ code }: { code: string }) => code)).not.toContain('no-trial-in-region');
 });
 
 test('the grower copy says it, and holds on to it', async () => {

@@ -3,7 +3,7 @@ import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
-import { NoVerdict } from '#src/components/no-verdict.tsx';
+import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
@@ -25,7 +25,9 @@ export function CopyBody({ copy, answerHtml }: CopyBodyProps) {
       <div className="flex flex-col gap-7">
         <CautionList title={t('verdicts:changes.title')} items={useLaterChanges(copy.laterChanges)} />
         {answerHtml === null ? (
-          <NoVerdict
+          <Unanswered
+            result={copy.snapshot.result}
+            canTakeBack={false}
             crop={weighUp.cropName}
             region={weighUp.regionName}
             from={weighUp.seasonFrom}

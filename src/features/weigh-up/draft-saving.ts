@@ -9,7 +9,7 @@ import {
   type DraftContent,
   type WeighUpDraft,
 } from '#shared/weigh-up-draft.ts';
-import { callApi } from '#src/api-client.ts';
+import { ApiError, callApi } from '#src/api-client.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { NewWeighUpDraft, NewWeighUpForm } from './new-weigh-up-form.ts';
 import { draftsQuery } from './weigh-up-queries.ts';
@@ -54,19 +54,32 @@ export function questionOf(search: URLSearchParams): string {
 const figureOf = (value: number | null | undefined): number | null =>
   typeof value === 'number' && Number.isFinite(value) ? value : null;
 
+export type DraftSaving = {
+  /** null before the first saving */
+  draftId: string | null;
+  /** Whether the draft is kept as it stands. */
+  isKept: boolean;
+  error: Error | null;
+  /** Ends the saving, since the draft becomes a weigh-up; waits for the one under way, and gives the draft's id, if there is one. */
+  stop: () => Promise<string | null>;
+  /** Goes on saving: the draft did not become a weigh-up. */
+  goOn: () => void;
+};
+
 /**
  * Keeps what is typed as a draft on the server, a second after the last edit, once there is something typed.
  * @param opened the draft that the page was opened with
- * @returns the draft's id, null before the first saving; whether it is kept as it stands; what went wrong
  */
 export function useDraftSaving(
   form: UseFormReturn<NewWeighUpDraft, unknown, NewWeighUpForm>,
   opened: WeighUpDraft | undefined,
-): { draftId: string | null; isKept: boolean; error: Error | null } {
+): DraftSaving {
   const [search] = useSearchParams();
   const patch = useUrlPatch();
   const client = useQueryClient();
   const held = useRef<WeighUpDraft | null>(opened ?? null);
+  const underWay = useRef<Promise<unknown> | null>(null);
+  const [isStopped, setIsStopped] = useState(false);
   const typed = useWatch({ control: form.control });
   const { isDirty, dirtyFields } = useFormState({ control: form.control });
   const content: DraftContent = {
@@ -81,18 +94,25 @@ export function useDraftSaving(
   };
   const text = JSON.stringify(content);
   const [saved, setSaved] = useState(opened && { id: opened.id, text: JSON.stringify(opened.content) });
-  const { mutate, error } = useMutation({
-    // One at a time: the revision of one saving is what the next is made over.
-    scope: { id: 'weigh-up-draft' },
+  const {
+    mutate,
+    error,
+    isPending,
+    variables: tried,
+  } = useMutation({
     mutationFn: async (written: string) => {
-      held.current = await keep(held.current, draftContent.parse(JSON.parse(written)));
+      const writing = keep(held.current, draftContent.parse(JSON.parse(written)));
+      underWay.current = writing;
+      held.current = await writing;
       return held.current.id;
     },
     onSuccess: () => client.invalidateQueries({ queryKey: draftsQuery.queryKey }),
   });
   const isWorthKeeping = isDirty || saved !== undefined;
   useEffect(() => {
-    if (!isWorthKeeping || text === saved?.text) return undefined;
+    // One at a time: the revision of one saving is what the next is made over. What was refused waits for the next edit.
+    const mayTry = !isStopped && !isPending && (error === null || text !== tried);
+    if (!mayTry || !isWorthKeeping || text === saved?.text) return undefined;
     const save = () =>
       mutate(text, {
         // Not told any more once the page is left, whose address it would change.
@@ -103,13 +123,30 @@ export function useDraftSaving(
       });
     const timer = setTimeout(save, pause);
     return () => clearTimeout(timer);
-  }, [isWorthKeeping, text, saved, mutate, patch]);
-  return { draftId: saved?.id ?? null, isKept: text === saved?.text, error };
+  }, [isStopped, isPending, error, tried, isWorthKeeping, text, saved, mutate, patch]);
+  const stop = async () => {
+    setIsStopped(true);
+    await underWay.current?.catch(() => undefined);
+    return held.current?.id ?? null;
+  };
+  const goOn = () => setIsStopped(false);
+  return { draftId: saved?.id ?? null, isKept: text === saved?.text, error, stop, goOn };
 }
 
-/** Writes on the draft held, or begins one where there is none. */
+/**
+ * Writes on the draft held, or begins one where there is none. One that was written on, deleted or weighed in another
+ * tab is left as it stands there, and what is typed here becomes a draft of its own.
+ */
 async function keep(held: WeighUpDraft | null, content: DraftContent): Promise<WeighUpDraft> {
-  if (held === null) return (await callApi(createDraft, { body: { content } })).draft;
-  const { id: draftId, revision } = held;
-  return (await callApi(saveDraft, { params: { draftId }, body: { revision, content } })).draft;
+  if (held !== null) {
+    const { id: draftId, revision } = held;
+    try {
+      return (await callApi(saveDraft, { params: { draftId }, body: { revision, content } })).draft;
+    } catch (error) {
+      if (!(error instanceof ApiError) || !movedElsewhere.has(error.code)) throw error;
+    }
+  }
+  return (await callApi(createDraft, { body: { content } })).draft;
 }
+
+const movedElsewhere: ReadonlySet<ApiError['code']> = new Set(['revision-conflict', 'not-found'] as const);

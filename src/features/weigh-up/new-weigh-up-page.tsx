@@ -24,7 +24,7 @@ import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CandidatePicker } from './candidate-picker.tsx';
-import { toFormDraft, typePrices, useDraftSaving } from './draft-saving.ts';
+import { toFormDraft, typePrices, useDraftSaving, type DraftSaving } from './draft-saving.ts';
 import { FarmFields, PriceFields } from './farm-fields.tsx';
 import {
   newWeighUpForm,
@@ -59,12 +59,16 @@ export function NewWeighUpPage() {
   );
 }
 
-function useCreateWeighUp() {
+/** Stores the question. The draft that it was written in goes with it, also one whose first saving is still under way. */
+function useCreateWeighUp(kept: DraftSaving) {
   const client = useQueryClient();
   const navigate = useNavigate();
   return useMutation({
-    mutationFn: async ({ body, draftId }: { body: WeighUpInput; draftId: string | null }) =>
-      (await callApi(createWeighUp, { body, query: draftId === null ? {} : { draftId } })).weighUp,
+    mutationFn: async (body: WeighUpInput) => {
+      const draftId = await kept.stop();
+      return (await callApi(createWeighUp, { body, query: draftId === null ? {} : { draftId } })).weighUp;
+    },
+    onError: kept.goOn,
     onSuccess: async (weighUp) => {
       void client.invalidateQueries({ queryKey: draftsQuery.queryKey });
       await client.invalidateQueries({ queryKey: weighUpsQuery.queryKey });
@@ -114,7 +118,7 @@ type CandidatesAndFarmProps = {
   draft: QuestionDraft;
   question: CandidateQuestion;
   form: NewWeighUpFormApi;
-  kept: ReturnType<typeof useDraftSaving>;
+  kept: DraftSaving;
 };
 
 /** The prices of the sheet stand in the form until they are typed over. */
@@ -139,7 +143,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
   const { t } = useTranslation('weigh-up');
   const errorText = useErrorText();
   const candidates = useQuery(candidatesQuery(question));
-  const creation = useCreateWeighUp();
+  const creation = useCreateWeighUp(kept);
   const cautionItems = useCautionItems();
   const defaults = candidates.data?.assumptions ?? null;
   useSheetPrices(form, defaults);
@@ -159,8 +163,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
       onSubmit={(event) =>
         void form.handleSubmit((typed) => {
           if (!isChosen) return;
-          const body = toWeighUpInput(typed, question, draft, defaults);
-          creation.mutate({ body, draftId: kept.draftId });
+          creation.mutate(toWeighUpInput(typed, question, draft, defaults));
         })(event)
       }
     >
@@ -202,7 +205,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
 }
 
 /** Whether what is typed is kept, said where the page is left. */
-function DraftState({ kept }: { kept: ReturnType<typeof useDraftSaving> }) {
+function DraftState({ kept }: { kept: DraftSaving }) {
   const { t } = useTranslation('record');
   const errorText = useErrorText();
   if (kept.error) return <p role="status">{t('drafts.failed', { reason: errorText(kept.error) })}</p>;

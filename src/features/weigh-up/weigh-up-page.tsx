@@ -12,7 +12,7 @@ import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
-import { NoVerdict } from '#src/components/no-verdict.tsx';
+import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
 import { UnitSwitch } from '#src/components/unit-switch.tsx';
@@ -115,7 +115,9 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
   const cautionItems = useCautionItems();
   return (
     <div className="flex max-w-prose flex-col gap-6">
-      <NoVerdict
+      <Unanswered
+        result={result}
+        canTakeBack
         crop={weighUp.cropName}
         region={weighUp.regionName}
         from={weighUp.seasonFrom}

@@ -1,7 +1,7 @@
 import { zodResolver } from '@hookform/resolvers/zod';
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import type { ReactNode } from 'react';
+import { useState, type ReactNode } from 'react';
 import { useForm } from 'react-hook-form';
 import { useLocation } from 'react-router-dom';
 import { afterEach, describe, expect, it, vi } from 'vitest';
@@ -50,16 +50,39 @@ function serve(): Asked[] {
   return asked;
 }
 
+/** Answers the beginning of a draft only when it is told to. */
+function serveSlowly(): { asked: Asked[]; answer: () => void } {
+  const asked: Asked[] = [];
+  let answer = () => {};
+  const reply = new Promise<Response>((resolve) => {
+    answer = () => resolve(Response.json({ draft }));
+  });
+  vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
+    if (init.method !== 'POST') return Promise.resolve(Response.json({ drafts: [] }));
+    asked.push([init.method, path, JSON.parse(String(init.body))]);
+    return reply;
+  });
+  return { asked, answer: () => answer() };
+}
+
 function Typing({ opened }: { opened?: WeighUpDraft }) {
   const form = useForm<NewWeighUpDraft, unknown, NewWeighUpForm>({
     resolver: zodResolver(newWeighUpForm),
     defaultValues: toFormDraft(opened?.content),
   });
   const kept = useDraftSaving(form, opened);
+  const [stoppedAt, setStoppedAt] = useState('');
   return (
     <>
       <FarmFields form={form} />
       <output aria-label="kept">{String(kept.isKept)}</output>
+      <button type="button" onClick={() => void kept.stop().then((id) => setStoppedAt(id ?? 'none'))}>
+        stop
+      </button>
+      <button type="button" onClick={kept.goOn}>
+        go on
+      </button>
+      <output aria-label="stopped at">{stoppedAt}</output>
       <output aria-label="address">{useLocation().search}</output>
     </>
   );
@@ -102,6 +125,54 @@ describe('a draft', () => {
       `/api/weigh-up-drafts/${draft.id}`,
       { revision: 1, content: { growerName: 'Ada', farmName: 'Low Field' } },
     ]);
+  });
+
+  it('whose first saving is still under way is waited for, so that it goes with the weigh-up', async () => {
+    const { asked, answer } = serveSlowly();
+    const user = userEvent.setup();
+    await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    await waitFor(() => expect(asked).toHaveLength(1));
+    await user.click(screen.getByRole('button', { name: 'stop' }));
+    expect(screen.getByLabelText('stopped at').textContent).toBe('');
+    answer();
+    await waitFor(() => expect(screen.getByLabelText('stopped at').textContent).toBe(draft.id));
+  });
+
+  it('is not begun once the weigh-up is being stored, and is when that failed', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    await user.click(screen.getByRole('button', { name: 'stop' }));
+    expect(screen.getByLabelText('stopped at').textContent).toBe('none');
+    await new Promise((resolve) => setTimeout(resolve, 1500));
+    expect(asked).toEqual([]);
+    await user.click(screen.getByRole('button', { name: 'go on' }));
+    await waitFor(() => expect(asked).toHaveLength(1));
+  });
+
+  it('that was written on in another tab is left as it is: what is typed here becomes a draft of its own', async () => {
+    const asked: Asked[] = [];
+    vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
+      const method = init.method ?? 'GET';
+      if (method === 'GET') return Promise.resolve(Response.json({ drafts: [draft] }));
+      asked.push([method, path, JSON.parse(String(init.body))]);
+      return Promise.resolve(
+        method === 'PUT'
+          ? Response.json({ error: { code: 'revision-conflict' } }, { status: 409 })
+          : Response.json({ draft: { ...draft, id: idOf(6) } }),
+      );
+    });
+    const user = userEvent.setup();
+    await render(<Typing opened={{ ...draft, content: { ...content, question: 'crop=pea' } }} />);
+    await user.click(screen.getByLabelText('Farm'));
+    await user.paste('Low Field');
+    await waitFor(() => expect(screen.getByLabelText('address').textContent).toContain(idOf(6)));
+    expect(asked.map(([method]) => method)).toEqual(['PUT', 'POST']);
+    expect(asked[1]?.[2]).toMatchObject({ content: { growerName: 'Ada', farmName: 'Low Field' } });
   });
 
   it('leads back to its question from the list, and is deleted there', async () => {
