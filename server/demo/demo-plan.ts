@@ -95,7 +95,7 @@ export function planDemo(): PlannedTrial[] {
       crop: crop.slug,
       site,
       season,
-      name: 'Variety trial',
+      name: 'Variety trial / Essai variétal',
       kind,
       layout: { ...habit, ...chooseEntries(crop, season, habit.design, `${crop.slug} ${site} ${season}`) },
       incident,
@@ -161,7 +161,7 @@ function planStrips(): PlannedTrial[] {
     crop,
     site,
     season,
-    name: 'On-farm strips',
+    name: 'On-farm strips / Bandes à la ferme',
     layout: { design: 'strips', entries: [current, candidate], reps: 6 },
   }));
 }
@@ -181,7 +181,7 @@ function planSplitPlots(): PlannedTrial[] {
       crop,
       site,
       season,
-      name: 'Fungicide × variety',
+      name: 'Fungicide × variety / Fongicide × variété',
       layout: { design: 'split-plot', entries, reps: 4, mainLevels: ['untreated', 'treated'] },
       fungicide: true,
     };
@@ -203,7 +203,7 @@ function planOpenTrials(): PlannedTrial[] {
       crop: cropSlug,
       site,
       season: 2026,
-      name: 'Late sowing',
+      name: 'Late sowing / Semis tardif',
       layout: { design: 'rcbd', reps: 4, ...chooseEntries(crop, 2026, 'rcbd', `late ${cropSlug}`) },
       incident,
       state,

@@ -1,45 +1,18 @@
 import { spawn } from 'node:child_process';
-import { printDemoNotes, printMailPage, readDemoNotes } from './demo-notes.mjs';
 import { projectRoot } from './ground.mjs';
-import { endOnSignals, endProcess, isEnding, undoAtEnd } from './process-end.mjs';
-import {
-  catchDemoMail,
-  givenUrl,
-  host,
-  keepSessionSecret,
-  prepareDatabase,
-  prepareGround,
-  readPort,
-} from './serving-steps.mjs';
-import { printFailure } from './setup-error.mjs';
+import { endProcess, undoAtEnd } from './process-end.mjs';
+import { host, prepareServing, serveUntilStopped } from './serving-steps.mjs';
 
-endOnSignals(() => console.log('\nStopping …'));
-try {
-  await develop(readPort());
-} catch (error) {
-  if (!isEnding()) {
-    printFailure(error);
-    await endProcess(1);
-  }
-}
+await serveUntilStopped(develop);
 
 /** The client by Vite on PORT, which passes /api on to the server beside it; both follow their sources. */
 async function develop(port) {
-  const apiPort = Number(process.env.API_PORT ?? port + 1);
-  await prepareGround(port);
-  const databaseUrl = await prepareDatabase();
-  const mail = await catchDemoMail();
-  const env = {
-    SESSION_SECRET: keepSessionSecret(),
-    LOG_LEVEL: 'warn',
-    ...mail.environment,
-    ...process.env,
-    DATABASE_URL: databaseUrl,
-    API_PORT: String(apiPort),
-  };
+  const apiPort = String(process.env.API_PORT ?? port + 1);
+  const { environment, sayWhere } = await prepareServing(port);
+  const env = { ...environment, API_PORT: apiPort };
   runBeside(['node_modules/tsx/dist/cli.mjs', 'watch', 'server/setup/dev-server.ts'], {
     ...env,
-    PORT: String(apiPort),
+    PORT: apiPort,
   });
   runBeside(
     [
@@ -53,9 +26,7 @@ async function develop(port) {
     ],
     env,
   );
-  const notes = givenUrl === '' ? readDemoNotes() : null;
-  if (notes !== null) printDemoNotes(notes, `http://localhost:${port}`);
-  printMailPage(mail.pageUrl);
+  sayWhere(`http://localhost:${port}`);
   console.log('');
 }
 

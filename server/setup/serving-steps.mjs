@@ -4,27 +4,70 @@ import { createServer } from 'node:net';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { buildServer } from './build-product.mjs';
-import { readDemoNotes, writeDemoNotes } from './demo-notes.mjs';
+import { printDemoNotes, printMailPage, readDemoNotes, writeDemoNotes } from './demo-notes.mjs';
 import { becomeProjectOwner, preparePackages, preparePostgres, projectRoot, requireNode } from './ground.mjs';
 import { makePassableFolder } from './postgres-cluster.mjs';
 import { openPrivateCluster } from './private-cluster.mjs';
-import { undoAtEnd } from './process-end.mjs';
+import { endOnSignals, endProcess, isEnding, undoAtEnd } from './process-end.mjs';
 import { runStep } from './progress.mjs';
-import { SetupError } from './setup-error.mjs';
+import { printFailure, SetupError } from './setup-error.mjs';
 
 /** The database that somebody names, or '' for the project's own. */
 export const givenUrl = process.env.DATABASE_URL ?? '';
 export const host = process.env.HOST ?? '127.0.0.1';
 
+/**
+ * Runs what serves the product until it is told to stop. A failure is said in words and undoes what was begun.
+ * @param {(port: number) => Promise<void>} begin
+ */
+export async function serveUntilStopped(begin) {
+  endOnSignals(() => console.log('\nStopping …'));
+  try {
+    await begin(readPort());
+  } catch (error) {
+    if (!isEnding()) {
+      printFailure(error);
+      await endProcess(1);
+    }
+  }
+}
+
+/**
+ * Brings everything up to the server itself: ground, database, caught mail.
+ * @param {number} port
+ * @param {() => Promise<void>} [beforeDatabase] a step that needs the packages, and that the database can wait for
+ * @returns {Promise<{ environment: NodeJS.ProcessEnv, sayWhere: (url: string) => void }>} the server's environment, in
+ *   which what a person has set counts, and what tells that person where to look and how to sign in
+ */
+export async function prepareServing(port, beforeDatabase = () => Promise.resolve()) {
+  await prepareGround(port);
+  await beforeDatabase();
+  const databaseUrl = await prepareDatabase();
+  const mail = await catchDemoMail();
+  const environment = {
+    SESSION_SECRET: keepSessionSecret(),
+    LOG_LEVEL: 'warn',
+    ...mail.environment,
+    ...process.env,
+    DATABASE_URL: databaseUrl,
+  };
+  const sayWhere = (url) => {
+    const notes = givenUrl === '' ? readDemoNotes() : null;
+    if (notes !== null) printDemoNotes(notes, url);
+    printMailPage(mail.pageUrl);
+  };
+  return { environment, sayWhere };
+}
+
 /** @returns {number} PORT, or 3000 */
-export function readPort() {
+function readPort() {
   const port = Number(process.env.PORT ?? 3000);
   if (Number.isInteger(port) && port >= 0 && port <= 65_535) return port;
   throw new SetupError(`PORT is ${process.env.PORT}, which is no port.`, 'Give a number from 1 to 65535.');
 }
 
 /** What must be there before the product can run. The port is tried first, so that nobody waits minutes to be told. */
-export async function prepareGround(port) {
+async function prepareGround(port) {
   requireNode();
   await requireFreePort(port);
   if (givenUrl === '') await preparePostgres();
@@ -63,7 +106,7 @@ export function explainListening(error, port) {
 }
 
 /** Bundles the server, opens the database, migrates it and fills the project's own with the demo once. */
-export async function prepareDatabase() {
+async function prepareDatabase() {
   await runStep('Server', async (tell) => tell((await buildServer(projectRoot)) ? 'built' : 'up to date'));
   const databaseUrl = await openDatabase();
   const { migrateDatabase } = await importBuilt('main');
@@ -126,7 +169,7 @@ async function seedOnce(databaseUrl) {
  * server (or, set to nothing, none). The sink is a development package: it is imported here alone.
  * @returns {Promise<{ environment: Record<string, string>, pageUrl: string | null }>}
  */
-export async function catchDemoMail() {
+async function catchDemoMail() {
   if (givenUrl !== '' || process.env.SMTP_URL !== undefined) return { environment: {}, pageUrl: null };
   return runStep('Mail', async (tell) => {
     const [{ openMailSink }, { openMailPage }] = [
@@ -148,7 +191,7 @@ export function importBuilt(name) {
 }
 
 /** The same at every start, so that nobody is signed out by one. */
-export function keepSessionSecret() {
+function keepSessionSecret() {
   const path = join(projectRoot, '.local', 'session-secret');
   if (!existsSync(path)) writeFileSync(path, randomBytes(32).toString('base64url'), { mode: 0o600 });
   return readFileSync(path, 'utf8');

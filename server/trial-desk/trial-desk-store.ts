@@ -1,20 +1,17 @@
-import { and, asc, desc, eq, inArray, sql, type SQL } from 'drizzle-orm';
-import { crops, traits } from '#drizzle/schema/crops.ts';
+import { and, eq, inArray, sql, type SQL } from 'drizzle-orm';
+import { crops } from '#drizzle/schema/crops.ts';
 import { regions, sites } from '#drizzle/schema/geography.ts';
-import { plots, trials, versionFits } from '#drizzle/schema/trials.ts';
+import { plots, trials } from '#drizzle/schema/trials.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { TrialDetail, TrialFilter, TrialLine, TrialState } from '#shared/trial.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
-import { newestPublications } from '#server/trials/latest-versions.ts';
+import { selectTrialLines } from '#server/trials/select-trial-lines.ts';
 import { loadTrialContent } from '#server/trials/trial-content-store.ts';
 import { listVersionLines } from '#server/trials/trial-store.ts';
 
 /** Who works at the desk: an account and the regions it works in. */
 export type DeskWorker = { id: string; regionIds: readonly string[] };
-
-/** The trait whose figures stand for a trial in lists. */
-const headlineTrait = 'yield';
 
 /**
  * Trials of the worker's regions in every state, newest season first.
@@ -121,48 +118,10 @@ export async function excludePlots(
   });
 }
 
-async function selectDeskLines(db: DatabaseOrTransaction, choose: SQL | undefined): Promise<TrialLine[]> {
-  const publication = newestPublications(db);
-  const plainMean = sql<number | null>`(select avg(o.value) from observations o
-    join plots p on p.id = o.plot_id
-    where p.trial_id = ${trials.id} and o.trait_id = ${traits.id} and p.excluded_reason is null)`;
-  const rows = await db
-    .select({
-      id: trials.id,
-      name: trials.name,
-      cropId: trials.cropId,
-      siteId: trials.siteId,
-      siteName: sites.name,
-      regionId: sites.regionId,
-      season: trials.season,
-      design: trials.design,
-      kind: trials.kind,
-      state: trials.state,
-      entries: sql<number>`(select count(*)::int from entries where trial_id = ${trials.id})`,
-      plots: sql<number>`(select count(*)::int from plots where trial_id = ${trials.id})`,
-      plainMean,
-      publishedMean: versionFits.grandMean,
-      cvPercent: versionFits.cvPercent,
-      lsd: versionFits.lsd,
-      entryP: versionFits.entryP,
-      cvLimitPercent: crops.cvLimitPercent,
-      version: publication.number,
-    })
-    .from(trials)
-    .innerJoin(sites, eq(sites.id, trials.siteId))
-    .innerJoin(regions, eq(regions.id, sites.regionId))
-    .innerJoin(crops, eq(crops.id, trials.cropId))
-    .leftJoin(publication, eq(publication.trialId, trials.id))
-    .leftJoin(traits, and(eq(traits.cropId, crops.id), eq(traits.slug, headlineTrait)))
-    .leftJoin(
-      versionFits,
-      and(eq(versionFits.versionId, publication.versionId), eq(versionFits.traitId, traits.id)),
-    )
-    .where(choose)
-    .orderBy(desc(trials.season), asc(sites.name), asc(trials.name));
-  return rows.map(({ plainMean: mean, publishedMean, cvLimitPercent, ...row }) => ({
-    ...row,
-    meanYield: publishedMean ?? mean,
-    isWeak: row.cvPercent !== null && row.cvPercent > cvLimitPercent,
+async function selectDeskLines(db: DatabaseOrTransaction, chosen: SQL | undefined): Promise<TrialLine[]> {
+  const lines = await selectTrialLines(db, () => chosen);
+  return lines.map(({ action: _ofVersions, plainMean, ...line }) => ({
+    ...line,
+    meanYield: line.meanYield ?? plainMean,
   }));
 }

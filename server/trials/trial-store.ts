@@ -1,16 +1,13 @@
-import { and, asc, desc, eq, type SQL, sql } from 'drizzle-orm';
+import { and, asc, desc, eq } from 'drizzle-orm';
 import { users } from '#drizzle/schema/accounts.ts';
 import { crops, traits } from '#drizzle/schema/crops.ts';
-import { regions, sites } from '#drizzle/schema/geography.ts';
-import { trials, trialVersions, versionFits } from '#drizzle/schema/trials.ts';
+import { regions } from '#drizzle/schema/geography.ts';
+import { trials, trialVersions } from '#drizzle/schema/trials.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { trialContent, type TrialContent } from '#shared/trial-content.ts';
 import type { TrialDetail, TrialFilter, TrialLine, TrialVersionLine } from '#shared/trial.ts';
 import type { DatabaseOrTransaction } from '#server/db.ts';
-import { newestPublications, newestVersions } from './latest-versions.ts';
-
-/** The trait whose figures stand for a trial in lists. */
-const headlineTrait = 'yield';
+import { selectTrialLines } from './select-trial-lines.ts';
 
 /**
  * Trials that are published now, newest season first.
@@ -90,53 +87,17 @@ export async function listVersionLines(
   return rows.map((row) => ({ ...row, at: row.at.toISOString() }));
 }
 
-type NewestVersions = ReturnType<typeof newestVersions>;
-
+/** Of a trial that was never published, a reader learns nothing. */
 async function selectReaderLines(
   db: DatabaseOrTransaction,
-  choose: (newest: NewestVersions) => SQL | undefined,
+  choose: Parameters<typeof selectTrialLines>[1],
 ): Promise<TrialLine[]> {
-  const newest = newestVersions(db);
-  const publication = newestPublications(db);
-  const rows = await db
-    .select({
-      id: trials.id,
-      name: trials.name,
-      cropId: trials.cropId,
-      siteId: trials.siteId,
-      siteName: sites.name,
-      regionId: sites.regionId,
-      season: trials.season,
-      design: trials.design,
-      kind: trials.kind,
-      action: newest.action,
-      entries: sql<number>`(select count(*)::int from entries where trial_id = ${trials.id})`,
-      plots: sql<number>`(select count(*)::int from plots where trial_id = ${trials.id})`,
-      meanYield: versionFits.grandMean,
-      cvPercent: versionFits.cvPercent,
-      lsd: versionFits.lsd,
-      entryP: versionFits.entryP,
-      cvLimitPercent: crops.cvLimitPercent,
-      version: publication.number,
-    })
-    .from(trials)
-    .innerJoin(newest, eq(newest.trialId, trials.id))
-    .innerJoin(publication, eq(publication.trialId, trials.id))
-    .innerJoin(sites, eq(sites.id, trials.siteId))
-    .innerJoin(regions, eq(regions.id, sites.regionId))
-    .innerJoin(crops, eq(crops.id, trials.cropId))
-    .leftJoin(traits, and(eq(traits.cropId, crops.id), eq(traits.slug, headlineTrait)))
-    .leftJoin(
-      versionFits,
-      and(eq(versionFits.versionId, publication.versionId), eq(versionFits.traitId, traits.id)),
-    )
-    .where(choose(newest))
-    .orderBy(desc(trials.season), asc(sites.name), asc(trials.name));
-  return rows.map(({ action, cvLimitPercent, ...row }) => ({
-    ...row,
-    state: action === 'publish' ? 'published' : 'withdrawn',
-    isWeak: row.cvPercent !== null && row.cvPercent > cvLimitPercent,
-  }));
+  const lines = await selectTrialLines(db, choose);
+  return lines.flatMap(({ action, plainMean: _ofTheDesk, ...line }) =>
+    action === null
+      ? []
+      : [{ ...line, state: action === 'publish' ? ('published' as const) : ('withdrawn' as const) }],
+  );
 }
 
 /** Slugs of the traits that a trial has values of. */
