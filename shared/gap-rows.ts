@@ -1,3 +1,4 @@
+import { reachesBeyondRegion } from './evidence-reach.ts';
 import { spanScale, type Scale } from './gap-scale.ts';
 import type { Say } from './say-sentences.ts';
 import type { Interval, VerdictCode } from './verdict.ts';
@@ -10,8 +11,10 @@ export type GapRow = {
   verdict: VerdictCode;
   /** Candidate minus current, in t/ha as everything drawn; null where the data give none. */
   estimate: number | null;
-  /** For the region's average. */
+  /** For the region's average, or for that over the sites of the trials. */
   region: Interval | null;
+  /** Whether trials of other regions are among them. */
+  isBeyondRegion?: boolean;
   /** For the grower's own next season. */
   ownSeason: Interval | null;
   /** Gap from which the candidate pays; null without costs. */
@@ -19,13 +22,15 @@ export type GapRow = {
 };
 
 /** A candidate as the drawing needs it. Too few trials for a verdict are too few for an interval: none is shown. */
-export function gapRowOf({ varietyName, verdict, gap, money }: CandidateResult): GapRow {
+export function gapRowOf(candidate: CandidateResult): GapRow {
+  const { varietyName, verdict, gap, money } = candidate;
   const isThin = verdict === 'thin';
   return {
     name: varietyName,
     verdict,
     estimate: gap?.estimate ?? null,
     region: isThin ? null : (gap?.region ?? null),
+    isBeyondRegion: reachesBeyondRegion(candidate),
     ownSeason: isThin ? null : (gap?.ownSeason ?? null),
     breakEven: money?.breakEvenGap ?? null,
   };
@@ -56,11 +61,11 @@ export function scaleOfRows(rows: readonly GapRow[]): Scale {
 
 type GapKey =
   | 'drawings:gapStrip.sentence'
-  | `drawings:gapStrip.sentence${'Region' | 'OwnSeason' | 'Thin' | 'BreakEven' | 'NoEstimate'}`;
+  | `drawings:gapStrip.sentence${'Region' | 'Sites' | 'OwnSeason' | 'Thin' | 'BreakEven' | 'NoEstimate'}`;
 
 /** Says a row in words: what stands for the drawing where it is not seen. */
 export function sayGapRow(
-  { name, estimate, region, ownSeason, verdict, breakEven }: GapRow,
+  { name, estimate, region, isBeyondRegion, ownSeason, verdict, breakEven }: GapRow,
   current: string,
   { unit, decimals }: { unit: string; decimals: number },
   say: Say<GapKey>,
@@ -74,7 +79,10 @@ export function sayGapRow(
     level: write.percent(level * 100),
   });
   const parts = [say('drawings:gapStrip.sentence', { name, current, gap: gap(estimate) })];
-  if (region) parts.push(say('drawings:gapStrip.sentenceRegion', ends(region)));
+  if (region) {
+    const key = isBeyondRegion ? 'sentenceSites' : 'sentenceRegion';
+    parts.push(say(`drawings:gapStrip.${key}`, ends(region)));
+  }
   if (ownSeason) parts.push(say('drawings:gapStrip.sentenceOwnSeason', ends(ownSeason)));
   if (verdict === 'thin') parts.push(say('drawings:gapStrip.sentenceThin'));
   if (breakEven !== null) parts.push(say('drawings:gapStrip.sentenceBreakEven', { gap: gap(breakEven) }));

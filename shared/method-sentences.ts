@@ -4,7 +4,7 @@ import type { VerdictCode } from './verdict.ts';
 import type { CandidateResult, WeighUpResult } from './weigh-up.ts';
 
 type MethodKey =
-  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'pair' | 'best' | 'twoTargets' | 'components' | 'usualFactor'}`
+  | `method:${'trials' | 'sites' | 'oneSeason' | 'seasons' | 'dunnett' | 'lsd' | 'pair' | 'best' | 'twoTargets' | 'twoTargetsSites' | 'components' | 'usualFactor'}`
   | `method:from.${'crop-default' | 'own-trials'}`
   | `method:sensitivity.${'holds' | 'changes' | 'line'}`
   | `method:${'farm' | 'farmAlike' | 'money' | 'calibration' | 'computed'}`
@@ -38,7 +38,13 @@ export function tellMethod(result: WeighUpResult, say: Say<MethodKey>, write: Me
     ),
     ...(result.farmRange ? [paragraph(sayFarm(result.farmRange, say, write))] : []),
     paragraph(say(`method:${nameComparison(result)}`)),
-    paragraph(say('method:twoTargets')),
+    paragraph(
+      say(
+        result.trials.some(({ inRegion }) => inRegion === false)
+          ? 'method:twoTargetsSites'
+          : 'method:twoTargets',
+      ),
+    ),
     ...(result.components ? [paragraph(sayComponents(result, result.components, say, write))] : []),
     ...tellSensitivity(result.candidates, say),
     paragraph(say('method:money')),

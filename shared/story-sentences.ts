@@ -1,3 +1,4 @@
+import { reachesBeyondRegion } from './evidence-reach.ts';
 import type { MoneyAssumptions, MoneyResult } from './money.ts';
 import { decimalsFor } from './format-number.ts';
 import { sayFrequency } from './natural-frequency.ts';
@@ -83,14 +84,13 @@ function tellTrials(candidate: CandidateResult, current: string, teller: StoryTe
 
 /** Both intervals in words, each with its level and what it is an interval of. */
 export function tellIntervals(
-  { gap, trials }: Pick<CandidateResult, 'gap' | 'trials'>,
+  candidate: Pick<CandidateResult, 'gap' | 'trials' | 'isBeyondRegion'>,
   { say, write, unit, decimals }: StoryTeller,
 ): string[] {
+  const { gap } = candidate;
   if (gap === null) return [];
-  // With trials of other regions among them, the interval is not one of the region's average.
-  const isBeyondRegion = trials.some(({ inRegion }) => inRegion === false);
   const region = say(
-    isBeyondRegion ? 'verdicts:story.regionSites' : 'verdicts:story.region',
+    reachesBeyondRegion(candidate) ? 'verdicts:story.regionSites' : 'verdicts:story.region',
     write.ends(gap.region, unit, decimals),
   );
   if (gap.ownSeason === null) return [region];

@@ -96,6 +96,8 @@ export const candidateResult = z.object({
    * candidates are picked from a list; null where the evidence is too thin to judge. The page recomputes with it: weighMoney(candidate, basis, money).
    */
   moneyGap: gapDistribution.nullable(),
+  /** True where trials of other regions stand behind the figures as well; absent in older copies. */
+  isBeyondRegion: z.boolean().optional(),
   /** The same for the region's average over seasons; left out in copies frozen before. */
   moneyGapInRegion: gapDistribution.nullish(),
   money: moneyResult.nullable(),

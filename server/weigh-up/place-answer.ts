@@ -48,6 +48,7 @@ export function placeAnswer(
       readAtUsualYield(
         {
           ...candidate,
+          isBeyondRegion: used.some(({ inRegion }) => !inRegion),
           trials: candidate.trials.map((trial) => ({
             ...trial,
             inRegion: byId.get(trial.trialId)?.inRegion ?? true,

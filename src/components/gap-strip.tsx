@@ -134,7 +134,8 @@ export function useGapSentence(current: string, unit: string, decimals: number):
 function StripKey({ rows }: { rows: readonly GapStripRow[] }) {
   const { t } = useTranslation('drawings');
   const format = useFormat();
-  const region = rows.find((row) => row.region)?.region;
+  const shown = rows.find((row) => row.region);
+  const region = shown?.region;
   const ownSeason = rows.find((row) => row.ownSeason)?.ownSeason;
   const level = (interval: Interval) => ({ level: format.percent(interval.level * 100) });
   return (
@@ -143,7 +144,10 @@ function StripKey({ rows }: { rows: readonly GapStripRow[] }) {
         <line x1="4" x2="4" y1="1" y2="19" stroke="var(--color-ink)" strokeWidth="3" />
       </KeyEntry>
       {region && (
-        <KeyEntry words={t('gapStrip.legendRegion', level(region))} width={34}>
+        <KeyEntry
+          words={t(shown.isBeyondRegion ? 'gapStrip.legendSites' : 'gapStrip.legendRegion', level(region))}
+          width={34}
+        >
           <rect y="4" width="34" height="12" rx="2" fill="var(--color-open)" />
         </KeyEntry>
       )}
@@ -203,7 +207,7 @@ function StripTable({
     value === null ? t('gapStrip.none') : format.gap(value, unit, decimals);
   const fromTo = (interval: Interval | null) =>
     interval === null ? t('gapStrip.none') : t('gapStrip.fromTo', format.ends(interval, unit, decimals));
-  const firstRegion = rows.find((row) => row.region)?.region;
+  const shown = rows.find((row) => row.region);
   const firstOwnSeason = rows.find((row) => row.ownSeason)?.ownSeason;
   const columns: Column<GapStripRow>[] = [
     { id: 'name', header: t('gapStrip.candidate'), cell: (row) => row.name },
@@ -211,7 +215,9 @@ function StripTable({
     { id: 'gap', header: t('gapStrip.gap'), align: 'end', cell: (row) => gap(row.estimate) },
     {
       id: 'region',
-      header: t('gapStrip.region', { level: level(firstRegion) }),
+      header: t(shown?.isBeyondRegion ? 'gapStrip.sites' : 'gapStrip.region', {
+        level: level(shown?.region),
+      }),
       align: 'end',
       cell: (row) => fromTo(row.region),
     },

@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
+import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
 import type { CandidateResult, TraitVerdict } from '#shared/weigh-up.ts';
 import { VerdictMark } from './beam.tsx';
 import { DataTable, type Column } from './data-table.tsx';
@@ -63,7 +64,11 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
         />
       )}
       {level !== undefined && (
-        <p className="text-sm text-faded">{t('traits.note', { level: format.percent(level * 100) })}</p>
+        <p className="text-sm text-faded">
+          {t(candidates.some(reachesBeyondRegion) ? 'traits.noteSites' : 'traits.note', {
+            level: format.percent(level * 100),
+          })}
+        </p>
       )}
       {rows.some((trait) => trait.kind === 'ordinal') && (
         <p className="text-sm text-faded">{t('traits.ratingNote')}</p>

@@ -136,3 +136,18 @@ describe('trials of other regions', () => {
     expect(placeAnswer(none, { trials: [] }, ask())).toBe(none);
   });
 });
+
+test('a candidate knows whether trials of other regions stand behind its figures, also where it stood in none of them', () => {
+  const place = (trials: EvidenceTrial[]) =>
+    placeAnswer(answer([candidate(0.1, 10)], trials), { trials }, ask()).candidates[0]?.isBeyondRegion;
+  expect(place([trial(1, true)])).toBe(false);
+  expect(place([trial(1, true), trial(2, false)])).toBe(true);
+});
+
+test('which of a list can be the best is not told from other regions’ trials alone', () => {
+  const best = { standings: [], thin: [] };
+  const place = (trials: EvidenceTrial[]) =>
+    placeAnswer({ ...answer([candidate(0.1, 10)], trials), best }, { trials }, ask()).best;
+  expect(place([trial(1, true), trial(2, false)])).toEqual(best);
+  expect(place([trial(2, false)])).toBeNull();
+});

@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import { decimalsFor } from '#shared/format-number.ts';
+import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
 import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
@@ -30,6 +31,7 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
   const decimals = decimalsFor(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
   const shown = candidates.find(({ gap, verdict }) => gap && verdict !== 'thin')?.gap;
   const level = (value: number) => format.percent(value * 100);
+  const isBeyondRegion = candidates.some(reachesBeyondRegion);
   return (
     <section aria-label={t('candidates')} className="flex flex-col">
       <p className="text-sm text-faded">{t('axis', { current: weighUp.currentVarietyName, unit })}</p>
@@ -47,11 +49,13 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
       {shown && (
         <p className="border-t-2 border-ink pt-2 text-sm text-faded">
           {shown.ownSeason
-            ? t('key', {
+            ? t(isBeyondRegion ? 'keySites' : 'key', {
                 regionLevel: level(shown.region.level),
                 ownLevel: level(shown.ownSeason.level),
               })
-            : t('keyWithoutOwn', { regionLevel: level(shown.region.level) })}
+            : t(isBeyondRegion ? 'keySitesWithoutOwn' : 'keyWithoutOwn', {
+                regionLevel: level(shown.region.level),
+              })}
         </p>
       )}
     </section>

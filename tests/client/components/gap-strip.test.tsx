@@ -100,4 +100,16 @@ describe('the gap strip', () => {
     await userEvent.click(screen.getByRole('button', { name: 'Afficher en dessin' }));
     expect(screen.getAllByRole('img')).toHaveLength(2);
   });
+
+  it('says whose average the intervals are of: not the region’s, where trials of other regions stand behind them', async () => {
+    await renderClient(strip([{ ...ostermoor, isBeyondRegion: true }]));
+    const user = userEvent.setup();
+    expect(screen.getByText('average over these sites, 95% interval')).toBeTruthy();
+    expect(screen.getByRole('img').getAttribute('aria-label')).toContain(
+      'Average over the sites and seasons of these trials, some in other regions, between +0.17',
+    );
+    await user.click(screen.getByRole('button', { name: /table/i }));
+    expect(screen.getByRole('columnheader', { name: 'Average over these sites, 95%' })).toBeTruthy();
+    expect(screen.queryByText(/region’s average/i)).toBeNull();
+  });
 });

@@ -2,7 +2,7 @@ import { screen } from '@testing-library/react';
 import { expect, test } from 'vitest';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
-import { buildCandidate, buildResult } from '#tests/client/support/weigh-up-factory.ts';
+import { buildCandidate, buildResult, idOf } from '#tests/client/support/weigh-up-factory.ts';
 
 const namespaces = ['method', 'verdicts'] as const;
 const holding = buildCandidate({ sensitivity: { half: 'ahead', double: 'ahead' } });
@@ -50,4 +50,12 @@ test.each([
 ] as const)('the comparison is said with its reason: %o', async (asked, sentence) => {
   await show({ ...buildResult([holding]), ...asked });
   expect(screen.getByText(sentence)).toBeTruthy();
+});
+
+test('the average is the region’s only where its trials alone stand behind the figures', async () => {
+  const trial = { trialId: idOf(5), name: 'Plots', siteName: 'Elm', season: 2025, version: 1, sha256: '' };
+  const used = { ...trial, meanYield: 5, cvPercent: 6 };
+  await show({ ...buildResult([holding]), trials: [used, { ...used, inRegion: false }] });
+  expect(screen.getByText(/the average over the sites and seasons of these trials/)).toBeTruthy();
+  expect(screen.queryByText(/the region’s average/)).toBeNull();
 });
