@@ -48,6 +48,8 @@ export const traitVerdict = z.object({
   /** Ordinal ratings: medians and trials, no verdict. */
   medianCandidate: z.number().nullable(),
   medianCurrent: z.number().nullable(),
+  /** Trials in which both were rated, and in how many of them the candidate's rating was the lower or the higher. */
+  rated: z.object({ trials: z.number().int(), lower: z.number().int(), higher: z.number().int() }).optional(),
 });
 export type TraitVerdict = z.infer<typeof traitVerdict>;
 

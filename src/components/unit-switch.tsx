@@ -1,7 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import { sayUnit } from '#shared/format-number.ts';
 import { yieldUnits, type YieldUnit } from '#shared/units.ts';
-import { Field } from './field.tsx';
 import { useReaderUnits } from './reader-units-context.tsx';
 import { Select } from './select.tsx';
 import { useFormat } from './use-format.ts';
@@ -17,7 +16,8 @@ export function UnitSwitch({ onChoose }: { onChoose: (unit: YieldUnit) => void }
     decimals: Number.isInteger(bushelWeightLb) ? 0 : 1,
   });
   return (
-    <Field label={t('units.label')} className="w-60 max-w-full print:hidden">
+    <label className="flex max-w-full items-center gap-2 text-sm print:hidden">
+      <span className="font-semibold">{t('units.label')}</span>
       <Select
         value={yieldUnit}
         onChange={(event) => {
@@ -32,6 +32,6 @@ export function UnitSwitch({ onChoose }: { onChoose: (unit: YieldUnit) => void }
               : sayUnit(unit, language),
         }))}
       />
-    </Field>
+    </label>
   );
 }

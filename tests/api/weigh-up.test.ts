@@ -249,6 +249,10 @@ test('other traits have verdicts of their own; ratings are told as medians witho
   expect(lodging).toMatchObject({ kind: 'ordinal', verdict: null, gap: null, siteYears: 9 });
   expect(lodging?.medianCandidate).not.toBeNull();
   expect(lodging?.medianCurrent).not.toBeNull();
+  const { trials, lower, higher } = lodging?.rated ?? { trials: 0, lower: 0, higher: 0 };
+  expect(trials).toBe(9);
+  expect(lower + higher).toBeGreaterThan(0);
+  expect(lower + higher).toBeLessThanOrEqual(trials);
 });
 
 test('a region without trials gets no verdict, and says why', async () => {

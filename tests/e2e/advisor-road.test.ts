@@ -58,7 +58,7 @@ async function askQuestion(page: Page, language: Language): Promise<string[]> {
     say(language, 'weigh-up:new.region'),
     language === 'en' ? 'Upper Velmar' : 'Haut-Velmar',
   );
-  const current = page.getByLabel(say(language, 'weigh-up:new.current'));
+  const current = page.getByLabel(say(language, 'weigh-up:new.current'), { exact: true });
   await current.selectOption({ index: 1 });
   const boxes = page.getByRole('checkbox');
   await boxes.nth(3).waitFor();
@@ -86,7 +86,36 @@ async function weigh(page: Page, language: Language): Promise<void> {
   await page.getByRole('heading', { level: 1 }).waitFor();
 }
 
+/** Turns the tablet round: one candidate at a time in large type, turned by the keyboard, and back. */
+async function showAtTable(page: Page, language: Language, names: readonly string[]): Promise<void> {
+  const [first = '', second = ''] = names;
+  const heading = (name: string) => page.getByRole('heading', { level: 2, name });
+  await page.getByRole('button', { name: say(language, 'weigh-up:table.open') }).click();
+  await heading(first).waitFor();
+  await expectSoundPage(page);
+  await page.keyboard.press('ArrowRight');
+  await heading(second).waitFor();
+  expect(await heading(first).isVisible()).toBe(false);
+  await page.getByRole('heading', { name: say(language, 'verdicts:cautionsTitle') }).waitFor();
+  await expectSoundPage(page);
+  await page.keyboard.press('Escape');
+  await heading(say(language, 'weigh-up:copies.title')).waitFor();
+}
+
+/** The yields, areas and prices of the page in bushels, and back. */
+async function readInBushels(page: Page, language: Language): Promise<void> {
+  const units = page.getByLabel(say(language, 'common:units.label'));
+  await units.selectOption('bu/ac');
+  const main = page.getByRole('main');
+  expect(await main.textContent()).toMatch(language === 'en' ? /\d\sbu\/ac/ : /\d\sbo\/ac/);
+  expect(await main.textContent()).not.toMatch(/\d\st\/ha/);
+  await expectSoundPage(page);
+  await units.selectOption('t/ha');
+}
+
 async function handOver(page: Page, language: Language): Promise<string> {
+  // On a phone the section is a line until it is asked for.
+  await page.getByRole('link', { name: say(language, 'weigh-up:page.handOver') }).click();
   await page.getByLabel(say(language, 'weigh-up:copies.language')).selectOption(other(language));
   await page.getByRole('button', { name: say(language, 'weigh-up:copies.make') }).click();
   const link = await page.getByLabel(say(language, 'weigh-up:copies.link')).inputValue();
@@ -113,6 +142,8 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     expect(await main.textContent()).toMatch(verdictWords(language));
     expect(await main.textContent()).toMatch(language === 'en' ? /t\/ha/ : /\d,\d+\s*t\/ha/);
     await expectSoundPage(page);
+    await readInBushels(page, language);
+    await showAtTable(page, language, names);
     const link = await handOver(page, language);
     await expectSoundPage(page);
 

@@ -8,6 +8,7 @@ import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { ApiError, callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
+import { FoldedSection } from '#src/components/folded-section.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { fillPath, paths } from '#src/paths.ts';
@@ -25,11 +26,8 @@ export function DecisionPanel({ weighUp, result, hasUnsaved }: DecisionPanelProp
   const { t } = useTranslation('record');
   const decisions = useQuery(decisionsQuery(weighUp.id));
   return (
-    <section aria-labelledby="decision-title" className="flex flex-col gap-4">
-      <div>
-        <h2 id="decision-title">{t('decision.title')}</h2>
-        <p className="text-faded">{t('decision.lead')}</p>
-      </div>
+    <FoldedSection id="decision" title={t('decision.title')}>
+      <p className="text-faded">{t('decision.lead')}</p>
       {decisions.isPending && <Skeleton lines={3} />}
       {decisions.isError && <QueryErrorState query={decisions} />}
       {decisions.data && (
@@ -45,7 +43,7 @@ export function DecisionPanel({ weighUp, result, hasUnsaved }: DecisionPanelProp
           ))}
         </>
       )}
-    </section>
+    </FoldedSection>
   );
 }
 

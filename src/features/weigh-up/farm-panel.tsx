@@ -9,6 +9,7 @@ import { callApi } from '#src/api-client.ts';
 import { catalogueQuery } from '#src/catalogue-query.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
+import { FoldedSection } from '#src/components/folded-section.tsx';
 import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { showToast } from '#src/components/toaster.tsx';
@@ -40,11 +41,8 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
   useEffect(() => form.reset(toFarmDraft(weighUp), { keepDirtyValues: true }), [form, weighUp]);
   const saving = useFarmSaving(weighUp, form);
   return (
-    <section aria-labelledby="farm-title" className="flex flex-col gap-4">
-      <div>
-        <h2 id="farm-title">{t('farm.title')}</h2>
-        <p className="text-faded">{t('farm.lead')}</p>
-      </div>
+    <FoldedSection id="farm" title={t('farm.title')}>
+      <p className="text-faded">{t('farm.lead')}</p>
       <form
         noValidate
         className="flex flex-col gap-4"
@@ -61,7 +59,7 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
           {saving.isPending ? t('farm.saving') : t('farm.save')}
         </Button>
       </form>
-    </section>
+    </FoldedSection>
   );
 }
 

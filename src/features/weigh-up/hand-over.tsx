@@ -3,6 +3,7 @@ import { useTranslation } from 'react-i18next';
 import { makeGrowerCopy } from '#shared/grower-copy.ts';
 import { callApi } from '#src/api-client.ts';
 import { ErrorState } from '#src/components/error-state.tsx';
+import { FoldedSection } from '#src/components/folded-section.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -28,8 +29,7 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
   });
   const errorText = useErrorText();
   return (
-    <section id="hand-over" aria-labelledby="hand-over-title" className="flex flex-col gap-4">
-      <h2 id="hand-over-title">{t('copies.title')}</h2>
+    <FoldedSection id="hand-over" title={t('copies.title')}>
       <p className="max-w-prose">{t('copies.lead')}</p>
       <CopyForm
         hasUnsaved={hasUnsaved}
@@ -51,6 +51,6 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
       {copies.isPending && <Skeleton lines={2} />}
       {copies.isError && <QueryErrorState query={copies} />}
       {copies.data && <CopyList weighUpId={weighUpId} copies={copies.data.copies} />}
-    </section>
+    </FoldedSection>
   );
 }

@@ -5,6 +5,7 @@ import type { QuestionKind } from '#shared/question-kind.ts';
 import { changeWeighUp, type WeighUp } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
+import { FoldedSection } from '#src/components/folded-section.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { PanelFailure } from './panel-failure.tsx';
 import { QuestionChoice } from './question-choice.tsx';
@@ -25,11 +26,8 @@ export function QuestionPanel({ weighUp, hasUnsaved }: QuestionPanelProps) {
   const chosen = touched ?? weighUp.question;
   const saving = useQuestionSaving(weighUp, () => setTouched(null));
   return (
-    <section aria-labelledby="question-title" className="flex flex-col gap-4">
-      <div>
-        <h2 id="question-title">{t('question.panel')}</h2>
-        <p className="text-faded">{t('question.lead')}</p>
-      </div>
+    <FoldedSection id="question" title={t('question.panel')}>
+      <p className="text-faded">{t('question.lead')}</p>
       <form
         className="flex flex-col gap-4"
         onSubmit={(event) => {
@@ -49,7 +47,7 @@ export function QuestionPanel({ weighUp, hasUnsaved }: QuestionPanelProps) {
           {saving.isPending ? t('question.saving') : t('question.save')}
         </Button>
       </form>
-    </section>
+    </FoldedSection>
   );
 }
 

@@ -11,12 +11,11 @@ import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
 import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
+import { FoldedSection } from '#src/components/folded-section.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
-import { PageHeading } from '#src/components/page-heading.tsx';
 import { UnitSwitch } from '#src/components/unit-switch.tsx';
-import { useFormat } from '#src/components/use-format.ts';
 import { VerdictHeadline } from '#src/components/verdict-headline.tsx';
 import { WeighingProgress } from '#src/components/weighing-progress.tsx';
 import { fillPath, paths } from '#src/paths.ts';
@@ -31,6 +30,9 @@ import { QuestionPanel } from './question-panel.tsx';
 import { TickOffStep } from './tick-off.tsx';
 import { useMoneyForm } from './use-money-form.ts';
 import { useMoneySaving } from './use-money-saving.ts';
+import { TableView } from './table-view.tsx';
+import { useWeighUpView, WeighUpHeading } from './weigh-up-heading.tsx';
+import { WaysInPage } from './ways-in-page.tsx';
 import { weighUpQuery } from './weigh-up-queries.ts';
 
 /** A grower's question answered: who is really ahead, whether it pays, and where the evidence stops. */
@@ -57,59 +59,6 @@ export function WeighUpPage() {
 
 type AnswerProps = { weighUp: WeighUp; result: WeighUpResult };
 
-function WeighUpHeading({ weighUp, result }: AnswerProps) {
-  const { t } = useTranslation(['weigh-up', 'verdicts', 'method']);
-  const format = useFormat();
-  const from = Math.min(...result.seasons);
-  const to = Math.max(...result.seasons);
-  const isWeighed = result.answer === 'weighed';
-  const figures = {
-    trials: t('verdicts:trialCount', { count: result.trials.length }),
-    sites: t('method:sites', { count: result.sites }),
-    from,
-    to,
-    date: format.date(result.computedAt),
-  };
-  const below = isWeighed
-    ? t(from === to ? 'weigh-up:page.belowOneSeason' : 'weigh-up:page.below', figures)
-    : t('weigh-up:page.belowNoTrials', {
-        from: weighUp.seasonFrom,
-        to: weighUp.seasonTo,
-        date: figures.date,
-      });
-  return (
-    <PageHeading
-      title={t('weigh-up:page.title', {
-        crop: format.name(weighUp.cropName),
-        region: format.name(weighUp.regionName),
-        current: weighUp.currentVarietyName,
-      })}
-      above={
-        <>
-          <Link to={paths.weighUps}>{t('weigh-up:page.back')}</Link>
-          {' · '}
-          {t('weigh-up:page.above', {
-            grower: weighUp.growerName,
-            farm: weighUp.farmName,
-            area: format.area(weighUp.areaHectares),
-          })}
-        </>
-      }
-      below={below}
-      actions={
-        isWeighed && (
-          <a
-            href="#hand-over"
-            className="tap-target inline-flex items-center rounded-md border border-action bg-action px-4 py-2 font-semibold text-on-action no-underline hover:underline"
-          >
-            {t('weigh-up:page.handOver')}
-          </a>
-        )
-      }
-    />
-  );
-}
-
 function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
   const { t } = useTranslation('verdicts');
   const cautionItems = useCautionItems();
@@ -135,6 +84,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   const { t } = useTranslation(['verdicts', 'method']);
   const cautionItems = useCautionItems();
   const chooseUnit = useUnitChoice();
+  const view = useWeighUpView();
   const money = useMoneyForm(weighUp);
   const saving = useMoneySaving(money);
   const candidates = reckonCandidates(
@@ -154,12 +104,29 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     { id: weighUp.currentVarietyId, name: currentName },
     ...candidates.map(({ varietyId, varietyName }) => ({ id: varietyId, name: varietyName })),
   ];
+  if (view === 'table') {
+    return (
+      <>
+        <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
+        <TableView
+          candidates={candidates}
+          currentName={currentName}
+          money={money.assumptions}
+          cautions={result.cautions.filter(({ severity }) => severity !== 'stop')}
+          hasUnsaved={money.form.formState.isDirty}
+        />
+      </>
+    );
+  }
   return (
     <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem]">
       <div className="flex min-w-0 flex-col gap-8">
         <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
-        <UnitSwitch onChoose={chooseUnit} />
+        <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2">
+          <WaysInPage />
+          <UnitSwitch onChoose={chooseUnit} />
+        </div>
         {result.best && (
           <BestOfListAnswer
             best={result.best}
@@ -173,19 +140,25 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
           money={money.assumptions}
           areaHectares={money.areaHectares}
         />
-        <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
-        <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
+        <div id="cautions" className="scroll-mt-2">
+          <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
+        </div>
+        <div id="traits" className="scroll-mt-2">
+          <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
+        </div>
       </div>
-      <div className="lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto">
+      <div
+        id="money"
+        className="scroll-mt-2 lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto"
+      >
         <MoneyPanel weighUp={weighUp} varieties={varieties} money={money} saving={saving} />
       </div>
-      <div className="flex min-w-0 flex-col gap-8">
+      <div className="flex min-w-0 flex-col gap-4 lg:gap-6">
         <QuestionPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
         <FarmPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
         <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
         <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
-        <section className="flex flex-col gap-4">
-          <h2>{t('method:title')}</h2>
+        <FoldedSection id="method" title={t('method:title')}>
           <MethodNotes result={result} />
           <details>
             <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
@@ -193,7 +166,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
             </summary>
             <OwnEvidence weighUp={weighUp} result={result} />
           </details>
-        </section>
+        </FoldedSection>
       </div>
     </div>
   );
