@@ -5,9 +5,7 @@ import { defineContract } from './contract.ts';
 import type { Language } from './language.ts';
 import { weighUp, weighUpResult } from './weigh-up.ts';
 
-/** Everything the copy shows, frozen when it was made; the page renders from this alone. */
-export const growerCopySnapshot = z.object({
-  format: z.literal(1),
+const frozen = z.object({
   weighUp,
   result: weighUpResult,
   traits: z.array(trait),
@@ -16,6 +14,21 @@ export const growerCopySnapshot = z.object({
   madeAt: z.iso.datetime(),
   engineVersion: z.string(),
 });
+
+/**
+ * Everything the copy shows, frozen when it was made; the page renders from this and the sentences that it names. Copies
+ * of format 1 name none: they speak as the product does today, and cannot be read in bushels.
+ */
+export const growerCopySnapshot = z.discriminatedUnion('format', [
+  frozen.extend({ format: z.literal(1) }),
+  frozen.extend({
+    format: z.literal(2),
+    /** SHA-256 in hex of the sentences that it was made with. */
+    sentencesHash: z.string().regex(/^[0-9a-f]{64}$/),
+    /** The crop's bushel of account, pounds. */
+    bushelWeightLb: z.number().positive(),
+  }),
+]);
 export type GrowerCopySnapshot = z.infer<typeof growerCopySnapshot>;
 
 /** What became of a trial after the copy was made; shown beside the frozen numbers. */

@@ -102,6 +102,19 @@ export const weighUpCandidates = pgTable(
   ],
 );
 
+/** The sentences that copies were made with, once for each wording: a copy goes on speaking as it did. */
+export const frozenSentences = pgTable(
+  'frozen_sentences',
+  {
+    /** SHA-256 in hex of the sentences. */
+    hash: text('hash').primaryKey(),
+    /** By language, then namespace; see server/grower-copy/copy-sentences.ts. */
+    sentences: jsonb('sentences').notNull(),
+    createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
+  },
+  (table) => [check('frozen_sentences_hash_shape', sql`${table.hash} ~ '^[0-9a-f]{64}$'`)],
+);
+
 /** The frozen, read-only copy behind a link. Only the hash of the link's secret is kept. */
 export const growerCopies = pgTable(
   'grower_copies',

@@ -3,6 +3,7 @@ import { crops, traits, varieties } from '#drizzle/schema/crops.ts';
 import { places, regions, sites } from '#drizzle/schema/geography.ts';
 import { trials } from '#drizzle/schema/trials.ts';
 import type { Crop, Place, Region, Site } from '#shared/catalogue.ts';
+import { CodedError } from '#shared/error-codes.ts';
 import type { Database } from '#server/db.ts';
 import { newestVersions } from '#server/trials/latest-versions.ts';
 
@@ -40,6 +41,19 @@ export async function loadCatalogue(db: Database): Promise<Catalogue> {
       seasons: [...new Set(published.filter((row) => row.cropId === crop.id).map((row) => row.season))],
     })),
   };
+}
+
+/**
+ * A crop's bushel of account, in pounds.
+ * @throws CodedError not-found
+ */
+export async function readBushelWeight(db: Database, cropId: string): Promise<number> {
+  const [row] = await db
+    .select({ bushelWeightLb: crops.bushelWeightLb })
+    .from(crops)
+    .where(eq(crops.id, cropId));
+  if (row === undefined) throw new CodedError('not-found');
+  return row.bushelWeightLb;
 }
 
 type PublishedCount = { cropId: string; regionId: string; season: number; trials: number };

@@ -2,6 +2,8 @@ import { createHash } from 'node:crypto';
 import type { ErrorRequestHandler, Request, RequestHandler, Response, Router } from 'express';
 import type { ErrorCode } from '#shared/error-codes.ts';
 import { languages, type Language } from '#shared/language.ts';
+import { readUnitParameter } from '#shared/reader-units.ts';
+import type { YieldUnit } from '#shared/units.ts';
 import {
   renderCopyPage,
   renderFailedCopyPage,
@@ -29,10 +31,15 @@ export function addCopyPage(router: Router, db: Database, settings: ServerSettin
   const files = findCopyPageFiles(settings.clientFolder);
 
   router.get('/copy/:token', async (request, response) => {
-    const copy = await openCopy(db, request.params.token, { isCounted: isOpening(request) });
+    const { copy, sentences } = await openCopy(db, request.params.token, { isCounted: isOpening(request) });
     const language = askedLanguage(request) ?? copy.language;
-    const sentences = presentSentences[language];
-    sendPage(request, response, renderCopyPage(copy, { language, sentences, files }));
+    const page = renderCopyPage(copy, {
+      language,
+      sentences: sentences[language],
+      files,
+      yieldUnit: askedUnit(request) ?? 't/ha',
+    });
+    sendPage(request, response, page);
   });
 
   const showFailure: ErrorRequestHandler = (error: unknown, request, response, next) => {
@@ -73,6 +80,9 @@ function isOpening(request: Request): boolean {
 
 const askedLanguage = (request: Request): Language | undefined =>
   languages.find((language) => language === request.query['lang']);
+
+const askedUnit = ({ query: { unit } }: Request): YieldUnit | null =>
+  readUnitParameter(typeof unit === 'string' ? unit : null);
 
 /** Nothing is known of whoever comes by a link that leads nowhere but what the browser says. */
 const readerLanguage = (request: Request): Language =>

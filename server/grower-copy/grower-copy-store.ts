@@ -13,6 +13,8 @@ import {
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
 import { cancelMails, queueCopyMail, readNewestMails } from '#server/mail/outbox-store.ts';
+import { presentSentences, type BilingualSentences } from './copy-sentences.ts';
+import { keepSentences, readSentencesOf } from './frozen-sentences.ts';
 import { findLaterChanges } from './later-changes.ts';
 import { hashLinkSecret } from './link-secret.ts';
 
@@ -46,6 +48,7 @@ export type NewCopy = {
 export async function insertCopy(db: Database, copy: NewCopy): Promise<GrowerCopyLine> {
   const { weighUpId, language, snapshot, createdBy, followsId } = copy;
   return db.transaction(async (tx) => {
+    await keepSentences(tx, presentSentences);
     const [row] = await tx
       .insert(growerCopies)
       .values({
@@ -149,13 +152,14 @@ export async function revokeOwnCopy(db: Database, ownerId: string, copyId: strin
 /**
  * Opens a copy by the secret of its link.
  * @param isCounted whether this is an opening, and not only another view of what is open already
+ * @returns the copy, and the sentences that it is to be told in
  * @throws CodedError link-unknown, link-revoked, link-expired
  */
 export async function openCopy(
   db: Database,
   secret: string,
   { isCounted }: { isCounted: boolean },
-): Promise<OpenedCopy> {
+): Promise<{ copy: OpenedCopy; sentences: BilingualSentences }> {
   const tokenHash = hashLinkSecret(secret);
   const counted = { openings: sql`${growerCopies.openings} + 1`, lastOpenedAt: sql`now()` };
   const [row] = await db
@@ -172,7 +176,8 @@ export async function openCopy(
   if (row === undefined) return refuseOpening(db, tokenHash);
   const snapshot = growerCopySnapshot.parse(row.snapshot);
   const [laterChanges = []] = await findLaterChanges(db, [snapshot]);
-  return { snapshot, language: row.language, expiresAt: row.expiresAt.toISOString(), laterChanges };
+  const copy = { snapshot, language: row.language, expiresAt: row.expiresAt.toISOString(), laterChanges };
+  return { copy, sentences: await readSentencesOf(db, snapshot) };
 }
 
 async function refuseOpening(db: Database, tokenHash: string): Promise<never> {

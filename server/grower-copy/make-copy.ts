@@ -1,8 +1,11 @@
 import type { Language, Me } from '#shared/account.ts';
 import { growerCopySnapshot, type GrowerCopyLine, type GrowerCopySnapshot } from '#shared/grower-copy.ts';
 import type { Database } from '#server/db.ts';
+import { readBushelWeight } from '#server/catalogue/catalogue-store.ts';
 import { answerWeighUp } from '#server/weigh-up/answer-question.ts';
 import { readOwnWeighUp } from '#server/weigh-up/weigh-up-store.ts';
+import { presentSentences } from './copy-sentences.ts';
+import { hashSentences } from './frozen-sentences.ts';
 import { insertCopy } from './grower-copy-store.ts';
 import { makeLinkSecret } from './link-secret.ts';
 
@@ -50,7 +53,9 @@ async function takeSnapshot(
   const weighUp = await readOwnWeighUp(db, advisor.id, weighUpId);
   const { result, traits } = await answerWeighUp(db, weighUp);
   return growerCopySnapshot.parse({
-    format: 1,
+    format: 2,
+    sentencesHash: hashSentences(presentSentences),
+    bushelWeightLb: await readBushelWeight(db, weighUp.cropId),
     weighUp,
     result,
     traits,

@@ -13,6 +13,8 @@ async function start(port) {
   const { environment, sayWhere } = await prepareServing(port, () =>
     runStep('Client', async (tell) => tell((await buildClient(projectRoot)) ? 'built' : 'up to date')),
   );
+  // React, which renders the pages of copies, has its slow self-checks in every other environment.
+  process.env.NODE_ENV ??= 'production';
   const { readSettings, startServer } = await importBuilt('main');
   const server = await startServer(readSettings(environment, join(projectRoot, 'dist', 'client'))).catch(
     (error) => {

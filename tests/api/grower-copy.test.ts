@@ -2,6 +2,7 @@ import { eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { auditEvents } from '#drizzle/schema/audit.ts';
 import { growerCopies } from '#drizzle/schema/weigh-ups.ts';
+import { presentSentences } from '#server/grower-copy/copy-sentences.ts';
 import { readCopyData, readWords } from '#tests/support/read-copy-page.ts';
 import { say } from '#tests/support/say.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
@@ -298,6 +299,60 @@ test('frozen figures stay when a trial is corrected or withdrawn, and the copy s
   expect(live.trials).toHaveLength(3);
   const newer = await makeCopy(weighUpId);
   expect(readWords((await open(newer.token)).text)).not.toContain(say('fr', 'verdicts:changes.title'));
+});
+
+test('a copy goes on speaking as it did when the product’s sentences change', async () => {
+  const { db } = world.database;
+  const old = await makeCopy();
+  const words = readWords((await open(old.token)).text);
+  const before = presentSentences.fr['copy'] ?? {};
+  presentSentences.fr['copy'] = Object.assign({}, before, { howTitle: 'Tout autrement' });
+  try {
+    expect(readWords((await open(old.token)).text)).toBe(words);
+    const fresh = await makeCopy();
+    expect(readWords((await open(fresh.token)).text)).toContain('Tout autrement');
+    // A copy of the first format has nothing frozen but its figures.
+    await db.execute(
+      sql`update grower_copies set snapshot = snapshot || '{"format": 1}' where id = ${old.copyId}`,
+    );
+    expect(readWords((await open(old.token)).text)).toContain('Tout autrement');
+  } finally {
+    presentSentences.fr['copy'] = before;
+  }
+  const { rows } = await db.execute(sql`select count(*)::int as count from frozen_sentences`);
+  expect(rows).toEqual([{ count: 2 }]);
+});
+
+test('a sentence that there was not yet when the copy was made is taken from today', async () => {
+  const { copyId, token } = await makeCopy();
+  await world.database.db.execute(sql`with cut as (
+      insert into frozen_sentences (hash, sentences)
+      select repeat('a', 64), f.sentences #- '{fr,copy,howTitle}' from grower_copies c
+      join frozen_sentences f on f.hash = c.snapshot ->> 'sentencesHash' where c.id = ${copyId} returning hash
+    )
+    update grower_copies set snapshot = jsonb_set(snapshot, '{sentencesHash}', to_jsonb(cut.hash)) from cut
+    where id = ${copyId}`);
+  expect(readWords((await open(token)).text)).toContain(say('fr', 'copy:howTitle'));
+});
+
+test('the figures are read in the unit that the address names, bushels by the crop’s own weight', async () => {
+  const { copyId, token } = await makeCopy();
+  const read = async (query: string) => readWords((await open(token, query).expect(200)).text);
+  const tonnes = await read('?lang=en');
+  expect(tonnes).toMatch(/\d\.\d+\u00a0t\/ha/);
+  expect(tonnes).toContain('42\u00a0ha');
+  const quintals = await read('?lang=en&unit=q-ha');
+  expect(quintals).toMatch(/\d\u00a0q\/ha/);
+  expect(quintals).not.toMatch(/\d\u00a0t\/ha/);
+  const bushels = await read('?lang=en&unit=bu-ac');
+  expect(bushels).toMatch(/\d\u00a0bu\/ac/);
+  expect(bushels).toContain('103.8\u00a0ac');
+  expect(await read('?lang=en&unit=furlongs')).toBe(tonnes);
+  // The first format does not hold the bushel's weight, and guesses none.
+  await world.database.db.execute(
+    sql`update grower_copies set snapshot = snapshot || '{"format": 1}' where id = ${copyId}`,
+  );
+  expect(await read('?lang=en&unit=bu-ac')).not.toContain('bu/ac');
 });
 
 test('somebody else neither makes, sees nor revokes copies of a weigh-up', async () => {

@@ -65,7 +65,7 @@ function OwnPriceMark({ price, assumptions: { currency, priceMiddle }, onReset }
   const { t } = useTranslation('copy');
   const format = useFormat();
   const write = (value: number) =>
-    format.moneyPer(value, currency, 't', { decimals: Number.isInteger(value) ? 0 : 2 });
+    format.moneyPer(value, currency, 't', Number.isInteger(value) ? {} : { decimals: 2 });
   return (
     <div className="mb-3 rounded-lg border-2 border-action bg-card px-4 py-2">
       <p className="font-semibold">{t('own.marked', { price: write(price), frozen: write(priceMiddle) })}</p>

@@ -7,6 +7,7 @@ import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
+import { CopyUnits } from './copy-units.tsx';
 import { answerId } from './copy-script-data.ts';
 
 type CopyBodyProps = {
@@ -70,6 +71,7 @@ function CopyHeading({ copy }: { copy: OpenedCopy }) {
         })}
       </p>
       <h1>{title}</h1>
+      <CopyUnits hasBushel={copy.snapshot.format !== 1} />
     </div>
   );
 }

@@ -1,12 +1,10 @@
 import { useTranslation } from 'react-i18next';
-import { decimalsFor } from '#shared/format-number.ts';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
 import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
 import { CandidateStory, IntervalSentences } from '#src/components/candidate-story.tsx';
-import { UsualYieldSentences } from '#src/components/usual-yield-sentences.tsx';
 import { useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
@@ -28,13 +26,15 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
   const { t } = useTranslation('copy');
   const format = useFormat();
   const scale = scaleOfRows(candidates.map(gapRowOf));
-  const decimals = decimalsFor(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
+  const decimals = format.decimals(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
   const shown = candidates.find(({ gap, verdict }) => gap && verdict !== 'thin')?.gap;
   const level = (value: number) => format.percent(value * 100);
   const isBeyondRegion = candidates.some(reachesBeyondRegion);
   return (
     <section aria-label={t('candidates')} className="flex flex-col">
-      <p className="text-sm text-faded">{t('axis', { current: weighUp.currentVarietyName, unit })}</p>
+      <p className="text-sm text-faded">
+        {t('axis', { current: weighUp.currentVarietyName, unit: format.unit(unit) })}
+      </p>
       <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
       {candidates.map((candidate) => (
         <CopyCandidate
@@ -115,7 +115,6 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
       </div>
       <div className="flex flex-col gap-1.5">
         {verdict !== 'thin' && <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />}
-        <UsualYieldSentences candidate={candidate} unit={unit} decimals={decimals} />
         {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
         <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
         <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
@@ -169,7 +168,7 @@ function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {
       <p>
         {t('worth', {
           price: format.moneyPer(priceMiddle, currency, 't'),
-          amount: format.money(money.returnPerHectare, currency, { isSigned: true }),
+          amount: format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true }),
           total: format.money(money.returnPerHectare * weighUp.areaHectares, currency, { isSigned: true }),
           area: format.area(weighUp.areaHectares),
         })}

@@ -1,7 +1,9 @@
 import type { ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import { languages } from '#shared/language.ts';
+import { writeUnitParameter } from '#shared/reader-units.ts';
 import { GavelMark } from '#src/components/gavel-mark.tsx';
+import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useLanguage } from '#src/components/use-language.ts';
 
 /** Addresses of what the page fetches, all from our own origin. */
@@ -73,12 +75,13 @@ export function CopyDocument({ title, files, data, dataId, children }: CopyDocum
 function LanguageLinks() {
   const { t } = useTranslation('common');
   const current = useLanguage();
+  const { yieldUnit } = useReaderUnits();
   return languages
     .filter((language) => language !== current)
     .map((language) => (
       <a
         key={language}
-        href={`?lang=${language}`}
+        href={`?${new URLSearchParams({ lang: language, unit: writeUnitParameter(yieldUnit) }).toString()}`}
         lang={language}
         hrefLang={language}
         data-carries-price=""

@@ -1,4 +1,5 @@
 import type { Language } from '#shared/language.ts';
+import type { ReaderUnits } from '#shared/reader-units.ts';
 import type { CopyAnswerProps } from './copy-answer.tsx';
 import type { CopySentences } from './open-copy-sentences.ts';
 
@@ -7,7 +8,12 @@ export const answerId = 'answer';
 export const dataId = 'copy-data';
 
 /** What the script needs to take the answer over. */
-export type CopyScriptData = { language: Language; sentences: CopySentences; answer: CopyAnswerProps };
+export type CopyScriptData = {
+  language: Language;
+  units: ReaderUnits;
+  sentences: CopySentences;
+  answer: CopyAnswerProps;
+};
 
 /** Namespaces of the sentences in the answer. */
 export const answerNamespaces = ['common', 'copy', 'drawings', 'verdicts'] as const;

@@ -1,17 +1,18 @@
 import { useSyncExternalStore } from 'react';
 import { useTranslation } from 'react-i18next';
-import { currencySign } from '#shared/format-number.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import { fromReaderPer } from '#shared/reader-units.ts';
 import { findWorstCostPerTonne } from '#shared/tonne-costs.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
-import { NumberInput } from '#src/components/number-input.tsx';
+import { PriceInput } from '#src/components/measure-input.tsx';
+import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import { useLanguage } from '#src/components/use-language.ts';
 import type { OwnPrice } from './own-price-fragment.ts';
 
-/** What one press changes, per tonne. */
-const step = 5;
+/** What one press changes. */
+const stepPerTonne = 5;
+const stepPerBushel = 0.1;
 
 const neverChanges = () => () => undefined;
 
@@ -30,7 +31,6 @@ type OwnPricePanelProps = { assumptions: MoneyAssumptions; own: OwnPrice; isOwn:
 export function OwnPricePanel({ assumptions, own, isOwn }: OwnPricePanelProps) {
   const { t } = useTranslation('copy');
   const format = useFormat();
-  const language = useLanguage();
   const isAlive = useIsAlive();
   const { currency, priceMiddle: frozen } = assumptions;
   const { price } = own;
@@ -41,7 +41,11 @@ export function OwnPricePanel({ assumptions, own, isOwn }: OwnPricePanelProps) {
     : price > perTonne
       ? undefined
       : t('own.tooLow', { amount: format.moneyPer(perTonne, currency, 't') });
-  const change = (by: number) => own.choose(Math.max((isFigure ? price : frozen) + by, 0));
+  const units = useReaderUnits();
+  const change = (sign: 1 | -1) => {
+    const by = units.yieldUnit === 'bu/ac' ? fromReaderPer(stepPerBushel, 't', units) : stepPerTonne;
+    own.choose(Math.max((isFigure ? price : frozen) + sign * by, 0));
+  };
   return (
     <section
       aria-labelledby="own-price-title"
@@ -52,16 +56,12 @@ export function OwnPricePanel({ assumptions, own, isOwn }: OwnPricePanelProps) {
       <fieldset disabled={!isAlive} className="flex items-end gap-2">
         <legend className="sr-only">{t('own.title')}</legend>
         <Field label={t('own.price')} error={error} className="grow">
-          <NumberInput
-            value={price}
-            onValueChange={own.choose}
-            unit={`${currencySign(currency, language)}/t`}
-          />
+          <PriceInput value={price} onValueChange={own.choose} currency={currency} per="t" />
         </Field>
-        <Button aria-label={t('own.less')} onClick={() => change(-step)}>
+        <Button aria-label={t('own.less')} onClick={() => change(-1)}>
           −
         </Button>
-        <Button aria-label={t('own.more')} onClick={() => change(step)}>
+        <Button aria-label={t('own.more')} onClick={() => change(1)}>
           +
         </Button>
       </fieldset>

@@ -4,6 +4,9 @@ import { I18nextProvider } from 'react-i18next';
 import type { OpenedCopy } from '#shared/grower-copy.ts';
 import type { Language } from '#shared/language.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
+import { storedUnits, type ReaderUnits } from '#shared/reader-units.ts';
+import type { YieldUnit } from '#shared/units.ts';
+import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
 import type { CopyPageFiles } from './copy-document.tsx';
 import { CopyPage, FailedCopyPage, type CopyFailure } from './copy-page.tsx';
@@ -17,11 +20,20 @@ export type { CopyFailure } from './copy-page.tsx';
 export type { CopySentences } from './open-copy-sentences.ts';
 
 type PageOptions = { language: Language; sentences: CopySentences; files: CopyPageFiles };
+type CopyPageOptions = PageOptions & { yieldUnit: YieldUnit };
 
 /** The page of a copy as HTML. */
-export function renderCopyPage(copy: OpenedCopy, { language, sentences, files }: PageOptions): string {
+export function renderCopyPage(
+  copy: OpenedCopy,
+  { language, sentences, files, yieldUnit }: CopyPageOptions,
+): string {
+  const units = readUnits(copy, yieldUnit);
   const inLanguage = (part: ReactNode) =>
-    createElement(I18nextProvider, { i18n: openCopySentences(language, sentences) }, part);
+    createElement(
+      I18nextProvider,
+      { i18n: openCopySentences(language, sentences) },
+      createElement(ReaderUnitsProvider, { units, children: part }),
+    );
   const { result } = copy.snapshot;
   if (result.answer === 'no-trials') {
     return writeDocument(
@@ -32,7 +44,7 @@ export function renderCopyPage(copy: OpenedCopy, { language, sentences, files }:
   // A root of its own, so that the script finds in it what it would have rendered itself.
   const answerHtml = renderToString(inLanguage(createElement(CopyAnswer, answer)));
   const said = Object.fromEntries(answerNamespaces.map((name) => [name, sentences[name] ?? {}]));
-  const data = writeScriptData({ language, answer, sentences: said });
+  const data = writeScriptData({ language, units, answer, sentences: said });
   return writeDocument(inLanguage(createElement(CopyPage, { copy, files, answerHtml, data })));
 }
 
@@ -48,6 +60,12 @@ export function renderFailedCopyPage(
 }
 
 const writeDocument = (page: ReactNode): string => `<!doctype html>${renderToStaticMarkup(page)}`;
+
+/** Bushels need the crop's, which the first copies did not freeze: those are read in t/ha then. */
+function readUnits({ snapshot }: OpenedCopy, yieldUnit: YieldUnit): ReaderUnits {
+  if (snapshot.format !== 1) return { yieldUnit, bushelWeightLb: snapshot.bushelWeightLb };
+  return yieldUnit === 'bu/ac' ? storedUnits : { ...storedUnits, yieldUnit };
+}
 
 /** Of the snapshot what the answer shows; cautions are told by the page itself. */
 function takeAnswer({ snapshot: { weighUp, result, traits } }: OpenedCopy): CopyAnswerProps {

@@ -1,6 +1,7 @@
 import '@vitejs/plugin-react/preamble';
 import { hydrateRoot } from 'react-dom/client';
 import { I18nextProvider } from 'react-i18next';
+import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer } from './copy-answer.tsx';
 import { answerId, dataId, type CopyScriptData } from './copy-script-data.ts';
 import { openCopySentences } from './open-copy-sentences.ts';
@@ -11,11 +12,13 @@ const data = document.getElementById(dataId)?.textContent;
 if (answer === null || data === undefined) throw new Error('The page of the copy is not whole');
 
 // Written by the page that brought this script.
-const { language, sentences, answer: props } = JSON.parse(data) as CopyScriptData;
+const { language, units, sentences, answer: props } = JSON.parse(data) as CopyScriptData;
 hydrateRoot(
   answer,
   <I18nextProvider i18n={openCopySentences(language, sentences)}>
-    <CopyAnswer {...props} />
+    <ReaderUnitsProvider units={units}>
+      <CopyAnswer {...props} />
+    </ReaderUnitsProvider>
   </I18nextProvider>,
 );
 

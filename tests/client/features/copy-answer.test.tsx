@@ -31,7 +31,7 @@ const namespaces = ['common', 'copy', 'drawings', 'verdicts'] as const;
 const open = (language: 'en' | 'fr' = 'en') =>
   renderClient(<CopyAnswer {...answer} />, { language, namespaces: [...namespaces] });
 
-const priceField = () => screen.getByRole('textbox', { name: 'Price per tonne' });
+const priceField = () => screen.getByRole('textbox', { name: 'Your price' });
 const articleOf = (name: string) => {
   const article = screen.getByRole('heading', { level: 2, name }).closest('article');
   if (article === null) throw new Error(`no part of the page is about ${name}`);
@@ -68,7 +68,7 @@ describe('the answer of a copy', () => {
     expect(screen.getByText(/^Your own number: \$180\/t instead of \$290\/t\./)).toBeDefined();
     const ostermoor = articleOf('Ostermoor');
     expect(ostermoor.getByText(/^\+\$34\/ha/).textContent).toContain('own number');
-    expect(ostermoor.getByText(/^At \$180\/t that is \+\$34 per hectare, \+\$4,080 on 120/)).toBeDefined();
+    expect(ostermoor.getByText(/^At \$180\/t that is \+\$34\/ha, \+\$4,080 on 120/)).toBeDefined();
     expect(breakEvenAt('Ostermoor')).not.toBe(frozenLine);
   });
 
