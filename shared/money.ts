@@ -131,7 +131,7 @@ export const moneyResult = z.object({
   netPrice: z.object({ current: z.number(), candidate: z.number() }).nullish(),
   /** null without rules; `unknown` where a trait of the rules was not measured on both. */
   quality: z.union([qualityWorth, z.literal('unknown')]).nullish(),
-  /** Yield of the current variety that unequal net prices count on, t/ha; null where it makes no difference. */
-  baseYield: z.number().nullish(),
+  /** Yield of the current variety that unequal net prices count on, t/ha, and whose; null where it makes no difference. */
+  baseYield: z.object({ value: z.number(), from: z.enum(['grower', 'trials']) }).nullish(),
 });
 export type MoneyResult = z.infer<typeof moneyResult>;

@@ -112,9 +112,9 @@ export function weighMoney(
   const expected = meanPremium(premiums.season);
   const atMiddle = netPrices(money.priceMiddle, expected, pair.tonne);
   const countsOnYield = atMiddle.candidate !== atMiddle.current || premiums.season.length > 1;
-  const known = basis.usualYield ?? basis.levels.find(({ traitSlug }) => traitSlug === 'yield')?.mean;
-  if (countsOnYield && known === undefined) return null;
-  const lineAt = openLine(pair, countsOnYield ? (known ?? 0) : 0);
+  const baseYield = countsOnYield ? findBaseYield(basis) : null;
+  if (countsOnYield && baseYield === null) return null;
+  const lineAt = openLine(pair, baseYield?.value ?? 0);
   const returnAt = (price: number): number => {
     const { slope, offset } = lineAt(price, expected);
     return moneyGap.estimate * slope + offset;
@@ -149,8 +149,15 @@ export function weighMoney(
     goodReturn: season.quantile(0.9),
     netPrice: atMiddle,
     quality: (money.qualityRules ?? []).length === 0 ? null : premiums.isUnknown ? 'unknown' : expected,
-    baseYield: countsOnYield ? (known ?? null) : null,
+    baseYield,
   };
+}
+
+/** What the current variety yields: as the grower usually gets it, else as it did in the trials. */
+function findBaseYield({ usualYield, levels }: MoneyBasis): NonNullable<MoneyResult['baseYield']> | null {
+  if (usualYield !== null) return { value: usualYield, from: 'grower' };
+  const level = levels.find(({ traitSlug }) => traitSlug === 'yield');
+  return level === undefined ? null : { value: level.mean, from: 'trials' };
 }
 
 /** What a hectare's seed comes to, grain kept back at what it would have brought. */

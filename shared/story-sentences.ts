@@ -1,6 +1,6 @@
 import { reachesBeyondRegion } from './evidence-reach.ts';
 import type { MoneyAssumptions, MoneyResult } from './money.ts';
-import { decimalsFor } from './format-number.ts';
+import { decimalsFor, sayChance } from './format-number.ts';
 import { sayFrequency } from './natural-frequency.ts';
 import { saySeasons } from './say-seasons.ts';
 import type { Say } from './say-sentences.ts';
@@ -14,6 +14,9 @@ type StoryKey =
   | `verdicts:story.${'luckFewer' | 'luckOneIn' | 'luckOfHundred' | 'settle' | 'settleFar'}`
   | `verdicts:story.${'extraMore' | 'extraLess' | 'extraSame' | 'shrunken' | 'return' | 'chance'}`
   | `verdicts:story.${'noMoney' | 'noChance' | 'turnPays' | 'turnCosts' | 'turnNone'}`
+  | `verdicts:story.${'turnNoPrice' | 'turnPremium' | 'quality' | 'qualityUnknown'}`
+  | `verdicts:story.${'netPriceUsual' | 'netPriceTrials' | 'spread' | 'stake' | 'noStake'}`
+  | `verdicts:chanceInRegion.${'fewer' | 'whole' | 'more'}`
   | `verdicts:story.${'price' | 'gap' | 'seed'}${'Under' | 'Over'}`
   | `verdicts:story.${'trials' | 'luck' | 'worth' | 'turn'}`
   | `verdicts:seasons.${'fewer' | 'whole' | 'more'}`
@@ -154,6 +157,7 @@ function tellWorth(
   const amount = write.money(Math.abs(extra), money.currency);
   const sentences = [
     say(`verdicts:story.${extraWords}`, { name, current, amount }),
+    ...tellNetPrices(result, { name, current, currency: money.currency }, teller),
     ...tellShrunken(candidate, teller),
   ];
   if (!isThin) {
@@ -166,6 +170,7 @@ function tellWorth(
         total: signed(result.returnPerHectare * areaHectares),
         area: write.area(areaHectares),
       }),
+      ...tellSpread(result, { currency: money.currency, areaHectares }, teller),
     );
   }
   sentences.push(
@@ -173,7 +178,56 @@ function tellWorth(
       ? say('verdicts:story.noChance')
       : say('verdicts:story.chance', { seasons: saySeasons(result.chancePays, say) }),
   );
+  if (!isThin && result.chanceInRegion != null) {
+    const { key, count } = sayChance(result.chanceInRegion);
+    sentences.push(say(`verdicts:chanceInRegion.${key}`, { number: write.number(count) }));
+  }
   return sentences;
+}
+
+/** What quality is expected to bring, and on which yield unequal prices count; nothing where prices are alike. */
+function tellNetPrices(
+  { quality, netPrice, baseYield }: MoneyResult,
+  { name, current, currency }: { name: string; current: string; currency: string },
+  { say, write, unit }: StoryTeller,
+): string[] {
+  const perTonne = (amount: number, isSigned = false) =>
+    write.moneyPer(amount, currency, 't', { decimals: 2, isSigned });
+  const sentences: string[] = [];
+  if (quality === 'unknown') sentences.push(say('verdicts:story.qualityUnknown', { name, current }));
+  else if (quality) {
+    const premiums = { own: perTonne(quality.candidate, true), other: perTonne(quality.current, true) };
+    sentences.push(say('verdicts:story.quality', { name, current, ...premiums }));
+  }
+  if (netPrice && baseYield) {
+    const source = baseYield.from === 'grower' ? 'netPriceUsual' : 'netPriceTrials';
+    const prices = { own: perTonne(netPrice.candidate), other: perTonne(netPrice.current) };
+    const yieldWords = write.quantity(baseYield.value, unit, { decimals: 1 });
+    sentences.push(say(`verdicts:story.${source}`, { name, current, ...prices, yield: yieldWords }));
+  }
+  return sentences;
+}
+
+/** The mean of it all, the bad and the good season of ten, and what the bad one costs on the area. */
+function tellSpread(
+  { expectedReturn, badReturn, goodReturn }: MoneyResult,
+  { currency, areaHectares }: { currency: string; areaHectares: number },
+  { say, write }: StoryTeller,
+): string[] {
+  // Copies frozen before this was reckoned have none.
+  if (expectedReturn == null || badReturn == null || goodReturn == null) return [];
+  const perArea = (amount: number) => write.moneyPer(amount, currency, 'ha', { isSigned: true });
+  const area = write.area(areaHectares);
+  return [
+    say('verdicts:story.spread', {
+      expected: perArea(expectedReturn),
+      bad: perArea(badReturn),
+      good: perArea(goodReturn),
+    }),
+    badReturn < 0
+      ? say('verdicts:story.stake', { area, amount: write.money(-badReturn * areaHectares, currency) })
+      : say('verdicts:story.noStake', { area }),
+  ];
 }
 
 /** Says on which gap the return is reckoned, where that is not the one drawn. */
@@ -203,8 +257,11 @@ function tellTurning(
     if (kind === 'gap') return say(key, { gap: write.gap(value, unit, decimals) });
     return say(key, { amount: write.moneyPer(value, currency, 'ha'), name });
   };
-  return {
-    paragraphs: [say(pays ? 'verdicts:story.turnPays' : 'verdicts:story.turnCosts')],
-    items: points.map(sayPoint),
-  };
+  const paragraphs: string[] = [];
+  if (result.breakEvenPrice === null) paragraphs.push(say('verdicts:story.turnNoPrice'));
+  else if (result.quality && result.quality !== 'unknown') {
+    paragraphs.push(say('verdicts:story.turnPremium'));
+  }
+  paragraphs.push(say(pays ? 'verdicts:story.turnPays' : 'verdicts:story.turnCosts'));
+  return { paragraphs, items: points.map(sayPoint) };
 }

@@ -12,6 +12,7 @@ import {
   seed,
   weigh,
   withLevels,
+  type About,
 } from '#tests/shared/money-questions.ts';
 
 describe('published partial budgets', () => {
@@ -107,7 +108,7 @@ describe('what costs and revenues do', () => {
     expect(result.netPrice).toEqual({ current: 198, candidate: 192 });
     expect(result.breakEvenGap).toBeCloseTo((20 + 5 * 6) / 192, 12);
     expect(result.returnPerHectare).toBeCloseTo(5.5 * 192 - 5 * 198 - 20, 9);
-    expect(result.baseYield).toBe(5);
+    expect(result.baseYield).toEqual({ value: 5, from: 'grower' });
     // Drier than the standard costs nothing, and earns nothing.
     const dry = { ...wet, standardMoisturePercent: 25 };
     expect(weigh(dry, gapOf(0.5)).netPrice).toEqual({ current: 200, candidate: 200 });
@@ -123,8 +124,9 @@ describe('what costs and revenues do', () => {
       standardMoisturePercent: 15,
     };
     const levels = [{ traitSlug: 'yield', mean: 4, spread: 0.5, trials: 6 }];
-    expect(weigh(money, gapOf(0.1), { usualYield: 6, levels }).baseYield).toBe(6);
-    expect(weigh(money, gapOf(0.1), { levels }).baseYield).toBe(4);
+    const from = (about: About) => weigh(money, gapOf(0.1), about).baseYield;
+    expect(from({ usualYield: 6, levels })).toEqual({ value: 6, from: 'grower' });
+    expect(from({ levels })).toEqual({ value: 4, from: 'trials' });
     expect(weighMoney(...withLevels(money, gapOf(0.1), {}))).toBeNull();
   });
 

@@ -1,148 +1,161 @@
-import { Controller, type Path } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
+import type { Crop } from '#shared/catalogue.ts';
 import { currencySign } from '#shared/format-number.ts';
+import type { CurrentLevel } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
-import { Button } from '#src/components/button.tsx';
-import { Field } from '#src/components/field.tsx';
-import { NumberInput } from '#src/components/number-input.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
-import { useFieldErrorText } from '#src/use-field-error-text.ts';
-import type { MoneyDraft } from './money-form.ts';
-import { SaveConflict } from './save-conflict.tsx';
-import type { MoneyFormApi, ReckonedMoney } from './use-money-form.ts';
+import { FieldGroup, FigureField } from './money-fields.tsx';
+import { listPaidTraits } from './money-form.ts';
+import { QualityFields } from './money-quality-fields.tsx';
+import { SaveState } from './money-save-state.tsx';
+import { SeedFields, type NamedVariety } from './money-seed-fields.tsx';
+import { TonneFields } from './money-tonne-fields.tsx';
+import type { ReckonedMoney } from './use-money-form.ts';
 import type { MoneySaving } from './use-money-saving.ts';
-
-export type NamedVariety = { id: string; name: string };
 
 type MoneyPanelProps = {
   weighUp: WeighUp;
+  crop: Pick<Crop, 'traits'>;
+  /** What the current variety gives in the trials used. */
+  levels: readonly CurrentLevel[];
+  /** The current variety first, then the candidates. */
   varieties: readonly NamedVariety[];
   money: ReckonedMoney;
   saving: MoneySaving;
 };
 
 /** Prices and costs; each edit is reckoned on the page at once and saved on demand. */
-export function MoneyPanel({ weighUp, varieties, money, saving }: MoneyPanelProps) {
+export function MoneyPanel({ weighUp, crop, levels, varieties, money, saving }: MoneyPanelProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
-  const language = useLanguage();
-  const { form, isValid } = money;
-  const { currency, priceSheetDate } = weighUp.assumptions;
-  const sign = currencySign(currency, language);
-  const figure = (name: Path<MoneyDraft>, label: string, unit: string) => (
-    <FigureField key={name} form={form} name={name} label={label} unit={unit} />
-  );
+  const { form, isValid, assumptions } = money;
+  const { priceSheetDate } = weighUp.assumptions;
+  const { currency } = assumptions;
   return (
     <section aria-labelledby="money-title" className="rounded-lg border border-rule bg-card p-4 sm:p-5">
       <h2 id="money-title">{t('money.title')}</h2>
-      <p className="mb-4 text-sm text-faded">{t('money.lead')}</p>
+      <p className="text-sm text-faded">{t('money.lead')}</p>
+      <p className="mb-4 text-sm text-faded">
+        {priceSheetDate ? t('money.sheet', { date: format.date(priceSheetDate) }) : t('money.noSheet')}
+      </p>
       <form
         noValidate
         className="flex flex-col gap-4"
         onSubmit={(event) => void form.handleSubmit((typed) => saving.save(typed))(event)}
       >
-        <fieldset>
-          <legend className="mb-1 text-sm font-semibold">{t('money.price', { currency: sign })}</legend>
-          <div className="grid grid-cols-3 gap-2">
-            {figure('priceLow', t('money.low'), '')}
-            {figure('priceMiddle', t('money.middle'), '')}
-            {figure('priceHigh', t('money.high'), '')}
-          </div>
-        </fieldset>
-        <div className="grid grid-cols-2 gap-2">
-          {figure('haulagePerTonne', t('money.haulage'), `${sign}/t`)}
-          {figure('dryingPerTonne', t('money.drying'), `${sign}/t`)}
-        </div>
-        {figure('areaHectares', t('money.area'), 'ha')}
-        <fieldset className="flex flex-col gap-2">
+        <PriceFields form={form} currency={currency} />
+        <FigureField form={form} name="areaHectares" label={t('money.area')} measure="ha" />
+        <fieldset className="flex flex-col gap-3">
           <legend className="mb-1 text-sm font-semibold">{t('money.seeds')}</legend>
-          {varieties.map(({ id, name }) =>
-            figure(`seedCosts.${id}.seedPerHectare`, t('money.seed', { name }), `${sign}/ha`),
-          )}
+          {varieties.map((variety) => (
+            <SeedFields key={variety.id} form={form} variety={variety} assumptions={assumptions} />
+          ))}
           <p className="text-sm text-faded">{t('money.unknownSeed')}</p>
         </fieldset>
-        <details>
-          <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
-            {t('money.moreCosts')}
-          </summary>
-          <div className="flex flex-col gap-2">
-            {varieties.map(({ id, name }) => [
-              figure(`seedCosts.${id}.treatmentPerHectare`, t('money.treatment', { name }), `${sign}/ha`),
-              figure(`seedCosts.${id}.royaltyPerHectare`, t('money.royalty', { name }), `${sign}/ha`),
-            ])}
-          </div>
-        </details>
-        <p className="text-sm text-faded">
-          {priceSheetDate ? t('money.sheet', { date: format.date(priceSheetDate) }) : t('money.noSheet')}
-        </p>
+        <FurtherGroups
+          form={form}
+          currency={currency}
+          varieties={varieties}
+          traits={listPaidTraits(crop)}
+          levels={levels}
+        />
         <SaveState form={form} isValid={isValid} saving={saving} />
       </form>
     </section>
   );
 }
 
-const prices = ['priceLow', 'priceMiddle', 'priceHigh'] as const;
+type FormPartProps = Pick<ReckonedMoney, 'form'> & { currency: string };
 
-type FigureFieldProps = { form: MoneyFormApi; name: Path<MoneyDraft>; label: string; unit: string };
-
-function FigureField({ form, name, label, unit }: FigureFieldProps) {
-  const fieldErrorText = useFieldErrorText();
+function PriceFields({ form, currency }: FormPartProps) {
+  const { t } = useTranslation('weigh-up');
+  const format = useFormat();
+  const sign = currencySign(currency, useLanguage());
+  const unit = { currency, per: 't', isUnitHidden: true } as const;
   return (
-    <Controller
-      control={form.control}
-      name={name}
-      render={({ field: { value, onChange, onBlur, ref }, fieldState: { error } }) => (
-        <Field label={label} error={fieldErrorText(error)}>
-          <NumberInput
-            value={typeof value === 'number' ? value : null}
-            onValueChange={(figure) => {
-              onChange(figure);
-              // Prices are held against each other and against the costs per tonne, whichever is typed.
-              if (name !== 'areaHectares') void form.trigger(prices);
-            }}
-            onBlur={onBlur}
-            ref={ref}
-            unit={unit}
-          />
-        </Field>
-      )}
-    />
+    <fieldset>
+      <legend className="mb-1 text-sm font-semibold">
+        {t('money.price', { unit: `${sign}/${format.unit('t')}` })}
+      </legend>
+      <div className="grid grid-cols-3 gap-2">
+        <FigureField form={form} name="priceLow" label={t('money.low')} {...unit} />
+        <FigureField form={form} name="priceMiddle" label={t('money.middle')} {...unit} />
+        <FigureField form={form} name="priceHigh" label={t('money.high')} {...unit} />
+      </div>
+    </fieldset>
   );
 }
 
-type SaveStateProps = { form: MoneyFormApi; isValid: boolean; saving: MoneySaving };
+type FurtherGroupsProps = FormPartProps & {
+  varieties: readonly NamedVariety[];
+  traits: ReturnType<typeof listPaidTraits>;
+  levels: readonly CurrentLevel[];
+};
 
-/** Whether the numbers on the page are the saved ones, and the steps to make them so. */
-function SaveState({ form, isValid, saving }: SaveStateProps) {
+/** Parts of a variety's costs that a group holds: an error in one of them opens it. */
+const groupParts = {
+  seed: ['treatmentPerHectare', 'royaltyPerHectare'],
+  tonne: ['harvestMoisturePercent'],
+  hectare: ['harvestPerHectare', 'strawPerHectare'],
+} as const;
+
+/** What is seldom touched, in groups that are folded and named. */
+function FurtherGroups({ form, currency, varieties, traits, levels }: FurtherGroupsProps) {
   const { t } = useTranslation('weigh-up');
-  const { isDirty } = form.formState;
-  if (saving.conflict) return <SaveConflict saving={saving} />;
-  // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen.
-  const foot =
-    isDirty || !isValid
-      ? 'sticky bottom-0 -mx-4 border-t border-rule bg-card px-4 py-3 sm:-mx-5 sm:px-5'
-      : '';
+  const { errors } = form.formState;
+  const isWrong = (group: keyof typeof groupParts) =>
+    varieties.some(({ id }) => groupParts[group].some((part) => errors.seedCosts?.[id]?.[part]));
+  const tonneParts = ['haulagePerTonne', 'harvestPerTonne', 'dryingPerTonne'] as const;
+  const moistureParts = ['dryingPerPoint', 'standardMoisturePercent'] as const;
+  const figure = (id: string, part: (typeof groupParts)['seed' | 'hectare'][number], label: string) => (
+    <FigureField
+      key={part + id}
+      form={form}
+      name={`seedCosts.${id}.${part}`}
+      label={label}
+      currency={currency}
+      per="ha"
+    />
+  );
   return (
-    <div className={`flex flex-col gap-2 ${foot}`}>
-      <p role="status" className="text-sm">
-        {!isValid ? t('money.invalid') : isDirty ? t('money.unsaved') : ''}
-      </p>
-      {saving.errorText && (
-        <p role="alert" className="text-sm font-semibold text-stop">
-          {saving.errorText}
-        </p>
-      )}
-      {isDirty && (
-        <div className="flex flex-wrap gap-2">
-          <Button type="submit" tone="main" isBusy={saving.isSaving}>
-            {t('money.save')}
-          </Button>
-          <Button tone="quiet" onClick={saving.reset}>
-            {t('money.reset')}
-          </Button>
-        </div>
-      )}
+    <div className="flex flex-col">
+      <FieldGroup title={t('money.moreCosts')} hasError={isWrong('seed')}>
+        <p className="text-sm text-faded">{t('money.royaltyHint')}</p>
+        {varieties.map(({ id, name }) => (
+          <div key={id} className="grid grid-cols-2 items-end gap-2">
+            {figure(id, 'treatmentPerHectare', t('money.treatment', { name }))}
+            {figure(id, 'royaltyPerHectare', t('money.royalty', { name }))}
+          </div>
+        ))}
+      </FieldGroup>
+      <FieldGroup
+        title={t('money.tonneCosts')}
+        hasError={isWrong('tonne') || [...tonneParts, ...moistureParts].some((part) => errors[part])}
+      >
+        <TonneFields form={form} currency={currency} varieties={varieties} />
+      </FieldGroup>
+      <FieldGroup
+        title={t('money.quality.title')}
+        hasError={errors.qualityRules !== undefined || errors.currentLevels !== undefined}
+      >
+        <QualityFields
+          form={form}
+          currency={currency}
+          currentName={varieties[0]?.name ?? ''}
+          traits={traits}
+          levels={levels}
+        />
+      </FieldGroup>
+      <FieldGroup title={t('money.hectareParts')} hasError={isWrong('hectare')}>
+        <p className="text-sm text-faded">{t('money.hectareLead')}</p>
+        {varieties.map(({ id, name }) => (
+          <div key={id} className="grid grid-cols-2 items-end gap-2">
+            {figure(id, 'strawPerHectare', t('money.straw', { name }))}
+            {figure(id, 'harvestPerHectare', t('money.harvest', { name }))}
+          </div>
+        ))}
+      </FieldGroup>
     </div>
   );
 }

@@ -1,6 +1,7 @@
 import { useEffect, useMemo, useState } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
+import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { moneyForm, toAssumptions, toMoneyDraft, type MoneyDraft, type MoneyForm } from './money-form.ts';
@@ -21,24 +22,29 @@ export type ReckonedMoney = {
 };
 
 /** The money panel's form, with the assumptions it stands for at every edit. */
-export function useMoneyForm(weighUp: WeighUp): ReckonedMoney {
+export function useMoneyForm(
+  weighUp: WeighUp,
+  cropNow: Pick<Crop, 'traits' | 'standardMoisturePercent'>,
+): ReckonedMoney {
+  // A catalogue that is read again meanwhile must not reset what is being typed.
+  const [crop] = useState(cropNow);
   const [base, setBase] = useState(weighUp);
   const form = useForm<MoneyDraft, unknown, MoneyForm>({
     resolver: zodResolver(moneyForm),
-    defaultValues: toMoneyDraft(weighUp),
+    defaultValues: toMoneyDraft(weighUp, crop),
     mode: 'onChange',
   });
   const take = (next: WeighUp) => {
     setBase(next);
-    form.reset(toMoneyDraft(next));
+    form.reset(toMoneyDraft(next, crop));
   };
   const { isDirty } = form.formState;
   // Saved elsewhere meanwhile: an untouched panel follows, a touched one keeps its base, so that saving meets the conflict.
   if (weighUp.revision !== base.revision && !isDirty) setBase(weighUp);
-  useEffect(() => form.reset(toMoneyDraft(base)), [form, base]);
+  useEffect(() => form.reset(toMoneyDraft(base, crop)), [form, base, crop]);
   const typed = useWatch({ control: form.control });
   const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
-  const fitting = useLastFitting(parsed.success ? parsed.data : undefined, base);
+  const fitting = useLastFitting(parsed.success ? parsed.data : undefined, toMoneyDraft(base, crop));
   return {
     form,
     base,
@@ -50,8 +56,8 @@ export function useMoneyForm(weighUp: WeighUp): ReckonedMoney {
 }
 
 /** What fits now, else what fitted last: the page goes on showing figures while a number is being typed. */
-function useLastFitting(now: MoneyForm | undefined, base: WeighUp): MoneyForm {
-  const [last, setLast] = useState(() => moneyForm.parse(toMoneyDraft(base)));
+function useLastFitting(now: MoneyForm | undefined, saved: MoneyDraft): MoneyForm {
+  const [last, setLast] = useState(() => moneyForm.parse(saved));
   if (now !== undefined && now !== last) setLast(now);
   return now ?? last;
 }

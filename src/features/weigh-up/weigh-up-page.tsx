@@ -1,3 +1,4 @@
+import { useMemo } from 'react';
 import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { Link, useParams } from 'react-router-dom';
@@ -85,13 +86,18 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   const cautionItems = useCautionItems();
   const chooseUnit = useUnitChoice();
   const view = useWeighUpView();
-  const money = useMoneyForm(weighUp);
+  const money = useMoneyForm(weighUp, crop);
   const saving = useMoneySaving(money);
-  const candidates = reckonCandidates(
-    result.candidates,
-    readMoneyBasis(weighUp, result),
-    money.assumptions,
-    findTrait(crop, 'yield')?.practicalMargin ?? null,
+  const practicalMargin = findTrait(crop, 'yield')?.practicalMargin ?? null;
+  const candidates = useMemo(
+    () =>
+      reckonCandidates(
+        result.candidates,
+        readMoneyBasis(weighUp, result),
+        money.assumptions,
+        practicalMargin,
+      ),
+    [result, weighUp, money.assumptions, practicalMargin],
   );
   const currentName = weighUp.currentVarietyName;
   // What stops the whole evidence is read before the verdict, not after it.
@@ -151,7 +157,14 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         id="money"
         className="scroll-mt-2 lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto"
       >
-        <MoneyPanel weighUp={weighUp} varieties={varieties} money={money} saving={saving} />
+        <MoneyPanel
+          weighUp={weighUp}
+          crop={crop}
+          levels={result.currentLevels ?? []}
+          varieties={varieties}
+          money={money}
+          saving={saving}
+        />
       </div>
       <div className="flex min-w-0 flex-col gap-4 lg:gap-6">
         <QuestionPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />

@@ -1,11 +1,13 @@
 import { describe, expect, it } from 'vitest';
+import type { Crop } from '#shared/catalogue.ts';
 import type { GrowerCopyLine } from '#shared/grower-copy.ts';
+import type { MoneyAssumptions } from '#shared/money.ts';
 import { importForm } from '#src/features/trial-desk/import-fieldset.tsx';
 import { stateOfCopy } from '#src/features/weigh-up/copy-list.tsx';
 import { moneyForm, toAssumptions, toMoneyDraft } from '#src/features/weigh-up/money-form.ts';
 import { newWeighUpForm } from '#src/features/weigh-up/new-weigh-up-form.ts';
 import { matchesSearch } from '#src/features/weigh-up/weigh-up-filter.ts';
-import { assumptions, buildWeighUp, idOf } from '#tests/client/support/weigh-up-factory.ts';
+import { assumptions, buildWeighUp, currentId, idOf } from '#tests/client/support/weigh-up-factory.ts';
 
 /** Paths and reasons of what a schema refuses. */
 function refusals(schema: typeof moneyForm | typeof newWeighUpForm | typeof importForm, value: unknown) {
@@ -37,15 +39,60 @@ describe('the form of a new weigh-up', () => {
 });
 
 describe('the money form', () => {
-  const draft = toMoneyDraft(buildWeighUp());
+  const crop = { traits: [], standardMoisturePercent: 16 };
+  const draft = toMoneyDraft(buildWeighUp(), crop);
+  const seedDraft = draft.seedCosts[currentId];
+  if (seedDraft === undefined) throw new Error('the current variety has a line');
 
   it('refuses a price that does not cover its own haulage and drying', () => {
     expect(refusals(moneyForm, draft)).toEqual([]);
     expect(refusals(moneyForm, { ...draft, haulagePerTonne: 250 })).toEqual(['priceLow']);
+    expect(refusals(moneyForm, { ...draft, harvestPerTonne: 240 })).toEqual(['priceLow']);
+    const discount = { traitSlug: 'protein', side: 'under', limit: 11, perTonne: -240 } as const;
+    expect(refusals(moneyForm, { ...draft, qualityRules: [discount] })).toEqual(['priceLow']);
+    const wet = { ...seedDraft, harvestMoisturePercent: 26 };
+    const seedCosts = { ...draft.seedCosts, [currentId]: wet };
+    expect(refusals(moneyForm, { ...draft, seedCosts, dryingPerPoint: 24 })).toEqual(['priceLow']);
+  });
+
+  it('names each figure that nobody means', () => {
+    const rule = { traitSlug: 'protein', side: 'under', limit: null, perTonne: Number.NaN } as const;
+    const absurd = { ...seedDraft, germinationPercent: 0, mortalityPercent: 100, targetPlantsM2: -3 };
+    const typed = { ...draft, qualityRules: [rule], seedCosts: { [currentId]: absurd } };
+    expect(refusals(moneyForm, typed)).toEqual([
+      'qualityRules.0.limit',
+      'qualityRules.0.perTonne',
+      ...['targetPlantsM2', 'germinationPercent', 'mortalityPercent'].map(
+        (part) => `seedCosts.${currentId}.${part}`,
+      ),
+    ]);
+  });
+
+  it('gives back what was saved, whatever it holds and whatever it leaves out', () => {
+    const full: MoneyAssumptions = {
+      ...assumptions,
+      ...{ harvestPerTonne: 6, dryingPerPoint: 2, standardMoisturePercent: 16 },
+      qualityRules: [{ traitSlug: 'protein', side: 'at-least', limit: 23, perTonne: 8 }],
+      currentLevels: { protein: 22.4 },
+      seedCosts: {
+        ...assumptions.seedCosts,
+        [currentId]: {
+          ...{ basis: 'saved', seedPerHectare: null, treatmentPerHectare: 11, royaltyPerHectare: 0 },
+          ...{ targetPlantsM2: 85, thousandKernelWeightG: 235, germinationPercent: 94, mortalityPercent: 10 },
+          ...{ cleaningPerTonne: 60, harvestMoisturePercent: 17, strawPerHectare: 0 },
+        },
+      },
+    };
+    const protein = { slug: 'protein', kind: 'numeric' } as Crop['traits'][number];
+    const saved = buildWeighUp({ assumptions: full });
+    const form = moneyForm.parse(toMoneyDraft(saved, { ...crop, traits: [protein] }));
+    expect(toAssumptions(form, full)).toEqual(full);
+    const plain = moneyForm.parse(draft);
+    expect(toAssumptions(plain, assumptions)).toEqual({ ...assumptions, standardMoisturePercent: 16 });
   });
 
   it('keeps an open seed cost open and an unnamed treatment at nothing', () => {
-    const open = { seedPerHectare: null, treatmentPerHectare: null, royaltyPerHectare: null };
+    const open = { ...seedDraft, seedPerHectare: null, treatmentPerHectare: null, royaltyPerHectare: null };
     const bare = { ...open, seedPerHectare: 90 };
     const form = moneyForm.parse({ ...draft, seedCosts: { [idOf(2)]: open, [idOf(3)]: bare } });
     const { seedCosts } = toAssumptions(form, assumptions);

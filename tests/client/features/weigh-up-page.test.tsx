@@ -5,10 +5,39 @@ import { afterEach, describe, expect, it, vi } from 'vitest';
 import { paths } from '#src/paths.ts';
 import { WeighUpPage } from '#src/features/weigh-up/weigh-up-page.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
-import { buildCandidate, buildResult, buildWeighUp } from '#tests/client/support/weigh-up-factory.ts';
+import {
+  buildCandidate,
+  buildGap,
+  buildResult,
+  buildWeighUp,
+  idOf,
+} from '#tests/client/support/weigh-up-factory.ts';
 
 const weighUp = buildWeighUp();
 const opened = { weighUp, result: buildResult([buildCandidate()]) };
+const protein = {
+  ...{ id: idOf(60), slug: 'protein', name: { en: 'Protein', fr: 'Protéines' }, unit: '%' },
+  ...{ kind: 'numeric', direction: 'higher', practicalMargin: 0.4, scaleMin: 0, scaleMax: null },
+};
+/** A point of protein more than the current variety, as good as certain. */
+const withProtein = {
+  ...buildResult([
+    buildCandidate({
+      traits: [
+        {
+          ...{ traitSlug: 'protein', kind: 'numeric', verdict: 'ahead', siteYears: 8 },
+          ...{ medianCandidate: null, medianCurrent: null },
+          gap: {
+            ...buildGap(1, 0.2),
+            shrunken: 1,
+            ownSeason: { low: 1, high: 1, level: 0.95, se: 1e-6, df: 30 },
+          },
+        },
+      ],
+    }),
+  ]),
+  currentLevels: [{ traitSlug: 'protein', mean: 22, spread: 0.8, trials: 8 }],
+};
 const catalogue = {
   regions: [],
   sites: [],
@@ -21,7 +50,7 @@ const catalogue = {
       standardMoisturePercent: 16,
       bushelWeightLb: 60,
       cvLimitPercent: 18,
-      traits: [],
+      traits: [protein],
       varieties: [],
       seasons: [2026],
     },
@@ -118,6 +147,93 @@ describe('the money panel', () => {
     expect(make).toHaveProperty('disabled', false);
     await user.type(panel.getByLabelText('Area'), '5');
     expect(make).toHaveProperty('disabled', true);
+  });
+});
+
+describe('seed, quality and what they lead to', () => {
+  it('says the kg/ha that follow from a seeding rate and reckons by them', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    await user.selectOptions(panel.getByLabelText('Basis, Ostermoor'), 'rate');
+    // Until all of it is known, what was reckoned from a flat cost is no longer said.
+    expect(panel.getByText(/what Ostermoor is worth stays open/)).toBeTruthy();
+    expect(screen.queryByText('+$78/ha')).toBeNull();
+    await user.type(panel.getByLabelText('Seed, Ostermoor'), '0.5');
+    await user.type(panel.getByLabelText('Plants wanted, Ostermoor'), '85');
+    await user.type(panel.getByLabelText('Thousand-kernel weight, Ostermoor'), '235');
+    await user.type(panel.getByLabelText('Germination, Ostermoor'), '95');
+    await user.type(panel.getByLabelText('Seeds lost before they stand, Ostermoor'), '10');
+    // 85 × 235 / (100 × 0.95 × 0.9) = 233.6 kg/ha, at 0.50 is 116.81; 0.4 × 270 − (116.81 − 118) = 109.19.
+    expect(panel.getByText(/234 kg\/ha of seed, which is \$116\.81\/ha/)).toBeTruthy();
+    expect(screen.getByText('+$109/ha')).toBeTruthy();
+  });
+
+  it('takes a figure as it is pasted, with spaces and a decimal comma', async () => {
+    const asked = serve(() => Response.json(opened));
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    const area = panel.getByLabelText('Area');
+    await user.clear(area);
+    await user.click(area);
+    await user.paste('1 250,50');
+    await user.click(panel.getByRole('button', { name: 'Save these numbers' }));
+    await waitFor(() => expect(asked.some((call) => call.method === 'PUT')).toBe(true));
+    expect(asked.find((call) => call.method === 'PUT')?.body).toMatchObject({
+      weighUp: { areaHectares: 1250.5 },
+    });
+  });
+
+  it.each(['0', '-290', '99999999999', 'about 290', ''])(
+    'keeps the last figures for a price of “%s”',
+    async (typed) => {
+      serve(() => Response.json(opened));
+      await open();
+      const panel = within(await money());
+      const user = userEvent.setup();
+      const middle = panel.getByLabelText('Middle');
+      await user.clear(middle);
+      if (typed !== '') await user.type(middle, typed);
+      expect(panel.getByText(/Some numbers do not fit/)).toBeTruthy();
+      expect(screen.getByText('+$78/ha')).toBeTruthy();
+      expect(middle.getAttribute('aria-invalid')).toBe('true');
+    },
+  );
+
+  it('reckons a premium by how often each variety passes its limit', async () => {
+    serve(() => Response.json(opened), { weighUp: { ...weighUp, usualYield: 3 }, result: withProtein });
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    await user.click(panel.getByRole('button', { name: 'Add a rule' }));
+    expect(panel.getByText(/In 8 trials 22\.0% on average, ± 0\.8% between fields and seasons/)).toBeTruthy();
+    await user.type(panel.getByLabelText('Limit'), '23');
+    await user.type(panel.getByLabelText('Premium or discount'), '20');
+    await user.click(screen.getByRole('button', { name: /Ostermoor/ }));
+    // The current variety passes 23 by 1.25 of its spreads, 11 of 100; the candidate, one more, by none: 50 of 100.
+    expect(
+      screen.getByText(/a tonne of Ostermoor can expect \+\$10\.00\/t, one of Brindle \+\$2\.11\/t/),
+    ).toBeTruthy();
+    expect(screen.getByText(/at the grower’s usual 3\.0 t\/ha/)).toBeTruthy();
+    await user.type(panel.getByLabelText('Protein of Brindle on this farm'), '26');
+    expect(screen.getByText(/one of Brindle \+\$20\.00\/t/)).toBeTruthy();
+    await user.click(panel.getByRole('button', { name: 'Take rule 1 out' }));
+    expect(screen.queryByText(/can expect/)).toBeNull();
+  });
+
+  it('says the bad season of ten and what it costs on the area', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    await userEvent.setup().click(await screen.findByRole('button', { name: /Ostermoor/ }));
+    // t(0.9) on 20 df is 1.325: 78 less 1.325 × 0.2 × 270 is about 6, and the mean price is 5 higher.
+    const story = screen.getByText(/In one season of ten it is under/).textContent ?? '';
+    expect(story).toMatch(
+      /expect \+\$80\/ha on average .* under \+\$[4-9]\/ha, in one of ten over \+\$15\d\/ha/,
+    );
+    expect(screen.getByText(/Even that bad season costs nothing on 120 ha/)).toBeTruthy();
+    expect(screen.getByText(/region’s average over seasons, the chance that it pays is/)).toBeTruthy();
   });
 });
 

@@ -1,0 +1,41 @@
+import { useTranslation } from 'react-i18next';
+import { Button } from '#src/components/button.tsx';
+import { SaveConflict } from './save-conflict.tsx';
+import type { MoneyFormApi } from './use-money-form.ts';
+import type { MoneySaving } from './use-money-saving.ts';
+
+type SaveStateProps = { form: MoneyFormApi; isValid: boolean; saving: MoneySaving };
+
+/** Whether the numbers on the page are the saved ones, and the steps to make them so. */
+export function SaveState({ form, isValid, saving }: SaveStateProps) {
+  const { t } = useTranslation('weigh-up');
+  const { isDirty } = form.formState;
+  if (saving.conflict) return <SaveConflict saving={saving} />;
+  // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen.
+  const foot =
+    isDirty || !isValid
+      ? 'sticky bottom-0 -mx-4 border-t border-rule bg-card px-4 py-3 sm:-mx-5 sm:px-5'
+      : '';
+  return (
+    <div className={`flex flex-col gap-2 ${foot}`}>
+      <p role="status" className="text-sm">
+        {!isValid ? t('money.invalid') : isDirty ? t('money.unsaved') : ''}
+      </p>
+      {saving.errorText && (
+        <p role="alert" className="text-sm font-semibold text-stop">
+          {saving.errorText}
+        </p>
+      )}
+      {isDirty && (
+        <div className="flex flex-wrap gap-2">
+          <Button type="submit" tone="main" isBusy={saving.isSaving}>
+            {t('money.save')}
+          </Button>
+          <Button tone="quiet" onClick={saving.reset}>
+            {t('money.reset')}
+          </Button>
+        </div>
+      )}
+    </div>
+  );
+}
