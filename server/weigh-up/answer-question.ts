@@ -2,6 +2,7 @@ import type { Trait } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { codeMark, compute } from '#server/computing/compute.ts';
+import { createWorkSharing } from '#server/computing/share-work.ts';
 import type { Database } from '#server/db.ts';
 import { keepAnswer, keyAnswer, recallAnswer } from './answer-store.ts';
 import { yieldSlug } from './evidence-network.ts';
@@ -120,7 +121,10 @@ async function answerPriced(
   return priceAnswer(answer, { id, name }, { ...money, practicalMargin });
 }
 
-/** The stored answer where what it hangs on is unchanged; else it is weighed, and kept. */
+/** Two advisors, or one who clicks twice, may ask the same before it is stored. */
+const weighing = createWorkSharing<WeighUpResult>();
+
+/** The stored answer where what it hangs on is unchanged; else it is weighed, once however many ask, and kept. */
 async function answerOnce(
   db: Database,
   ground: EvidenceGround,
@@ -130,7 +134,14 @@ async function answerOnce(
   const key = keyAnswer(ground, question, codeMark);
   const stored = await recallAnswer(db, key);
   if (stored !== null) return stored;
-  const answer = await compute('weighEvidence', [await loadFigures(db, ground), question], signal);
-  await keepAnswer(db, key, answer);
-  return answer;
+  return weighing.share(
+    key,
+    async (whileAnyWaits) => {
+      const figures = await loadFigures(db, ground);
+      const answer = await compute('weighEvidence', [figures, question], whileAnyWaits);
+      await keepAnswer(db, key, answer);
+      return answer;
+    },
+    signal,
+  );
 }
