@@ -15,6 +15,7 @@ import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
 import { addCopyPage, keepLinkPrivate } from './grower-copy/copy-page-routes.ts';
+import { addCopyPdf } from './grower-copy/pdf/copy-pdf-routes.ts';
 import { addGrowerCopyRoutes } from './grower-copy/grower-copy-routes.ts';
 import { addHealthRoute } from './health.ts';
 import { requireSameOrigin } from './same-origin.ts';
@@ -65,6 +66,7 @@ export function buildApp(
   app.use(compression());
   addApi(app, db, pool, settings, onMailQueued);
   app.use('/copy', keepLinkPrivate);
+  addCopyPdf(app, db, settings);
   addCopyPage(app, db, settings);
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
   app.use(handleError);

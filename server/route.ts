@@ -41,7 +41,7 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
         request.file === undefined ? null : { name: request.file.originalname, bytes: request.file.buffer },
       request,
       response,
-      signal: signalOf(response),
+      signal: leavingSignal(response),
     });
     response.json(contract.reply.parse(reply));
   };
@@ -53,7 +53,8 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
   router[methodNames[contract.method]](contract.path, guard, ...upload, serve);
 }
 
-function signalOf(response: Response): AbortSignal {
+/** Aborted when the client goes away before it is answered. */
+export function leavingSignal(response: Response): AbortSignal {
   const leaving = new AbortController();
   response.once('close', () => {
     if (!response.writableFinished) leaving.abort();

@@ -29,9 +29,9 @@ export async function compute<Name extends TaskName>(
   task: Name,
   input: Parameters<ComputingTasks[Name]>,
   signal?: AbortSignal,
-): Promise<ReturnType<ComputingTasks[Name]>> {
+): Promise<Awaited<ReturnType<ComputingTasks[Name]>>> {
   // The worker runs the function of this name on this input, so this is what comes back.
-  return (await pool.run({ task, input }, signal)) as ReturnType<ComputingTasks[Name]>;
+  return (await pool.run({ task, input }, signal)) as Awaited<ReturnType<ComputingTasks[Name]>>;
 }
 
 /** Ends the threads of this process; the next computation starts new ones. */

@@ -4,14 +4,14 @@ import { computingTasks, type TaskName } from './computing-tasks.ts';
 
 /** A worker thread's entry: one order at a time, each answered by one message. */
 parentPort?.on('message', (order: ComputingOrder) => {
-  parentPort?.postMessage(carryOut(order));
+  void carryOut(order).then((reply) => parentPort?.postMessage(reply));
 });
 
-function carryOut({ task, input }: ComputingOrder): ComputingReply {
+async function carryOut({ task, input }: ComputingOrder): Promise<ComputingReply> {
   try {
     // The pool names only tasks of the table, and gives each what it takes.
     const compute = computingTasks[task as TaskName] as (...input: readonly unknown[]) => unknown;
-    return { outcome: 'done', value: compute(...input) };
+    return { outcome: 'done', value: await compute(...input) };
   } catch (error) {
     return packFailure(error);
   }

@@ -16,6 +16,7 @@ import { findAffectedCopies } from './affected-copies.ts';
 import { listCopies, revokeOwnCopy } from './grower-copy-store.ts';
 import { mailCopyAgain, retryMailOfCopy } from './mail-copy.ts';
 import { makeCopy } from './make-copy.ts';
+import { publicOriginOf } from './public-origin.ts';
 import { renewCopy } from './renew-copy.ts';
 
 export function addGrowerCopyRoutes(
@@ -25,8 +26,7 @@ export function addGrowerCopyRoutes(
   onMailQueued: () => void,
 ): void {
   const isMailSetUp = settings.mail !== null;
-  const originOf = (request: Request) =>
-    settings.publicOrigin ?? `${request.protocol}://${request.get('host') ?? 'localhost'}`;
+  const originOf = (request: Request) => publicOriginOf(request, settings);
   const requireMail = () => {
     if (!isMailSetUp) throw new CodedError('mail-not-set-up');
   };

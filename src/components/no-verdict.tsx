@@ -1,24 +1,20 @@
 import { useTranslation } from 'react-i18next';
-import type { BilingualName } from '#shared/catalogue.ts';
+import {
+  tellNoTrials,
+  tellUnanswered,
+  type NoVerdictWords,
+  type UnansweredQuestion,
+} from '#shared/no-verdict-sentences.ts';
 import type { WeighUpResult } from '#shared/weigh-up.ts';
 import { useFormat } from './use-format.ts';
 
-type NoVerdictProps = { crop: BilingualName; region: BilingualName; from: number; to: number };
-
 /** A region without trials gets no verdict: said calmly, with why and what helps. */
-export function NoVerdict({ crop, region, from, to }: NoVerdictProps) {
-  const { t } = useTranslation('verdicts');
-  const format = useFormat();
-  return (
-    <NoVerdictCard
-      title={t('noTrials.title')}
-      why={t('noTrials.why', { crop: format.name(crop), region: format.name(region), from, to })}
-      next={t('noTrials.next')}
-    />
-  );
+export function NoVerdict(question: UnansweredQuestion) {
+  const { t } = useTranslation(['verdicts']);
+  return <NoVerdictCard {...tellNoTrials(question, t, useFormat())} />;
 }
 
-type UnansweredProps = NoVerdictProps & {
+type UnansweredProps = UnansweredQuestion & {
   result: WeighUpResult;
   /** Whether the list of trials left out, with the way back into the figures, stands below. */
   canTakeBack: boolean;
@@ -26,24 +22,11 @@ type UnansweredProps = NoVerdictProps & {
 
 /** Why a weigh-up has no answer: the region has no trials, or the advisor ticked off all it has. */
 export function Unanswered({ result, canTakeBack, ...question }: UnansweredProps) {
-  const { t } = useTranslation('verdicts');
-  const format = useFormat();
-  const { crop, region, from, to } = question;
-  const count = result.leftOut.filter(
-    ({ reason, inRegion }) => reason === 'ticked-off' && inRegion !== false,
-  ).length;
-  if (count === 0) return <NoVerdict {...question} />;
-  const names = { crop: format.name(crop), region: format.name(region), from, to };
-  return (
-    <NoVerdictCard
-      title={t('allTickedOff.title')}
-      why={t('allTickedOff.why', { ...names, count })}
-      next={canTakeBack ? t('allTickedOff.next') : null}
-    />
-  );
+  const { t } = useTranslation(['verdicts']);
+  return <NoVerdictCard {...tellUnanswered(question, result.leftOut, canTakeBack, t, useFormat())} />;
 }
 
-function NoVerdictCard({ title, why, next }: { title: string; why: string; next: string | null }) {
+function NoVerdictCard({ title, why, next }: NoVerdictWords) {
   return (
     <section className="max-w-prose rounded-lg border border-edge bg-card px-5 py-5">
       <h2 className="mb-2">{title}</h2>

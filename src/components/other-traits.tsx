@@ -1,15 +1,12 @@
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
-import type { CandidateResult, TraitVerdict } from '#shared/weigh-up.ts';
+import { findOtherTraits, nameTrait, tellTrait, verdictOn } from '#shared/trait-sentences.ts';
+import type { CandidateResult } from '#shared/weigh-up.ts';
 import { VerdictMark } from './beam.tsx';
 import { DataTable, type Column } from './data-table.tsx';
-import { nameTrait } from './trait-name.ts';
 import { useFormat } from './use-format.ts';
 import { useLanguage } from './use-language.ts';
-
-/** The trait that the strip shows; the others stand here. */
-const headlineTrait = 'yield';
 
 type OtherTraitsProps = {
   candidates: readonly CandidateResult[];
@@ -22,15 +19,9 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
   const { t } = useTranslation('verdicts');
   const language = useLanguage();
   const format = useFormat();
-  const verdictOf = (candidate: CandidateResult, trait: Trait) =>
-    candidate.traits.find((verdict) => verdict.traitSlug === trait.slug);
   const trialsOf = (trait: Trait) =>
-    Math.max(...candidates.map((candidate) => verdictOf(candidate, trait)?.siteYears ?? 0));
-  const rows = traits.filter(
-    (trait) =>
-      trait.slug !== headlineTrait &&
-      candidates.some((candidate) => (verdictOf(candidate, trait)?.siteYears ?? 0) > 0),
-  );
+    Math.max(...candidates.map((candidate) => verdictOn(candidate, trait)?.siteYears ?? 0));
+  const rows = findOtherTraits(traits, candidates);
   const verdicts = candidates.flatMap((candidate) => candidate.traits);
   const level = verdicts.find((verdict) => verdict.gap)?.gap?.region.level;
   const columns: Column<Trait>[] = [
@@ -49,9 +40,7 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
     ...candidates.map((candidate): Column<Trait> => ({
       id: candidate.varietyId,
       header: candidate.varietyName,
-      cell: (trait) => (
-        <TraitCell verdict={verdictOf(candidate, trait)} trait={trait} currentName={currentName} />
-      ),
+      cell: (trait) => <TraitCell candidate={candidate} trait={trait} currentName={currentName} />,
     })),
   ];
   return (
@@ -81,56 +70,30 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
   );
 }
 
-type TraitCellProps = { verdict: TraitVerdict | undefined; trait: Trait; currentName: string };
+type TraitCellProps = { candidate: CandidateResult; trait: Trait; currentName: string };
 
-function TraitCell({ verdict, trait, currentName }: TraitCellProps) {
-  const { t } = useTranslation('verdicts');
+function TraitCell({ candidate, trait, currentName }: TraitCellProps) {
+  const { t } = useTranslation(['verdicts']);
   const format = useFormat();
-  if (!verdict || verdict.siteYears === 0) return <span className="text-faded">{t('traits.none')}</span>;
-  if (verdict.kind === 'ordinal') return <RatingCell verdict={verdict} currentName={currentName} />;
-  if (verdict.gap === null) return <span className="text-faded">{t('traits.none')}</span>;
-  const { estimate, se, region } = verdict.gap;
-  const decimals = format.decimals(se, trait.unit);
+  const words = tellTrait(verdictOn(candidate, trait), trait, currentName, t, format);
+  if (words.kind === 'none') return <span className="text-faded">{words.text}</span>;
+  if (words.kind === 'rating') {
+    return (
+      <>
+        <span className="block">{words.text}</span>
+        {words.counts !== null && <span className="block text-sm text-faded">{words.counts}</span>}
+      </>
+    );
+  }
   return (
     <span className="flex flex-wrap items-baseline gap-x-2 @max-xl:justify-end">
-      <span className="font-semibold whitespace-nowrap">{format.gap(estimate, trait.unit, decimals)}</span>
-      {verdict.verdict === null ? (
+      <span className="font-semibold whitespace-nowrap">{words.gap}</span>
+      {words.verdict === null ? (
         <span className="text-sm">{t('traits.differs')}</span>
       ) : (
-        <VerdictMark verdict={verdict.verdict} className="self-center text-sm" />
+        <VerdictMark verdict={words.verdict} className="self-center text-sm" />
       )}
-      {verdict.verdict !== 'thin' && (
-        <span className="block w-full text-sm text-faded">
-          {t('traits.fromTo', format.ends(region, trait.unit, decimals))}
-        </span>
-      )}
+      {words.range !== null && <span className="block w-full text-sm text-faded">{words.range}</span>}
     </span>
-  );
-}
-
-/** Both medians, and in how many of the trials that rated both the candidate stood lower or higher. */
-function RatingCell({ verdict, currentName: current }: { verdict: TraitVerdict; currentName: string }) {
-  const { t } = useTranslation('verdicts');
-  const format = useFormat();
-  const score = (value: number | null) =>
-    value === null ? '–' : format.number(value, { decimals: Number.isInteger(value) ? 0 : 1 });
-  const { medianCandidate, medianCurrent, rated } = verdict;
-  return (
-    <>
-      <span className="block">
-        {t('traits.median', {
-          candidate: score(medianCandidate),
-          current,
-          medianCurrent: score(medianCurrent),
-        })}
-      </span>
-      {rated && (
-        <span className="block text-sm text-faded">
-          {rated.trials === 0
-            ? t('traits.neverRated')
-            : t('traits.rated', { count: rated.trials, lower: rated.lower, higher: rated.higher })}
-        </span>
-      )}
-    </>
   );
 }

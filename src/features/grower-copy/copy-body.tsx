@@ -1,11 +1,14 @@
 import { useTranslation } from 'react-i18next';
 import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
+import { writeUnitParameter } from '#shared/reader-units.ts';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
 import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
+import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useFormat } from '#src/components/use-format.ts';
+import { useLanguage } from '#src/components/use-language.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CopyUnits } from './copy-units.tsx';
 import { answerId } from './copy-script-data.ts';
@@ -125,9 +128,33 @@ function WhoToAsk({ copy: { snapshot, expiresAt } }: { copy: OpenedCopy }) {
           {snapshot.advisorEmail}
         </a>
       </p>
+      <PaperLinks />
       <p className="mt-2 text-sm text-faded">
         {t('frozen', { date: format.date(snapshot.madeAt), until: format.date(expiresAt) })}
       </p>
     </footer>
+  );
+}
+
+const papers = ['a4', 'letter'] as const;
+
+/** The copy on paper, in the language and the units that it is read in: plain links to the same address. */
+function PaperLinks() {
+  const { t } = useTranslation('copy');
+  const lang = useLanguage();
+  const unit = writeUnitParameter(useReaderUnits().yieldUnit);
+  return (
+    <p className="flex flex-wrap items-center gap-x-3 print:hidden">
+      {t('onPaper')}
+      {papers.map((paper) => (
+        <a
+          key={paper}
+          href={`?${new URLSearchParams({ paper, lang, unit }).toString()}`}
+          className="tap-target inline-flex items-center"
+        >
+          {t(`paper.${paper}`)}
+        </a>
+      ))}
+    </p>
   );
 }

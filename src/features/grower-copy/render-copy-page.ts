@@ -4,7 +4,7 @@ import { I18nextProvider } from 'react-i18next';
 import type { OpenedCopy } from '#shared/grower-copy.ts';
 import type { Language } from '#shared/language.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
-import { storedUnits, type ReaderUnits } from '#shared/reader-units.ts';
+import { readerUnitsOfCopy } from '#shared/reader-units-of-copy.ts';
 import type { YieldUnit } from '#shared/units.ts';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
@@ -27,7 +27,7 @@ export function renderCopyPage(
   copy: OpenedCopy,
   { language, sentences, files, yieldUnit }: CopyPageOptions,
 ): string {
-  const units = readUnits(copy, yieldUnit);
+  const units = readerUnitsOfCopy(copy.snapshot, yieldUnit);
   const inLanguage = (part: ReactNode) =>
     createElement(
       I18nextProvider,
@@ -60,12 +60,6 @@ export function renderFailedCopyPage(
 }
 
 const writeDocument = (page: ReactNode): string => `<!doctype html>${renderToStaticMarkup(page)}`;
-
-/** Bushels need the crop's, which the first copies did not freeze: those are read in t/ha then. */
-function readUnits({ snapshot }: OpenedCopy, yieldUnit: YieldUnit): ReaderUnits {
-  if (snapshot.format !== 1) return { yieldUnit, bushelWeightLb: snapshot.bushelWeightLb };
-  return yieldUnit === 'bu/ac' ? storedUnits : { ...storedUnits, yieldUnit };
-}
 
 /** Of the snapshot what the answer shows; cautions are told by the page itself. */
 function takeAnswer({ snapshot: { weighUp, result, traits } }: OpenedCopy): CopyAnswerProps {

@@ -11,7 +11,7 @@ import { ManagementList } from '#src/components/management-list.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
 import { Select } from '#src/components/select.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
-import { nameTrait } from '#src/components/trait-name.ts';
+import { nameTrait } from '#shared/trait-sentences.ts';
 import { useTrialWords } from '#src/components/trial-words.ts';
 import { UrlTabs, useUrlTab } from '#src/components/url-tabs.tsx';
 import { useFormat } from '#src/components/use-format.ts';

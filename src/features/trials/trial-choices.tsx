@@ -3,7 +3,7 @@ import type { Trait } from '#shared/catalogue.ts';
 import { comparisonMethods, type AnalysisQuery, type ComparisonMethod } from '#shared/trial.ts';
 import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
-import { nameTrait } from '#src/components/trait-name.ts';
+import { nameTrait } from '#shared/trait-sentences.ts';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
 import { readChoice, useUrlPatch } from '#src/url-state.ts';

@@ -45,6 +45,9 @@ export function CopyLink({ weighUpId, copyId, link, isMailSetUp }: CopyLinkProps
             <a href={link} target="_blank" rel="noreferrer" className="tap-target inline-flex items-center">
               {t('copies.openCopy')}
             </a>
+            <a href={`${link}/pdf`} className="tap-target inline-flex items-center">
+              {t('copies.downloadPdf')}
+            </a>
           </div>
           <p role="status" className="text-sm">
             {state === 'copied' && t('copies.copied')}
