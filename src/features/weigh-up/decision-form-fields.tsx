@@ -18,6 +18,7 @@ type DecisionFormFieldsProps = {
   /** The numbers on the page are not the saved ones, which would be kept with the decision. */
   hasUnsaved: boolean;
   isBusy: boolean;
+  onTyped: () => void;
   onSave: (decision: DecisionInput) => void;
   /** null where there is nothing to go back to. */
   onCancel: (() => void) | null;
@@ -25,7 +26,7 @@ type DecisionFormFieldsProps = {
 
 /** What was chosen, on how many hectares, and why. */
 export function DecisionFormFields(props: DecisionFormFieldsProps) {
-  const { weighUp, result, decision, hasUnsaved, isBusy, onSave, onCancel } = props;
+  const { weighUp, result, decision, hasUnsaved, isBusy, onTyped, onSave, onCancel } = props;
   const { t } = useTranslation(['record', 'weigh-up', 'common']);
   const fieldErrorText = useFieldErrorText();
   const form = useForm<DecisionDraft, unknown, DecisionInput>({
@@ -44,6 +45,7 @@ export function DecisionFormFields(props: DecisionFormFieldsProps) {
     <form
       noValidate
       className="flex max-w-prose flex-col gap-4"
+      onChange={onTyped}
       onSubmit={(event) => void form.handleSubmit(onSave)(event)}
     >
       <div className="grid gap-4 sm:grid-cols-[minmax(0,1fr)_10rem]">

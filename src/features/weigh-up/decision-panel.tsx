@@ -5,18 +5,18 @@ import { Link } from 'react-router-dom';
 import type { Decision, DecisionInput, EarlierDecision } from '#shared/decision.ts';
 import { recordDecision } from '#shared/weigh-up-record.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
-import { ApiError, callApi } from '#src/api-client.ts';
+import { callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
-import { ErrorState } from '#src/components/error-state.tsx';
 import { FoldedSection } from '#src/components/folded-section.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
-import { useErrorText } from '#src/use-error-text.ts';
 import { DecisionFormFields } from './decision-form-fields.tsx';
+import { PanelFailure } from './panel-failure.tsx';
 import { RecordedDecision } from './recorded-decision.tsx';
 import { hasMoved, pairThenAndNow } from './then-and-now.ts';
+import { isConflict } from './use-saving-base.ts';
 import { decisionsQuery, weighUpQuery, weighUpsQuery } from './weigh-up-queries.ts';
 
 type DecisionPanelProps = { weighUp: WeighUp; result: WeighUpResult; hasUnsaved: boolean };
@@ -54,19 +54,19 @@ function OwnDecision({
   hasUnsaved,
 }: DecisionPanelProps & { decision: Decision | null }) {
   const { t } = useTranslation('record');
-  const errorText = useErrorText();
+  // Once it is typed into, the form stays, also where a decision recorded elsewhere comes in.
   const [isChanging, setIsChanging] = useState(false);
   const saving = useDecisionSaving(weighUp, () => setIsChanging(false));
   const rows = decision === null ? [] : pairThenAndNow(decision.said, weighUp, result);
   return (
     <>
       {decision !== null && <RecordedDecision decision={decision} rows={hasMoved(rows) ? rows : []} />}
-      {saving.isError && <ErrorState message={errorText(saving.error)} />}
+      <PanelFailure error={saving.error} />
       {decision === null || isChanging ? (
         <DecisionFormFields
-          key={decision?.decidedAt ?? 'open'}
           {...{ weighUp, result, decision, hasUnsaved }}
           isBusy={saving.isPending}
+          onTyped={() => setIsChanging(true)}
           onSave={(input) => saving.mutate(input)}
           onCancel={decision && (() => setIsChanging(false))}
         />
@@ -101,7 +101,7 @@ function useDecisionSaving(weighUp: WeighUp, onSaved: () => void) {
       onSaved();
     },
     onError: (error) => {
-      if (!(error instanceof ApiError) || error.code !== 'revision-conflict') return;
+      if (!isConflict(error)) return;
       void client.invalidateQueries({ queryKey: query.queryKey });
       void client.invalidateQueries({ queryKey: own.queryKey });
     },

@@ -19,7 +19,7 @@ import { farmForm, toFarmDraft, toInputWithFarm, type FarmDraft, type FarmForm }
 import { PanelFailure } from './panel-failure.tsx';
 import { PlaceField } from './place-field.tsx';
 import { TrialChoiceField } from './trial-choice-field.tsx';
-import { useFollowingConflict } from './use-following-conflict.ts';
+import { useSavingBase, type SavingBase } from './use-saving-base.ts';
 import { weighUpQuery } from './weigh-up-queries.ts';
 
 type FarmFormApi = UseFormReturn<FarmDraft, unknown, FarmForm>;
@@ -37,9 +37,11 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
     resolver: zodResolver(farmForm),
     defaultValues: toFarmDraft(weighUp),
   });
+  const saved = useSavingBase(weighUp, form.formState.isDirty, toFarmDraft);
+  const { base } = saved;
   // Saved elsewhere meanwhile, with its prices say: what is not touched here follows.
-  useEffect(() => form.reset(toFarmDraft(weighUp), { keepDirtyValues: true }), [form, weighUp]);
-  const saving = useFarmSaving(weighUp, form);
+  useEffect(() => form.reset(toFarmDraft(base), { keepDirtyValues: true }), [form, base]);
+  const saving = useFarmSaving(saved, form);
   return (
     <FoldedSection id="farm" title={t('farm.title')}>
       <p className="text-faded">{t('farm.lead')}</p>
@@ -63,19 +65,18 @@ export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
   );
 }
 
-function useFarmSaving(weighUp: WeighUp, form: FarmFormApi) {
+function useFarmSaving({ base, followConflict }: SavingBase, form: FarmFormApi) {
   const { t } = useTranslation('weigh-up');
   const client = useQueryClient();
-  const followConflict = useFollowingConflict(weighUp.id);
   return useMutation({
     mutationFn: (typed: FarmForm) =>
       callApi(changeWeighUp, {
-        params: { weighUpId: weighUp.id },
-        body: { revision: weighUp.revision, weighUp: toInputWithFarm(weighUp, typed) },
+        params: { weighUpId: base.id },
+        body: { revision: base.revision, weighUp: toInputWithFarm(base, typed) },
       }),
     onSuccess: (saved) => {
       form.reset(toFarmDraft(saved.weighUp));
-      client.setQueryData(weighUpQuery(weighUp.id).queryKey, saved);
+      client.setQueryData(weighUpQuery(base.id).queryKey, saved);
       showToast(t('farm.saved'));
     },
     onError: followConflict,

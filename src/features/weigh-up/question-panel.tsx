@@ -9,7 +9,7 @@ import { FoldedSection } from '#src/components/folded-section.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { PanelFailure } from './panel-failure.tsx';
 import { QuestionChoice } from './question-choice.tsx';
-import { useFollowingConflict } from './use-following-conflict.ts';
+import { useSavingBase, type SavingBase } from './use-saving-base.ts';
 import { toInput } from './weigh-up-input.ts';
 import { weighUpQuery } from './weigh-up-queries.ts';
 
@@ -24,7 +24,10 @@ export function QuestionPanel({ weighUp, hasUnsaved }: QuestionPanelProps) {
   const { t } = useTranslation('weigh-up');
   const [touched, setTouched] = useState<QuestionKind | null>(null);
   const chosen = touched ?? weighUp.question;
-  const saving = useQuestionSaving(weighUp, () => setTouched(null));
+  const saving = useQuestionSaving(
+    useSavingBase(weighUp, touched !== null, ({ question }) => question),
+    () => setTouched(null),
+  );
   return (
     <FoldedSection id="question" title={t('question.panel')}>
       <p className="text-faded">{t('question.lead')}</p>
@@ -51,19 +54,18 @@ export function QuestionPanel({ weighUp, hasUnsaved }: QuestionPanelProps) {
   );
 }
 
-function useQuestionSaving(weighUp: WeighUp, onSaved: () => void) {
+function useQuestionSaving({ base, followConflict }: SavingBase, onSaved: () => void) {
   const { t } = useTranslation('weigh-up');
   const client = useQueryClient();
-  const followConflict = useFollowingConflict(weighUp.id);
   return useMutation({
     mutationFn: (question: QuestionKind) =>
       callApi(changeWeighUp, {
-        params: { weighUpId: weighUp.id },
-        body: { revision: weighUp.revision, weighUp: { ...toInput(weighUp), question } },
+        params: { weighUpId: base.id },
+        body: { revision: base.revision, weighUp: { ...toInput(base), question } },
       }),
     onSuccess: (saved) => {
       onSaved();
-      client.setQueryData(weighUpQuery(weighUp.id).queryKey, saved);
+      client.setQueryData(weighUpQuery(base.id).queryKey, saved);
       showToast(t('question.saved'));
     },
     onError: followConflict,

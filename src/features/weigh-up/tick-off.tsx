@@ -3,14 +3,14 @@ import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { tickOffTrials } from '#shared/weigh-up-record.ts';
 import type { TickedOffTrial, UsedTrial, WeighUp } from '#shared/weigh-up.ts';
-import { ApiError, callApi } from '#src/api-client.ts';
+import { callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
 import { Actions, Dialog } from '#src/components/dialog.tsx';
-import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
 import { showToast } from '#src/components/toaster.tsx';
-import { useErrorText } from '#src/use-error-text.ts';
+import { PanelFailure } from './panel-failure.tsx';
+import { isConflict } from './use-saving-base.ts';
 import { weighUpQuery } from './weigh-up-queries.ts';
 
 /** Saves which trials count, under the revision on the page; where somebody saved in between, the page shows theirs. */
@@ -30,8 +30,7 @@ export function useTickingOff(weighUp: WeighUp) {
       showToast(t(isMore ? 'tickOff.done' : 'tickOff.undone'));
     },
     onError: (error) => {
-      if (error instanceof ApiError && error.code === 'revision-conflict')
-        void client.invalidateQueries({ queryKey: query.queryKey });
+      if (isConflict(error)) void client.invalidateQueries({ queryKey: query.queryKey });
     },
   });
 }
@@ -41,7 +40,6 @@ type TickOffStepProps = { weighUp: WeighUp; trial: UsedTrial };
 /** The way out of the figures for a trial that counts, and back in with one click for one that was ticked off. */
 export function TickOffStep({ weighUp, trial }: TickOffStepProps) {
   const { t } = useTranslation('record');
-  const errorText = useErrorText();
   const [isAsking, setIsAsking] = useState(false);
   const saving = useTickingOff(weighUp);
   const others = weighUp.tickedOff.filter(({ trialId }) => trialId !== trial.trialId);
@@ -57,7 +55,7 @@ export function TickOffStep({ weighUp, trial }: TickOffStepProps) {
         >
           {t('tickOff.back')}
         </Button>
-        {saving.isError && <ErrorState message={errorText(saving.error)} />}
+        <PanelFailure error={saving.error} />
       </>
     );
   }
@@ -69,7 +67,7 @@ export function TickOffStep({ weighUp, trial }: TickOffStepProps) {
       <Dialog isOpen={isAsking} title={t('tickOff.title', about)} onClose={() => setIsAsking(false)}>
         <ReasonForm
           isBusy={saving.isPending}
-          failure={saving.isError ? errorText(saving.error) : null}
+          failure={saving.error}
           onCancel={() => setIsAsking(false)}
           onSave={(reason) => saving.mutate([...others, { trialId: trial.trialId, reason }])}
         />
@@ -80,7 +78,7 @@ export function TickOffStep({ weighUp, trial }: TickOffStepProps) {
 
 type ReasonFormProps = {
   isBusy: boolean;
-  failure: string | null;
+  failure: Error | null;
   onCancel: () => void;
   onSave: (reason: string) => void;
 };
@@ -107,7 +105,7 @@ function ReasonForm({ isBusy, failure, onCancel, onSave }: ReasonFormProps) {
       >
         <TextArea value={reason} maxLength={500} onChange={(event) => setReason(event.target.value)} />
       </Field>
-      {failure !== null && <ErrorState message={failure} />}
+      <PanelFailure error={failure} />
       <Actions>
         <Button onClick={onCancel}>{t('common:cancel')}</Button>
         <Button type="submit" tone="main" isBusy={isBusy}>

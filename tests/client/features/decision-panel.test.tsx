@@ -1,5 +1,6 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
+import { useQueryClient } from '@tanstack/react-query';
 import { afterEach, describe, expect, it, vi } from 'vitest';
 import type { Decision, EarlierDecision, SaidOfCandidate } from '#shared/decision.ts';
 import { DecisionPanel } from '#src/features/weigh-up/decision-panel.tsx';
@@ -66,12 +67,25 @@ function serve(held: { decision: Decision | null; earlier?: EarlierDecision[] },
   return saved;
 }
 
+/** As a page does when one turns back to its window. */
+function LookAgain() {
+  const client = useQueryClient();
+  return (
+    <button type="button" onClick={() => void client.invalidateQueries()}>
+      look again
+    </button>
+  );
+}
+
 const open = async (language: 'en' | 'fr' = 'en', hasUnsaved = false) => {
   const user = userEvent.setup();
-  await renderClient(<DecisionPanel weighUp={weighUp} result={result} hasUnsaved={hasUnsaved} />, {
-    language,
-    namespaces: ['record', 'weigh-up', 'verdicts', 'errors', 'common'],
-  });
+  await renderClient(
+    <>
+      <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={hasUnsaved} />
+      <LookAgain />
+    </>,
+    { language, namespaces: ['record', 'weigh-up', 'verdicts', 'errors', 'common'] },
+  );
   return user;
 };
 
@@ -105,6 +119,17 @@ describe('the decision on a weigh-up', () => {
     await user.click(screen.getByRole('button', { name: 'Record the decision' }));
     await waitFor(() => expect(saved).toHaveLength(1));
     expect(saved[0]?.decision).toMatchObject({ choice: 'undecided', areaHectares: null });
+  });
+
+  it('recorded in another tab meanwhile, it is shown, and what is being written here stays', async () => {
+    const elsewhere: { decision: Decision | null } = { decision: null };
+    serve(elsewhere);
+    const user = await open();
+    await user.type(await screen.findByLabelText('Why'), 'It stood up well.');
+    elsewhere.decision = buildDecision();
+    await user.click(screen.getByRole('button', { name: 'look again' }));
+    expect(await screen.findByText('It stood up in the rain.')).toBeTruthy();
+    expect(screen.getByLabelText('Why')).toHaveProperty('value', 'It stood up well.');
   });
 
   it('waits for the numbers to be saved, as a copy does', async () => {

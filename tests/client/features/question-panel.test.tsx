@@ -41,8 +41,16 @@ function serve(held: WeighUp): { saved: Saved[]; saveElsewhere: (change: Partial
 }
 
 function Page({ id }: { id: string }) {
-  const { data } = useQuery(weighUpQuery(id));
-  return data ? <QuestionPanel weighUp={data.weighUp} hasUnsaved={false} /> : null;
+  const { data, refetch } = useQuery(weighUpQuery(id));
+  return data ? (
+    <>
+      <QuestionPanel weighUp={data.weighUp} hasUnsaved={false} />
+      <button type="button" onClick={() => void refetch()}>
+        refetch
+      </button>
+      <output aria-label="revision">{data.weighUp.revision}</output>
+    </>
+  ) : null;
 }
 
 async function open(change: Partial<WeighUp> = {}) {
@@ -50,7 +58,13 @@ async function open(change: Partial<WeighUp> = {}) {
   const served = serve(weighUp);
   await renderClient(<Page id={weighUp.id} />, { namespaces: ['weigh-up', 'errors'] });
   const save = await screen.findByRole('button', { name: 'Weigh again for this question' });
-  return { ...served, user: userEvent.setup(), save };
+  const user = userEvent.setup();
+  // As when the window is looked at again.
+  const refetch = async () => {
+    await user.click(screen.getByRole('button', { name: 'refetch' }));
+    await waitFor(() => expect(screen.getByLabelText('revision').textContent).toBe('4'));
+  };
+  return { ...served, user, save, refetch };
 }
 
 describe('the question of a weigh-up', () => {
@@ -85,6 +99,28 @@ describe('the question of a weigh-up', () => {
     expect(saved).toHaveLength(0);
     expect(screen.getByRole('radio', { name: /One planned pair/ })).toHaveProperty('checked', true);
     await waitFor(() => expect(save).toHaveProperty('disabled', false));
+    await user.click(save);
+    await waitFor(() => expect(saved).toHaveLength(1));
+    expect(saved[0]).toMatchObject({ revision: 4, weighUp: { question: 'pair', areaHectares: 77 } });
+  });
+});
+
+describe('a panel whose part was changed elsewhere, and which the page shows already', () => {
+  it('still meets the conflict: what somebody chose is not overwritten unseen', async () => {
+    const { saved, saveElsewhere, user, save, refetch } = await open();
+    await user.click(screen.getByRole('radio', { name: /One planned pair/ }));
+    saveElsewhere({ question: 'best' });
+    await refetch();
+    await user.click(save);
+    expect(await screen.findByText(/saved this weigh-up in the meantime/)).toBeTruthy();
+    expect(saved).toHaveLength(0);
+  });
+
+  it('does not mind what was saved beside it', async () => {
+    const { saved, saveElsewhere, user, save, refetch } = await open();
+    await user.click(screen.getByRole('radio', { name: /One planned pair/ }));
+    saveElsewhere({ areaHectares: 77 });
+    await refetch();
     await user.click(save);
     await waitFor(() => expect(saved).toHaveLength(1));
     expect(saved[0]).toMatchObject({ revision: 4, weighUp: { question: 'pair', areaHectares: 77 } });
