@@ -1,4 +1,4 @@
-import { useMemo } from 'react';
+import { memo, useMemo } from 'react';
 import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { Link, useParams } from 'react-router-dom';
@@ -82,7 +82,7 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
 }
 
 function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
-  const { t } = useTranslation(['verdicts', 'method']);
+  const { t } = useTranslation('verdicts');
   const cautionItems = useCautionItems();
   const chooseUnit = useUnitChoice();
   const view = useWeighUpView();
@@ -113,7 +113,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   if (view === 'table') {
     return (
       <>
-        <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
+        <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
         <TableView
           candidates={candidates}
           currentName={currentName}
@@ -127,7 +127,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   return (
     <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem]">
       <div className="flex min-w-0 flex-col gap-8">
-        <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
+        <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
         <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2">
           <WaysInPage />
@@ -147,7 +147,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
           areaHectares={money.areaHectares}
         />
         <div id="cautions" className="scroll-mt-2">
-          <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
+          <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} />
         </div>
         <div id="traits" className="scroll-mt-2">
           <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
@@ -166,24 +166,36 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
           saving={saving}
         />
       </div>
-      <div className="flex min-w-0 flex-col gap-4 lg:gap-6">
-        <QuestionPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
-        <FarmPanel weighUp={weighUp} hasUnsaved={money.form.formState.isDirty} />
-        <HandOver weighUpId={weighUp.id} hasUnsaved={money.form.formState.isDirty} />
-        <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
-        <FoldedSection id="method" title={t('method:title')}>
-          <MethodNotes result={result} />
-          <details>
-            <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
-              {t('method:showTrials', { count: result.trials.length })}
-            </summary>
-            <OwnEvidence weighUp={weighUp} result={result} />
-          </details>
-        </FoldedSection>
-      </div>
+      <BesideMoney weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
     </div>
   );
 }
+
+/** What hangs on no price, and so is not drawn anew with every figure that is typed. */
+const BesideMoney = memo(function BesideMoney({
+  weighUp,
+  result,
+  hasUnsaved,
+}: AnswerProps & { hasUnsaved: boolean }) {
+  const { t } = useTranslation('method');
+  return (
+    <div className="flex min-w-0 flex-col gap-4 lg:gap-6">
+      <QuestionPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
+      <FarmPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
+      <HandOver weighUpId={weighUp.id} hasUnsaved={hasUnsaved} />
+      <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={hasUnsaved} />
+      <FoldedSection id="method" title={t('title')}>
+        <MethodNotes result={result} />
+        <details>
+          <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
+            {t('showTrials', { count: result.trials.length })}
+          </summary>
+          <OwnEvidence weighUp={weighUp} result={result} />
+        </details>
+      </FoldedSection>
+    </div>
+  );
+});
 
 /** The trials, each with the way to its page and out of the figures. */
 function OwnEvidence({ weighUp, result }: AnswerProps) {
