@@ -5,20 +5,45 @@ export function choleskyUpper(
   out: Float64Array = new Float64Array(n * n),
 ): Float64Array | null {
   for (let i = 0; i < n; i++) for (let j = i; j < n; j++) out[i * n + j] = a[i * n + j]!;
-  for (let i = 0; i < n; i++) {
-    const row = i * n;
-    const pivot = out[row + i]!;
-    if (!(pivot > 0)) return null;
-    const root = Math.sqrt(pivot);
-    for (let j = i; j < n; j++) out[row + j]! /= root;
-    for (let k = i + 1; k < n; k++) {
-      const factor = out[row + k]!;
-      if (factor === 0) continue;
-      const target = k * n;
-      for (let j = k; j < n; j++) out[target + j]! -= factor * out[row + j]!;
-    }
+  // four rows at a time, so that the rows below are read and written a quarter as often
+  for (let first = 0; first < n; first += 4) {
+    const end = Math.min(first + 4, n);
+    for (let i = first; i < end; i++) if (!takeRow(out, n, i, end)) return null;
+    if (end - first === 4) subtractFourRows(out, n, first);
   }
   return out;
+}
+
+/** Scales row i to its place in the triangle and takes it off the rows below it up to `end`; false where it has no pivot. */
+function takeRow(out: Float64Array, n: number, i: number, end: number): boolean {
+  const row = i * n;
+  const pivot = out[row + i]!;
+  if (!(pivot > 0)) return false;
+  const root = Math.sqrt(pivot);
+  for (let j = i; j < n; j++) out[row + j]! /= root;
+  for (let k = i + 1; k < end; k++) {
+    const factor = out[row + k]!;
+    const target = k * n;
+    for (let j = k; j < n; j++) out[target + j]! -= factor * out[row + j]!;
+  }
+  return true;
+}
+
+/** Takes rows first … first + 3 of the triangle off all rows below them. */
+function subtractFourRows(out: Float64Array, n: number, first: number): void {
+  const r0 = first * n;
+  const r1 = r0 + n;
+  const r2 = r1 + n;
+  const r3 = r2 + n;
+  for (let k = first + 4; k < n; k++) {
+    const f0 = out[r0 + k]!;
+    const f1 = out[r1 + k]!;
+    const f2 = out[r2 + k]!;
+    const f3 = out[r3 + k]!;
+    const target = k * n;
+    for (let j = k; j < n; j++)
+      out[target + j]! -= f0 * out[r0 + j]! + f1 * out[r1 + j]! + f2 * out[r2 + j]! + f3 * out[r3 + j]!;
+  }
 }
 
 /** Solves R'Z = B in place for many right-hand sides; R n × n upper, B n × m, row-major. */

@@ -82,32 +82,6 @@ export function solveUpper(r: Float64Array, n: number, z: Float64Array): void {
   }
 }
 
-/** (R'R)⁻¹ from the upper triangle R, n × n; full symmetric result, row-major. */
-export function invertFromTriangle(r: Float64Array, n: number): Float64Array {
-  // rows of R⁻¹, kept upper: inv[i][j] for j ≥ i
-  const inv = new Float64Array(n * n);
-  for (let i = n - 1; i >= 0; i--) {
-    const diagonal = 1 / r[i * n + i]!;
-    const row = i * n;
-    inv[row + i] = diagonal;
-    for (let k = i + 1; k < n; k++) {
-      const factor = -r[row + k]! * diagonal;
-      if (factor === 0) continue;
-      const other = k * n;
-      for (let j = k; j < n; j++) inv[row + j]! += factor * inv[other + j]!;
-    }
-  }
-  const out = new Float64Array(n * n);
-  for (let i = 0; i < n; i++)
-    for (let j = i; j < n; j++) {
-      let sum = 0;
-      for (let k = j; k < n; k++) sum += inv[i * n + k]! * inv[j * n + k]!;
-      out[i * n + j] = sum;
-      out[j * n + i] = sum;
-    }
-  return out;
-}
-
 /** The vectors v (each of length size) with A v = 0, one for each skipped column. */
 export function nullVectors(factor: SkippingFactor): Float64Array[] {
   const { rank, size, kept, dropped, r } = factor;

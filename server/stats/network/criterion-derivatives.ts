@@ -1,7 +1,7 @@
 import { applyP } from './environment-system.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
-import { multiplyRows } from './row-products.ts';
+import { multiplyRow, multiplyRows } from './row-products.ts';
 
 /** First derivatives of the restricted log-likelihood in θ, and the average information (3 × 3, row-major). */
 export interface CriterionDerivatives {
@@ -52,46 +52,6 @@ function traceOfProduct(a: Float64Array, aa: number, b: Float64Array, q: number)
   return sum;
 }
 
-/** out[0 … q − 1] = X'·row: sums of a row of cells against the columns of X, four at a time. */
-function projectRow(
-  x: Float64Array,
-  xAt: number,
-  length: number,
-  q: number,
-  row: Float64Array,
-  out: Float64Array,
-  outAt: number,
-): void {
-  let r = 0;
-  for (; r + 4 <= q; r += 4) {
-    const x0 = xAt + r * length;
-    const x1 = x0 + length;
-    const x2 = x1 + length;
-    const x3 = x2 + length;
-    let s0 = 0;
-    let s1 = 0;
-    let s2 = 0;
-    let s3 = 0;
-    for (let l = 0; l < length; l++) {
-      const value = row[l]!;
-      s0 += value * x[x0 + l]!;
-      s1 += value * x[x1 + l]!;
-      s2 += value * x[x2 + l]!;
-      s3 += value * x[x3 + l]!;
-    }
-    out[outAt + r] = s0;
-    out[outAt + r + 1] = s1;
-    out[outAt + r + 2] = s2;
-    out[outAt + r + 3] = s3;
-  }
-  for (; r < q; r++) {
-    const at = xAt + r * length;
-    let sum = 0;
-    for (let l = 0; l < length; l++) sum += row[l]! * x[at + l]!;
-    out[outAt + r] = sum;
-  }
-}
-
 /**
  * U = C⁻¹X of entry i, and what of tr(C⁻¹ E'B V_k B E) lies within blocks.
  * @returns the parts of V_outer and V_rest
@@ -127,7 +87,7 @@ function projectInverse(
       // a cell without a column can only be the first
       inverseRow[0] = column[first]! < 0 ? 0 : inverse[row + column[first]!]!;
       for (let l = 1; l < length; l++) inverseRow[l] = inverse[row + column[first + l]!]!;
-      projectRow(x, projectedStart[i]!, length, q, inverseRow, u, (j - first) * q);
+      multiplyRow(u, (j - first) * q, x, projectedStart[i]!, length, q, inverseRow);
       const dj = d[j]!;
       rest += dj * dj * inverseRow[j - first]!;
       let sum = 0;

@@ -1,6 +1,6 @@
 import { subtractEnvironments } from './environment-system.ts';
-import { computeExpectedInformation } from './expected-information.ts';
-import { MANY_CELLS, type NetworkFit } from './fit-network.ts';
+import { computeExpectedInformation, MANY_CELLS } from './expected-information.ts';
+import type { NetworkFit } from './fit-network.ts';
 import { correctCovariance } from './covariance-correction.ts';
 import { interactionTerms } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';

@@ -53,7 +53,7 @@ export function prepareProjection(frame: NetworkFrame, width: number): Projectio
   };
 }
 
-/** Rows of a block, B times what they were. */
+/** Rows of a block, B times what they were; adds them to those of their inner level in u. */
 function shrinkBlock(
   frame: NetworkFrame,
   { d, blockFactor }: EntryAbsorption,
@@ -61,7 +61,7 @@ function shrinkBlock(
   rows: Float64Array,
   firstRow: number,
   width: number,
-  sum: Float64Array,
+  { sum, u }: ProjectionScratch,
 ): void {
   const begin = frame.blockStart[b]!;
   const length = frame.blockStart[b + 1]! - begin;
@@ -71,7 +71,12 @@ function shrinkBlock(
     const dj = d[begin + j]!;
     const pull = dj * blockFactor[b]!;
     const at = (firstRow + j) * width;
-    for (let l = 0; l < width; l++) rows[at + l] = dj * rows[at + l]! - pull * sum[l]!;
+    const level = frame.level[begin + j]! * width;
+    for (let l = 0; l < width; l++) {
+      const value = dj * rows[at + l]! - pull * sum[l]!;
+      rows[at + l] = value;
+      u[level + l]! += value;
+    }
   }
 }
 
@@ -110,18 +115,13 @@ export function projectRows(
   width: number,
   scratch: ProjectionScratch,
 ): void {
-  const { sum, u, t } = scratch;
+  const { u, t } = scratch;
   const first = frame.start[i]!;
-  const length = frame.start[i + 1]! - first;
   const q = frame.levelCount[i]!;
   const [firstBlock, endBlock] = [frame.firstBlock[i]!, frame.firstBlock[i + 1]!];
-  for (let b = firstBlock; b < endBlock; b++)
-    shrinkBlock(frame, absorption, b, rows, frame.blockStart[b]! - first, width, sum);
   u.fill(0, 0, q * width);
-  for (let j = 0; j < length; j++) {
-    const target = frame.level[first + j]! * width;
-    for (let l = 0; l < width; l++) u[target + l]! += rows[j * width + l]!;
-  }
+  for (let b = firstBlock; b < endBlock; b++)
+    shrinkBlock(frame, absorption, b, rows, frame.blockStart[b]! - first, width, scratch);
   t.fill(0, 0, q * width);
   for (let r = 0, at = absorption.squareStart[i]!; r < q; r++, at += q)
     addCombination(t, r * width, width, u, 0, width, absorption.s, at, q);

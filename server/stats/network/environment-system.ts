@@ -1,9 +1,10 @@
 import { choleskyUpper } from '#server/stats/linear/dense.ts';
-import { invertFromTriangle, solveTransposed, solveUpper } from '#server/stats/linear/skipping-factor.ts';
+import { solveTransposed, solveUpper } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 import type { EntryAbsorption } from './entry-absorption.ts';
 import { applyQ } from './entry-projection.ts';
 import type { NetworkFrame } from './network-frame.ts';
-import { addCombination } from './row-products.ts';
+import { addCombination, multiplyRows } from './row-products.ts';
 
 /** The environments' equations C β = E'Qy once the entries are absorbed. */
 export interface EnvironmentSolution {
@@ -23,39 +24,74 @@ export interface EnvironmentSystem extends EnvironmentSolution {
   readonly inverse: Float64Array;
 }
 
-/** C = E'QE = Σ E'BE − E'XSX'E, upper triangle. */
+/** Working space of gatherSystem for one entry with q inner levels. */
+interface GatherScratch {
+  /** f times Z_i'D1_b: a row of q for each block, and S times it */
+  readonly shares: Float64Array;
+  readonly solved: Float64Array;
+  /** what a cell has in common with each block and each level */
+  readonly byBlock: Float64Array;
+  readonly byLevel: Float64Array;
+}
+
+function shareLevels(
+  frame: NetworkFrame,
+  { d, s, blockFactor, squareStart }: EntryAbsorption,
+  i: number,
+  { shares, solved }: GatherScratch,
+): void {
+  const q = frame.levelCount[i]!;
+  const firstBlock = frame.firstBlock[i]!;
+  const blocks = frame.firstBlock[i + 1]! - firstBlock;
+  shares.fill(0, 0, blocks * q);
+  for (let j = frame.start[i]!; j < frame.start[i + 1]!; j++) {
+    const b = frame.block[j]!;
+    shares[(b - firstBlock) * q + frame.level[j]!]! += blockFactor[b]! * d[j]!;
+  }
+  multiplyRows(solved, shares, 0, s, squareStart[i]!, blocks, q, q);
+}
+
+/**
+ * C = E'QE, upper triangle. With X_j = d_j(1_y − n_b), y and b level and block of cell j and n_b = f Z_i'D1_b,
+ * Q_jl = d_j δ_jl − d_j d_l (f within a block + (1_y − n_b)'S(1_y − n_b) of the two): looked up, at a cost without q.
+ */
 function gatherSystem(frame: NetworkFrame, absorption: EntryAbsorption): Float64Array {
   const size = frame.columnCount;
   const system = new Float64Array(size * size);
-  const { d, x, s, blockFactor } = absorption;
-  const { column, blockStart } = frame;
-  const xs = new Float64Array(frame.maxLevels * frame.maxCells);
-  const row = new Float64Array(frame.maxCells);
-  const weights = new Float64Array(frame.maxLevels);
+  const { d, s, blockFactor, squareStart } = absorption;
+  const { column, block, level } = frame;
+  const rows = frame.maxLevels * frame.maxCells;
+  const scratch: GatherScratch = {
+    shares: new Float64Array(rows),
+    solved: new Float64Array(rows),
+    byBlock: new Float64Array(frame.maxCells),
+    byLevel: new Float64Array(frame.maxLevels),
+  };
+  const { shares, solved, byBlock, byLevel } = scratch;
   for (let i = 0; i < frame.entries.length; i++) {
     const q = frame.levelCount[i]!;
-    const first = frame.start[i]!;
-    const length = frame.start[i + 1]! - first;
-    const xAt = absorption.projectedStart[i]!;
-    xs.fill(0, 0, q * length);
-    for (let r = 0; r < q; r++)
-      addCombination(xs, r * length, length, x, xAt, length, s, absorption.squareStart[i]! + r * q, q);
-    for (let b = frame.firstBlock[i]!; b < frame.firstBlock[i + 1]!; b++) {
-      const end = blockStart[b + 1]!;
-      for (let j = blockStart[b]!; j < end; j++) {
-        const ej = column[j]!;
-        if (ej < 0) continue;
-        const from = j - first;
-        for (let r = 0; r < q; r++) weights[r] = -xs[r * length + from]!;
-        row.fill(0, from, length);
-        addCombination(row, from, length - from, x, xAt + from, length, weights, 0, q);
-        const dj = d[j]!;
-        row[from]! += dj;
-        for (let l = j; l < end; l++) row[l - first]! -= blockFactor[b]! * dj * d[l]!;
-        // columns ascend within an entry, and only its first cell may be without one: all of these lie right of the diagonal
-        const target = ej * size;
-        for (let l = from; l < length; l++) system[target + column[first + l]!]! += row[l]!;
+    const firstBlock = frame.firstBlock[i]!;
+    const blocks = frame.firstBlock[i + 1]! - firstBlock;
+    const end = frame.start[i + 1]!;
+    shareLevels(frame, absorption, i, scratch);
+    for (let j = frame.start[i]!; j < end; j++) {
+      const ej = column[j]!;
+      if (ej < 0) continue;
+      const dj = d[j]!;
+      const own = block[j]! - firstBlock;
+      const at = squareStart[i]! + level[j]! * q;
+      for (let y = 0; y < q; y++) byLevel[y] = dj * (s[at + y]! - solved[own * q + y]!);
+      // cells of an entry ascend in blocks and columns, and only its first may be without a column
+      for (let b = own; b < blocks; b++) {
+        let sum = 0;
+        for (let y = 0; y < q; y++) sum += shares[b * q + y]! * byLevel[y]!;
+        byBlock[b] = -sum;
       }
+      byBlock[own]! += dj * blockFactor[block[j]!]!;
+      const target = ej * size;
+      system[target + ej]! += dj;
+      for (let l = j; l < end; l++)
+        system[target + column[l]!]! -= d[l]! * (byBlock[block[l]! - firstBlock]! + byLevel[level[l]!]!);
     }
   }
   return system;
@@ -105,7 +141,8 @@ export function solveEnvironments(
   absorption: EntryAbsorption,
 ): EnvironmentSolution | null {
   const size = frame.columnCount;
-  const triangle = choleskyUpper(gatherSystem(frame, absorption), size);
+  const system = gatherSystem(frame, absorption);
+  const triangle = choleskyUpper(system, size, system);
   if (triangle === null) return null;
   let logDeterminant = 0;
   for (let r = 0; r < size; r++) logDeterminant += 2 * Math.log(triangle[r * size + r]!);

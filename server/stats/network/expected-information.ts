@@ -2,6 +2,9 @@ import { applyQ, prepareProjection, projectRows } from './entry-projection.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import type { NetworkPoint } from './restricted-likelihood.ts';
 
+/** Above this many cells the average information stands in for the expected one. */
+export const MANY_CELLS = 1000;
+
 /** Σ (Z_k'P Z_l)² over pairs of cells of one entry, and over pairs of two entries, the first before the second; 3 × 3. */
 interface SquaredSums {
   readonly within: Float64Array;

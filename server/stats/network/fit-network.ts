@@ -1,11 +1,13 @@
-import { differentiateCriterion, type CriterionDerivatives } from './criterion-derivatives.ts';
-import { computeExpectedInformation } from './expected-information.ts';
+import { climb, type Ascent, type Search, type Summit } from './climb-likelihood.ts';
+import { differentiateCriterion } from './criterion-derivatives.ts';
 import type { Theta } from './entry-absorption.ts';
+import { computeExpectedInformation, MANY_CELLS } from './expected-information.ts';
 import { interactionTerms, type InteractionTerm } from './network-cell.ts';
 import type { NetworkFrame } from './network-frame.ts';
 import { evaluateLikelihood, measureDesign, residualDf, type NetworkPoint } from './restricted-likelihood.ts';
 import { solveSmall } from './small-symmetric.ts';
-import { holdsAt, loosening, penaltyAt, type VariancePenalty } from './variance-penalty.ts';
+import { startVariances } from './start-variances.ts';
+import { penaltyAt, type VariancePenalty } from './variance-penalty.ts';
 
 export interface NetworkFit {
   readonly outcome: 'fitted';
@@ -28,139 +30,8 @@ export interface NetworkNotFitted {
   readonly reason: 'no-residual' | 'no-variation' | 'not-converged';
 }
 
-const MAX_ITERATIONS = 200;
-const GRADIENT_TOLERANCE = 1e-9;
-/** In large networks rounding ends the climb before that. */
-const GRADIENT_TOLERANCE_LARGE = 5e-7;
-/** Above this many cells the average information stands in for the expected one. */
-export const MANY_CELLS = 1000;
-
-/** What one step works with: point, derivatives and the objective's own gradient and curvature. */
-interface Ascent {
-  readonly point: NetworkPoint;
-  readonly derivatives: CriterionDerivatives;
-  readonly objective: number;
-}
-
-interface Search {
-  readonly frame: NetworkFrame;
-  readonly evaluate: (theta: Theta) => Ascent | null;
-  readonly penalty: VariancePenalty | null;
-  /** terms that take part */
-  readonly active: readonly number[];
-  /** variance of a typical cell, which makes slopes in θ unitless */
-  readonly scale: number;
-  /** lower bounds of θ: 0, or a whisker above where some v are 0 */
-  readonly floor: Float64Array;
-}
-
-/** Objective's slope in ln θ, and its size; at the best κ the slope in κ is 0 and adds nothing. */
-function slopePenalised(ascent: Ascent, penalty: VariancePenalty): Float64Array {
-  const { theta } = ascent.point;
-  const holds = holdsAt(penalty, theta);
-  return theta.map((value, k) => value * ascent.derivatives.gradient[k]! - 0.5 * penalty.nu + holds[k]!);
-}
-
-/** Newton step in ln θ: θθ' times the information, plus the penalty's own curvature. */
-function stepPenalised(ascent: Ascent, penalty: VariancePenalty, information: Float64Array): Float64Array {
-  const { theta } = ascent.point;
-  const slope = slopePenalised(ascent, penalty);
-  const holds = holdsAt(penalty, theta);
-  const loosened = loosening(penalty, theta, holds);
-  const curvature = new Float64Array(9);
-  for (let k = 0; k < 3; k++) {
-    for (let l = 0; l < 3; l++)
-      curvature[k * 3 + l] =
-        theta[k]! * theta[l]! * information[k * 3 + l]! - loosened * holds[k]! * holds[l]!;
-    curvature[k * 4]! += holds[k]! + Math.max(0, -theta[k]! * ascent.derivatives.gradient[k]!);
-  }
-  return solveSmall(curvature, slope) ?? slope;
-}
-
-/** Terms free to move: those above their floor, or pushed up from it. */
-function freeTerms(search: Search, ascent: Ascent): number[] {
-  return search.active.filter(
-    (k) => ascent.point.theta[k]! > search.floor[k]! || ascent.derivatives.gradient[k]! > 0,
-  );
-}
-
-/** Newton step in θ over the free terms; a term at its floor that the step would push below it stays there. */
-function stepPlain(search: Search, ascent: Ascent, information: Float64Array): Float64Array {
-  const { gradient } = ascent.derivatives;
-  let free = freeTerms(search, ascent);
-  for (;;) {
-    const m = free.length;
-    const curvature = new Float64Array(m * m);
-    free.forEach((k, r) => free.forEach((l, c) => (curvature[r * m + c] = information[k * 3 + l]!)));
-    const slope = Float64Array.from(free, (k) => gradient[k]!);
-    const solution = solveSmall(curvature, slope) ?? slope.map((g) => g * search.scale * search.scale);
-    const isBlocked = (k: number, r: number): boolean =>
-      ascent.point.theta[k]! <= search.floor[k]! && solution[r]! < 0;
-    if (free.some(isBlocked)) {
-      free = free.filter((k, r) => !isBlocked(k, r));
-      continue;
-    }
-    const step = new Float64Array(3);
-    free.forEach((k, r) => (step[k] = solution[r]!));
-    return step;
-  }
-}
-
-function slopeNorm(search: Search, ascent: Ascent): number {
-  const slopes =
-    search.penalty === null
-      ? freeTerms(search, ascent).map((k) => ascent.derivatives.gradient[k]! * search.scale)
-      : [...slopePenalised(ascent, search.penalty)];
-  return slopes.reduce((max, slope) => Math.max(max, Math.abs(slope)), 0);
-}
-
-function moveAlong(search: Search, theta: Theta, step: Float64Array, length: number): Theta {
-  if (search.penalty !== null)
-    return theta.map((value, k) => value * Math.exp(Math.max(-3, Math.min(3, length * step[k]!))));
-  return theta.map((value, k) => Math.max(search.floor[k]!, value + length * step[k]!));
-}
-
-/** Halves the step until the objective does not fall; null where it never stops falling. */
-function searchAlong(search: Search, ascent: Ascent, step: Float64Array): Ascent | null {
-  for (let length = 1; length > 1e-6; length /= 2) {
-    const trial = search.evaluate(moveAlong(search, ascent.point.theta, step, length));
-    // rounding of the objective must not stop the last, tiny steps
-    if (trial !== null && trial.objective >= ascent.objective - 1e-12 * (1 + Math.abs(ascent.objective)))
-      return trial;
-  }
-  return null;
-}
-
-/** One step by the average information, else by the expected one, else uphill. */
-function advance(search: Search, ascent: Ascent): Ascent | null {
-  const { penalty } = search;
-  const stepBy = (information: Float64Array): Float64Array =>
-    penalty === null ? stepPlain(search, ascent, information) : stepPenalised(ascent, penalty, information);
-  return (
-    searchAlong(search, ascent, stepBy(ascent.derivatives.averageInformation)) ??
-    searchAlong(search, ascent, stepBy(computeExpectedInformation(search.frame, ascent.point))) ??
-    searchAlong(search, ascent, stepBy(new Float64Array(9)))
-  );
-}
-
-/** Climbs until the slope is gone; the objective never falls. */
-function climb(
-  search: Search,
-  bottom: Ascent | null,
-  watch: (objective: number) => void,
-): { ascent: Ascent; norm: number; iterations: number } | null {
-  const tolerance = search.frame.cellCount > MANY_CELLS ? GRADIENT_TOLERANCE_LARGE : GRADIENT_TOLERANCE;
-  let ascent = bottom;
-  for (let iterations = 0; ascent !== null; iterations++) {
-    watch(ascent.objective);
-    const norm = slopeNorm(search, ascent);
-    if (norm < tolerance || iterations === MAX_ITERATIONS) return { ascent, norm, iterations };
-    const next = advance(search, ascent);
-    if (next === null) return { ascent, norm, iterations };
-    ascent = next;
-  }
-  return null;
-}
+/** A climb that stopped short of this slope has found no top. */
+const SLOPE_ACCEPTED = 1e-4;
 
 /** Terms whose information is nothing but a repeat of another's, in the order rest, site, year. */
 function findConfounded(information: Float64Array): number[] {
@@ -188,15 +59,29 @@ function findDropped(frame: NetworkFrame, { point, derivatives }: Ascent): numbe
   );
 }
 
+const isTop = ({ norm }: Summit): boolean => norm < SLOPE_ACCEPTED;
+
+/** Whether the second of two climbs found a top, and the first none or a lower one. */
+function isHigher(second: Summit, first: Summit): boolean {
+  return isTop(second) && (!isTop(first) || second.ascent.objective > first.ascent.objective);
+}
+
+/** The start that takes all three variances for equally large. */
+function startEqual(scale: number, residual: number, meanVariance: number): Theta {
+  return new Float64Array(3).fill(Math.max((residual - meanVariance) / 3, 0.05 * scale));
+}
+
 /**
  * Penalised or plain REML of the three interaction variances, entries and environments fixed.
  * @param penalty null for plain REML; its usual variances must be positive
  * @param watch is told the objective after each step
+ * @param near variances to start from, where a fit of the same cells is at hand; all of them positive
  */
 export function fitNetwork(
   frame: NetworkFrame,
   penalty: VariancePenalty | null,
-  watch: (objective: number) => void = () => undefined,
+  watch?: (objective: number) => void,
+  near?: Theta,
 ): NetworkFit | NetworkNotFitted {
   const design = measureDesign(frame);
   const df = residualDf(frame);
@@ -208,11 +93,6 @@ export function fitNetwork(
     return { outcome: 'not-fitted', reason: 'no-variation' };
 
   const scale = Math.max(meanVariance, residual, Number.MIN_VALUE);
-  const first = Math.max((residual - meanVariance) / 3, 0.05 * scale);
-  const start =
-    penalty === null
-      ? new Float64Array(3).fill(first)
-      : Float64Array.from(interactionTerms, (term) => penalty.usual[term]);
   const floor = new Float64Array(3);
   if (hasExactCells) floor[2] = 1e-12 * scale;
 
@@ -222,14 +102,23 @@ export function fitNetwork(
     const objective = point.logLik + (penalty === null ? 0 : penaltyAt(penalty, theta));
     return { point, objective, derivatives: differentiateCriterion(frame, point) };
   };
-  const bottom = evaluate(start);
+  const bottom = evaluate(near ?? startVariances(frame, design.residuals, penalty, scale));
   if (bottom === null) return { outcome: 'not-fitted', reason: 'not-converged' };
   const dropped = penalty === null ? findDropped(frame, bottom) : [];
   const active = [0, 1, 2].filter((k) => !dropped.includes(k));
   const search: Search = { frame, penalty, scale, floor, active, evaluate };
-  const reduced = start.map((value, k) => (dropped.includes(k) ? 0 : value));
-  const found = climb(search, dropped.length > 0 ? evaluate(reduced) : bottom, watch);
-  if (found === null || !(found.norm < 1e-4)) return { outcome: 'not-fitted', reason: 'not-converged' };
+  const without = (theta: Theta): Theta => theta.map((value, k) => (dropped.includes(k) ? 0 : value));
+  const first = climb(search, dropped.length > 0 ? evaluate(without(bottom.point.theta)) : bottom, watch);
+  // Plain likelihoods of small networks may have two tops, one of them with a variance of 0.
+  const mayHaveTwo =
+    penalty === null &&
+    frame.cellCount <= MANY_CELLS &&
+    (first === null || active.some((k) => first.ascent.point.theta[k]! <= floor[k]!));
+  const second = mayHaveTwo
+    ? climb(search, evaluate(without(startEqual(scale, residual, meanVariance))))
+    : null;
+  const found = first === null || (second !== null && isHigher(second, first)) ? second : first;
+  if (found === null || !isTop(found)) return { outcome: 'not-fitted', reason: 'not-converged' };
   return {
     outcome: 'fitted',
     frame,

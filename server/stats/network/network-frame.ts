@@ -27,6 +27,8 @@ export interface NetworkFrame {
   /** blocks of entry i are firstBlock[i] … firstBlock[i + 1] − 1, cells of block b blockStart[b] … blockStart[b + 1] − 1 */
   readonly firstBlock: Int32Array;
   readonly blockStart: Int32Array;
+  /** block of each cell */
+  readonly block: Int32Array;
   /** inner level of each cell, numbered from 0 within its entry */
   readonly level: Int32Array;
   /** inner levels of each entry, and the largest number of them */
@@ -83,13 +85,14 @@ function chooseColumns(
   return { kept, columnCount, partCount: isDropped.size };
 }
 
-type Blocks = Pick<NetworkFrame, 'firstBlock' | 'blockStart' | 'level' | 'levelCount'>;
+type Blocks = Pick<NetworkFrame, 'firstBlock' | 'blockStart' | 'block' | 'level' | 'levelCount'>;
 
 /** Cuts each entry's cells into blocks of one outer level, and numbers its inner levels. */
 function cutBlocks(start: Int32Array, outer: Int32Array, inner: Int32Array, innerCount: number): Blocks {
   const entries = start.length - 1;
   const firstBlock = new Int32Array(entries + 1);
   const blockStart: number[] = [];
+  const block = new Int32Array(inner.length);
   const level = new Int32Array(inner.length);
   const levelCount = new Int32Array(entries);
   const codeOf = new Int32Array(innerCount);
@@ -97,12 +100,14 @@ function cutBlocks(start: Int32Array, outer: Int32Array, inner: Int32Array, inne
     codeOf.fill(-1);
     for (let j = start[i]!; j < start[i + 1]!; j++) {
       if (j === start[i]! || outer[j] !== outer[j - 1]) blockStart.push(j);
+      block[j] = blockStart.length - 1;
       if (codeOf[inner[j]!] === -1) codeOf[inner[j]!] = levelCount[i]!++;
       level[j] = codeOf[inner[j]!]!;
     }
     firstBlock[i + 1] = blockStart.length;
   }
-  return { firstBlock, blockStart: Int32Array.from([...blockStart, inner.length]), level, levelCount };
+  blockStart.push(inner.length);
+  return { firstBlock, blockStart: Int32Array.from(blockStart), block, level, levelCount };
 }
 
 function requireDistinct(order: Int32Array, entryOf: Int32Array, environmentOf: Int32Array): void {

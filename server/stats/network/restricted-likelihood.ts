@@ -21,6 +21,8 @@ export interface DesignMeasure {
   /** log|X'X| for X = [entries | kept environments] */
   readonly logDeterminant: number;
   readonly residualSumOfSquares: number;
+  /** of each cell */
+  readonly residuals: Float64Array;
   readonly largestSquare: number;
 }
 
@@ -32,6 +34,7 @@ export function measureDesign(frame: NetworkFrame): DesignMeasure {
   return {
     logDeterminant: absorption.logDeterminant + (system?.logDeterminant ?? 0),
     residualSumOfSquares: system?.quadratic ?? 0,
+    residuals: system?.py ?? new Float64Array(frame.cellCount),
     largestSquare: frame.y.reduce((max, y) => Math.max(max, y * y), 0),
   };
 }

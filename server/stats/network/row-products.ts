@@ -80,6 +80,58 @@ export function addCross(
   }
 }
 
+/** out[outAt + k] = row k of `rows` times `vector`, both `length` long; `count` rows, four sums side by side. */
+export function multiplyRow(
+  out: Float64Array,
+  outAt: number,
+  rows: Float64Array,
+  rowsAt: number,
+  length: number,
+  count: number,
+  vector: Float64Array,
+): void {
+  let k = 0;
+  for (; k + 4 <= count; k += 4) {
+    const r0 = rowsAt + k * length;
+    const r1 = r0 + length;
+    const r2 = r1 + length;
+    const r3 = r2 + length;
+    let s0 = 0;
+    let s1 = 0;
+    let s2 = 0;
+    let s3 = 0;
+    for (let l = 0; l < length; l++) {
+      const value = vector[l]!;
+      s0 += value * rows[r0 + l]!;
+      s1 += value * rows[r1 + l]!;
+      s2 += value * rows[r2 + l]!;
+      s3 += value * rows[r3 + l]!;
+    }
+    out[outAt + k] = s0;
+    out[outAt + k + 1] = s1;
+    out[outAt + k + 2] = s2;
+    out[outAt + k + 3] = s3;
+  }
+  for (; k < count; k++) out[outAt + k] = multiplyOne(rows, rowsAt + k * length, length, vector);
+}
+
+/** One row times a vector. One sum alone would wait for each addition to end. */
+function multiplyOne(rows: Float64Array, at: number, length: number, vector: Float64Array): number {
+  const whole = length - (length % 4);
+  let s0 = 0;
+  let s1 = 0;
+  let s2 = 0;
+  let s3 = 0;
+  for (let l = 0; l < whole; l += 4) {
+    s0 += vector[l]! * rows[at + l]!;
+    s1 += vector[l + 1]! * rows[at + l + 1]!;
+    s2 += vector[l + 2]! * rows[at + l + 2]!;
+    s3 += vector[l + 3]! * rows[at + l + 3]!;
+  }
+  for (let l = whole; l < length; l++) s0 += vector[l]! * rows[at + l]!;
+  return s0 + s1 + (s2 + s3);
+}
+
 /** Copies the upper triangle of a, m × m, to the lower one. */
 export function mirrorUpper(a: Float64Array, m: number): void {
   for (let t = 0; t < m; t++) for (let u = t + 1; u < m; u++) a[u * m + t] = a[t * m + u]!;

@@ -1,5 +1,5 @@
 import { choleskyUpper } from '#server/stats/linear/dense.ts';
-import { invertFromTriangle } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 import { findRoot } from '#server/stats/distributions/find-root.ts';
 import type { EntryEffects } from './entry-estimates.ts';
 import type { NetworkFit } from './fit-network.ts';

@@ -1,5 +1,6 @@
 import { choleskyUpper } from '#server/stats/linear/dense.ts';
-import { invertFromTriangle, solveTransposed, solveUpper } from '#server/stats/linear/skipping-factor.ts';
+import { solveTransposed, solveUpper } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 
 /** x with a x = b for a small positive definite a, row-major; null where it is not. */
 export function solveSmall(a: Float64Array, b: Float64Array): Float64Array | null {

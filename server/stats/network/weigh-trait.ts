@@ -70,7 +70,8 @@ function weighCells(frame: NetworkFrame, trait: TraitEvidence, question: WeighQu
 function judgeWithFactor(ground: TraitGround, factor: number): ReadonlyMap<string, TraitVerdict> {
   const { frame, trait, question } = ground;
   const penalty = question.withoutSensitivity === true ? null : choosePenalty(trait, factor);
-  const fit = frame && penalty && fitNetwork(frame, penalty);
+  const near = ground.weighed?.fit.point.theta;
+  const fit = frame && penalty && fitNetwork(frame, penalty, undefined, near);
   if (frame === null || fit === null || fit.outcome === 'not-fitted') return new Map();
   const members = findMembers(frame, question);
   const base = frame.entries.indexOf(question.current);

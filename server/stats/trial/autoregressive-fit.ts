@@ -1,11 +1,11 @@
 import { choleskyUpper, crossProduct, solveTransposedRows } from '#server/stats/linear/dense.ts';
 import {
   factorSkipping,
-  invertFromTriangle,
   keptTriangle,
   solveTransposed,
   solveUpper,
 } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 import { logDetCorrelation, whiten, type FieldGrid } from './field-grid.ts';
 import type { FixedFit } from './fixed-fit.ts';
 import { writeModelMatrix } from './model-matrix.ts';

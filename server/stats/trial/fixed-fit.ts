@@ -1,12 +1,12 @@
 import {
   factorSkipping,
-  invertFromTriangle,
   keptTriangle,
   nullVectors,
   solveTransposed,
   solveUpper,
   type SkippingFactor,
 } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 import { crossFixed, predictFixed, projectFixed } from './cross-products.ts';
 import type { TrialModel } from './trial-model.ts';
 

@@ -5,12 +5,12 @@ import {
   crossProduct,
 } from '#server/stats/linear/dense.ts';
 import {
-  invertFromTriangle,
   solveTransposed,
   solveUpper,
   factorSkipping,
   keptTriangle,
 } from '#server/stats/linear/skipping-factor.ts';
+import { invertFromTriangle } from '#server/stats/linear/triangle-inverse.ts';
 import { projectFixed } from './cross-products.ts';
 import type { FixedFit } from './fixed-fit.ts';
 import type { RandomTerm } from './model-terms.ts';

@@ -5,7 +5,7 @@ import type { Decision, DecisionInput } from '#shared/decision.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
-import { NumberInput } from '#src/components/number-input.tsx';
+import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
@@ -62,7 +62,7 @@ export function DecisionFormFields(props: DecisionFormFieldsProps) {
               control={form.control}
               name="areaHectares"
               render={({ field: { value, onChange, onBlur, ref } }) => (
-                <NumberInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="ha" />
+                <MeasureInput value={value} onValueChange={onChange} onBlur={onBlur} ref={ref} unit="ha" />
               )}
             />
           </Field>
