@@ -20,7 +20,7 @@ export function TableCandidate(props: TableCandidateProps) {
   return (
     <>
       <h2 className="mb-2 text-3xl md:text-4xl">{varietyName}</h2>
-      <ol className="flex flex-col gap-4 text-xl md:gap-6 md:text-2xl">
+      <ol className="flex flex-col gap-3 text-xl md:gap-6 md:text-2xl">
         <li>
           <VerdictMark verdict={verdict} className="text-2xl md:text-3xl [&_svg]:w-12" />
         </li>

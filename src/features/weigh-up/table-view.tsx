@@ -31,7 +31,7 @@ export function TableView({ candidates, currentName, money, cautions, hasUnsaved
   const shown = candidates[place];
   if (!shown) return null;
   return (
-    <div className="flex flex-col gap-8">
+    <div className="flex flex-col gap-6 md:gap-8">
       {candidates.map((candidate) => (
         <article
           key={candidate.varietyId}

@@ -26,6 +26,7 @@ export function WeighUpHeading({ weighUp, result }: WeighUpHeadingProps) {
   const from = Math.min(...result.seasons);
   const to = Math.max(...result.seasons);
   const isWeighed = result.answer === 'weighed';
+  const isTable = useWeighUpView() === 'table' && isWeighed;
   const figures = {
     trials: t('verdicts:trialCount', { count: result.trials.length }),
     sites: t('method:sites', { count: result.sites }),
@@ -40,13 +41,19 @@ export function WeighUpHeading({ weighUp, result }: WeighUpHeadingProps) {
         to: weighUp.seasonTo,
         date: figures.date,
       });
+  const title = t('weigh-up:page.title', {
+    crop: format.name(weighUp.cropName),
+    region: format.name(weighUp.regionName),
+    current: weighUp.currentVarietyName,
+  });
+  // Turned round at the table, the grower's lines come first: what they rest on stands on the full page, and on paper.
+  if (isTable) {
+    const onPaper = <span className="hidden print:inline">{below}</span>;
+    return <PageHeading title={title} below={onPaper} actions={<Steps />} />;
+  }
   return (
     <PageHeading
-      title={t('weigh-up:page.title', {
-        crop: format.name(weighUp.cropName),
-        region: format.name(weighUp.regionName),
-        current: weighUp.currentVarietyName,
-      })}
+      title={title}
       above={
         <>
           <Link to={paths.weighUps}>{t('weigh-up:page.back')}</Link>
