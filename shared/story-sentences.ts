@@ -151,10 +151,11 @@ function tellWorth(
   const { money: result, varietyName: name } = candidate;
   if (result === null) return [say('verdicts:story.noMoney')];
   const isThin = candidate.verdict === 'thin';
-  const signed = (amount: number) => write.money(amount, money.currency, { isSigned: true });
+  const signed = (amount: number) => write.moneyPer(amount, money.currency, 'ha', { isSigned: true });
   const extra = result.extraCostPerHectare;
-  const extraWords = Math.abs(extra) < 0.5 ? 'extraSame' : extra > 0 ? 'extraMore' : 'extraLess';
-  const amount = write.money(Math.abs(extra), money.currency);
+  const amount = write.moneyPer(Math.abs(extra), money.currency, 'ha');
+  const isSame = amount === write.moneyPer(0, money.currency, 'ha');
+  const extraWords = isSame ? 'extraSame' : extra > 0 ? 'extraMore' : 'extraLess';
   const sentences = [
     say(`verdicts:story.${extraWords}`, { name, current, amount }),
     ...tellNetPrices(result, { name, current, currency: money.currency }, teller),
@@ -167,7 +168,7 @@ function tellWorth(
         amount: signed(result.returnPerHectare),
         low: signed(result.returnAtLowPrice),
         high: signed(result.returnAtHighPrice),
-        total: signed(result.returnPerHectare * areaHectares),
+        total: write.money(result.returnPerHectare * areaHectares, money.currency, { isSigned: true }),
         area: write.area(areaHectares),
       }),
       ...tellSpread(result, { currency: money.currency, areaHectares }, teller),

@@ -50,7 +50,8 @@ export function SeedFields({ form, variety: { id, name }, assumptions }: SeedFie
             form={form}
             name={`${at}.cleaningPerTonne`}
             label={t('money.cleaning', { name })}
-            plain={`${sign}/t`}
+            currency={currency}
+            per="t"
           />
         )}
         <ChoiceField

@@ -1,6 +1,4 @@
 import { useTranslation } from 'react-i18next';
-import { currencySign } from '#shared/format-number.ts';
-import { useLanguage } from '#src/components/use-language.ts';
 import { FigureField } from './money-fields.tsx';
 import type { NamedVariety } from './money-seed-fields.tsx';
 import type { MoneyFormApi } from './use-money-form.ts';
@@ -10,7 +8,6 @@ type TonneFieldsProps = { form: MoneyFormApi; currency: string; varieties: reado
 /** What goes off the price of a tonne: haulage, harvest, drying whatever the moisture and by it. */
 export function TonneFields({ form, currency, varieties }: TonneFieldsProps) {
   const { t } = useTranslation('weigh-up');
-  const sign = currencySign(currency, useLanguage());
   return (
     <>
       <div className="grid grid-cols-2 items-end gap-2">
@@ -39,7 +36,8 @@ export function TonneFields({ form, currency, varieties }: TonneFieldsProps) {
           form={form}
           name="dryingPerPoint"
           label={t('money.dryingPerPoint')}
-          plain={`${sign}/t`}
+          currency={currency}
+          per="t"
         />
       </div>
       <FigureField

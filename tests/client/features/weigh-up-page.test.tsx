@@ -74,13 +74,13 @@ function serve(answerToSave: (asked: Asked) => Response, answer: unknown = opene
   return asked;
 }
 
-const open = () =>
+const open = (query = '') =>
   renderClient(
     <Routes>
       <Route path={paths.weighUp} element={<WeighUpPage />} />
     </Routes>,
     {
-      at: `/weigh-ups/${weighUp.id}`,
+      at: `/weigh-ups/${weighUp.id}${query}`,
       namespaces: ['weigh-up', 'verdicts', 'cautions', 'method', 'drawings'],
     },
   );
@@ -213,12 +213,10 @@ describe('seed, quality and what they lead to', () => {
     await user.type(panel.getByLabelText('Premium or discount'), '20');
     await user.click(screen.getByRole('button', { name: /Ostermoor/ }));
     // The current variety passes 23 by 1.25 of its spreads, 11 of 100; the candidate, one more, by none: 50 of 100.
-    expect(
-      screen.getByText(/a tonne of Ostermoor can expect \+\$10\.00\/t, one of Brindle \+\$2\.11\/t/),
-    ).toBeTruthy();
+    expect(screen.getByText(/Ostermoor can expect \+\$10\.00\/t and Brindle \+\$2\.11\/t/)).toBeTruthy();
     expect(screen.getByText(/at the grower’s usual 3\.0 t\/ha/)).toBeTruthy();
     await user.type(panel.getByLabelText('Protein of Brindle on this farm'), '26');
-    expect(screen.getByText(/one of Brindle \+\$20\.00\/t/)).toBeTruthy();
+    expect(screen.getByText(/and Brindle \+\$20\.00\/t/)).toBeTruthy();
     await user.click(panel.getByRole('button', { name: 'Take rule 1 out' }));
     expect(screen.queryByText(/can expect/)).toBeNull();
   });
@@ -234,6 +232,61 @@ describe('seed, quality and what they lead to', () => {
     );
     expect(screen.getByText(/Even that bad season costs nothing on 120 ha/)).toBeTruthy();
     expect(screen.getByText(/region’s average over seasons, the chance that it pays is/)).toBeTruthy();
+  });
+});
+
+describe('the page in bushels and acres', () => {
+  it('takes a price per bushel as it is typed, and saves it per tonne', async () => {
+    const asked = serve(() => Response.json({ ...opened, weighUp: { ...weighUp, revision: 4 } }));
+    await open('?unit=bu-ac');
+    const panel = within(await money());
+    const middle = panel.getByLabelText<HTMLInputElement>('Middle');
+    expect(middle.value).toBe('7.89');
+    expect(panel.getByLabelText<HTMLInputElement>('Area').value).toBe('296.53');
+    const user = userEvent.setup();
+    await user.clear(middle);
+    await user.type(middle, '8.25');
+    await user.tab();
+    expect(middle.value).toBe('8.25');
+    await user.click(panel.getByRole('button', { name: 'Save these numbers' }));
+    await waitFor(() => expect(asked.some((call) => call.method === 'PUT')).toBe(true));
+    const sent = asked.find((call) => call.method === 'PUT');
+    const { assumptions, areaHectares } = (
+      sent?.body as { weighUp: { assumptions: { priceMiddle: number }; areaHectares: number } }
+    ).weighUp;
+    // 36.744 bushels of 60 lb are a tonne; what was not typed is what it was.
+    expect(assumptions.priceMiddle).toBeCloseTo(8.25 * 36.744, 2);
+    expect(assumptions).toMatchObject({ priceLow: 255, priceHigh: 340, haulagePerTonne: 12 });
+    expect(areaHectares).toBe(120);
+  });
+
+  it('tells a candidate without a tonne or a hectare left in it', async () => {
+    serve(() => Response.json(opened));
+    await open(`?unit=bu-ac&open=${idOf(2)}`);
+    const story = (await screen.findByRole('heading', { name: 'What it is worth' })).closest('li');
+    const text = story?.textContent.replaceAll('\u00a0', ' ') ?? '';
+    expect(text).toContain('+5.9 bu/ac');
+    expect(text).toContain('+$32/ac');
+    expect(text).toContain('costs $12/ac more than Brindle');
+    expect(text).toContain('on 296.5 ac');
+    expect(text).toContain('At $7.89/bu');
+    expect(text).not.toMatch(/t\/ha|\$\d+\/t\b|\/ha|hectare|tonne/);
+  });
+
+  it('keeps what is typed when it is turned to the table and back', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    const user = userEvent.setup();
+    const panel = within(await money());
+    const middle = panel.getByLabelText('Middle');
+    await user.clear(middle);
+    await user.type(middle, '300');
+    await user.click(screen.getByRole('button', { name: 'Table view' }));
+    // 0.4 × (300 − 12 − 8) − 30 = 82
+    expect(screen.getByText('+$82/ha at $300/t')).toBeTruthy();
+    expect(screen.getByText(/numbers that are not saved yet/)).toBeTruthy();
+    await user.click(screen.getByRole('button', { name: 'Back to the full page' }));
+    expect(within(await money()).getByLabelText('Middle')).toHaveProperty('value', '300');
   });
 });
 
