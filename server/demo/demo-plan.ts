@@ -21,7 +21,10 @@ export type PlannedTrial = {
   crop: CropSlug;
   site: string;
   season: number;
+  /** Tells the trials of a site and season apart; what is drawn for a trial hangs on it. */
   name: string;
+  /** As shown, in both languages. */
+  title: string;
   kind: 'plots' | 'summary';
   layout: Layout;
   incident: Incident | null;
@@ -95,7 +98,8 @@ export function planDemo(): PlannedTrial[] {
       crop: crop.slug,
       site,
       season,
-      name: 'Variety trial / Essai variétal',
+      name: 'Variety trial',
+      title: 'Variety trial / Essai variétal',
       kind,
       layout: { ...habit, ...chooseEntries(crop, season, habit.design, `${crop.slug} ${site} ${season}`) },
       incident,
@@ -161,7 +165,8 @@ function planStrips(): PlannedTrial[] {
     crop,
     site,
     season,
-    name: 'On-farm strips / Bandes à la ferme',
+    name: 'On-farm strips',
+    title: 'On-farm strips / Bandes à la ferme',
     layout: { design: 'strips', entries: [current, candidate], reps: 6 },
   }));
 }
@@ -181,7 +186,8 @@ function planSplitPlots(): PlannedTrial[] {
       crop,
       site,
       season,
-      name: 'Fungicide × variety / Fongicide × variété',
+      name: 'Fungicide × variety',
+      title: 'Fungicide × variety / Fongicide × variété',
       layout: { design: 'split-plot', entries, reps: 4, mainLevels: ['untreated', 'treated'] },
       fungicide: true,
     };
@@ -203,7 +209,8 @@ function planOpenTrials(): PlannedTrial[] {
       crop: cropSlug,
       site,
       season: 2026,
-      name: 'Late sowing / Semis tardif',
+      name: 'Late sowing',
+      title: 'Late sowing / Semis tardif',
       layout: { design: 'rcbd', reps: 4, ...chooseEntries(crop, 2026, 'rcbd', `late ${cropSlug}`) },
       incident,
       state,

@@ -138,7 +138,7 @@ function writeContent(planned: PlannedTrial, crop: DemoCrop, grown: readonly Plo
     cropSlug: planned.crop,
     siteSlug: planned.site,
     season: planned.season,
-    name: planned.name,
+    name: planned.title,
     design: planned.layout.design,
     kind: planned.kind,
     alpha: 0.05,

@@ -1,7 +1,9 @@
 import { eq, inArray, sql } from 'drizzle-orm';
 import { users } from '#drizzle/schema/accounts.ts';
+import { usualVariances } from '#drizzle/schema/usual-variances.ts';
 import type { Language, Role } from '#shared/account.ts';
 import type { Database } from '#server/db.ts';
+import { estimateCropVariances } from '#server/usual-variances/estimate-crop.ts';
 import { listOwnWeighUps } from '#server/weigh-up/weigh-up-store.ts';
 import { demoAccounts } from './demo-accounts.ts';
 import type { DemoPriceSheet } from './demo-prices.ts';
@@ -44,8 +46,23 @@ export async function seedDemo(db: Database): Promise<SeededDemo> {
     await storeDemoTrials(tx, trials, ids);
     return true;
   });
+  await learnUsualVariances(db, ids);
   const accounts = await findDemoAccounts(db);
   return { isFresh, accounts, growerPath: await giveAdvisorWeighUp(db, priceSheets, ids) };
+}
+
+/**
+ * What an organisation does as soon as it has trials enough: its own usual variances in place of the crops' defaults.
+ * Only in a demo whose trials stand and for which nobody has asked yet.
+ */
+async function learnUsualVariances(db: Database, ids: CatalogueIds): Promise<void> {
+  const [agronomist] = await db
+    .select({ id: users.id })
+    .from(users)
+    .where(eq(users.id, ids.accounts.agronomist));
+  const known = await db.select({ id: usualVariances.id }).from(usualVariances).limit(1);
+  if (agronomist === undefined || known.length > 0) return;
+  for (const cropId of ids.crops.values()) await estimateCropVariances(db, cropId, agronomist.id);
 }
 
 /** After the trials, not with them: so a start that was killed in between is made good by the next. */

@@ -72,7 +72,8 @@ describe.each(cropSlugs)('%s', (cropSlug) => {
       // One season on one field is never surer than the region's average over seasons.
       const own = gap.ownSeason;
       expect((own?.se ?? 0) > gap.se).toBe(true);
-      expect(Math.abs(gap.shrunken ?? 0)).toBeLessThan(Math.abs(gap.estimate) + 0.5 * gap.se);
+      // Both sides are pulled, each by what is known of it, so a small gap may open a little.
+      expect(Math.abs(gap.shrunken ?? 0)).toBeLessThan(Math.abs(gap.estimate) + gap.se);
     }
     for (const { code, values } of [
       ...result.cautions,
