@@ -4,6 +4,7 @@ import type { CopyPageFiles } from '#src/features/grower-copy/render-copy-page.t
 
 /** Sources of what the page fetches: Vite serves them as they are in development, and builds them for production. */
 const sources = {
+  icon: 'src/gavelrow.svg',
   style: 'src/features/grower-copy/copy-page.css',
   script: 'src/features/grower-copy/start-copy-page.tsx',
   fonts: [400, 700].map(
@@ -19,6 +20,7 @@ const sources = {
 export function findCopyPageFiles(clientFolder: string | null): CopyPageFiles {
   const addressOf = clientFolder === null ? (source: string) => `/${source}` : readManifest(clientFolder);
   return {
+    icon: addressOf(sources.icon),
     style: addressOf(sources.style),
     script: addressOf(sources.script),
     fonts: sources.fonts.map(addressOf),
@@ -26,11 +28,15 @@ export function findCopyPageFiles(clientFolder: string | null): CopyPageFiles {
 }
 
 function readManifest(clientFolder: string): (source: string) => string {
-  const path = join(clientFolder, '.vite', 'copy-manifest.json');
-  const manifest = JSON.parse(readFileSync(path, 'utf8')) as Record<string, { file: string } | undefined>;
+  // The icon is the application's; the rest is built for the copy.
+  const manifests = ['copy-manifest.json', 'manifest.json'].map(
+    (name) =>
+      JSON.parse(readFileSync(join(clientFolder, '.vite', name), 'utf8')) as Record<string, { file: string }>,
+  );
   return (source) => {
-    const built = manifest[source];
-    if (built === undefined) throw new Error(`${path} does not say what ${source} became`);
+    const built = manifests.map((manifest) => manifest[source]).find((found) => found !== undefined);
+    if (built === undefined)
+      throw new Error(`the build in ${clientFolder} does not say what ${source} became`);
     return `/${built.file}`;
   };
 }

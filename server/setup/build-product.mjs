@@ -62,6 +62,7 @@ export function buildServer(projectRoot) {
         target: 'node20',
         // The page of a grower copy is rendered here, by the client's own components.
         jsx: 'automatic',
+        plugins: [lightSentences(projectRoot)],
         sourcemap: true,
         logLevel: 'silent',
       });
@@ -73,6 +74,24 @@ export function buildServer(projectRoot) {
       await stop();
     }
   });
+}
+
+/**
+ * Gives the client's components here the stand-in for the translation libraries that the script of the grower copy has,
+ * as vite.config.ts does there: a page is rendered in half the time, and the script finds it as it would make it.
+ */
+function lightSentences(projectRoot) {
+  const client = join(projectRoot, 'src');
+  const stands = { i18next: 'light-i18next.ts', 'react-i18next': 'light-react-i18next.tsx' };
+  return {
+    name: 'light-sentences',
+    setup: ({ onResolve }) =>
+      onResolve({ filter: /^(react-)?i18next$/ }, ({ path, importer }) =>
+        importer.startsWith(client)
+          ? { path: join(client, 'features/grower-copy', stands[path]) }
+          : undefined,
+      ),
+  };
 }
 
 /** Two starts at once build once: the second finds the first one's mark. */

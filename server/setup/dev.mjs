@@ -10,7 +10,9 @@ async function develop(port) {
   const apiPort = String(process.env.API_PORT ?? port + 1);
   const { environment, sayWhere } = await prepareServing(port);
   const env = { ...environment, API_PORT: apiPort };
-  runBeside(['node_modules/tsx/dist/cli.mjs', 'watch', 'server/setup/dev-server.ts'], {
+  // The client's settings, for its components that render the page of a copy; the server's own files need none.
+  const watch = ['node_modules/tsx/dist/cli.mjs', 'watch', '--tsconfig', 'tsconfig.client.json'];
+  runBeside([...watch, 'server/setup/dev-server.ts'], {
     ...env,
     PORT: apiPort,
   });

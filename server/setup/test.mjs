@@ -45,7 +45,7 @@ async function runTests() {
   await run.check('Dead code', bin('knip'), ['--no-progress']);
   await runStep('Client', async (tell) => tell((await buildClient(projectRoot)) ? 'built' : 'up to date'));
   await runStep('Server', async (tell) => tell((await buildServer(projectRoot)) ? 'built' : 'up to date'));
-  await run.check('Size of the first page', process.execPath, ['server/setup/check-first-page-size.mjs']);
+  await run.check('Size of the first pages', process.execPath, ['server/setup/check-first-page-size.mjs']);
   await run.test('API on PostgreSQL', ['api']);
   await run.test('End to end in Chromium', ['e2e']);
   return run.finish(secondsSoFar());

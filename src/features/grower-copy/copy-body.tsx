@@ -106,7 +106,7 @@ function WeighedCopy({ copy, answerHtml }: { copy: OpenedCopy; answerHtml: strin
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
       <OtherTraits candidates={result.candidates} traits={traits} currentName={weighUp.currentVarietyName} />
       <details>
-        <summary className="tap-target flex items-center text-lg font-bold">{t('copy:howTitle')}</summary>
+        <summary className="tap-target py-2.5 text-lg font-bold">{t('copy:howTitle')}</summary>
         <div className="mt-2 flex flex-col gap-5">
           <MethodNotes result={result} />
           <EvidenceTrials result={result} isStill />

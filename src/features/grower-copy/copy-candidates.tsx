@@ -120,7 +120,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
         <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
       </div>
       <details className="mt-2">
-        <summary className="tap-target flex items-center gap-2 font-semibold text-action">
+        <summary className="tap-target py-2.5 font-semibold text-action">
           {t('copy:inFull', { name: candidate.varietyName })}
         </summary>
         <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4">

@@ -9,6 +9,7 @@ import { useLanguage } from '#src/components/use-language.ts';
 /** Addresses of what the page fetches, all from our own origin. */
 export type CopyPageFiles = {
   style: string;
+  icon: string;
   script: string;
   /** Of the weights in the first screen. */
   fonts: readonly string[];
@@ -36,6 +37,7 @@ export function CopyDocument({ title, files, data, dataId, children }: CopyDocum
         <meta name="theme-color" content="#faf6ec" media="(prefers-color-scheme: light)" />
         <meta name="theme-color" content="#1b1d18" media="(prefers-color-scheme: dark)" />
         <title>{t('common:pageTitle', { page: title })}</title>
+        <link rel="icon" href={files.icon} type="image/svg+xml" />
         <link rel="stylesheet" href={files.style} />
         {files.fonts.map((font) => (
           <link key={font} rel="preload" href={font} as="font" type="font/woff2" crossOrigin="anonymous" />

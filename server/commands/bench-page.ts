@@ -1,0 +1,144 @@
+import { fileURLToPath, pathToFileURL } from 'node:url';
+import { chromium, type APIRequestContext, type Browser } from 'playwright-core';
+import { connectDatabase } from '#server/db.ts';
+import { demoAccounts } from '#server/demo/demo-accounts.ts';
+import { seedDemo } from '#server/demo/seed-demo.ts';
+import type * as sourceOfServer from '#server/main.ts';
+import { migrateDatabase } from '#server/migrate-database.ts';
+import { buildClient, buildServer } from '#server/setup/build-product.mjs';
+import { findChromium } from '#server/setup/chromium-program.mjs';
+import { openTestCluster } from '#server/setup/test-cluster.mjs';
+import { openPhone, visitPage, type PageVisit } from './bench/page-visit.ts';
+
+// How soon the verdict is seen on a phone with a slow line, from the built product with the demo: medians of visits.
+
+const visits = Number(process.argv[2] ?? 5);
+const projectRoot = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, '');
+
+/** What the built server gives is what its source does. */
+type BuiltServer = Pick<typeof sourceOfServer, 'readSettings' | 'startServer'>;
+
+type Row = { page: string; targetMs: number; measured: PageVisit[] };
+
+/** A server of the built product on a database of its own, which goes with it. */
+async function startBuilt(): Promise<{ url: string; close: () => Promise<void> }> {
+  await buildClient(projectRoot);
+  await buildServer(projectRoot);
+  const cluster = await openTestCluster(projectRoot);
+  await migrateDatabase(cluster.url, `${projectRoot}/drizzle/migrations`);
+  const { db, close } = connectDatabase(cluster.url, () => undefined);
+  await seedDemo(db);
+  await close();
+  // As `npm start` does: what is measured is what is shipped.
+  process.env['NODE_ENV'] = 'production';
+  const built = pathToFileURL(`${projectRoot}/dist/server/main.js`).href;
+  const { readSettings, startServer } = (await import(built)) as BuiltServer;
+  const environment = {
+    DATABASE_URL: cluster.url,
+    PORT: '0',
+    SESSION_SECRET: 'a secret of no worth, for a bench alone',
+    LOG_LEVEL: 'error',
+  };
+  const server = await startServer(readSettings(environment, `${projectRoot}/dist/client`));
+  return {
+    url: server.url,
+    close: async () => {
+      await server.close();
+      cluster.close();
+    },
+  };
+}
+
+/** A weigh-up of four candidates, and a copy of it; their addresses. */
+async function prepareQuestion(request: APIRequestContext): Promise<{ weighUp: string; copy: string }> {
+  await signIn(request);
+  const [first] = (await readJson<{ weighUps: { id: string }[] }>(await request.get('/api/weigh-ups')))
+    .weighUps;
+  const { weighUp } = await readJson<{ weighUp: { candidateIds: string[] } }>(
+    await request.get(`/api/weigh-ups/${first?.id ?? ''}`),
+  );
+  const asked = { ...weighUp, candidateIds: weighUp.candidateIds.slice(0, 4) };
+  const made = await readJson<{ weighUp: { id: string } }>(
+    await request.post('/api/weigh-ups', { data: asked }),
+  );
+  const path = `/api/weigh-ups/${made.weighUp.id}/grower-copies`;
+  const copy = await readJson<{ path: string }>(await request.post(path, { data: { language: 'en' } }));
+  return { weighUp: `/weigh-ups/${made.weighUp.id}`, copy: copy.path };
+}
+
+async function signIn(request: APIRequestContext): Promise<void> {
+  const { email, password } = demoAccounts.advisor;
+  await readJson(await request.post('/api/session', { data: { email, password } }));
+}
+
+async function readJson<T>(reply: Awaited<ReturnType<APIRequestContext['get']>>): Promise<T> {
+  if (!reply.ok()) throw new Error(`${reply.url()} answered ${reply.status()}: ${await reply.text()}`);
+  // What the product's own contract promises.
+  return (await reply.json()) as T;
+}
+
+/** Each visit pair by a phone of its own: first with an empty cache, then with what the first one left in it. */
+async function visitTwice(
+  browser: Browser,
+  url: string,
+  path: string,
+  isSignedIn: boolean,
+): Promise<{ cold: PageVisit[]; warm: PageVisit[] }> {
+  const [cold, warm]: [PageVisit[], PageVisit[]] = [[], []];
+  for (let visit = 0; visit < visits; visit += 1) {
+    const phone = await openPhone(browser, url);
+    if (isSignedIn) await signIn(phone.request);
+    cold.push(await visitPage(phone, path));
+    warm.push(await visitPage(phone, path));
+    await phone.close();
+  }
+  return { cold, warm };
+}
+
+const median = (values: readonly number[]): number =>
+  [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)] ?? NaN;
+
+function describeRow({ page, targetMs, measured }: Row): string {
+  const times = measured.map(({ verdictMs }) => verdictMs);
+  const ms = median(times);
+  const cells = [
+    page,
+    (ms / 1000).toFixed(2),
+    `${(Math.min(...times) / 1000).toFixed(2)}–${(Math.max(...times) / 1000).toFixed(2)}`,
+    (median(measured.map(({ bytes }) => bytes)) / 1000).toFixed(0),
+    String(median(measured.map(({ requests }) => requests))),
+    (targetMs / 1000).toFixed(1),
+    ms < targetMs ? 'yes' : 'NO',
+  ];
+  return `| ${cells.join(' | ')} |`;
+}
+
+const executablePath = findChromium();
+if (executablePath === null) throw new Error('Chromium was not found; npm test installs it.');
+const server = await startBuilt();
+const browser = await chromium.launch({ executablePath, args: ['--no-sandbox', '--disable-gpu'] });
+try {
+  const office = await openPhone(browser, server.url);
+  const { weighUp, copy } = await prepareQuestion(office.request);
+  await office.close();
+  const ofCopy = await visitTwice(browser, server.url, copy, false);
+  const ofWeighUp = await visitTwice(browser, server.url, weighUp, true);
+  const rows: Row[] = [
+    { page: 'grower copy, first visit', targetMs: 1200, measured: ofCopy.cold },
+    { page: 'grower copy, again', targetMs: 1200, measured: ofCopy.warm },
+    { page: 'weigh-up, first visit', targetMs: 3000, measured: ofWeighUp.cold },
+    { page: 'weigh-up, again', targetMs: 1000, measured: ofWeighUp.warm },
+  ];
+  console.log(`Verdict in view: median of ${visits} visits at 400 ms, 400 kB/s, processor ÷ 4.\n`);
+  console.log('| page | s | least–most | kB | requests | under | met |');
+  console.log('|---|---|---|---|---|---|---|');
+  for (const row of rows) console.log(describeRow(row));
+  process.exitCode = rows.every(
+    ({ measured, targetMs }) => median(measured.map((v) => v.verdictMs)) < targetMs,
+  )
+    ? 0
+    : 1;
+} finally {
+  await browser.close();
+  await server.close();
+}
