@@ -43,6 +43,9 @@ type Part<C extends Contract, Name extends 'params' | 'query' | 'body'> =
 
 export type ReplyOf<C extends Contract> = z.output<C['reply']>;
 
+/** How a request is sent: `keepalive` lets it arrive though its page is closed meanwhile, up to 64 kB. */
+export type CallOptions = Pick<RequestInit, 'keepalive'>;
+
 /** Asks the person to sign in again; true once they have. */
 export type SignInAgain = () => Promise<boolean>;
 
@@ -62,8 +65,9 @@ export async function callApi<C extends Contract>(
   contract: C,
   input: CallInput<C>,
   signal?: AbortSignal,
+  options: CallOptions = {},
 ): Promise<ReplyOf<C>> {
-  const response = await sendOrSignInAgain(contract, input, signal);
+  const response = await sendOrSignInAgain(contract, input, signal, options);
   const reply: unknown = await response.json().catch(() => undefined);
   const parsed = contract.reply.safeParse(reply);
   if (!parsed.success) throw new ApiError('unreadable-reply', response.status, { cause: parsed.error });
@@ -99,13 +103,14 @@ async function sendOrSignInAgain(
   contract: Contract,
   input: SentInput,
   signal: AbortSignal | undefined,
+  options: CallOptions,
 ): Promise<Response> {
   try {
-    return await send(contract, input, signal);
+    return await send(contract, input, signal, options);
   } catch (error) {
     const isExpired = error instanceof ApiError && error.code === 'not-signed-in';
     if (!isExpired || !(await signInAgain())) throw error;
-    return send(contract, input, signal);
+    return send(contract, input, signal, options);
   }
 }
 
@@ -113,6 +118,7 @@ async function send(
   contract: Contract,
   input: SentInput,
   signal: AbortSignal | undefined,
+  options: CallOptions,
 ): Promise<Response> {
   let response: Response;
   try {
@@ -120,6 +126,7 @@ async function send(
       method: contract.method,
       credentials: 'same-origin',
       signal: signal ?? null,
+      ...options,
       ...encodeBody(contract, input),
     });
   } catch (error) {

@@ -1,6 +1,7 @@
 import { useCallback } from 'react';
 import { useTranslation } from 'react-i18next';
 import type { Variety } from '#shared/catalogue.ts';
+import type { QuestionKind } from '#shared/question-kind.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { useUnitChoice } from '#src/chosen-units.tsx';
 import { UnitSwitch } from '#src/components/unit-switch.tsx';
@@ -12,6 +13,8 @@ import { mostCandidates } from './question-draft.ts';
 
 type CandidatePickerProps = {
   candidates: readonly CandidateResult[];
+  /** A pair is chosen elsewhere, by name alone. */
+  kind: Exclude<QuestionKind, 'pair'>;
   /** In the order in which they will stand. */
   chosenIds: readonly string[];
   currentName: string;
@@ -20,7 +23,13 @@ type CandidatePickerProps = {
 };
 
 /** The candidates with their verdicts already there; those that are kept stand beside the list in their order. */
-export function CandidatePicker({ candidates, chosenIds, currentName, varieties }: CandidatePickerProps) {
+export function CandidatePicker({
+  candidates,
+  kind,
+  chosenIds,
+  currentName,
+  varieties,
+}: CandidatePickerProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
   const patch = useUrlPatch();
@@ -48,7 +57,7 @@ export function CandidatePicker({ candidates, chosenIds, currentName, varieties 
         />
         <p className="max-w-prose text-sm text-faded">
           {level !== undefined && `${t('new.intervalNote', { level: format.percent(level * 100) })} `}
-          {t('new.listNote')}
+          {t(`new.listNote.${kind}`)}
         </p>
         <UnitSwitch onChoose={chooseUnit} />
       </div>

@@ -1,6 +1,7 @@
 import { useEffect, useRef, useState } from 'react';
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useFormState, useWatch, type UseFormReturn } from 'react-hook-form';
+import { useTranslation } from 'react-i18next';
 import { useSearchParams } from 'react-router-dom';
 import {
   createDraft,
@@ -9,7 +10,9 @@ import {
   type DraftContent,
   type WeighUpDraft,
 } from '#shared/weigh-up-draft.ts';
-import { ApiError, callApi } from '#src/api-client.ts';
+import { ApiError, callApi, type CallOptions } from '#src/api-client.ts';
+import { showToast } from '#src/components/toaster.tsx';
+import { useErrorText } from '#src/use-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { NewWeighUpDraft, NewWeighUpForm } from './new-weigh-up-form.ts';
 import { draftsQuery } from './weigh-up-queries.ts';
@@ -67,7 +70,8 @@ export type DraftSaving = {
 };
 
 /**
- * Keeps what is typed as a draft on the server, a second after the last edit, once there is something typed.
+ * Keeps what is typed as a draft on the server, a second after the last edit or when the page is left, once there is
+ * something typed.
  * @param opened the draft that the page was opened with
  */
 export function useDraftSaving(
@@ -77,8 +81,12 @@ export function useDraftSaving(
   const [search] = useSearchParams();
   const patch = useUrlPatch();
   const client = useQueryClient();
+  const { t } = useTranslation('record');
+  const errorText = useErrorText();
+  const refreshList = () => client.invalidateQueries({ queryKey: draftsQuery.queryKey });
   const held = useRef<WeighUpDraft | null>(opened ?? null);
-  const underWay = useRef<Promise<unknown> | null>(null);
+  const underWay = useRef<Promise<unknown>>(Promise.resolve());
+  const leave = useRef(() => {});
   const [isStopped, setIsStopped] = useState(false);
   const typed = useWatch({ control: form.control });
   const { isDirty, dirtyFields } = useFormState({ control: form.control });
@@ -93,6 +101,18 @@ export function useDraftSaving(
     priceHigh: dirtyFields.priceHigh ? figureOf(typed.priceHigh) : null,
   };
   const text = JSON.stringify(content);
+  // One at a time: the revision of one saving is what the next is made over.
+  const write = (written: string): Promise<string> => {
+    const writing = underWay.current
+      .catch(() => undefined)
+      .then(() => keep(held.current, draftContent.parse(JSON.parse(written))))
+      .then((draft) => {
+        held.current = draft;
+        return draft.id;
+      });
+    underWay.current = writing;
+    return writing;
+  };
   const [saved, setSaved] = useState(opened && { id: opened.id, text: JSON.stringify(opened.content) });
   const {
     mutate,
@@ -100,19 +120,14 @@ export function useDraftSaving(
     isPending,
     variables: tried,
   } = useMutation({
-    mutationFn: async (written: string) => {
-      const writing = keep(held.current, draftContent.parse(JSON.parse(written)));
-      underWay.current = writing;
-      held.current = await writing;
-      return held.current.id;
-    },
-    onSuccess: () => client.invalidateQueries({ queryKey: draftsQuery.queryKey }),
+    mutationFn: write,
+    onSuccess: refreshList,
   });
-  const isWorthKeeping = isDirty || saved !== undefined;
+  const isUnsaved = !isStopped && (isDirty || saved !== undefined) && text !== saved?.text;
   useEffect(() => {
-    // One at a time: the revision of one saving is what the next is made over. What was refused waits for the next edit.
-    const mayTry = !isStopped && !isPending && (error === null || text !== tried);
-    if (!mayTry || !isWorthKeeping || text === saved?.text) return undefined;
+    // What was refused waits for the next edit.
+    const mayTry = !isPending && (error === null || text !== tried);
+    if (!mayTry || !isUnsaved) return undefined;
     const save = () =>
       mutate(text, {
         // Not told any more once the page is left, whose address it would change.
@@ -122,16 +137,32 @@ export function useDraftSaving(
         },
       });
     const timer = setTimeout(save, pause);
-    return () => clearTimeout(timer);
-  }, [isStopped, isPending, error, tried, isWorthKeeping, text, saved, mutate, patch]);
+    // A page that goes out of sight may never be seen again: closed, or put away on a phone.
+    const saveOutOfSight = () => document.visibilityState === 'hidden' && save();
+    document.addEventListener('visibilitychange', saveOutOfSight);
+    return () => {
+      clearTimeout(timer);
+      document.removeEventListener('visibilitychange', saveOutOfSight);
+    };
+  }, [isPending, error, tried, isUnsaved, text, mutate, patch]);
+  useEffect(() => {
+    leave.current = () => {
+      if (!isUnsaved || (isPending && text === tried)) return;
+      write(text).then(refreshList, (reason) => showToast(t('drafts.failed', { reason: errorText(reason) })));
+    };
+  });
+  // For another page of the product there is no second to wait.
+  useEffect(() => () => leave.current(), []);
   const stop = async () => {
     setIsStopped(true);
-    await underWay.current?.catch(() => undefined);
+    await underWay.current.catch(() => undefined);
     return held.current?.id ?? null;
   };
   const goOn = () => setIsStopped(false);
   return { draftId: saved?.id ?? null, isKept: text === saved?.text, error, stop, goOn };
 }
+
+const lasting: CallOptions = { keepalive: true };
 
 /**
  * Writes on the draft held, or begins one where there is none. One that was written on, deleted or weighed in another
@@ -141,12 +172,14 @@ async function keep(held: WeighUpDraft | null, content: DraftContent): Promise<W
   if (held !== null) {
     const { id: draftId, revision } = held;
     try {
-      return (await callApi(saveDraft, { params: { draftId }, body: { revision, content } })).draft;
+      return (
+        await callApi(saveDraft, { params: { draftId }, body: { revision, content } }, undefined, lasting)
+      ).draft;
     } catch (error) {
       if (!(error instanceof ApiError) || !movedElsewhere.has(error.code)) throw error;
     }
   }
-  return (await callApi(createDraft, { body: { content } })).draft;
+  return (await callApi(createDraft, { body: { content } }, undefined, lasting)).draft;
 }
 
 const movedElsewhere: ReadonlySet<ApiError['code']> = new Set(['revision-conflict', 'not-found'] as const);

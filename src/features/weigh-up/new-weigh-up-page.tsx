@@ -4,6 +4,7 @@ import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { useForm, type UseFormReturn } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
 import { useNavigate, useSearchParams } from 'react-router-dom';
+import type { Crop } from '#shared/catalogue.ts';
 import type { CautionCode } from '#shared/caution.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { storedUnits } from '#shared/reader-units.ts';
@@ -18,6 +19,7 @@ import { ErrorState } from '#src/components/error-state.tsx';
 import { NoVerdict } from '#src/components/no-verdict.tsx';
 import { PageHeading } from '#src/components/page-heading.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
+import { useLanguage } from '#src/components/use-language.ts';
 import { WeighingProgress } from '#src/components/weighing-progress.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
@@ -33,7 +35,13 @@ import {
   type NewWeighUpForm,
 } from './new-weigh-up-form.ts';
 import { PairCandidateField } from './pair-candidate-field.tsx';
-import { lacksTrials, readQuestion, toCandidateQuestion, type QuestionDraft } from './question-draft.ts';
+import {
+  lacksTrials,
+  partByStanding,
+  readQuestion,
+  toCandidateQuestion,
+  type QuestionDraft,
+} from './question-draft.ts';
 import { QuestionFields } from './question-fields.tsx';
 import { candidatesQuery, draftsQuery, weighUpsQuery, type CandidateQuestion } from './weigh-up-queries.ts';
 
@@ -155,7 +163,8 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
     return <NoVerdict crop={crop.name} region={region.name} from={draft.seasonFrom} to={draft.seasonTo} />;
   }
   const currentName = crop?.varieties.find(({ id }) => id === draft.currentVarietyId)?.name ?? '';
-  const isChosen = draft.candidateIds.length > 0;
+  const { standingIds, goneIds } = partByStanding(draft.candidateIds, result.candidates);
+  const isChosen = standingIds.length > 0;
   return (
     <form
       noValidate
@@ -163,7 +172,9 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
       onSubmit={(event) =>
         void form.handleSubmit((typed) => {
           if (!isChosen) return;
-          creation.mutate(toWeighUpInput(typed, question, draft, defaults));
+          creation.mutate(
+            toWeighUpInput(typed, question, { kind: draft.kind, candidateIds: standingIds }, defaults),
+          );
         })(event)
       }
     >
@@ -178,15 +189,18 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
         {result.candidates.length === 0 ? (
           <p>{t('new.noCandidates')}</p>
         ) : draft.kind === 'pair' ? (
-          <PairCandidateField candidates={result.candidates} chosenId={draft.candidateIds[0]} />
+          <PairCandidateField candidates={result.candidates} chosenId={standingIds[0]} />
         ) : (
           <CandidatePicker
             candidates={result.candidates}
-            chosenIds={draft.candidateIds}
+            kind={draft.kind}
+            chosenIds={standingIds}
             currentName={currentName}
             varieties={crop?.varieties ?? []}
           />
         )}
+        {/* Of the question before, the list says nothing about this one's. */}
+        {!candidates.isPlaceholderData && <GoneCandidates goneIds={goneIds} crop={crop} />}
         {form.formState.isSubmitted && !isChosen && (
           <p role="alert" className="font-semibold text-stop">
             {t('new.chooseOne')}
@@ -197,10 +211,28 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
       <PriceFields form={form} defaults={defaults} />
       {creation.isError && <ErrorState message={errorText(creation.error)} />}
       <DraftState kept={kept} />
-      <Button type="submit" tone="main" isBusy={creation.isPending} className="self-start">
+      <Button
+        type="submit"
+        tone="main"
+        isBusy={creation.isPending || candidates.isPlaceholderData}
+        className="self-start"
+      >
         {creation.isPending ? t('new.creating') : t('new.create')}
       </Button>
     </form>
+  );
+}
+
+/** Who was kept and is not weighed after all, by name: the address may be older than the trials. */
+function GoneCandidates({ goneIds, crop }: { goneIds: readonly string[]; crop: Crop | undefined }) {
+  const { t } = useTranslation('weigh-up');
+  const language = useLanguage();
+  if (goneIds.length === 0) return null;
+  const names = goneIds.flatMap((id) => crop?.varieties.find((variety) => variety.id === id)?.name ?? []);
+  return (
+    <p role="status" className="max-w-prose rounded-lg bg-warning px-4 py-3">
+      {t('new.gone', { count: goneIds.length, names: new Intl.ListFormat(language).format(names) })}
+    </p>
   );
 }
 

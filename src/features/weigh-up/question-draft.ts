@@ -1,5 +1,6 @@
 import type { Crop, Region } from '#shared/catalogue.ts';
 import { isPairOfOne, questionKinds, type QuestionKind } from '#shared/question-kind.ts';
+import type { CandidateResult } from '#shared/weigh-up.ts';
 import type { Catalogue } from '#src/catalogue-query.ts';
 import { readChoice } from '#src/url-state.ts';
 import {
@@ -63,6 +64,21 @@ export function readQuestion(search: URLSearchParams, catalogue: Catalogue): Que
     candidateIds: isPairOfOne({ question: kind, candidateIds }) ? candidateIds : [],
     farm,
     trials: trials === 'nearest' && farm === null ? 'region' : trials,
+  };
+}
+
+/**
+ * Parts the candidates that the address names into those that stood in the trials that answer, and those that did not:
+ * a trial withdrawn or a span narrowed since must not leave one chosen that nobody sees.
+ */
+export function partByStanding(
+  candidateIds: readonly string[],
+  candidates: readonly Pick<CandidateResult, 'varietyId'>[],
+): { standingIds: string[]; goneIds: string[] } {
+  const stood = new Set(candidates.map(({ varietyId }) => varietyId));
+  return {
+    standingIds: candidateIds.filter((id) => stood.has(id)),
+    goneIds: candidateIds.filter((id) => !stood.has(id)),
   };
 }
 

@@ -1,9 +1,10 @@
-import { screen, within } from '@testing-library/react';
+import { cleanup, screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useLocation, useSearchParams } from 'react-router-dom';
 import { describe, expect, it } from 'vitest';
 import type { Caution } from '#shared/caution.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
+import { readChoice } from '#src/url-state.ts';
 import { CandidatePicker } from '#src/features/weigh-up/candidate-picker.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 import { buildCandidate, buildGap, idOf } from '#tests/client/support/weigh-up-factory.ts';
@@ -48,6 +49,7 @@ function Page({ candidates }: { candidates: readonly CandidateResult[] }) {
     <>
       <CandidatePicker
         candidates={candidates}
+        kind={readChoice(search, 'question', ['several', 'best'])}
         chosenIds={chosenIds}
         currentName="Brindle"
         varieties={varieties}
@@ -79,6 +81,17 @@ describe('the list of candidates', () => {
     expect(row.textContent.replaceAll('\u00a0', ' ')).toContain('+0.40 t/ha+0.20 to +0.60 t/ha');
     expect(screen.getByRole('row', { name: /Élan/ }).textContent).not.toContain(' to ');
     expect(screen.getByText(/Under each gap stands its 95% interval/)).toBeTruthy();
+  });
+
+  it('says over what the next page compares: the best of the list over the whole of it', async () => {
+    await show();
+    expect(
+      screen.getByText(/The verdicts on the next page are for the candidates that you keep/),
+    ).toBeTruthy();
+    cleanup();
+    await show('/?question=best');
+    expect(screen.getByText(/On the next page, too, yield is compared over this whole list/)).toBeTruthy();
+    expect(screen.queryByText(/verdicts on the next page/)).toBeNull();
   });
 
   it('is sorted by every column from the keyboard, both ways, what has no figure last', async () => {

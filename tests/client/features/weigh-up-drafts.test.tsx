@@ -1,5 +1,5 @@
 import { zodResolver } from '@hookform/resolvers/zod';
-import { screen, waitFor } from '@testing-library/react';
+import { act, screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useState, type ReactNode } from 'react';
 import { useForm } from 'react-hook-form';
@@ -152,6 +152,72 @@ describe('a draft', () => {
     expect(asked).toEqual([]);
     await user.click(screen.getByRole('button', { name: 'go on' }));
     await waitFor(() => expect(asked).toHaveLength(1));
+  });
+
+  it('is kept at once when the page is left, with the last edit, and only once', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    const { unmount } = await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    unmount();
+    await waitFor(() => expect(asked).toHaveLength(1));
+    expect(asked[0]).toMatchObject(['POST', '/api/weigh-up-drafts', { content: { growerName: 'Ada' } }]);
+    await new Promise((resolve) => setTimeout(resolve, 1500));
+    expect(asked).toHaveLength(1);
+  });
+
+  it('that is being saved when the page is left is written on by the last edit, not begun twice', async () => {
+    const asked: Asked[] = [];
+    let answer = () => {};
+    const begun = new Promise<void>((resolve) => (answer = resolve));
+    vi.stubGlobal('fetch', async (path: string, init: RequestInit = {}) => {
+      if (init.method === undefined || init.method === 'GET') return Response.json({ drafts: [] });
+      asked.push([init.method, path, JSON.parse(String(init.body))]);
+      if (init.method === 'POST') await begun;
+      return Response.json({ draft });
+    });
+    const user = userEvent.setup();
+    const { unmount } = await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    await waitFor(() => expect(asked).toHaveLength(1));
+    await user.click(screen.getByLabelText('Farm'));
+    await user.paste('Low Field');
+    unmount();
+    answer();
+    await waitFor(() => expect(asked).toHaveLength(2));
+    expect(asked[1]).toMatchObject([
+      'PUT',
+      `/api/weigh-up-drafts/${draft.id}`,
+      { revision: 1, content: { growerName: 'Ada', farmName: 'Low Field' } },
+    ]);
+  });
+
+  it('is not kept when the page is left untouched, or for the weigh-up that it became', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    (await render(<Typing opened={{ ...draft, content: { ...content, question: 'crop=pea' } }} />)).unmount();
+    const { unmount } = await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    await user.click(screen.getByRole('button', { name: 'stop' }));
+    await waitFor(() => expect(screen.getByLabelText('stopped at').textContent).toBe('none'));
+    unmount();
+    await new Promise((resolve) => setTimeout(resolve, 100));
+    expect(asked).toEqual([]);
+  });
+
+  it('is kept at once when the page goes out of sight, as a phone puts it away', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    await render(<Typing />);
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    vi.spyOn(document, 'visibilityState', 'get').mockReturnValue('hidden');
+    act(() => void document.dispatchEvent(new Event('visibilitychange')));
+    await vi.waitFor(() => expect(asked).toHaveLength(1), { timeout: 500 });
+    vi.restoreAllMocks();
   });
 
   it('that was written on in another tab is left as it is: what is typed here becomes a draft of its own', async () => {

@@ -2,6 +2,7 @@ import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { Route, Routes } from 'react-router-dom';
 import { afterEach, describe, expect, it, vi } from 'vitest';
+import { onSessionExpired } from '#src/api-client.ts';
 import { paths } from '#src/paths.ts';
 import { WeighUpPage } from '#src/features/weigh-up/weigh-up-page.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -60,7 +61,7 @@ const catalogue = {
 type Asked = { method: string; path: string; body: unknown };
 
 /** Answers like the server and keeps what was asked. */
-function serve(answerToSave: (asked: Asked) => Response, answer: unknown = opened): Asked[] {
+function serve(answerToSave: (asked: Asked) => Response, answer: () => unknown = () => opened): Asked[] {
   const asked: Asked[] = [];
   vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
     const call = { method: init.method ?? 'GET', path, body: JSON.parse(String(init.body ?? 'null')) };
@@ -69,7 +70,7 @@ function serve(answerToSave: (asked: Asked) => Response, answer: unknown = opene
     if (path === '/api/catalogue') return Promise.resolve(Response.json(catalogue));
     if (path.endsWith('/grower-copies'))
       return Promise.resolve(Response.json({ copies: [], isMailSetUp: false }));
-    return Promise.resolve(Response.json(answer));
+    return Promise.resolve(Response.json(answer()));
   });
   return asked;
 }
@@ -138,6 +139,57 @@ describe('the money panel', () => {
     expect(area).toHaveProperty('value', '80');
   });
 
+  it('saves over it only when asked to, on top of what was saved meanwhile', async () => {
+    const theirs = { ...weighUp, revision: weighUp.revision + 3, farmName: 'Sold meanwhile' };
+    const answers = [
+      () => Response.json({ error: { code: 'revision-conflict' } }, { status: 409 }),
+      () => Response.json({ ...opened, weighUp: { ...theirs, areaHectares: 80 } }),
+    ];
+    let latest = opened;
+    const asked = serve(
+      () => answers.shift()?.() ?? Response.error(),
+      () => latest,
+    );
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    await user.clear(panel.getByLabelText('Area'));
+    await user.type(panel.getByLabelText('Area'), '80');
+    latest = { ...opened, weighUp: theirs };
+    await user.click(panel.getByRole('button', { name: 'Save these numbers' }));
+    await user.click(await panel.findByRole('button', { name: 'Save mine over it' }));
+    await waitFor(() => expect(asked.filter(({ method }) => method === 'PUT')).toHaveLength(2));
+    expect(asked.findLast(({ method }) => method === 'PUT')?.body).toMatchObject({
+      revision: theirs.revision,
+      weighUp: { farmName: 'Sold meanwhile', areaHectares: 80 },
+    });
+  });
+
+  it('loses nothing typed when the session has run out, whether one signs in again or not', async () => {
+    const signIn = vi.fn(() => Promise.resolve(false));
+    onSessionExpired(signIn);
+    const asked = serve(() =>
+      signIn.mock.calls.length < 2
+        ? Response.json({ error: { code: 'not-signed-in' } }, { status: 401 })
+        : Response.json({ ...opened, weighUp: { ...weighUp, areaHectares: 80 } }),
+    );
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    await user.clear(panel.getByLabelText('Area'));
+    await user.type(panel.getByLabelText('Area'), '80');
+    await user.click(panel.getByRole('button', { name: 'Save these numbers' }));
+    expect((await panel.findByRole('alert')).textContent).not.toBe('');
+    expect(panel.getByLabelText('Area')).toHaveProperty('value', '80');
+    signIn.mockResolvedValueOnce(true);
+    await user.click(panel.getByRole('button', { name: 'Save these numbers' }));
+    await waitFor(() => expect(panel.queryByRole('button', { name: 'Save these numbers' })).toBeNull());
+    expect(panel.getByLabelText('Area')).toHaveProperty('value', '80');
+    expect(asked.findLast(({ method }) => method === 'PUT')?.body).toMatchObject({
+      weighUp: { areaHectares: 80 },
+    });
+  });
+
   it('makes no copy of numbers that are not saved', async () => {
     serve(() => Response.json(opened));
     await open();
@@ -203,7 +255,10 @@ describe('seed, quality and what they lead to', () => {
   );
 
   it('reckons a premium by how often each variety passes its limit', async () => {
-    serve(() => Response.json(opened), { weighUp: { ...weighUp, usualYield: 3 }, result: withProtein });
+    serve(
+      () => Response.json(opened),
+      () => ({ weighUp: { ...weighUp, usualYield: 3 }, result: withProtein }),
+    );
     await open();
     const panel = within(await money());
     const user = userEvent.setup();
@@ -316,7 +371,10 @@ describe('an answer that no trial of the region stands behind', () => {
       values: { context: 'elsewhere', regions },
     };
     const result = { ...opened.result, cautions: [stop] };
-    serve(() => Response.json(opened), { weighUp, result });
+    serve(
+      () => Response.json(opened),
+      () => ({ weighUp, result }),
+    );
     await open();
     const said = await screen.findByText(/come from other regions alone \(Upper Velmar\)/);
     const verdict = screen.getByText(/is really ahead of Brindle/);
