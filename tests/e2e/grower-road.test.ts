@@ -105,7 +105,7 @@ describe.each(languages)('a grower who reads %s', (language) => {
       await candidateOf(page, 'Quillane').locator('summary').first().click();
       await expectSoundPage(page);
 
-      await page.getByRole('link', { name: /^(bu\/ac|boiss)/ }).click();
+      await page.getByRole('link', { name: /^(bu|bo)\/ac/ }).click();
       await page.waitForURL(/unit=bu-ac/);
       await page.getByText(/^(Your own number|Votre chiffre)\s*:/).waitFor();
       expect(new URL(page.url()).hash).toBe('#price=400.5');
