@@ -53,7 +53,7 @@ export default defineConfig({
           name: 'e2e',
           include: ['tests/e2e/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts', 'tests/support/build-global-setup.ts'],
-          testTimeout: 90_000,
+          testTimeout: 180_000,
           hookTimeout: 120_000,
         },
       },

@@ -4,7 +4,13 @@ import type { Language } from '#shared/account.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
 import { say } from '#tests/support/say.ts';
-import { expectSoundPage, findDemoAccount, openVisit, widths } from '#tests/support/visit.ts';
+import {
+  expectNoSideways,
+  expectSoundPage,
+  findDemoAccount,
+  openVisit,
+  widths,
+} from '#tests/support/visit.ts';
 
 let app: DemoApp;
 let browser: Browser;
@@ -53,7 +59,7 @@ async function askQuestion(page: Page, language: Language): Promise<string[]> {
   );
   const noVerdict = page.getByRole('heading', { name: say(language, 'verdicts:noTrials.title') });
   await noVerdict.waitFor();
-  await expectSoundPage(page);
+  await expectNoSideways(page);
   await chooseByStart(
     say(language, 'weigh-up:new.region'),
     language === 'en' ? 'Upper Velmar' : 'Haut-Velmar',
@@ -97,7 +103,7 @@ async function showAtTable(page: Page, language: Language, names: readonly strin
   await heading(second).waitFor();
   expect(await heading(first).isVisible()).toBe(false);
   await page.getByRole('heading', { name: say(language, 'verdicts:cautionsTitle') }).waitFor();
-  await expectSoundPage(page);
+  await expectNoSideways(page);
   await page.keyboard.press('Escape');
   await heading(say(language, 'weigh-up:copies.title')).waitFor();
 }
@@ -109,7 +115,7 @@ async function readInBushels(page: Page, language: Language): Promise<void> {
   const main = page.getByRole('main');
   expect(await main.textContent()).toMatch(language === 'en' ? /\d\sbu\/ac/ : /\d\sbo\/ac/);
   expect(await main.textContent()).not.toMatch(/\d\st\/ha/);
-  await expectSoundPage(page);
+  await expectNoSideways(page);
   await units.selectOption('t/ha');
 }
 
@@ -141,7 +147,7 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     for (const name of names) await main.getByText(name).first().waitFor();
     expect(await main.textContent()).toMatch(verdictWords(language));
     expect(await main.textContent()).toMatch(language === 'en' ? /t\/ha/ : /\d,\d+\s*t\/ha/);
-    await expectSoundPage(page);
+    await expectNoSideways(page);
     await readInBushels(page, language);
     await showAtTable(page, language, names);
     const link = await handOver(page, language);
