@@ -3,6 +3,7 @@ import { createRoot } from 'react-dom/client';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { BrowserRouter } from 'react-router-dom';
 import { startI18n } from './i18n.ts';
+import { openDetailsOnPaper } from './open-details-on-paper.ts';
 import { makeQueryClient } from './query-client.ts';
 import { AppRoutes } from './routes.tsx';
 import './app.css';
@@ -11,6 +12,7 @@ const root = document.getElementById('root');
 if (!root) throw new Error('index.html has no #root');
 
 await startI18n();
+openDetailsOnPaper();
 
 createRoot(root).render(
   <StrictMode>

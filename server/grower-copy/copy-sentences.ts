@@ -5,12 +5,14 @@ import enCommon from '#locales/en/common.json' with { type: 'json' };
 import enCopy from '#locales/en/copy.json' with { type: 'json' };
 import enDrawings from '#locales/en/drawings.json' with { type: 'json' };
 import enMethod from '#locales/en/method.json' with { type: 'json' };
+import enPrint from '#locales/en/print.json' with { type: 'json' };
 import enVerdicts from '#locales/en/verdicts.json' with { type: 'json' };
 import frCautions from '#locales/fr/cautions.json' with { type: 'json' };
 import frCommon from '#locales/fr/common.json' with { type: 'json' };
 import frCopy from '#locales/fr/copy.json' with { type: 'json' };
 import frDrawings from '#locales/fr/drawings.json' with { type: 'json' };
 import frMethod from '#locales/fr/method.json' with { type: 'json' };
+import frPrint from '#locales/fr/print.json' with { type: 'json' };
 import frVerdicts from '#locales/fr/verdicts.json' with { type: 'json' };
 
 /** The sentences of a copy in both languages, by namespace. */
@@ -24,6 +26,7 @@ export const presentSentences: BilingualSentences = {
     copy: enCopy,
     drawings: enDrawings,
     method: enMethod,
+    print: enPrint,
     verdicts: enVerdicts,
   },
   fr: {
@@ -32,6 +35,7 @@ export const presentSentences: BilingualSentences = {
     copy: frCopy,
     drawings: frDrawings,
     method: frMethod,
+    print: frPrint,
     verdicts: frVerdicts,
   },
 };

@@ -10,9 +10,9 @@ export function CandidateStory({ candidate, unit, decimals, ...ground }: StoryPr
   const { t: say } = useTranslation(['verdicts']);
   const write = useFormat();
   return (
-    <div className="flex max-w-prose flex-col gap-4">
+    <div className="flex max-w-prose flex-col gap-4 print:gap-2">
       {tellStory(candidate, ground, { say, write, unit, decimals }).map(({ title, paragraphs, items }) => (
-        <section key={title} className="flex flex-col gap-1">
+        <section key={title} className="flex flex-col gap-1 print:gap-0">
           <h3>{title}</h3>
           {paragraphs.map((paragraph) => (
             <p key={paragraph}>{paragraph}</p>

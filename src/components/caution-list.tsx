@@ -28,16 +28,16 @@ export function CautionList({ title, items, headingLevel = 2 }: CautionListProps
   return (
     <section
       aria-labelledby={titleId}
-      className="rounded-lg bg-warning px-4 py-4 sm:px-5 print:border print:border-ink print:p-3"
+      className="rounded-lg bg-warning px-4 py-4 sm:px-5 print:border print:border-ink print:p-2"
     >
       <Heading id={titleId} className="mb-2">
         {title}
       </Heading>
-      <ul className="flex flex-col gap-2.5">
+      <ul className="flex flex-col gap-2.5 print:gap-1 print:text-sm">
         {sorted.map((item) => (
           <li key={item.id} className="grid grid-cols-[1.5rem_minmax(0,1fr)] gap-x-2">
             <SeverityGlyph severity={item.severity} />
-            <p className="max-w-[46rem]">
+            <p className="max-w-[46rem] print:max-w-none">
               <strong className={`font-semibold ${tones[item.severity]}`}>
                 {t(`severity.${item.severity}`)}
               </strong>{' '}

@@ -166,7 +166,7 @@ type BodyCellProps<Row> = { column: Column<Row>; row: Row; isHead: boolean; isTu
 
 function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
   const side = column.align === 'end' ? 'text-right' : 'text-left';
-  const space = 'px-2 py-2 first:pl-0 last:pr-0 align-top';
+  const space = 'px-2 py-2 print:py-1 first:pl-0 last:pr-0 align-top';
   if (isHead) {
     return (
       <th

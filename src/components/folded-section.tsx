@@ -10,11 +10,13 @@ type FoldedSectionProps = {
   title: string;
   /** What stands inside, in a few words. */
   note?: ReactNode;
+  /** On paper too; what can only be filled in or pressed stays off it. */
+  isOnPaper?: boolean;
   children: ReactNode;
 };
 
 /** A part of a page under its heading: open where there is room, a line to press on a phone. */
-export function FoldedSection({ id, title, note, children }: FoldedSectionProps) {
+export function FoldedSection({ id, title, note, isOnPaper = false, children }: FoldedSectionProps) {
   const titleId = useId();
   const section = useRef<HTMLElement>(null);
   const { hash } = useLocation();
@@ -28,7 +30,7 @@ export function FoldedSection({ id, title, note, children }: FoldedSectionProps)
       id={id}
       ref={section}
       aria-labelledby={titleId}
-      className="scroll-mt-2 border-t border-rule pt-1"
+      className={`scroll-mt-2 border-t border-rule pt-1 ${isOnPaper ? 'print:border-0' : 'print:hidden'}`}
     >
       <details open={isOpen} onToggle={(event) => setOpen(event.currentTarget.open)}>
         <summary className="tap-target flex items-center gap-x-3 py-2">

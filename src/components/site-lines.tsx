@@ -77,7 +77,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
               return (
                 <li
                   key={trial.trialId}
-                  className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 border-b border-rule py-1 @2xl:grid-cols-[17rem_minmax(0,1fr)_6rem] @2xl:gap-x-5"
+                  className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 border-b border-rule py-1 print:py-0 @2xl:grid-cols-[17rem_minmax(0,1fr)_6rem] @2xl:gap-x-5"
                 >
                   <span className="text-sm [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
                     {linkTrial ? linkTrial(trial, words) : words}{' '}
@@ -91,7 +91,7 @@ export function SiteLines({ candidateName, currentName, trials, unit, decimals, 
                   <span className="text-right text-sm font-semibold @2xl:col-start-3 @2xl:row-start-1">
                     {gap(trial.estimate)}
                   </span>
-                  <div className="@max-2xl:col-span-2 @2xl:col-start-2 @2xl:row-start-1">
+                  <div className="print:-my-1.5 @max-2xl:col-span-2 @2xl:col-start-2 @2xl:row-start-1">
                     <GapTrack
                       scale={scale}
                       colour="var(--color-open)"

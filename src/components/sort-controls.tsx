@@ -24,7 +24,7 @@ export function SortHeading({ words, direction, onSort, className = '' }: SortHe
       onClick={onSort}
     >
       {words}{' '}
-      <span aria-hidden="true" className={direction === null ? 'opacity-50' : ''}>
+      <span aria-hidden="true" className={`print:hidden ${direction === null ? 'opacity-50' : ''}`}>
         {direction === null ? '↕' : direction === 'descending' ? '▼' : '▲'}
       </span>
     </button>
@@ -42,7 +42,7 @@ type SortChooserProps = {
 export function SortChooser({ columns, sort, onSort, className = '' }: SortChooserProps) {
   const { t } = useTranslation('common');
   return (
-    <div className={`items-end gap-3 ${className}`}>
+    <div className={`items-end gap-3 print:hidden ${className}`}>
       <Field label={t('table.sortBy')} className="grow">
         <Select
           placeholder={t('table.unsorted')}

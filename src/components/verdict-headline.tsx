@@ -10,7 +10,7 @@ export function VerdictHeadline({ candidates, currentName }: VerdictHeadlineProp
   const say = useHeadlineSentence(currentName);
   const parts = buildHeadline(candidates);
   return (
-    <p className="max-w-prose text-lg md:text-xl">
+    <p className="max-w-prose text-lg md:text-xl print:text-base">
       {parts.map((part) => {
         const key = `${part.key} ${part.names.join()}`;
         return part.isLead ? (

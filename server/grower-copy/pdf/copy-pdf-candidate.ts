@@ -94,7 +94,7 @@ function addTrialLines(
   const columns: PdfColumn<TrialGap>[] = [
     {
       header: say('drawings:siteLines.trial'),
-      share: 24,
+      share: 20,
       cell: ({ siteName, inRegion }) =>
         inRegion === false ? [siteName, say('drawings:siteLines.elsewhere')] : [siteName],
     },
@@ -107,7 +107,7 @@ function addTrialLines(
     },
     {
       header: say('drawings:siteLines.meanYield'),
-      share: 19,
+      share: 23,
       align: 'end',
       cell: ({ trialMean }) => [write.quantity(trialMean, unit, { decimals })],
     },
@@ -167,12 +167,12 @@ function addTraits(
   const columns: PdfColumn<Row>[] = [
     {
       header: say('verdicts:traits.trait'),
-      share: 26,
+      share: 32,
       cell: ({ trait }) => [nameTrait(trait, language)],
     },
     {
       header: say('drawings:gapStrip.gap'),
-      share: 34,
+      share: 32,
       cell: ({ words }) =>
         words.kind === 'gap'
           ? [words.gap]
@@ -180,14 +180,14 @@ function addTraits(
             ? [words.text, words.counts]
             : [words.text],
     },
-    { header: say('drawings:gapStrip.verdict'), share: 26, cell: (row) => [judge(row)] },
+    { header: say('drawings:gapStrip.verdict'), share: 22, cell: (row) => [judge(row)] },
     {
       header: level === undefined ? '–' : say(average, { level: write.percent(level * 100) }),
-      share: 26,
+      share: 32,
       cell: ({ words }) => [words.kind === 'gap' && words.range !== null ? words.range : '–'],
     },
     {
-      header: say('verdicts:traits.trials'),
+      header: say('print:traitTrials'),
       share: 9,
       align: 'end',
       cell: ({ verdict }) => [write.number(verdict?.siteYears ?? 0)],

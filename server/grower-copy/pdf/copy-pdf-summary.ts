@@ -1,6 +1,7 @@
 import { tellBest } from '#shared/best-sentences.ts';
 import { buildHeadline, sayHeadline } from '#shared/headline.ts';
 import { tellUnanswered } from '#shared/no-verdict-sentences.ts';
+import { tellPrices } from '#shared/price-sentences.ts';
 import type { WeighUpResult } from '#shared/weigh-up.ts';
 import { addStrip } from './copy-pdf-strip.ts';
 import type { CopyVoice } from './copy-voice.ts';
@@ -95,7 +96,7 @@ function addAnswer(flow: PageFlow, copy: PrintedCopy, voice: CopyVoice): void {
   addHeading(flow, 'H2', say('copy:axis', { current, unit: voice.write.unit(voice.unit) }));
   addStrip(flow, result.candidates, { weighUp, scale: copy.scale, voice });
   addStripKey(flow, result.candidates, voice);
-  addParagraph(flow, sayPrices(copy, voice), styles.small);
+  addParagraph(flow, tellPrices(weighUp.assumptions, say, voice.write), styles.small);
   addCautions(flow, voice, say('verdicts:cautionsTitle'), voice.tellCautions(others));
 }
 
@@ -108,16 +109,6 @@ function sortCautions({ cautions, candidates }: WeighUpResult) {
       ...candidates.flatMap((candidate) => candidate.cautions),
     ],
   };
-}
-
-/** The prices that every return on the pages hangs on, and where they come from. */
-function sayPrices({ snapshot: { weighUp } }: PrintedCopy, { say, write }: CopyVoice): string {
-  const { currency, priceLow, priceMiddle, priceHigh, priceSheetDate } = weighUp.assumptions;
-  const price = (value: number) => write.moneyPer(value, currency, 't');
-  const prices = { low: price(priceLow), middle: price(priceMiddle), high: price(priceHigh) };
-  return priceSheetDate === null
-    ? say('print:prices', prices)
-    : say('print:pricesOfSheet', { ...prices, date: write.date(priceSheetDate) });
 }
 
 function addWhoToAsk(

@@ -9,7 +9,7 @@ const sheets: Record<Paper, { width: number; height: number }> = {
   letter: { width: 612, height: 792 },
 };
 /** What is left free around the text, points. */
-export const margins = { side: 45, top: 36, bottom: 48 };
+export const margins = { side: 40, top: 30, bottom: 44 };
 
 /** A part of the document's structure: what a screen reader is told that the content is. */
 type ElementType =
@@ -66,6 +66,11 @@ export class PageFlow {
     return this.left + this.width;
   }
 
+  /** Nothing stands on the page yet. */
+  get isAtTop(): boolean {
+    return this.y === margins.top;
+  }
+
   #addSheet(): void {
     const { width, height } = this.#sheet;
     this.doc.addPage({ size: [width, height], margin: 0 });
@@ -83,7 +88,7 @@ export class PageFlow {
 
   /** Turns the page where less than this height is left. Tells whether it did. */
   ensureRoom(height: number): boolean {
-    if (this.y + height <= this.bottom || this.y === margins.top) return false;
+    if (this.y + height <= this.bottom || this.isAtTop) return false;
     this.newPage();
     return true;
   }

@@ -7,7 +7,7 @@ const keptBelow = 42;
 const headings = {
   H1: { style: styles.title, above: 0, below: 4 },
   H2: { style: styles.heading, above: 8, below: 2 },
-  H3: { style: styles.subheading, above: 5, below: 1 },
+  H3: { style: styles.subheading, above: 4, below: 1 },
 } as const;
 
 /** A heading, never alone at the foot of a page. */
@@ -19,7 +19,7 @@ export function addHeading(
 ): void {
   const { style, above, below } = headings[level];
   const lines = breakLines(flow.doc, text, style, width);
-  if (!flow.ensureRoom(above + lines.length * style.leading + keptBelow)) flow.y += above;
+  if (!flow.ensureRoom(above + lines.length * style.leading + keptBelow) && !flow.isAtTop) flow.y += above;
   flow.leaf(level, () => flow.writeLines(lines, style));
   flow.y += below;
 }

@@ -13,7 +13,7 @@ const tones: Record<CautionSeverity, string> = {
 
 /** From the bar beside a caution to its words, and from one caution to the next, points. */
 const indent = 8;
-const gap = 2;
+const gap = 1.6;
 
 /** Where the evidence stops: whole, gravest first, each with its word and a bar beside it. */
 export function addCautions(

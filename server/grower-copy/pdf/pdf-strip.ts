@@ -19,9 +19,9 @@ export type StripMarks = {
 };
 
 /** Height of the marks of one gap, points. */
-export const trackHeight = 22;
+export const trackHeight = 18;
 /** Height of the axis with its figures and what zero stands for, points. */
-export const axisHeight = 26;
+export const axisHeight = 24;
 
 const placeX = (box: DrawingBox, scale: Scale, value: number): number =>
   box.x + (placeOnScale(scale, value) / 100) * box.width;

@@ -21,13 +21,13 @@ type Cell = { lines: { line: Line; style: TextStyle }[]; height: number };
 
 const cellStyles = {
   head: { ...styles.small, weight: 'bold' },
-  first: { ...styles.small, leading: 10.6, colour: inks.ink },
+  first: { ...styles.small, leading: 10.2, colour: inks.ink },
   further: styles.label,
 } as const satisfies Record<string, TextStyle>;
 
 /** Free between two columns, and above and below a row, points. */
 const gutter = 8;
-const padding = 2;
+const padding = 1.2;
 
 /**
  * A table with a heading for each column and, in its first column, for each row. Rows are not cut by a page's end, and
@@ -73,7 +73,7 @@ export function addTable<Row>(
     },
     { title },
   );
-  flow.y += 4;
+  flow.y += 3;
 }
 
 type Box = { x: number; width: number; align: 'start' | 'end' };

@@ -21,13 +21,13 @@ export type TextStyle = { size: number; leading: number; weight: Weight; colour:
 
 export const styles = {
   title: { size: 16.5, leading: 21, weight: 'bold', colour: inks.ink },
-  lead: { size: 11, leading: 15, weight: 'normal', colour: inks.ink },
+  lead: { size: 10.5, leading: 14, weight: 'normal', colour: inks.ink },
   heading: { size: 12, leading: 16, weight: 'bold', colour: inks.ink },
   subheading: { size: 9.6, leading: 13, weight: 'bold', colour: inks.ink },
-  body: { size: 9.2, leading: 12.6, weight: 'normal', colour: inks.ink },
-  strong: { size: 9.2, leading: 12.6, weight: 'bold', colour: inks.ink },
-  small: { size: 8.4, leading: 11, weight: 'normal', colour: inks.faded },
-  label: { size: 8, leading: 10, weight: 'normal', colour: inks.faded },
+  body: { size: 8.8, leading: 11.4, weight: 'normal', colour: inks.ink },
+  strong: { size: 8.8, leading: 11.4, weight: 'bold', colour: inks.ink },
+  small: { size: 8.4, leading: 10.6, weight: 'normal', colour: inks.faded },
+  label: { size: 8, leading: 9.6, weight: 'normal', colour: inks.faded },
 } as const satisfies Record<string, TextStyle>;
 
 /** A stretch of text inside a paragraph that is set otherwise. */

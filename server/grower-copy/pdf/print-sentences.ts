@@ -1,11 +1,6 @@
 import { createInstance, type i18n, type ResourceLanguage } from 'i18next';
 import { languages, type Language } from '#shared/language.ts';
 import { addSentenceFormats } from '#shared/sentence-formats.ts';
-import enPrint from '#locales/en/print.json' with { type: 'json' };
-import frPrint from '#locales/fr/print.json' with { type: 'json' };
-
-/** What paper says and the page does not. */
-const printSentences: Record<Language, ResourceLanguage[string]> = { en: enPrint, fr: frPrint };
 
 /**
  * The sentences of a printed copy.
@@ -17,7 +12,7 @@ export function openPrintSentences(language: Language, sentences: ResourceLangua
     lng: language,
     supportedLngs: [...languages],
     fallbackLng: false,
-    resources: { [language]: { ...sentences, print: printSentences[language] } },
+    resources: { [language]: sentences },
     defaultNS: 'print',
     // The sentences are there already, so nothing need be waited for.
     initAsync: false,

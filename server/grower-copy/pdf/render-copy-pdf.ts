@@ -70,7 +70,7 @@ function addFeet(flow: PageFlow, copy: PrintedCopy, voice: CopyVoice): void {
   const style = styles.label;
   const facts = say('print:foot', {
     date: write.date(snapshot.madeAt),
-    versions: say('print:trialVersions', { count: result.trials.length }),
+    versions: say('method:trialVersions', { count: result.trials.length }),
     engine: snapshot.engineVersion,
     printed: write.date(printedAt),
   });
@@ -80,7 +80,7 @@ function addFeet(flow: PageFlow, copy: PrintedCopy, voice: CopyVoice): void {
     doc.switchToPage(start + page);
     const number = breakLines(doc, say('print:page', { page: page + 1, pages: count }), style, flow.width);
     const room = flow.width - (number[0]?.width ?? 0) - 12;
-    const top = flow.bottom + margins.bottom - 36;
+    const top = flow.bottom + margins.bottom - 34;
     flow.artifact(() => {
       drawLines(
         doc,

@@ -41,7 +41,7 @@ export function CopyAnswer({ weighUp, basis, candidates, practicalMargin, best }
   const used = isOwn ? withPrice(assumptions, price) : assumptions;
   const shown = isOwn ? reckonCandidates(candidates, basis, used, practicalMargin) : candidates;
   return (
-    <div className="flex flex-col gap-7">
+    <div className="flex flex-col gap-7 print:contents">
       <div>
         {/* Always there, so that a screen reader hears it change. */}
         <div role="status">

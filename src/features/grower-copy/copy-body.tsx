@@ -26,7 +26,8 @@ export function CopyBody({ copy, answerHtml }: CopyBodyProps) {
   return (
     <>
       <CopyHeading copy={copy} />
-      <div className="flex flex-col gap-7">
+      {/* On paper the first sheet is the answer with its cautions, and each candidate has one of its own behind it. */}
+      <div className="flex flex-col gap-7 print:gap-4">
         <CautionList title={t('verdicts:changes.title')} items={useLaterChanges(copy.laterChanges)} />
         {answerHtml === null ? (
           <Unanswered
@@ -102,10 +103,10 @@ function WeighedCopy({ copy, answerHtml }: { copy: OpenedCopy; answerHtml: strin
   return (
     <>
       <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
-      <div id={answerId} dangerouslySetInnerHTML={{ __html: answerHtml }} />
+      <div id={answerId} className="print:contents" dangerouslySetInnerHTML={{ __html: answerHtml }} />
       <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
       <OtherTraits candidates={result.candidates} traits={traits} currentName={weighUp.currentVarietyName} />
-      <details>
+      <details className="print:order-3 print:break-before-page">
         <summary className="tap-target py-2.5 text-lg font-bold">{t('copy:howTitle')}</summary>
         <div className="mt-2 flex flex-col gap-5">
           <MethodNotes result={result} />
@@ -120,7 +121,7 @@ function WhoToAsk({ copy: { snapshot, expiresAt } }: { copy: OpenedCopy }) {
   const { t } = useTranslation('copy');
   const format = useFormat();
   return (
-    <footer className="border-t border-rule pt-4">
+    <footer className="border-t border-rule pt-4 print:order-1 print:break-inside-avoid">
       <h2>{t('question')}</h2>
       <p>
         {t('ask', { advisor: snapshot.advisorName })}{' '}

@@ -14,6 +14,9 @@ import { CopyTrialLines } from './copy-trial-lines.tsx';
 
 const unit = 't/ha';
 
+/** On paper, where the browser's style sheets reach into what is folded. */
+const hiddenWhereUnfolded = 'supports-[selector(::details-content)]:print:hidden';
+
 type CopyCandidatesProps = {
   weighUp: CopyAnswerProps['weighUp'];
   candidates: readonly CandidateResult[];
@@ -31,7 +34,10 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
   const level = (value: number) => format.percent(value * 100);
   const isBeyondRegion = candidates.some(reachesBeyondRegion);
   return (
-    <section aria-label={t('candidates')} className="flex flex-col">
+    <section
+      aria-label={t('candidates')}
+      className="flex flex-col print:order-2 print:block print:break-before-page"
+    >
       <p className="text-sm text-faded">
         {t('axis', { current: weighUp.currentVarietyName, unit: format.unit(unit) })}
       </p>
@@ -77,7 +83,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
   const { money, verdict, siteYears } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
   return (
-    <article className="border-t-2 border-ink py-4">
+    <article className="border-t-2 border-ink py-4 print:[article+&]:break-before-page">
       <div className="flex flex-wrap items-baseline justify-between gap-x-4">
         <h2>{candidate.varietyName}</h2>
         <p className="text-lg font-bold">
@@ -114,16 +120,19 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
         </GapLabel>
       </div>
       <div className="flex flex-col gap-1.5">
-        {verdict !== 'thin' && <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />}
         {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
-        <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
+        {/* On paper the whole story, which says this again, is unfolded below. */}
+        <div className={`flex flex-col gap-1.5 ${hiddenWhereUnfolded}`}>
+          {verdict !== 'thin' && <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />}
+          <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
+        </div>
         <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
       </div>
       <details className="mt-2">
-        <summary className="tap-target py-2.5 font-semibold text-action">
+        <summary className={`tap-target py-2.5 font-semibold text-action ${hiddenWhereUnfolded}`}>
           {t('copy:inFull', { name: candidate.varietyName })}
         </summary>
-        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4">
+        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4 print:gap-3 print:border-0 print:pl-0">
           <CandidateStory
             candidate={candidate}
             currentName={weighUp.currentVarietyName}

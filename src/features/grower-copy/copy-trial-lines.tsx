@@ -56,7 +56,7 @@ export function CopyTrialLines({ candidate, currentName, unit, decimals }: CopyT
     },
   ];
   return (
-    <section className="flex flex-col gap-1">
+    <section className="flex flex-col gap-1 print:break-inside-avoid">
       <h3>{title}</h3>
       <p className="text-sm text-faded">{t('siteLines.order')}</p>
       <DataTable caption={title} columns={columns} rows={trials} rowKey={({ trialId }) => trialId} />

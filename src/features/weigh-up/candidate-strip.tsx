@@ -11,6 +11,7 @@ import { usePaysIn } from '#src/components/use-seasons.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
+import { usePrinting } from '#src/use-printing.ts';
 
 /** Unit of yield gaps. */
 const unit = 't/ha';
@@ -24,8 +25,8 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
   const { t } = useTranslation('verdicts');
   const [search] = useSearchParams();
   const openId = search.get('open');
-  const format = useFormat();
-  const decimals = format.decimals(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
+  const isPrinting = usePrinting();
+  const decimals = useGapDecimals(candidates);
   const rows = candidates.map((candidate): GapStripRow => {
     const isOpen = candidate.varietyId === openId;
     const story = { candidate, currentName, money, areaHectares, unit, decimals };
@@ -34,7 +35,7 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
       ...gapRowOf(candidate),
       head: <RowToggle candidate={candidate} isOpen={isOpen} />,
       aside: <RowAside candidate={candidate} currency={money.currency} />,
-      ...(isOpen && { below: <OpenRow {...story} /> }),
+      ...(isOpen && !isPrinting && { below: <OpenRow {...story} /> }),
     };
   });
   return (
@@ -48,6 +49,28 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
   );
 }
 
+/** Decimals of every gap of a list, by the first that has one. */
+function useGapDecimals(candidates: readonly CandidateResult[]): number {
+  const format = useFormat();
+  return format.decimals(candidates.find(({ gap }) => gap)?.gap?.se ?? null, unit);
+}
+
+/** On paper the list stays whole, and the story of the row that is open has a page of its own. */
+export function StoryOnPaper({ candidates, ...ground }: CandidateStripProps) {
+  const { t } = useTranslation('weigh-up');
+  const [search] = useSearchParams();
+  const isPrinting = usePrinting();
+  const decimals = useGapDecimals(candidates);
+  const candidate = candidates.find(({ varietyId }) => varietyId === search.get('open'));
+  if (!isPrinting || candidate === undefined) return null;
+  return (
+    <section className="break-before-page">
+      <h2>{t('page.story', { name: candidate.varietyName, current: ground.currentName })}</h2>
+      <OpenRow candidate={candidate} {...ground} unit={unit} decimals={decimals} />
+    </section>
+  );
+}
+
 function RowToggle({ candidate, isOpen }: { candidate: CandidateResult; isOpen: boolean }) {
   const patch = useUrlPatch();
   return (
@@ -58,7 +81,7 @@ function RowToggle({ candidate, isOpen }: { candidate: CandidateResult; isOpen: 
       className="tap-target -ml-1 flex items-center gap-2 px-1 text-left font-bold hover:underline"
     >
       {candidate.varietyName}
-      <span aria-hidden="true" className="text-sm text-action">
+      <span aria-hidden="true" className="text-sm text-action print:hidden">
         {isOpen ? '▲' : '▼'}
       </span>
     </button>
@@ -95,7 +118,7 @@ function OpenRow(story: StoryProps) {
   const cautionItems = useCautionItems();
   const { candidate, currentName, decimals } = story;
   return (
-    <div className="mt-2 flex flex-col gap-5 border-l-4 border-rule pl-4">
+    <div className="mt-2 flex flex-col gap-5 border-l-4 border-rule pl-4 print:gap-3 print:border-0 print:pl-0">
       <CandidateStory {...story} />
       <CautionList
         title={t('story.cautions', { name: candidate.varietyName })}

@@ -56,8 +56,10 @@ export function WeighUpHeading({ weighUp, result }: WeighUpHeadingProps) {
       title={title}
       above={
         <>
-          <Link to={paths.weighUps}>{t('weigh-up:page.back')}</Link>
-          {' · '}
+          <span className="print:hidden">
+            <Link to={paths.weighUps}>{t('weigh-up:page.back')}</Link>
+            {' · '}
+          </span>
           {t('weigh-up:page.above', {
             grower: weighUp.growerName,
             farm: weighUp.farmName,

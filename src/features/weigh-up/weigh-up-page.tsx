@@ -6,7 +6,7 @@ import type { Crop } from '#shared/catalogue.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import { storedUnits } from '#shared/reader-units.ts';
-import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
+import type { UsedTrial, WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
 import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
@@ -22,11 +22,13 @@ import { WeighingProgress } from '#src/components/weighing-progress.tsx';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
-import { CandidateStrip } from './candidate-strip.tsx';
+import { usePrinting } from '#src/use-printing.ts';
+import { CandidateStrip, StoryOnPaper } from './candidate-strip.tsx';
 import { DecisionPanel } from './decision-panel.tsx';
 import { FarmPanel } from './farm-panel.tsx';
 import { HandOver } from './hand-over.tsx';
 import { MoneyPanel } from './money-panel.tsx';
+import { OnPaperLine, PricesOnPaper } from './on-paper-line.tsx';
 import { QuestionPanel } from './question-panel.tsx';
 import { TickOffStep } from './tick-off.tsx';
 import { useMoneyForm } from './use-money-form.ts';
@@ -48,6 +50,7 @@ export function WeighUpPage() {
   const crop = findCrop(catalogue.data, question.cropId);
   return (
     <CropUnits bushelWeightLb={crop?.bushelWeightLb ?? storedUnits.bushelWeightLb}>
+      <OnPaperLine result={result} />
       <WeighUpHeading weighUp={question} result={result} />
       {result.answer === 'no-trials' || !crop ? (
         <NoTrialsAnswer weighUp={question} result={result} />
@@ -125,11 +128,11 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     );
   }
   return (
-    <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem]">
-      <div className="flex min-w-0 flex-col gap-8">
+    <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem] print:block">
+      <div className="flex min-w-0 flex-col gap-8 print:gap-3">
         <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
-        <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2">
+        <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
           <WaysInPage />
           <UnitSwitch onChoose={chooseUnit} />
         </div>
@@ -146,16 +149,23 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
           money={money.assumptions}
           areaHectares={money.areaHectares}
         />
+        <PricesOnPaper money={money.assumptions} />
         <div id="cautions" className="scroll-mt-2">
           <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} />
         </div>
         <div id="traits" className="scroll-mt-2">
           <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
         </div>
+        <StoryOnPaper
+          candidates={candidates}
+          currentName={currentName}
+          money={money.assumptions}
+          areaHectares={money.areaHectares}
+        />
       </div>
       <div
         id="money"
-        className="scroll-mt-2 lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto"
+        className="scroll-mt-2 lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto print:hidden"
       >
         <MoneyPanel
           weighUp={weighUp}
@@ -179,12 +189,12 @@ const BesideMoney = memo(function BesideMoney({
 }: AnswerProps & { hasUnsaved: boolean }) {
   const { t } = useTranslation('method');
   return (
-    <div className="flex min-w-0 flex-col gap-4 lg:gap-6">
+    <div className="flex min-w-0 flex-col gap-4 lg:gap-6 print:block print:break-before-page">
       <QuestionPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
       <FarmPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
       <HandOver weighUpId={weighUp.id} hasUnsaved={hasUnsaved} />
       <DecisionPanel weighUp={weighUp} result={result} hasUnsaved={hasUnsaved} />
-      <FoldedSection id="method" title={t('title')}>
+      <FoldedSection id="method" title={t('title')} isOnPaper>
         <MethodNotes result={result} />
         <details>
           <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
@@ -199,11 +209,12 @@ const BesideMoney = memo(function BesideMoney({
 
 /** The trials, each with the way to its page and out of the figures. */
 function OwnEvidence({ weighUp, result }: AnswerProps) {
+  const isPrinting = usePrinting();
   return (
     <EvidenceTrials
       result={result}
       linkTrial={(trialId, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
-      stepOf={(trial) => <TickOffStep weighUp={weighUp} trial={trial} />}
+      {...(!isPrinting && { stepOf: (trial: UsedTrial) => <TickOffStep weighUp={weighUp} trial={trial} /> })}
     />
   );
 }

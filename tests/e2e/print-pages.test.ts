@@ -1,0 +1,117 @@
+import type { Browser, Page } from 'playwright-core';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { languages, type Language } from '#shared/language.ts';
+import type { WeighUpLine } from '#shared/weigh-up.ts';
+import { openBrowser } from '#tests/support/browser.ts';
+import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { readPdf } from '#tests/support/read-pdf.ts';
+import { say } from '#tests/support/say.ts';
+import { openVisit, signInByFixture } from '#tests/support/visit.ts';
+
+let app: DemoApp;
+let browser: Browser;
+
+beforeAll(async () => {
+  app = await startDemoApp();
+  browser = await openBrowser();
+});
+
+afterAll(async () => {
+  await browser?.close();
+  await app?.close();
+});
+
+/** Of each, sizes in points. */
+const papers = { A4: [595, 842], Letter: [612, 792] } as const;
+
+async function print(page: Page, format: keyof typeof papers) {
+  const pdf = await readPdf(await page.pdf({ format }));
+  const [width, height] = papers[format];
+  for (const sheet of pdf.pages) {
+    // Browsers go up to whole pixels.
+    expect(Math.abs(sheet.width - width)).toBeLessThan(1.5);
+    expect(Math.abs(sheet.height - height)).toBeLessThan(1.5);
+  }
+  // Where a line ends is the paper's affair.
+  return { pages: pdf.pages.length, words: pdf.words.replace(/\s/g, '') };
+}
+
+const bare = (words: string): string => words.replace(/\s/g, '');
+
+async function openFirstWeighUp(page: Page, language: Language): Promise<string> {
+  // The weigh-ups of the demo belong to one advisor, who may read in either language.
+  await signInByFixture(page.context(), 'advisor', 'en');
+  await page.request.patch('/api/me', { data: { language } });
+  const { weighUps } = (await (await page.request.get('/api/weigh-ups')).json()) as {
+    weighUps: WeighUpLine[];
+  };
+  const id = weighUps[0]?.id ?? '';
+  await page.goto(`/weigh-ups/${id}`);
+  await page.getByRole('heading', { name: say(language, 'verdicts:cautionsTitle') }).waitFor();
+  await page.locator('h2 button[aria-expanded="false"]').first().click();
+  await page.locator('h2 button[aria-expanded="true"]').waitFor();
+  return id;
+}
+
+/** What is written of a candidate's cautions on the screen, with the words of its trials. */
+async function readShown(page: Page): Promise<{ cautions: string[]; trials: string[] }> {
+  const list = page.getByRole('main').locator('#cautions li p');
+  const trials = page.locator('#method details details tbody tr th');
+  return { cautions: await list.allTextContents(), trials: await trials.allTextContents() };
+}
+
+describe('pages on paper', () => {
+  it.each(languages)('prints a weigh-up whole and without its forms: %s', async (language) => {
+    const { page, close } = await openVisit(browser, app.url, language, 1280);
+    await openFirstWeighUp(page, language);
+    const shown = await readShown(page);
+    expect(shown.cautions.length).toBeGreaterThan(3);
+    expect(shown.trials.length).toBeGreaterThan(3);
+    const { words } = await print(page, language === 'en' ? 'A4' : 'Letter');
+    for (const text of [...shown.cautions, ...shown.trials]) expect(words).toContain(bare(text));
+    expect(words).toContain(bare(say(language, 'method:trialsUsed')));
+    const story = bare(say(language, 'verdicts:story.trials'));
+    expect(words.split(story)).toHaveLength(2);
+    for (const key of [
+      'weigh-up:money.title',
+      'weigh-up:money.low',
+      'weigh-up:copies.title',
+      'weigh-up:question.panel',
+      'weigh-up:farm.title',
+      'weigh-up:page.back',
+      'record:decision.title',
+      'record:tickOff.out',
+      'common:drawing.showTable',
+      'common:signOut',
+    ])
+      expect(words, key).not.toContain(bare(say(language, key)));
+    // What was folded and open before is so again.
+    expect(await page.locator('#method details details').getAttribute('open')).toBeNull();
+    expect(await page.locator('h2 button[aria-expanded="true"]').count()).toBe(1);
+    await close();
+  });
+
+  it.each(languages)('prints a grower copy whole, no script running: %s', async (language) => {
+    const visit = await openVisit(browser, app.url, language, 1280);
+    const id = await openFirstWeighUp(visit.page, language);
+    const { cautions, trials } = await readShown(visit.page);
+    const made = await visit.page.request.post(`/api/weigh-ups/${id}/grower-copies`, {
+      data: { language, validDays: 30 },
+    });
+    const { path } = (await made.json()) as { path: string };
+    await visit.close();
+    const still = await browser.newContext({ baseURL: app.url, javaScriptEnabled: false });
+    const page = await still.newPage();
+    await page.goto(path);
+    const candidates = await page.locator('article h2').allTextContents();
+    const { pages, words } = await print(page, language === 'en' ? 'Letter' : 'A4');
+    await still.close();
+    for (const text of [...cautions, ...trials, ...candidates]) expect(words).toContain(bare(text));
+    // Every candidate's story is unfolded, and begins a sheet.
+    const stories = words.split(bare(say(language, 'verdicts:story.trials'))).length - 1;
+    expect(stories).toBe(candidates.length);
+    expect(pages).toBeGreaterThan(candidates.length + 1);
+    for (const key of ['copy:own.title', 'copy:onPaper', 'common:units.label'])
+      expect(words, key).not.toContain(bare(say(language, key)));
+  });
+});
