@@ -186,6 +186,8 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
           headingLevel={3}
           items={cautionItems(result.cautions.filter(({ code }) => placeCautions.has(code)))}
         />
+        {/* Of the question before, the list says nothing about this one's. */}
+        {!candidates.isPlaceholderData && <GoneCandidates goneIds={goneIds} crop={crop} />}
         {result.candidates.length === 0 ? (
           <p>{t('new.noCandidates')}</p>
         ) : draft.kind === 'pair' ? (
@@ -199,8 +201,6 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
             varieties={crop?.varieties ?? []}
           />
         )}
-        {/* Of the question before, the list says nothing about this one's. */}
-        {!candidates.isPlaceholderData && <GoneCandidates goneIds={goneIds} crop={crop} />}
         {form.formState.isSubmitted && !isChosen && (
           <p role="alert" className="font-semibold text-stop">
             {t('new.chooseOne')}
