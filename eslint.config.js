@@ -195,7 +195,8 @@ export default tseslint.config(
           plugins: { '@typescript-eslint': tseslint.plugin },
           languageOptions: {
             parserOptions: {
-              project: ['./tsconfig.server.json', './tsconfig.client.json'],
+              // The client's first: the server's program knows its .tsx files by their types alone.
+              project: ['./tsconfig.client.json', './tsconfig.server.json'],
               tsconfigRootDir: import.meta.dirname,
             },
           },

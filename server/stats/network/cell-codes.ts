@@ -63,7 +63,7 @@ class EnvironmentIndex {
   find(cell: TrialCell, add: (key: string) => void): number {
     if (cell.trial !== undefined) return this.#findKey(cell.trial, add);
     let years = this.#bySite.get(cell.site);
-    if (years === undefined) this.#bySite.set(cell.site, (years = new Map()));
+    if (years === undefined) this.#bySite.set(cell.site, (years = new Map<number | string, number>()));
     let index = years.get(cell.year);
     if (index === undefined) years.set(cell.year, (index = this.#findKey(environmentKey(cell), add)));
     return index;

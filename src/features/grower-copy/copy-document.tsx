@@ -5,15 +5,7 @@ import { writeUnitParameter } from '#shared/reader-units.ts';
 import { GavelMark } from '#src/components/gavel-mark.tsx';
 import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useLanguage } from '#src/components/use-language.ts';
-
-/** Addresses of what the page fetches, all from our own origin. */
-export type CopyPageFiles = {
-  style: string;
-  icon: string;
-  script: string;
-  /** Of the weights in the first screen. */
-  fonts: readonly string[];
-};
+import type { CopyPageFiles } from './copy-page-inputs.ts';
 
 type CopyDocumentProps = {
   title: string;

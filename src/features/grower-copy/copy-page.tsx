@@ -1,11 +1,9 @@
 import { useTranslation } from 'react-i18next';
 import type { OpenedCopy } from '#shared/grower-copy.ts';
 import { CopyBody, useCopyTitle } from './copy-body.tsx';
-import { CopyDocument, type CopyPageFiles } from './copy-document.tsx';
+import { CopyDocument } from './copy-document.tsx';
+import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
 import { dataId } from './copy-script-data.ts';
-
-/** Why there is no copy to show. */
-export type CopyFailure = 'link-unknown' | 'link-expired' | 'link-revoked' | 'away';
 
 type CopyPageProps = {
   copy: OpenedCopy;

@@ -8,15 +8,14 @@ import { readerUnitsOfCopy } from '#shared/reader-units-of-copy.ts';
 import type { YieldUnit } from '#shared/units.ts';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
-import type { CopyPageFiles } from './copy-document.tsx';
-import { CopyPage, FailedCopyPage, type CopyFailure } from './copy-page.tsx';
+import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
+import { CopyPage, FailedCopyPage } from './copy-page.tsx';
 import { answerNamespaces, writeScriptData } from './copy-script-data.ts';
 import { openCopySentences, type CopySentences } from './open-copy-sentences.ts';
 
 // The front door for the server. Without JSX: the compiler takes types over from another project's .ts files alone.
 
-export type { CopyPageFiles } from './copy-document.tsx';
-export type { CopyFailure } from './copy-page.tsx';
+export type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
 export type { CopySentences } from './open-copy-sentences.ts';
 
 type PageOptions = { language: Language; sentences: CopySentences; files: CopyPageFiles };
