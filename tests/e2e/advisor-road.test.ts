@@ -160,7 +160,7 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     const copy = phone.page.locator('body');
     for (const name of names) expect(await copy.textContent()).toContain(name);
     expect(await copy.textContent()).toMatch(verdictWords(other(language)));
-    await expectSoundPage(phone.page);
+    await expectNoSideways(phone.page);
 
     page.on('dialog', (dialog) => void dialog.accept());
     await page
@@ -174,7 +174,7 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     await page.getByText(say(language, 'weigh-up:copies.revokedDone')).waitFor();
     await phone.page.reload();
     await phone.page.getByText(say(other(language), 'copy:failed.link-revoked.title')).waitFor();
-    await expectSoundPage(phone.page);
+    await expectNoSideways(phone.page);
     await phone.close();
     await visit.close();
   });

@@ -4,7 +4,7 @@ import { languages, type Language } from '#shared/language.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
 import { say } from '#tests/support/say.ts';
-import { expectSoundPage, openVisit, signInByFixture } from '#tests/support/visit.ts';
+import { expectNoSideways, expectSoundPage, openVisit, signInByFixture } from '#tests/support/visit.ts';
 
 let app: DemoApp;
 let browser: Browser;
@@ -94,7 +94,7 @@ describe.each(languages)('a grower who reads %s', (language) => {
       const asked: string[] = [];
       page.on('request', (request) => asked.push(request.url()));
       await page.goto(path);
-      await expectSoundPage(page);
+      await expectNoSideways(page);
       const worth = candidateOf(page, 'Quillane').locator('p').first();
       const frozen = (await worth.textContent()) ?? '';
       const price = page.getByRole('textbox', { name: say(language, 'copy:own.price') });
@@ -118,7 +118,7 @@ describe.each(languages)('a grower who reads %s', (language) => {
         .first()
         .click();
       expect(await page.getByText(/^(Your own number|Votre chiffre)\s*:/).count()).toBe(0);
-      await expectSoundPage(page);
+      await expectNoSideways(page);
       // The server never hears of the price, nor anybody else of anything.
       for (const url of asked) expect([new URL(url).origin, url.includes('400.5')]).toEqual([app.url, false]);
       expect(complaints).toEqual([]);

@@ -5,7 +5,13 @@ import type { WeighUp } from '#shared/weigh-up.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
 import { say } from '#tests/support/say.ts';
-import { expectSoundPage, findDemoAccount, openVisit, signInByFixture } from '#tests/support/visit.ts';
+import {
+  expectNoSideways,
+  expectSoundPage,
+  findDemoAccount,
+  openVisit,
+  signInByFixture,
+} from '#tests/support/visit.ts';
 
 let app: DemoApp;
 let browser: Browser;
@@ -63,7 +69,7 @@ describe('two tabs on one weigh-up', () => {
       await page.getByText(say(language, 'errors:saved-meanwhile')).waitFor();
       expect((await saved()).usualYield).toBe(5.1);
       expect(await yieldOf(page).inputValue()).toBe('4.4');
-      await expectSoundPage(page);
+      await expectNoSideways(page);
       await expect
         .poll(async () => {
           await save(page);
@@ -95,7 +101,7 @@ describe('two tabs on one weigh-up', () => {
         .toBe('best');
       expect((await saved()).areaHectares).toBe(61);
       await other.getByText(say(language, 'verdicts:best.show')).first().waitFor();
-      await expectSoundPage(other);
+      await expectNoSideways(other);
     }));
 });
 
