@@ -137,7 +137,7 @@ const verdictWords = (language: Language): RegExp =>
   );
 
 describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
-  it.each(widths)('goes from signing in to the grower’s phone at %i px', async (width) => {
+  it.each(widths[language])('goes from signing in to the grower’s phone at %i px', async (width) => {
     const visit = await openVisit(browser, app.url, language, width);
     const { page } = visit;
     await signIn(page, language);

@@ -43,7 +43,7 @@ function writeCsv(decimal: '.' | ',', spoil?: string): Buffer {
 }
 
 describe.each(['en', 'fr'] as const)('an agronomist who reads %s', (language) => {
-  it.each(widths)(
+  it.each(widths[language])(
     'brings a file in, reads its analysis, publishes and withdraws it at %i px',
     async (width) => {
       const visit = await openVisit(browser, app.url, language, width);

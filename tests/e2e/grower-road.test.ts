@@ -4,7 +4,13 @@ import { languages, type Language } from '#shared/language.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
 import { say } from '#tests/support/say.ts';
-import { expectNoSideways, expectSoundPage, openVisit, signInByFixture } from '#tests/support/visit.ts';
+import {
+  expectNoSideways,
+  expectSoundPage,
+  openVisit,
+  signInByFixture,
+  widths,
+} from '#tests/support/visit.ts';
 
 let app: DemoApp;
 let browser: Browser;
@@ -81,7 +87,7 @@ describe.each(languages)('a grower who reads %s', (language) => {
     await phone.close();
   });
 
-  it.each([360, 1280])(
+  it.each(widths[language])(
     'tries an own price, in other units and the other language, at %i px',
     async (width) => {
       const { path, copy } = await makeCopy(office.request, language);
