@@ -1,5 +1,5 @@
 import type { Language } from './account.ts';
-import { saySeasons } from './say-seasons.ts';
+import { saySeasonSpan } from './say-seasons.ts';
 import type { Say } from './say-sentences.ts';
 import type { CandidateResult } from './weigh-up.ts';
 
@@ -16,8 +16,8 @@ export type HeadlinePart = {
     | 'openBehind'
     | 'thin';
   names: readonly string[];
-  /** Chance that it pays, of the one candidate a sentence is about. */
-  chance: number | null;
+  /** Least and greatest chance that those named pay; null where nothing is said of it. */
+  chances: { least: number; greatest: number } | null;
   /** Most site-years among the candidates named. */
   siteYears: number;
   /** The sentence that stands first and bold. */
@@ -36,15 +36,35 @@ function groupOf(candidate: CandidateResult): GroupKey | null {
   return (candidate.gap?.estimate ?? 0) > 0 ? 'openAhead' : 'openBehind';
 }
 
-function describeAhead(candidate: CandidateResult): HeadlinePart {
-  const chance = candidate.money?.chancePays ?? null;
-  return {
-    key: chance === null ? 'aheadUnknown' : chance >= paysFrom ? 'aheadPays' : 'aheadBut',
-    names: [candidate.varietyName],
-    chance,
-    siteYears: candidate.siteYears,
-    isLead: true,
-  };
+type AheadKey = 'aheadPays' | 'aheadBut' | 'aheadUnknown';
+const aheadOrder: readonly AheadKey[] = ['aheadPays', 'aheadBut', 'aheadUnknown'];
+
+function nameAhead({ money }: CandidateResult): AheadKey {
+  const chance = money?.chancePays ?? null;
+  if (chance === null) return 'aheadUnknown';
+  return chance >= paysFrom ? 'aheadPays' : 'aheadBut';
+}
+
+function spanChances(members: readonly CandidateResult[]): HeadlinePart['chances'] {
+  const chances = members.flatMap(({ money }) => money?.chancePays ?? []);
+  return chances.length === 0 ? null : { least: Math.min(...chances), greatest: Math.max(...chances) };
+}
+
+function describe(
+  key: GroupKey | AheadKey,
+  members: readonly CandidateResult[],
+  isLead: boolean,
+): HeadlinePart[] {
+  if (members.length === 0) return [];
+  return [
+    {
+      key,
+      names: members.map((member) => member.varietyName),
+      chances: isLead ? spanChances(members) : null,
+      siteYears: Math.max(...members.map((member) => member.siteYears)),
+      isLead,
+    },
+  ];
 }
 
 /**
@@ -52,33 +72,33 @@ function describeAhead(candidate: CandidateResult): HeadlinePart {
  * then what is open, level, behind, and what cannot be said. Every candidate is named exactly once.
  */
 export function buildHeadline(candidates: readonly CandidateResult[]): HeadlinePart[] {
-  const ahead = candidates.filter((candidate) => candidate.verdict === 'ahead').map(describeAhead);
-  const lead: HeadlinePart[] =
-    ahead.length > 0 ? ahead : [{ key: 'noneAhead', names: [], chance: null, siteYears: 0, isLead: true }];
-  const groups = groupOrder.flatMap((key): HeadlinePart[] => {
-    const members = candidates.filter((candidate) => groupOf(candidate) === key);
-    if (members.length === 0) return [];
-    return [
-      {
-        key,
-        names: members.map((member) => member.varietyName),
-        chance: null,
-        siteYears: Math.max(...members.map((member) => member.siteYears)),
-        isLead: false,
-      },
-    ];
-  });
-  return [...lead, ...groups];
+  const ahead = candidates.filter((candidate) => candidate.verdict === 'ahead');
+  const noneAhead: HeadlinePart = { key: 'noneAhead', names: [], chances: null, siteYears: 0, isLead: true };
+  const lead = aheadOrder.flatMap((key) =>
+    describe(
+      key,
+      ahead.filter((candidate) => nameAhead(candidate) === key),
+      true,
+    ),
+  );
+  const groups = groupOrder.flatMap((key) =>
+    describe(
+      key,
+      candidates.filter((candidate) => groupOf(candidate) === key),
+      false,
+    ),
+  );
+  return [...(lead.length > 0 ? lead : [noneAhead]), ...groups];
 }
 
 type HeadlineKey =
   | `verdicts:headline.${HeadlinePart['key']}`
   | 'verdicts:trialCount'
-  | `verdicts:seasons.${'fewer' | 'whole' | 'more'}`;
+  | `verdicts:seasons.${'fewer' | 'whole' | 'more' | 'span'}`;
 
 /** Turns a part of the headline into its sentence. */
 export function sayHeadline(
-  { key, names, chance, siteYears }: HeadlinePart,
+  { key, names, chances, siteYears }: HeadlinePart,
   current: string,
   language: Language,
   say: Say<HeadlineKey>,
@@ -87,7 +107,7 @@ export function sayHeadline(
     names: new Intl.ListFormat(language, { type: 'conjunction' }).format(names),
     count: names.length,
     current,
-    seasons: chance === null ? '' : saySeasons(chance, say),
+    seasons: chances === null ? '' : saySeasonSpan(chances, say),
     trials: say('verdicts:trialCount', { count: siteYears }),
   });
 }

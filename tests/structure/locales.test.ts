@@ -63,6 +63,11 @@ describe.each(files)('%s', (file) => {
     expect(differing.map(([key]) => key)).toEqual([]);
   });
 
+  test('breaks no line of French before its high punctuation', () => {
+    const loose = [...french].filter(([, text]) => /[^:] [;:!?%»]|« /.test(text));
+    expect(loose).toEqual([]);
+  });
+
   test('has no empty text', () => {
     const empty = [...english, ...french].filter(([, text]) => text.trim() === '');
     expect(empty).toEqual([]);

@@ -27,7 +27,7 @@ export function SeedFields({ form, variety: { id, name }, assumptions }: SeedFie
   return (
     <fieldset className="flex flex-col gap-2 border-l-4 border-rule pl-3">
       <legend className="sr-only">{name}</legend>
-      <div className="grid grid-cols-2 items-end gap-2">
+      <div className="grid grid-cols-[minmax(0,5fr)_minmax(0,6fr)] items-end gap-2">
         {basis === 'flat' && (
           <FigureField
             form={form}

@@ -51,6 +51,24 @@ describe('the headline of a weigh-up', () => {
     );
   });
 
+  it('names those that are ahead and pay in one sentence, with the chances of all of them', async () => {
+    const named = (name: string, chance: number | null) => ({
+      ...withChance(buildCandidate(), chance),
+      varietyId: idOf(name.length + 10),
+      varietyName: name,
+    });
+    const four = [named('Ada', 0.916), named('Bryn', 0.887), named('Corin', 0.45), named('Dunstan', null)];
+    expect(await readHeadline(four, 'en')).toBe(
+      'Ada and Bryn are really ahead of Brindle, and pay on your own land in 89 to 92 of 100 seasons. ' +
+        'Corin is really ahead of Brindle, but pays on your own land in only 45 of 100 seasons. ' +
+        'Dunstan is really ahead of Brindle; what that is worth cannot be said yet.',
+    );
+    const alike = [named('Ada', 0.914), named('Bryn', 0.906)];
+    expect(await readHeadline(alike, 'fr')).toBe(
+      'Ada et Bryn sont réellement devant Brindle, et rapportent davantage chez vous dans 91 saisons sur 100.',
+    );
+  });
+
   it('does not let "really ahead" sound like money when it seldom pays', async () => {
     expect(await readHeadline([withChance(ostermoor, 0.41)], 'en')).toContain(
       'but pays on your own land in only 41 of 100 seasons',
