@@ -55,8 +55,6 @@ export const cautionValues = {
   'no-seed-cost': ['variety'],
   'seed-treatment': [],
   'farm-saved-seed': [],
-  'trial-corrected': ['site', 'season'],
-  'trial-withdrawn': ['site', 'season'],
   'local-advice': [],
 } as const satisfies Record<string, readonly string[]>;
 

@@ -170,6 +170,36 @@ describe('a trial of plots', () => {
     expect(caution?.values['plot']).toBe(plot?.plotNumber);
   });
 
+  test('residuals that are not normal, or spread by entry, are cautioned with their p', () => {
+    // Nine quiet blocks and one that scatters: long tails. A quiet entry beside a wild one: unequal spread.
+    const quiet = [5.1, 4.9, 5.05, 4.95, 5.02, 4.98, 5.08, 4.92, 5, 5.03];
+    const tailed = view(
+      content({
+        plots: blocks({
+          A: [...quiet.slice(0, 9), 8.4],
+          B: [...quiet.slice(1), 2.1],
+          C: [...quiet.slice(2), 5.1, 5.2],
+          D: [...quiet.slice(3), 5.1, 4.9, 4.8],
+        }),
+      }),
+    );
+    const spread = view(
+      content({
+        plots: blocks({
+          A: [5.1, 4.9, 5, 5.1, 4.9, 5, 5.1, 4.9, 5, 5.05],
+          B: [6.9, 3.2, 5.8, 4.1, 6.6, 3.5, 5.9, 4.2, 6.8, 3.4],
+          C: [5, 5.1, 4.95, 5.05, 4.9, 5.1, 5, 4.95, 5.05, 4.9],
+        }),
+      }),
+    );
+    const find = (analysis: typeof tailed, code: string) =>
+      analysis.cautions.find((one) => one.code === code);
+    expect(Number(find(tailed, 'residuals-not-normal')?.values['p'])).toBeLessThan(0.01);
+    expect(find(spread, 'residuals-not-normal')).toBeUndefined();
+    expect(Number(find(spread, 'unequal-spread')?.values['p'])).toBeLessThan(0.01);
+    expect(find(tailed, 'unequal-spread')).toBeUndefined();
+  });
+
   test('what cannot be analysed says why', () => {
     expect(view(content({ plots: blocks({ A: [1, null], B: [null, null] }) }))).toMatchObject({
       kind: 'none',
