@@ -1,16 +1,7 @@
-import { createInstance, type i18n } from 'i18next';
-import { addSentenceFormats } from '#shared/sentence-formats.ts';
+import type { i18n } from 'i18next';
 import errors from '#locales/en/errors.json' with { type: 'json' };
 import problems from '#locales/en/problems.json' with { type: 'json' };
+import { openSentences } from '#server/open-sentences.ts';
 
 /** The product's own sentences for a command's output, in English. */
-export async function openSentences(): Promise<i18n> {
-  const sentences = createInstance();
-  await sentences.init({
-    lng: 'en',
-    resources: { en: { errors, problems } },
-    interpolation: { escapeValue: false },
-  });
-  addSentenceFormats(sentences.services.formatter);
-  return sentences;
-}
+export const openCommandSentences = (): i18n => openSentences('en', { errors, problems }, 'errors');

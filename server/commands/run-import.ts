@@ -7,7 +7,7 @@ import { columnFields } from '#server/trial-desk/match-columns.ts';
 import { publishTrial } from '#server/trials/publish-trial.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { importByteLimit, importFields, importRowLimit, type RowProblem } from '#shared/trial-desk.ts';
-import { openSentences } from './command-sentences.ts';
+import { openCommandSentences } from './command-sentences.ts';
 
 export const importUsage = `Takes a file of plots in as a trial, all of it or nothing.
 
@@ -41,7 +41,7 @@ export async function runImport(db: Database, args: readonly string[], print: Pr
       throw new CodedError('import-too-large', { values: { limit: importRowLimit } });
     return await importFile(db, asked, print);
   } catch (error) {
-    print.refuse(await explainFailure(error));
+    print.refuse(explainFailure(error));
     return 1;
   }
 }
@@ -54,7 +54,7 @@ async function importFile(
   const checked = await checkTrialFile(db, readFileSync(file), request, null);
   const { report } = checked;
   if (checked.content === null) {
-    for (const line of await sayProblems(report.problems)) print.refuse(line);
+    for (const line of sayProblems(report.problems)) print.refuse(line);
     print.refuse(`Problems: ${report.problemsTotal}. Nothing was stored.`);
     return 1;
   }
@@ -119,8 +119,8 @@ function readCommandLine(args: readonly string[]): CommandLine {
 }
 
 /** A line for each problem: where, what was found, what was expected. */
-async function sayProblems(problems: readonly RowProblem[]): Promise<string[]> {
-  const { t } = await openSentences();
+function sayProblems(problems: readonly RowProblem[]): string[] {
+  const { t } = openCommandSentences();
   return problems.map(({ row, column, value, reason, values }) => {
     const where = column === null ? `line ${row}` : `line ${row}, ${column}`;
     const found = value === null || value === '' ? '' : `“${value}”. `;
@@ -128,10 +128,10 @@ async function sayProblems(problems: readonly RowProblem[]): Promise<string[]> {
   });
 }
 
-async function explainFailure(error: unknown): Promise<string> {
+function explainFailure(error: unknown): string {
   if (error instanceof UsageError) return `${error.message}\n\n${importUsage}`;
   if (!(error instanceof CodedError)) return error instanceof Error ? error.message : String(error);
-  const { t } = await openSentences();
+  const { t } = openCommandSentences();
   const limit = error.values?.['limit'];
   return [
     t(`errors:${error.code}`),

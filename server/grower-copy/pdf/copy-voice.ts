@@ -4,7 +4,7 @@ import type { Language } from '#shared/language.ts';
 import { toReader } from '#shared/reader-units.ts';
 import type { Say } from '#shared/say-sentences.ts';
 import { writeFigures, type FigureWriter } from '#shared/write-figures.ts';
-import { openPrintSentences } from './print-sentences.ts';
+import { openSentences } from '#server/open-sentences.ts';
 import type { PrintOrder } from './printed-copy.ts';
 
 /** How a printed copy speaks: one language, one set of units. */
@@ -24,7 +24,7 @@ export type CopyVoice = {
 /** The voice in which a copy is printed. */
 export function openCopyVoice({ language, sentences: given, readerUnits, snapshot }: PrintOrder): CopyVoice {
   const { candidates } = snapshot.result;
-  const sentences = openPrintSentences(language, given);
+  const sentences = openSentences(language, given, 'print');
   const say: Say<string> = (key, values) => sentences.t(key, values ?? {});
   const write = writeFigures(language, readerUnits);
   const unit = 't/ha';

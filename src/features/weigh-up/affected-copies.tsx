@@ -76,7 +76,7 @@ function AffectedLine({ copy, isMailSetUp, onRenewed }: AffectedLineProps) {
           {grower}
         </Link>
         <span className="text-faded">
-          {` · ${farm} · ${format.name(copy.cropName)} · ${t('copies.affected.madeOn', { date: format.date(copy.madeAt) })}`}
+          {` · ${farm} · ${format.name(copy.cropName)} · ${t('copies.affected.madeOn', { date: format.dateTime(copy.madeAt) })}`}
         </span>
         <span className="block text-sm text-break-even">
           {copy.laterChanges

@@ -3,18 +3,18 @@ import { languages, type Language } from '#shared/language.ts';
 import { addSentenceFormats } from '#shared/sentence-formats.ts';
 
 /**
- * The sentences of a printed copy.
- * @param sentences those of the copy in that language, by namespace
+ * Sentences outside the pages, with figures and dates written as on them.
+ * @param sentences of that language, by namespace; all of them are there, so nothing need be waited for
+ * @param defaultNS where a key without a namespace is looked for
  */
-export function openPrintSentences(language: Language, sentences: ResourceLanguage): i18n {
+export function openSentences(language: Language, sentences: ResourceLanguage, defaultNS: string): i18n {
   const opened = createInstance();
   void opened.init({
     lng: language,
     supportedLngs: [...languages],
     fallbackLng: false,
     resources: { [language]: sentences },
-    defaultNS: 'print',
-    // The sentences are there already, so nothing need be waited for.
+    defaultNS,
     initAsync: false,
     interpolation: { escapeValue: false },
   });
