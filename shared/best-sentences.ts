@@ -1,5 +1,5 @@
 import type { Language } from './account.ts';
-import type { BestOfList } from './question-kind.ts';
+import type { BestOfList, BestStanding } from './question-kind.ts';
 import type { Say } from './say-sentences.ts';
 
 type BestKey = `verdicts:best.${'may' | 'all' | 'currentMay' | 'currentNot' | 'thin'}`;
@@ -31,3 +31,15 @@ export function tellBest(
   if (thin.length > 0) said.push(say('verdicts:best.thin', { names: list.format(thin) }));
   return said;
 }
+
+type StandingKey = `verdicts:best.${'isBest' | 'mayBe' | 'isNot'}`;
+
+/** Whether a variety of the list can be its best, in a few words. */
+export const sayStanding = (
+  { isBest, mayBeBest }: Pick<BestStanding, 'isBest' | 'mayBeBest'>,
+  say: Say<StandingKey>,
+): string => say(`verdicts:best.${isBest ? 'isBest' : mayBeBest ? 'mayBe' : 'isNot'}`);
+
+/** What stands for the standard error of a list's figures, which have none: a quarter of the widest interval, t/ha. */
+export const errorOfStandings = (standings: readonly BestStanding[]): number =>
+  Math.max(...standings.map(({ interval }) => interval.high - interval.low)) / 4;

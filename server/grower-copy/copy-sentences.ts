@@ -18,17 +18,33 @@ import frVerdicts from '#locales/fr/verdicts.json' with { type: 'json' };
 /** The sentences of a copy in both languages, by namespace. */
 export type BilingualSentences = Record<Language, CopySentences>;
 
+const english = {
+  cautions: enCautions,
+  common: enCommon,
+  copy: enCopy,
+  drawings: enDrawings,
+  method: enMethod,
+  print: enPrint,
+  verdicts: enVerdicts,
+};
+
+/** Every key by which a copy may ask for a sentence, with its namespace: `copy:failed.away.title`. */
+export type CopySentenceKey = {
+  [Namespace in keyof typeof english]: `${Namespace}:${KeyIn<(typeof english)[Namespace]>}`;
+}[keyof typeof english];
+
+/** Keys of nested texts, joined by dots; the forms of a plural are one key. */
+type KeyIn<Texts> = {
+  [Name in keyof Texts & string]: Texts[Name] extends string
+    ? WithoutForm<Name>
+    : `${Name}.${KeyIn<Texts[Name]>}`;
+}[keyof Texts & string];
+
+type WithoutForm<Name extends string> = Name extends `${infer Plain}_${'one' | 'other'}` ? Plain : Name;
+
 /** Every sentence that a copy may say, as it is today. */
 export const presentSentences: BilingualSentences = {
-  en: {
-    cautions: enCautions,
-    common: enCommon,
-    copy: enCopy,
-    drawings: enDrawings,
-    method: enMethod,
-    print: enPrint,
-    verdicts: enVerdicts,
-  },
+  en: english,
   fr: {
     cautions: frCautions,
     common: frCommon,

@@ -1,5 +1,5 @@
 import { useTranslation } from 'react-i18next';
-import { tellBest } from '#shared/best-sentences.ts';
+import { errorOfStandings, sayStanding, tellBest } from '#shared/best-sentences.ts';
 import type { BestOfList, BestStanding } from '#shared/question-kind.ts';
 import { DataTable, type Column } from './data-table.tsx';
 import { useFormat } from './use-format.ts';
@@ -35,8 +35,7 @@ function BestStandings({ standings }: { standings: readonly BestStanding[] }) {
   const format = useFormat();
   const [first] = standings;
   if (first === undefined) return null;
-  const half = Math.max(...standings.map(({ interval }) => interval.high - interval.low)) / 2;
-  const decimals = format.decimals(half / 2, unit);
+  const decimals = format.decimals(errorOfStandings(standings), unit);
   const columns: Column<BestStanding>[] = [
     {
       id: 'variety',
@@ -60,8 +59,7 @@ function BestStandings({ standings }: { standings: readonly BestStanding[] }) {
     {
       id: 'verdict',
       header: t('verdicts:best.verdict'),
-      cell: ({ isBest, mayBeBest }) =>
-        t(isBest ? 'verdicts:best.isBest' : mayBeBest ? 'verdicts:best.mayBe' : 'verdicts:best.isNot'),
+      cell: (standing) => sayStanding(standing, t),
     },
   ];
   return (

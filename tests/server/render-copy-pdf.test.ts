@@ -1,4 +1,5 @@
-import { describe, expect, test } from 'vitest';
+import { describe, expect, expectTypeOf, test } from 'vitest';
+import type { CopySentenceKey } from '#server/grower-copy/copy-sentences.ts';
 import { renderCopyPdf } from '#server/grower-copy/pdf/render-copy-pdf.ts';
 import { buildCandidate, buildOrder, manyCautions } from '#tests/support/copy-order.ts';
 import { findMisplaced, listElements, readPdf } from '#tests/support/read-pdf.ts';
@@ -136,4 +137,31 @@ test('yields are written in the unit that the grower reads', async () => {
   // 0.50 t/ha of 48 lb bushels: 0.5 × 0.40468564224 / (48 × 0.00045359237).
   expect(words).toContain('+9.3 bu/ac');
   expect(words).not.toContain('t/ha against');
+});
+
+test('the best of a list is told with each variety’s standing, in a table of its own', async () => {
+  const standing = (n: number, varietyName: string, low: number, high: number) => ({
+    varietyId: `00000000-0000-4000-8000-${String(n).padStart(12, '0')}`,
+    varietyName,
+    estimate: (low + high) / 2,
+    interval: { low, high, level: 0.95 },
+    mayBeBest: high > 0,
+    isBest: low >= 0,
+  });
+  const standings = [standing(1, 'Quillane', 0, 0.62), standing(2, 'Tamberlow', -0.84, 0)];
+  const order = buildOrder({ best: { standings, thin: ['Larkhollow'] } });
+  const { words, structure } = await readPdf(renderCopyPdf(order));
+  expect(words).toContain('Each variety of the list against the best of the others');
+  expect(words).toContain('95% interval, all at once');
+  expect(words).toMatch(/Quillane \+0\.31 t.ha 0\.00 to \+0\.62 t.ha It alone can/);
+  expect(words).toMatch(/Tamberlow −0\.42 t.ha −0\.84 to 0\.00 t.ha Shown not to be/);
+  const tablesOf = (elements: typeof structure) =>
+    listElements(elements).filter(({ role }) => role === 'Table').length;
+  const without = await readPdf(renderCopyPdf(buildOrder()));
+  expect(tablesOf(structure)).toBe(tablesOf(without.structure) + 1);
+});
+
+test('a key without a sentence does not compile', () => {
+  expectTypeOf<'verdicts:best.show' | 'print:foot' | 'verdicts:cautionCount'>().toExtend<CopySentenceKey>();
+  expectTypeOf<'verdicts:best.gone'>().not.toExtend<CopySentenceKey>();
 });

@@ -68,6 +68,11 @@ describe.each(files)('%s', (file) => {
     expect(loose).toEqual([]);
   });
 
+  test('ends no line between a statistic and its figure', () => {
+    const loose = [...english, ...french].filter(([, text]) => /(?<![\p{L}\d])[pFWI] \{\{/u.test(text));
+    expect(loose).toEqual([]);
+  });
+
   test('has no empty text', () => {
     const empty = [...english, ...french].filter(([, text]) => text.trim() === '');
     expect(empty).toEqual([]);

@@ -1,5 +1,6 @@
 import type { Caution } from '#shared/caution.ts';
 import type { Trait } from '#shared/catalogue.ts';
+import type { BestOfList } from '#shared/question-kind.ts';
 import type { CandidateResult, GapEstimate, TrialGap, UsedTrial } from '#shared/weigh-up.ts';
 import { storedUnits } from '#shared/reader-units.ts';
 import { presentSentences } from '#server/grower-copy/copy-sentences.ts';
@@ -124,6 +125,7 @@ type OrderChange = Partial<Omit<PrintOrder, 'snapshot'>> & {
   trials?: number;
   leftOut?: PrintOrder['snapshot']['result']['leftOut'];
   answer?: 'weighed' | 'no-trials';
+  best?: BestOfList | null;
 };
 
 /** A copy to be put on paper. */
@@ -133,6 +135,7 @@ export function buildOrder({
   trials = 12,
   leftOut = [],
   answer = 'weighed',
+  best = null,
   ...change
 }: OrderChange = {}): PrintOrder {
   const language = change.language ?? 'en';
@@ -163,6 +166,7 @@ export function buildOrder({
         computedAt: '2026-12-01T15:00:00.000Z',
         engineVersion: '1',
         comparison: 'dunnett',
+        best,
         sites: 5,
         seasons: [2022, 2025],
         trials: usedTrials(trials),

@@ -4,13 +4,14 @@ import type { Language } from '#shared/language.ts';
 import { toReader } from '#shared/reader-units.ts';
 import type { Say } from '#shared/say-sentences.ts';
 import { writeFigures, type FigureWriter } from '#shared/write-figures.ts';
+import type { CopySentenceKey } from '#server/grower-copy/copy-sentences.ts';
 import { openSentences } from '#server/open-sentences.ts';
 import type { PrintOrder } from './printed-copy.ts';
 
 /** How a printed copy speaks: one language, one set of units. */
 export type CopyVoice = {
   language: Language;
-  say: Say<string>;
+  say: Say<CopySentenceKey>;
   write: FigureWriter;
   tellCautions: (cautions: readonly Caution[]) => CautionSentence[];
   /** Stored unit of yield gaps; `write` brings it to the reader's. */
@@ -25,7 +26,7 @@ export type CopyVoice = {
 export function openCopyVoice({ language, sentences: given, readerUnits, snapshot }: PrintOrder): CopyVoice {
   const { candidates } = snapshot.result;
   const sentences = openSentences(language, given, 'print');
-  const say: Say<string> = (key, values) => sentences.t(key, values ?? {});
+  const say: Say<CopySentenceKey> = (key, values) => sentences.t(key, values ?? {});
   const write = writeFigures(language, readerUnits);
   const unit = 't/ha';
   return {

@@ -237,7 +237,7 @@ describe('checks', () => {
         }}
       />,
     );
-    expect(text).toContain('No drift by column number: F 21.33 on 1 and 24 df, p <');
+    expect(text).toContain('No drift by column number: F\u00a021.33 on 1 and 24 df, p\u00a0<');
     expect(text).toContain('Tukey’s one degree of freedom');
     expect(text).toContain('Moran');
     expect(text).toContain('0.84');
