@@ -22,7 +22,9 @@ const copyBuild: UserConfig = {
     emptyOutDir: false,
     manifest: '.vite/copy-manifest.json',
     modulePreload: false,
-    rollupOptions: { input: [`${copyPage}/start-copy-page.tsx`, `${copyPage}/copy-page.css`] },
+    rollupOptions: {
+      input: [`${copyPage}/start-copy-page.tsx`, `${copyPage}/copy-page.css`, 'src/fonts.css'],
+    },
   },
 };
 

@@ -14,6 +14,7 @@ import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
 import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
+import { findCopyPageFiles } from './grower-copy/copy-page-files.ts';
 import { addCopyPage, keepLinkPrivate } from './grower-copy/copy-page-routes.ts';
 import { addCopyPdf } from './grower-copy/pdf/copy-pdf-routes.ts';
 import { addGrowerCopyRoutes } from './grower-copy/grower-copy-routes.ts';
@@ -62,12 +63,13 @@ export function buildApp(
       serializers: { err: describeFailure, req: hideLinkSecret },
     }),
   );
-  app.use(buildHelmet(settings));
+  const copyFiles = findCopyPageFiles(settings.clientFolder);
+  app.use(buildHelmet(settings, copyFiles.style));
   app.use(compression());
   addApi(app, db, pool, settings, onMailQueued);
   app.use('/copy', keepLinkPrivate);
   addCopyPdf(app, db, settings);
-  addCopyPage(app, db, settings);
+  addCopyPage(app, db, copyFiles);
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
   app.use(handleError);
   return app;
@@ -122,14 +124,17 @@ function serveClient(app: Express, clientFolder: string): void {
   });
 }
 
-/** Headers: everything from our own origin; the charts set style attributes. Plain http on loopback gets no upgrade. */
-function buildHelmet(settings: ServerSettings): express.RequestHandler {
+/** Headers: everything from our own origin, or the one style in the pages of copies; the charts set style attributes. Plain http on loopback gets no upgrade. */
+function buildHelmet(
+  settings: ServerSettings,
+  copyStyle: ReturnType<typeof findCopyPageFiles>['style'],
+): express.RequestHandler {
   return helmet({
     contentSecurityPolicy: {
       directives: {
         defaultSrc: ["'self'"],
         scriptSrc: ["'self'"],
-        styleSrc: ["'self'"],
+        styleSrc: ["'self'", ...('hash' in copyStyle ? [`'${copyStyle.hash}'`] : [])],
         styleSrcAttr: ["'unsafe-inline'"],
         imgSrc: ["'self'", 'data:'],
         fontSrc: ["'self'"],

@@ -1,19 +1,18 @@
+import { createHash } from 'node:crypto';
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import type { CopyPageFiles } from '#src/features/grower-copy/render-copy-page.ts';
+import type { CopyPageFiles, CopyPageStyle } from '#src/features/grower-copy/render-copy-page.ts';
 
 /** Sources of what the page fetches: Vite serves them as they are in development, and builds them for production. */
 const sources = {
   icon: 'src/gavelrow.svg',
   style: 'src/features/grower-copy/copy-page.css',
   script: 'src/features/grower-copy/start-copy-page.tsx',
-  fonts: [400, 700].map(
-    (weight) => `node_modules/@fontsource/noto-sans/files/noto-sans-latin-${weight}-normal.woff2`,
-  ),
+  fonts: 'src/fonts.css',
 };
 
 /**
- * Addresses of the page's style, script and fonts.
+ * The page's style, and the addresses of what it fetches beside.
  * @param clientFolder the built client; null for the sources, which `npm run dev` serves
  * @throws when the build has no such file
  */
@@ -21,10 +20,16 @@ export function findCopyPageFiles(clientFolder: string | null): CopyPageFiles {
   const addressOf = clientFolder === null ? (source: string) => `/${source}` : readManifest(clientFolder);
   return {
     icon: addressOf(sources.icon),
-    style: addressOf(sources.style),
+    style: clientFolder === null ? { address: addressOf(sources.style) } : readStyle(clientFolder, addressOf),
     script: addressOf(sources.script),
-    fonts: sources.fonts.map(addressOf),
+    fonts: addressOf(sources.fonts),
   };
+}
+
+/** In the page itself the style costs no way to the server and back before anything is seen. */
+function readStyle(clientFolder: string, addressOf: (source: string) => string): CopyPageStyle {
+  const text = readFileSync(join(clientFolder, addressOf(sources.style)), 'utf8');
+  return { text, hash: `sha256-${createHash('sha256').update(text).digest('base64')}` };
 }
 
 function readManifest(clientFolder: string): (source: string) => string {

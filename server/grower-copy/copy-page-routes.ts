@@ -7,12 +7,12 @@ import type { YieldUnit } from '#shared/units.ts';
 import {
   renderCopyPage,
   renderFailedCopyPage,
+  takeCopyScriptData,
   type CopyFailure,
+  type CopyPageFiles,
 } from '#src/features/grower-copy/render-copy-page.ts';
 import type { Database } from '#server/db.ts';
-import type { ServerSettings } from '#server/env.ts';
 import { settleFailure } from '#server/error-handler.ts';
-import { findCopyPageFiles } from './copy-page-files.ts';
 import { presentSentences } from './copy-sentences.ts';
 import { openCopy } from './grower-copy-store.ts';
 
@@ -27,19 +27,16 @@ export const keepLinkPrivate: RequestHandler = (_request, response, next) => {
 };
 
 /** The copy behind its link, as a page: 200, or 404 and 410 with a page of their own. */
-export function addCopyPage(router: Router, db: Database, settings: ServerSettings): void {
-  const files = findCopyPageFiles(settings.clientFolder);
-
+export function addCopyPage(router: Router, db: Database, files: CopyPageFiles): void {
   router.get('/copy/:token', async (request, response) => {
-    const { copy, sentences } = await openCopy(db, request.params.token, { isCounted: isOpening(request) });
-    const language = askedLanguage(request) ?? copy.language;
-    const page = renderCopyPage(copy, {
-      language,
-      sentences: sentences[language],
-      files,
-      yieldUnit: askedUnit(request) ?? 't/ha',
-    });
-    sendPage(request, response, page);
+    const { copy, spoken } = await openAsAsked(db, request, isOpening(request));
+    sendTagged(request, response.type('html'), renderCopyPage(copy, { ...spoken, files }));
+  });
+
+  // What the page's script takes the answer over with; the page was counted before.
+  router.get('/copy/:token/answer', async (request, response) => {
+    const { copy, spoken } = await openAsAsked(db, request, false);
+    sendTagged(request, response.type('json'), JSON.stringify(takeCopyScriptData(copy, spoken)));
   });
 
   const showFailure: ErrorRequestHandler = (error: unknown, request, response, next) => {
@@ -65,11 +62,21 @@ const linkFailures: readonly CopyFailure[] = ['link-unknown', 'link-expired', 'l
 const nameFailure = (code: ErrorCode): CopyFailure =>
   linkFailures.find((failure) => failure === code) ?? 'away';
 
-/** The tag is one of the whole page, so it changes with whatever changes a sign of it. */
-function sendPage(request: Request, response: Response, page: string): void {
-  response.set('ETag', `"${createHash('sha256').update(page).digest('base64url')}"`);
+/** The copy with its sentences, in the language and the unit of yield that the address asks for. */
+async function openAsAsked(db: Database, request: Request<{ token: string }>, isCounted: boolean) {
+  const { copy, sentences } = await openCopy(db, request.params.token, { isCounted });
+  const language = askedLanguage(request) ?? copy.language;
+  return {
+    copy,
+    spoken: { language, sentences: sentences[language], yieldUnit: askedUnit(request) ?? ('t/ha' as const) },
+  };
+}
+
+/** The tag is one of all that is sent, so it changes with whatever changes a sign of it. */
+function sendTagged(request: Request, response: Response, text: string): void {
+  response.set('ETag', `"${createHash('sha256').update(text).digest('base64url')}"`);
   if (request.fresh) response.status(304).end();
-  else response.type('html').send(page);
+  else response.send(text);
 }
 
 /** A switch of language or unit on the page itself opens nothing anew, and neither does a look at the headers. */

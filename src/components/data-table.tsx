@@ -88,15 +88,15 @@ export function DataTable<Row>({
         {...(isTurned ? {} : { tabIndex: 0, role: 'group', 'aria-labelledby': captionId })}
       >
         {/* Roles are repeated because a turned table is laid out as blocks, and browsers then drop its meaning. */}
-        <table role="table" className="w-full border-collapse text-left">
+        <table role="table" className={isTurned ? 'data-table turns-to-cards' : 'data-table'}>
           <caption
             id={captionId}
             className={isCaptionVisible ? 'pb-2 text-left text-sm text-faded' : 'sr-only'}
           >
             {caption}
           </caption>
-          <thead role="rowgroup" className={isTurned ? '@max-xl:hidden' : ''}>
-            <tr role="row" className="border-b-2 border-ink">
+          <thead role="rowgroup">
+            <tr role="row">
               {columns.map((column) => (
                 <HeadCell key={column.id} column={column} sort={sort} onSort={setSort} />
               ))}
@@ -104,11 +104,7 @@ export function DataTable<Row>({
           </thead>
           <tbody role="rowgroup">
             {sorted.map((row) => (
-              <tr
-                role="row"
-                key={rowKey(row)}
-                className={`border-b border-rule ${isTurned ? '@max-xl:block @max-xl:py-3' : ''}`}
-              >
+              <tr role="row" key={rowKey(row)}>
                 {columns.map((column) => (
                   <BodyCell
                     key={column.id}
@@ -135,63 +131,50 @@ type HeadCellProps<Row> = {
 
 function HeadCell<Row>({ column, sort, onSort }: HeadCellProps<Row>) {
   const isSorted = sort?.columnId === column.id;
-  const side = column.align === 'end' ? 'text-right' : 'text-left';
-  const space = 'px-2 @max-xl:px-1 first:pl-0 last:pr-0 text-sm font-semibold text-faded align-bottom';
+  const side = sideOf(column);
   if (!column.sortValue) {
     return (
-      <th role="columnheader" scope="col" className={`${space} py-2 ${side}`}>
+      <th role="columnheader" scope="col" className={side}>
         {column.header}
       </th>
     );
   }
   const direction = sort?.isDescending ? 'descending' : 'ascending';
   return (
-    <th
-      role="columnheader"
-      scope="col"
-      aria-sort={isSorted ? direction : 'none'}
-      className={`${space} ${side}`}
-    >
+    <th role="columnheader" scope="col" aria-sort={isSorted ? direction : 'none'} className={side}>
       <SortHeading
         words={column.header}
         direction={isSorted ? direction : null}
         onSort={() => onSort({ columnId: column.id, isDescending: isSorted && !sort.isDescending })}
-        className={side}
+        className={column.align === 'end' ? 'text-right' : 'text-left'}
       />
     </th>
   );
 }
 
+const sideOf = <Row,>({ align }: Column<Row>): 'at-end' | undefined =>
+  align === 'end' ? 'at-end' : undefined;
+
 type BodyCellProps<Row> = { column: Column<Row>; row: Row; isHead: boolean; isTurned: boolean };
 
 function BodyCell<Row>({ column, row, isHead, isTurned }: BodyCellProps<Row>) {
-  const side = column.align === 'end' ? 'text-right' : 'text-left';
-  const space = 'px-2 py-2 print:py-1 first:pl-0 last:pr-0 align-top';
   if (isHead) {
     return (
-      <th
-        role="rowheader"
-        scope="row"
-        className={`${space} ${side} font-semibold ${isTurned ? '@max-xl:block @max-xl:px-0 @max-xl:pt-0 @max-xl:text-left' : '@max-xl:px-1 @max-xl:text-sm'}`}
-      >
+      <th role="rowheader" scope="row" className={sideOf(column)}>
         {column.cell(row)}
       </th>
     );
   }
-  if (!isTurned) {
-    return (
-      <td role="cell" className={`${space} ${side} @max-xl:px-1 @max-xl:text-sm`}>
-        {column.cell(row)}
-      </td>
-    );
-  }
   return (
-    <td
-      role="cell"
-      className={`${space} ${side} @max-xl:flex @max-xl:items-baseline @max-xl:justify-between @max-xl:gap-4 @max-xl:px-0 @max-xl:py-1 @max-xl:text-right`}
-    >
-      <span className="hidden shrink-0 text-left text-sm text-faded @max-xl:inline">{column.header}</span>
-      <span className="min-w-0">{column.cell(row)}</span>
+    <td role="cell" className={sideOf(column)}>
+      {isTurned ? (
+        <>
+          <span className="cell-name">{column.header}</span>
+          <span>{column.cell(row)}</span>
+        </>
+      ) : (
+        column.cell(row)
+      )}
     </td>
   );
 }

@@ -10,7 +10,8 @@ export function VerdictHeadline({ candidates, currentName }: VerdictHeadlineProp
   const say = useHeadlineSentence(currentName);
   const parts = buildHeadline(candidates);
   return (
-    <p className="max-w-prose text-lg md:text-xl print:text-base">
+    // The browser notes when it is first painted: how long a reader waits for the answer is what counts.
+    <p className="max-w-prose text-lg md:text-xl print:text-base" {...{ elementtiming: 'verdict' }}>
       {parts.map((part) => {
         const key = `${part.key} ${part.names.join()}`;
         return part.isLead ? (

@@ -3,7 +3,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { seedDemo, type SeededDemo } from '#server/demo/seed-demo.ts';
 import { trialContent } from '#shared/trial-content.ts';
 import { hashTrialContent } from '#server/trials/trial-content-hash.ts';
-import { readCopyData } from '#tests/support/read-copy-page.ts';
+import type { CopyPageData } from '#tests/support/read-copy-page.ts';
 import { makeRegion } from '#tests/support/factories.ts';
 import { createTestDatabase } from '#tests/support/test-database.ts';
 import { buildWorld, type Agent, type ApiWorld } from './api-world.ts';
@@ -103,11 +103,8 @@ describe('the seeded demo', () => {
 
   test('gives out a grower link that opens without an account', async () => {
     expect(demo.growerPath).toMatch(/^\/copy\/[\w-]+$/);
-    const { text } = await world
-      .visitor()
-      .get(demo.growerPath ?? '')
-      .expect(200);
-    const { weighUp, candidates } = readCopyData(text).answer;
+    const { body } = await world.visitor().get(`${demo.growerPath}/answer`).expect(200);
+    const { weighUp, candidates } = (body as CopyPageData).answer;
     expect(weighUp.currentVarietyName).toBe('Tamberlow');
     expect(candidates).toHaveLength(5);
     const unpriced = candidates.find(({ varietyName }) => varietyName === 'Larkhollow');

@@ -1,7 +1,7 @@
 import type { Language } from '#shared/language.ts';
 import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
 
-/** What the page of a grower copy carries for its script, as far as tests ask for it. */
+/** What the script of a grower copy's page is given, as far as tests ask for it. */
 export type CopyPageData = {
   language: Language;
   answer: { weighUp: Partial<WeighUp>; candidates: CandidateResult[]; practicalMargin: number | null };
@@ -16,11 +16,4 @@ export function readWords(html: string): string {
     .replace(/<\/(p|li|h\d|td|th|div|summary|title|label|caption)>/g, '\n')
     .replace(/<[^>]*>/g, '')
     .replace(/&(#?\w+);/g, (whole, name: string) => entities[name] ?? whole);
-}
-
-/** @throws Error when the page carries no data, as the pages of dead links do not */
-export function readCopyData(html: string): CopyPageData {
-  const json = /<script id="copy-data" type="application\/json">(.*?)<\/script>/s.exec(html)?.[1];
-  if (json === undefined) throw new Error('the page carries no data');
-  return JSON.parse(json) as CopyPageData;
 }

@@ -10,14 +10,13 @@ import type { CopyPageFiles } from './copy-page-inputs.ts';
 type CopyDocumentProps = {
   title: string;
   files: CopyPageFiles;
-  /** For the page's script, which is left out without it. */
-  data?: string;
-  dataId?: string;
+  /** Whether the page's script has something to do. */
+  hasScript: boolean;
   children: ReactNode;
 };
 
 /** The whole page: search engines are kept out, the link is told to nobody, and every way works without scripts. */
-export function CopyDocument({ title, files, data, dataId, children }: CopyDocumentProps) {
+export function CopyDocument({ title, files, hasScript, children }: CopyDocumentProps) {
   const { t } = useTranslation(['copy', 'common']);
   return (
     <html lang={useLanguage()}>
@@ -30,11 +29,11 @@ export function CopyDocument({ title, files, data, dataId, children }: CopyDocum
         <meta name="theme-color" content="#1b1d18" media="(prefers-color-scheme: dark)" />
         <title>{t('common:pageTitle', { page: title })}</title>
         <link rel="icon" href={files.icon} type="image/svg+xml" />
-        <link rel="stylesheet" href={files.style} />
-        {files.fonts.map((font) => (
-          <link key={font} rel="preload" href={font} as="font" type="font/woff2" crossOrigin="anonymous" />
-        ))}
-        {data !== undefined && <script type="module" src={files.script} />}
+        {'text' in files.style ? (
+          <style dangerouslySetInnerHTML={{ __html: files.style.text }} />
+        ) : (
+          <link rel="stylesheet" href={files.style.address} />
+        )}
       </head>
       <body>
         <a
@@ -57,9 +56,9 @@ export function CopyDocument({ title, files, data, dataId, children }: CopyDocum
         <main id="page" tabIndex={-1} className="mx-auto max-w-prose px-4 pb-16 pt-5 outline-none">
           {children}
         </main>
-        {data !== undefined && (
-          <script id={dataId} type="application/json" dangerouslySetInnerHTML={{ __html: data }} />
-        )}
+        {/* After the text, which is read in the system's type face until ours has come: a phone is busy enough until then. */}
+        <link rel="stylesheet" href={files.fonts} />
+        {hasScript && <script type="module" src={files.script} />}
       </body>
     </html>
   );

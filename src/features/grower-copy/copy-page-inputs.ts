@@ -1,10 +1,13 @@
-/** Addresses of what the page of a copy fetches. */
+/** A style sheet at its address, or in the page itself under the hash by which the security policy lets it through. */
+export type CopyPageStyle = { address: string } | { text: string; hash: string };
+
+/** What the page of a copy is made of beside its text. */
 export type CopyPageFiles = {
-  style: string;
+  style: CopyPageStyle;
   icon: string;
   script: string;
-  /** Of the weights in the first screen. */
-  fonts: readonly string[];
+  /** Style sheet that names the fonts. */
+  fonts: string;
 };
 
 /** Why there is no copy to show. */

@@ -3,19 +3,17 @@ import type { OpenedCopy } from '#shared/grower-copy.ts';
 import { CopyBody, useCopyTitle } from './copy-body.tsx';
 import { CopyDocument } from './copy-document.tsx';
 import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
-import { dataId } from './copy-script-data.ts';
 
 type CopyPageProps = {
   copy: OpenedCopy;
   files: CopyPageFiles;
-  data: string | undefined;
   answerHtml: string | null;
 };
 
 /** The page of a copy, whole: it says everything before any script has come. */
-export function CopyPage({ copy, files, data, answerHtml }: CopyPageProps) {
+export function CopyPage({ copy, files, answerHtml }: CopyPageProps) {
   return (
-    <CopyDocument title={useCopyTitle(copy)} files={files} data={data} dataId={dataId}>
+    <CopyDocument title={useCopyTitle(copy)} files={files} hasScript={answerHtml !== null}>
       <CopyBody copy={copy} answerHtml={answerHtml} />
     </CopyDocument>
   );
@@ -26,7 +24,7 @@ export function FailedCopyPage({ failure, files }: { failure: CopyFailure; files
   const { t } = useTranslation('copy');
   const title = t(`failed.${failure}.title`);
   return (
-    <CopyDocument title={title} files={files}>
+    <CopyDocument title={title} files={files} hasScript={false}>
       <h1 className="mb-5">{title}</h1>
       <p>{t(`failed.${failure}.text`)}</p>
     </CopyDocument>

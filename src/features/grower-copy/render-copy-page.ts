@@ -10,21 +10,22 @@ import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
 import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
 import { CopyPage, FailedCopyPage } from './copy-page.tsx';
-import { answerNamespaces, writeScriptData } from './copy-script-data.ts';
+import { answerNamespaces, type CopyScriptData } from './copy-script-data.ts';
 import { openCopySentences, type CopySentences } from './open-copy-sentences.ts';
 
 // The front door for the server. Without JSX: the compiler takes types over from another project's .ts files alone.
 
-export type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
+export type { CopyFailure, CopyPageFiles, CopyPageStyle } from './copy-page-inputs.ts';
 export type { CopySentences } from './open-copy-sentences.ts';
 
-type PageOptions = { language: Language; sentences: CopySentences; files: CopyPageFiles };
-type CopyPageOptions = PageOptions & { yieldUnit: YieldUnit };
+type SpokenOptions = { language: Language; sentences: CopySentences };
+type PageOptions = SpokenOptions & { files: CopyPageFiles };
+type WithUnit = { yieldUnit: YieldUnit };
 
 /** The page of a copy as HTML. */
 export function renderCopyPage(
   copy: OpenedCopy,
-  { language, sentences, files, yieldUnit }: CopyPageOptions,
+  { language, sentences, files, yieldUnit }: PageOptions & WithUnit,
 ): string {
   const units = readerUnitsOfCopy(copy.snapshot, yieldUnit);
   const inLanguage = (part: ReactNode) =>
@@ -33,18 +34,21 @@ export function renderCopyPage(
       { i18n: openCopySentences(language, sentences) },
       createElement(ReaderUnitsProvider, { units, children: part }),
     );
-  const { result } = copy.snapshot;
-  if (result.answer === 'no-trials') {
-    return writeDocument(
-      inLanguage(createElement(CopyPage, { copy, files, answerHtml: null, data: undefined })),
-    );
-  }
   const answer = takeAnswer(copy);
   // A root of its own, so that the script finds in it what it would have rendered itself.
-  const answerHtml = renderToString(inLanguage(createElement(CopyAnswer, answer)));
+  const answerHtml = answer === null ? null : renderToString(inLanguage(createElement(CopyAnswer, answer)));
+  return writeDocument(inLanguage(createElement(CopyPage, { copy, files, answerHtml })));
+}
+
+/** What the script of a copy's page asks for; null where it has nothing to do. */
+export function takeCopyScriptData(
+  copy: OpenedCopy,
+  { language, sentences, yieldUnit }: SpokenOptions & WithUnit,
+): CopyScriptData | null {
+  const answer = takeAnswer(copy);
+  if (answer === null) return null;
   const said = Object.fromEntries(answerNamespaces.map((name) => [name, sentences[name] ?? {}]));
-  const data = writeScriptData({ language, units, answer, sentences: said });
-  return writeDocument(inLanguage(createElement(CopyPage, { copy, files, answerHtml, data })));
+  return { language, units: readerUnitsOfCopy(copy.snapshot, yieldUnit), sentences: said, answer };
 }
 
 /** The page for a link that leads to no copy, or for a moment at which none can be read. */
@@ -60,8 +64,9 @@ export function renderFailedCopyPage(
 
 const writeDocument = (page: ReactNode): string => `<!doctype html>${renderToStaticMarkup(page)}`;
 
-/** Of the snapshot what the answer shows; cautions are told by the page itself. */
-function takeAnswer({ snapshot: { weighUp, result, traits } }: OpenedCopy): CopyAnswerProps {
+/** Of the snapshot what the answer shows, null without trials; cautions are told by the page itself. */
+function takeAnswer({ snapshot: { weighUp, result, traits } }: OpenedCopy): CopyAnswerProps | null {
+  if (result.answer === 'no-trials') return null;
   const { currentVarietyName, areaHectares, assumptions } = weighUp;
   return {
     weighUp: { currentVarietyName, areaHectares, assumptions },

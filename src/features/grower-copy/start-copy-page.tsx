@@ -3,16 +3,27 @@ import { hydrateRoot } from 'react-dom/client';
 import { I18nextProvider } from 'react-i18next';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer } from './copy-answer.tsx';
-import { answerId, dataId, type CopyScriptData } from './copy-script-data.ts';
+import { answerId, type CopyScriptData } from './copy-script-data.ts';
 import { openCopySentences } from './open-copy-sentences.ts';
 import { carryOwnPrice } from './own-price-fragment.ts';
 
-const answer = document.getElementById(answerId);
-const data = document.getElementById(dataId)?.textContent;
-if (answer === null || data === undefined) throw new Error('The page of the copy is not whole');
+const firstWaitMs = 1000;
+const longestWaitMs = 60_000;
 
-// Written by the page that brought this script.
-const { language, units, sentences, answer: props } = JSON.parse(data) as CopyScriptData;
+/** Signal comes and goes on a field: what this page needs is asked for until the server says that there is none. */
+async function fetchScriptData(): Promise<CopyScriptData> {
+  for (let wait = firstWaitMs; ; wait = Math.min(2 * wait, longestWaitMs)) {
+    const reply = await fetch(`${location.pathname}/answer${location.search}`).catch(() => null);
+    // Written by the server that sent this script.
+    if (reply?.ok === true) return (await reply.json()) as CopyScriptData;
+    if (reply !== null && reply.status < 500) throw new Error(`the answer is refused with ${reply.status}`);
+    await new Promise((resolve) => setTimeout(resolve, wait));
+  }
+}
+
+const answer = document.getElementById(answerId);
+if (answer === null) throw new Error('The page of the copy is not whole');
+const { language, units, sentences, answer: props } = await fetchScriptData();
 hydrateRoot(
   answer,
   <I18nextProvider i18n={openCopySentences(language, sentences)}>
