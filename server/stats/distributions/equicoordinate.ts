@@ -2,8 +2,21 @@ import { normalUpper } from './normal.ts';
 import type { OneFactor } from './one-factor.ts';
 
 const INV_SQRT_2PI = 0.3989422804014327;
-/** Sizes of a normal deviate beyond which nothing is left to add. */
-const REACH = 8.7;
+
+/** How closely the shared factor is summed over. */
+interface FactorRule {
+  /** Size of a normal deviate beyond which nothing is left to add. */
+  readonly reach: number;
+  /** Step of the trapezoidal rule where correlations are moderate. */
+  readonly step: number;
+  /** Part of exp(−w²/2) below which what is outside the factor adds nothing. */
+  readonly negligible: number;
+}
+
+const fineRule: FactorRule = { reach: 8.7, step: 0.25, negligible: 1e-13 };
+/** Leaves out 1e-8 of a tail: enough for a critical value, at a third of the cost. */
+export const criticalRule: FactorRule = { reach: 5.5, step: 0.5, negligible: 1e-9 };
+
 /** Largest correlation outside the factor up to which the third order, of cost m³, changes no p by 1e-6. */
 const NEGLIGIBLE_THIRD = 0.01;
 
@@ -68,19 +81,27 @@ function restEffects(own: Conditionals, rest: Float64Array, hasThird: boolean, e
   const { mean, variance } = own;
   const m = mean.length;
   const slopes = new Float64Array(m);
-  let expected = 0;
-  let square = 0;
-  for (let i = 0; i < m; i += 1) {
+  let pairs = 0;
+  // Half of ε is read for both: this is the innermost loop of every comparison that is not balanced.
+  for (let i = 1; i < m; i += 1) {
+    const ownMean = mean[i] as number;
     let slope = 0;
     let spread = 0;
-    for (let j = 0; j < m; j += 1) {
+    for (let j = 0; j < i; j += 1) {
       const epsilon = rest[i * m + j] as number;
       slope += epsilon * (mean[j] as number);
+      slopes[j] = (slopes[j] as number) + epsilon * ownMean;
       spread += epsilon * epsilon * (variance[j] as number);
     }
-    slopes[i] = slope;
+    slopes[i] = (slopes[i] as number) + slope;
+    pairs += spread * (variance[i] as number);
+  }
+  let expected = 0;
+  let square = pairs;
+  for (let i = 0; i < m; i += 1) {
+    const slope = slopes[i] as number;
     expected += 0.5 * slope * (mean[i] as number);
-    square += (slope * slope + 0.5 * spread) * (variance[i] as number);
+    square += slope * slope * (variance[i] as number);
   }
   effects[0] = expected;
   effects[1] = (expected * expected + square) / 2;
@@ -117,6 +138,15 @@ function centredCube({ variance, skew }: Conditionals, rest: Float64Array, slope
   return cube;
 }
 
+/** More than the first two of restEffects: b + b², where b is half the largest ε times the square of all cumulants. */
+function boundEffects({ mean, variance }: Conditionals, largestRest: number): number {
+  let sum = 0;
+  for (let i = 0; i < mean.length; i += 1)
+    sum += Math.abs(mean[i] as number) + Math.abs(variance[i] as number);
+  const bound = 0.5 * largestRest * sum * sum;
+  return bound * (1 + bound);
+}
+
 /** The tail of the largest of m correlated standard normals, or of the largest of their sizes. */
 export interface EquicoordinateTail {
   /** P(some variable beyond w). */
@@ -145,19 +175,19 @@ interface FactorGrid {
 }
 
 /** Given that variable i is beyond w the factor lies about λ_i w: nodes reach around all of these places. */
-function factorGrid(loadings: Float64Array, isTwoSided: boolean): FactorGrid {
+function factorGrid(loadings: Float64Array, isTwoSided: boolean, rule: FactorRule): FactorGrid {
   const sizes = isTwoSided ? loadings.map(Math.abs) : loadings;
   const least = Math.min(...sizes);
   const most = Math.max(...sizes);
   const largest = Math.max(most, -least, 1e-9);
-  const step = 0.25 * Math.min(1, Math.sqrt(1 - largest * largest) / largest);
+  const step = rule.step * Math.min(1, Math.sqrt(1 - largest * largest) / largest);
   // Two-sided the integrand is even, and half of the line is enough.
   const floor = isTwoSided ? 0 : -Infinity;
   return {
     step,
     span: (w) => [
-      Math.max(floor, Math.floor((Math.min(0, least * w) - REACH) / step)),
-      Math.ceil((Math.max(0, most * w) + REACH) / step),
+      Math.max(floor, Math.floor((Math.min(0, least * w) - rule.reach) / step)),
+      Math.ceil((Math.max(0, most * w) + rule.reach) / step),
     ],
   };
 }
@@ -170,7 +200,7 @@ function factorGrid(loadings: Float64Array, isTwoSided: boolean): FactorGrid {
  * Source: Dunnett & Sobel (1955), Biometrika 42:258–260.
  */
 export function oneFactorTail(loadings: Float64Array, isTwoSided: boolean): (w: number) => number {
-  const grid = factorGrid(loadings, isTwoSided);
+  const grid = factorGrid(loadings, isTwoSided, fineRule);
   const groups = groupEqual(isTwoSided ? loadings.map(Math.abs) : loadings);
   return (w) => {
     const [start, last] = grid.span(w);
@@ -187,28 +217,36 @@ export function oneFactorTail(loadings: Float64Array, isTwoSided: boolean): (w: 
   };
 }
 
+/** How far an expansion goes. */
+interface ExpansionEffort {
+  /** Whether to go beyond the second order, of cost m², to the third, of cost m³. */
+  readonly hasThird: boolean;
+  readonly rule: FactorRule;
+}
+
 /**
  * P(max |Z_i| > w), or P(max Z_i > w), for correlated standard normals, to third order in the correlations that one
  * shared factor leaves.
  * @param factor the correlation matrix split by fitOneFactor
  * @param isTwoSided whether sizes are meant
- * @param hasThird whether to go beyond the second order, of cost m², to the third, of cost m³
+ * @param effort to the third order where it counts and to all digits, unless less is enough
  * Source: as oneFactorTail, with Plackett (1954), Biometrika 41:351–360.
  */
 export function expandedTail(
   factor: OneFactor,
   isTwoSided: boolean,
-  hasThird = factor.largestRest > NEGLIGIBLE_THIRD,
+  effort: ExpansionEffort = { hasThird: factor.largestRest > NEGLIGIBLE_THIRD, rule: fineRule },
 ): (w: number) => EquicoordinateTail {
   const { loadings, rest, largestRest } = factor;
-  const grid = factorGrid(loadings, isTwoSided);
+  const { hasThird, rule } = effort;
+  const grid = factorGrid(loadings, isTwoSided, rule);
   const spreads = loadings.map((loading) => Math.sqrt(1 - loading * loading));
   const zeros = (): Float64Array => new Float64Array(loadings.length);
   const own: Conditionals = { mean: zeros(), variance: zeros(), skew: zeros() };
   const effects = new Float64Array(3);
   return (w) => {
     const [start, last] = grid.span(w);
-    const negligible = 1e-12 * Math.exp(-0.5 * w * w);
+    const negligible = rule.negligible * Math.exp(-0.5 * w * w);
     let upper = 0;
     const orders: [number, number, number] = [0, 0, 0];
     for (let j = start; j <= last; j += 1) {
@@ -221,7 +259,7 @@ export function expandedTail(
       const weight = (isTwoSided && j > 0 ? 2 : 1) * grid.step * INV_SQRT_2PI * Math.exp(-0.5 * z * z);
       const inside = weight * Math.exp(logInside);
       upper -= weight * Math.expm1(logInside);
-      if (inside < negligible) continue;
+      if (inside * boundEffects(own, largestRest) < negligible) continue;
       restEffects(own, rest, hasThird, effects);
       orders[0] -= inside * (effects[0] as number);
       orders[1] -= inside * (effects[1] as number);

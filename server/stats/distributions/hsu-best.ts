@@ -1,11 +1,5 @@
-import { expandedTail, oneFactorTail } from './equicoordinate.ts';
-import { findUpperQuantile } from './find-root.ts';
-import { type Correlation, fitOneFactor } from './one-factor.ts';
-import { averageOverScale } from './scale-average.ts';
-import { tabulateTail } from './scaled-tail.ts';
-
-const DECAY = 0.5;
-const EXACT_REST = 1e-9;
+import { oneSidedDunnettQuantile } from './one-sided-dunnett.ts';
+import { tQuantileUpper } from './student-t.ts';
 
 /** One entry against the best of the others. */
 export interface BestComparison {
@@ -33,17 +27,6 @@ export interface BestQuestion {
   readonly better: 'higher' | 'lower';
 }
 
-/** Critical value of one-sided comparisons of all others with one entry: P(max T > d) = alpha. */
-export function oneSidedDunnettQuantile(alpha: number, df: number, correlation: Correlation): number {
-  const factor = fitOneFactor(correlation);
-  // A critical value asks for four digits, and every entry asks for its own: the second order is enough.
-  const expand = expandedTail(factor, false, false);
-  const upper =
-    factor.largestRest <= EXACT_REST ? oneFactorTail(factor.loadings, false) : (w: number) => expand(w).upper;
-  const tail = tabulateTail(upper, DECAY, false);
-  return findUpperQuantile((d) => averageOverScale(tail, d, df), alpha, 2);
-}
-
 /** Correlations of the differences of the others from one entry, and the standard errors of these differences. */
 function differencesFrom(
   control: number,
@@ -64,16 +47,27 @@ function isSameCorrelation(a: readonly number[][], b: readonly number[][]): bool
   return a.every((row, i) => row.every((value, j) => Math.abs(value - (b[i]?.[j] ?? 2)) < 1e-10));
 }
 
-/** For each entry as control: standard errors of differences by entry, and its critical value. */
-function criticalRows(question: BestQuestion): { se: (j: number) => number; d: number }[] {
+/** Widths of an entry's differences from the others, by the other entry. */
+type Margins = (j: number) => number;
+
+/**
+ * For each entry as control its margins, critical value times standard error; null where even those of Bonferroni's
+ * larger value show that some other entry is better: of such an entry nothing else is asked.
+ */
+function marginRows(question: BestQuestion, means: readonly number[]): (Margins | null)[] {
+  const { alpha, df, covariance } = question;
+  const largest = tQuantileUpper(alpha / (means.length - 1), df);
   let known: { correlation: number[][]; d: number } | undefined;
-  return Array.from(question.means, (_, i) => {
-    const { ses, correlation } = differencesFrom(i, question.covariance);
+  return means.map((mean, i) => {
+    const { ses, correlation } = differencesFrom(i, covariance);
+    const se = (j: number): number => ses[j < i ? j : j - 1] ?? 0;
+    if (means.some((other, j) => j !== i && mean - other + largest * se(j) <= 0)) return null;
     // Balanced trials ask the same question for every entry.
     if (!known || !isSameCorrelation(correlation, known.correlation)) {
-      known = { correlation, d: oneSidedDunnettQuantile(question.alpha, question.df, correlation) };
+      known = { correlation, d: oneSidedDunnettQuantile(alpha, df, correlation) };
     }
-    return { se: (j) => ses[j < i ? j : j - 1] ?? 0, d: known.d };
+    const { d } = known;
+    return (j) => d * se(j);
   });
 }
 
@@ -92,18 +86,19 @@ export function compareWithBest(question: BestQuestion): readonly BestComparison
   if (!(alpha > 0 && alpha < 0.5)) throw new RangeError(`alpha must lie between 0 and 0.5, got ${alpha}`);
   const sign = better === 'higher' ? 1 : -1;
   const means = Array.from(question.means, (mean) => sign * mean);
-  const rows = criticalRows(question);
+  const margins = marginRows(question, means);
   const gap = (i: number, j: number): number => (means[i] ?? 0) - (means[j] ?? 0);
-  const margin = (i: number, j: number): number => (rows[i]?.d ?? 0) * (rows[i]?.se(j) ?? 0);
   const others = (i: number): number[] => means.map((_, j) => j).filter((j) => j !== i);
-  const uppers = means.map((_, i) =>
-    Math.max(0, Math.min(...others(i).map((j) => gap(i, j) + margin(i, j)))),
+  const uppers = margins.map((margin, i) =>
+    margin === null ? 0 : Math.max(0, Math.min(...others(i).map((j) => gap(i, j) + margin(j)))),
   );
-  const candidates = uppers.flatMap((upper, i) => (upper > 0 ? [i] : []));
+  const candidates = margins.flatMap((margin, i) =>
+    margin !== null && (uppers[i] ?? 0) > 0 ? [{ i, margin }] : [],
+  );
   return means.map((_, i) => {
     const upper = uppers[i] ?? 0;
-    const rivals = candidates.filter((j) => j !== i);
-    const lower = rivals.length === 0 ? 0 : Math.min(0, ...rivals.map((j) => gap(i, j) - margin(j, i)));
+    const rivals = candidates.filter((rival) => rival.i !== i);
+    const lower = Math.min(0, ...rivals.map((rival) => gap(i, rival.i) - rival.margin(i)));
     const isBest = upper > 0 && lower === 0;
     const estimate = sign * Math.min(...others(i).map((j) => gap(i, j)));
     return better === 'higher'

@@ -1,5 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { compareWithBest, oneSidedDunnettQuantile } from '#server/stats/distributions/hsu-best.ts';
+import { compareWithBest } from '#server/stats/distributions/hsu-best.ts';
+import { oneSidedDunnettQuantile } from '#server/stats/distributions/one-sided-dunnett.ts';
 import { tQuantileUpper } from '#server/stats/distributions/student-t.ts';
 
 function diagonal(variances: readonly number[]): number[][] {
@@ -71,6 +72,50 @@ describe('unequal variances', () => {
     const plain = compareWithBest({ ...question, means: [10, 9.5, 9], covariance: base });
     const moved = compareWithBest({ ...question, means: [10, 9.5, 9], covariance: shifted });
     plain.forEach((row, i) => expect(moved[i]?.upper).toBeCloseTo(row.upper, 8));
+  });
+});
+
+describe('many entries, unequally known', () => {
+  /** Covariance of k means: variances from 0.2 to 0.7, covariances between −0.02 and 0.06. */
+  const uneven = (k: number): number[][] =>
+    Array.from({ length: k }, (_, a) =>
+      Array.from({ length: k }, (__, b) => {
+        const [i, j] = [a + 1, b + 1];
+        return a === b ? 0.2 + 0.05 * ((i * 7) % 11) : 0.03 * ((i * j) % 3) - 0.02 * ((i + j) % 2);
+      }),
+    );
+  const gapVariance = (v: number[][], i: number, j: number, k: number): number =>
+    v[j]![k]! - v[j]![i]! - v[i]![k]! + v[i]![i]!;
+  const gapsFrom = (i: number, v: number[][]): number[][] => {
+    const others = v.map((_, j) => j).filter((j) => j !== i);
+    const sd = (j: number): number => Math.sqrt(gapVariance(v, i, j, j));
+    return others.map((a) => others.map((b) => (a === b ? 1 : gapVariance(v, i, a, b) / (sd(a) * sd(b)))));
+  };
+
+  // pmvnorm of R's mvtnorm 1.3, averaged over the scale by a Gauss rule, solved to 1e-5 or so.
+  test.each([
+    [5, 12.5, 0.05, 2.37862],
+    [12, 28.4, 0.05, 2.57131],
+    [12, 28.4, 0.01, 3.29328],
+    [20, 4, 0.1, 3.12117],
+  ])('the critical value of the first of %i, %d df, alpha %d', (k, df, alpha, d) => {
+    expect(Math.abs(oneSidedDunnettQuantile(alpha, df, gapsFrom(0, uneven(k))) - d)).toBeLessThan(2e-4);
+  });
+
+  test('whoever is left out of the search has an upper limit of 0 by the whole definition too', () => {
+    const covariance = uneven(14).map((row) => row.map((value) => value / 4));
+    const means = covariance.map((_, i) => 6 + ((i * 5) % 14) / 4);
+    const rows = compareWithBest({ means, covariance, df: 21.5, alpha: 0.05, better: 'higher' });
+    const uppers = means.map((mean, i) => {
+      const d = oneSidedDunnettQuantile(0.05, 21.5, gapsFrom(i, covariance));
+      const limits = means.flatMap((other, j) =>
+        j === i ? [] : [mean - other + d * Math.sqrt(gapVariance(covariance, i, j, j))],
+      );
+      return Math.max(0, Math.min(...limits));
+    });
+    rows.forEach((row, i) => expect(row.upper).toBeCloseTo(uppers[i]!, 10));
+    const out = rows.filter((row) => !row.mayBeBest).length;
+    expect([out > 3, out < 12]).toEqual([true, true]);
   });
 });
 

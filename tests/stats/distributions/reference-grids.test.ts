@@ -1,7 +1,7 @@
 import { expect, test } from 'vitest';
 import { dunnettQuantile } from '#server/stats/distributions/dunnett.ts';
 import { fQuantileUpper, fUpper } from '#server/stats/distributions/f-distribution.ts';
-import { oneSidedDunnettQuantile } from '#server/stats/distributions/hsu-best.ts';
+import { oneSidedDunnettQuantile } from '#server/stats/distributions/one-sided-dunnett.ts';
 import { powerOfF } from '#server/stats/distributions/noncentral-f.ts';
 import { tQuantile, tTwoSided, tUpper } from '#server/stats/distributions/student-t.ts';
 import {
