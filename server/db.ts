@@ -1,3 +1,4 @@
+import { Socket } from 'node:net';
 import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import pg from 'pg';
 import * as accounts from '#drizzle/schema/accounts.ts';
@@ -26,6 +27,27 @@ export type Database = NodePgDatabase<typeof schema>;
 /** A transaction offers what the database does, so stores take either. */
 export type DatabaseOrTransaction = Database | Parameters<Parameters<Database['transaction']>[0]>[0];
 
+/** Milliseconds that a request waits for its database. */
+export type DatabaseWaits = {
+  /** For the line to its server: what takes longer is away. */
+  reach: number;
+  /** For a connection, new or taken by others, of a server that was reached: a busy machine is slow, not away. */
+  turn: number;
+};
+
+const usualWaits: DatabaseWaits = { reach: 3000, turn: 15_000 };
+
+/** A socket that fails, as the operating system would much later, when it is not connected in time. */
+export function openSocketWithin(ms: number): Socket {
+  const socket = new Socket();
+  const tooLong = setTimeout(
+    () => socket.destroy(Object.assign(new Error(`not reached in ${ms} ms`), { code: 'ETIMEDOUT' })),
+    ms,
+  );
+  const settle = (): void => clearTimeout(tooLong);
+  return socket.once('connect', settle).once('close', settle);
+}
+
 /**
  * A pool of connections and Drizzle on top of it. A lost connection is replaced at the next query:
  * the server outlives its database.
@@ -34,11 +56,13 @@ export type DatabaseOrTransaction = Database | Parameters<Parameters<Database['t
 export function connectDatabase(
   url: string,
   onIdleError: (error: Error) => void,
+  waits = usualWaits,
 ): { db: Database; pool: pg.Pool; close: () => Promise<void> } {
   const pool = new pg.Pool({
     connectionString: url,
     max: 10,
-    connectionTimeoutMillis: 3000,
+    connectionTimeoutMillis: waits.turn,
+    stream: () => openSocketWithin(waits.reach),
     idleTimeoutMillis: 30_000,
     statement_timeout: 30_000,
   });
@@ -67,8 +91,15 @@ export function isDatabaseAway(error: unknown): boolean {
     if (at instanceof AggregateError && at.errors.some(isDatabaseAway)) return true;
     const code = 'code' in at && typeof at.code === 'string' ? at.code : '';
     if (connectionCodes.has(code) || awayStates.test(code)) return true;
-    if (/timeout exceeded when trying to connect|Connection terminated|connection timeout/i.test(at.message))
-      return true;
+    if (/Connection terminated|connection timeout/i.test(at.message)) return true;
+  }
+  return false;
+}
+
+/** Whether every connection of the pool was taken for so long that a query gave up waiting for its turn. */
+export function isPoolTaken(error: unknown): boolean {
+  for (let at: unknown = error; at instanceof Error; at = at.cause) {
+    if (at.message === 'timeout exceeded when trying to connect') return true;
   }
   return false;
 }

@@ -1,6 +1,6 @@
 import type { ErrorRequestHandler, Request, Response } from 'express';
 import { CodedError, type ErrorCode, type ErrorReply } from '#shared/error-codes.ts';
-import { isDatabaseAway, sqlStateOf } from './db.ts';
+import { isDatabaseAway, isPoolTaken, sqlStateOf } from './db.ts';
 
 const statusOf = {
   'invalid-input': 400,
@@ -36,7 +36,7 @@ const statusOf = {
 /** Text or figures that PostgreSQL cannot hold: a NUL in text, in JSON, a number out of range. */
 const unstorableStates: ReadonlySet<string | null> = new Set(['22021', '22P05', '22003']);
 
-/** Seconds after which a client may try again when the database is away or the computing threads are taken. */
+/** Seconds after which a client may try again when the database is away, or its connections or the computing threads are taken. */
 const retrySeconds = 5;
 
 /**
@@ -76,6 +76,7 @@ export const handleError: ErrorRequestHandler = (error: unknown, request, respon
 /** Brings what the body parser, the upload parser, the pool and our own code throw to one type. */
 function codeFailure(error: unknown): CodedError {
   if (error instanceof CodedError) return error;
+  if (isPoolTaken(error)) return new CodedError('busy', { cause: error });
   if (isDatabaseAway(error)) return new CodedError('database-away', { cause: error });
   if (unstorableStates.has(sqlStateOf(error))) return new CodedError('invalid-input', { cause: error });
   const type = error instanceof Error && 'type' in error ? error.type : null;

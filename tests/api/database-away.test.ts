@@ -1,7 +1,8 @@
 import { sql } from 'drizzle-orm';
+import type pg from 'pg';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { weighUps } from '#drizzle/schema/weigh-ups.ts';
-import { connectDatabase } from '#server/db.ts';
+import { connectDatabase, isDatabaseAway, openSocketWithin } from '#server/db.ts';
 import { say } from '#tests/support/say.ts';
 import { createTestDatabase, type TestDatabase } from '#tests/support/test-database.ts';
 import { buildWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
@@ -28,6 +29,19 @@ afterAll(async () => {
   await proxy.close();
   await direct.close();
 });
+
+/** The API on the line that can be cut, with connections of its own. */
+async function withPool(
+  waits: { reach: number; turn: number },
+  work: (visitor: ReturnType<ApiWorld['visitor']>, pool: pg.Pool) => Promise<void>,
+): Promise<void> {
+  const through = connectDatabase(proxy.url, () => undefined, waits);
+  try {
+    await work(buildWorld({ ...through, url: proxy.url }).visitor(), through.pool);
+  } finally {
+    await through.close();
+  }
+}
 
 const away = { error: { code: 'database-away' } };
 
@@ -122,4 +136,29 @@ test('a connection that the server of the database ends is replaced without a re
   expect(replies.at(-1)).toBe(200);
   for (const status of replies) expect([200, 503]).toContain(status);
   expect(await direct.db.$count(weighUps)).toBeGreaterThan(0);
+});
+
+test('a database that is reached but slow to answer is waited for', async () => {
+  await withPool({ reach: 200, turn: 10_000 }, async (visitor) => {
+    proxy.delay(600);
+    await visitor.get('/api/health').expect(200);
+    proxy.delay(0);
+  });
+});
+
+test('where all connections stay taken the answer is that too much is asked, not that the data are away', async () => {
+  await withPool({ reach: 3000, turn: 2500 }, async (visitor, pool) => {
+    const taken = await Promise.all(Array.from({ length: pool.options.max ?? 0 }, () => pool.connect()));
+    const reply = await visitor.get('/api/health');
+    expect([reply.status, reply.body]).toEqual([503, { error: { code: 'busy' } }]);
+    expect(Number(reply.headers['retry-after'])).toBeGreaterThan(0);
+    for (const client of taken) client.release();
+    await visitor.get('/api/health').expect(200);
+  });
+});
+
+test('a server that no line reaches is given up after the short wait, however long a turn may take', async () => {
+  const socket = openSocketWithin(50);
+  const failed = new Promise((resolve) => socket.once('error', resolve));
+  expect(isDatabaseAway(await failed)).toBe(true);
 });

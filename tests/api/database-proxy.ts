@@ -6,6 +6,8 @@ export type DatabaseProxy = {
   /** Breaks every connection and refuses new ones, as a network does that fails. */
   cut: () => void;
   restore: () => void;
+  /** Takes new connections at once but passes nothing on for so many milliseconds, as a machine does that is busy. */
+  delay: (ms: number) => void;
   close: () => Promise<void>;
 };
 
@@ -14,6 +16,7 @@ export async function openDatabaseProxy(databaseUrl: string): Promise<DatabasePr
   const target = new URL(databaseUrl);
   const sockets = new Set<Socket>();
   let isCut = false;
+  let delayMs = 0;
   const server = createServer((near) => {
     if (isCut) {
       near.resetAndDestroy();
@@ -30,7 +33,7 @@ export async function openDatabaseProxy(databaseUrl: string): Promise<DatabasePr
         sockets.delete(socket);
         other.destroy();
       });
-      socket.pipe(other);
+      setTimeout(() => socket.pipe(other), delayMs);
     }
   });
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
@@ -46,6 +49,9 @@ export async function openDatabaseProxy(databaseUrl: string): Promise<DatabasePr
     },
     restore: () => {
       isCut = false;
+    },
+    delay: (ms) => {
+      delayMs = ms;
     },
     close: async () => {
       for (const socket of sockets) socket.destroy();
