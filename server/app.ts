@@ -1,7 +1,7 @@
 import { join } from 'node:path';
 import compression from 'compression';
 import { DrizzleQueryError } from 'drizzle-orm/errors';
-import express, { type Express, Router } from 'express';
+import express, { type Express, type RequestHandler, Router } from 'express';
 import helmet from 'helmet';
 import type pg from 'pg';
 import type { Logger } from 'pino';
@@ -11,6 +11,7 @@ import { addAccountRoutes } from './accounts/account-routes.ts';
 import { addSignInRoutes } from './accounts/sign-in-routes.ts';
 import { addAuditRoutes } from './audit/audit-routes.ts';
 import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
+import { addClientPages } from './client-page/client-page-routes.ts';
 import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
@@ -66,11 +67,12 @@ export function buildApp(
   const copyFiles = findCopyPageFiles(settings.clientFolder);
   app.use(buildHelmet(settings, copyFiles.style));
   app.use(compression());
-  addApi(app, db, pool, settings, onMailQueued);
+  const session = buildSession(db, pool, settings);
+  const api = addApi(app, db, session, settings, onMailQueued);
   app.use('/copy', keepLinkPrivate);
   addCopyPdf(app, db, settings);
   addCopyPage(app, db, copyFiles);
-  if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
+  if (settings.clientFolder !== null) serveClient(app, settings.clientFolder, api, session);
   app.use(handleError);
   return app;
 }
@@ -93,10 +95,10 @@ function hideLinkSecret<T extends { url: string }>(request: T): T {
 function addApi(
   app: Express,
   db: Database,
-  pool: pg.Pool,
+  session: readonly RequestHandler[],
   settings: ServerSettings,
   onMailQueued: () => void,
-): void {
+): Router {
   app.use('/api', (_request, response, next) => {
     response.set('Cache-Control', 'no-store');
     next();
@@ -104,31 +106,34 @@ function addApi(
   app.use('/api', requireSameOrigin, express.json({ limit: '256kb' }));
   const router = Router();
   addHealthRoute(router, db);
-  router.use('/api', buildSession(db, pool, settings));
+  router.use('/api', ...session);
   for (const addRoutes of capabilities) addRoutes(router, db, settings, onMailQueued);
   app.use(router);
   app.use('/api', () => {
     throw new CodedError('not-found');
   });
+  return router;
 }
 
-function serveClient(app: Express, clientFolder: string): void {
+function serveClient(
+  app: Express,
+  clientFolder: string,
+  api: Router,
+  session: readonly RequestHandler[],
+): void {
   const hashed = { immutable: true, maxAge: '1y', index: false, fallthrough: true } as const;
   app.use('/assets', express.static(join(clientFolder, 'assets'), hashed), (_request, response) => {
     response.status(404).end();
   });
   app.use(express.static(clientFolder, { index: false, maxAge: '1h' }));
-  app.get('/{*path}', (_request, response) => {
-    response.set('Cache-Control', 'no-cache');
-    response.sendFile(join(clientFolder, 'index.html'));
-  });
+  addClientPages(app, clientFolder, api, session);
 }
 
 /** Headers: everything from our own origin, or the one style in the pages of copies; the charts set style attributes. Plain http on loopback gets no upgrade. */
 function buildHelmet(
   settings: ServerSettings,
   copyStyle: ReturnType<typeof findCopyPageFiles>['style'],
-): express.RequestHandler {
+): RequestHandler {
   return helmet({
     contentSecurityPolicy: {
       directives: {

@@ -11,6 +11,24 @@ const readUpload = multer({
   limits: { fileSize: importByteLimit, files: 1, fields: 20 },
 });
 
+type Call = { request: Request; response: Response; signal: AbortSignal };
+type Answer = (call: Call) => Promise<unknown>;
+
+/** How each contract of a router is answered, for who asks from inside. */
+const answersByRouter = new WeakMap<Router, Map<Contract, Answer>>();
+
+/**
+ * The reply that a registered contract gives to the person of another request, guarded as it is for its own.
+ * @param call its request has the contract's parameters in its path; the contract asks for no query and no body
+ * @throws CodedError not-signed-in, not-allowed and what the handler throws
+ */
+export async function answerContract(router: Router, contract: Contract, call: Call): Promise<unknown> {
+  const answer = answersByRouter.get(router)?.get(contract);
+  if (answer === undefined) throw new Error(`${contract.path} is not a contract of this router`);
+  checkAccess(contract.access, call.request.user ?? null);
+  return answer(call);
+}
+
 /**
  * Registers one contract: guards it, parses what comes in once, calls the handler and parses the reply,
  * which drops every field the contract does not declare. The handler throws; the error handler answers.
@@ -31,7 +49,7 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
     signal: AbortSignal;
   }) => Promise<z.input<R>>,
 ): void {
-  const serve: RequestHandler = async (request, response) => {
+  const answer: Answer = async ({ request, response, signal }) => {
     const reply = await handler({
       params: parsePart(contract.params, request.params, 'params'),
       query: parsePart(contract.query, request.query, 'query'),
@@ -41,9 +59,12 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
         request.file === undefined ? null : { name: request.file.originalname, bytes: request.file.buffer },
       request,
       response,
-      signal: leavingSignal(response),
+      signal,
     });
-    response.json(contract.reply.parse(reply));
+    return contract.reply.parse(reply);
+  };
+  const serve: RequestHandler = async (request, response) => {
+    response.json(await answer({ request, response, signal: leavingSignal(response) }));
   };
   const guard: RequestHandler = (request, _response, next) => {
     checkAccess(contract.access, request.user ?? null);
@@ -51,6 +72,8 @@ export function route<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
   };
   const upload: RequestHandler[] = contract.upload === undefined ? [] : [readUpload.single(contract.upload)];
   router[methodNames[contract.method]](contract.path, guard, ...upload, serve);
+  const answers = answersByRouter.get(router) ?? new Map<Contract, Answer>();
+  answersByRouter.set(router, answers.set(contract, answer));
 }
 
 /** Aborted when the client goes away before it is answered. */

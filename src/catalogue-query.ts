@@ -2,6 +2,7 @@ import { queryOptions } from '@tanstack/react-query';
 import { readCatalogue, type Crop, type Region, type Trait } from '#shared/catalogue.ts';
 import type { ReplyOf } from './api-client.ts';
 import { callApi } from './api-client.ts';
+import { takeFirstAnswer } from './first-answers.ts';
 
 export type Catalogue = ReplyOf<typeof readCatalogue>;
 
@@ -9,6 +10,7 @@ export type Catalogue = ReplyOf<typeof readCatalogue>;
 export const catalogueQuery = queryOptions({
   queryKey: ['catalogue'],
   queryFn: ({ signal }) => callApi(readCatalogue, {}, signal),
+  initialData: () => takeFirstAnswer(readCatalogue, {}),
   staleTime: 5 * 60_000,
 });
 

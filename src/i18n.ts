@@ -1,36 +1,49 @@
 import { createInstance, type BackendModule, type i18n as I18n, type ResourceKey } from 'i18next';
 import { initReactI18next } from 'react-i18next';
-import { language as languageCode } from '#shared/account.ts';
+import { language as languageCode, readMe } from '#shared/account.ts';
+import { languageCookieName } from '#shared/page-exchange.ts';
 import { languages, type Language } from '#shared/language.ts';
 import { addSentenceFormats } from '#shared/sentence-formats.ts';
 import { ApiError } from './api-client.ts';
+import { peekFirstAnswer } from './first-answers.ts';
 import type { Namespace } from './locale-resources.ts';
 
 const storageKey = 'gavelrow.language';
 
-/** One chunk per language and namespace, fetched when a page first asks for it. */
-const localeFiles = import.meta.glob<ResourceKey>('/locales/*/*.json', { import: 'default' });
+/** One file per language: on a line of 400 ms a second one costs more than the sentences of the other pages. */
+const sentenceFiles: Record<string, () => Promise<{ sentences: Record<string, ResourceKey> }>> = {
+  en: () => import('./sentences-en.ts'),
+  fr: () => import('./sentences-fr.ts'),
+} satisfies Record<Language, unknown>;
+
+const namespaceOf = (path: string): string => path.replace(/^.*\/|\.json$/g, '');
 
 const localeBackend: BackendModule = {
   type: 'backend',
   init: () => undefined,
   read: (language, namespace, done) => {
-    const load = localeFiles[`/locales/${language}/${namespace}.json`];
+    const load = sentenceFiles[language];
     if (!load) {
-      done(new Error(`No sentences for ${namespace} in ${language}`), false);
+      done(new Error(`No sentences in ${language}`), false);
       return;
     }
     load().then(
-      (sentences) => done(null, sentences),
+      ({ sentences }) => {
+        // The others came along: a part of a page that needs them need not wait for them.
+        for (const [path, ofNamespace] of Object.entries(sentences))
+          i18n.addResourceBundle(language, namespaceOf(path), ofNamespace);
+        done(null, sentences[`/locales/${language}/${namespace}.json`]);
+      },
       // `true` asks for another try: signal comes and goes at a kitchen table.
       (failure: unknown) => done(failure instanceof Error ? failure : new Error(String(failure)), true),
     );
   },
 };
 
-/** The language chosen here before, else the browser's, else English. */
+/** The account's language where it is known, else the one chosen here before, else the browser's, else English. */
 function guessLanguage(): Language {
-  const candidates = [readStoredLanguage(), ...navigator.languages.map((tag) => tag.slice(0, 2))];
+  const ofAccount = peekFirstAnswer(readMe, {})?.me?.language;
+  const candidates = [ofAccount, readStoredLanguage(), ...navigator.languages.map((tag) => tag.slice(0, 2))];
   for (const candidate of candidates) {
     const parsed = languageCode.safeParse(candidate);
     if (parsed.success) return parsed.data;
@@ -47,7 +60,10 @@ function readStoredLanguage(): string | null {
   }
 }
 
+/** In the storage, and in a cookie for the server: it names the sentences of the page before the page can ask. */
 function storeLanguage(language: Language): void {
+  const lasting = `Path=/; Max-Age=${365 * 24 * 60 * 60}; SameSite=Lax`;
+  document.cookie = `${languageCookieName}=${language}; ${lasting}`;
   try {
     localStorage.setItem(storageKey, language);
   } catch {
@@ -63,11 +79,12 @@ export async function startI18n(): Promise<void> {
     document.documentElement.lang = tag;
   });
   const firstNamespaces: Namespace[] = ['common', 'errors'];
+  const language = guessLanguage();
   await i18n
     .use(localeBackend)
     .use(initReactI18next)
     .init({
-      lng: guessLanguage(),
+      lng: language,
       supportedLngs: [...languages],
       fallbackLng: false,
       ns: firstNamespaces,
@@ -76,6 +93,7 @@ export async function startI18n(): Promise<void> {
       returnNull: false,
     });
   addSentenceFormats(i18n.services.formatter);
+  storeLanguage(language);
 }
 
 /**

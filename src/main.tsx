@@ -5,13 +5,15 @@ import { BrowserRouter } from 'react-router-dom';
 import { startI18n } from './i18n.ts';
 import { openDetailsOnPaper } from './open-details-on-paper.ts';
 import { makeQueryClient } from './query-client.ts';
-import { AppRoutes } from './routes.tsx';
+import { AppRoutes, preparePage } from './routes.tsx';
 import './app.css';
 
 const root = document.getElementById('root');
 if (!root) throw new Error('index.html has no #root');
 
-await startI18n();
+// Nothing is painted until the page is there: with what the server has named in the document it comes in the same round.
+const started = startI18n();
+await Promise.all([started, preparePage(window.location.pathname, started)]);
 openDetailsOnPaper();
 
 createRoot(root).render(

@@ -1,6 +1,8 @@
-import { Route, Routes } from 'react-router-dom';
+import { matchRoutes, Route, Routes } from 'react-router-dom';
+import { readMe } from '#shared/account.ts';
 import { AppLayout, HomeRedirect, SignedInOnly } from './app-layout.tsx';
-import { lazyPage } from './lazy-page.tsx';
+import { peekFirstAnswer } from './first-answers.ts';
+import { lazyPage, type LazyPage } from './lazy-page.tsx';
 import { NotFoundPage } from './not-found-page.tsx';
 import { paths } from './paths.ts';
 
@@ -57,6 +59,38 @@ const AuditLogPage = lazyPage(
   async () => (await import('./features/accounts/audit-log-page.tsx')).AuditLogPage,
   ['accounts'],
 );
+
+type PageName = Exclude<keyof typeof paths, 'home'>;
+
+const pages: Record<PageName, LazyPage> = {
+  signIn: SignInPage,
+  weighUps: WeighUpsPage,
+  newWeighUp: NewWeighUpPage,
+  weighUp: WeighUpPage,
+  trials: TrialsPage,
+  trial: TrialPage,
+  trialDesk: DeskPage,
+  deskImport: ImportPage,
+  usualVariances: UsualVariancesPage,
+  deskTrial: DeskTrialPage,
+  accounts: AccountsPage,
+  newAccount: NewAccountPage,
+  auditLog: AuditLogPage,
+};
+// An object's keys are not typed as such, since it may have more of them; this one has not.
+const pageNames = Object.keys(pages) as PageName[];
+
+/**
+ * Fetches the page of an address before it is rendered, so that what is rendered first is the page itself.
+ * @param started sentences can be loaded from then on
+ */
+export async function preparePage(pathname: string, started: Promise<void>): Promise<void> {
+  const routes = pageNames.map((name) => ({ path: paths[name], page: pages[name] }));
+  // Whoever is known not to be signed in is led to the sign-in page.
+  const isKnownStranger = peekFirstAnswer(readMe, {})?.me === null;
+  const [match] = matchRoutes(routes, isKnownStranger ? paths.signIn : pathname) ?? [];
+  await match?.route.page.prepare(started);
+}
 
 /** Every page of the client. Each feature is fetched when one of its pages is first opened. */
 export function AppRoutes() {

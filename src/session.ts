@@ -8,6 +8,7 @@ import {
 import { changeMe, readMe, signOut, type Language, type Me } from '#shared/account.ts';
 import { callApi } from './api-client.ts';
 import { showToast } from './components/toaster.tsx';
+import { forgetFirstAnswers, takeFirstAnswer } from './first-answers.ts';
 import { changeLanguage } from './i18n.ts';
 import { paths } from './paths.ts';
 import { useErrorText } from './use-error-text.ts';
@@ -20,11 +21,14 @@ export const meQuery = queryOptions({
     if (me) await changeLanguage(me.language);
     return me;
   },
+  // The page has started in that account's language; see startI18n().
+  initialData: () => takeFirstAnswer(readMe, {})?.me,
   staleTime: Infinity,
 });
 
 /** Takes over a person who has just signed in, and their language with them. */
 export async function enterSession(client: QueryClient, me: Me): Promise<void> {
+  forgetFirstAnswers();
   client.setQueryData(meQuery.queryKey, me);
   // Without the sentences of their language they still are signed in, in this one.
   await changeLanguage(me.language).catch(() => undefined);

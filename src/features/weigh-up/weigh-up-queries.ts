@@ -6,6 +6,7 @@ import { listDrafts } from '#shared/weigh-up-draft.ts';
 import { readDecisions } from '#shared/weigh-up-record.ts';
 import type { z } from 'zod';
 import { callApi } from '#src/api-client.ts';
+import { takeFirstAnswer } from '#src/first-answers.ts';
 
 /** A question as far as the list of candidates needs it. */
 export type CandidateQuestion = z.output<typeof candidateQuery>;
@@ -13,6 +14,7 @@ export type CandidateQuestion = z.output<typeof candidateQuery>;
 export const weighUpsQuery = queryOptions({
   queryKey: ['weigh-ups'],
   queryFn: async ({ signal }) => (await callApi(listWeighUps, {}, signal)).weighUps,
+  initialData: () => takeFirstAnswer(listWeighUps, {})?.weighUps,
 });
 
 /** A weigh-up with its result, computed by the server for the versions that count now. */
@@ -20,6 +22,7 @@ export const weighUpQuery = (weighUpId: string) =>
   queryOptions({
     queryKey: ['weigh-up', weighUpId],
     queryFn: ({ signal }) => callApi(readWeighUp, { params: { weighUpId } }, signal),
+    initialData: () => takeFirstAnswer(readWeighUp, { params: { weighUpId } }),
   });
 
 /** All varieties with trials, weighed against the current one, with the price sheet's defaults. */

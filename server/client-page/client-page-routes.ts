@@ -1,0 +1,113 @@
+import type { Express, Request, RequestHandler, Response, Router } from 'express';
+import { language as languageCode } from '#shared/account.ts';
+import type { Contract } from '#shared/contract.ts';
+import { languageCookieName, type FirstAnswers } from '#shared/page-exchange.ts';
+import { languages, type Language } from '#shared/language.ts';
+import { answerContract } from '#server/route.ts';
+import { openPageDocument } from './page-document.ts';
+import { clientPages, everyPageAsks, signInPage, type PageNeeds } from './page-needs.ts';
+
+/** A page waits no longer than this for its answers, ms: it can ask for them by itself, and say what is the matter. */
+const longestWait = 1500;
+
+/**
+ * The client's document on every path. Its pages carry what they would ask for first, as the API answers it to the same
+ * person: a line of 400 ms is then waited for once instead of three times.
+ * @param api holds the contracts
+ * @param session finds out who asks
+ */
+export function addClientPages(
+  app: Express,
+  clientFolder: string,
+  api: Router,
+  session: readonly RequestHandler[],
+): void {
+  const document = openPageDocument(clientFolder);
+
+  const send = async (page: PageNeeds | null, request: Request, response: Response): Promise<void> => {
+    const answers = await withinWait(collectAnswers(api, session, page, request, response));
+    const isSignedIn = request.user !== undefined;
+    // What was answered to a person is nobody else's, and not theirs any more once they have signed out and go back.
+    response
+      .set('Cache-Control', isSignedIn ? 'no-store' : 'no-cache')
+      .vary('Cookie')
+      .vary('Accept-Language');
+    const isKnownStranger = !isSignedIn && everyPageAsks.path in answers;
+    const opened = isKnownStranger && page !== null ? signInPage : page;
+    response.type('html').send(document.write(opened, readerLanguage(request), answers));
+  };
+
+  for (const page of clientPages) app.get(page.path, (request, response) => send(page, request, response));
+  app.get('/{*path}', (request, response) => send(null, request, response));
+}
+
+/** What came in time; nothing where it did not, or where it failed: the client then asks, and meets the failure itself. */
+async function withinWait(answers: Promise<FirstAnswers>): Promise<FirstAnswers> {
+  let timer: NodeJS.Timeout | undefined;
+  const tooLate = new Promise<FirstAnswers>((resolve) => {
+    timer = setTimeout(() => resolve({}), longestWait);
+  });
+  try {
+    return await Promise.race([answers, tooLate]);
+  } catch {
+    return {};
+  } finally {
+    clearTimeout(timer);
+  }
+}
+
+async function collectAnswers(
+  api: Router,
+  session: readonly RequestHandler[],
+  page: PageNeeds | null,
+  request: Request,
+  response: Response,
+): Promise<FirstAnswers> {
+  for (const handler of session) await pass(handler, request, response);
+  const asked = [everyPageAsks, ...(request.user === undefined ? [] : (page?.asks ?? []))];
+  const answers = await Promise.all(
+    asked.map(async (contract) => {
+      const reply = await answerNow(api, contract, request, response);
+      return reply === null ? [] : [[fillAddress(contract, request.params), reply] as const];
+    }),
+  );
+  return Object.fromEntries(answers.flat());
+}
+
+/** The reply as the API would give it, or null where it refuses, fails or would have to weigh first. */
+async function answerNow(
+  api: Router,
+  contract: Contract,
+  request: Request,
+  response: Response,
+): Promise<unknown> {
+  try {
+    // Aborted from the start: what is stored is read, and no computation begins that the page would wait for.
+    return await answerContract(api, contract, { request, response, signal: AbortSignal.abort() });
+  } catch {
+    return null;
+  }
+}
+
+function pass(handler: RequestHandler, request: Request, response: Response): Promise<void> {
+  return new Promise((resolve, reject) => {
+    void handler(request, response, (error?: unknown) => {
+      if (error === undefined || error === null) resolve();
+      else
+        reject(error instanceof Error ? error : new Error('the session could not be read', { cause: error }));
+    });
+  });
+}
+
+const fillAddress = (contract: Contract, params: Request['params']): string =>
+  contract.path.replace(/:(\w+)/g, (_, name: string) => encodeURIComponent(String(params[name])));
+
+/** The language that the client will start in: the account's, else the one chosen in this browser, else the browser's. */
+function readerLanguage(request: Request): Language {
+  const chosen = new RegExp(`(?:^|; )${languageCookieName.replace('.', '\\.')}=(\\w+)`).exec(
+    request.headers.cookie ?? '',
+  );
+  const known = languageCode.safeParse(request.user?.language ?? chosen?.[1]);
+  if (known.success) return known.data;
+  return languages.find((language) => language === request.acceptsLanguages([...languages])) ?? 'en';
+}

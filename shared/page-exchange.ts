@@ -1,0 +1,8 @@
+/** Element of a page that holds what the server answered before it was asked. */
+export const firstAnswersId = 'first-answers';
+
+/** The API's replies that a page asks for at once, by their addresses: `{ "/api/me": { "me": … } }`. */
+export type FirstAnswers = Readonly<Record<string, unknown>>;
+
+/** Cookie in which the client tells what language it starts in, so that the server can name that language's sentences. */
+export const languageCookieName = 'gavelrow.language';

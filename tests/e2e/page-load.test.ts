@@ -1,0 +1,157 @@
+import type { Browser, BrowserContext } from 'playwright-core';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Language, Role } from '#shared/account.ts';
+import { firstAnswersId, languageCookieName } from '#shared/page-exchange.ts';
+import type { WeighUp } from '#shared/weigh-up.ts';
+import { openBrowser } from '#tests/support/browser.ts';
+import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { say } from '#tests/support/say.ts';
+import { openVisit, signInByFixture } from '#tests/support/visit.ts';
+
+let app: DemoApp;
+let browser: Browser;
+
+beforeAll(async () => {
+  app = await startDemoApp();
+  browser = await openBrowser();
+});
+
+afterAll(async () => {
+  await browser?.close();
+  await app?.close();
+});
+
+/** Works as somebody of that role, or as nobody. */
+async function visitAs(
+  role: Role | null,
+  language: Language,
+  work: (context: BrowserContext) => Promise<void>,
+): Promise<void> {
+  const { context, close } = await openVisit(browser, app.url, language, 360);
+  if (role !== null) await signInByFixture(context, role, language);
+  await work(context);
+  await close();
+}
+
+const readJson = async (context: BrowserContext, path: string) => (await context.request.get(path)).json();
+
+/** The demo's weigh-up, which is the English-speaking advisor's. */
+async function readDemoWeighUp(context: BrowserContext): Promise<WeighUp> {
+  const { weighUps } = await readJson(context, '/api/weigh-ups');
+  return (await readJson(context, `/api/weigh-ups/${weighUps[0].id}`)).weighUp;
+}
+
+/** The document of a page: what it says about keeping it, the files it names beforehand, the answers in it. */
+async function readDocument(context: BrowserContext, path: string, headers: Record<string, string> = {}) {
+  const reply = await context.request.get(path, { headers });
+  const html = await reply.text();
+  const [, data = ''] = new RegExp(`id="${firstAnswersId}">(.*?)</script>`, 's').exec(html) ?? [];
+  const preloads = [...html.matchAll(/rel="modulepreload"[^>]*href="\/assets\/([\w-]+)-[\w-]{8}\.js"/g)];
+  return {
+    html,
+    status: reply.status(),
+    keeping: reply.headers()['cache-control'],
+    names: preloads.map(([, name]) => name),
+    answers: JSON.parse(data) as Record<string, unknown>,
+  };
+}
+
+describe('the document of a page', () => {
+  it('carries for an advisor what the API would answer, and is kept nowhere', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const { keeping, names, answers } = await readDocument(context, `/weigh-ups/${id}?unit=bu-ac`);
+      const asked = ['/api/me', `/api/weigh-ups/${id}`, '/api/catalogue'];
+      expect(Object.keys(answers).toSorted()).toEqual(asked.toSorted());
+      for (const path of asked) {
+        const { result, ...reply } = (await readJson(context, path)) as { result?: object };
+        // The farm's part and the prices are put to a stored answer each time.
+        expect(answers[path]).toMatchObject({ ...reply, ...(result && { result }) });
+      }
+      expect(keeping).toBe('no-store');
+      expect(names).toEqual(expect.arrayContaining(['weigh-up-page', 'sentences-en']));
+      const list = await readDocument(context, '/weigh-ups');
+      expect(list.answers['/api/weigh-ups']).toEqual(await readJson(context, '/api/weigh-ups'));
+    }));
+
+  it('carries nothing of a weigh-up for nobody, for another advisor and for another role', async () => {
+    let path = '';
+    await visitAs('advisor', 'en', async (context) => {
+      path = `/weigh-ups/${(await readDemoWeighUp(context)).id}`;
+    });
+    await visitAs(null, 'en', async (context) => {
+      const { status, answers, keeping, names } = await readDocument(context, path);
+      expect([status, answers]).toEqual([200, { '/api/me': { me: null } }]);
+      expect(keeping).toBe('no-cache');
+      expect(names).toContain('sign-in-page');
+      expect(names).not.toContain('weigh-up-page');
+    });
+    await visitAs('advisor', 'fr', async (context) => {
+      const { answers, names } = await readDocument(context, path);
+      expect(Object.keys(answers).toSorted()).toEqual(['/api/catalogue', '/api/me']);
+      expect(names).toContain('sentences-fr');
+    });
+    await visitAs('administrator', 'en', async (context) => {
+      const { answers } = await readDocument(context, path);
+      expect(Object.keys(answers)).not.toContain(`/api${path}`);
+      expect(Object.keys((await readDocument(context, '/weigh-ups')).answers)).toEqual(['/api/me']);
+    });
+  });
+
+  it('waits for no weighing: an answer that is not stored yet is left to the page', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const weighUp = await readDemoWeighUp(context);
+      const { weighUp: made } = await (
+        await context.request.post('/api/weigh-ups', {
+          data: { ...weighUp, growerName: '</script><b>$&', candidateIds: weighUp.candidateIds.slice(0, 2) },
+        })
+      ).json();
+      const path = `/weigh-ups/${made.id}`;
+      expect(Object.keys((await readDocument(context, path)).answers)).not.toContain(`/api${path}`);
+      await readJson(context, `/api${path}`);
+      const { html, answers } = await readDocument(context, path);
+      expect(answers[`/api${path}`]).toMatchObject({ weighUp: { growerName: '</script><b>$&' } });
+      expect(html).not.toContain('</script><b>');
+    }));
+
+  it('names the sentences of the language chosen here, else of the one that the browser asks for', () =>
+    visitAs(null, 'en', async (context) => {
+      const chosen = { cookie: `other=1; ${languageCookieName}=fr` };
+      expect((await readDocument(context, '/sign-in', chosen)).names).toContain('sentences-fr');
+      const asked = { 'accept-language': 'fr-CA,fr;q=0.9' };
+      expect((await readDocument(context, '/sign-in', asked)).names).toContain('sentences-fr');
+      expect((await readDocument(context, '/sign-in')).names).toContain('sentences-en');
+    }));
+});
+
+describe('a first visit', () => {
+  it('shows the verdict from few files, without asking for what the document holds', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const page = await context.newPage();
+      const asked: string[] = [];
+      page.on('request', (request) => asked.push(new URL(request.url()).pathname));
+      await page.goto(`/weigh-ups/${id}`);
+      await page.locator('main p > strong').first().waitFor();
+      expect(asked.filter((path) => path.startsWith('/assets/')).length).toBeLessThanOrEqual(14);
+      await page.waitForLoadState('networkidle');
+      expect(asked).not.toEqual(expect.arrayContaining(['/api/me']));
+      expect(asked.filter((path) => path === `/api/weigh-ups/${id}` || path === '/api/catalogue')).toEqual(
+        [],
+      );
+    }));
+
+  it('leaves nothing behind after signing out: going back leads to the sign-in page', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id, growerName } = await readDemoWeighUp(context);
+      const page = await context.newPage();
+      await page.goto(`/weigh-ups/${id}`);
+      await page.getByText(growerName).first().waitFor();
+      await page.getByRole('button', { name: say('en', 'common:signOut') }).click();
+      const password = page.getByLabel(say('en', 'sign-in:password'));
+      await password.waitFor();
+      await page.goBack();
+      await password.waitFor();
+      expect(await page.content()).not.toContain(growerName);
+    }));
+});
