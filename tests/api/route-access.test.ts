@@ -119,7 +119,7 @@ function listRoutes(stack: Layer[]): string[] {
 }
 
 /** What is served as a page and not as JSON; whoever has a copy's link may open it. */
-const pages = ['GET /copy/:token', 'GET /copy/:token/pdf'];
+const pages = ['GET /copy/:token', 'GET /copy/:token/answer', 'GET /copy/:token/pdf'];
 
 test('the application serves nothing but the contracts, its health and its pages', () => {
   // The router is a function with a stack; its type does not say so.
