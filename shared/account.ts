@@ -12,6 +12,12 @@ export type Language = z.infer<typeof language>;
 export const accountStatus = z.enum(['active', 'suspended']);
 
 const email = z.email().max(254);
+/** As people write it, with what separates its digits: it is dialled, not reckoned with. */
+export const phoneNumber = z
+  .string()
+  .trim()
+  .max(30)
+  .regex(/^\+?(?:[ ().-]*\d){5,20}[ ().-]*$/);
 /** Long enough to resist guessing, short enough that hashing it costs what it should. */
 const newPassword = z.string().min(12).max(200);
 
@@ -23,6 +29,8 @@ export const me = z.object({
   role,
   language,
   regionIds: z.array(z.uuid()),
+  /** What growers may call; null for none. */
+  phone: z.string().nullable(),
 });
 export type Me = z.infer<typeof me>;
 
@@ -65,6 +73,10 @@ export const accountChangeInput = z
   .partial();
 export type AccountChangeInput = z.infer<typeof accountChangeInput>;
 
+/** What everybody may change of their own account. */
+export const ownChangeInput = z.object({ language, phone: phoneNumber.nullable() }).partial();
+export type OwnChangeInput = z.infer<typeof ownChangeInput>;
+
 export const auditEvent = z.object({
   id: z.number().int(),
   at: z.iso.datetime(),
@@ -103,7 +115,7 @@ export const changeMe = defineContract({
   method: 'PATCH',
   path: '/api/me',
   access: 'signed-in',
-  body: z.object({ language }),
+  body: ownChangeInput,
   reply: z.object({ me }),
 });
 

@@ -11,6 +11,8 @@ const frozen = z.object({
   traits: z.array(trait),
   advisorName: z.string(),
   advisorEmail: z.string(),
+  /** Copies made before advisors could give one have none. */
+  advisorPhone: z.string().nullable().default(null),
   madeAt: z.iso.datetime(),
   engineVersion: z.string(),
 });

@@ -19,6 +19,8 @@ export const users = pgTable(
     id: uuid('id').primaryKey().defaultRandom(),
     email: text('email').notNull(),
     name: text('name').notNull(),
+    /** For growers, on the copies that they are handed; null for none. */
+    phone: text('phone'),
     passwordHash: text('password_hash').notNull(),
     role: text('role', { enum: ['advisor', 'agronomist', 'administrator'] }).notNull(),
     language: text('language', { enum: ['en', 'fr'] })

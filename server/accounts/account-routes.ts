@@ -2,13 +2,13 @@ import type { Router } from 'express';
 import { changeAccount, changeMe, createAccount, listAccounts, readMe } from '#shared/account.ts';
 import type { Database } from '#server/db.ts';
 import { requireMe, route } from '#server/route.ts';
-import { changeOwnLanguage, insertAccount, listAllAccounts, updateAccount } from './account-store.ts';
+import { changeOwnAccount, insertAccount, listAllAccounts, updateAccount } from './account-store.ts';
 
 export function addAccountRoutes(router: Router, db: Database): void {
   route(router, readMe, async ({ me }) => ({ me }));
 
   route(router, changeMe, async ({ me, body }) => ({
-    me: await changeOwnLanguage(db, requireMe(me).id, body.language),
+    me: await changeOwnAccount(db, requireMe(me).id, body),
   }));
 
   route(router, listAccounts, async () => ({ accounts: await listAllAccounts(db) }));

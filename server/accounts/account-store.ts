@@ -1,6 +1,6 @@
 import { and, asc, eq, sql } from 'drizzle-orm';
 import { sessions, userRegions, users } from '#drizzle/schema/accounts.ts';
-import type { Account, AccountChangeInput, Language, Me, NewAccountInput } from '#shared/account.ts';
+import type { Account, AccountChangeInput, Me, NewAccountInput, OwnChangeInput } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import { isUniqueViolation, sqlStateOf, type Database, type DatabaseOrTransaction } from '#server/db.ts';
@@ -10,7 +10,7 @@ const regionIds = sql<
   string[]
 >`array(select region_id from user_regions where user_id = users.id order by 1)`;
 
-const meColumns = {
+const personColumns = {
   id: users.id,
   name: users.name,
   email: users.email,
@@ -19,14 +19,20 @@ const meColumns = {
   regionIds,
 };
 
+const meColumns = { ...personColumns, phone: users.phone };
+
 const accountColumns = {
-  ...meColumns,
+  ...personColumns,
   status: users.status,
   createdAt: users.createdAt,
   lastSignedInAt: users.lastSignedInAt,
 };
 
-type AccountRow = Me & { status: Account['status']; createdAt: Date; lastSignedInAt: Date | null };
+type AccountRow = Omit<Me, 'phone'> & {
+  status: Account['status'];
+  createdAt: Date;
+  lastSignedInAt: Date | null;
+};
 
 const toAccount = (row: AccountRow): Account => ({
   ...row,
@@ -64,8 +70,8 @@ export async function noteSignIn(db: Database, id: string): Promise<void> {
 }
 
 /** @throws CodedError not-signed-in when the account went away in the meantime */
-export async function changeOwnLanguage(db: Database, id: string, language: Language): Promise<Me> {
-  await db.update(users).set({ language }).where(eq(users.id, id));
+export async function changeOwnAccount(db: Database, id: string, change: OwnChangeInput): Promise<Me> {
+  if (Object.keys(change).length > 0) await db.update(users).set(change).where(eq(users.id, id));
   const person = await readActiveMe(db, id);
   if (person === null) throw new CodedError('not-signed-in');
   return person;

@@ -6,6 +6,8 @@ export type DemoAccount = {
   password: string;
   role: Role;
   language: Language;
+  /** Of the numbers that are kept for stories. */
+  phone: string | null;
   regions: readonly string[];
 };
 
@@ -17,6 +19,7 @@ export const demoAccounts = {
     password: 'kitchen-table-26',
     role: 'advisor',
     language: 'en',
+    phone: '555-0142',
     regions: ['upper-velmar', 'lower-velmar', 'sarrow-coast'],
   },
   conseillere: {
@@ -25,6 +28,7 @@ export const demoAccounts = {
     password: 'table-de-cuisine-26',
     role: 'advisor',
     language: 'fr',
+    phone: '555-0187',
     regions: ['upper-velmar', 'orlaine-plateau', 'sarrow-coast'],
   },
   agronomist: {
@@ -33,6 +37,7 @@ export const demoAccounts = {
     password: 'field-and-stake-26',
     role: 'agronomist',
     language: 'en',
+    phone: null,
     regions: ['upper-velmar', 'lower-velmar', 'orlaine-plateau'],
   },
   agronome: {
@@ -41,6 +46,7 @@ export const demoAccounts = {
     password: 'champ-et-piquet-26',
     role: 'agronomist',
     language: 'fr',
+    phone: null,
     regions: ['lower-velmar', 'orlaine-plateau', 'sarrow-coast'],
   },
   administrator: {
@@ -49,6 +55,7 @@ export const demoAccounts = {
     password: 'keys-of-velmar-26',
     role: 'administrator',
     language: 'en',
+    phone: null,
     regions: [],
   },
 } as const satisfies Record<string, DemoAccount>;

@@ -115,9 +115,9 @@ async function storeAccounts(tx: DatabaseOrTransaction, ids: CatalogueIds): Prom
   const keys = Object.keys(demoAccounts) as DemoAccountKey[];
   const rows = await Promise.all(
     keys.map(async (key) => {
-      const { name, email, role, language, password } = demoAccounts[key];
+      const { name, email, phone, role, language, password } = demoAccounts[key];
       const passwordHash = await hashPassword(password);
-      return { id: ids.accounts[key], name, email, role, language, passwordHash };
+      return { id: ids.accounts[key], name, email, phone, role, language, passwordHash };
     }),
   );
   await tx.insert(users).values(rows);

@@ -85,10 +85,11 @@ export async function queueMailOf(
   { recipient, link }: { recipient: string; link: string },
   createdBy: string,
 ): Promise<void> {
-  const { weighUp, advisorName, advisorEmail } = growerCopySnapshot.parse(row.snapshot);
+  const { weighUp, advisorName, advisorEmail, advisorPhone } = growerCopySnapshot.parse(row.snapshot);
   const { growerName, farmName, cropName } = weighUp;
   const expiresAt = row.expiresAt.toISOString();
-  const content = { growerName, farmName, cropName, advisorName, advisorEmail, expiresAt, link };
+  const advisor = { advisorName, advisorEmail, advisorPhone };
+  const content = { growerName, farmName, cropName, ...advisor, expiresAt, link };
   await queueCopyMail(tx, { copyId: row.id, recipient, language: row.language, content, createdBy });
   await recordAuditEvent(tx, {
     actorId: createdBy,

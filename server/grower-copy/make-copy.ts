@@ -25,7 +25,7 @@ export type CopyWish = {
  */
 export async function makeCopy(
   db: Database,
-  advisor: Pick<Me, 'id' | 'name' | 'email'>,
+  advisor: Pick<Me, 'id' | 'name' | 'email' | 'phone'>,
   weighUpId: string,
   { mail, followsId, ...wish }: CopyWish,
 ): Promise<{ copy: GrowerCopyLine; path: string }> {
@@ -47,7 +47,7 @@ export async function makeCopy(
 /** Everything the copy will show, as it is now; the parse keeps out what a copy does not declare. */
 async function takeSnapshot(
   db: Database,
-  advisor: Pick<Me, 'id' | 'name' | 'email'>,
+  advisor: Pick<Me, 'id' | 'name' | 'email' | 'phone'>,
   weighUpId: string,
 ): Promise<GrowerCopySnapshot> {
   const weighUp = await readOwnWeighUp(db, advisor.id, weighUpId);
@@ -61,6 +61,7 @@ async function takeSnapshot(
     traits,
     advisorName: advisor.name,
     advisorEmail: advisor.email,
+    advisorPhone: advisor.phone,
     madeAt: new Date().toISOString(),
     engineVersion: result.engineVersion,
   });

@@ -18,7 +18,7 @@ const dayMs = 24 * 60 * 60 * 1000;
  */
 export async function renewCopy(
   db: Database,
-  advisor: Pick<Me, 'id' | 'name' | 'email'>,
+  advisor: Pick<Me, 'id' | 'name' | 'email' | 'phone'>,
   copyId: string,
   origin: string | null,
 ): Promise<{ copy: GrowerCopyLine; path: string; isMailed: boolean }> {

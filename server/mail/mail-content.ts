@@ -8,6 +8,7 @@ export const copyMailContent = z.object({
   cropName: bilingualName,
   advisorName: z.string(),
   advisorEmail: z.string(),
+  advisorPhone: z.string().nullable().default(null),
   expiresAt: z.iso.datetime(),
   /** The whole address with its secret; null once the mail is sent or given up. */
   link: z.url().nullable(),

@@ -28,7 +28,11 @@ export function renderCopyMail(content: CopyMailContent, link: string, language:
   const open = t('copy.open');
   const inside = t('copy.inside');
   const until = t('copy.until', { on: content.expiresAt });
-  const questions = t('copy.questions', { advisor, email });
+  const phone = content.advisorPhone;
+  const questions =
+    phone === null
+      ? t('copy.questions', { advisor, email })
+      : t('copy.questionsOrCall', { advisor, email, phone });
   const why = t('copy.why', { advisor });
   const paragraph = (text: string, style = look.paragraph) => `<p style='${style}'>${escapeHtml(text)}</p>`;
   const href = escapeHtml(link);

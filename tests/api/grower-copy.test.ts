@@ -127,6 +127,18 @@ test.each(['en', 'fr'] as const)('everything is said before any script, in %s', 
   );
 });
 
+test('whoever reads a copy knows whom to call, as it was when the copy was made', async () => {
+  const { token: silent } = await makeCopy();
+  await advisor.agent.patch('/api/me').send({ phone: '+1 555-0142' }).expect(200);
+  const { token } = await makeCopy();
+  await advisor.agent.patch('/api/me').send({ phone: null }).expect(200);
+  const { text } = await open(token).expect(200);
+  expect(text).toContain('<a href="tel:+15550142"');
+  expect(readWords(text)).toContain(`${say('fr', 'copy:orCall')} +1 555-0142`);
+  const older = (await open(silent).expect(200)).text;
+  expect(older).not.toMatch(/tel:|ou appelez/);
+});
+
 test('the page holds nothing that the security policy forbids, nor anything from elsewhere', async () => {
   const { token } = await makeCopy();
   const { text, headers } = await open(token).expect(200);

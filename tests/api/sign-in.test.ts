@@ -29,7 +29,7 @@ test('the right password opens a session, says who it is and notes when', async 
     .send({ email: '  wren@example.org ', password: testPassword });
   expect(reply.status).toBe(200);
   expect(reply.body).toEqual({
-    me: { id, name: 'Test advisor', email, role: 'advisor', language: 'en', regionIds: [] },
+    me: { id, name: 'Test advisor', email, role: 'advisor', language: 'en', regionIds: [], phone: null },
   });
   expect(JSON.stringify(reply.body)).not.toContain('argon2');
   expect(String(reply.headers['set-cookie'])).toMatch(/HttpOnly; SameSite=Lax/);
@@ -144,4 +144,16 @@ test('the language of the account is changed by its owner', async () => {
   expect(reply.body.me.language).toBe('fr');
   expect((await agent.get('/api/me')).body.me.language).toBe('fr');
   expect((await agent.patch('/api/me').send({ language: 'de' })).status).toBe(400);
+});
+
+test('the phone number of the account is written, changed and taken away by its owner', async () => {
+  const { agent } = await world.signInAs('advisor');
+  for (const phone of ['+1 (555) 0142', '555-0143', null]) {
+    expect((await agent.patch('/api/me').send({ phone })).body.me).toMatchObject({ phone, language: 'en' });
+    expect((await agent.get('/api/me')).body.me.phone).toBe(phone);
+  }
+  for (const phone of ['', '12', 'mobile', '555-0142<b>', '5'.repeat(31)]) {
+    expect((await agent.patch('/api/me').send({ phone })).status).toBe(400);
+  }
+  expect((await agent.get('/api/me')).body.me.phone).toBe(null);
 });

@@ -10,6 +10,7 @@ const person = {
   role: 'advisor',
   language: 'en',
   regionIds: [],
+  phone: null,
 };
 
 const answer = (status: number, body: unknown) => () =>

@@ -12,6 +12,7 @@ const person = {
   role: 'advisor',
   language: 'fr',
   regionIds: [],
+  phone: null,
 };
 
 type Answer = { status: number; body: unknown };

@@ -25,7 +25,7 @@ describe.each(languages)('in %s', (language) => {
         : 'Orge de printemps, Haut-Velmar\u202f: faut‑il quitter Tamberlow\u202f?',
     );
     expect(pdf.bookmarks).toEqual([pdf.title, 'Quillane', 'Ostermay', expect.any(String)]);
-    expect(pdf.links).toEqual(['mailto:advisor@example.org', buildOrder().link]);
+    expect(pdf.links).toEqual(['mailto:advisor@example.org', 'tel:5550142', buildOrder().link]);
   });
 
   test('the figures are those of the copy, written as the language does', async () => {
@@ -36,6 +36,7 @@ describe.each(languages)('in %s', (language) => {
         : ['+0,50 t/ha', '+72 $/ha', 'rentable 86 fois sur 100', '+0,22 et +0,78 t/ha (intervalle à 95 %)'];
     for (const figure of said) expect(words).toContain(figure);
     expect(words).toContain('advisor@example.org');
+    expect(words).toContain(language === 'en' ? 'or call 555-0142' : 'ou appelez le 555-0142');
     expect(words).toContain(buildOrder().link);
     // A key without its sentence would stand there as it is.
     expect(words).not.toMatch(

@@ -153,6 +153,7 @@ export function buildOrder({
       format: 1,
       advisorName: 'Wren Halloway',
       advisorEmail: 'advisor@example.org',
+      advisorPhone: '555-0142',
       madeAt: '2026-12-01T15:00:00.000Z',
       engineVersion: '1',
       traits: [

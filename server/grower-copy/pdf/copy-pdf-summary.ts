@@ -1,3 +1,4 @@
+import { dialling } from '#shared/dialling.ts';
 import { tellBest } from '#shared/best-sentences.ts';
 import { buildHeadline, sayHeadline } from '#shared/headline.ts';
 import { tellUnanswered } from '#shared/no-verdict-sentences.ts';
@@ -116,7 +117,7 @@ function addWhoToAsk(
   { snapshot, expiresAt, link }: PrintedCopy,
   { say, write }: CopyVoice,
 ): void {
-  const { advisorName: advisor, advisorEmail, madeAt } = snapshot;
+  const { advisorName: advisor, advisorEmail, advisorPhone, madeAt } = snapshot;
   const style = { ...styles.small, colour: inks.ink };
   // Kept together: whoever finds the question finds the answer's address beside it.
   flow.ensureRoom(5 * style.leading);
@@ -126,6 +127,10 @@ function addWhoToAsk(
   const question = { text: `${say('copy:question')} `, weight: 'bold' } as const;
   const email = { words: advisorEmail, target: `mailto:${advisorEmail}` };
   addLink(flow, [question, { text: `${say('copy:ask', { advisor })} ` }], email, style);
+  if (advisorPhone !== null) {
+    const phone = { words: advisorPhone, target: dialling(advisorPhone) };
+    addLink(flow, [{ text: `${say('copy:orCall')} ` }], phone, style);
+  }
   addLink(flow, [{ text: `${say('print:onScreen')} ` }], { words: link, target: link }, style);
   const dates = { date: write.date(madeAt), until: write.date(expiresAt) };
   addParagraph(flow, say('copy:frozen', dates), styles.small);

@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
+import { dialling } from '#shared/dialling.ts';
 import { writeUnitParameter } from '#shared/reader-units.ts';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
@@ -128,6 +129,15 @@ function WhoToAsk({ copy: { snapshot, expiresAt } }: { copy: OpenedCopy }) {
         <a href={`mailto:${snapshot.advisorEmail}`} className="tap-target inline-flex items-center">
           {snapshot.advisorEmail}
         </a>
+        {snapshot.advisorPhone !== null && (
+          <>
+            {' '}
+            {t('orCall')}{' '}
+            <a href={dialling(snapshot.advisorPhone)} className="tap-target inline-flex items-center">
+              {snapshot.advisorPhone}
+            </a>
+          </>
+        )}
       </p>
       <PaperLinks />
       <p className="mt-2 text-sm text-faded">

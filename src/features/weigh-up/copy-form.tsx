@@ -1,6 +1,7 @@
 import { useRef, useState } from 'react';
 import { useTranslation } from 'react-i18next';
 import { languages, type Language } from '#shared/language.ts';
+import { phoneNumber } from '#shared/account.ts';
 import { mailRecipient } from '#shared/grower-copy.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
@@ -17,29 +18,41 @@ export type CopyWish = { language: Language; validDays: number; email?: string }
 type CopyFormProps = {
   hasUnsaved: boolean;
   isBusy: boolean;
+  /** What growers may call, as it stands in the account; null for none. */
+  phone: string | null;
   /** Whether the server can send mail; null while that is not known yet. */
   isMailSetUp: boolean | null;
-  onMake: (wish: CopyWish) => void;
+  /** @param phone for this copy and those after it */
+  onMake: (wish: CopyWish, phone: string | null) => void;
 };
 
-/** Language, validity and, where mail can be sent, the grower's address. */
-export function CopyForm({ hasUnsaved, isBusy, isMailSetUp, onMake }: CopyFormProps) {
+/** Language, validity, whom to call and, where mail can be sent, the grower's address. */
+export function CopyForm({ hasUnsaved, isBusy, phone, isMailSetUp, onMake }: CopyFormProps) {
   const { t } = useTranslation(['weigh-up', 'common']);
   const pageLanguage = useLanguage();
   const [language, setLanguage] = useState<Language | null>(null);
   const [validDays, setValidDays] = useState(year);
   const [address, setAddress] = useState('');
-  const [isBad, setIsBad] = useState(false);
+  const [dialled, setDialled] = useState(phone ?? '');
+  const [bad, setBad] = useState<'address' | 'phone' | null>(null);
   const addressField = useRef<HTMLInputElement>(null);
+  const phoneField = useRef<HTMLInputElement>(null);
   const chosen = language ?? pageLanguage;
   const isSent = isMailSetUp === true && address.trim() !== '';
   const submit = () => {
     const wish = { language: chosen, validDays };
-    const recipient = mailRecipient.safeParse(address);
-    setIsBad(isSent && !recipient.success);
-    if (!isSent) onMake(wish);
-    else if (recipient.success) onMake({ ...wish, email: recipient.data });
-    else addressField.current?.focus();
+    const recipient = isSent ? mailRecipient.safeParse(address) : null;
+    const called = dialled.trim() === '' ? null : phoneNumber.safeParse(dialled);
+    if (called?.success === false) {
+      setBad('phone');
+      phoneField.current?.focus();
+    } else if (recipient?.success === false) {
+      setBad('address');
+      addressField.current?.focus();
+    } else {
+      setBad(null);
+      onMake(recipient === null ? wish : { ...wish, email: recipient.data }, called?.data ?? null);
+    }
   };
   return (
     <form
@@ -68,11 +81,25 @@ export function CopyForm({ hasUnsaved, isBusy, isMailSetUp, onMake }: CopyFormPr
             }))}
           />
         </Field>
+        <Field
+          label={t('weigh-up:copies.phone')}
+          hint={t('weigh-up:copies.phoneHint')}
+          error={bad === 'phone' ? t('weigh-up:copies.badPhone') : undefined}
+          className="sm:col-span-2"
+        >
+          <TextInput
+            ref={phoneField}
+            type="tel"
+            autoComplete="tel"
+            value={dialled}
+            onChange={(event) => setDialled(event.target.value)}
+          />
+        </Field>
         {isMailSetUp === true && (
           <Field
             label={t('weigh-up:copies.email')}
             hint={t('weigh-up:copies.emailHint')}
-            error={isBad ? t('weigh-up:copies.badAddress') : undefined}
+            error={bad === 'address' ? t('weigh-up:copies.badAddress') : undefined}
             className="sm:col-span-2"
           >
             <TextInput

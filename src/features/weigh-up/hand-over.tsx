@@ -1,11 +1,13 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
+import { changeMe } from '#shared/account.ts';
 import { makeGrowerCopy } from '#shared/grower-copy.ts';
 import { callApi } from '#src/api-client.ts';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { FoldedSection } from '#src/components/folded-section.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { QueryErrorState } from '#src/query-error-state.tsx';
+import { meQuery, useMe } from '#src/session.ts';
 import { useErrorText } from '#src/use-error-text.ts';
 import { CopyForm, type CopyWish } from './copy-form.tsx';
 import { CopyLink } from './copy-link.tsx';
@@ -23,8 +25,15 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
   const { t } = useTranslation('weigh-up');
   const copies = useQuery(growerCopiesQuery(weighUpId));
   const client = useQueryClient();
+  const me = useMe();
   const making = useMutation({
-    mutationFn: (body: CopyWish) => callApi(makeGrowerCopy, { params: { weighUpId }, body }),
+    mutationFn: async ({ wish, phone }: { wish: CopyWish; phone: string | null }) => {
+      // The number is the advisor's own: the next copy begins with it.
+      if (phone !== me.phone) {
+        client.setQueryData(meQuery.queryKey, (await callApi(changeMe, { body: { phone } })).me);
+      }
+      return callApi(makeGrowerCopy, { params: { weighUpId }, body: wish });
+    },
     onSuccess: () => client.invalidateQueries({ queryKey: growerCopiesQuery(weighUpId).queryKey }),
   });
   const errorText = useErrorText();
@@ -35,7 +44,8 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
         hasUnsaved={hasUnsaved}
         isBusy={making.isPending}
         isMailSetUp={copies.data?.isMailSetUp ?? null}
-        onMake={(wish) => making.mutate(wish)}
+        phone={me.phone}
+        onMake={(wish, phone) => making.mutate({ wish, phone })}
       />
       {making.isError && <ErrorState message={errorText(making.error)} />}
       {making.data && (

@@ -1,7 +1,7 @@
 import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { afterEach, describe, expect, it, vi } from 'vitest';
-import type { Language } from '#shared/account.ts';
+import type { Language, Me } from '#shared/account.ts';
 import type { CopyMail, GrowerCopyLine } from '#shared/grower-copy.ts';
 import { HandOver } from '#src/features/weigh-up/hand-over.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -33,6 +33,11 @@ const copy: GrowerCopyLine = {
   mail: null,
 };
 
+const me: Me = {
+  ...{ id: idOf(10), name: 'Ines Quarrel', email: 'ines@example.org', language: 'en', role: 'advisor' },
+  ...{ regionIds: [], phone: '555-0142' },
+};
+
 type Asked = { method: string; path: string; body: unknown };
 
 /** Answers like the server and keeps what was asked of it, the lists aside. */
@@ -40,8 +45,17 @@ function serve(isMailSetUp: boolean, copies: GrowerCopyLine[] = []): Asked[] {
   const asked: Asked[] = [];
   vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
     const method = init.method ?? 'GET';
+    if (path === '/api/me' && method === 'GET') {
+      // The page speaks the language of the account.
+      const language = document.documentElement.lang;
+      return Promise.resolve(Response.json({ me: { ...me, language } }));
+    }
     if (method === 'GET') return Promise.resolve(Response.json({ copies, isMailSetUp }));
     asked.push({ method, path, body: JSON.parse(String(init.body ?? 'null')) });
+    if (path === '/api/me') {
+      const { phone } = JSON.parse(String(init.body)) as Pick<Me, 'phone'>;
+      return Promise.resolve(Response.json({ me: { ...me, phone } }));
+    }
     const answer = path.endsWith('/grower-copies') ? { copy, path: `/copy/${token}`, link } : { copy };
     return Promise.resolve(Response.json(answer));
   });
@@ -89,6 +103,32 @@ describe('handing a copy over', () => {
     await waitFor(() =>
       expect(asked[0]?.body).toEqual({ language: 'en', validDays: 365, email: 'maren@example.org' }),
     );
+  });
+
+  it('keeps another phone number in the account before the copy is made, and an unchanged one not', async () => {
+    const asked = serve(true);
+    await open();
+    const phone = await screen.findByLabelText('Your phone number, for the grower’s questions');
+    expect(phone).toHaveProperty('value', '555-0142');
+    const make = screen.getByRole('button', { name: 'Make a grower copy' });
+    await userEvent.clear(phone);
+    await userEvent.type(phone, 'my mobile');
+    await userEvent.click(make);
+    await screen.findByText(/^Please give one phone number/);
+    expect(document.activeElement).toBe(phone);
+    expect(asked).toEqual([]);
+    await userEvent.clear(phone);
+    await userEvent.type(phone, ' (555) 0199 ');
+    await userEvent.click(make);
+    await screen.findByLabelText('Link to the grower copy');
+    await userEvent.click(make);
+    await waitFor(() => expect(asked).toHaveLength(3));
+    expect(asked.map(({ method }) => method)).toEqual(['PATCH', 'POST', 'POST']);
+    expect(asked[0]?.body).toEqual({ phone: '(555) 0199' });
+    await userEvent.clear(phone);
+    await userEvent.click(make);
+    await waitFor(() => expect(asked).toHaveLength(5));
+    expect(asked[3]?.body).toEqual({ phone: null });
   });
 
   it('asks for one whole address before anything is made', async () => {

@@ -163,7 +163,7 @@ function NewQuestion() {
 }
 const me = {
   ...{ id: idOf(9), name: 'Ines', email: 'ines@example.org', language: 'en' as const },
-  ...{ role: 'advisor' as const, regionIds: [] },
+  ...{ role: 'advisor' as const, regionIds: [], phone: null },
 };
 
 describe('the question of a new weigh-up', () => {

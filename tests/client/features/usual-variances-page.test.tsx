@@ -56,7 +56,10 @@ function serve(role: 'agronomist' | 'advisor', before: UsualEstimate[]): void {
   vi.stubGlobal('fetch', (path: string, init: RequestInit = {}) => {
     if (path === '/api/catalogue') return Promise.resolve(Response.json(catalogue));
     if (path === '/api/me') {
-      const me = { id: cropId, name: 'Ines', email: 'ines@example.org', role, language: 'en', regionIds: [] };
+      const me = {
+        ...{ id: cropId, name: 'Ines', email: 'ines@example.org', role, language: 'en' },
+        ...{ regionIds: [], phone: null },
+      };
       return Promise.resolve(Response.json({ me }));
     }
     if (init.method !== 'POST') return Promise.resolve(Response.json(usual(stored)));
