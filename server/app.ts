@@ -71,7 +71,7 @@ export function buildApp(
   const api = addApi(app, db, session, settings, onMailQueued);
   app.use('/copy', keepLinkPrivate);
   addCopyPdf(app, db, settings);
-  addCopyPage(app, db, copyFiles);
+  addCopyPage(app, db, settings, copyFiles);
   if (settings.clientFolder !== null) serveClient(app, settings.clientFolder, api, session);
   app.use(handleError);
   return app;

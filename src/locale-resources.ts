@@ -7,6 +7,7 @@ import type desk from '#locales/en/desk.json';
 import type drawings from '#locales/en/drawings.json';
 import type errors from '#locales/en/errors.json';
 import type method from '#locales/en/method.json';
+import type print from '#locales/en/print.json';
 import type problems from '#locales/en/problems.json';
 import type record from '#locales/en/record.json';
 import type signIn from '#locales/en/sign-in.json';
@@ -25,6 +26,7 @@ type LocaleResources = {
   drawings: typeof drawings;
   errors: typeof errors;
   method: typeof method;
+  print: typeof print;
   problems: typeof problems;
   record: typeof record;
   'sign-in': typeof signIn;

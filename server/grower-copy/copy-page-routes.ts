@@ -12,9 +12,11 @@ import {
   type CopyPageFiles,
 } from '#src/features/grower-copy/render-copy-page.ts';
 import type { Database } from '#server/db.ts';
+import type { ServerSettings } from '#server/env.ts';
 import { settleFailure } from '#server/error-handler.ts';
 import { presentSentences } from './copy-sentences.ts';
 import { openCopy } from './grower-copy-store.ts';
+import { copyLinkOf } from './public-origin.ts';
 
 /** The link is the key: it must not reach search engines or, as a referrer, other sites. Nobody in between keeps the page. */
 export const keepLinkPrivate: RequestHandler = (_request, response, next) => {
@@ -27,10 +29,16 @@ export const keepLinkPrivate: RequestHandler = (_request, response, next) => {
 };
 
 /** The copy behind its link, as a page: 200, or 404 and 410 with a page of their own. */
-export function addCopyPage(router: Router, db: Database, files: CopyPageFiles): void {
+export function addCopyPage(
+  router: Router,
+  db: Database,
+  settings: ServerSettings,
+  files: CopyPageFiles,
+): void {
   router.get('/copy/:token', async (request, response) => {
     const { copy, spoken } = await openAsAsked(db, request, isOpening(request));
-    sendTagged(request, response.type('html'), renderCopyPage(copy, { ...spoken, files }));
+    const link = copyLinkOf(request, settings);
+    sendTagged(request, response.type('html'), renderCopyPage(copy, { ...spoken, files, link }));
   });
 
   // What the page's script takes the answer over with; the page was counted before.

@@ -13,11 +13,12 @@ export function BestOfListAnswer({ best, currentId, currentName }: BestOfListPro
   const language = useLanguage();
   const said = tellBest(best, { id: currentId, name: currentName }, language, t);
   return (
-    <div className="flex max-w-prose flex-col gap-2">
+    <div className="flex max-w-prose flex-col gap-2 print:contents">
       {said.map((text) => (
         <p key={text}>{text}</p>
       ))}
-      <details>
+      {/* On paper the list stands behind the first sheet, with the other tables. */}
+      <details className="print:order-2 print:break-inside-avoid">
         <summary className="tap-target flex items-center font-semibold text-action underline underline-offset-4">
           {t('verdicts:best.show')}
         </summary>

@@ -12,10 +12,13 @@ export function CandidateStory({ candidate, unit, decimals, ...ground }: StoryPr
   return (
     <div className="flex max-w-prose flex-col gap-4 print:gap-2">
       {tellStory(candidate, ground, { say, write, unit, decimals }).map(({ title, paragraphs, items }) => (
-        <section key={title} className="flex flex-col gap-1 print:gap-0">
+        <section key={title} className="flex flex-col gap-1 print:block">
           <h3>{title}</h3>
           {paragraphs.map((paragraph) => (
-            <p key={paragraph}>{paragraph}</p>
+            // On paper, where room is dear, they run on as one.
+            <p key={paragraph} className="print:inline">
+              {paragraph}{' '}
+            </p>
           ))}
           {items.length > 0 && (
             <ul className="list-disc pl-5">

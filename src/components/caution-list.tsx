@@ -10,6 +10,8 @@ type CautionListProps = {
   items: readonly CautionItem[];
   /** Level of the title in the page's outline. */
   headingLevel?: 2 | 3;
+  /** On paper: how many there are, and that they may go on on the next sheet. */
+  mayBreak?: boolean;
 };
 
 const tones: Record<CautionSeverity, string> = {
@@ -19,8 +21,8 @@ const tones: Record<CautionSeverity, string> = {
 };
 
 /** Where the evidence stops: always in view, gravest first, each with its glyph and its word. */
-export function CautionList({ title, items, headingLevel = 2 }: CautionListProps) {
-  const { t } = useTranslation('common');
+export function CautionList({ title, items, headingLevel = 2, mayBreak = false }: CautionListProps) {
+  const { t } = useTranslation(['common', 'verdicts']);
   const titleId = useId();
   const Heading = `h${headingLevel}` as const;
   const sorted = sortByGravity(items);
@@ -28,18 +30,26 @@ export function CautionList({ title, items, headingLevel = 2 }: CautionListProps
   return (
     <section
       aria-labelledby={titleId}
-      className="rounded-lg bg-warning px-4 py-4 sm:px-5 print:border print:border-ink print:p-2"
+      className="rounded-lg bg-warning px-4 py-4 sm:px-5 print:border print:border-ink print:p-1.5 print:box-decoration-clone"
     >
-      <Heading id={titleId} className="mb-2">
+      <Heading id={titleId} className="mb-2 print:mb-0.5">
         {title}
       </Heading>
-      <ul className="flex flex-col gap-2.5 print:gap-1 print:text-sm">
+      {mayBreak && (
+        <p className="mb-1 hidden text-sm text-faded print:block print:break-after-avoid">
+          {t('verdicts:cautionsOnPaper', { count: sorted.length })}
+        </p>
+      )}
+      <ul className="flex flex-col gap-2.5 print:block print:text-sm">
         {sorted.map((item) => (
-          <li key={item.id} className="grid grid-cols-[1.5rem_minmax(0,1fr)] gap-x-2">
+          <li
+            key={item.id}
+            className="grid grid-cols-[1.5rem_minmax(0,1fr)] gap-x-2 print:mb-px print:grid-cols-[1.1rem_minmax(0,1fr)]"
+          >
             <SeverityGlyph severity={item.severity} />
             <p className="max-w-[46rem] print:max-w-none">
               <strong className={`font-semibold ${tones[item.severity]}`}>
-                {t(`severity.${item.severity}`)}
+                {t(`common:severity.${item.severity}`)}
               </strong>{' '}
               {item.text}
             </p>
@@ -53,7 +63,11 @@ export function CautionList({ title, items, headingLevel = 2 }: CautionListProps
 /** A line for a note, a triangle for a warning, a barred square for a stop: told apart without colour. */
 function SeverityGlyph({ severity }: { severity: CautionSeverity }) {
   return (
-    <svg viewBox="0 0 20 20" className={`mt-0.5 size-5 ${tones[severity]}`} aria-hidden="true">
+    <svg
+      viewBox="0 0 20 20"
+      className={`mt-0.5 size-5 print:mt-px print:size-3.5 ${tones[severity]}`}
+      aria-hidden="true"
+    >
       {severity === 'note' && <path d="M3 10h14" stroke="currentColor" strokeWidth="3" />}
       {severity === 'warning' && (
         <>

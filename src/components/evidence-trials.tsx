@@ -35,8 +35,8 @@ export function EvidenceTrials({ result, linkTrial, stepOf, isStill = false }: E
     ? [{ ...step, cell: (trial) => (trial.reason === 'ticked-off' ? stepOf(trial) : '–') }]
     : [];
   return (
-    <div className="flex flex-col gap-5">
-      <section className="flex flex-col gap-2">
+    <div className="flex flex-col gap-5 print:gap-2">
+      <section className="flex flex-col gap-2 print:gap-0.5">
         <h3>{t('trialsUsed')}</h3>
         <DataTable
           caption={t('trialsUsedCaption')}
@@ -45,7 +45,7 @@ export function EvidenceTrials({ result, linkTrial, stepOf, isStill = false }: E
           rowKey={(trial) => trial.trialId}
         />
       </section>
-      <section className="flex flex-col gap-2">
+      <section className="flex flex-col gap-2 print:gap-0.5">
         <h3>{t('leftOut')}</h3>
         {result.leftOut.length === 0 ? (
           <p>{t('nothingLeftOut')}</p>
@@ -72,7 +72,7 @@ function useUsedColumns(linkTrial: EvidenceTrialsProps['linkTrial']): Column<Use
       cell: ({ trialId, siteName, name, inRegion, regionName }) => (
         <>
           {linkTrial ? linkTrial(trialId, siteName) : siteName}
-          <span className="block text-sm font-normal text-faded">{name}</span>
+          <span className="block text-sm font-normal text-faded print:ml-1.5 print:inline">{name}</span>
           {inRegion === false && regionName && (
             <span className="block text-sm font-normal text-break-even">
               {t('elsewhere', { region: format.name(regionName) })}

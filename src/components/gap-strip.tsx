@@ -83,14 +83,14 @@ function StripRow({ row, scale, currentName, unit, decimals, headingLevel }: Str
   const format = useFormat();
   const sentence = useGapSentence(currentName, unit, decimals)(row);
   return (
-    <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-3 print:py-1 @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
+    <li className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-3 print:py-0.5 @2xl:grid-cols-[11rem_minmax(0,1fr)_10rem] @2xl:gap-x-5">
       <div>
         <Heading className="text-lg font-bold [&_a]:tap-target [&_a]:inline-flex [&_a]:items-center">
           {row.head ?? row.name}
         </Heading>
         <VerdictMark verdict={row.verdict} className="text-sm" />
       </div>
-      <div className="relative col-span-2 row-start-2 py-6 print:py-4 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1">
+      <div className="relative col-span-2 row-start-2 py-6 print:py-2.5 @2xl:col-span-1 @2xl:col-start-2 @2xl:row-start-1">
         {row.estimate !== null && (
           <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
             {format.gap(row.estimate, unit, decimals)}

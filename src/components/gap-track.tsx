@@ -177,7 +177,7 @@ export function GapLabel({ scale, value, children, className = '' }: GapLabelPro
   return (
     <span
       aria-hidden="true"
-      className={`absolute -translate-x-1/2 whitespace-nowrap text-sm ${className}`}
+      className={`absolute -translate-x-1/2 whitespace-nowrap text-sm print:bg-card ${className}`}
       style={{ left: labelLeft(scale, value, `${words.length * 0.29}em`) }}
     >
       {words}

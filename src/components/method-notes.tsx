@@ -10,7 +10,7 @@ export function MethodNotes({ result }: MethodNotesProps) {
   const { t } = useTranslation(['method', 'verdicts', 'common']);
   const format = useFormat();
   return (
-    <div className="flex max-w-prose flex-col gap-2">
+    <div className="flex max-w-prose flex-col gap-2 print:gap-0.5">
       {tellMethod(result, t, format).map(({ kind, text, items }) => (
         <div key={text} className={kind === 'mark' ? 'text-sm text-faded' : undefined}>
           <p>{text}</p>

@@ -44,7 +44,10 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
     })),
   ];
   return (
-    <section className="flex flex-col gap-3">
+    // Up to five candidates the table fits onto one sheet, and stays whole there.
+    <section
+      className={`flex flex-col gap-3 print:gap-1 ${candidates.length > 5 ? '' : 'print:break-inside-avoid'}`}
+    >
       <h2>{t('traits.title', { current: currentName })}</h2>
       {rows.length === 0 ? (
         <p className="text-faded">{t('traits.empty')}</p>

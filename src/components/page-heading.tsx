@@ -29,7 +29,7 @@ export function PageHeading({ title, above, below, actions }: PageHeadingProps) 
     // eslint-disable-next-line react-hooks/exhaustive-deps
   }, [pathname]);
   return (
-    <div className="mb-5 flex flex-wrap items-end justify-between gap-x-6 gap-y-3">
+    <div className="mb-5 flex print:mb-2 flex-wrap items-end justify-between gap-x-6 gap-y-3">
       <div className="min-w-0">
         {above && <p className="text-sm text-faded">{above}</p>}
         <h1 ref={ref} tabIndex={-1}>

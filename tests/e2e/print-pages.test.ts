@@ -1,7 +1,7 @@
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { languages, type Language } from '#shared/language.ts';
-import type { WeighUpLine } from '#shared/weigh-up.ts';
+import type { WeighUp, WeighUpLine, WeighUpResult } from '#shared/weigh-up.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
 import { readPdf } from '#tests/support/read-pdf.ts';
@@ -24,6 +24,9 @@ afterAll(async () => {
 /** Of each, sizes in points. */
 const papers = { A4: [595, 842], Letter: [612, 792] } as const;
 
+// Where a line ends is the paper's affair.
+const bare = (words: string): string => words.replace(/\s/g, '');
+
 async function print(page: Page, format: keyof typeof papers) {
   const pdf = await readPdf(await page.pdf({ format }));
   const [width, height] = papers[format];
@@ -32,11 +35,9 @@ async function print(page: Page, format: keyof typeof papers) {
     expect(Math.abs(sheet.width - width)).toBeLessThan(1.5);
     expect(Math.abs(sheet.height - height)).toBeLessThan(1.5);
   }
-  // Where a line ends is the paper's affair.
-  return { pages: pdf.pages.length, words: pdf.words.replace(/\s/g, '') };
+  const sheets = pdf.pages.map(({ texts }) => bare(texts.map(({ text }) => text).join('')));
+  return { sheets, words: bare(pdf.words) };
 }
-
-const bare = (words: string): string => words.replace(/\s/g, '');
 
 async function openFirstWeighUp(page: Page, language: Language): Promise<string> {
   // The weigh-ups of the demo belong to one advisor, who may read in either language.
@@ -67,6 +68,11 @@ describe('pages on paper', () => {
     const shown = await readShown(page);
     expect(shown.cautions.length).toBeGreaterThan(3);
     expect(shown.trials.length).toBeGreaterThan(3);
+    for (const format of ['A4', 'Letter'] as const) {
+      // The first sheet is the whole answer: it says where the evidence stops.
+      const [first] = (await print(page, format)).sheets;
+      for (const text of shown.cautions) expect(first, format).toContain(bare(text));
+    }
     const { words } = await print(page, language === 'en' ? 'A4' : 'Letter');
     for (const text of [...shown.cautions, ...shown.trials]) expect(words).toContain(bare(text));
     expect(words).toContain(bare(say(language, 'method:trialsUsed')));
@@ -104,14 +110,43 @@ describe('pages on paper', () => {
     const page = await still.newPage();
     await page.goto(path);
     const candidates = await page.locator('article h2').allTextContents();
-    const { pages, words } = await print(page, language === 'en' ? 'Letter' : 'A4');
+    const { sheets, words } = await print(page, language === 'en' ? 'Letter' : 'A4');
     await still.close();
     for (const text of [...cautions, ...trials, ...candidates]) expect(words).toContain(bare(text));
-    // Every candidate's story is unfolded, and begins a sheet.
+    // The first sheet is the whole answer, and says how to find the page it was printed from.
+    for (const text of [...cautions, ...candidates, say(language, 'copy:question'), `${app.url}${path}`])
+      expect(sheets[0]).toContain(bare(text));
+    // Every candidate's story is unfolded, and no sheet is begun without need.
     const stories = words.split(bare(say(language, 'verdicts:story.trials'))).length - 1;
     expect(stories).toBe(candidates.length);
-    expect(pages).toBeGreaterThan(candidates.length + 1);
+    expect(sheets.length).toBeLessThanOrEqual(7);
     for (const key of ['copy:own.title', 'copy:onPaper', 'common:units.label'])
       expect(words, key).not.toContain(bare(say(language, key)));
+  });
+
+  it('breaks a weigh-up of eight candidates where it must, and says so on the sheet', async () => {
+    const { page, close } = await openVisit(browser, app.url, 'fr', 1280);
+    const id = await openFirstWeighUp(page, 'fr');
+    const { weighUp } = (await (await page.request.get(`/api/weigh-ups/${id}`)).json()) as {
+      weighUp: WeighUp;
+    };
+    const { cropId, regionId, currentVarietyId, seasonFrom, seasonTo } = weighUp;
+    const asked = { cropId, regionId, currentVarietyId, seasonFrom, seasonTo };
+    const { result } = (await (await page.request.get('/api/candidates', { params: asked })).json()) as {
+      result: WeighUpResult;
+    };
+    const candidateIds = result.candidates.slice(0, 8).map(({ varietyId }) => varietyId);
+    const made = await page.request.post('/api/weigh-ups', { data: { ...weighUp, candidateIds } });
+    await page.goto(`/weigh-ups/${((await made.json()) as { weighUp: WeighUp }).weighUp.id}`);
+    await page.locator('#cautions li').first().waitFor();
+    const { cautions } = await readShown(page);
+    const { sheets } = await print(page, 'Letter');
+    const count = cautions.length;
+    expect(sheets[0]).toContain(bare(say('fr', 'verdicts:cautionsOnPaper', { count })));
+    const both = sheets.slice(0, 2).join('');
+    for (const text of cautions) expect(both).toContain(bare(text));
+    // A table wider than its sheet would have shrunk all of them.
+    for (const name of result.candidates.slice(0, 8)) expect(both).toContain(bare(name.varietyName));
+    await close();
   });
 });

@@ -8,7 +8,7 @@ import { compute } from '#server/computing/compute.ts';
 import type { Database } from '#server/db.ts';
 import type { ServerSettings } from '#server/env.ts';
 import { openCopy } from '#server/grower-copy/grower-copy-store.ts';
-import { publicOriginOf } from '#server/grower-copy/public-origin.ts';
+import { copyLinkOf } from '#server/grower-copy/public-origin.ts';
 import { leavingSignal } from '#server/route.ts';
 import { papers } from './page-flow.ts';
 
@@ -35,7 +35,7 @@ export function addCopyPdf(router: Router, db: Database, settings: ServerSetting
       [
         {
           ...copy,
-          link: `${publicOriginOf(request, settings)}/copy/${token}`,
+          link: copyLinkOf(request, settings),
           language,
           sentences: sentences[language],
           readerUnits: readerUnitsOfCopy(copy.snapshot, readUnitParameter(unit) ?? 't/ha'),

@@ -11,24 +11,27 @@ import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
+import { CopyAddress, CopyCode } from './copy-way-back.tsx';
 import { CopyUnits } from './copy-units.tsx';
 import { answerId } from './copy-script-data.ts';
 
 type CopyBodyProps = {
   copy: OpenedCopy;
+  /** The whole address that it was opened by, its secret last. */
+  link: string;
   /** The answer as its own root, which the script takes over; null where there is none. */
   answerHtml: string | null;
 };
 
 /** The copy as it was frozen, answer first. */
-export function CopyBody({ copy, answerHtml }: CopyBodyProps) {
+export function CopyBody({ copy, link, answerHtml }: CopyBodyProps) {
   const { t } = useTranslation(['copy', 'verdicts']);
   const { weighUp } = copy.snapshot;
   return (
     <>
-      <CopyHeading copy={copy} />
-      {/* On paper the first sheet is the answer with its cautions, and each candidate has one of its own behind it. */}
-      <div className="flex flex-col gap-7 print:gap-4">
+      <CopyHeading copy={copy} link={link} />
+      {/* On paper the first sheet is the answer with its cautions; traits, stories and method go on behind it. */}
+      <div className="flex flex-col gap-7 print:gap-1.5">
         <CautionList title={t('verdicts:changes.title')} items={useLaterChanges(copy.laterChanges)} />
         {answerHtml === null ? (
           <Unanswered
@@ -42,7 +45,7 @@ export function CopyBody({ copy, answerHtml }: CopyBodyProps) {
         ) : (
           <WeighedCopy copy={copy} answerHtml={answerHtml} />
         )}
-        <WhoToAsk copy={copy} />
+        <WhoToAsk copy={copy} link={link} />
       </div>
     </>
   );
@@ -59,13 +62,14 @@ export function useCopyTitle({ snapshot: { weighUp } }: OpenedCopy): string {
   });
 }
 
-function CopyHeading({ copy }: { copy: OpenedCopy }) {
+function CopyHeading({ copy, link }: Pick<CopyBodyProps, 'copy' | 'link'>) {
   const { t } = useTranslation('copy');
   const format = useFormat();
   const title = useCopyTitle(copy);
   const { weighUp, advisorName, madeAt } = copy.snapshot;
   return (
-    <div className="mb-5">
+    <div className="mb-5 print:mb-1 print:pr-[28mm]">
+      <CopyCode link={link} />
       <p className="text-sm text-faded">
         {t('for', {
           grower: weighUp.growerName,
@@ -105,11 +109,17 @@ function WeighedCopy({ copy, answerHtml }: { copy: OpenedCopy; answerHtml: strin
     <>
       <CautionList title={t('verdicts:stopTitle')} items={cautionItems(stops)} />
       <div id={answerId} className="print:contents" dangerouslySetInnerHTML={{ __html: answerHtml }} />
-      <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} />
-      <OtherTraits candidates={result.candidates} traits={traits} currentName={weighUp.currentVarietyName} />
-      <details className="print:order-3 print:break-before-page">
+      <CautionList title={t('verdicts:cautionsTitle')} items={cautionItems(cautions)} mayBreak />
+      <div className="print:order-2">
+        <OtherTraits
+          candidates={result.candidates}
+          traits={traits}
+          currentName={weighUp.currentVarietyName}
+        />
+      </div>
+      <details className="print:order-4">
         <summary className="tap-target py-2.5 text-lg font-bold">{t('copy:howTitle')}</summary>
-        <div className="mt-2 flex flex-col gap-5">
+        <div className="mt-2 flex flex-col gap-5 print:mt-0 print:gap-1.5">
           <MethodNotes result={result} />
           <EvidenceTrials result={result} isStill />
         </div>
@@ -118,11 +128,11 @@ function WeighedCopy({ copy, answerHtml }: { copy: OpenedCopy; answerHtml: strin
   );
 }
 
-function WhoToAsk({ copy: { snapshot, expiresAt } }: { copy: OpenedCopy }) {
+function WhoToAsk({ copy: { snapshot, expiresAt }, link }: Pick<CopyBodyProps, 'copy' | 'link'>) {
   const { t } = useTranslation('copy');
   const format = useFormat();
   return (
-    <footer className="border-t border-rule pt-4 print:order-1 print:break-inside-avoid">
+    <footer className="border-t border-rule pt-4 print:order-1 print:break-inside-avoid print:pt-1">
       <h2>{t('question')}</h2>
       <p>
         {t('ask', { advisor: snapshot.advisorName })}{' '}
@@ -140,7 +150,8 @@ function WhoToAsk({ copy: { snapshot, expiresAt } }: { copy: OpenedCopy }) {
         )}
       </p>
       <PaperLinks />
-      <p className="mt-2 text-sm text-faded">
+      <CopyAddress link={link} />
+      <p className="mt-2 text-sm text-faded print:mt-0">
         {t('frozen', { date: format.date(snapshot.madeAt), until: format.date(expiresAt) })}
       </p>
     </footer>

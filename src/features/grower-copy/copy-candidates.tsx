@@ -8,7 +8,7 @@ import { CandidateStory, IntervalSentences } from '#src/components/candidate-sto
 import { useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import { useSeasons } from '#src/components/use-seasons.ts';
+import { usePaysIn, useSeasons } from '#src/components/use-seasons.ts';
 import type { CopyAnswerProps } from './copy-answer.tsx';
 import { CopyTrialLines } from './copy-trial-lines.tsx';
 
@@ -34,14 +34,13 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
   const level = (value: number) => format.percent(value * 100);
   const isBeyondRegion = candidates.some(reachesBeyondRegion);
   return (
-    <section
-      aria-label={t('candidates')}
-      className="flex flex-col print:order-2 print:block print:break-before-page"
-    >
-      <p className="text-sm text-faded">
+    <section aria-label={t('candidates')} className="flex flex-col print:contents">
+      <p className="text-sm text-faded print:-mb-9 print:min-h-9 print:w-46">
         {t('axis', { current: weighUp.currentVarietyName, unit: format.unit(unit) })}
       </p>
-      <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
+      <div className="print:mr-58 print:ml-50">
+        <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
+      </div>
       {candidates.map((candidate) => (
         <CopyCandidate
           key={candidate.varietyId}
@@ -82,57 +81,74 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
   const sentence = useGapSentence(weighUp.currentVarietyName, unit, decimals)(row);
   const { money, verdict, siteYears } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
+  const paysIn = usePaysIn();
   return (
-    <article className="border-t-2 border-ink py-4 print:[article+&]:break-before-page">
-      <div className="flex flex-wrap items-baseline justify-between gap-x-4">
-        <h2>{candidate.varietyName}</h2>
-        <p className="text-lg font-bold">
-          {hasMoney
-            ? format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true })
-            : t('cantSay')}
-          {hasMoney && isOwn && (
-            <span className="block text-right text-sm font-semibold text-action">{t('copy:own.mark')}</span>
-          )}
-        </p>
-      </div>
-      <div className="flex flex-wrap gap-x-6 gap-y-1">
-        <VerdictMark verdict={verdict} />
-        {hasMoney && <MoneyVerdictMark verdict={money.verdict} />}
-      </div>
-      <div className="relative py-6">
-        {row.estimate !== null && (
-          <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
-            {format.gap(row.estimate, unit, decimals)}
-          </GapLabel>
-        )}
-        <GapTrack
-          scale={scale}
-          colour={verdictColours[verdict]}
-          estimate={row.estimate}
-          region={row.region}
-          ownSeason={row.ownSeason}
-          breakEven={row.breakEven}
-          isThin={verdict === 'thin'}
-          sentence={sentence}
-        />
-        <GapLabel scale={scale} value={0} className="bottom-0.5 text-faded">
-          {weighUp.currentVarietyName}
-        </GapLabel>
-      </div>
-      <div className="flex flex-col gap-1.5">
-        {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
-        {/* On paper the whole story, which says this again, is unfolded below. */}
-        <div className={`flex flex-col gap-1.5 ${hiddenWhereUnfolded}`}>
-          {verdict !== 'thin' && <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />}
-          <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
+    <article className="border-t-2 border-ink py-4 print:contents">
+      <div className="print:grid print:break-inside-avoid print:grid-cols-[11.5rem_minmax(0,1fr)_13.5rem] print:items-center print:gap-x-4 print:border-t print:border-rule">
+        <div className="flex flex-wrap items-baseline justify-between gap-x-4 print:contents">
+          <h2 className="print:self-end">{candidate.varietyName}</h2>
+          <p className="text-lg font-bold print:col-start-3 print:self-end print:text-right">
+            {hasMoney
+              ? format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true })
+              : t('cantSay')}
+            {hasMoney && isOwn && (
+              <span className="block text-right text-sm font-semibold text-action">{t('copy:own.mark')}</span>
+            )}
+          </p>
         </div>
-        <p className="text-sm text-faded">{t('siteYears', { count: siteYears })}</p>
+        <div className="flex flex-wrap gap-x-6 gap-y-1 print:contents">
+          <VerdictMark verdict={verdict} className="print:col-start-1 print:row-start-2 print:text-sm" />
+          {hasMoney && (
+            <MoneyVerdictMark
+              verdict={money.verdict}
+              className="print:col-start-3 print:row-start-2 print:justify-end print:text-sm"
+            />
+          )}
+        </div>
+        <div className="relative py-6 print:col-start-2 print:row-span-3 print:row-start-1 print:pt-2.5 print:pb-0">
+          {row.estimate !== null && (
+            <GapLabel scale={scale} value={row.estimate} className="top-0.5 font-semibold">
+              {format.gap(row.estimate, unit, decimals)}
+            </GapLabel>
+          )}
+          <GapTrack
+            scale={scale}
+            colour={verdictColours[verdict]}
+            estimate={row.estimate}
+            region={row.region}
+            ownSeason={row.ownSeason}
+            breakEven={row.breakEven}
+            isThin={verdict === 'thin'}
+            sentence={sentence}
+          />
+          <GapLabel scale={scale} value={0} className="bottom-0.5 text-faded print:hidden">
+            {weighUp.currentVarietyName}
+          </GapLabel>
+        </div>
+        <div className="flex flex-col gap-1.5 print:contents">
+          {/* On paper the headline and the whole story, which say this again, are on other sheets. */}
+          <div className={`flex flex-col gap-1.5 print:col-span-3 ${hiddenWhereUnfolded}`}>
+            {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
+            {verdict !== 'thin' && (
+              <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />
+            )}
+            <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
+          </div>
+          <p className="text-sm text-faded print:col-start-1 print:row-start-3 print:self-start">
+            {t('siteYears', { count: siteYears })}
+          </p>
+          {hasMoney && money.chancePays !== null && (
+            <p className="hidden text-right text-sm print:col-start-3 print:row-start-3 print:block print:self-start">
+              {paysIn(money.chancePays)}
+            </p>
+          )}
+        </div>
       </div>
-      <details className="mt-2">
-        <summary className={`tap-target py-2.5 font-semibold text-action ${hiddenWhereUnfolded}`}>
+      <details className="mt-2 print:order-3 print:mt-0">
+        <summary className="tap-target py-2.5 font-semibold text-action print:border-t-2 print:border-ink print:py-0.5 print:text-lg print:text-ink">
           {t('copy:inFull', { name: candidate.varietyName })}
         </summary>
-        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4 print:gap-3 print:border-0 print:pl-0">
+        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4 print:mt-0 print:gap-1.5 print:border-0 print:pl-0">
           <CandidateStory
             candidate={candidate}
             currentName={weighUp.currentVarietyName}

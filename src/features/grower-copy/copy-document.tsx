@@ -53,7 +53,11 @@ export function CopyDocument({ title, files, hasScript, children }: CopyDocument
             </nav>
           </div>
         </header>
-        <main id="page" tabIndex={-1} className="mx-auto max-w-prose px-4 pb-16 pt-5 outline-none">
+        <main
+          id="page"
+          tabIndex={-1}
+          className="mx-auto max-w-prose px-4 pb-16 pt-5 outline-none print:px-0 print:pb-0 print:pt-1"
+        >
           {children}
         </main>
         {/* After the text, which is read in the system's type face until ours has come: a phone is busy enough until then. */}

@@ -6,15 +6,16 @@ import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
 
 type CopyPageProps = {
   copy: OpenedCopy;
+  link: string;
   files: CopyPageFiles;
   answerHtml: string | null;
 };
 
 /** The page of a copy, whole: it says everything before any script has come. */
-export function CopyPage({ copy, files, answerHtml }: CopyPageProps) {
+export function CopyPage({ copy, link, files, answerHtml }: CopyPageProps) {
   return (
     <CopyDocument title={useCopyTitle(copy)} files={files} hasScript={answerHtml !== null}>
-      <CopyBody copy={copy} answerHtml={answerHtml} />
+      <CopyBody copy={copy} link={link} answerHtml={answerHtml} />
     </CopyDocument>
   );
 }

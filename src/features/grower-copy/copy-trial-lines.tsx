@@ -56,9 +56,9 @@ export function CopyTrialLines({ candidate, currentName, unit, decimals }: CopyT
     },
   ];
   return (
-    <section className="flex flex-col gap-1 print:break-inside-avoid">
+    <section className="flex flex-col gap-1 print:block">
       <h3>{title}</h3>
-      <p className="text-sm text-faded">{t('siteLines.order')}</p>
+      <p className="text-sm text-faded print:break-after-avoid">{t('siteLines.order')}</p>
       <DataTable caption={title} columns={columns} rows={trials} rowKey={({ trialId }) => trialId} />
     </section>
   );

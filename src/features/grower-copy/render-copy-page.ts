@@ -21,11 +21,13 @@ export type { CopySentences } from './open-copy-sentences.ts';
 type SpokenOptions = { language: Language; sentences: CopySentences };
 type PageOptions = SpokenOptions & { files: CopyPageFiles };
 type WithUnit = { yieldUnit: YieldUnit };
+/** The whole address of the copy: printed, it leads back to the page. */
+type WithLink = { link: string };
 
 /** The page of a copy as HTML. */
 export function renderCopyPage(
   copy: OpenedCopy,
-  { language, sentences, files, yieldUnit }: PageOptions & WithUnit,
+  { language, sentences, files, yieldUnit, link }: PageOptions & WithUnit & WithLink,
 ): string {
   const units = readerUnitsOfCopy(copy.snapshot, yieldUnit);
   const inLanguage = (part: ReactNode) =>
@@ -37,7 +39,7 @@ export function renderCopyPage(
   const answer = takeAnswer(copy);
   // A root of its own, so that the script finds in it what it would have rendered itself.
   const answerHtml = answer === null ? null : renderToString(inLanguage(createElement(CopyAnswer, answer)));
-  return writeDocument(inLanguage(createElement(CopyPage, { copy, files, answerHtml })));
+  return writeDocument(inLanguage(createElement(CopyPage, { copy, link, files, answerHtml })));
 }
 
 /** What the script of a copy's page asks for; null where it has nothing to do. */

@@ -64,7 +64,7 @@ export function StoryOnPaper({ candidates, ...ground }: CandidateStripProps) {
   const candidate = candidates.find(({ varietyId }) => varietyId === search.get('open'));
   if (!isPrinting || candidate === undefined) return null;
   return (
-    <section className="break-before-page">
+    <section className="break-before-page print:order-2">
       <h2>{t('page.story', { name: candidate.varietyName, current: ground.currentName })}</h2>
       <OpenRow candidate={candidate} {...ground} unit={unit} decimals={decimals} />
     </section>

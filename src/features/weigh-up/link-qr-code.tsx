@@ -1,19 +1,11 @@
 import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
+import { drawCodePath } from '#shared/qr-code-path.ts';
 
-/** Empty modules around the code, without which cameras do not find it (ISO/IEC 18004). */
-const quietZone = 4;
-
-/** The dark modules of a code as one path, row by row, and its side in modules with the quiet zone. */
 async function drawCode(link: string): Promise<{ path: string; side: number }> {
   // Fetched only when a link is shown: most visits hand nothing over.
   const { create } = await import('qrcode');
-  const { modules } = create(link, { errorCorrectionLevel: 'M' });
-  const parts: string[] = [];
-  for (let row = 0; row < modules.size; row += 1)
-    for (let column = 0; column < modules.size; column += 1)
-      if (modules.get(row, column)) parts.push(`M${column + quietZone} ${row + quietZone}h1v1h-1z`);
-  return { path: parts.join(''), side: modules.size + 2 * quietZone };
+  return drawCodePath(create(link, { errorCorrectionLevel: 'M' }).modules);
 }
 
 /** The link for a phone's camera. Black on white whatever the page's colours, so that it is read and prints. */

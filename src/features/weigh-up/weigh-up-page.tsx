@@ -129,7 +129,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   }
   return (
     <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem] print:block">
-      <div className="flex min-w-0 flex-col gap-8 print:gap-3">
+      <div className="flex min-w-0 flex-col gap-8 print:gap-2">
         <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
         <VerdictHeadline candidates={candidates} currentName={currentName} />
         <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
@@ -151,9 +151,9 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         />
         <PricesOnPaper money={money.assumptions} />
         <div id="cautions" className="scroll-mt-2">
-          <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} />
+          <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} mayBreak />
         </div>
-        <div id="traits" className="scroll-mt-2">
+        <div id="traits" className="scroll-mt-2 print:order-2">
           <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
         </div>
         <StoryOnPaper
@@ -189,7 +189,7 @@ const BesideMoney = memo(function BesideMoney({
 }: AnswerProps & { hasUnsaved: boolean }) {
   const { t } = useTranslation('method');
   return (
-    <div className="flex min-w-0 flex-col gap-4 lg:gap-6 print:block print:break-before-page">
+    <div className="flex min-w-0 flex-col gap-4 lg:gap-6 print:mt-3 print:block">
       <QuestionPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
       <FarmPanel weighUp={weighUp} hasUnsaved={hasUnsaved} />
       <HandOver weighUpId={weighUp.id} hasUnsaved={hasUnsaved} />
