@@ -11,6 +11,7 @@ import { showToast } from './components/toaster.tsx';
 import { forgetFirstAnswers, takeFirstAnswer } from './first-answers.ts';
 import { changeLanguage } from './i18n.ts';
 import { paths } from './paths.ts';
+import { saveAll } from './save-first.ts';
 import { useErrorText } from './use-error-text.ts';
 
 /** Who is signed in; null for nobody. Asked when the page is loaded: the account's language then holds on any device. */
@@ -61,7 +62,10 @@ export function useLanguageSwitch(): (language: Language) => void {
 export function useSignOut(): () => void {
   const errorText = useErrorText();
   const leave = useMutation({
-    mutationFn: () => callApi(signOut, {}),
+    mutationFn: async () => {
+      await saveAll();
+      return callApi(signOut, {});
+    },
     onSuccess: () => window.location.assign(paths.signIn),
     onError: (error) => showToast(errorText(error)),
   });

@@ -12,6 +12,7 @@ import {
 } from '#shared/weigh-up-draft.ts';
 import { ApiError, callApi, type CallOptions } from '#src/api-client.ts';
 import { showToast } from '#src/components/toaster.tsx';
+import { saveFirst } from '#src/save-first.ts';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useUrlPatch } from '#src/url-state.ts';
 import type { NewWeighUpDraft, NewWeighUpForm } from './new-weigh-up-form.ts';
@@ -86,7 +87,7 @@ export function useDraftSaving(
   const refreshList = () => client.invalidateQueries({ queryKey: draftsQuery.queryKey });
   const held = useRef<WeighUpDraft | null>(opened ?? null);
   const underWay = useRef<Promise<unknown>>(Promise.resolve());
-  const leave = useRef(() => {});
+  const leave = useRef((): Promise<unknown> => Promise.resolve());
   const [isStopped, setIsStopped] = useState(false);
   const typed = useWatch({ control: form.control });
   const { isDirty, dirtyFields } = useFormState({ control: form.control });
@@ -147,12 +148,17 @@ export function useDraftSaving(
   }, [isPending, error, tried, isUnsaved, text, mutate, patch]);
   useEffect(() => {
     leave.current = () => {
-      if (!isUnsaved || (isPending && text === tried)) return;
-      write(text).then(refreshList, (reason) => showToast(t('drafts.failed', { reason: errorText(reason) })));
+      if (!isUnsaved || (isPending && text === tried)) return underWay.current;
+      const kept = (id: string) => {
+        setSaved({ id, text });
+        return refreshList();
+      };
+      return write(text).then(kept, (reason) => showToast(t('drafts.failed', { reason: errorText(reason) })));
     };
   });
-  // For another page of the product there is no second to wait.
-  useEffect(() => () => leave.current(), []);
+  // For another page of the product, or for signing out, there is no second to wait.
+  useEffect(() => () => void leave.current(), []);
+  useEffect(() => saveFirst(() => leave.current()), []);
   const stop = async () => {
     setIsStopped(true);
     await underWay.current.catch(() => undefined);

@@ -14,6 +14,7 @@ import {
   type NewWeighUpDraft,
   type NewWeighUpForm,
 } from '#src/features/weigh-up/new-weigh-up-form.ts';
+import { useSignOut } from '#src/session.ts';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 import { idOf } from '#tests/client/support/weigh-up-factory.ts';
 
@@ -85,6 +86,15 @@ function Typing({ opened }: { opened?: WeighUpDraft }) {
       <output aria-label="stopped at">{stoppedAt}</output>
       <output aria-label="address">{useLocation().search}</output>
     </>
+  );
+}
+
+function SignOut() {
+  const signOut = useSignOut();
+  return (
+    <button type="button" onClick={signOut}>
+      leave
+    </button>
   );
 }
 
@@ -206,6 +216,30 @@ describe('a draft', () => {
     unmount();
     await new Promise((resolve) => setTimeout(resolve, 100));
     expect(asked).toEqual([]);
+  });
+
+  it('is kept before the session ends, with the last edit', async () => {
+    const asked = serve();
+    const user = userEvent.setup();
+    const { unmount } = await render(
+      <>
+        <Typing />
+        <SignOut />
+      </>,
+    );
+    await user.click(screen.getByLabelText('Grower'));
+    await user.paste('Ada');
+    await user.click(screen.getByRole('button', { name: 'leave' }));
+    await waitFor(() => expect(asked.at(-1)?.[1]).toBe('/api/session'));
+    expect(asked.map(([method, path]) => `${method} ${path}`)).toEqual([
+      'POST /api/weigh-up-drafts',
+      'DELETE /api/session',
+    ]);
+    expect(asked[0]?.[2]).toMatchObject({ content: { growerName: 'Ada' } });
+    // Nothing is left for the server to refuse.
+    unmount();
+    await new Promise((resolve) => setTimeout(resolve, 100));
+    expect(asked).toHaveLength(2);
   });
 
   it('is kept at once when the page goes out of sight, as a phone puts it away', async () => {
