@@ -124,12 +124,19 @@ test('a mail brings a link that opens, once, in the grower’s language, as text
   expect(state.sentAt).not.toBeNull();
 });
 
-test('an English copy comes with an English letter', async () => {
+test('an English copy comes with an English letter, which names a phone number where there is one', async () => {
   await makeCopy('english@example.org', 'en');
+  await advisor.agent.patch('/api/me').send({ phone: '555-0142' }).expect(200);
+  await makeCopy('calls@example.org', 'en');
+  await advisor.agent.patch('/api/me').send({ phone: null }).expect(200);
   await pass();
   const [mail] = mailsTo('english@example.org');
   expect(mail?.text).toContain('Hello Élise <Quern>,');
   expect(mail?.text).toContain('The link is valid until ');
+  expect(mail?.text).not.toContain('call');
+  const [called] = mailsTo('calls@example.org');
+  expect(called?.text).toContain(`write to Test advisor at ${advisor.email} or call 555-0142.`);
+  expect(called?.html).toContain('or call 555-0142.');
 });
 
 test('the secret is in the outbox only until the mail is away', async () => {
