@@ -5,10 +5,12 @@ import path from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { timeTask, type BenchSuite, type BenchTask } from './bench/bench-task.ts';
 import { networkSuite } from './bench/network-suite.ts';
+import { benchRequests } from './bench/request-suite.ts';
 import { trialSuite } from './bench/trial-suite.ts';
 
-// Engine and R on the same work, side by side: medians in warm processes. `--no-r` leaves R out.
-const suites: readonly BenchSuite[] = [trialSuite, networkSuite];
+// Engine and R on the same work, side by side: medians in warm processes. `--no-r` leaves R out, `--requests` all but
+// the whole request on a PostgreSQL of its own.
+const suites: readonly BenchSuite[] = process.argv.includes('--requests') ? [] : [trialSuite, networkSuite];
 
 const scripts = fileURLToPath(new URL('./bench/', import.meta.url));
 const hasR = !process.argv.includes('--no-r') && spawnSync('Rscript', ['--version']).status === 0;
@@ -22,6 +24,7 @@ for (const suite of suites) {
   for (const task of suite.tasks) console.log(describeRow(task, timeTask(task), seconds.get(task.key)));
   console.log('');
 }
+await benchRequests(fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, ''));
 
 /** Median seconds by key, from the suite's R script. */
 function timeInR(suite: BenchSuite): Map<string, number> {

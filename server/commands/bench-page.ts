@@ -1,13 +1,9 @@
-import { fileURLToPath, pathToFileURL } from 'node:url';
+import { fileURLToPath } from 'node:url';
 import { chromium, type APIRequestContext, type Browser } from 'playwright-core';
-import { connectDatabase } from '#server/db.ts';
 import { demoAccounts } from '#server/demo/demo-accounts.ts';
 import { seedDemo } from '#server/demo/seed-demo.ts';
-import type * as sourceOfServer from '#server/main.ts';
-import { migrateDatabase } from '#server/migrate-database.ts';
-import { buildClient, buildServer } from '#server/setup/build-product.mjs';
 import { findChromium } from '#server/setup/chromium-program.mjs';
-import { openTestCluster } from '#server/setup/test-cluster.mjs';
+import { startBuiltServer } from './bench/built-server.ts';
 import { serveOneSentence } from './bench/one-sentence-page.ts';
 import { openPhone, visitPage, type PageVisit } from './bench/page-visit.ts';
 
@@ -16,40 +12,8 @@ import { openPhone, visitPage, type PageVisit } from './bench/page-visit.ts';
 const visits = Number(process.argv[2] ?? 5);
 const projectRoot = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, '');
 
-/** What the built server gives is what its source does. */
-type BuiltServer = Pick<typeof sourceOfServer, 'readSettings' | 'startServer'>;
-
 /** Without a target where there is nothing to reach but something to compare with. */
 type Row = { page: string; targetMs: number | null; measured: PageVisit[] };
-
-/** A server of the built product on a database of its own, which goes with it. */
-async function startBuilt(): Promise<{ url: string; close: () => Promise<void> }> {
-  await buildClient(projectRoot);
-  await buildServer(projectRoot);
-  const cluster = await openTestCluster(projectRoot);
-  await migrateDatabase(cluster.url, `${projectRoot}/drizzle/migrations`);
-  const { db, close } = connectDatabase(cluster.url, () => undefined);
-  await seedDemo(db);
-  await close();
-  // As `npm start` does: what is measured is what is shipped.
-  process.env['NODE_ENV'] = 'production';
-  const built = pathToFileURL(`${projectRoot}/dist/server/main.js`).href;
-  const { readSettings, startServer } = (await import(built)) as BuiltServer;
-  const environment = {
-    DATABASE_URL: cluster.url,
-    PORT: '0',
-    SESSION_SECRET: 'a secret of no worth, for a bench alone',
-    LOG_LEVEL: 'error',
-  };
-  const server = await startServer(readSettings(environment, `${projectRoot}/dist/client`));
-  return {
-    url: server.url,
-    close: async () => {
-      await server.close();
-      cluster.close();
-    },
-  };
-}
 
 /** A weigh-up of four candidates, and a copy of it; their addresses. */
 async function prepareQuestion(request: APIRequestContext): Promise<{ weighUp: string; copy: string }> {
@@ -117,7 +81,7 @@ function describeRow({ page, targetMs, measured }: Row): string {
 
 const executablePath = findChromium();
 if (executablePath === null) throw new Error('Chromium was not found; npm test installs it.');
-const server = await startBuilt();
+const server = await startBuiltServer(projectRoot, seedDemo);
 const browser = await chromium.launch({ executablePath, args: ['--no-sandbox', '--disable-gpu'] });
 try {
   const office = await openPhone(browser, server.url);
