@@ -14,6 +14,8 @@ const frozen = z.object({
   /** Copies made before advisors could give one have none. */
   advisorPhone: z.string().nullable().default(null),
   madeAt: z.iso.datetime(),
+  /** Where its advisor sat (IANA): its days are those of that place. Copies made before it was asked for have none. */
+  timeZone: z.string().optional(),
   engineVersion: z.string(),
 });
 
@@ -116,6 +118,8 @@ export const makeGrowerCopy = defineContract({
   body: z.object({
     language,
     validDays: z.number().int().min(1).max(1095).default(365),
+    /** Of the advisor (IANA); one that is not known here is taken as not said. */
+    timeZone: z.string().max(100).optional(),
     /** Where to send the link; left out, nothing is sent. */
     email: mailRecipient.optional(),
   }),

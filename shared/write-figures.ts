@@ -23,8 +23,9 @@ export type FigureWriter = ReturnType<typeof writeFigures>;
 /**
  * Figures, money, dates and names as a language writes them. Units are given as stored: what is in t/ha, per t, per ha or
  * in ha is written in the reader's units, every other unit as it is.
+ * @param timeZone whose days moments are told in; without it those of this machine
  */
-export function writeFigures(language: Language, units: ReaderUnits) {
+export function writeFigures(language: Language, units: ReaderUnits, timeZone?: string) {
   return {
     number: (value: number, style?: NumberStyle) => formatNumber(value, language, style),
     ...writeMeasures(language, units),
@@ -32,8 +33,8 @@ export function writeFigures(language: Language, units: ReaderUnits) {
     money: (value: number, currency: string, style?: NumberStyle) =>
       formatMoney(value, currency, language, style),
     pValue: (p: number) => formatPValue(p, language),
-    date: (iso: string) => formatDate(iso, language),
-    dateTime: (iso: string) => formatDateTime(iso, language),
+    date: (iso: string) => formatDate(iso, language, timeZone),
+    dateTime: (iso: string) => formatDateTime(iso, language, timeZone),
     name: (names: BilingualName) => names[language],
   };
 }

@@ -1,4 +1,5 @@
 import type { Language, Me } from '#shared/account.ts';
+import { isTimeZone } from '#shared/format-date.ts';
 import { growerCopySnapshot, type GrowerCopyLine, type GrowerCopySnapshot } from '#shared/grower-copy.ts';
 import type { Database } from '#server/db.ts';
 import { readBushelWeight } from '#server/catalogue/catalogue-store.ts';
@@ -12,6 +13,8 @@ import { makeLinkSecret } from './link-secret.ts';
 export type CopyWish = {
   language: Language;
   validDays: number;
+  /** Where the advisor sits (IANA). */
+  timeZone?: string | undefined;
   /** Where to send the link, and the public address that it begins with. */
   mail?: { recipient: string; origin: string };
   /** The copy whose place it takes. */
@@ -27,9 +30,9 @@ export async function makeCopy(
   db: Database,
   advisor: Pick<Me, 'id' | 'name' | 'email' | 'phone'>,
   weighUpId: string,
-  { mail, followsId, ...wish }: CopyWish,
+  { mail, followsId, timeZone, ...wish }: CopyWish,
 ): Promise<{ copy: GrowerCopyLine; path: string }> {
-  const snapshot = await takeSnapshot(db, advisor, weighUpId);
+  const snapshot = await takeSnapshot(db, advisor, weighUpId, timeZone);
   const secret = makeLinkSecret();
   const path = `/copy/${secret}`;
   const copy = await insertCopy(db, {
@@ -49,6 +52,7 @@ async function takeSnapshot(
   db: Database,
   advisor: Pick<Me, 'id' | 'name' | 'email' | 'phone'>,
   weighUpId: string,
+  timeZone: string | undefined,
 ): Promise<GrowerCopySnapshot> {
   const weighUp = await readOwnWeighUp(db, advisor.id, weighUpId);
   const { result, traits } = await answerWeighUp(db, weighUp);
@@ -63,6 +67,7 @@ async function takeSnapshot(
     advisorEmail: advisor.email,
     advisorPhone: advisor.phone,
     madeAt: new Date().toISOString(),
+    ...(timeZone !== undefined && isTimeZone(timeZone) && { timeZone }),
     engineVersion: result.engineVersion,
   });
 }

@@ -2,7 +2,7 @@ import { and, eq, isNull } from 'drizzle-orm';
 import { growerCopies } from '#drizzle/schema/weigh-ups.ts';
 import type { Me } from '#shared/account.ts';
 import { CodedError } from '#shared/error-codes.ts';
-import type { GrowerCopyLine } from '#shared/grower-copy.ts';
+import { growerCopySnapshot, type GrowerCopyLine } from '#shared/grower-copy.ts';
 import { isUniqueViolation, type Database } from '#server/db.ts';
 import { readNewestMails } from '#server/mail/outbox-store.ts';
 import { lockOwnCopy } from './grower-copy-store.ts';
@@ -39,6 +39,7 @@ export async function renewCopy(
     const made = await makeCopy(db, advisor, old.weighUpId, {
       language: old.language,
       validDays,
+      timeZone: growerCopySnapshot.parse(old.snapshot).timeZone,
       followsId: copyId,
       ...(recipient !== null && origin !== null && { mail: { recipient, origin } }),
     });

@@ -3,22 +3,24 @@ import { useTranslation } from 'react-i18next';
 import { formatNumber, sayChance } from '#shared/format-number.ts';
 import { writeFigures } from '#shared/write-figures.ts';
 import { useReaderUnits } from './reader-units-context.tsx';
+import { useReaderZone } from './reader-zone-context.tsx';
 import { useLanguage } from './use-language.ts';
 
 /** Figures, money, dates and names as the page's language and the units that it is read in have them; see `writeFigures`. */
 export function useFormat() {
   const language = useLanguage();
   const units = useReaderUnits();
+  const timeZone = useReaderZone();
   const { t } = useTranslation('common');
   return useMemo(
     () => ({
-      ...writeFigures(language, units),
+      ...writeFigures(language, units, timeZone),
       /** `91 of 100`, `fewer than 1 of 100`, `more than 99 of 100`. */
       chance: (probability: number) => {
         const { key, count } = sayChance(probability);
         return t(`chance.${key}`, { number: formatNumber(count, language) });
       },
     }),
-    [language, units, t],
+    [language, units, timeZone, t],
   );
 }

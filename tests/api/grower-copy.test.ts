@@ -397,3 +397,36 @@ test('the snapshot holds nothing of the account but the name and address of the 
   const [row] = await world.database.db.select().from(growerCopies).where(eq(growerCopies.id, copyId));
   expect(JSON.stringify(row?.snapshot)).not.toContain(advisor.id);
 });
+
+test('a copy made near midnight bears the day of its advisor, wherever the server stands', async () => {
+  const { token, copyId } = await makeCopy();
+  const make = async (timeZone: string | null) => {
+    const zone =
+      timeZone === null
+        ? sql`snapshot - 'timeZone'`
+        : sql`jsonb_set(snapshot, '{timeZone}', to_jsonb(${timeZone}::text))`;
+    await world.database.db.execute(
+      sql`update grower_copies set snapshot = jsonb_set(${zone}, '{madeAt}', '"2026-12-01T03:30:00.000Z"') where id = ${copyId}`,
+    );
+    return readWords((await open(token, '?lang=en').expect(200)).text);
+  };
+  expect(await make('America/Montreal')).toContain('on 30 November 2026\n');
+  expect(await make('Pacific/Auckland')).toContain('on 1 December 2026\n');
+  expect(await make(null)).toContain('on 1 December 2026 (UTC)');
+});
+
+test('the advisor’s time zone is frozen with the copy; one that is not known is left out', async () => {
+  const weighUpId = await makeWeighUp(advisor);
+  const zoneOf = async (timeZone: string) => {
+    const reply = await advisor.agent
+      .post(`/api/weigh-ups/${weighUpId}/grower-copies`)
+      .send({ language: 'en', timeZone })
+      .expect(200);
+    const { rows } = await world.database.db.execute<{ zone: string | null }>(
+      sql`select snapshot ->> 'timeZone' as zone from grower_copies where id = ${reply.body.copy.id}`,
+    );
+    return rows[0]?.zone;
+  };
+  expect(await zoneOf('America/Winnipeg')).toBe('America/Winnipeg');
+  expect(await zoneOf('Nowhere/Land')).toBeNull();
+});

@@ -166,3 +166,15 @@ test('a key without a sentence does not compile', () => {
   expectTypeOf<'verdicts:best.show' | 'print:foot' | 'verdicts:cautionCount'>().toExtend<CopySentenceKey>();
   expectTypeOf<'verdicts:best.gone'>().not.toExtend<CopySentenceKey>();
 });
+
+test('its days are those of the place where it was made, and UTC is said where that is not known', async () => {
+  const order = buildOrder();
+  const late = { ...order.snapshot, madeAt: '2026-12-01T03:30:00.000Z' };
+  const told = await readPdf(
+    renderCopyPdf({ ...order, snapshot: { ...late, timeZone: 'America/Montreal' } }),
+  );
+  expect(told.words).toContain('Figures frozen on 30 November 2026,');
+  expect(told.words).toContain('prepared by Wren Halloway on 30 November 2026');
+  const untold = await readPdf(renderCopyPdf({ ...order, snapshot: late }));
+  expect(untold.words).toContain('Figures frozen on 1 December 2026 (UTC),');
+});

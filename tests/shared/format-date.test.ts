@@ -11,7 +11,9 @@ describe('dates', () => {
 
   it('shows a moment in the zone asked for', () => {
     expect(formatDate('2026-12-01T02:30:00Z', 'en', 'America/Montreal')).toBe('30 November 2026');
-    expect(formatDateTime('2026-12-01T02:30:00Z', 'en', 'UTC')).toBe('1 December 2026, 02:30');
-    expect(formatDateTime('2026-12-01T02:30:00Z', 'fr', 'UTC')).toBe('1er décembre 2026, 02\u00a0h\u00a030');
+    expect(formatDateTime('2026-12-01T02:30:00Z', 'en', 'UTC')).toBe('1 December 2026, 02:30 (UTC)');
+    expect(formatDateTime('2026-12-01T02:30:00Z', 'fr', 'UTC')).toBe(
+      '1er décembre 2026, 02\u00a0h\u00a030 (UTC)',
+    );
   });
 });

@@ -1,5 +1,7 @@
 import type { Request, Response, Router } from 'express';
 import { z } from 'zod';
+import { dayIn } from '#shared/format-date.ts';
+import { zoneOfCopy } from '#shared/zone-of-copy.ts';
 import type { BilingualName } from '#shared/catalogue.ts';
 import { languages, type Language } from '#shared/language.ts';
 import { readUnitParameter } from '#shared/reader-units.ts';
@@ -45,7 +47,9 @@ export function addCopyPdf(router: Router, db: Database, settings: ServerSetting
       ],
       leavingSignal(response),
     );
-    response.attachment(nameFile(weighUp.cropName, language, madeAt)).send(Buffer.from(bytes));
+    response
+      .attachment(nameFile(weighUp.cropName, language, dayIn(madeAt, zoneOfCopy(copy.snapshot))))
+      .send(Buffer.from(bytes));
   };
 
   router.get('/copy/:token/pdf', sendPdf);
@@ -56,12 +60,12 @@ export function addCopyPdf(router: Router, db: Database, settings: ServerSetting
 }
 
 /** A name that every system can store: `gavelrow-orge-de-printemps-2026-12-01.pdf`. */
-function nameFile(crop: BilingualName, language: Language, madeAt: string): string {
+function nameFile(crop: BilingualName, language: Language, day: string): string {
   const plain = crop[language]
     .normalize('NFD')
     .replace(/\p{M}/gu, '')
     .toLowerCase()
     .replace(/[^a-z0-9]+/g, '-')
     .replace(/^-|-$/g, '');
-  return `${['gavelrow', plain, madeAt.slice(0, 10)].filter((part) => part !== '').join('-')}.pdf`;
+  return `${['gavelrow', plain, day].filter((part) => part !== '').join('-')}.pdf`;
 }

@@ -3,6 +3,7 @@ import { tellCautions, type CautionSentence } from '#shared/caution-sentences.ts
 import type { Language } from '#shared/language.ts';
 import { toReader } from '#shared/reader-units.ts';
 import type { Say } from '#shared/say-sentences.ts';
+import { zoneOfCopy } from '#shared/zone-of-copy.ts';
 import { writeFigures, type FigureWriter } from '#shared/write-figures.ts';
 import type { CopySentenceKey } from '#server/grower-copy/copy-sentences.ts';
 import { openSentences } from '#server/open-sentences.ts';
@@ -27,7 +28,7 @@ export function openCopyVoice({ language, sentences: given, readerUnits, snapsho
   const { candidates } = snapshot.result;
   const sentences = openSentences(language, given, 'print');
   const say: Say<CopySentenceKey> = (key, values) => sentences.t(key, values ?? {});
-  const write = writeFigures(language, readerUnits);
+  const write = writeFigures(language, readerUnits, zoneOfCopy(snapshot));
   const unit = 't/ha';
   return {
     language,

@@ -4,8 +4,10 @@ import { I18nextProvider } from 'react-i18next';
 import type { OpenedCopy } from '#shared/grower-copy.ts';
 import type { Language } from '#shared/language.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
+import { zoneOfCopy } from '#shared/zone-of-copy.ts';
 import { readerUnitsOfCopy } from '#shared/reader-units-of-copy.ts';
 import type { YieldUnit } from '#shared/units.ts';
+import { ReaderZoneProvider } from '#src/components/reader-zone-context.tsx';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
 import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
@@ -34,7 +36,10 @@ export function renderCopyPage(
     createElement(
       I18nextProvider,
       { i18n: openCopySentences(language, sentences) },
-      createElement(ReaderUnitsProvider, { units, children: part }),
+      createElement(ReaderZoneProvider, {
+        timeZone: zoneOfCopy(copy.snapshot),
+        children: createElement(ReaderUnitsProvider, { units, children: part }),
+      }),
     );
   const answer = takeAnswer(copy);
   // A root of its own, so that the script finds in it what it would have rendered itself.

@@ -32,7 +32,8 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
       if (phone !== me.phone) {
         client.setQueryData(meQuery.queryKey, (await callApi(changeMe, { body: { phone } })).me);
       }
-      return callApi(makeGrowerCopy, { params: { weighUpId }, body: wish });
+      const { timeZone } = Intl.DateTimeFormat().resolvedOptions();
+      return callApi(makeGrowerCopy, { params: { weighUpId }, body: { ...wish, timeZone } });
     },
     onSuccess: () => client.invalidateQueries({ queryKey: growerCopiesQuery(weighUpId).queryKey }),
   });

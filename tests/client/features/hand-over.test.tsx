@@ -62,6 +62,9 @@ function serve(isMailSetUp: boolean, copies: GrowerCopyLine[] = []): Asked[] {
   return asked;
 }
 
+/** Of this machine, as a browser gives it. */
+const { timeZone } = Intl.DateTimeFormat().resolvedOptions();
+
 const open = (language: Language = 'en') =>
   renderClient(<HandOver weighUpId={weighUpId} hasUnsaved={false} />, { language, namespaces: ['weigh-up'] });
 
@@ -77,7 +80,7 @@ describe('handing a copy over', () => {
       {
         method: 'POST',
         path: `/api/weigh-ups/${weighUpId}/grower-copies`,
-        body: { language: 'en', validDays: 365 },
+        body: { language: 'en', validDays: 365, timeZone },
       },
     ]);
     const code = screen.getByRole('img', { name: 'QR code that opens the grower copy' });
@@ -99,7 +102,12 @@ describe('handing a copy over', () => {
     );
     await userEvent.click(screen.getByRole('button', { name: 'Make the copy and send its link' }));
     await waitFor(() =>
-      expect(asked[0]?.body).toEqual({ language: 'en', validDays: 365, email: 'maren@example.org' }),
+      expect(asked[0]?.body).toEqual({
+        language: 'en',
+        validDays: 365,
+        timeZone,
+        email: 'maren@example.org',
+      }),
     );
   });
 
