@@ -1,4 +1,5 @@
 import { screen, waitFor, within } from '@testing-library/react';
+import type { Me } from '#shared/account.ts';
 import userEvent from '@testing-library/user-event';
 import { Route, Routes } from 'react-router-dom';
 import { afterEach, describe, expect, it, vi } from 'vitest';
@@ -60,6 +61,16 @@ const catalogue = {
 
 type Asked = { method: string; path: string; body: unknown };
 
+const me = {
+  id: '00000000-0000-4000-8000-000000000999',
+  name: 'Wren Halloway',
+  email: 'wren@example.org',
+  phone: null,
+  role: 'advisor',
+  language: 'en',
+  regionIds: [],
+} satisfies Me;
+
 /** Answers like the server and keeps what was asked. */
 function serve(answerToSave: (asked: Asked) => Response, answer: () => unknown = () => opened): Asked[] {
   const asked: Asked[] = [];
@@ -67,6 +78,7 @@ function serve(answerToSave: (asked: Asked) => Response, answer: () => unknown =
     const call = { method: init.method ?? 'GET', path, body: JSON.parse(String(init.body ?? 'null')) };
     asked.push(call);
     if (call.method === 'PUT') return Promise.resolve(answerToSave(call));
+    if (path === '/api/me') return Promise.resolve(Response.json({ me }));
     if (path === '/api/catalogue') return Promise.resolve(Response.json(catalogue));
     if (path.endsWith('/grower-copies'))
       return Promise.resolve(Response.json({ copies: [], isMailSetUp: false }));
