@@ -30,11 +30,15 @@ export function beginTestRun() {
   };
 
   return {
-    /** A program that says by its exit code whether all is well. */
+    /**
+     * A program that says by its exit code whether all is well. What it prints is shown when it is over, so that two
+     * may run at a time.
+     */
     async check(label, program, args, env = {}) {
       const from = performance.now();
+      const { code, printed } = await runShown(program, args, env, 'pipe');
       console.log(`\n• ${label}`);
-      const { code } = await runShown(program, args, env);
+      process.stdout.write(printed);
       close(label, from, { passed: code === 0 ? 1 : 0, failed: code === 0 ? 0 : 1, skipped: 0 });
     },
 
@@ -74,19 +78,25 @@ function readCounts(path) {
 }
 
 /**
- * What the program prints goes straight to the terminal. It leads a process group, which is ended with this process: a
+ * What the program prints goes straight to the terminal, or is given back where `output` is a pipe. It leads a process group, which is ended with this process: a
  * worker that is caught in a loop hears no polite signal.
  */
-function runShown(program, args, env) {
+function runShown(program, args, env, output = 'inherit') {
   return new Promise((resolve) => {
     // Nothing more is begun, and nothing counted, on the way out.
     if (isEnding()) return;
     const child = spawn(program, args, {
       cwd: projectRoot,
       env: { ...process.env, ...env },
-      stdio: ['ignore', 'inherit', 'inherit'],
+      stdio: ['ignore', output, output],
       detached: true,
     });
+    let printed = '';
+    for (const stream of [child.stdout, child.stderr]) {
+      stream?.setEncoding('utf8').on('data', (part) => {
+        printed += part;
+      });
+    }
     const closed = new Promise((settle) => {
       child.once('close', settle);
     });
@@ -104,12 +114,12 @@ function runShown(program, args, env) {
     }, limitMinutes * 60_000);
     child.on('error', (error) => {
       console.error(error.message);
-      resolve({ code: 1 });
+      resolve({ code: 1, printed });
     });
     void closed.then((code) => {
       clearTimeout(tooLong);
       isOver = true;
-      if (!isEnding()) resolve({ code: code ?? 1 });
+      if (!isEnding()) resolve({ code: code ?? 1, printed });
     });
   });
 }

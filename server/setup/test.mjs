@@ -35,14 +35,20 @@ async function runTests() {
   const bin = (name) => `node_modules/.bin/${name}`;
   const eslint = ['.', '--cache', '--cache-strategy=content', '--cache-location=node_modules/.cache/eslint/'];
   const prettier = ['--check', '.', '--log-level=warn', '--cache', '--cache-strategy=content'];
-  await run.check('Format', bin('prettier'), prettier);
-  await run.check('Types', bin('tsc'), ['-b']);
-  if (isFastLoop) await run.check('Lint', bin('eslint'), [...eslint, '--quiet']);
-  else await run.check('Lint with types', bin('eslint'), ['.'], { LINT_WITH_TYPES: '1' });
+  const lint = () =>
+    isFastLoop
+      ? run.check('Lint', bin('eslint'), [...eslint, '--quiet'])
+      : run.check('Lint with types', bin('eslint'), ['.'], { LINT_WITH_TYPES: '1' });
+  const others = async () => {
+    await run.check('Format', bin('prettier'), prettier);
+    await run.check('Types', bin('tsc'), ['-b']);
+    if (!isFastLoop) await run.check('Dead code', bin('knip'), ['--no-progress']);
+  };
+  // Lint takes as long as all the others together, and there are two cores nearly everywhere.
+  await Promise.all([lint(), others()]);
   await run.test('Unit tests', ['unit', 'client']);
   if (isFastLoop) return run.finish(secondsSoFar());
   await run.test('Reference checks', ['reference']);
-  await run.check('Dead code', bin('knip'), ['--no-progress']);
   await runStep('Client', async (tell) => tell((await buildClient(projectRoot)) ? 'built' : 'up to date'));
   await runStep('Server', async (tell) => tell((await buildServer(projectRoot)) ? 'built' : 'up to date'));
   await run.check('Size of the first pages', process.execPath, ['server/setup/check-first-page-size.mjs']);
