@@ -28,7 +28,10 @@ const notServer = {
 };
 const notClient = { regex: '^#src/', message: 'The server knows nothing of the client.' };
 /** Pages of the client that a capability renders itself, each by one front door. */
-const renderedPages = { 'grower-copy': 'features/grower-copy/render-copy-page.ts' };
+const renderedPages = {
+  'grower-copy': 'features/grower-copy/render-copy-page.ts',
+  'client-page': 'features/weigh-up/render-first-view.ts',
+};
 const notClientBut = (page) =>
   page === undefined
     ? notClient

@@ -6,3 +6,6 @@ export type FirstAnswers = Readonly<Record<string, unknown>>;
 
 /** Cookie in which the client tells what language it starts in, so that the server can name that language's sentences. */
 export const languageCookieName = 'gavelrow.language';
+
+/** Cookie in which the client tells the unit that yields are read in, as the address writes it. */
+export const unitCookieName = 'gavelrow.yield-unit';

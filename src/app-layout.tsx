@@ -4,36 +4,24 @@ import { useTranslation } from 'react-i18next';
 import { Navigate, Outlet, useLocation, useNavigationType } from 'react-router-dom';
 import type { Role } from '#shared/account.ts';
 import { BrokenPage } from './broken-page.tsx';
-import { AppShell, type NavItem } from './components/app-shell.tsx';
+import { AppShell } from './components/app-shell.tsx';
 import { ErrorBoundary } from './components/error-boundary.tsx';
 import { PageHeading } from './components/page-heading.tsx';
 import { Skeleton } from './components/skeleton.tsx';
 import { SessionExpiredDialog } from './features/sign-in/session-expired-dialog.tsx';
+import { startOf, useNavItems } from './nav-items.ts';
 import { paths, signInPath } from './paths.ts';
 import { QueryErrorState } from './query-error-state.tsx';
 import { meQuery, useLanguageSwitch, useSignOut } from './session.ts';
 
-type NavKey = 'weighUps' | 'trials' | 'trialDesk' | 'accounts';
-
-/** What each role finds in the head of the page, its start first; the server guards the same ways by itself. */
-const navByRole: Record<Role, readonly [NavKey, ...NavKey[]]> = {
-  advisor: ['weighUps', 'trials'],
-  agronomist: ['trialDesk', 'trials', 'weighUps'],
-  administrator: ['accounts', 'trials'],
-};
-
 /** The frame around every page, with what the signed-in person may do, or without anybody. */
 export function AppLayout() {
-  const { t } = useTranslation('common');
   const { pathname } = useLocation();
   const { data: me } = useQuery(meQuery);
   const chooseLanguage = useLanguageSwitch();
   const signOut = useSignOut();
   useScrollToTop();
-  const navItems: NavItem[] = (me ? navByRole[me.role] : []).map((key) => ({
-    to: paths[key],
-    label: t(`nav.${key}`),
-  }));
+  const navItems = useNavItems(me?.role);
   return (
     <AppShell
       homePath={paths.home}
@@ -86,5 +74,5 @@ function NotForRole() {
 /** Sends a signed-in person to where their role starts. */
 export function HomeRedirect() {
   const { data: me } = useQuery(meQuery);
-  return me ? <Navigate to={paths[navByRole[me.role][0]]} replace /> : null;
+  return me ? <Navigate to={startOf(me.role)} replace /> : null;
 }

@@ -1,8 +1,10 @@
 import { useMemo, type ReactNode } from 'react';
 import { useSearchParams } from 'react-router-dom';
+import { unitCookieName } from '#shared/page-exchange.ts';
 import { readUnitParameter, writeUnitParameter } from '#shared/reader-units.ts';
 import type { YieldUnit } from '#shared/units.ts';
 import { ReaderUnitsProvider } from './components/reader-units-context.tsx';
+import { tellServer } from './tell-server.ts';
 import { useUrlPatch } from './url-state.ts';
 
 const storageKey = 'gavelrow.yield-unit';
@@ -18,6 +20,7 @@ function readStoredUnit(): YieldUnit | null {
 }
 
 function storeUnit(unit: YieldUnit): void {
+  tellServer(unitCookieName, writeUnitParameter(unit));
   try {
     localStorage.setItem(storageKey, writeUnitParameter(unit));
   } catch {

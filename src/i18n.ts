@@ -7,6 +7,7 @@ import { addSentenceFormats } from '#shared/sentence-formats.ts';
 import { ApiError } from './api-client.ts';
 import { peekFirstAnswer } from './first-answers.ts';
 import type { Namespace } from './locale-resources.ts';
+import { tellServer } from './tell-server.ts';
 
 const storageKey = 'gavelrow.language';
 
@@ -62,8 +63,7 @@ function readStoredLanguage(): string | null {
 
 /** In the storage, and in a cookie for the server: it names the sentences of the page before the page can ask. */
 function storeLanguage(language: Language): void {
-  const lasting = `Path=/; Max-Age=${365 * 24 * 60 * 60}; SameSite=Lax`;
-  document.cookie = `${languageCookieName}=${language}; ${lasting}`;
+  tellServer(languageCookieName, language);
   try {
     localStorage.setItem(storageKey, language);
   } catch {

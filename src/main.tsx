@@ -2,6 +2,7 @@ import { StrictMode } from 'react';
 import { createRoot } from 'react-dom/client';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { BrowserRouter } from 'react-router-dom';
+import { expectFirstPaint } from './first-paint.ts';
 import { startI18n } from './i18n.ts';
 import { openDetailsOnPaper } from './open-details-on-paper.ts';
 import { makeQueryClient } from './query-client.ts';
@@ -15,6 +16,7 @@ if (!root) throw new Error('index.html has no #root');
 const started = startI18n();
 await Promise.all([started, preparePage(window.location.pathname, started)]);
 openDetailsOnPaper();
+expectFirstPaint();
 
 createRoot(root).render(
   <StrictMode>

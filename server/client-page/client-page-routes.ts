@@ -4,8 +4,10 @@ import type { Contract } from '#shared/contract.ts';
 import { languageCookieName, type FirstAnswers } from '#shared/page-exchange.ts';
 import { languages, type Language } from '#shared/language.ts';
 import { answerContract } from '#server/route.ts';
+import { tryFirstView } from './first-view.ts';
 import { openPageDocument } from './page-document.ts';
 import { clientPages, everyPageAsks, signInPage, type PageNeeds } from './page-needs.ts';
+import { readCookie } from './read-cookie.ts';
 
 /** A page waits no longer than this for its answers, ms: it can ask for them by itself, and say what is the matter. */
 const longestWait = 1500;
@@ -32,9 +34,12 @@ export function addClientPages(
       .set('Cache-Control', isSignedIn ? 'no-store' : 'no-cache')
       .vary('Cookie')
       .vary('Accept-Language');
+    const language = readerLanguage(request);
     const isKnownStranger = !isSignedIn && everyPageAsks.path in answers;
     const opened = isKnownStranger && page !== null ? signInPage : page;
-    response.type('html').send(document.write(opened, readerLanguage(request), answers));
+    response
+      .type('html')
+      .send(document.write(opened, language, answers, tryFirstView(request, answers, language)));
   };
 
   for (const page of clientPages) app.get(page.path, (request, response) => send(page, request, response));
@@ -104,10 +109,7 @@ const fillAddress = (contract: Contract, params: Request['params']): string =>
 
 /** The language that the client will start in: the account's, else the one chosen in this browser, else the browser's. */
 function readerLanguage(request: Request): Language {
-  const chosen = new RegExp(`(?:^|; )${languageCookieName.replace('.', '\\.')}=(\\w+)`).exec(
-    request.headers.cookie ?? '',
-  );
-  const known = languageCode.safeParse(request.user?.language ?? chosen?.[1]);
+  const known = languageCode.safeParse(request.user?.language ?? readCookie(request, languageCookieName));
   if (known.success) return known.data;
   return languages.find((language) => language === request.acceptsLanguages([...languages])) ?? 'en';
 }

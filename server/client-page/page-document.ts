@@ -11,8 +11,9 @@ export type PageDocument = {
   /**
    * @param page whose code and sentences are fetched along with what every page needs; null for none
    * @param answers replies that the page finds in itself instead of asking for them
+   * @param firstView HTML that is seen until the client has rendered the page; may be empty
    */
-  write: (page: PageNeeds | null, language: Language, answers: FirstAnswers) => string;
+  write: (page: PageNeeds | null, language: Language, answers: FirstAnswers, firstView: string) => string;
 };
 
 /**
@@ -32,13 +33,14 @@ export function openPageDocument(clientFolder: string): PageDocument {
     );
   }
   return {
-    write: (page, language, answers) => {
+    write: (page, language, answers, firstView) => {
       const links = new Set([preloads.get(sentencesOf(language)), page && preloads.get(page.source)]);
       const data = `<script type="application/json" id="${firstAnswersId}">${writeJson(answers)}</script>`;
       // Functions, because a replacement text would give `$` in a reply a meaning.
       return document
         .replace('</head>', () => `${[...links].join('')}</head>`)
-        .replace('<div id="root"></div>', (root) => `${root}${data}`);
+        .replace('<html lang="en">', `<html lang="${language}">`)
+        .replace('<div id="root"></div>', () => `<div id="root">${firstView}</div>${data}`);
     },
   };
 }

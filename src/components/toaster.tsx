@@ -26,7 +26,11 @@ function subscribe(listener: () => void): () => void {
 /** The place where toasts appear; stands once, in the shell. */
 export function Toaster() {
   const { t } = useTranslation('common');
-  const shown = useSyncExternalStore(subscribe, () => toast);
+  const shown = useSyncExternalStore(
+    subscribe,
+    () => toast,
+    () => null,
+  );
   const close = () => setToast(null);
   const undo = () => {
     shown?.onUndo?.();

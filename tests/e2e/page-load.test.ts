@@ -1,7 +1,7 @@
 import type { Browser, BrowserContext } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Language, Role } from '#shared/account.ts';
-import { firstAnswersId, languageCookieName } from '#shared/page-exchange.ts';
+import { firstAnswersId, languageCookieName, unitCookieName } from '#shared/page-exchange.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
@@ -124,6 +124,68 @@ describe('the document of a page', () => {
     }));
 });
 
+describe('the top of a weigh-up’s page', () => {
+  /** Where the page's name and the verdict stand, once the client has rendered the page or where it never does. */
+  async function placeTop(language: Language, width: number, hasScripts: boolean, path: string) {
+    const context = await browser.newContext({
+      ...{ baseURL: app.url, viewport: { width, height: 740 }, javaScriptEnabled: hasScripts },
+      locale: language === 'en' ? 'en-CA' : 'fr-CA',
+    });
+    await signInByFixture(context, 'advisor', 'en');
+    const page = await context.newPage();
+    await page.goto(path);
+    if (hasScripts) await page.getByRole('heading', { name: say('en', 'method:title') }).waitFor();
+    const boxes = await Promise.all(
+      ['h1', 'main p > strong'].map((place) => page.locator(place).first().boundingBox()),
+    );
+    const text = await page.locator('main').innerText();
+    await context.close();
+    return { boxes, text };
+  }
+
+  it('is seen before any script and does not move when the client takes over', async () => {
+    await visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      for (const width of [360, 1280]) {
+        const path = `/weigh-ups/${id}?unit=bu-ac`;
+        const before = await placeTop('en', width, false, path);
+        const after = await placeTop('en', width, true, path);
+        expect(before.boxes).toEqual(after.boxes);
+        expect(after.text.startsWith(before.text.trimEnd())).toBe(true);
+        expect(before.text).toMatch(/\d\sac\b/);
+      }
+    });
+  });
+
+  it('speaks the account’s language and the unit chosen in this browser', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const read = async (cookie: string) => {
+        const session = (await context.cookies()).map(({ name, value }) => `${name}=${value}`).join('; ');
+        return (await readDocument(context, `/weigh-ups/${id}`, { cookie: `${session}; ${cookie}` })).html;
+      };
+      expect(await read('other=1')).toContain('\u00a0ha');
+      expect(await read(`${unitCookieName}=bu-ac`)).toContain('\u00a0ac');
+      await context.request.patch('/api/me', { data: { language: 'fr' } });
+      const french = await read('other=1');
+      expect(french).toContain('<html lang="fr">');
+      expect(french).toContain(say('fr', 'common:signOut'));
+      await context.request.patch('/api/me', { data: { language: 'en' } });
+    }));
+
+  it('is not sent where the page begins otherwise: the table, another page, nobody', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const empty = '<div id="root"></div>';
+      expect((await readDocument(context, `/weigh-ups/${id}`)).html).not.toContain(empty);
+      for (const path of [`/weigh-ups/${id}?view=table`, '/weigh-ups', `/trials/${id}`])
+        expect((await readDocument(context, path)).html).toContain(empty);
+      await visitAs(null, 'en', async (stranger) => {
+        expect((await readDocument(stranger, `/weigh-ups/${id}`)).html).toContain(empty);
+      });
+    }));
+});
+
 describe('a first visit', () => {
   it('shows the verdict from few files, without asking for what the document holds', () =>
     visitAs('advisor', 'en', async (context) => {
@@ -139,6 +201,18 @@ describe('a first visit', () => {
       expect(asked.filter((path) => path === `/api/weigh-ups/${id}` || path === '/api/catalogue')).toEqual(
         [],
       );
+    }));
+
+  it('is whole after the verdict, and an address leads to its section', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const page = await context.newPage();
+      await page.goto(`/weigh-ups/${id}#farm`);
+      await page.getByLabel(say('en', 'weigh-up:farm.usualYield')).waitFor();
+      await page.getByRole('heading', { name: say('en', 'method:title') }).waitFor();
+      await expect
+        .poll(() => page.evaluate<number>('window.scrollY'), { timeout: 15_000 })
+        .toBeGreaterThan(900);
     }));
 
   it('leaves nothing behind after signing out: going back leads to the sign-in page', () =>

@@ -6,7 +6,7 @@ import type { Crop } from '#shared/catalogue.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import { storedUnits } from '#shared/reader-units.ts';
-import type { UsedTrial, WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
+import type { UsedTrial } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
 import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
@@ -17,8 +17,8 @@ import { MethodNotes } from '#src/components/method-notes.tsx';
 import { Unanswered } from '#src/components/no-verdict.tsx';
 import { OtherTraits } from '#src/components/other-traits.tsx';
 import { UnitSwitch } from '#src/components/unit-switch.tsx';
-import { VerdictHeadline } from '#src/components/verdict-headline.tsx';
 import { WeighingProgress } from '#src/components/weighing-progress.tsx';
+import { useFirstPaintDone } from '#src/first-paint.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useCautionItems } from '#src/use-caution-items.ts';
@@ -34,6 +34,7 @@ import { TickOffStep } from './tick-off.tsx';
 import { useMoneyForm } from './use-money-form.ts';
 import { useMoneySaving } from './use-money-saving.ts';
 import { TableView } from './table-view.tsx';
+import { AnswerHead, answerLayout, mainColumn, VerdictAlone, type AnswerProps } from './verdict-alone.tsx';
 import { useWeighUpView, WeighUpHeading } from './weigh-up-heading.tsx';
 import { WaysInPage } from './ways-in-page.tsx';
 import { weighUpQuery } from './weigh-up-queries.ts';
@@ -55,13 +56,11 @@ export function WeighUpPage() {
       {result.answer === 'no-trials' || !crop ? (
         <NoTrialsAnswer weighUp={question} result={result} />
       ) : (
-        <WeighedAnswer key={question.id} weighUp={question} result={result} crop={crop} />
+        <WeighedPage key={question.id} weighUp={question} result={result} crop={crop} />
       )}
     </CropUnits>
   );
 }
-
-type AnswerProps = { weighUp: WeighUp; result: WeighUpResult };
 
 function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
   const { t } = useTranslation('verdicts');
@@ -84,6 +83,13 @@ function NoTrialsAnswer({ weighUp, result }: AnswerProps) {
   );
 }
 
+/** The whole answer; when the document has just been loaded, the verdict alone before it. */
+function WeighedPage(props: AnswerProps & { crop: Crop }) {
+  const isWhole = useFirstPaintDone();
+  const view = useWeighUpView();
+  return isWhole || view === 'table' ? <WeighedAnswer {...props} /> : <VerdictAlone {...props} />;
+}
+
 function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
   const { t } = useTranslation('verdicts');
   const cautionItems = useCautionItems();
@@ -103,7 +109,6 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     [result, weighUp, money.assumptions, practicalMargin],
   );
   const currentName = weighUp.currentVarietyName;
-  // What stops the whole evidence is read before the verdict, not after it.
   const stops = result.cautions.filter(({ severity }) => severity === 'stop');
   const cautions = [
     ...result.cautions.filter(({ severity }) => severity !== 'stop'),
@@ -128,10 +133,9 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     );
   }
   return (
-    <div className="grid items-start gap-8 lg:grid-cols-[minmax(0,1fr)_20rem] print:block">
-      <div className="flex min-w-0 flex-col gap-8 print:gap-2">
-        <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
-        <VerdictHeadline candidates={candidates} currentName={currentName} />
+    <div className={answerLayout}>
+      <div className={mainColumn}>
+        <AnswerHead weighUp={weighUp} result={result} candidates={candidates} />
         <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
           <WaysInPage />
           <UnitSwitch onChoose={chooseUnit} />
