@@ -53,7 +53,13 @@ const nameFile = ({ name }: { name: string }): string => `assets/${name.split('~
 
 const application: UserConfig = {
   plugins: [react(), tailwindcss()],
-  build: { ...build, rolldownOptions: { output: { codeSplitting: fewFiles, chunkFileNames: nameFile } } },
+  build: {
+    ...build,
+    rolldownOptions: {
+      // Files that share modules import each other in circles: without it the first page opened decides what runs first.
+      output: { codeSplitting: fewFiles, chunkFileNames: nameFile, strictExecutionOrder: true },
+    },
+  },
   // `npm run dev` says where its API listens; that server also renders the pages of grower copies.
   server: { proxy: { '/api': apiServer, '/copy/': apiServer } },
 };
