@@ -229,3 +229,34 @@ describe('a first visit', () => {
       expect(await page.content()).not.toContain(growerName);
     }));
 });
+
+/** Each path with a role that may open it; `trials` and `weigh-ups` stand for the first of the demo's. */
+const openedBy: readonly [Role, readonly string[]][] = [
+  ['advisor', ['/weigh-ups', '/weigh-ups/new', '/weigh-ups/:first', '/trials', '/trials/:first']],
+  ['agronomist', ['/desk', '/desk/import', '/desk/usual-variances', '/desk/trials/:first']],
+  ['administrator', ['/accounts', '/accounts/new', '/accounts/audit-log']],
+];
+
+describe('a browser that has nothing of the product yet', () => {
+  // Files that pages share may depend on each other: whichever page is opened first must be able to start with them.
+  it.each(openedBy)('opens each page of the %s by its address', async (role, addresses) => {
+    for (const address of addresses) {
+      await visitAs(role, 'en', async (context) => {
+        const first = async () => {
+          const { weighUps, trials } = await readJson(
+            context,
+            address.startsWith('/weigh-ups') ? '/api/weigh-ups' : '/api/trials',
+          );
+          return (weighUps ?? trials)[0].id as string;
+        };
+        const path = address.endsWith(':first') ? address.replace(':first', await first()) : address;
+        const [page] = context.pages();
+        await page?.goto(path);
+        const heading = page?.getByRole('heading', { level: 1 });
+        await heading?.waitFor();
+        await page?.waitForLoadState('networkidle');
+        expect([path, await heading?.textContent()]).not.toContain(say('en', 'common:brokenTitle'));
+      });
+    }
+  });
+});
