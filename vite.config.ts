@@ -23,7 +23,12 @@ const copyBuild: UserConfig = {
     manifest: '.vite/copy-manifest.json',
     modulePreload: false,
     rollupOptions: {
-      input: [`${copyPage}/start-copy-page.tsx`, `${copyPage}/copy-page.css`, 'src/fonts.css'],
+      input: [
+        `${copyPage}/start-copy-page.tsx`,
+        `${copyPage}/copy-page.css`,
+        'src/fonts.css',
+        'src/start-after-paint.ts',
+      ],
     },
   },
 };

@@ -12,6 +12,7 @@ import { addSignInRoutes } from './accounts/sign-in-routes.ts';
 import { addAuditRoutes } from './audit/audit-routes.ts';
 import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
 import { addClientPages } from './client-page/client-page-routes.ts';
+import { openPageDocument } from './client-page/page-document.ts';
 import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
@@ -65,14 +66,20 @@ export function buildApp(
     }),
   );
   const copyFiles = findCopyPageFiles(settings.clientFolder);
-  app.use(buildHelmet(settings, copyFiles.style));
+  const document = settings.clientFolder === null ? null : openPageDocument(settings.clientFolder);
+  const styles = [
+    ...('hash' in copyFiles.style ? [copyFiles.style.hash] : []),
+    ...(document ? [document.styleHash] : []),
+  ];
+  app.use(buildHelmet(settings, styles));
   app.use(compression());
   const session = buildSession(db, pool, settings);
   const api = addApi(app, db, session, settings, onMailQueued);
   app.use('/copy', keepLinkPrivate);
   addCopyPdf(app, db, settings);
   addCopyPage(app, db, settings, copyFiles);
-  if (settings.clientFolder !== null) serveClient(app, settings.clientFolder, api, session);
+  if (settings.clientFolder !== null) serveClient(app, settings.clientFolder);
+  if (document !== null) addClientPages(app, document, api, session);
   app.use(handleError);
   return app;
 }
@@ -115,31 +122,25 @@ function addApi(
   return router;
 }
 
-function serveClient(
-  app: Express,
-  clientFolder: string,
-  api: Router,
-  session: readonly RequestHandler[],
-): void {
+function serveClient(app: Express, clientFolder: string): void {
   const hashed = { immutable: true, maxAge: '1y', index: false, fallthrough: true } as const;
   app.use('/assets', express.static(join(clientFolder, 'assets'), hashed), (_request, response) => {
     response.status(404).end();
   });
   app.use(express.static(clientFolder, { index: false, maxAge: '1h' }));
-  addClientPages(app, clientFolder, api, session);
 }
 
-/** Headers: everything from our own origin, or the one style in the pages of copies; the charts set style attributes. Plain http on loopback gets no upgrade. */
-function buildHelmet(
-  settings: ServerSettings,
-  copyStyle: ReturnType<typeof findCopyPageFiles>['style'],
-): RequestHandler {
+/**
+ * Headers: everything from our own origin; the charts set style attributes. Plain http on loopback gets no upgrade.
+ * @param styleHashes of the styles that stand in pages themselves
+ */
+function buildHelmet(settings: ServerSettings, styleHashes: readonly string[]): RequestHandler {
   return helmet({
     contentSecurityPolicy: {
       directives: {
         defaultSrc: ["'self'"],
         scriptSrc: ["'self'"],
-        styleSrc: ["'self'", ...('hash' in copyStyle ? [`'${copyStyle.hash}'`] : [])],
+        styleSrc: ["'self'", ...styleHashes.map((hash) => `'${hash}'`)],
         styleSrcAttr: ["'unsafe-inline'"],
         imgSrc: ["'self'", 'data:'],
         fontSrc: ["'self'"],

@@ -5,7 +5,7 @@ import { languageCookieName, type FirstAnswers } from '#shared/page-exchange.ts'
 import { languages, type Language } from '#shared/language.ts';
 import { answerContract } from '#server/route.ts';
 import { tryFirstView } from './first-view.ts';
-import { openPageDocument } from './page-document.ts';
+import type { PageDocument } from './page-document.ts';
 import { clientPages, everyPageAsks, signInPage, type PageNeeds } from './page-needs.ts';
 import { readCookie } from './read-cookie.ts';
 
@@ -20,12 +20,10 @@ const longestWait = 1500;
  */
 export function addClientPages(
   app: Express,
-  clientFolder: string,
+  document: PageDocument,
   api: Router,
   session: readonly RequestHandler[],
 ): void {
-  const document = openPageDocument(clientFolder);
-
   const send = async (page: PageNeeds | null, request: Request, response: Response): Promise<void> => {
     const answers = await withinWait(collectAnswers(api, session, page, request, response));
     const isSignedIn = request.user !== undefined;

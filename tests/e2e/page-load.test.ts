@@ -133,6 +133,9 @@ describe('the top of a weigh-up’s page', () => {
     });
     await signInByFixture(context, 'advisor', 'en');
     const page = await context.newPage();
+    // What the security policy refuses, the style in the page say, is told here alone.
+    const complaints: string[] = [];
+    page.on('console', (message) => message.type() === 'error' && complaints.push(message.text()));
     await page.goto(path);
     if (hasScripts) await page.getByRole('heading', { name: say('en', 'method:title') }).waitFor();
     const boxes = await Promise.all(
@@ -140,6 +143,7 @@ describe('the top of a weigh-up’s page', () => {
     );
     const text = await page.locator('main').innerText();
     await context.close();
+    expect(complaints).toEqual([]);
     return { boxes, text };
   }
 

@@ -17,7 +17,7 @@ import { openCopySentences, type CopySentences } from './open-copy-sentences.ts'
 
 // The front door for the server. Without JSX: the compiler takes types over from another project's .ts files alone.
 
-export type { CopyFailure, CopyPageFiles, CopyPageStyle } from './copy-page-inputs.ts';
+export type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
 export type { CopySentences } from './open-copy-sentences.ts';
 
 type SpokenOptions = { language: Language; sentences: CopySentences };
