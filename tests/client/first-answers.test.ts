@@ -10,6 +10,7 @@ const person = {
   role: 'advisor',
   language: 'fr',
   regionIds: [],
+  phone: null,
 };
 
 /** The client's part of it as a page finds it that has just been loaded with these answers. */

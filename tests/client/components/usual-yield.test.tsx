@@ -47,7 +47,7 @@ describe('the gap at the usual yield', () => {
 
   it('claims no slope where the trials show none', async () => {
     await tell({ gapLine: { ...line, slopeP: 0.4 }, gapAtUsualYield: read });
-    expect(text()).toContain('is not settled (p\u00a00.40)');
+    expect(text()).toContain('is not settled (p 0.40)');
     expect(text()).not.toContain('the gap changes');
   });
 

@@ -2,10 +2,13 @@ import { screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { hydrateRoot } from 'react-dom/client';
 import { renderToString } from 'react-dom/server';
-import { afterEach, beforeEach, describe, expect, it } from 'vitest';
+import { afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { weighMoney } from '#shared/partial-budget.ts';
 import { CopyAnswer, withPrice, type CopyAnswerProps } from '#src/features/grower-copy/copy-answer.tsx';
 import { carryOwnPrice } from '#src/features/grower-copy/own-price-fragment.ts';
+import enCopy from '#locales/en/copy.json' with { type: 'json' };
+import frCopy from '#locales/fr/copy.json' with { type: 'json' };
+import { i18n } from '#src/i18n.ts';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 import {
   assumptions,
@@ -28,6 +31,11 @@ const answer: CopyAnswerProps = {
 };
 
 const namespaces = ['common', 'copy', 'drawings', 'verdicts'] as const;
+// The application does not bring the sentences of copies along.
+beforeAll(() => {
+  i18n.addResourceBundle('en', 'copy', enCopy);
+  i18n.addResourceBundle('fr', 'copy', frCopy);
+});
 const open = (language: 'en' | 'fr' = 'en') =>
   renderClient(<CopyAnswer {...answer} />, { language, namespaces: [...namespaces] });
 

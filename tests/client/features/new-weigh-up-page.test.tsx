@@ -34,7 +34,7 @@ const catalogue = {
 };
 const me = {
   ...{ id: idOf(9), name: 'Ines', email: 'ines@example.org', language: 'en' },
-  ...{ role: 'advisor', regionIds: [region.id] },
+  ...{ role: 'advisor', regionIds: [region.id], phone: null },
 };
 
 /** Only Ostermoor stands in the trials; what is stored is kept. */
