@@ -2,7 +2,7 @@ import { createInstance, type i18n, type ResourceLanguage } from 'i18next';
 import { languages, type Language } from '#shared/language.ts';
 import { addSentenceFormats } from '#shared/sentence-formats.ts';
 
-/** Opens sentences that are all there, for a page rendered on the server: nothing of one reader reaches another. */
+/** Opens sentences that are all there: nothing is fetched, and nothing of one reader reaches another. */
 export function openAllSentences(language: Language, sentences: ResourceLanguage): i18n {
   const opened = createInstance();
   void opened.init({

@@ -1,3 +1,5 @@
+import type { ResourceLanguage } from 'i18next';
+
 /** A style sheet at its address, or in the page itself under the hash by which the security policy lets it through. */
 export type CopyPageStyle = { address: string } | { text: string; hash: string };
 
@@ -12,3 +14,6 @@ export type CopyPageFiles = {
 
 /** Why there is no copy to show. */
 export type CopyFailure = 'link-unknown' | 'link-expired' | 'link-revoked' | 'away';
+
+/** The sentences of a copy in one language, by namespace. */
+export type CopySentences = ResourceLanguage;

@@ -1,7 +1,7 @@
 import type { Language } from '#shared/language.ts';
 import type { ReaderUnits } from '#shared/reader-units.ts';
 import type { CopyAnswerProps } from './copy-answer.tsx';
-import type { CopySentences } from './open-copy-sentences.ts';
+import type { CopySentences } from './copy-page-inputs.ts';
 
 /** Where the page holds the answer. */
 export const answerId = 'answer';

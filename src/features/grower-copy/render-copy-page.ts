@@ -9,16 +9,15 @@ import { readerUnitsOfCopy } from '#shared/reader-units-of-copy.ts';
 import type { YieldUnit } from '#shared/units.ts';
 import { ReaderZoneProvider } from '#src/components/reader-zone-context.tsx';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
+import { openAllSentences } from '#src/open-all-sentences.ts';
 import { CopyAnswer, type CopyAnswerProps } from './copy-answer.tsx';
-import type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
+import type { CopyFailure, CopyPageFiles, CopySentences } from './copy-page-inputs.ts';
 import { CopyPage, FailedCopyPage } from './copy-page.tsx';
 import { answerNamespaces, type CopyScriptData } from './copy-script-data.ts';
-import { openCopySentences, type CopySentences } from './open-copy-sentences.ts';
 
 // The front door for the server. Without JSX: the compiler takes types over from another project's .ts files alone.
 
-export type { CopyFailure, CopyPageFiles } from './copy-page-inputs.ts';
-export type { CopySentences } from './open-copy-sentences.ts';
+export type { CopyFailure, CopyPageFiles, CopySentences } from './copy-page-inputs.ts';
 
 type SpokenOptions = { language: Language; sentences: CopySentences };
 type PageOptions = SpokenOptions & { files: CopyPageFiles };
@@ -35,7 +34,7 @@ export function renderCopyPage(
   const inLanguage = (part: ReactNode) =>
     createElement(
       I18nextProvider,
-      { i18n: openCopySentences(language, sentences) },
+      { i18n: openAllSentences(language, sentences) },
       createElement(ReaderZoneProvider, {
         timeZone: zoneOfCopy(copy.snapshot),
         children: createElement(ReaderUnitsProvider, { units, children: part }),
@@ -64,9 +63,7 @@ export function renderFailedCopyPage(
   { language, sentences, files }: PageOptions,
 ): string {
   const page = createElement(FailedCopyPage, { failure, files });
-  return writeDocument(
-    createElement(I18nextProvider, { i18n: openCopySentences(language, sentences) }, page),
-  );
+  return writeDocument(createElement(I18nextProvider, { i18n: openAllSentences(language, sentences) }, page));
 }
 
 const writeDocument = (page: ReactNode): string => `<!doctype html>${renderToStaticMarkup(page)}`;

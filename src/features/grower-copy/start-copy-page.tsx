@@ -2,9 +2,9 @@ import '@vitejs/plugin-react/preamble';
 import { hydrateRoot } from 'react-dom/client';
 import { I18nextProvider } from 'react-i18next';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
+import { openAllSentences } from '#src/open-all-sentences.ts';
 import { CopyAnswer } from './copy-answer.tsx';
 import { answerId, type CopyScriptData } from './copy-script-data.ts';
-import { openCopySentences } from './open-copy-sentences.ts';
 import { carryOwnPrice } from './own-price-fragment.ts';
 
 const firstWaitMs = 1000;
@@ -26,7 +26,7 @@ if (answer === null) throw new Error('The page of the copy is not whole');
 const { language, units, sentences, answer: props } = await fetchScriptData();
 hydrateRoot(
   answer,
-  <I18nextProvider i18n={openCopySentences(language, sentences)}>
+  <I18nextProvider i18n={openAllSentences(language, sentences)}>
     <ReaderUnitsProvider units={units}>
       <CopyAnswer {...props} />
     </ReaderUnitsProvider>
