@@ -10,7 +10,7 @@ import { clientPages, everyPageAsks, signInPage, type PageNeeds } from './page-n
 import { readCookie } from './read-cookie.ts';
 
 /** A page waits no longer than this for its answers, ms: it can ask for them by itself, and say what is the matter. */
-const longestWait = 1500;
+const longestWait = 3000;
 
 /**
  * The client's document on every path. Its pages carry what they would ask for first, as the API answers it to the same

@@ -145,7 +145,8 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     await weigh(page, language);
     const main = page.getByRole('main');
     for (const name of names) await main.getByText(name).first().waitFor();
-    expect(await main.textContent()).toMatch(verdictWords(language));
+    // The candidates follow after the answer has been painted.
+    await main.getByText(verdictWords(language)).first().waitFor();
     expect(await main.textContent()).toMatch(language === 'en' ? /t\/ha/ : /\d,\d+\s*t\/ha/);
     await expectNoSideways(page);
     await readInBushels(page, language);
