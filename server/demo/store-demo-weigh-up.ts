@@ -39,7 +39,12 @@ export async function storeDemoWeighUp(
     candidateIds: candidates.map((name) => pick(varieties, name)),
     assumptions: assume(sheet, varieties),
   });
-  const { path } = await makeCopy(db, advisor, weighUp.id, { language: 'en', validDays: 365 });
+  const { path } = await makeCopy(db, advisor, weighUp.id, {
+    language: 'en',
+    validDays: 365,
+    // Velmar lies nowhere; its days are told as those of one place, so that no copy has to say UTC.
+    timeZone: 'America/Halifax',
+  });
   return { growerPath: path };
 }
 
