@@ -8,7 +8,7 @@ const referenceChecks = [
   'tests/stats/**/published-examples.test.ts',
   'tests/stats/**/reference-grids.test.ts',
   'tests/stats/**/pair-synthesis.test.ts',
-  'tests/stats/**/network-calibration.test.ts',
+  'tests/stats/**/*-calibration.test.ts',
 ];
 
 export default defineConfig({

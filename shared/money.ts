@@ -50,18 +50,19 @@ export const qualityRule = z.object({
 });
 export type QualityRule = z.infer<typeof qualityRule>;
 
-/** The money side of a weigh-up: prices per tonne at standard moisture, costs per tonne and per hectare. */
+/** The money side of a weigh-up: prices per tonne at standard moisture, costs per tonne off the field and per hectare. */
 export const moneyAssumptions = z
   .object({
     currency: z.string().regex(/^[A-Z]{3}$/),
     priceLow: price,
     priceMiddle: price,
     priceHigh: price,
+    /** Haulage, drying and harvest: per tonne as it comes off the field. */
     haulagePerTonne: amount,
     /** Whatever its moisture; `dryingPerPoint` comes on top of it. */
     dryingPerTonne: amount,
     harvestPerTonne: amount.optional(),
-    /** Per tonne and point of moisture above the standard. */
+    /** Per tonne off the field and point of moisture above the standard. */
     dryingPerPoint: amount.optional(),
     /** Of the crop, as it stood when the assumptions were taken over. */
     standardMoisturePercent: moisture.optional(),

@@ -36,18 +36,44 @@ const gauss = [
 const farthest = 8;
 
 /**
- * One season on the grower's own land: both varieties meet the same field and season, which moves the current one's level
- * by its spread; the candidate stands its gap above it. So equal varieties earn equal premiums, whatever the level.
+ * The two levels of one season as the current one's, spread × z about its mean, and the candidate's along with it. The gap
+ * is the candidate's part less the current variety's: what raises the current one by itself, in that season or in the
+ * trials, lowers the gap. By symmetry half of the gap's variance s² is the current one's, so their covariance is −s²/2
+ * and both levels spread alike. A spread under s/√2 is less than that half, and is taken as that.
+ */
+type JointLevels = {
+  spread: number;
+  /** How much the candidate's level rises, on average, with a z of 1. */
+  slope: number;
+  /** The gap at the current one's mean level; its standard error is what z leaves open of the gap. */
+  gap: GapDistribution;
+};
+
+function joinLevels({ spread: told, ownSeason }: TraitOutlook): JointLevels {
+  const spread = Math.max(told, ownSeason.se / Math.SQRT2);
+  const correlation = spread === 0 ? 0 : -ownSeason.se / (2 * spread);
+  return {
+    spread,
+    slope: spread + correlation * ownSeason.se,
+    gap: { ...ownSeason, se: ownSeason.se * Math.sqrt(1 - correlation ** 2) },
+  };
+}
+
+/**
+ * One season on the grower's own land: both varieties meet the same field and season, which moves them alike, and each
+ * its own luck. So varieties that are equal, however well that is known, can expect equal premiums at every level.
  * Each piece of the level between two limits is integrated by itself; the current variety's share of it is exact.
  */
-export function listSeasonStates({ steps, level, spread, ownSeason }: TraitOutlook): PremiumState[] {
-  const candidateChances = openStepChances(steps, ownSeason);
+export function listSeasonStates(outlook: TraitOutlook): PremiumState[] {
+  const { steps, level } = outlook;
+  const { spread, slope, gap } = joinLevels(outlook);
+  const candidateChances = openStepChances(steps, gap);
   if (spread === 0) {
     const current = steps.premiums[steps.limits.filter((limit) => limit <= level).length] ?? 0;
     return toStates(steps, current, candidateChances(level), 1);
   }
   const bounds = [-farthest, ...steps.limits.map((limit) => (limit - level) / spread), farthest];
-  const seams = listSeams(steps.limits, level + ownSeason.estimate, spread, ownSeason.se / spread);
+  const seams = listSeams(steps.limits, level + gap.estimate, slope, gap.se / slope);
   return steps.premiums.flatMap((current, i) => {
     const from = Math.max(bounds[i] ?? -farthest, -farthest);
     const to = Math.min(bounds[i + 1] ?? farthest, farthest);
@@ -55,20 +81,20 @@ export function listSeasonStates({ steps, level, spread, ownSeason }: TraitOutlo
     const mass =
       normalTail(i === 0 ? -Infinity : from) - normalTail(i === steps.limits.length ? Infinity : to);
     const inner = seams.filter((seam) => seam > from && seam < to);
-    const chances = averageOver([from, ...inner, to], (z) => candidateChances(level + spread * z));
+    const chances = averageOver([from, ...inner, to], (z) => candidateChances(level + slope * z));
     return toStates(steps, current, chances, mass);
   });
 }
 
 /**
  * Points between which the integrand is smooth: a few over the whole, and closer ones where the candidate's own chance of
- * passing a limit turns from none to sure.
+ * passing a limit turns from none to sure. Where its level does not follow z at all, those lie nowhere.
  */
-function listSeams(limits: readonly number[], centre: number, spread: number, width: number): number[] {
+function listSeams(limits: readonly number[], centre: number, slope: number, width: number): number[] {
   const turns = limits.flatMap((limit) =>
-    [-4, -1.5, 0, 1.5, 4].map((reach) => (limit - centre) / spread + reach * width),
+    [-4, -1.5, 0, 1.5, 4].map((reach) => (limit - centre) / slope + reach * width),
   );
-  return [-4, -2, 0, 2, 4, ...turns].sort((a, b) => a - b);
+  return [-4, -2, 0, 2, 4, ...turns.filter(Number.isFinite)].sort((a, b) => a - b);
 }
 
 /** Chances of the candidate's steps, averaged over a standard normal z between the first and the last of some points. */
@@ -113,18 +139,22 @@ function toStates(
 const slices = 12;
 
 /**
- * The region's average over seasons: premiums are averaged over fields and seasons, and only the candidate's average gap
- * stays uncertain. What moves a variety in a single season beyond that average widens its spread over seasons.
+ * The region's average over seasons: premiums are averaged over fields and seasons, over which both varieties spread
+ * alike, and only the average gap stays uncertain. What it may be off by lies half with the one and half with the other,
+ * and is no part of what they spread by around it.
  */
-export function listAverageStates({ steps, level, spread, ownSeason, region }: TraitOutlook): PremiumState[] {
-  const candidateSpread = Math.sqrt(spread ** 2 + Math.max(ownSeason.se ** 2 - region.se ** 2, 0));
-  const current = averagePremium(steps, level, spread);
+export function listAverageStates(outlook: TraitOutlook): PremiumState[] {
+  const { steps, level, region } = outlook;
+  const spread = Math.sqrt(joinLevels(outlook).spread ** 2 - region.se ** 2 / 4);
   const tail = openStudentTail(region.df);
   const over = (i: number): number => (i === 0 ? 1 : i === slices ? 0 : tail(-4 + (8 * i) / slices));
   return Array.from({ length: slices }, (_, i) => {
-    const gap = region.estimate + region.se * (-4 + (8 * (i + 0.5)) / slices);
-    const candidate = averagePremium(steps, level + gap, candidateSpread);
-    return { current, candidate, weight: over(i) - over(i + 1) };
+    const off = (region.se * (-4 + (8 * (i + 0.5)) / slices)) / 2;
+    return {
+      current: averagePremium(steps, level - off, spread),
+      candidate: averagePremium(steps, level + region.estimate + off, spread),
+      weight: over(i) - over(i + 1),
+    };
   });
 }
 

@@ -21,20 +21,28 @@ export function readQualityOutlook(
     const level = money.currentLevels?.[slug] ?? known?.mean;
     const spread = known?.spread ?? null;
     if (level === undefined || spread === null || gaps === null) return 'unknown';
-    outlook.push({ steps: layOutSteps(rules), level, spread, ...gaps });
+    // What the grower says is about the own land; a mean of trials is itself known by so many of them only.
+    const isOwn = money.currentLevels?.[slug] !== undefined;
+    const trials = known?.trials ?? 0;
+    const predicted = isOwn ? spread : spread * Math.sqrt(1 + 1 / trials);
+    outlook.push({ steps: layOutSteps(rules), level, spread: predicted, ...gaps });
   }
   return outlook;
 }
 
-/** Pulled back as the yield's gap is; with the standard errors of the plain gap, which are no smaller. */
+/**
+ * The gap pulled back as the yield's is, with what is left to know of it: mean and standard error of one and the same
+ * distribution. Copies frozen before that was told have the plain gap's standard errors, which are larger.
+ */
 function readGaps(
   trait: CandidateResult['traits'][number] | undefined,
 ): { ownSeason: GapDistribution; region: GapDistribution } | null {
   const gap = trait?.gap ?? null;
   if (gap === null || gap.ownSeason === null) return null;
   const estimate = gap.shrunken ?? gap.estimate;
+  const se = gap.shrunkenSe ?? { region: gap.se, ownSeason: gap.ownSeason.se };
   return {
-    ownSeason: { estimate, se: gap.ownSeason.se, df: gap.ownSeason.df },
-    region: { estimate, se: gap.se, df: gap.df },
+    ownSeason: { estimate, se: se.ownSeason, df: gap.ownSeason.df },
+    region: { estimate, se: se.region, df: gap.df },
   };
 }

@@ -1,7 +1,7 @@
 import type { QualityRule, SeedCost } from './money.ts';
 import { groupRules, layOutSteps } from './premium-steps.ts';
 
-/** The part of the assumptions that is about a tonne. */
+/** The part of the assumptions that is about a tonne, as it comes off the field. */
 export type TonneTerms = {
   haulagePerTonne: number;
   dryingPerTonne: number;
@@ -14,25 +14,32 @@ export type TonneTerms = {
 export type TonneCosts = { current: number; candidate: number };
 
 /**
- * Haulage, harvest and drying per tonne. Drying by moisture counts only where the moisture of both is known: taken as
- * dry, the one that is not known would look cheaper than it is.
+ * Haulage, harvest and drying. They are paid for the tonnes that come off the field, water and all, while yields and prices
+ * are stated at standard moisture. Moisture counts only where that of both is known: taken as dry, the one that is not
+ * known would look cheaper than it is.
  */
 export function reckonTonneCosts(current: SeedCost, candidate: SeedCost, money: TonneTerms): TonneCosts {
-  const alike = money.haulagePerTonne + money.dryingPerTonne + (money.harvestPerTonne ?? 0);
   if (current.harvestMoisturePercent === undefined || candidate.harvestMoisturePercent === undefined) {
-    return { current: alike, candidate: alike };
+    return { current: costsOfTonne(null, money), candidate: costsOfTonne(null, money) };
   }
   return {
-    current: alike + dryByMoisture(current.harvestMoisturePercent, money),
-    candidate: alike + dryByMoisture(candidate.harvestMoisturePercent, money),
+    current: costsOfTonne(current.harvestMoisturePercent, money),
+    candidate: costsOfTonne(candidate.harvestMoisturePercent, money),
   };
 }
 
-/** Per tonne at standard moisture, for the points above it; grain that comes off drier costs nothing to dry. */
-function dryByMoisture(harvestMoisture: number, money: TonneTerms): number {
-  const { dryingPerPoint, standardMoisturePercent } = money;
-  if (dryingPerPoint === undefined || standardMoisturePercent === undefined) return 0;
-  return dryingPerPoint * Math.max(harvestMoisture - standardMoisturePercent, 0);
+/**
+ * Per tonne at standard moisture. Wet mass = mass at the standard × (100 − standard) / (100 − moisture at harvest); grain
+ * that comes off drier costs nothing to dry by the point.
+ * Source of the wet mass: domain.md [6], the other way round.
+ * @param harvestMoisture percent; null where it is not known, and taken as the standard
+ */
+function costsOfTonne(harvestMoisture: number | null, money: TonneTerms): number {
+  const { dryingPerPoint = 0, standardMoisturePercent: standard } = money;
+  const alike = money.haulagePerTonne + money.dryingPerTonne + (money.harvestPerTonne ?? 0);
+  if (harvestMoisture === null || standard === undefined) return alike;
+  const wetTonnes = (100 - standard) / (100 - harvestMoisture);
+  return wetTonnes * (alike + dryingPerPoint * Math.max(harvestMoisture - standard, 0));
 }
 
 /** The most that can go off the price of a tonne: its costs for the wettest variety, and the deepest discount. */
@@ -42,12 +49,13 @@ export function findWorstCostPerTonne(
     seedCosts: Readonly<Record<string, Pick<SeedCost, 'harvestMoisturePercent'>>>;
   },
 ): number {
-  const alike = money.haulagePerTonne + money.dryingPerTonne + (money.harvestPerTonne ?? 0);
-  const wettest = Object.values(money.seedCosts).map(({ harvestMoisturePercent: moisture }) =>
-    moisture === undefined ? 0 : dryByMoisture(moisture, money),
+  const costs = Object.values(money.seedCosts).map(({ harvestMoisturePercent: moisture = null }) =>
+    costsOfTonne(moisture, money),
   );
   const discounts = [...groupRules(money.qualityRules ?? []).values()].map((rules) =>
     Math.max(...layOutSteps(rules).premiums.map((premium) => -premium), 0),
   );
-  return alike + Math.max(...wettest, 0) + discounts.reduce((sum, discount) => sum + discount, 0);
+  return (
+    Math.max(...costs, costsOfTonne(null, money)) + discounts.reduce((sum, discount) => sum + discount, 0)
+  );
 }

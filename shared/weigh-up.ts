@@ -22,6 +22,11 @@ export const gapEstimate = z.object({
   ownSeason: interval.extend({ se: z.number(), df: z.number() }).nullable(),
   /** Pulled back towards no gap for having been picked from a list. */
   shrunken: z.number().nullable(),
+  /**
+   * What is left to know of the shrunken gap, as standard errors for the region's average and for the grower's own next
+   * season: they go with it, those above with the estimate. Left out in copies frozen before.
+   */
+  shrunkenSe: z.object({ region: z.number(), ownSeason: z.number() }).nullish(),
 });
 export type GapEstimate = z.infer<typeof gapEstimate>;
 

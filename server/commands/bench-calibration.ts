@@ -1,16 +1,18 @@
 import { parseArgs } from 'node:util';
+import type { ReliabilityBin, Share } from './bench/chance-bins.ts';
 import {
   measureCoverage,
   measureReliability,
   type CoverageResult,
-  type ReliabilityBin,
   type ReliabilityResult,
-  type Share,
 } from './bench/network-calibration.ts';
 import type { WorldPlan } from './bench/network-world.ts';
+import { measurePremiums } from './bench/premium-calibration.ts';
+import type { PremiumPlan } from './bench/premium-world.ts';
 
 // Whether the weigh-up is right as often as it says: simulated regions put through its own engine.
 // `--quick`: a few layouts in under three minutes. `--runs N`: regions a line (full: 1,000). `--seed N`.
+// `--part coverage|reliability|premiums`: that table alone.
 
 const { values } = parseArgs({
   options: {
@@ -84,6 +86,24 @@ function listReliabilityPlans(): WorldPlan[] {
   ];
 }
 
+/** Where a buyer pays by protein: layouts, the organisation's knowledge of protein, and yield going against it. */
+function listPremiumPlans(): PremiumPlan[] {
+  const base = { sites: 3, seasons: 3, entries: 12, correlation: 0, isProteinUsual: true, factor: 1 };
+  if (values.quick) return [base];
+  const oneSeason = { ...base, sites: 5, seasons: 1 };
+  return [
+    { ...base, sites: 2, seasons: 2 },
+    oneSeason,
+    base,
+    { ...base, sites: 5, seasons: 4 },
+    { ...oneSeason, isProteinUsual: false },
+    { ...base, entries: 3, isProteinUsual: false },
+    { ...oneSeason, correlation: -0.5 },
+    { ...base, correlation: -0.5 },
+    { ...base, correlation: -0.8 },
+  ];
+}
+
 const percent = ({ value, error }: Share): string =>
   `${(100 * value).toFixed(1)} ± ${(100 * error).toFixed(1)}`;
 
@@ -121,33 +141,45 @@ function printCoverage(result: CoverageResult): void {
   console.log(`| ${describePlan(plan)} | ${figures} | ${judgeCoverage(result)} |`);
 }
 
-function printBins(name: string, plan: WorldPlan, bins: readonly ReliabilityBin[]): void {
+/** @param isHeldTo whether the product is to be right within 3 points, with two simulation errors of grace */
+function printBins(name: string, isHeldTo: boolean, bins: readonly ReliabilityBin[]): void {
   for (const { from, to, stated, happened } of bins) {
-    const isHeldTo = plan.factor === 1;
     const isMet = Math.abs(stated - happened.value) <= 0.03 + 2 * happened.error;
     console.log(
-      `| ${plan.sites} × ${plan.seasons} | × ${plan.factor} | ${name} | ${from}–${to} | ${happened.runs} | ${(100 * stated).toFixed(1)} | ${percent(happened)} | ${isHeldTo ? (isMet ? 'yes' : 'NO') : ''} |`,
+      `| ${name} | ${from}–${to} | ${happened.runs} | ${(100 * stated).toFixed(1)} | ${percent(happened)} | ${isHeldTo ? (isMet ? 'yes' : 'NO') : ''} |`,
     );
   }
 }
 
 function printReliability({ plan, single, singleShrunken, picked }: ReliabilityResult): void {
-  printBins('planned, by its estimate', plan, single);
-  printBins('planned, shrunken', plan, singleShrunken);
-  printBins('best of 12, shrunken', plan, picked);
+  const print = (candidate: string, bins: readonly ReliabilityBin[]): void =>
+    printBins(`${plan.sites} × ${plan.seasons} | × ${plan.factor} | ${candidate}`, plan.factor === 1, bins);
+  print('planned, by its estimate', single);
+  print('planned, shrunken', singleShrunken);
+  print('best of 12, shrunken', picked);
+}
+
+function printPremiums(plan: PremiumPlan): void {
+  const { planned, picked, average } = measurePremiums(plan, runs, seed);
+  const { sites, seasons, entries, isProteinUsual, correlation } = plan;
+  const told = `${sites} × ${seasons} | ${entries} | ${isProteinUsual ? 'known' : 'unknown'} | ${correlation}`;
+  printBins(`${told} | planned, own season`, true, planned);
+  printBins(`${told} | best of the list, own season`, true, picked);
+  printBins(`${told} | planned, region`, true, average);
 }
 
 const tonnes = ({ value, error }: Share): string => `${value.toFixed(3)} ± ${error.toFixed(3)}`;
 
 console.log(`${runs} simulated regions a line, seed ${seed}; figures in 100, ± one simulation error.\n`);
-if (values.part !== 'reliability') {
+const isAsked = (part: string): boolean => values.part === 'all' || values.part === part;
+if (isAsked('coverage')) {
   console.log(
     '| sites × seasons | entries | true variances | | covers region’s average | covers own next season | false verdict, planned pair | false verdict, all at once | met |',
   );
   console.log('|---|---|---|---|---|---|---|---|---|');
   for (const plan of listPlans()) printCoverage(measureCoverage(plan, runs, seed));
 }
-if (values.part !== 'coverage') {
+if (isAsked('reliability')) {
   console.log(
     '\n| sites × seasons | true variances | candidate | stated chance | questions | stated | came true | met |',
   );
@@ -164,4 +196,11 @@ if (values.part !== 'coverage') {
     console.log(
       `| ${plan.sites} × ${plan.seasons} | × ${plan.factor} | ${tonnes(lead.truth)} | ${tonnes(lead.estimate)} | ${tonnes(lead.shrunken)} |`,
     );
+}
+if (isAsked('premiums')) {
+  console.log(
+    '\n| sites × seasons | entries | usual variances of protein | yield with protein | chance that it pays | stated chance | questions | stated | came true | met |',
+  );
+  console.log('|---|---|---|---|---|---|---|---|---|---|');
+  for (const plan of listPremiumPlans()) printPremiums(plan);
 }

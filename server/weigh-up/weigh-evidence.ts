@@ -201,6 +201,7 @@ function toGapEstimate(gap: CandidateGap): GapEstimate {
     region: gap.region,
     ownSeason: { ...gap.ownSeason, df: Math.min(gap.ownSeason.df, mostDf) },
     shrunken: gap.shrunken.estimate,
+    shrunkenSe: { region: gap.shrunken.se, ownSeason: gap.shrunken.ownSeasonSe },
   };
 }
 

@@ -94,24 +94,40 @@ describe('what costs and revenues do', () => {
     expect(result.netPrice).toEqual({ current: 212, candidate: 212 });
   });
 
-  test('a wetter candidate pays for its drying on every tonne: ΔY* = (ΔC + Y₀(n₀ − n₁)) / n₁, domain.md', () => {
+  test('a wetter candidate pays for the drying of its wet tonnes: ΔY* = (ΔC + Y₀(n₀ − n₁)) / n₁, domain.md', () => {
     const wet = {
       ...atOnePrice(200, {
-        candidate: seed(70, { harvestMoisturePercent: 19 }),
+        candidate: seed(70, { harvestMoisturePercent: 20 }),
         current: seed(50, { harvestMoisturePercent: 16 }),
       }),
       dryingPerPoint: 2,
       standardMoisturePercent: 15,
     };
-    // n₀ = 200 − 2 × 1, n₁ = 200 − 2 × 4; Y₀ = 5 t/ha, ΔC = 20.
+    // A tonne at 15 % came off as 85/80 t and 85/84 t, each tonne of which is dried by 5 points and by 1. Y₀ = 5 t/ha, ΔC = 20.
+    const [n0, n1] = [200 - (85 / 84) * 2, 200 - (85 / 80) * 10];
     const result = weigh(wet, gapOf(0.5), { usualYield: 5 });
-    expect(result.netPrice).toEqual({ current: 198, candidate: 192 });
-    expect(result.breakEvenGap).toBeCloseTo((20 + 5 * 6) / 192, 12);
-    expect(result.returnPerHectare).toBeCloseTo(5.5 * 192 - 5 * 198 - 20, 9);
+    expect(result.netPrice?.current).toBeCloseTo(n0, 12);
+    expect(result.netPrice?.candidate).toBeCloseTo(n1, 12);
+    expect(result.breakEvenGap).toBeCloseTo((20 + 5 * (n0 - n1)) / n1, 12);
+    expect(result.returnPerHectare).toBeCloseTo(5.5 * n1 - 5 * n0 - 20, 9);
     expect(result.baseYield).toEqual({ value: 5, from: 'grower' });
-    // Drier than the standard costs nothing, and earns nothing.
+    // Drier than the standard costs nothing to dry.
     const dry = { ...wet, standardMoisturePercent: 25 };
-    expect(weigh(dry, gapOf(0.5)).netPrice).toEqual({ current: 200, candidate: 200 });
+    expect(weigh(dry, gapOf(0.5), { usualYield: 5 }).netPrice).toEqual({ current: 200, candidate: 200 });
+  });
+
+  // 10,000 lb of maize at 20 % are 9,467 lb at 15.5 %: UF/IFAS AG442 (domain.md [6]); so 9,467 sold were 10,000 hauled.
+  test('haulage, harvest and drying whatever the moisture are paid for what comes off the field, water and all', () => {
+    const money = {
+      ...atOnePrice(200, {
+        candidate: seed(50, { harvestMoisturePercent: 20 }),
+        current: seed(50, { harvestMoisturePercent: 15.5 }),
+      }),
+      ...{ haulagePerTonne: 10, harvestPerTonne: 6, dryingPerTonne: 4, standardMoisturePercent: 15.5 },
+    };
+    const { netPrice } = weigh(money, gapOf(0), { usualYield: 9.467 });
+    expect(netPrice?.current).toBeCloseTo(200 - 20, 12);
+    expect(9.467 * (200 - (netPrice?.candidate ?? NaN))).toBeCloseTo(10 * 20, 1);
   });
 
   test('the yield that unequal prices count on is the grower’s usual one, else that of the trials, else nothing is said', () => {

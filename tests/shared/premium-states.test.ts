@@ -55,45 +55,58 @@ describe('what a buyer pays by level', () => {
 });
 
 describe('a season on the grower’s own land', () => {
-  // A normal gap on a normal level is normal: P(candidate ≥ 12) = Φ((12.3 − 0.2 − 12) / √(0.8² + 0.5²)).
+  // Both levels are normal with the same spread: P(current ≥ 12) = Φ((12.3 − 12) / 0.8), the candidate's 0.2 lower.
   test('pays the premium as often as the levels pass the limit', () => {
     const states = listSeasonStates(outlook());
     expect(total(states)).toBeCloseTo(1, 12);
     expect(mean(states, 'current')).toBeCloseTo(10 * normalTail((12 - 12.3) / 0.8), 9);
-    expect(mean(states, 'candidate')).toBeCloseTo(10 * normalTail((12 - 12.1) / Math.hypot(0.8, 0.5)), 4);
+    expect(mean(states, 'candidate')).toBeCloseTo(10 * normalTail((12 - 12.1) / 0.8), 4);
   });
 
-  // Both earn it: the integral of P(gap carries the candidate over 12) over the levels at which the current variety is
-  // over it, on a fine grid.
-  test('pays both together as often as field and gap have it', () => {
+  // Both earn it: what they share has the variance 0.8² − 0.5²/2, each by itself has 0.5²/2; on a fine grid of what they
+  // share, the chance that each passes 12.
+  test('pays both together as often as what they share has it', () => {
     const both = listSeasonStates(outlook()).find(
       ({ current, candidate }) => current === 10 && candidate === 10,
     );
+    const shared = Math.sqrt(0.8 ** 2 - 0.5 ** 2 / 2);
+    const own = Math.sqrt(0.5 ** 2 / 2);
     let expected = 0;
     const step = 0.0005;
-    for (let z = (12 - 12.3) / 0.8 + step / 2; z < 8; z += step) {
+    for (let z = -8 + step / 2; z < 8; z += step) {
       const density = Math.exp((-z * z) / 2) / Math.sqrt(2 * Math.PI);
-      expected += step * density * normalTail((12 - (12.3 + 0.8 * z) + 0.2) / 0.5);
+      const passes = (level: number): number => normalTail((12 - level - shared * z) / own);
+      expected += step * density * passes(12.3) * passes(12.1);
     }
     expect(both?.weight).toBeCloseTo(expected, 5);
   });
 
-  test('equal varieties earn alike, whatever their level: nobody gains by being better known', () => {
+  test('property: equal varieties expect equal premiums, whatever their level and however well the gap is known', () => {
+    const level = fc.double({ min: 8, max: 16, noNaN: true });
+    const se = fc.double({ min: 0, max: 2, noNaN: true });
     fc.assert(
-      fc.property(fc.double({ min: 8, max: 16, noNaN: true }), (level) => {
-        const same = { estimate: 0, se: 0, df: 12 };
-        const states = listSeasonStates(outlook({ level, ownSeason: same, region: same }));
-        const unlike = states.filter(({ current, candidate }) => current !== candidate);
+      fc.property(level, se, (level, se) => {
+        const same = { estimate: 0, se, df: Infinity };
+        const equal = outlook({ level, ownSeason: same, region: { ...same, se: se / 2 } });
+        for (const states of [listSeasonStates(equal), listAverageStates(equal)])
+          expect(mean(states, 'candidate')).toBeCloseTo(mean(states, 'current'), 3);
+        const sure = { ...equal, ownSeason: { ...same, se: 0 }, region: { ...same, se: 0 } };
+        const unlike = listSeasonStates(sure).filter(({ current, candidate }) => current !== candidate);
         expect(total(unlike)).toBeLessThan(1e-9);
-        expect(mean(states, 'candidate')).toBeCloseTo(mean(states, 'current'), 9);
       }),
     );
   });
 
-  test('a level that does not move is on one side of the limit', () => {
-    const states = listSeasonStates(outlook({ spread: 0 }));
-    expect(states.every(({ current }) => current === 10)).toBe(true);
-    expect(mean(states, 'candidate')).toBeCloseTo(10 * normalTail((12 - 12.1) / 0.5), 9);
+  // Then nothing is left for them to share: each spreads by 0.5/√2, independently of the other.
+  test('a level that moved less than half of the gap’s variance is taken to move as much', () => {
+    for (const spread of [0, 0.2]) {
+      const states = listSeasonStates(outlook({ spread }));
+      const passes = (level: number): number => normalTail((12 - level) / (0.5 / Math.SQRT2));
+      expect(mean(states, 'current')).toBeCloseTo(10 * passes(12.3), 9);
+      expect(mean(states, 'candidate')).toBeCloseTo(10 * passes(12.1), 6);
+      const both = states.find(({ current, candidate }) => current === 10 && candidate === 10);
+      expect(both?.weight).toBeCloseTo(passes(12.3) * passes(12.1), 6);
+    }
   });
 
   test('property: more protein never lowers a premium, and the weights are a whole', () => {
@@ -116,7 +129,7 @@ describe('the average over seasons', () => {
     const seasons = listSeasonStates(outlook());
     const average = listAverageStates(outlook());
     expect(total(average)).toBeCloseTo(1, 12);
-    expect(mean(average, 'current')).toBeCloseTo(mean(seasons, 'current'), 9);
+    expect(mean(average, 'current')).toBeCloseTo(mean(seasons, 'current'), 2);
     expect(mean(average, 'candidate')).toBeCloseTo(mean(seasons, 'candidate'), 2);
     const variance = (states: PremiumState[]) =>
       states.reduce((sum, one) => sum + one.weight * (one.candidate - mean(states, 'candidate')) ** 2, 0);

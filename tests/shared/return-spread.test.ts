@@ -90,11 +90,14 @@ test('chance, mean and both tails are those of seasons drawn one by one', () => 
     return u < 35 / 95 ? 215 + Math.sqrt(u * 95 * 35) : 310 - Math.sqrt((1 - u) * 95 * 60);
   };
   const pay = (protein: number): number => (protein >= 12.5 ? 14 : protein < 11.5 ? -10 : 0);
+  // A field of nine known ones; half of the protein gap's variance belongs to each of the two.
+  const own = 0.4 / Math.SQRT2;
+  const field = Math.sqrt(0.7 ** 2 * (1 + 1 / 9) - own ** 2);
   const returns = Array.from({ length: 200_000 }, () => {
     const price = triangle();
-    const protein = 12.2 + 0.7 * normal();
-    const current = price + pay(protein) - 20 - 2.5 * 1.5;
-    const candidate = price + pay(protein + 0.3 + 0.4 * normal()) - 20 - 2.5 * 3.5;
+    const protein = 12.2 + field * normal();
+    const current = price + pay(protein + own * normal()) - (85.5 / 84) * (20 + 2.5 * 1.5);
+    const candidate = price + pay(protein + 0.3 + own * normal()) - (85.5 / 82) * (20 + 2.5 * 3.5);
     return (5 + gap.estimate + gap.se * normal()) * candidate - 5 * current - 18;
   }).sort((a, b) => a - b);
   const share = returns.filter((value) => value > 0).length / returns.length;

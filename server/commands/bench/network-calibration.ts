@@ -5,33 +5,8 @@ import {
   type TraitWeighing,
 } from '#server/stats/engine.ts';
 import { normalCdf } from '#server/stats/distributions/normal.ts';
+import { Bins, Tally, type ReliabilityBin, type Share } from './chance-bins.ts';
 import { currentName, drawWorld, type World, type WorldPlan } from './network-world.ts';
-
-/** A share of runs with its simulation error. */
-export interface Share {
-  readonly value: number;
-  readonly error: number;
-  readonly runs: number;
-}
-
-/** Means of a number of runs; the runs are independent, what happens within one is not. */
-class Tally {
-  private sum = 0;
-  private squares = 0;
-  private runs = 0;
-
-  add(value: number): void {
-    this.sum += value;
-    this.squares += value * value;
-    this.runs++;
-  }
-
-  share(): Share {
-    const value = this.sum / this.runs;
-    const variance = Math.max(0, this.squares / this.runs - value * value);
-    return { value, error: Math.sqrt(variance / this.runs), runs: this.runs };
-  }
-}
 
 export interface CoverageResult {
   readonly plan: WorldPlan;
@@ -94,14 +69,6 @@ export function measureCoverage(plan: WorldPlan, runs: number, seed: number): Co
   };
 }
 
-/** Stated chances within one band, what came true of them, and in how many runs. */
-export interface ReliabilityBin {
-  readonly from: number;
-  readonly to: number;
-  readonly stated: number;
-  readonly happened: Share;
-}
-
 export interface ReliabilityResult {
   readonly plan: WorldPlan;
   /** one planned candidate, by its estimate and by its shrunken gap */
@@ -111,38 +78,6 @@ export interface ReliabilityResult {
   readonly picked: readonly ReliabilityBin[];
   /** mean lead of the best of the list over the current variety: true, by the estimate, by the shrunken gap, t/ha */
   readonly lead: { readonly truth: Share; readonly estimate: Share; readonly shrunken: Share };
-}
-
-const EDGES = [0, 0.05, 0.2, 0.4, 0.6, 0.8, 0.95, 1];
-
-class Bins {
-  private readonly stated = EDGES.slice(1).map(() => new Tally());
-  private readonly happened = EDGES.slice(1).map(() => new Tally());
-
-  add(stated: number, happened: number): void {
-    const bin = Math.max(
-      0,
-      EDGES.findLastIndex((edge) => stated >= edge && edge < 1),
-    );
-    this.stated[bin]!.add(stated);
-    this.happened[bin]!.add(happened);
-  }
-
-  list(): ReliabilityBin[] {
-    return this.stated.flatMap((tally, bin) => {
-      const stated = tally.share();
-      return stated.runs === 0
-        ? []
-        : [
-            {
-              from: EDGES[bin]!,
-              to: EDGES[bin + 1]!,
-              stated: stated.value,
-              happened: this.happened[bin]!.share(),
-            },
-          ];
-    });
-  }
 }
 
 /**

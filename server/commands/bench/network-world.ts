@@ -34,7 +34,7 @@ export interface World {
 /** A cereal's variances: site .12, season .12, rest .18, plot .35 t/ha. */
 const USUAL: InteractionVariances = { site: 0.0144, year: 0.0144, rest: 0.0324 };
 const PLOT_SD = 0.35;
-const REPLICATES = 4;
+export const REPLICATES = 4;
 const HAIL_PLOT_SD = 1;
 const HAIL_ENTRY_SD = 0.6;
 
@@ -55,7 +55,7 @@ function rememberEffects(normal: () => number): (label: string, sd: number) => n
   };
 }
 
-interface TrialDraw {
+export interface TrialDraw {
   readonly means: ReadonlyMap<string, number>;
   /** residual mean square of complete blocks and its df */
   readonly ms: number;
@@ -63,7 +63,7 @@ interface TrialDraw {
 }
 
 /** Plots in complete blocks about given entry values: entry means and the residual mean square. */
-function drawPlots(values: ReadonlyMap<string, number>, draw: () => number): TrialDraw {
+export function drawPlots(values: ReadonlyMap<string, number>, draw: () => number): TrialDraw {
   const names = [...values.keys()];
   const plots = names.map((name) => Array.from({ length: REPLICATES }, () => values.get(name)! + draw()));
   const rowMeans = plots.map((row) => row.reduce((sum, x) => sum + x, 0) / REPLICATES);

@@ -1,9 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import {
-  measureCoverage,
-  measureReliability,
-  type Share,
-} from '#server/commands/bench/network-calibration.ts';
+import type { Share } from '#server/commands/bench/chance-bins.ts';
+import { measureCoverage, measureReliability } from '#server/commands/bench/network-calibration.ts';
 import { drawWorld, type WorldPlan } from '#server/commands/bench/network-world.ts';
 
 // The quick form of `npm run bench:calibration`: the weigh-up's own engine on seeded regions. Limits are the targets
