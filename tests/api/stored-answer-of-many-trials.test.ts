@@ -79,4 +79,4 @@ test('a weigh-up of forty trials answers from what is stored, and weighs nothing
   console.info(
     `GET of a weigh-up of ${trialCount} trials: weighed ${cold.milliseconds.toFixed(0)} ms, from store ${median.toFixed(0)} ms (median of ${warm.length})`,
   );
-});
+}, 120_000);
