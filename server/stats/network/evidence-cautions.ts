@@ -41,6 +41,8 @@ export interface CandidateEvidence {
   readonly tables: readonly TrialTable[];
   readonly shared: number;
   readonly isConnected: boolean;
+  /** whether its verdict leans on the usual variances */
+  readonly leansOnUsual: boolean;
   /** whether half or twice the usual variances give another verdict */
   readonly isSensitive: boolean;
   /** set for the leader of a list */
@@ -49,7 +51,8 @@ export interface CandidateEvidence {
 
 /** Cautions of one candidate. */
 export function cautionCandidate(evidence: CandidateEvidence): EvidenceCaution[] {
-  const { candidate, question, names, tables, shared, isConnected, isSensitive, leads } = evidence;
+  const { candidate, question, names, tables, shared, isConnected, leansOnUsual, isSensitive, leads } =
+    evidence;
   const variety = names[candidate] ?? candidate;
   const current = names[question.current] ?? question.current;
   const stood = tables.filter(({ cells }) => cells.has(candidate));
@@ -57,7 +60,10 @@ export function cautionCandidate(evidence: CandidateEvidence): EvidenceCaution[]
   if (!isConnected) return [caution('disconnected', 'stop', { variety, current })];
   if (stood.length < FEW_SITE_YEARS)
     found.push(
-      caution('few-site-years', stood.length < 2 ? 'stop' : 'warning', { variety, count: stood.length }),
+      caution('few-site-years', stood.length < 2 ? 'stop' : 'warning', {
+        ...{ variety, count: stood.length },
+        ...(leansOnUsual && { context: 'leans' }),
+      }),
     );
   const seasons = [...new Set(stood.map(({ trial }) => trial.season))].sort((a, b) => a - b);
   const newest = seasons.at(-1);

@@ -212,6 +212,7 @@ function weighOne(
       tables: evidence.tables,
       shared: lines.length,
       isConnected: !isUnconnected,
+      leansOnUsual: tier === 'one-season' || tier === 'supported',
       isSensitive: sensitivity !== null && (sensitivity.half !== verdict || sensitivity.double !== verdict),
       leads:
         candidate === leader && gap !== null

@@ -5,7 +5,7 @@ import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { openAllSentences } from '#src/open-all-sentences.ts';
 import { CopyAnswer } from './copy-answer.tsx';
 import { answerId, type CopyScriptData } from './copy-script-data.ts';
-import { carryOwnPrice } from './own-price-fragment.ts';
+import { carryOwnNumbers } from './own-numbers-fragment.ts';
 
 const firstWaitMs = 1000;
 const longestWaitMs = 60_000;
@@ -34,5 +34,5 @@ hydrateRoot(
 );
 
 for (const link of document.querySelectorAll<HTMLAnchorElement>('a[data-carries-price]')) {
-  link.addEventListener('click', () => carryOwnPrice(link));
+  link.addEventListener('click', () => carryOwnNumbers(link));
 }

@@ -4,8 +4,9 @@ import { hydrateRoot } from 'react-dom/client';
 import { renderToString } from 'react-dom/server';
 import { afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { weighMoney } from '#shared/partial-budget.ts';
-import { CopyAnswer, withPrice, type CopyAnswerProps } from '#src/features/grower-copy/copy-answer.tsx';
-import { carryOwnPrice } from '#src/features/grower-copy/own-price-fragment.ts';
+import { CopyAnswer, type CopyAnswerProps } from '#src/features/grower-copy/copy-answer.tsx';
+import { withPrice, withSeed } from '#src/features/grower-copy/own-assumptions.ts';
+import { carryOwnNumbers } from '#src/features/grower-copy/own-numbers-fragment.ts';
 import enCopy from '#locales/en/copy.json' with { type: 'json' };
 import frCopy from '#locales/fr/copy.json' with { type: 'json' };
 import { i18n } from '#src/i18n.ts';
@@ -53,6 +54,13 @@ async function typePrice(text: string): Promise<void> {
   await userEvent.type(priceField(), text);
 }
 
+const seedField = (name: string) => screen.getByRole('textbox', { name: `Seed of ${name}` });
+
+async function typeSeed(name: string, text: string): Promise<void> {
+  await userEvent.clear(seedField(name));
+  await userEvent.type(seedField(name), text);
+}
+
 beforeEach(() => history.replaceState(null, '', '/copy/secret?lang=en'));
 afterEach(() => history.replaceState(null, '', '/'));
 
@@ -84,7 +92,7 @@ describe('the answer of a copy', () => {
     await open();
     await typePrice('180');
     await userEvent.click(
-      screen.getAllByRole('button', { name: 'Back to the price of this copy' })[0] as HTMLElement,
+      screen.getAllByRole('button', { name: 'Back to the numbers of this copy' })[0] as HTMLElement,
     );
     expect(screen.queryByText(/^Your own number/)).toBeNull();
     expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
@@ -111,8 +119,64 @@ describe('the answer of a copy', () => {
     expect(location.href).toMatch(/\/copy\/secret\?lang=en#price=251\.5$/);
     const link = document.createElement('a');
     link.href = '/copy/secret?lang=fr';
-    carryOwnPrice(link);
+    carryOwnNumbers(link);
     expect(link.href).toMatch(/\?lang=fr#price=251\.5$/);
+  });
+
+  it('reckons with an own cost of seed as with an own price, and says which it replaces', async () => {
+    await open();
+    await userEvent.click(screen.getByText('Your cost of seed'));
+    await typeSeed('Ostermoor', '120');
+    const own = withSeed(assumptions, idOf(2), 120);
+    const money = weighMoney(buildCandidate(), basis, own);
+    // By hand: 0.4 × (290 − 20) − (120 − 118).
+    expect(Math.round(money?.returnPerHectare ?? NaN)).toBe(106);
+    expect(articleOf('Ostermoor').getByText(/^\+\$106\/ha/).textContent).toContain('own number');
+    expect(screen.getByText(/^Your own number: seed of Ostermoor at \$120\/ha instead of /)).toBeDefined();
+    expect(location.hash).toBe('#seed1=120');
+    // Dearer seed of the current variety speaks for every candidate.
+    await typeSeed(answer.weighUp.currentVarietyName, '140');
+    const both = weighMoney(buildCandidate(), basis, withSeed(own, basis.currentVarietyId, 140));
+    expect(both?.returnPerHectare ?? NaN).toBeGreaterThan(money?.returnPerHectare ?? NaN);
+    expect(location.hash).toBe('#seed1=120&seed0=140');
+    await userEvent.click(
+      screen.getAllByRole('button', { name: 'Back to the numbers of this copy' })[0] as HTMLElement,
+    );
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+    expect(screen.getByText('These are the numbers of this copy.')).toBeDefined();
+    expect(location.hash).toBe('');
+  });
+
+  it('lets a reader who knows it fill in a cost of seed that the copy does not know', async () => {
+    await open();
+    await userEvent.click(screen.getByText('Your cost of seed'));
+    const unpriced = () => articleOf('Unpriced').queryAllByText(/a seed cost is missing/).length;
+    expect(unpriced()).toBeGreaterThan(0);
+    await typeSeed('Unpriced', '70');
+    expect(unpriced()).toBe(0);
+    expect(
+      screen.getByText('Your own number: seed of Unpriced at $70/ha, which this copy does not know.'),
+    ).toBeDefined();
+  });
+
+  it.each([
+    ['no figure', 'abc'],
+    ['a negative one', '-5'],
+  ])('keeps the frozen figures while a cost of seed is %s', async (_case, typed) => {
+    await open();
+    await userEvent.click(screen.getByText('Your cost of seed'));
+    await typeSeed('Ostermoor', typed);
+    expect(seedField('Ostermoor').getAttribute('aria-invalid')).toBe('true');
+    expect(screen.queryByText(/^Your own number/)).toBeNull();
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+    expect(location.hash).toBe('');
+  });
+
+  it('takes up the numbers of its address that can be, and no others', async () => {
+    history.replaceState(null, '', '/copy/secret?lang=en#price=-3&seed1=95&seed0=x&seed99=4&other=1');
+    await open();
+    expect(screen.getAllByText(/^Your own number/)).toHaveLength(1);
+    expect(screen.getByText(/^Your own number: seed of Ostermoor at \$95\/ha/)).toBeDefined();
   });
 
   it('takes up the price of its address', async () => {

@@ -266,6 +266,23 @@ describe('a variety without a trial', () => {
   });
 });
 
+describe('a verdict from two site-years', () => {
+  const twoTrials = growEvidence({ entries, seasons: [2024], stands: (_, s) => s < 2 });
+  const contextOf = (network: typeof twoTrials): unknown =>
+    find('few-site-years', network)?.numbers['context'];
+
+  it('is said to lean on the usual variances, and is none without them', () => {
+    expect(contextOf(twoTrials)).toBe('leans');
+    const verdictOf = (network: typeof twoTrials) =>
+      weighCandidates(network, pair).traits[0]!.candidates.find(({ candidate }) => candidate === 'New')
+        ?.verdict;
+    expect(verdictOf(twoTrials)).not.toBe('thin');
+    const untold = { ...twoTrials, traits: twoTrials.traits.map((trait) => ({ ...trait, usual: null })) };
+    expect(contextOf(untold)).toBeUndefined();
+    expect(verdictOf(untold)).toBe('thin');
+  });
+});
+
 describe('names in cautions', () => {
   it('are those of the network, not its keys', () => {
     const named = { ...three, names: { New: 'Nouvelle', Now: 'Ancienne' } };
