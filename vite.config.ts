@@ -28,6 +28,7 @@ const copyBuild: UserConfig = {
         `${copyPage}/copy-page.css`,
         'src/fonts.css',
         'src/start-after-paint.ts',
+        'src/features/weigh-up/first-view.css',
       ],
     },
   },

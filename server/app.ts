@@ -13,6 +13,7 @@ import { addAuditRoutes } from './audit/audit-routes.ts';
 import { addCatalogueRoutes } from './catalogue/catalogue-routes.ts';
 import { addClientPages } from './client-page/client-page-routes.ts';
 import { openPageDocument } from './client-page/page-document.ts';
+import type { InlineFile } from './built-files.ts';
 import type { Database } from './db.ts';
 import type { ServerSettings } from './env.ts';
 import { handleError } from './error-handler.ts';
@@ -67,11 +68,11 @@ export function buildApp(
   );
   const copyFiles = findCopyPageFiles(settings.clientFolder);
   const document = settings.clientFolder === null ? null : openPageDocument(settings.clientFolder);
-  const styles = [
-    ...('hash' in copyFiles.style ? [copyFiles.style.hash] : []),
-    ...(document ? [document.styleHash] : []),
-  ];
-  app.use(buildHelmet(settings, styles));
+  const inPages = {
+    styles: [...('hash' in copyFiles.style ? [copyFiles.style] : []), ...(document ? [document.style] : [])],
+    scripts: copyFiles.afterPaint ? [copyFiles.afterPaint] : [],
+  };
+  app.use(buildHelmet(settings, inPages));
   app.use(compression());
   const session = buildSession(db, pool, settings);
   const api = addApi(app, db, session, settings, onMailQueued);
@@ -130,17 +131,25 @@ function serveClient(app: Express, clientFolder: string): void {
   app.use(express.static(clientFolder, { index: false, maxAge: '1h' }));
 }
 
+/** What stands in pages themselves. */
+type InPages = Record<'styles' | 'scripts', readonly InlineFile[]>;
+
 /**
  * Headers: everything from our own origin; the charts set style attributes. Plain http on loopback gets no upgrade.
- * @param styleHashes of the styles that stand in pages themselves
+ * No opener policy and no agent cluster of its own: a browser starts a process for each page that asks for them, which
+ * costs a slow phone a third of a second. They guard pages that open windows, hold frames or set `document.domain`;
+ * no page here does, none can be framed, and whoever opens one sees nothing of it.
  */
-function buildHelmet(settings: ServerSettings, styleHashes: readonly string[]): RequestHandler {
+function buildHelmet(settings: ServerSettings, inPages: InPages): RequestHandler {
+  const hashesOf = (files: readonly InlineFile[]) => files.map(({ hash }) => `'${hash}'`);
   return helmet({
+    crossOriginOpenerPolicy: false,
+    originAgentCluster: false,
     contentSecurityPolicy: {
       directives: {
         defaultSrc: ["'self'"],
-        scriptSrc: ["'self'"],
-        styleSrc: ["'self'", ...styleHashes.map((hash) => `'${hash}'`)],
+        scriptSrc: ["'self'", ...hashesOf(inPages.scripts)],
+        styleSrc: ["'self'", ...hashesOf(inPages.styles)],
         styleSrcAttr: ["'unsafe-inline'"],
         imgSrc: ["'self'", 'data:'],
         fontSrc: ["'self'"],

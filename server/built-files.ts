@@ -21,11 +21,15 @@ export function readBuiltFiles(clientFolder: string): (source: string) => string
   };
 }
 
-/** A style sheet that stands in a page itself, with the hash by which the security policy lets it through. */
-export type InlineStyle = { text: string; hash: string };
+/** A style sheet or a script that stands in a page itself, with the hash by which the security policy lets it through. */
+export type InlineFile = { text: string; hash: string };
 
-/** In the page itself a style costs no way to the server and back before anything is seen. */
-export function readInlineStyle(file: string): InlineStyle {
-  const text = readFileSync(file, 'utf8');
+/**
+ * In the page itself a file costs no way to the server and back before anything is seen.
+ * @throws Error for a text that would end the element it stands in
+ */
+export function readInlineFile(file: string): InlineFile {
+  const text = readFileSync(file, 'utf8').trim();
+  if (/<\/(style|script)/i.test(text)) throw new Error(`${file} cannot stand inside a page`);
   return { text, hash: `sha256-${createHash('sha256').update(text).digest('base64')}` };
 }

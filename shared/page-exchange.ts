@@ -9,3 +9,6 @@ export const languageCookieName = 'gavelrow.language';
 
 /** Cookie in which the client tells the unit that yields are read in, as the address writes it. */
 export const unitCookieName = 'gavelrow.yield-unit';
+
+/** Of the answer in a page that the server has rendered: until it is there the browser paints nothing. */
+export const verdictId = 'verdict';

@@ -1,19 +1,20 @@
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { readBuiltFiles, readInlineStyle } from '#server/built-files.ts';
-import { firstAnswersId, type FirstAnswers } from '#shared/page-exchange.ts';
+import { readBuiltFiles, readInlineFile, type InlineFile } from '#server/built-files.ts';
+import { firstAnswersId, verdictId, type FirstAnswers } from '#shared/page-exchange.ts';
 import { languages, type Language } from '#shared/language.ts';
 import { clientPages, type PageNeeds } from './page-needs.ts';
 
 const fontsSource = 'src/fonts.css';
 const afterPaintSource = 'src/start-after-paint.ts';
+const topStyleSource = 'src/features/weigh-up/first-view.css';
 
 type Manifest = Record<string, { file: string; imports?: string[] }>;
 
 /** The built client's one document, with what a page needs named and answered in it. */
 export type PageDocument = {
-  /** Of the style that a page with a first view has in itself, for the security policy. */
-  styleHash: string;
+  /** What a page with a first view has in itself. */
+  style: InlineFile;
   /**
    * @param page whose code and sentences are fetched along with what every page needs; null for none
    * @param answers replies that the page finds in itself instead of asking for them
@@ -33,47 +34,63 @@ export function openPageDocument(clientFolder: string): PageDocument {
     `href="/${fontsSource}"`,
     `href="${addressOf(fontsSource)}"`,
   );
-  const [styleLink, styleAddress] = findOnce(
-    document,
-    /<link rel="stylesheet"[^>]*href="([^"]*\/base-[^"]*)"[^>]*>/,
-  );
+  const [styleLink, styleAddress] = findOnce(document, linkedStyle('base'));
   const [entryScript, entryAddress] = findOnce(
     document,
     /<script type="module"[^>]*src="([^"]*)"[^>]*><\/script>/,
   );
-  const style = readInlineStyle(join(clientFolder, styleAddress));
-  /** What is seen first waits for no style, and the client's start for what is seen first. */
-  const hurry = (page: string): string =>
-    page
-      .replace(styleLink, () => `<style>${style.text}</style>`)
-      .replace(
-        entryScript,
-        () =>
-          `<link rel="modulepreload" crossorigin href="${entryAddress}" />` +
-          `<script type="module" crossorigin src="${addressOf(afterPaintSource)}" data-starts="${entryAddress}"></script>`,
-      );
+  const [fontsLink, fontsAddress] = findOnce(document, linkedStyle('fonts'));
+  const inPage = (source: string) => readInlineFile(join(clientFolder, addressOf(source)));
+  const style = inPage(topStyleSource);
+  const afterPaint = inPage(afterPaintSource);
   const manifest = JSON.parse(readFileSync(join(clientFolder, '.vite/manifest.json'), 'utf8')) as Manifest;
-  const preloads = new Map<string, string>();
-  for (const source of [...clientPages.map((page) => page.source), ...languages.map(sentencesOf)]) {
-    const files = filesBehind(manifest, source).filter((file) => !document.includes(file));
-    preloads.set(
+  const ahead = new Map<string, readonly string[]>();
+  for (const source of [...clientPages.map((page) => page.source), ...languages.map(sentencesOf)])
+    ahead.set(
       source,
-      files.map((file) => `<link rel="modulepreload" crossorigin href="/${file}" />`).join(''),
+      filesBehind(manifest, source).map((file) => `/${file}`),
     );
-  }
+  const ofEveryPage = filesBehind(manifest, 'index.html').map((file) => `/${file}`);
+
+  /** The files are fetched while the document still comes. */
+  const withFiles = (files: readonly string[]): string => {
+    const links = files.filter((file) => !ofEveryPage.includes(file)).map(linkAhead);
+    return document.replace('</head>', () => `${links.join('')}</head>`);
+  };
+  /** What is seen first waits for no file, and all files for what is seen first. */
+  const withTop = (files: readonly string[]): string => {
+    const all = [...new Set([...ofEveryPage, ...files])].join(' ');
+    const names = `data-styles="${styleAddress} ${fontsAddress}" data-ahead="${all}" data-starts="${entryAddress}"`;
+    return document
+      .replace(styleLink, () => `<style>${style.text}</style>${awaitVerdict}`)
+      .replace(entryScript, '')
+      .replaceAll(/<link rel="modulepreload"[^>]*>/g, '')
+      .replace(
+        fontsLink,
+        () => `<noscript>${fontsLink}</noscript><script type="module" ${names}>${afterPaint.text}</script>`,
+      );
+  };
   return {
-    styleHash: style.hash,
+    style,
     write: (page, language, answers, firstView) => {
-      const links = new Set([preloads.get(sentencesOf(language)), page && preloads.get(page.source)]);
+      const sources = [sentencesOf(language), ...(page === null ? [] : [page.source])];
+      const files = [...new Set(sources.flatMap((source) => ahead.get(source) ?? []))];
       const data = `<script type="application/json" id="${firstAnswersId}">${writeJson(answers)}</script>`;
       // Functions, because a replacement text would give `$` in a reply a meaning.
-      return (firstView === '' ? document : hurry(document))
-        .replace('</head>', () => `${[...links].join('')}</head>`)
+      return (firstView === '' ? withFiles : withTop)(files)
         .replace('<html lang="en">', `<html lang="${language}">`)
         .replace('<div id="root"></div>', () => `<div id="root">${firstView}</div>${data}`);
     },
   };
 }
+
+const linkAhead = (address: string): string => `<link rel="modulepreload" crossorigin href="${address}" />`;
+
+/** A page without its answer is not painted: the browser would lay it out twice. */
+const awaitVerdict = `<link rel="expect" href="#${verdictId}" blocking="render" />`;
+
+const linkedStyle = (name: string): RegExp =>
+  new RegExp(`<link rel="stylesheet"[^>]*href="([^"]*/${name}-[^"]*)"[^>]*>`);
 
 /** The match and its one group. @throws when the built document has no such part */
 function findOnce(document: string, part: RegExp): [whole: string, group: string] {

@@ -1,6 +1,6 @@
 import { join } from 'node:path';
 import type { CopyPageFiles } from '#src/features/grower-copy/render-copy-page.ts';
-import { readBuiltFiles, readInlineStyle } from '#server/built-files.ts';
+import { readBuiltFiles, readInlineFile } from '#server/built-files.ts';
 
 /** Sources of what the page fetches: Vite serves them as they are in development, and builds them for production. */
 const sources = {
@@ -8,22 +8,26 @@ const sources = {
   style: 'src/features/grower-copy/copy-page.css',
   script: 'src/features/grower-copy/start-copy-page.tsx',
   fonts: 'src/fonts.css',
+  afterPaint: 'src/start-after-paint.ts',
 };
 
 /**
- * The page's style, and the addresses of what it fetches beside.
+ * The page's style and first script, and the addresses of what it fetches beside.
  * @param clientFolder the built client; null for the sources, which `npm run dev` serves
  * @throws when the build has no such file
  */
 export function findCopyPageFiles(clientFolder: string | null): CopyPageFiles {
-  const addressOf = clientFolder === null ? (source: string) => `/${source}` : readBuiltFiles(clientFolder);
-  return {
-    icon: addressOf(sources.icon),
-    style:
-      clientFolder === null
-        ? { address: addressOf(sources.style) }
-        : readInlineStyle(join(clientFolder, addressOf(sources.style))),
-    script: addressOf(sources.script),
-    fonts: addressOf(sources.fonts),
-  };
+  if (clientFolder === null) {
+    const addressOf = (source: string) => `/${source}`;
+    return { ...nameFiles(addressOf), style: { address: addressOf(sources.style) }, afterPaint: null };
+  }
+  const addressOf = readBuiltFiles(clientFolder);
+  const read = (source: string) => readInlineFile(join(clientFolder, addressOf(source)));
+  return { ...nameFiles(addressOf), style: read(sources.style), afterPaint: read(sources.afterPaint) };
 }
+
+const nameFiles = (addressOf: (source: string) => string) => ({
+  icon: addressOf(sources.icon),
+  script: addressOf(sources.script),
+  fonts: addressOf(sources.fonts),
+});

@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import { buildHeadline, sayHeadline, type HeadlinePart } from '#shared/headline.ts';
+import { verdictId } from '#shared/page-exchange.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { useLanguage } from './use-language.ts';
 
@@ -11,7 +12,11 @@ export function VerdictHeadline({ candidates, currentName }: VerdictHeadlineProp
   const parts = buildHeadline(candidates);
   return (
     // The browser notes when it is first painted: how long a reader waits for the answer is what counts.
-    <p className="max-w-prose text-lg md:text-xl print:text-base" {...{ elementtiming: 'verdict' }}>
+    <p
+      id={verdictId}
+      className="max-w-prose text-lg md:text-xl print:text-base"
+      {...{ elementtiming: 'verdict' }}
+    >
       {parts.map((part) => {
         const key = `${part.key} ${part.names.join()}`;
         return part.isLead ? (

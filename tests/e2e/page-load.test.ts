@@ -1,7 +1,7 @@
 import type { Browser, BrowserContext, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Language, Role } from '#shared/account.ts';
-import { firstAnswersId, languageCookieName, unitCookieName } from '#shared/page-exchange.ts';
+import { firstAnswersId, languageCookieName, unitCookieName, verdictId } from '#shared/page-exchange.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { openBrowser } from '#tests/support/browser.ts';
 import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
@@ -46,12 +46,13 @@ async function readDocument(context: BrowserContext, path: string, headers: Reco
   const reply = await context.request.get(path, { headers });
   const html = await reply.text();
   const [, data = ''] = new RegExp(`id="${firstAnswersId}">(.*?)</script>`, 's').exec(html) ?? [];
-  const preloads = [...html.matchAll(/rel="modulepreload"[^>]*href="\/assets\/([\w-]+)-[\w-]{8}\.js"/g)];
+  const [, ahead = ''] = /data-ahead="(.*?)"/.exec(html) ?? [];
+  const preloads = `${ahead} ${(html.match(/rel="modulepreload"[^>]*/g) ?? []).join(' ')}`;
   return {
     html,
     status: reply.status(),
     keeping: reply.headers()['cache-control'],
-    names: preloads.map(([, name]) => name),
+    names: [...preloads.matchAll(/\/assets\/([\w-]+)-[\w-]{8}\.js/g)].map(([, name]) => name),
     answers: JSON.parse(data) as Record<string, unknown>,
   };
 }
@@ -214,6 +215,21 @@ describe('a first visit', () => {
       expect(asked.filter((path) => path === `/api/weigh-ups/${id}` || path === '/api/catalogue')).toEqual(
         [],
       );
+    }));
+
+  it('names no file that the browser would fetch before the verdict is painted, in a copy neither', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const made = await context.request.post(`/api/weigh-ups/${id}/grower-copies`, {
+        data: { language: 'en' },
+      });
+      for (const path of [`/weigh-ups/${id}`, (await made.json()).path as string]) {
+        const html = await (await context.request.get(path)).text();
+        expect(html).toContain(`id="${verdictId}"`);
+        const named = html.replace(/<noscript>.*?<\/noscript>/gs, '').match(/<[^>]+\s(?:src|rel)="[^>]+>/g);
+        // The icon waits for the whole page by itself, and what is expected is the verdict.
+        expect(named?.map((tag) => /rel="(\w+)"/.exec(tag)?.[1])).toEqual(['icon', 'expect']);
+      }
     }));
 
   it('is whole after the verdict, and an address leads to its section', () =>

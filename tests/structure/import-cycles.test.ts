@@ -1,21 +1,10 @@
-import { existsSync, readdirSync, readFileSync } from 'node:fs';
-import { dirname, join } from 'node:path';
+import { readdirSync } from 'node:fs';
+import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { expect, test } from 'vitest';
+import { listImports } from '#tests/support/import-graph.ts';
 
 const root = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/$/, '');
-
-/** Imports that exist at run time: a cycle of types alone does no harm. */
-const importPattern = /^(?:import|export)\s+(?!type\b)[^;]*?from\s+'([^']+)'|^import\s+'([^']+)'/gm;
-
-function listImports(path: string): string[] {
-  const code = readFileSync(join(root, path), 'utf8');
-  return [...code.matchAll(importPattern)]
-    .map((match) => match[1] ?? match[2] ?? '')
-    .filter((source) => /^[.#]/.test(source))
-    .map((source) => (source.startsWith('#') ? source.slice(1) : join(dirname(path), source)))
-    .filter((target) => /\.(ts|tsx|mjs)$/.test(target) && existsSync(join(root, target)));
-}
 
 /** The first circle found from a file on, as the names along it; null when there is none. */
 function findCycle(path: string, trail: readonly string[], done: Set<string>): string[] | null {

@@ -1,6 +1,7 @@
 import type { ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import { languages } from '#shared/language.ts';
+import { verdictId } from '#shared/page-exchange.ts';
 import { writeUnitParameter } from '#shared/reader-units.ts';
 import { GavelMark } from '#src/components/gavel-mark.tsx';
 import { useReaderUnits } from '#src/components/reader-units-context.tsx';
@@ -34,6 +35,8 @@ export function CopyDocument({ title, files, hasScript, children }: CopyDocument
         ) : (
           <link rel="stylesheet" href={files.style.address} />
         )}
+        {/* A page without its answer is not painted: the browser would lay it out twice. */}
+        {hasScript && <link rel="expect" href={`#${verdictId}`} {...{ blocking: 'render' }} />}
       </head>
       <body>
         <a
@@ -60,11 +63,36 @@ export function CopyDocument({ title, files, hasScript, children }: CopyDocument
         >
           {children}
         </main>
-        {/* After the text, which is read in the system's type face until ours has come: a phone is busy enough until then. */}
-        <link rel="stylesheet" href={files.fonts} />
-        {hasScript && <script type="module" src={files.script} />}
+        <CopyFetches files={files} hasScript={hasScript} />
       </body>
     </html>
+  );
+}
+
+/**
+ * Fonts and script, after the first paint: the text is read in the system's type face until ours has come, and a phone is
+ * busy enough until then.
+ */
+function CopyFetches({ files, hasScript }: Pick<CopyDocumentProps, 'files' | 'hasScript'>) {
+  const { afterPaint, fonts, script } = files;
+  const style = <link rel="stylesheet" href={fonts} />;
+  if (afterPaint === null)
+    return (
+      <>
+        {style}
+        {hasScript && <script type="module" src={script} />}
+      </>
+    );
+  return (
+    <>
+      <noscript>{style}</noscript>
+      <script
+        type="module"
+        data-styles={fonts}
+        data-starts={hasScript ? script : undefined}
+        dangerouslySetInnerHTML={{ __html: afterPaint.text }}
+      />
+    </>
   );
 }
 
