@@ -35,6 +35,9 @@ export default defineConfig({
           name: 'client',
           include: ['tests/client/**/*.test.{ts,tsx}'],
           environment: 'happy-dom',
+          // As above; what a file leaves on the page is cleared away after it.
+          isolate: false,
+          setupFiles: ['tests/client/support/clean-page.ts'],
         },
       },
       {
@@ -47,6 +50,8 @@ export default defineConfig({
           name: 'api',
           include: ['tests/{api,setup}/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts'],
+          // Each file has a database and an application of its own.
+          isolate: false,
         },
       },
       {
@@ -55,6 +60,8 @@ export default defineConfig({
           name: 'e2e',
           include: ['tests/e2e/**/*.test.ts'],
           globalSetup: ['tests/support/database-global-setup.ts', 'tests/support/build-global-setup.ts'],
+          // Each file has a product of its own; they share the browser, in contexts of their own.
+          isolate: false,
           testTimeout: 180_000,
           hookTimeout: 120_000,
         },

@@ -19,44 +19,59 @@ export function beginTestRun() {
   undoAtEnd(async () => rmSync(folder, { recursive: true, force: true }));
   const totals = { passed: 0, failed: 0, skipped: 0 };
   const outcomes = [];
+  let lastWord = Promise.resolve();
 
-  const close = (label, from, { passed, failed, skipped }) => {
+  /** One at a time, so that of two things done at once neither is told in the middle of the other. */
+  const aloud = (work) => {
+    const told = lastWord.then(work);
+    lastWord = told.catch(() => undefined);
+    return told;
+  };
+
+  const close = (label, took, { passed, failed, skipped }) => {
     totals.passed += passed;
     totals.failed += failed;
     totals.skipped += skipped;
-    const time = formatSeconds(performance.now() - from);
+    const time = formatSeconds(took);
     outcomes.push(`  ${failed === 0 ? '✓' : '✗'} ${label} (${time})`);
     console.log(`${failed === 0 ? '✓' : '✗'} ${label} (${time})`);
   };
 
+  /** Tests of some of vitest's projects, counted one by one. */
+  const testAloud = async (label, projects) => {
+    const from = performance.now();
+    console.log(`\n• ${label}`);
+    const summary = join(folder, `${projects.join('-')}.json`);
+    const args = [
+      ...['node_modules/vitest/vitest.mjs', 'run'],
+      ...['--silent=passed-only'],
+      ...projects.map((name) => `--project=${name}`),
+    ];
+    const { code } = await runShown(process.execPath, args, { SUMMARY_FILE: summary });
+    const counts = readCounts(summary);
+    const isUncounted = code !== 0 && counts.failed === 0;
+    close(label, performance.now() - from, { ...counts, failed: counts.failed + (isUncounted ? 1 : 0) });
+  };
+
   return {
     /**
-     * A program that says by its exit code whether all is well. What it prints is shown when it is over, so that two
-     * may run at a time.
+     * A program that says by its exit code whether all is well. What it prints is shown when it is over and nothing
+     * else is being told, so that it may run beside others.
      */
     async check(label, program, args, env = {}) {
       const from = performance.now();
       const { code, printed } = await runShown(program, args, env, 'pipe');
-      console.log(`\n• ${label}`);
-      process.stdout.write(printed);
-      close(label, from, { passed: code === 0 ? 1 : 0, failed: code === 0 ? 0 : 1, skipped: 0 });
+      const took = performance.now() - from;
+      await aloud(() => {
+        console.log(`\n• ${label}`);
+        process.stdout.write(printed);
+        close(label, took, { passed: code === 0 ? 1 : 0, failed: code === 0 ? 0 : 1, skipped: 0 });
+      });
     },
 
-    /** Tests of some of vitest's projects, counted one by one. */
-    async test(label, projects) {
-      const from = performance.now();
-      console.log(`\n• ${label}`);
-      const summary = join(folder, `${projects.join('-')}.json`);
-      const args = [
-        ...['node_modules/vitest/vitest.mjs', 'run'],
-        ...['--silent=passed-only'],
-        ...projects.map((name) => `--project=${name}`),
-      ];
-      const { code } = await runShown(process.execPath, args, { SUMMARY_FILE: summary });
-      const counts = readCounts(summary);
-      const isUncounted = code !== 0 && counts.failed === 0;
-      close(label, from, { ...counts, failed: counts.failed + (isUncounted ? 1 : 0) });
-    },
+    test: (label, projects) => aloud(() => testAloud(label, projects)),
+
+    aloud,
 
     /** Prints what happened and the closing line. @returns {number} the exit code */
     finish(time) {

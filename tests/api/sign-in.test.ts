@@ -1,20 +1,29 @@
-import { verify } from '@node-rs/argon2';
+import type { verify as verifyHash } from '@node-rs/argon2';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test, vi } from 'vitest';
 import { sessions, users } from '#drizzle/schema/accounts.ts';
-import { openApiWorld, testPassword, type ApiWorld } from './api-world.ts';
+import { testPassword, type ApiWorld } from './api-world.ts';
 
-// The real thing, counted.
-vi.mock(import('@node-rs/argon2'), async (load) => {
-  const real = await load();
-  return { ...real, verify: vi.fn(real.verify) };
-});
+/** The real thing, counted. */
+const verify = vi.fn<typeof verifyHash>();
 
 let world: ApiWorld;
 beforeAll(async () => {
+  // Files share the modules that are loaded once: those here are loaded anew, around the one that counts.
+  vi.resetModules();
+  vi.doMock(import('@node-rs/argon2'), async (load) => {
+    const real = await load();
+    verify.mockImplementation(real.verify);
+    return { ...real, verify };
+  });
+  const { openApiWorld } = await import('./api-world.ts');
   world = await openApiWorld('empty');
 });
-afterAll(() => world.close());
+afterAll(async () => {
+  await world.close();
+  vi.doUnmock('@node-rs/argon2');
+  vi.resetModules();
+});
 
 const wrong = { error: { code: 'wrong-credentials' } };
 
@@ -56,13 +65,13 @@ test('a wrong password and an unknown address answer alike, and open nothing', a
 test('an unknown address costs the same work as a wrong password', async () => {
   const { email } = await world.signInAs('advisor');
   const countChecks = async (address: string): Promise<number> => {
-    vi.mocked(verify).mockClear();
+    verify.mockClear();
     await world.visitor().post('/api/session').send({ email: address, password: 'not the password' });
-    return vi.mocked(verify).mock.calls.length;
+    return verify.mock.calls.length;
   };
   expect(await countChecks(email)).toBe(1);
   expect(await countChecks('stranger@example.org')).toBe(1);
-  expect(String(vi.mocked(verify).mock.calls[0]?.[0])).toMatch(/^\$argon2id\$v=19\$m=19456,t=2,p=1\$/);
+  expect(String(verify.mock.calls[0]?.[0])).toMatch(/^\$argon2id\$v=19\$m=19456,t=2,p=1\$/);
 });
 
 test('nobody signed in is no error, and everything else asks to sign in', async () => {

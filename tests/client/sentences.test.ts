@@ -1,12 +1,8 @@
 import { z } from 'zod';
-import { beforeAll, describe, expect, it } from 'vitest';
+import { describe, expect, it } from 'vitest';
 import { errorCodes } from '#shared/error-codes.ts';
 import { moneyAssumptions } from '#shared/money.ts';
-import { changeLanguage, i18n, loadSentences, startI18n } from '#src/i18n.ts';
-
-beforeAll(async () => {
-  await startI18n();
-});
+import { changeLanguage, i18n, loadSentences } from '#src/i18n.ts';
 
 describe('figures in sentences', () => {
   it.each([

@@ -1,28 +1,15 @@
-import type { Browser } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { describe, expect, it } from 'vitest';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import { expectSoundPage, openVisit, signInByFixture, widths } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 describe.each(['en', 'fr'] as const)('an administrator who reads %s', (language) => {
   it.each(widths[language])(
     'creates an advisor, suspends the account and brings it back at %i px',
     async (width) => {
-      const visit = await openVisit(browser, app.url, language, width);
+      const visit = await openVisit(demo.browser, demo.app.url, language, width);
       const { page, context } = visit;
       await signInByFixture(context, 'administrator', language);
       await context.request.patch('/api/me', { data: { language } });
@@ -45,7 +32,7 @@ describe.each(['en', 'fr'] as const)('an administrator who reads %s', (language)
       await expectSoundPage(page);
 
       const signIn = async (): Promise<number> => {
-        const stranger = await browser.newContext({ baseURL: app.url });
+        const stranger = await demo.browser.newContext({ baseURL: demo.app.url });
         const status = (await stranger.request.post('/api/session', { data: { email, password } })).status();
         await stranger.close();
         return status;

@@ -1,8 +1,7 @@
-import type { Browser, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Page } from 'playwright-core';
+import { describe, expect, it } from 'vitest';
 import type { Language } from '#shared/account.ts';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import {
   expectNoSideways,
@@ -12,18 +11,7 @@ import {
   widths,
 } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 const other = (language: Language): Language => (language === 'en' ? 'fr' : 'en');
 
@@ -138,7 +126,7 @@ const verdictWords = (language: Language): RegExp =>
 
 describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
   it.each(widths[language])('goes from signing in to the grower’s phone at %i px', async (width) => {
-    const visit = await openVisit(browser, app.url, language, width);
+    const visit = await openVisit(demo.browser, demo.app.url, language, width);
     const { page } = visit;
     await signIn(page, language);
     const names = await askQuestion(page, language);
@@ -154,7 +142,7 @@ describe.each(['en', 'fr'] as const)('an advisor who reads %s', (language) => {
     const link = await handOver(page, language);
     await expectSoundPage(page);
 
-    const phone = await openVisit(browser, app.url, other(language), 360);
+    const phone = await openVisit(demo.browser, demo.app.url, other(language), 360);
     await phone.page.goto(link);
     await phone.page.getByText('Odile Varre').first().waitFor();
     expect(await phone.page.getAttribute('html', 'lang')).toBe(other(language));

@@ -1,22 +1,9 @@
-import type { Browser } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { describe, expect, it } from 'vitest';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import { expectSoundPage, openVisit, signInByFixture, widths } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 /** Worked example D of the trade's training texts: rice, t/ha, nitrogen 0 to 120, four blocks; error MS 0.163, LSD 0.621. */
 const nitrogen = {
@@ -46,7 +33,7 @@ describe.each(['en', 'fr'] as const)('an agronomist who reads %s', (language) =>
   it.each(widths[language])(
     'brings a file in, reads its analysis, publishes and withdraws it at %i px',
     async (width) => {
-      const visit = await openVisit(browser, app.url, language, width);
+      const visit = await openVisit(demo.browser, demo.app.url, language, width);
       const { page } = visit;
       await signInByFixture(visit.context, 'agronomist', language);
       await page.goto('/desk');

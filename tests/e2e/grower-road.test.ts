@@ -1,8 +1,7 @@
-import type { APIRequestContext, Browser, BrowserContext, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { APIRequestContext, BrowserContext, Page } from 'playwright-core';
+import { beforeAll, describe, expect, it } from 'vitest';
 import { languages, type Language } from '#shared/language.ts';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import {
   expectNoSideways,
@@ -12,20 +11,12 @@ import {
   widths,
 } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
+const demo = openDemoForFile();
 let office: BrowserContext;
 
 beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-  office = await browser.newContext({ baseURL: app.url });
+  office = await demo.browser.newContext({ baseURL: demo.app.url });
   await signInByFixture(office, 'advisor', 'en');
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
 });
 
 type Made = { path: string; copy: { id: string } };
@@ -50,8 +41,8 @@ describe.each(languages)('a grower who reads %s', (language) => {
 
   it('reads and opens everything with scripts off', async () => {
     const { path } = await makeCopy(office.request, language);
-    const phone = await browser.newContext({
-      baseURL: app.url,
+    const phone = await demo.browser.newContext({
+      baseURL: demo.app.url,
       javaScriptEnabled: false,
       viewport: { width: 360, height: 740 },
     });
@@ -91,7 +82,7 @@ describe.each(languages)('a grower who reads %s', (language) => {
     'tries an own price, in other units and the other language, at %i px',
     async (width) => {
       const { path, copy } = await makeCopy(office.request, language);
-      const visit = await openVisit(browser, app.url, language, width);
+      const visit = await openVisit(demo.browser, demo.app.url, language, width);
       const { page } = visit;
       const complaints: string[] = [];
       page.on('console', (message) => {
@@ -126,7 +117,8 @@ describe.each(languages)('a grower who reads %s', (language) => {
       expect(await page.getByText(/^(Your own number|Votre chiffre)\s*:/).count()).toBe(0);
       await expectNoSideways(page);
       // The server never hears of the price, nor anybody else of anything.
-      for (const url of asked) expect([new URL(url).origin, url.includes('400.5')]).toEqual([app.url, false]);
+      for (const url of asked)
+        expect([new URL(url).origin, url.includes('400.5')]).toEqual([demo.app.url, false]);
       expect(complaints).toEqual([]);
 
       await office.request.delete(`/api/grower-copies/${copy.id}`);

@@ -1,9 +1,8 @@
-import type { Browser, BrowserContext, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { BrowserContext, Page } from 'playwright-core';
+import { describe, expect, it } from 'vitest';
 import type { Language } from '#shared/account.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import {
   expectNoSideways,
@@ -13,18 +12,7 @@ import {
   signInByFixture,
 } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 /** The demo's weigh-up as the server has it now. */
 async function readSaved(context: BrowserContext): Promise<WeighUp> {
@@ -39,7 +27,7 @@ type Table = { language: Language; context: BrowserContext; page: Page; saved: (
 async function sit(width: number, work: (table: Table) => Promise<void>): Promise<void> {
   // The demo's weigh-up is the English-speaking advisor's.
   const language = 'en';
-  const { page, context, close } = await openVisit(browser, app.url, language, width);
+  const { page, context, close } = await openVisit(demo.browser, demo.app.url, language, width);
   await signInByFixture(context, 'advisor', language);
   // On a phone the farm's part is folded away unless the address asks for it.
   await page.goto(`/weigh-ups/${(await readSaved(context)).id}#farm`);

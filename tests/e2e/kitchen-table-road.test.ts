@@ -1,27 +1,20 @@
-import type { Browser, Page } from 'playwright-core';
-import { afterAll, beforeAll, expect, it } from 'vitest';
+import type { Page } from 'playwright-core';
+import { afterAll, expect, it } from 'vitest';
 import type { Language } from '#shared/account.ts';
 import { openMailSink } from '#server/setup/mail-sink.mjs';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { readPdf } from '#tests/support/read-pdf.ts';
 import { say } from '#tests/support/say.ts';
 import { expectSoundPage, openVisit, signInByFixture } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
 let sink: Awaited<ReturnType<typeof openMailSink>>;
 
-beforeAll(async () => {
-  sink = await openMailSink();
-  app = await startDemoApp({ SMTP_URL: sink.url, MAIL_FROM: 'gavelrow@example.org' });
-  browser = await openBrowser();
-});
+// The last to be closed, as it is asked for first.
+afterAll(() => sink?.close());
 
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-  await sink?.close();
+const demo = openDemoForFile(async () => {
+  sink = await openMailSink();
+  return { SMTP_URL: sink.url, MAIL_FROM: 'gavelrow@example.org' };
 });
 
 const mine: Language = 'en';
@@ -136,7 +129,7 @@ async function readOnPhone(page: Page, link: string, names: readonly string[]): 
 
 /** What a phone shows that runs no scripts. */
 async function readWithoutScripts(link: string): Promise<string[]> {
-  const context = await browser.newContext({
+  const context = await demo.browser.newContext({
     javaScriptEnabled: false,
     viewport: { width: 360, height: 740 },
   });
@@ -151,7 +144,7 @@ async function readWithoutScripts(link: string): Promise<string[]> {
 async function withdrawTrial(weighUpId: string, advisor: Page): Promise<{ site: string; season: number }> {
   const read = await advisor.request.get(`/api/weigh-ups/${weighUpId}`);
   const { trialId, siteName, season } = (await read.json()).result.trials[0];
-  const { context, close } = await openVisit(browser, app.url, mine, 1280);
+  const { context, close } = await openVisit(demo.browser, demo.app.url, mine, 1280);
   await signInByFixture(context, 'agronomist', mine);
   const { trial } = await (await context.request.get(`/api/desk/trials/${trialId}`)).json();
   const reply = await context.request.post(`/api/desk/trials/${trialId}/withdrawals`, {
@@ -163,14 +156,14 @@ async function withdrawTrial(weighUpId: string, advisor: Page): Promise<{ site: 
 }
 
 it('from the question at the table to a corrected copy on the grower’s phone', async () => {
-  const { page, context, close } = await openVisit(browser, app.url, mine, 1280);
+  const { page, context, close } = await openVisit(demo.browser, demo.app.url, mine, 1280);
   await signInByFixture(context, 'advisor', mine);
   const names = await ask(page);
   const weighUpId = await weigh(page);
   await editPrice(page);
   const link = await handOver(page);
 
-  const phone = await openVisit(browser, app.url, theirs, 360);
+  const phone = await openVisit(demo.browser, demo.app.url, theirs, 360);
   const frozen = await readOnPhone(phone.page, link, names);
   expect(await readWithoutScripts(link)).toEqual(frozen);
   const pdf = await readPdf(await (await phone.context.request.get(`${link}/pdf`)).body());

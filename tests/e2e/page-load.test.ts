@@ -1,25 +1,13 @@
-import type { Browser, BrowserContext, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { BrowserContext, Page } from 'playwright-core';
+import { describe, expect, it } from 'vitest';
 import type { Language, Role } from '#shared/account.ts';
 import { firstAnswersId, languageCookieName, unitCookieName, verdictId } from '#shared/page-exchange.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { say } from '#tests/support/say.ts';
 import { openVisit, signInByFixture } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 /** Works as somebody of that role, or as nobody. */
 async function visitAs(
@@ -27,7 +15,7 @@ async function visitAs(
   language: Language,
   work: (context: BrowserContext) => Promise<void>,
 ): Promise<void> {
-  const { context, close } = await openVisit(browser, app.url, language, 360);
+  const { context, close } = await openVisit(demo.browser, demo.app.url, language, 360);
   if (role !== null) await signInByFixture(context, role, language);
   await work(context);
   await close();
@@ -134,8 +122,8 @@ describe('the top of a weigh-up’s page', () => {
 
   /** Where the page's name and the verdict stand, once the client has rendered the page or where it never does. */
   async function placeTop(language: Language, width: number, hasScripts: boolean, path: string) {
-    const context = await browser.newContext({
-      ...{ baseURL: app.url, viewport: { width, height: 740 }, javaScriptEnabled: hasScripts },
+    const context = await demo.browser.newContext({
+      ...{ baseURL: demo.app.url, viewport: { width, height: 740 }, javaScriptEnabled: hasScripts },
       locale: language === 'en' ? 'en-CA' : 'fr-CA',
     });
     await signInByFixture(context, 'advisor', 'en');

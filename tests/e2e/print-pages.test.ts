@@ -1,25 +1,13 @@
-import type { Browser, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { Page } from 'playwright-core';
+import { describe, expect, it } from 'vitest';
 import { languages, type Language } from '#shared/language.ts';
 import type { WeighUp, WeighUpLine, WeighUpResult } from '#shared/weigh-up.ts';
-import { openBrowser } from '#tests/support/browser.ts';
-import { type DemoApp, startDemoApp } from '#tests/support/demo-app.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
 import { readPdf } from '#tests/support/read-pdf.ts';
 import { say } from '#tests/support/say.ts';
 import { openVisit, signInByFixture } from '#tests/support/visit.ts';
 
-let app: DemoApp;
-let browser: Browser;
-
-beforeAll(async () => {
-  app = await startDemoApp();
-  browser = await openBrowser();
-});
-
-afterAll(async () => {
-  await browser?.close();
-  await app?.close();
-});
+const demo = openDemoForFile();
 
 /** Of each, sizes in points. */
 const papers = { A4: [595, 842], Letter: [612, 792] } as const;
@@ -63,7 +51,7 @@ async function readShown(page: Page): Promise<{ cautions: string[]; trials: stri
 
 describe('pages on paper', () => {
   it.each(languages)('prints a weigh-up whole and without its forms: %s', async (language) => {
-    const { page, close } = await openVisit(browser, app.url, language, 1280);
+    const { page, close } = await openVisit(demo.browser, demo.app.url, language, 1280);
     await openFirstWeighUp(page, language);
     const shown = await readShown(page);
     expect(shown.cautions.length).toBeGreaterThan(3);
@@ -98,7 +86,7 @@ describe('pages on paper', () => {
   });
 
   it.each(languages)('prints a grower copy whole, no script running: %s', async (language) => {
-    const visit = await openVisit(browser, app.url, language, 1280);
+    const visit = await openVisit(demo.browser, demo.app.url, language, 1280);
     const id = await openFirstWeighUp(visit.page, language);
     const { cautions, trials } = await readShown(visit.page);
     const made = await visit.page.request.post(`/api/weigh-ups/${id}/grower-copies`, {
@@ -106,7 +94,7 @@ describe('pages on paper', () => {
     });
     const { path } = (await made.json()) as { path: string };
     await visit.close();
-    const still = await browser.newContext({ baseURL: app.url, javaScriptEnabled: false });
+    const still = await demo.browser.newContext({ baseURL: demo.app.url, javaScriptEnabled: false });
     const page = await still.newPage();
     await page.goto(path);
     const candidates = await page.locator('article h2').allTextContents();
@@ -114,7 +102,7 @@ describe('pages on paper', () => {
     await still.close();
     for (const text of [...cautions, ...trials, ...candidates]) expect(words).toContain(bare(text));
     // The first sheet is the whole answer, and says how to find the page it was printed from.
-    for (const text of [...cautions, ...candidates, say(language, 'copy:question'), `${app.url}${path}`])
+    for (const text of [...cautions, ...candidates, say(language, 'copy:question'), `${demo.app.url}${path}`])
       expect(sheets[0]).toContain(bare(text));
     // Every candidate's story is unfolded, and no sheet is begun without need.
     const stories = words.split(bare(say(language, 'verdicts:story.trials'))).length - 1;
@@ -125,7 +113,7 @@ describe('pages on paper', () => {
   });
 
   it('breaks a weigh-up of eight candidates where it must, and says so on the sheet', async () => {
-    const { page, close } = await openVisit(browser, app.url, 'fr', 1280);
+    const { page, close } = await openVisit(demo.browser, demo.app.url, 'fr', 1280);
     const id = await openFirstWeighUp(page, 'fr');
     const { weighUp } = (await (await page.request.get(`/api/weigh-ups/${id}`)).json()) as {
       weighUp: WeighUp;

@@ -1,22 +1,12 @@
 import type { ReactNode } from 'react';
 import type { Queries } from '@testing-library/dom';
-import { cleanup, configure, render, type RenderResult } from '@testing-library/react';
+import { render, type RenderResult } from '@testing-library/react';
 import { QueryClientProvider } from '@tanstack/react-query';
 import { MemoryRouter } from 'react-router-dom';
-import { afterEach, beforeAll } from 'vitest';
 import type { Language } from '#shared/account.ts';
-import { changeLanguage, i18n, startI18n } from '#src/i18n.ts';
+import { changeLanguage, i18n } from '#src/i18n.ts';
 import type { Namespace } from '#src/locale-resources.ts';
 import { makeQueryClient } from '#src/query-client.ts';
-
-// A loaded machine takes its time; a test is not about how long a page takes to appear.
-configure({ asyncUtilTimeout: 10_000 });
-
-beforeAll(async () => {
-  await startI18n();
-});
-
-afterEach(cleanup);
 
 /** Renders a part of the client with its real sentences, in the language asked for. */
 export async function renderClient(
