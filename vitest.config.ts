@@ -1,5 +1,6 @@
 import react from '@vitejs/plugin-react';
 import { defineConfig } from 'vitest/config';
+import { LongestFirst } from './tests/support/longest-first.ts';
 import { SummaryReporter } from './tests/support/summary-reporter.ts';
 
 /** Held to the world outside: R, published tables, simulation. Slower than the rest, so not in the fast loop. */
@@ -14,6 +15,7 @@ const referenceChecks = [
 export default defineConfig({
   test: {
     maxWorkers: 2,
+    sequence: { sequencer: LongestFirst },
     reporters: ['default', new SummaryReporter()],
     testTimeout: 20_000,
     hookTimeout: 60_000,

@@ -7,6 +7,7 @@ import { say } from '#tests/support/say.ts';
 import { createTestDatabase, type TestDatabase } from '#tests/support/test-database.ts';
 import { buildWorld, testPassword, type ApiWorld, type SignedIn } from './api-world.ts';
 import { openDatabaseProxy, type DatabaseProxy } from './database-proxy.ts';
+import { askSmallQuestion } from './small-question.ts';
 import { foundSmallWorld, idIn, type SmallWorld } from './small-world.ts';
 import { waitForBlocked } from './wait-for-blocked.ts';
 
@@ -45,27 +46,7 @@ async function withPool(
 
 const away = { error: { code: 'database-away' } };
 
-const question = (growerName: string) => ({
-  cropId: small.cropId,
-  regionId: small.regionIds.north,
-  seasonFrom: 2024,
-  seasonTo: 2025,
-  growerName,
-  farmName: 'Long Furlong',
-  areaHectares: 42,
-  currentVarietyId: idIn(small.varietyIds, 'Anchor'),
-  candidateIds: [idIn(small.varietyIds, 'Birch')],
-  assumptions: {
-    currency: 'CAD',
-    priceLow: 220,
-    priceMiddle: 260,
-    priceHigh: 300,
-    haulagePerTonne: 15,
-    dryingPerTonne: 5,
-    seedCosts: {},
-    priceSheetDate: null,
-  },
-});
+const question = (growerName: string) => askSmallQuestion(small, { seasonFrom: 2024, growerName });
 
 test('while the database is away every answer is 503 with when to try again; afterwards all is as before', async () => {
   await advisor.agent.get('/api/catalogue').expect(200);

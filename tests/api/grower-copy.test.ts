@@ -6,13 +6,12 @@ import { presentSentences } from '#server/grower-copy/copy-sentences.ts';
 import { type CopyPageData, readWords } from '#tests/support/read-copy-page.ts';
 import { say } from '#tests/support/say.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
+import { askSmallQuestion } from './small-question.ts';
 import {
   foundSmallWorld,
   idIn,
-  noise,
-  publishPlanted,
+  publishLevelSeasons,
   republish,
-  varietyNames,
   withdraw,
   type SmallWorld,
 } from './small-world.ts';
@@ -20,49 +19,21 @@ import {
 let world: ApiWorld;
 let small: SmallWorld;
 let advisor: SignedIn;
-const trialIds: string[] = [];
+let trialIds: string[];
 beforeAll(async () => {
   world = await openApiWorld('empty');
   const { db } = world.database;
   small = await foundSmallWorld(db);
-  for (const season of [2022, 2023, 2024, 2025])
-    trialIds.push(
-      await publishPlanted(db, small, {
-        site: 'elm',
-        season,
-        entries: varietyNames,
-        yieldOf: (entry, rep) => 5 + 0.4 * noise(rep, season, entry.charCodeAt(0)),
-      }),
-    );
+  trialIds = await publishLevelSeasons(db, small, [2022, 2023, 2024, 2025]);
   advisor = await world.signInAs('advisor', { regionIds: [small.regionIds.north] });
 });
 afterAll(() => world.close());
 
 async function makeWeighUp(person: SignedIn = advisor, growerName = 'Ada Quern'): Promise<string> {
-  const variety = (name: string): string => idIn(small.varietyIds, name);
+  const candidateIds = ['Birch', 'Cedar'].map((name) => idIn(small.varietyIds, name));
   const reply = await person.agent
     .post('/api/weigh-ups')
-    .send({
-      cropId: small.cropId,
-      regionId: small.regionIds.north,
-      seasonFrom: 2022,
-      seasonTo: 2025,
-      growerName,
-      farmName: 'Long Furlong',
-      areaHectares: 42,
-      currentVarietyId: variety('Anchor'),
-      candidateIds: [variety('Birch'), variety('Cedar')],
-      assumptions: {
-        currency: 'CAD',
-        priceLow: 220,
-        priceMiddle: 260,
-        priceHigh: 300,
-        haulagePerTonne: 15,
-        dryingPerTonne: 5,
-        seedCosts: {},
-        priceSheetDate: null,
-      },
-    })
+    .send(askSmallQuestion(small, { seasonFrom: 2022, growerName, candidateIds }))
     .expect(200);
   return reply.body.weighUp.id;
 }

@@ -10,7 +10,8 @@ import { claimDueMail } from '#server/mail/outbox-store.ts';
 import { deliverMail, sendDueMails, startMailWorker } from '#server/mail/outbox-worker.ts';
 import { openMailSink } from '#server/setup/mail-sink.mjs';
 import { buildWorld, openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
-import { foundSmallWorld, idIn, noise, publishPlanted, varietyNames } from './small-world.ts';
+import { askSmallQuestion } from './small-question.ts';
+import { foundSmallWorld, publishLevelSeasons } from './small-world.ts';
 
 const from = 'gavelrow@example.org';
 const publicUrl = 'https://trials.example.org';
@@ -27,37 +28,11 @@ beforeAll(async () => {
   world = await openApiWorld('empty', { SMTP_URL: sink.url, MAIL_FROM: from, PUBLIC_URL: `${publicUrl}/` });
   const { db } = world.database;
   const small = await foundSmallWorld(db);
-  for (const season of [2023, 2024, 2025])
-    await publishPlanted(db, small, {
-      site: 'elm',
-      season,
-      entries: varietyNames,
-      yieldOf: (entry, rep) => 5 + 0.4 * noise(rep, season, entry.charCodeAt(0)),
-    });
+  await publishLevelSeasons(db, small, [2023, 2024, 2025]);
   advisor = await world.signInAs('advisor', { regionIds: [small.regionIds.north] });
   const reply = await advisor.agent
     .post('/api/weigh-ups')
-    .send({
-      cropId: small.cropId,
-      regionId: small.regionIds.north,
-      seasonFrom: 2023,
-      seasonTo: 2025,
-      growerName: 'Élise <Quern>',
-      farmName: 'Long & Furlong',
-      areaHectares: 42,
-      currentVarietyId: idIn(small.varietyIds, 'Anchor'),
-      candidateIds: [idIn(small.varietyIds, 'Birch')],
-      assumptions: {
-        currency: 'CAD',
-        priceLow: 220,
-        priceMiddle: 260,
-        priceHigh: 300,
-        haulagePerTonne: 15,
-        dryingPerTonne: 5,
-        seedCosts: {},
-        priceSheetDate: null,
-      },
-    })
+    .send(askSmallQuestion(small, { growerName: 'Élise <Quern>', farmName: 'Long & Furlong' }))
     .expect(200);
   weighUpId = reply.body.weighUp.id;
 });

@@ -1,5 +1,6 @@
 import type { WeighUp, WeighUpInput } from '#shared/weigh-up.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
+import { askSmallQuestion, fullPrices } from './small-question.ts';
 import {
   foundSmallWorld,
   idIn,
@@ -50,33 +51,12 @@ export async function openRecordWorld(environment: NodeJS.ProcessEnv = {}): Prom
   const advisor = await world.signInAs('advisor', { regionIds });
   const other = await world.signInAs('advisor', { regionIds });
   const variety = (name: string) => idIn(small.varietyIds, name);
-  const question = (change: Partial<WeighUpInput> = {}): WeighUpInput => ({
-    cropId: small.cropId,
-    regionId: small.regionIds.north,
-    seasonFrom: 2023,
-    seasonTo: 2025,
-    growerName: 'Ada Quern',
-    farmName: 'Long Furlong',
-    areaHectares: 42,
-    currentVarietyId: variety('Anchor'),
-    candidateIds: [variety('Birch'), variety('Dogwood')],
-    assumptions: {
-      currency: 'CAD',
-      priceLow: 220,
-      priceMiddle: 260,
-      priceHigh: 300,
-      haulagePerTonne: 15,
-      dryingPerTonne: 5,
-      seedCosts: Object.fromEntries(
-        varietyNames.map((name, i) => [
-          variety(name),
-          { seedPerHectare: 60 + 6 * i, treatmentPerHectare: 0, royaltyPerHectare: 0 },
-        ]),
-      ),
-      priceSheetDate: '2026-10-15',
-    },
-    ...change,
-  });
+  const question = (change: Partial<WeighUpInput> = {}): WeighUpInput =>
+    askSmallQuestion(small, {
+      candidateIds: [variety('Birch'), variety('Dogwood')],
+      assumptions: fullPrices(small),
+      ...change,
+    });
   const make = async (change: Partial<WeighUpInput> = {}): Promise<WeighUp> =>
     (await advisor.agent.post('/api/weigh-ups').send(question(change)).expect(200)).body.weighUp;
   return { world, small, advisor, other, variety, trialIds, question, make };

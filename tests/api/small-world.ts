@@ -212,6 +212,25 @@ export async function publishPlanted(
   return trialId;
 }
 
+/** Publishes a trial at Elm in each season, in which all varieties yield alike but for the plots' noise. */
+export async function publishLevelSeasons(
+  db: Database,
+  world: SmallWorld,
+  seasons: readonly number[],
+): Promise<string[]> {
+  const trialIds: string[] = [];
+  for (const season of seasons)
+    trialIds.push(
+      await publishPlanted(db, world, {
+        site: 'elm',
+        season,
+        entries: varietyNames,
+        yieldOf: (entry, rep) => 5 + 0.4 * noise(rep, season, entry.charCodeAt(0)),
+      }),
+    );
+  return trialIds;
+}
+
 /** Publishes the working copy again, or withdraws the trial. */
 export async function republish(db: Database, trialId: string): Promise<void> {
   await publishTrial(db, {

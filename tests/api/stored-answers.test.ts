@@ -7,6 +7,7 @@ import { usualVariances } from '#drizzle/schema/usual-variances.ts';
 import { storedAnswers } from '#drizzle/schema/weigh-ups.ts';
 import type { WeighUpInput, WeighUpResult } from '#shared/weigh-up.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
+import { askSmallQuestion } from './small-question.ts';
 import {
   foundSmallWorld,
   idIn,
@@ -31,21 +32,10 @@ const planted = (site: string, season: number): PlantedTrial => ({
     5 + 0.3 * noise(entry.charCodeAt(0), season) + 0.3 * noise(rep, season, entry.length),
 });
 
-const question = (): WeighUpInput => ({
-  cropId: small.cropId,
-  regionId: small.regionIds.north,
-  seasonFrom: 2023,
-  seasonTo: 2025,
-  growerName: 'Ada Quern',
-  farmName: 'Long Furlong',
-  areaHectares: 42,
-  currentVarietyId: idIn(small.varietyIds, 'Anchor'),
-  candidateIds: ['Birch', 'Cedar'].map((name) => idIn(small.varietyIds, name)),
-  assumptions: {
-    ...{ currency: 'CAD', priceLow: 220, priceMiddle: 260, priceHigh: 300 },
-    ...{ haulagePerTonne: 15, dryingPerTonne: 5, seedCosts: {}, priceSheetDate: null },
-  },
-});
+const question = (): WeighUpInput =>
+  askSmallQuestion(small, {
+    candidateIds: ['Birch', 'Cedar'].map((name) => idIn(small.varietyIds, name)),
+  });
 
 beforeAll(async () => {
   world = await openApiWorld('empty');

@@ -2,9 +2,9 @@ import { randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { places, sites } from '#drizzle/schema/geography.ts';
-import type { MoneyAssumptions } from '#shared/money.ts';
 import type { CandidateResult, WeighUpInput, WeighUpResult } from '#shared/weigh-up.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
+import { askSmallQuestion } from './small-question.ts';
 import {
   foundSmallWorld,
   idIn,
@@ -61,30 +61,7 @@ afterAll(() => world.close());
 
 const variety = (name: string): string => idIn(small.varietyIds, name);
 
-const money: MoneyAssumptions = {
-  currency: 'CAD',
-  priceLow: 220,
-  priceMiddle: 260,
-  priceHigh: 300,
-  haulagePerTonne: 15,
-  dryingPerTonne: 5,
-  seedCosts: {},
-  priceSheetDate: null,
-};
-
-const question = (change: Partial<WeighUpInput> = {}): WeighUpInput => ({
-  cropId: small.cropId,
-  regionId: small.regionIds.north,
-  seasonFrom: 2023,
-  seasonTo: 2025,
-  growerName: 'Ada Quern',
-  farmName: 'Long Furlong',
-  areaHectares: 42,
-  currentVarietyId: variety('Anchor'),
-  candidateIds: [variety('Birch')],
-  assumptions: money,
-  ...change,
-});
+const question = (change: Partial<WeighUpInput> = {}): WeighUpInput => askSmallQuestion(small, change);
 
 async function weigh(change: Partial<WeighUpInput> = {}): Promise<WeighUpResult> {
   const made = await advisor.agent.post('/api/weigh-ups').send(question(change)).expect(200);

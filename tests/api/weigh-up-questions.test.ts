@@ -1,14 +1,8 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { weighUpCandidates, weighUps } from '#drizzle/schema/weigh-ups.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
-import {
-  foundSmallWorld,
-  idIn,
-  noise,
-  publishPlanted,
-  varietyNames,
-  type SmallWorld,
-} from './small-world.ts';
+import { askSmallQuestion } from './small-question.ts';
+import { foundSmallWorld, idIn, publishLevelSeasons, type SmallWorld } from './small-world.ts';
 
 let world: ApiWorld;
 let small: SmallWorld;
@@ -16,13 +10,7 @@ let advisor: SignedIn;
 beforeAll(async () => {
   world = await openApiWorld('empty');
   small = await foundSmallWorld(world.database.db);
-  for (const season of [2024, 2025])
-    await publishPlanted(world.database.db, small, {
-      site: 'elm',
-      season,
-      entries: varietyNames,
-      yieldOf: (entry, rep) => 5 + 0.4 * noise(rep, season, entry.charCodeAt(0)),
-    });
+  await publishLevelSeasons(world.database.db, small, [2024, 2025]);
   advisor = await world.signInAs('advisor', { regionIds: [small.regionIds.north] });
 });
 afterAll(() => world.close());
@@ -31,25 +19,11 @@ const variety = (name: string): string => idIn(small.varietyIds, name);
 const unknownId = '00000000-0000-4000-8000-000000000000';
 
 const question = (change: Record<string, unknown> = {}) => ({
-  cropId: small.cropId,
-  regionId: small.regionIds.north,
-  seasonFrom: 2024,
-  seasonTo: 2025,
-  growerName: ' Ada Quern ',
-  farmName: 'Long Furlong',
-  areaHectares: 42,
-  currentVarietyId: variety('Anchor'),
-  candidateIds: [variety('Dogwood'), variety('Birch')],
-  assumptions: {
-    currency: 'CAD',
-    priceLow: 220,
-    priceMiddle: 260,
-    priceHigh: 300,
-    haulagePerTonne: 15,
-    dryingPerTonne: 5,
-    seedCosts: {},
-    priceSheetDate: null,
-  },
+  ...askSmallQuestion(small, {
+    seasonFrom: 2024,
+    growerName: ' Ada Quern ',
+    candidateIds: [variety('Dogwood'), variety('Birch')],
+  }),
   ...change,
 });
 

@@ -7,6 +7,7 @@ import { weighMoney } from '#shared/partial-budget.ts';
 import type { CandidateResult, WeighUpInput, WeighUpResult } from '#shared/weigh-up.ts';
 import { combineTrials, defaultUsualVariances } from '#server/stats/engine.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
+import { askSmallQuestion, fullPrices } from './small-question.ts';
 import {
   foundSmallWorld,
   idIn,
@@ -65,35 +66,14 @@ afterAll(() => world.close());
 
 const variety = (name: string): string => idIn(small.varietyIds, name);
 
-const money = (): MoneyAssumptions => ({
-  currency: 'CAD',
-  priceLow: 220,
-  priceMiddle: 260,
-  priceHigh: 300,
-  haulagePerTonne: 15,
-  dryingPerTonne: 5,
-  seedCosts: Object.fromEntries(
-    varietyNames.map((name, i) => [
-      variety(name),
-      { seedPerHectare: 60 + 6 * i, treatmentPerHectare: 0, royaltyPerHectare: 0 },
-    ]),
-  ),
-  priceSheetDate: '2026-10-15',
-});
+const money = (): MoneyAssumptions => fullPrices(small);
 
-const question = (change: Partial<WeighUpInput> = {}): WeighUpInput => ({
-  cropId: small.cropId,
-  regionId: small.regionIds.north,
-  seasonFrom: 2023,
-  seasonTo: 2025,
-  growerName: 'Ada Quern',
-  farmName: 'Long Furlong',
-  areaHectares: 42,
-  currentVarietyId: variety('Anchor'),
-  candidateIds: [variety('Birch'), variety('Cedar'), variety('Dogwood')],
-  assumptions: money(),
-  ...change,
-});
+const question = (change: Partial<WeighUpInput> = {}): WeighUpInput =>
+  askSmallQuestion(small, {
+    candidateIds: [variety('Birch'), variety('Cedar'), variety('Dogwood')],
+    assumptions: money(),
+    ...change,
+  });
 
 async function weigh(change: Partial<WeighUpInput> = {}): Promise<WeighUpResult> {
   const made = await advisor.agent.post('/api/weigh-ups').send(question(change)).expect(200);

@@ -1,6 +1,6 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { AppRoutes } from '#src/routes.tsx';
 import { readNext } from '#src/paths.ts';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -50,8 +50,6 @@ function stubServer(start: { isSignedIn: boolean }) {
     languageOfAccount: () => language,
   };
 }
-
-afterEach(() => vi.unstubAllGlobals());
 
 async function fillIn(password: string) {
   await userEvent.type(await screen.findByLabelText('E-mail'), 'ines@example.org');

@@ -1,6 +1,6 @@
 import { screen } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { FoldedSection, SectionLink } from '#src/components/folded-section.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 
@@ -19,8 +19,6 @@ function stubScreen(isRoomy: boolean): void {
 }
 
 const isOpen = () => screen.getByRole('region', { name: 'The farm' }).querySelector('details')?.open;
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('a folded section', () => {
   it('is open where there is room, and a line under its heading on a phone', async () => {

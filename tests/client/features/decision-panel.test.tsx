@@ -1,7 +1,7 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useQueryClient } from '@tanstack/react-query';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { Decision, EarlierDecision, SaidOfCandidate } from '#shared/decision.ts';
 import { DecisionPanel } from '#src/features/weigh-up/decision-panel.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -88,8 +88,6 @@ const open = async (language: 'en' | 'fr' = 'en', hasUnsaved = false) => {
   );
   return user;
 };
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('the decision on a weigh-up', () => {
   it('is recorded under the revision on the page', async () => {

@@ -1,6 +1,6 @@
 import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { FarmPanel } from '#src/features/weigh-up/farm-panel.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -55,8 +55,6 @@ const nearest = () =>
   within(screen.getByLabelText('Trials that answer')).getByRole<HTMLOptionElement>('option', {
     name: 'Of the sites nearest the farm',
   });
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('the farm of a weigh-up', () => {
   it('takes a place with its normals, and saves the whole question with it', async () => {

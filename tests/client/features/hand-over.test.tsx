@@ -1,6 +1,6 @@
 import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { Language, Me } from '#shared/account.ts';
 import type { CopyMail, GrowerCopyLine } from '#shared/grower-copy.ts';
 import { HandOver } from '#src/features/weigh-up/hand-over.tsx';
@@ -67,8 +67,6 @@ const { timeZone } = Intl.DateTimeFormat().resolvedOptions();
 
 const open = (language: Language = 'en') =>
   renderClient(<HandOver weighUpId={weighUpId} hasUnsaved={false} />, { language, namespaces: ['weigh-up'] });
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('handing a copy over', () => {
   it('makes a copy, and shows its link as text and as a code that a camera reads', async () => {

@@ -1,6 +1,6 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { NewWeighUpPage } from '#src/features/weigh-up/new-weigh-up-page.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
 import {
@@ -59,8 +59,6 @@ const open = (query: string, language: 'en' | 'fr' = 'en') =>
     at: `/weigh-ups/new?crop=pea&region=north&current=${idOf(1)}&${query}`,
     namespaces: ['weigh-up', 'record', 'verdicts', 'cautions', 'drawings', 'errors'],
   });
-
-afterEach(() => vi.unstubAllGlobals());
 
 const gone = 'Anvil stood in none of the trials that answer now, so it is not weighed.';
 

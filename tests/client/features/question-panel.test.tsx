@@ -2,7 +2,7 @@ import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useQuery } from '@tanstack/react-query';
 import { useLocation, useSearchParams } from 'react-router-dom';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { questionKinds } from '#shared/question-kind.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { PairCandidateField } from '#src/features/weigh-up/pair-candidate-field.tsx';
@@ -15,8 +15,6 @@ import { renderClient } from '#tests/client/support/render-client.tsx';
 import { buildCandidate, buildResult, buildWeighUp, idOf } from '#tests/client/support/weigh-up-factory.ts';
 
 type Saved = { revision: number; weighUp: Record<string, unknown> };
-
-afterEach(() => vi.unstubAllGlobals());
 
 /** Answers like the server: holds one weigh-up, and refuses a save over another revision. */
 function serve(held: WeighUp): { saved: Saved[]; saveElsewhere: (change: Partial<WeighUp>) => void } {

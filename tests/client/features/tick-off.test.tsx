@@ -1,6 +1,6 @@
 import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
+import { beforeAll, describe, expect, it, vi } from 'vitest';
 import type { UsedTrial, WeighUp } from '#shared/weigh-up.ts';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { Toaster } from '#src/components/toaster.tsx';
@@ -63,8 +63,6 @@ beforeAll(() => {
     this.open = true;
   };
 });
-afterEach(() => vi.unstubAllGlobals());
-
 const path = `/api/weigh-ups/${buildWeighUp().id}/ticked-off`;
 
 describe('ticking a trial off', () => {

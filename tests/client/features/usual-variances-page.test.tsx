@@ -1,6 +1,6 @@
 import { screen, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
-import { afterEach, expect, test, vi } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import type { UsualEstimate } from '#shared/usual-variance.ts';
 import { UsualVariancesPage } from '#src/features/trial-desk/usual-variances-page.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -78,8 +78,6 @@ async function open(role: 'agronomist' | 'advisor', before: UsualEstimate[]) {
     namespaces: ['desk', 'errors'],
   });
 }
-
-afterEach(() => vi.unstubAllGlobals());
 
 test('the default stands with its source until something is estimated, in the unit and in % of the mean', async () => {
   await open('advisor', []);

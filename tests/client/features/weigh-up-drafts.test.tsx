@@ -4,7 +4,7 @@ import userEvent from '@testing-library/user-event';
 import { useState, type ReactNode } from 'react';
 import { useForm } from 'react-hook-form';
 import { useLocation } from 'react-router-dom';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { DraftContent, WeighUpDraft } from '#shared/weigh-up-draft.ts';
 import { DraftList } from '#src/features/weigh-up/draft-list.tsx';
 import { toFormDraft, useDraftSaving } from '#src/features/weigh-up/draft-saving.ts';
@@ -101,8 +101,6 @@ function SignOut() {
 const options = { at: '/weigh-ups/new?crop=pea', namespaces: ['weigh-up', 'record', 'errors'] as const };
 const render = (part: ReactNode) =>
   renderClient(part, { at: options.at, namespaces: [...options.namespaces] });
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('a draft', () => {
   it('is begun a while after the last edit, once, and named in the address', async () => {

@@ -2,7 +2,7 @@ import { screen, waitFor, within } from '@testing-library/react';
 import type { Me } from '#shared/account.ts';
 import userEvent from '@testing-library/user-event';
 import { Route, Routes } from 'react-router-dom';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { onSessionExpired } from '#src/api-client.ts';
 import { paths } from '#src/paths.ts';
 import { WeighUpPage } from '#src/features/weigh-up/weigh-up-page.tsx';
@@ -99,8 +99,6 @@ const open = (query = '') =>
   );
 
 const money = () => screen.findByRole('region', { name: 'Your numbers' });
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('the money panel', () => {
   it('reckons the return anew while a price is typed, and saves under the revision it was read at', async () => {

@@ -1,7 +1,7 @@
 import { screen, waitFor } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useLocation } from 'react-router-dom';
-import { afterEach, describe, expect, it, vi } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import type { WeighUpLine } from '#shared/weigh-up.ts';
 import { Toaster } from '#src/components/toaster.tsx';
 import { WeighUpsPage } from '#src/features/weigh-up/weigh-ups-page.tsx';
@@ -67,8 +67,6 @@ const open = async (at = '/weigh-ups') => {
 
 const growers = () => screen.queryAllByRole('rowheader').map((cell) => cell.textContent.split('Tallow')[0]);
 const address = () => screen.getByLabelText('address').textContent;
-
-afterEach(() => vi.unstubAllGlobals());
 
 describe('the list of weigh-ups', () => {
   it('leaves the archived ones out, and tells what was decided', async () => {

@@ -12,12 +12,14 @@ beforeAll(async () => {
   else await startI18n();
 });
 
-afterEach(cleanup);
+afterEach(() => {
+  cleanup();
+  vi.unstubAllGlobals();
+});
 
 /** What a browser keeps, and what hangs on the page besides what is rendered: the next file finds none of it. */
 afterAll(() => {
   vi.useRealTimers();
-  vi.unstubAllGlobals();
   localStorage.clear();
   sessionStorage.clear();
   for (const cookie of document.cookie.split('; '))
