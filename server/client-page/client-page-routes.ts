@@ -9,7 +9,7 @@ import type { PageDocument } from './page-document.ts';
 import { clientPages, everyPageAsks, signInPage, type PageNeeds } from './page-needs.ts';
 import { readCookie } from './read-cookie.ts';
 
-/** A page waits no longer than this for its answers, ms: it can ask for them by itself, and say what is the matter. */
+/** A page waits no longer than this for its session, and then for its answers, ms: it can ask for them by itself, and say what is the matter. */
 const longestWait = 3000;
 
 /**
@@ -25,7 +25,7 @@ export function addClientPages(
   session: readonly RequestHandler[],
 ): void {
   const send = async (page: PageNeeds | null, request: Request, response: Response): Promise<void> => {
-    const answers = await withinWait(collectAnswers(api, session, page, request, response));
+    const isAsked = await withinWait(openSession(session, request, response).then(() => true));
     const isSignedIn = request.user !== undefined;
     // What was answered to a person is nobody else's, and not theirs any more once they have signed out and go back.
     response
@@ -33,40 +33,55 @@ export function addClientPages(
       .vary('Cookie')
       .vary('Accept-Language');
     const language = readerLanguage(request);
+    const begin = document.begin(language);
+    response.type('html');
+    // A browser makes itself ready for a page as soon as that begins: it need not wait for the answers to do so.
+    if (isSignedIn) {
+      response.write(begin);
+      response.flush();
+    }
+    // Who asks is not known where the session could not be read, and then nothing is answered.
+    const answers = (isAsked && (await withinWait(collectAnswers(api, page, request, response)))) || {};
     const isKnownStranger = !isSignedIn && everyPageAsks.path in answers;
     const opened = isKnownStranger && page !== null ? signInPage : page;
-    response
-      .type('html')
-      .send(document.write(opened, language, answers, tryFirstView(request, answers, language)));
+    const rest = document.goOn(opened, language, answers, tryFirstView(request, answers, language));
+    if (isSignedIn) response.end(rest);
+    else response.send(begin + rest);
   };
 
   for (const page of clientPages) app.get(page.path, (request, response) => send(page, request, response));
   app.get('/{*path}', (request, response) => send(null, request, response));
 }
 
-/** What came in time; nothing where it did not, or where it failed: the client then asks, and meets the failure itself. */
-async function withinWait(answers: Promise<FirstAnswers>): Promise<FirstAnswers> {
+/** What came in time; undefined where it did not, or where it failed: the client then asks, and meets the failure itself. */
+async function withinWait<T>(answer: Promise<T>): Promise<T | undefined> {
   let timer: NodeJS.Timeout | undefined;
-  const tooLate = new Promise<FirstAnswers>((resolve) => {
-    timer = setTimeout(() => resolve({}), longestWait);
+  const tooLate = new Promise<undefined>((resolve) => {
+    timer = setTimeout(() => resolve(undefined), longestWait);
   });
   try {
-    return await Promise.race([answers, tooLate]);
+    return await Promise.race([answer, tooLate]);
   } catch {
-    return {};
+    return undefined;
   } finally {
     clearTimeout(timer);
   }
 }
 
+async function openSession(
+  session: readonly RequestHandler[],
+  request: Request,
+  response: Response,
+): Promise<void> {
+  for (const handler of session) await pass(handler, request, response);
+}
+
 async function collectAnswers(
   api: Router,
-  session: readonly RequestHandler[],
   page: PageNeeds | null,
   request: Request,
   response: Response,
 ): Promise<FirstAnswers> {
-  for (const handler of session) await pass(handler, request, response);
   const asked = [everyPageAsks, ...(request.user === undefined ? [] : (page?.asks ?? []))];
   const answers = await Promise.all(
     asked.map(async (contract) => {

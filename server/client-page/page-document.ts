@@ -15,12 +15,15 @@ type Manifest = Record<string, { file: string; imports?: string[] }>;
 export type PageDocument = {
   /** What a page with a first view has in itself. */
   style: InlineFile;
+  /** Its first part, which hangs on nothing but the language. */
+  begin: (language: Language) => string;
   /**
+   * The rest.
    * @param page whose code and sentences are fetched along with what every page needs; null for none
    * @param answers replies that the page finds in itself instead of asking for them
    * @param firstView HTML that is seen until the client has rendered the page; may be empty
    */
-  write: (page: PageNeeds | null, language: Language, answers: FirstAnswers, firstView: string) => string;
+  goOn: (page: PageNeeds | null, language: Language, answers: FirstAnswers, firstView: string) => string;
 };
 
 /**
@@ -30,10 +33,10 @@ export type PageDocument = {
  */
 export function openPageDocument(clientFolder: string): PageDocument {
   const addressOf = readBuiltFiles(clientFolder);
-  const document = readFileSync(join(clientFolder, 'index.html'), 'utf8').replace(
-    `href="/${fontsSource}"`,
-    `href="${addressOf(fontsSource)}"`,
-  );
+  const whole = readFileSync(join(clientFolder, 'index.html'), 'utf8');
+  const titleAt = whole.indexOf('<title>');
+  const begin = whole.slice(0, titleAt);
+  const document = whole.slice(titleAt).replace(`href="/${fontsSource}"`, `href="${addressOf(fontsSource)}"`);
   const [styleLink, styleAddress] = findOnce(document, linkedStyle('base'));
   const [entryScript, entryAddress] = findOnce(
     document,
@@ -72,14 +75,16 @@ export function openPageDocument(clientFolder: string): PageDocument {
   };
   return {
     style,
-    write: (page, language, answers, firstView) => {
+    begin: (language) => begin.replace('<html lang="en">', `<html lang="${language}">`),
+    goOn: (page, language, answers, firstView) => {
       const sources = [sentencesOf(language), ...(page === null ? [] : [page.source])];
       const files = [...new Set(sources.flatMap((source) => ahead.get(source) ?? []))];
       const data = `<script type="application/json" id="${firstAnswersId}">${writeJson(answers)}</script>`;
       // Functions, because a replacement text would give `$` in a reply a meaning.
-      return (firstView === '' ? withFiles : withTop)(files)
-        .replace('<html lang="en">', `<html lang="${language}">`)
-        .replace('<div id="root"></div>', () => `<div id="root">${firstView}</div>${data}`);
+      return (firstView === '' ? withFiles : withTop)(files).replace(
+        '<div id="root"></div>',
+        () => `<div id="root">${firstView}</div>${data}`,
+      );
     },
   };
 }

@@ -87,6 +87,18 @@ describe('the document of a page', () => {
     });
   });
 
+  it('begins before its answers are read, in the language of whoever asks', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const cookie = (await context.cookies()).map(({ name, value }) => `${name}=${value}`).join('; ');
+      const headers = { cookie, 'accept-encoding': 'identity' };
+      const reply = await fetch(`${demo.app.url}/weigh-ups`, { headers });
+      const chunks: string[] = [];
+      for await (const chunk of reply.body ?? []) chunks.push(new TextDecoder().decode(chunk));
+      expect(chunks[0]).toMatch(/^<!doctype html>\s*<html lang="en">/);
+      expect(chunks[0]).not.toContain('</head>');
+      expect(chunks.join('')).toContain(`id="${firstAnswersId}"`);
+    }));
+
   it('waits for no weighing: an answer that is not stored yet is left to the page', () =>
     visitAs('advisor', 'en', async (context) => {
       const weighUp = await readDemoWeighUp(context);
