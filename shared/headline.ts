@@ -18,8 +18,8 @@ export type HeadlinePart = {
   names: readonly string[];
   /** Least and greatest chance that those named pay; null where nothing is said of it. */
   chances: { least: number; greatest: number } | null;
-  /** Most site-years among the candidates named. */
-  siteYears: number;
+  /** Fewest and most site-years among the candidates named. */
+  siteYears: { least: number; most: number };
   /** The sentence that stands first and bold. */
   isLead: boolean;
 };
@@ -50,6 +50,11 @@ function spanChances(members: readonly CandidateResult[]): HeadlinePart['chances
   return chances.length === 0 ? null : { least: Math.min(...chances), greatest: Math.max(...chances) };
 }
 
+function spanSiteYears(members: readonly CandidateResult[]): HeadlinePart['siteYears'] {
+  const counts = members.map(({ siteYears }) => siteYears);
+  return { least: Math.min(...counts), most: Math.max(...counts) };
+}
+
 function describe(
   key: GroupKey | AheadKey,
   members: readonly CandidateResult[],
@@ -61,7 +66,7 @@ function describe(
       key,
       names: members.map((member) => member.varietyName),
       chances: isLead ? spanChances(members) : null,
-      siteYears: Math.max(...members.map((member) => member.siteYears)),
+      siteYears: spanSiteYears(members),
       isLead,
     },
   ];
@@ -73,7 +78,13 @@ function describe(
  */
 export function buildHeadline(candidates: readonly CandidateResult[]): HeadlinePart[] {
   const ahead = candidates.filter((candidate) => candidate.verdict === 'ahead');
-  const noneAhead: HeadlinePart = { key: 'noneAhead', names: [], chances: null, siteYears: 0, isLead: true };
+  const noneAhead: HeadlinePart = {
+    key: 'noneAhead',
+    names: [],
+    chances: null,
+    siteYears: { least: 0, most: 0 },
+    isLead: true,
+  };
   const lead = aheadOrder.flatMap((key) =>
     describe(
       key,
@@ -94,6 +105,7 @@ export function buildHeadline(candidates: readonly CandidateResult[]): HeadlineP
 type HeadlineKey =
   | `verdicts:headline.${HeadlinePart['key']}`
   | 'verdicts:trialCount'
+  | 'verdicts:trialSpan'
   | `verdicts:seasons.${'fewer' | 'whole' | 'more' | 'span'}`;
 
 /** Turns a part of the headline into its sentence. */
@@ -108,6 +120,9 @@ export function sayHeadline(
     count: names.length,
     current,
     seasons: chances === null ? '' : saySeasonSpan(chances, say),
-    trials: say('verdicts:trialCount', { count: siteYears }),
+    trials:
+      siteYears.least === siteYears.most
+        ? say('verdicts:trialCount', { count: siteYears.most })
+        : say('verdicts:trialSpan', { from: siteYears.least, to: siteYears.most }),
   });
 }

@@ -42,6 +42,14 @@ export type TraitWords =
       range: string | null;
     };
 
+/** Which way a trait is better: what its verdicts, and the counts of a rating, are to be read by; null where neither is. */
+export function sayDirection(
+  { direction }: Pick<Trait, 'direction'>,
+  say: Say<`verdicts:traits.${'lower' | 'higher'}IsBetter`>,
+): string | null {
+  return direction === 'neutral' ? null : say(`verdicts:traits.${direction}IsBetter`);
+}
+
 type TraitKey = `verdicts:traits.${'none' | 'median' | 'neverRated' | 'rated' | 'fromTo'}`;
 
 /** Tells one trait of a candidate against the current variety. */

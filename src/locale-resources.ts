@@ -16,7 +16,7 @@ import type verdicts from '#locales/en/verdicts.json';
 import type weighUp from '#locales/en/weigh-up.json';
 
 /** Every namespace with the shape of its English sentences: this is what makes an unknown key a compile error. */
-type LocaleResources = {
+export type LocaleResources = {
   accounts: typeof accounts;
   analysis: typeof analysis;
   cautions: typeof cautions;

@@ -1,12 +1,16 @@
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
-import { findOtherTraits, nameTrait, tellTrait, verdictOn } from '#shared/trait-sentences.ts';
+import { findOtherTraits, nameTrait, sayDirection, tellTrait, verdictOn } from '#shared/trait-sentences.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { VerdictMark } from './beam.tsx';
 import { DataTable, type Column } from './data-table.tsx';
+import { TraitCards } from './trait-cards.tsx';
 import { useFormat } from './use-format.ts';
 import { useLanguage } from './use-language.ts';
+
+/** With more candidates a table is wider than the page that it stands on. */
+const mostColumns = 5;
 
 type OtherTraitsProps = {
   candidates: readonly CandidateResult[];
@@ -16,7 +20,7 @@ type OtherTraitsProps = {
 
 /** Each further trait with its own verdict; ratings as medians and counts. On a phone every trait becomes a card. */
 export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProps) {
-  const { t } = useTranslation('verdicts');
+  const { t } = useTranslation(['verdicts']);
   const language = useLanguage();
   const format = useFormat();
   const trialsOf = (trait: Trait) =>
@@ -24,33 +28,38 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
   const rows = findOtherTraits(traits, candidates);
   const verdicts = candidates.flatMap((candidate) => candidate.traits);
   const level = verdicts.find((verdict) => verdict.gap)?.gap?.region.level;
+  const isTable = candidates.length <= mostColumns;
+  const nameOf = (trait: Trait) => (
+    <>
+      {nameTrait(trait, language)}
+      <span
+        className={`text-sm font-normal text-faded ${isTable ? 'block @max-xl:ml-2 @max-xl:inline' : 'ml-2'}`}
+      >
+        {[t('trialCount', { count: trialsOf(trait) }), sayDirection(trait, t)]
+          .filter((words) => words !== null)
+          .join(' · ')}
+      </span>
+    </>
+  );
+  const cellOf = (candidate: CandidateResult, trait: Trait) => (
+    <TraitCell candidate={candidate} trait={trait} currentName={currentName} />
+  );
   const columns: Column<Trait>[] = [
-    {
-      id: 'trait',
-      header: t('traits.trait'),
-      cell: (trait) => (
-        <>
-          {nameTrait(trait, language)}
-          <span className="block text-sm font-normal text-faded @max-xl:ml-2 @max-xl:inline">
-            {t('trialCount', { count: trialsOf(trait) })}
-          </span>
-        </>
-      ),
-    },
+    { id: 'trait', header: t('traits.trait'), cell: nameOf },
     ...candidates.map((candidate): Column<Trait> => ({
       id: candidate.varietyId,
       header: candidate.varietyName,
-      cell: (trait) => <TraitCell candidate={candidate} trait={trait} currentName={currentName} />,
+      cell: (trait) => cellOf(candidate, trait),
     })),
   ];
   return (
-    // Up to five candidates the table fits onto one sheet, and stays whole there.
-    <section
-      className={`flex flex-col gap-3 print:gap-1 ${candidates.length > 5 ? '' : 'print:break-inside-avoid'}`}
-    >
+    // A table fits onto one sheet, and stays whole there.
+    <section className={`flex flex-col gap-3 print:gap-1 ${isTable ? 'print:break-inside-avoid' : ''}`}>
       <h2>{t('traits.title', { current: currentName })}</h2>
       {rows.length === 0 ? (
         <p className="text-faded">{t('traits.empty')}</p>
+      ) : !isTable ? (
+        <TraitCards traits={rows} candidates={candidates} nameOf={nameOf} cellOf={cellOf} />
       ) : (
         <DataTable
           caption={t('traits.caption', { current: currentName })}

@@ -3,7 +3,7 @@ import { spanScale } from '#shared/gap-scale.ts';
 import { gapRowOf } from '#shared/gap-rows.ts';
 import { verdictTilts } from '#shared/beam-tilt.ts';
 import { tellStory } from '#shared/story-sentences.ts';
-import { findOtherTraits, nameTrait, tellTrait, verdictOn } from '#shared/trait-sentences.ts';
+import { findOtherTraits, nameTrait, sayDirection, tellTrait, verdictOn } from '#shared/trait-sentences.ts';
 import type { CandidateResult, TrialGap } from '#shared/weigh-up.ts';
 import {
   drawFigure,
@@ -168,7 +168,8 @@ function addTraits(
     {
       header: say('verdicts:traits.trait'),
       share: 32,
-      cell: ({ trait }) => [nameTrait(trait, language)],
+      cell: ({ trait }) =>
+        [nameTrait(trait, language), sayDirection(trait, say)].filter((words) => words !== null),
     },
     {
       header: say('drawings:gapStrip.gap'),

@@ -1,5 +1,6 @@
 import { moneyTilts, verdictTilts, type BeamTilt } from '#shared/beam-tilt.ts';
 import { gapRowOf, sayGapRow, type GapRow } from '#shared/gap-rows.ts';
+import { sayPulledBackGap } from '#shared/pulled-back-gap.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import { sayPaysIn } from '#shared/say-seasons.ts';
 import type { CandidateResult, WeighUp } from '#shared/weigh-up.ts';
@@ -80,6 +81,7 @@ function setRow(flow: PageFlow, candidate: CandidateResult, weighUp: WeighUp, vo
     beside.push(setWords(doc, say('verdicts:cautionCount', { count: cautions.length }), inks.breakEven));
   }
   const hasMoney = money !== null && verdict !== 'thin';
+  const pulledBack = sayPulledBackGap(candidate, voice.unit, voice.decimals, say, write);
   const figures = [
     hasMoney
       ? {
@@ -95,6 +97,7 @@ function setRow(flow: PageFlow, candidate: CandidateResult, weighUp: WeighUp, vo
     ...(hasMoney && money.chancePays !== null
       ? [setWords(doc, sayPaysIn(money.chancePays, say), inks.ink)]
       : []),
+    ...(pulledBack === null ? [] : [setWords(doc, pulledBack, inks.ink)]),
     setWords(doc, say('verdicts:siteYears', { count: siteYears }), inks.faded),
   ];
   const heights = [

@@ -14,6 +14,7 @@ import { Skeleton } from '#src/components/skeleton.tsx';
 import { TextInput } from '#src/components/text-input.tsx';
 import { showToast } from '#src/components/toaster.tsx';
 import { useLanguage } from '#src/components/use-language.ts';
+import { fieldIssues } from '#src/field-issues.ts';
 import { paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -59,7 +60,7 @@ function AccountForm({ catalogue }: { catalogue: Catalogue }) {
   const fieldErrorText = useFieldErrorText();
   const pageLanguage = useLanguage();
   const form = useForm<NewAccountInput>({
-    resolver: zodResolver(newAccountInput),
+    resolver: zodResolver(newAccountInput, fieldIssues),
     defaultValues: {
       name: '',
       email: '',

@@ -1,6 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
 import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
+import { sayPulledBackGap } from '#shared/pulled-back-gap.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
@@ -82,6 +83,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
   const { money, verdict, siteYears } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
   const paysIn = usePaysIn();
+  const pulledBack = sayPulledBackGap(candidate, unit, decimals, t, format);
   return (
     <article className="border-t-2 border-ink py-4 print:contents">
       <div className="print:grid print:break-inside-avoid print:grid-cols-[11.5rem_minmax(0,1fr)_13.5rem] print:items-center print:gap-x-4 print:border-t print:border-rule">
@@ -140,6 +142,7 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
           {hasMoney && money.chancePays !== null && (
             <p className="hidden text-right text-sm print:col-start-3 print:row-start-3 print:block print:self-start">
               {paysIn(money.chancePays)}
+              {pulledBack !== null && <span className="block">{pulledBack}</span>}
             </p>
           )}
         </div>
@@ -173,13 +176,14 @@ type WorthLinesProps = Pick<CopyCandidateProps, 'candidate' | 'weighUp' | 'decim
 
 /** From which gap it pays, how often, and what that is per hectare and on the farm. */
 function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {
-  const { t } = useTranslation('copy');
+  const { t } = useTranslation(['copy', 'verdicts']);
   const format = useFormat();
   const seasons = useSeasons();
   const { money, verdict } = candidate;
   if (verdict === 'thin') return <p>{t('cantSay')}</p>;
   if (money === null) return <p>{t('noSeedCost')}</p>;
   const { currency, priceMiddle } = weighUp.assumptions;
+  const pulledBack = sayPulledBackGap(candidate, unit, decimals, t, format);
   return (
     <>
       {money.chancePays !== null && (
@@ -197,6 +201,7 @@ function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {
           total: format.money(money.returnPerHectare * weighUp.areaHectares, currency, { isSigned: true }),
           area: format.area(weighUp.areaHectares),
         })}
+        {pulledBack !== null && <span className="block">({pulledBack})</span>}
       </p>
     </>
   );

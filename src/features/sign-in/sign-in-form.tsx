@@ -8,6 +8,7 @@ import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
 import { TextInput } from '#src/components/text-input.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 
@@ -19,7 +20,7 @@ export function SignInForm({ defaultEmail = '', onSignedIn }: SignInFormProps) {
   const errorText = useErrorText();
   const fieldErrorText = useFieldErrorText();
   const form = useForm<SignInInput>({
-    resolver: zodResolver(signInInput),
+    resolver: zodResolver(signInInput, fieldIssues),
     defaultValues: { email: defaultEmail, password: '' },
   });
   const entry = useMutation({

@@ -11,6 +11,7 @@ import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
 import { TextInput } from '#src/components/text-input.tsx';
 import { showToast } from '#src/components/toaster.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { deskTrialQuery, takeDeskTrial } from './desk-queries.ts';
@@ -52,7 +53,10 @@ export function ExclusionForm({ trial, plots, onDone }: ExclusionFormProps) {
   const { t } = useTranslation('desk');
   const errorText = useErrorText();
   const fieldErrorText = useFieldErrorText();
-  const form = useForm<ReasonForm>({ resolver: zodResolver(reasonForm), defaultValues: { reason: '' } });
+  const form = useForm<ReasonForm>({
+    resolver: zodResolver(reasonForm, fieldIssues),
+    defaultValues: { reason: '' },
+  });
   const change = useExclusion(trial.id, () => {
     form.reset();
     onDone();

@@ -13,6 +13,7 @@ import { PageHeading } from '#src/components/page-heading.tsx';
 import { Progress } from '#src/components/progress.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { showToast } from '#src/components/toaster.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -65,7 +66,7 @@ function ImportForm({ catalogue }: { catalogue: Catalogue }) {
   const [file, setFile] = useState<File | null>(null);
   const [hasTried, setTried] = useState(false);
   const form = useForm<ImportDraft, unknown, ImportFields>({
-    resolver: zodResolver(importForm),
+    resolver: zodResolver(importForm, fieldIssues),
     defaultValues: { crop: '', site: '', season: '', name: '', trait: 'yield', unit: 'as-stored' },
   });
   // What was checked is not what would be stored once anything is changed.

@@ -13,6 +13,7 @@ import { ErrorState } from '#src/components/error-state.tsx';
 import { Field } from '#src/components/field.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
 import { showToast } from '#src/components/toaster.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { useErrorText } from '#src/use-error-text.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { takeDeskTrial } from './desk-queries.ts';
@@ -48,7 +49,10 @@ function StepDialog({ step, trial, onClose }: StepDialogProps) {
   const errorText = useErrorText();
   const fieldErrorText = useFieldErrorText();
   const client = useQueryClient();
-  const form = useForm<ReasonForm>({ resolver: zodResolver(reasonForm), defaultValues: { reason: '' } });
+  const form = useForm<ReasonForm>({
+    resolver: zodResolver(reasonForm, fieldIssues),
+    defaultValues: { reason: '' },
+  });
   const taking = useMutation({
     mutationFn: ({ reason }: ReasonForm) =>
       callApi(step === 'publish' ? publishTrial : withdrawTrial, {

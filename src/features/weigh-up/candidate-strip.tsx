@@ -1,6 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import { Link, useSearchParams } from 'react-router-dom';
 import { gapRowOf } from '#shared/gap-rows.ts';
+import { sayPulledBackGap } from '#shared/pulled-back-gap.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { CandidateStory, type StoryProps } from '#src/components/candidate-story.tsx';
 import { CautionList } from '#src/components/caution-list.tsx';
@@ -34,7 +35,7 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
       id: candidate.varietyId,
       ...gapRowOf(candidate),
       head: <RowToggle candidate={candidate} isOpen={isOpen} />,
-      aside: <RowAside candidate={candidate} currency={money.currency} />,
+      aside: <RowAside candidate={candidate} currency={money.currency} decimals={decimals} />,
       ...(isOpen && !isPrinting && { below: <OpenRow {...story} /> }),
     };
   });
@@ -88,12 +89,15 @@ function RowToggle({ candidate, isOpen }: { candidate: CandidateResult; isOpen: 
   );
 }
 
-function RowAside({ candidate, currency }: { candidate: CandidateResult; currency: string }) {
-  const { t } = useTranslation('verdicts');
+type RowAsideProps = { candidate: CandidateResult; currency: string; decimals: number };
+
+function RowAside({ candidate, currency, decimals }: RowAsideProps) {
+  const { t } = useTranslation(['verdicts']);
   const format = useFormat();
   const paysIn = usePaysIn();
   const { money, verdict, siteYears, cautions } = candidate;
   const hasMoney = money !== null && verdict !== 'thin';
+  const pulledBack = sayPulledBackGap(candidate, unit, decimals, t, format);
   return (
     <>
       <span className="block text-lg font-bold whitespace-nowrap">
@@ -104,6 +108,7 @@ function RowAside({ candidate, currency }: { candidate: CandidateResult; currenc
       {hasMoney && money.chancePays !== null && (
         <span className="block text-sm">{paysIn(money.chancePays)}</span>
       )}
+      {pulledBack !== null && <span className="block text-sm">{pulledBack}</span>}
       <span className="block text-sm text-faded">{t('siteYears', { count: siteYears })}</span>
       {cautions.length > 0 && (
         <span className="block text-sm text-break-even">{t('cautionCount', { count: cautions.length })}</span>

@@ -8,6 +8,7 @@ import { Field } from '#src/components/field.tsx';
 import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { decisionForm, hasArea, toDecisionDraft, type DecisionDraft } from './decision-form.ts';
 
@@ -30,7 +31,7 @@ export function DecisionFormFields(props: DecisionFormFieldsProps) {
   const { t } = useTranslation(['record', 'weigh-up', 'common']);
   const fieldErrorText = useFieldErrorText();
   const form = useForm<DecisionDraft, unknown, DecisionInput>({
-    resolver: zodResolver(decisionForm),
+    resolver: zodResolver(decisionForm, fieldIssues),
     defaultValues: toDecisionDraft(decision, weighUp),
   });
   const { errors } = form.formState;

@@ -13,6 +13,7 @@ import { FoldedSection } from '#src/components/folded-section.tsx';
 import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { showToast } from '#src/components/toaster.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import type { ChosenFarm } from './chosen-farm.ts';
 import { farmForm, toFarmDraft, toInputWithFarm, type FarmDraft, type FarmForm } from './farm-form.ts';
@@ -34,7 +35,7 @@ type FarmPanelProps = {
 export function FarmPanel({ weighUp, hasUnsaved }: FarmPanelProps) {
   const { t } = useTranslation('weigh-up');
   const form = useForm<FarmDraft, unknown, FarmForm>({
-    resolver: zodResolver(farmForm),
+    resolver: zodResolver(farmForm, fieldIssues),
     defaultValues: toFarmDraft(weighUp),
   });
   const saved = useSavingBase(weighUp, form.formState.isDirty, toFarmDraft);

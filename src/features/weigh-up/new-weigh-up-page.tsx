@@ -1,4 +1,4 @@
-import { useEffect, useState } from 'react';
+import { useEffect, useRef, useState, type RefObject } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { useForm, type UseFormReturn } from 'react-hook-form';
@@ -21,6 +21,7 @@ import { PageHeading } from '#src/components/page-heading.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { useLanguage } from '#src/components/use-language.ts';
 import { WeighingProgress } from '#src/components/weighing-progress.tsx';
+import { fieldIssues } from '#src/field-issues.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
@@ -95,7 +96,7 @@ function QuestionForm({ catalogue, opened: found }: QuestionFormProps) {
   const draft = readQuestion(search, catalogue);
   const question = toCandidateQuestion(draft);
   const form = useForm<NewWeighUpDraft, unknown, NewWeighUpForm>({
-    resolver: zodResolver(newWeighUpForm),
+    resolver: zodResolver(newWeighUpForm, fieldIssues),
     defaultValues: toFormDraft(opened?.content),
   });
   useEffect(() => typePrices(form, opened?.content), [form, opened]);
@@ -140,6 +141,16 @@ function useSheetPrices(form: NewWeighUpFormApi, defaults: MoneyAssumptions | nu
   }, [form, defaults]);
 }
 
+/** Leads to what comes before everything else that is wrong, with each try: the button stands a screen further down. */
+function useFocusOnTry(form: NewWeighUpFormApi): RefObject<HTMLParagraphElement | null> {
+  const place = useRef<HTMLParagraphElement>(null);
+  const { submitCount } = form.formState;
+  useEffect(() => {
+    if (submitCount > 0) place.current?.focus();
+  }, [submitCount]);
+  return place;
+}
+
 /** Said here already: what follows from the choice of trials and from where the farm lies. The others wait for the answer. */
 const placeCautions: ReadonlySet<CautionCode> = new Set([
   ...(['no-trial-in-region', 'trials-from-elsewhere', 'farm-far', 'farm-unlike-sites'] as const),
@@ -155,6 +166,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
   const cautionItems = useCautionItems();
   const defaults = candidates.data?.assumptions ?? null;
   useSheetPrices(form, defaults);
+  const missing = useFocusOnTry(form);
   if (candidates.isPending) return <WeighingProgress lines={8} />;
   if (candidates.isError) return <QueryErrorState query={candidates} />;
   const { result } = candidates.data;
@@ -202,7 +214,7 @@ function CandidatesAndFarm({ draft, question, form, kept }: CandidatesAndFarmPro
           />
         )}
         {form.formState.isSubmitted && !isChosen && (
-          <p role="alert" className="font-semibold text-stop">
+          <p ref={missing} tabIndex={-1} role="alert" className="font-semibold text-stop">
             {t('new.chooseOne')}
           </p>
         )}

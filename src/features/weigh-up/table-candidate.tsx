@@ -1,5 +1,6 @@
 import { useTranslation } from 'react-i18next';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import { sayPulledBackGap } from '#shared/pulled-back-gap.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { VerdictMark } from '#src/components/beam.tsx';
 import { useFormat } from '#src/components/use-format.ts';
@@ -61,13 +62,15 @@ function GapLine({ candidate: { gap, verdict, trials }, currentName: current }: 
 }
 
 /** The return at the middle price, how often it pays, and on how many site-years all of this rests. */
-function WorthLine({ candidate: { money: result, verdict, siteYears }, money }: TableCandidateProps) {
+function WorthLine({ candidate, money }: TableCandidateProps) {
+  const { gap, money: result, verdict, siteYears } = candidate;
   const { t } = useTranslation(['weigh-up', 'verdicts']);
   const format = useFormat();
   const paysIn = usePaysIn();
   const hasMoney = result !== null && verdict !== 'thin';
   const rest = [
     hasMoney && result.chancePays !== null ? paysIn(result.chancePays) : null,
+    sayPulledBackGap(candidate, unit, format.decimals(gap?.se ?? null, unit), t, format),
     t('verdicts:siteYears', { count: siteYears }),
   ].filter((part) => part !== null);
   return (

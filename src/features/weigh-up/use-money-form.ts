@@ -4,6 +4,7 @@ import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
 import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
+import { fieldIssues } from '#src/field-issues.ts';
 import { moneyForm, toAssumptions, toMoneyDraft, type MoneyDraft, type MoneyForm } from './money-form.ts';
 
 export type MoneyFormApi = UseFormReturn<MoneyDraft, unknown, MoneyForm>;
@@ -30,7 +31,7 @@ export function useMoneyForm(
   const [crop] = useState(cropNow);
   const [base, setBase] = useState(weighUp);
   const form = useForm<MoneyDraft, unknown, MoneyForm>({
-    resolver: zodResolver(moneyForm),
+    resolver: zodResolver(moneyForm, fieldIssues),
     defaultValues: toMoneyDraft(weighUp, crop),
     mode: 'onChange',
   });

@@ -31,6 +31,15 @@ const rating = (rated: TraitVerdict['rated']): TraitVerdict => ({
   rated,
 });
 
+const manyRated = (count: number) =>
+  Array.from({ length: count }, (_, n) =>
+    buildCandidate({
+      varietyId: idOf(10 + n),
+      varietyName: `Variety ${n + 1}`,
+      traits: [rating({ trials: 6, lower: n, higher: 0 })],
+    }),
+  );
+
 const show = (traits: TraitVerdict[]) =>
   renderClient(
     <OtherTraits
@@ -49,6 +58,27 @@ describe('other traits', () => {
     expect(text()).toContain('median 2.5 (Brindle: 4)');
     expect(text()).toContain('lower in 4, higher in 1 of 6 trials');
     expect(screen.queryByText(/Really|Neck|Not settled/)).toBeNull();
+  });
+
+  it('say which way a trait is better, by which its counts and verdicts are read', async () => {
+    await show([rating({ trials: 6, lower: 4, higher: 1 })]);
+    expect(text()).toContain('lodging (1–9)6 trials · lower is better');
+  });
+
+  it.each([
+    [5, 1],
+    [6, 0],
+    [8, 0],
+  ])('of %i candidates stand in %i table, and each under its name', async (count, tables) => {
+    const candidates = manyRated(count);
+    await renderClient(<OtherTraits candidates={candidates} traits={[lodging]} currentName="Brindle" />, {
+      namespaces: ['verdicts'],
+    });
+    expect(screen.queryAllByRole('table')).toHaveLength(tables);
+    for (const { varietyName } of candidates) expect(screen.getAllByText(varietyName).length).toBeTruthy();
+    if (tables > 0) return;
+    const place = screen.getByText('Variety 4').parentElement;
+    expect(place?.textContent).toContain('lower in 3, higher in 0 of 6 trials');
   });
 
   it('say where two were never rated side by side, and count nothing in answers made before it was counted', async () => {

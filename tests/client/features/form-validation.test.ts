@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest';
 import type { Crop } from '#shared/catalogue.ts';
 import type { GrowerCopyLine } from '#shared/grower-copy.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
+import { fieldIssues } from '#src/field-issues.ts';
 import { importForm } from '#src/features/trial-desk/import-fieldset.tsx';
 import { stateOfCopy } from '#src/features/weigh-up/copy-list.tsx';
 import { moneyForm, toAssumptions, toMoneyDraft } from '#src/features/weigh-up/money-form.ts';
@@ -35,6 +36,27 @@ describe('the form of a new weigh-up', () => {
     expect(refusals(newWeighUpForm, { ...farm, areaHectares: Number.NaN })).toEqual(['areaHectares']);
     expect(refusals(newWeighUpForm, { ...farm, areaHectares: -1 })).toEqual(['areaHectares']);
     expect(refusals(newWeighUpForm, { ...farm, priceLow: 300 })).toEqual(['priceMiddle']);
+  });
+});
+
+describe('why a field is refused', () => {
+  const reasons = (value: unknown): Record<string, string> => {
+    const parsed = newWeighUpForm.safeParse(value, fieldIssues);
+    const issues = parsed.success ? [] : parsed.error.issues;
+    return Object.fromEntries(issues.map(({ path, message }) => [path.join('.'), message]));
+  };
+
+  it('is said by what is wrong with it, not by every way in which it might be', () => {
+    expect(reasons({ ...farm, growerName: ' ', farmName: 'x'.repeat(1000), areaHectares: null })).toEqual({
+      growerName: 'required',
+      farmName: 'too-long',
+      areaHectares: 'required',
+    });
+    expect(reasons({ ...farm, areaHectares: 0 })).toEqual({ areaHectares: 'not-over-zero' });
+    expect(reasons({ ...farm, areaHectares: Number.NaN })).toEqual({ areaHectares: 'not-a-figure' });
+    expect(reasons({ ...farm, areaHectares: 1e12 })).toEqual({ areaHectares: 'too-high' });
+    // What a schema says itself stays.
+    expect(reasons({ ...farm, priceLow: 300 })).toEqual({ priceMiddle: 'price-order' });
   });
 });
 

@@ -51,6 +51,14 @@ describe('the headline of a weigh-up', () => {
     );
   });
 
+  it('says how few and how many trials leave several candidates open', async () => {
+    const few = { ...tallis, varietyId: idOf(7), varietyName: 'Lindel', siteYears: 2 };
+    expect(await readHeadline([tallis, few], 'en')).toContain(
+      'Tallis and Lindel look ahead, but 2 to 14 trials do not settle it.',
+    );
+    expect(await readHeadline([tallis, few], 'fr')).toContain('mais 2 à 14 essais ne suffisent pas');
+  });
+
   it('names those that are ahead and pay in one sentence, with the chances of all of them', async () => {
     const named = (name: string, chance: number | null) => ({
       ...withChance(buildCandidate(), chance),
