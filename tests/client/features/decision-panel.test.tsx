@@ -112,7 +112,7 @@ describe('the decision on a weigh-up', () => {
     await user.selectOptions(await screen.findByLabelText('Chosen'), 'Undecided');
     expect(screen.queryByLabelText('On')).toBeNull();
     await user.click(screen.getByRole('button', { name: 'Record the decision' }));
-    expect(await screen.findByText(/missing, too short/)).toBeTruthy();
+    expect(await screen.findByText(/Please fill this in/)).toBeTruthy();
     await user.type(screen.getByLabelText('Why'), 'Prices first.');
     await user.click(screen.getByRole('button', { name: 'Record the decision' }));
     await waitFor(() => expect(saved).toHaveLength(1));

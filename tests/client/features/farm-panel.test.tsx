@@ -144,7 +144,7 @@ describe('the farm of a weigh-up', () => {
     const { user } = await open();
     await user.type(screen.getByLabelText('Usual yield'), 'good');
     await user.click(screen.getByRole('button', { name: 'Weigh again for this farm' }));
-    expect(await screen.findByText(/value of the right kind/)).toBeTruthy();
+    expect(await screen.findByText(/Please enter a number/)).toBeTruthy();
     expect(saved).toHaveLength(0);
   });
 });
