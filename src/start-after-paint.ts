@@ -5,7 +5,7 @@ const longestWait = 2000;
  * Stands in a page itself that the server has rendered, and fetches after its first paint what it does not need for that:
  * on a slow phone already to ask for a file takes longer than to paint a sentence. Its own element names the files, by
  * addresses that the server has written: style sheets (`data-styles`), code (`data-ahead`), and the entry that is run
- * once style is there (`data-starts`), which may be missing.
+ * once style is there (`data-starts`), which may be missing. The root element then says that it is painted (`data-painted`).
  */
 const own = document.querySelector<HTMLScriptElement>('script[data-styles]');
 
@@ -14,6 +14,7 @@ let isStarted = false;
 async function start(): Promise<void> {
   if (own === null || isStarted) return;
   isStarted = true;
+  document.documentElement.dataset['painted'] = '';
   const { styles, ahead, starts } = own.dataset;
   for (const address of split(ahead)) addLink('modulepreload', address);
   await Promise.all(split(styles).map((address) => settle(addLink('stylesheet', address))));

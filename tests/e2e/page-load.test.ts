@@ -232,6 +232,21 @@ describe('a first visit', () => {
       }
     }));
 
+  it('lays out what stands further down in a copy once the verdict is painted', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const order = { data: { language: 'en' } };
+      const made = await context.request.post(`/api/weigh-ups/${id}/grower-copies`, order);
+      const { path } = (await made.json()) as { path: string };
+      expect(await (await context.request.get(path)).text()).toMatch(/content-visibility:\s*auto/);
+      const page = await context.newPage();
+      await page.goto(path);
+      const laidOut = `['article', '#answer ~ section', 'footer'].map(
+        (part) => getComputedStyle(document.querySelector('main ' + part)).contentVisibility,
+      )`;
+      await expect.poll(() => page.evaluate(laidOut)).toEqual(['visible', 'visible', 'visible']);
+    }));
+
   it('is whole after the verdict, and an address leads to its section', () =>
     visitAs('advisor', 'en', async (context) => {
       const { id } = await readDemoWeighUp(context);
