@@ -58,9 +58,12 @@ export const sentenceFormats: Record<string, SentenceFormat> = {
   pvalue: (value, language) => formatPValue(value, language),
 };
 
+/** What a date in a sentence takes from the sentence's values: whose days a moment is told in. */
+type DateOptions = { timeZone?: string };
+
 /** Writes an ISO date inside a sentence: `{{on, date}}`. */
-function formatSentenceDate(value: string, language: Language): string {
-  return formatDate(value, language);
+function formatSentenceDate(value: string, language: Language, { timeZone }: DateOptions): string {
+  return formatDate(value, language, timeZone);
 }
 
 /** What an i18next formatter offers for taking up a format. */
@@ -75,5 +78,7 @@ export function addSentenceFormats(formatter: SentenceFormatter | undefined): vo
       typeof value === 'number' ? format(value, readLanguage(tag), options) : String(value),
     );
   }
-  formatter?.add('date', (value, tag) => formatSentenceDate(String(value), readLanguage(tag)));
+  formatter?.add('date', (value, tag, options) =>
+    formatSentenceDate(String(value), readLanguage(tag), options),
+  );
 }

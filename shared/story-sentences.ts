@@ -247,19 +247,19 @@ function tellTurning(
   name: string,
   result: MoneyResult,
   estimate: number,
-  { currency }: MoneyAssumptions,
+  assumed: MoneyAssumptions,
   { say, write, unit, decimals }: StoryTeller,
 ): { paragraphs: string[]; items: string[] } {
-  const { pays, points } = findTurningPoints(result, estimate);
+  const { pays, points } = findTurningPoints(result, estimate, assumed);
   if (points.length === 0) return { paragraphs: [say('verdicts:story.turnNone')], items: [] };
   const sayPoint = ({ kind, side, value }: TurningPoint): string => {
     const key = `verdicts:story.${kind}${side === 'under' ? 'Under' : 'Over'}` as const;
-    if (kind === 'price') return say(key, { price: write.moneyPer(value, currency, 't') });
+    if (kind === 'price') return say(key, { price: write.moneyPer(value, assumed.currency, 't') });
     if (kind === 'gap') return say(key, { gap: write.gap(value, unit, decimals) });
-    return say(key, { amount: write.moneyPer(value, currency, 'ha'), name });
+    return say(key, { amount: write.moneyPer(value, assumed.currency, 'ha'), name });
   };
   const paragraphs: string[] = [];
-  if (result.breakEvenPrice === null) paragraphs.push(say('verdicts:story.turnNoPrice'));
+  if (!points.some(({ kind }) => kind === 'price')) paragraphs.push(say('verdicts:story.turnNoPrice'));
   else if (result.quality && result.quality !== 'unknown') {
     paragraphs.push(say('verdicts:story.turnPremium'));
   }

@@ -5,6 +5,7 @@ import { BrowserRouter } from 'react-router-dom';
 import { expectFirstPaint } from './first-paint.ts';
 import { startI18n } from './i18n.ts';
 import { openDetailsOnPaper } from './open-details-on-paper.ts';
+import { keepScrollPlace } from './keep-scroll-place.ts';
 import { makeQueryClient } from './query-client.ts';
 import { AppRoutes, preparePage } from './routes.tsx';
 import './app.css';
@@ -16,6 +17,7 @@ if (!root) throw new Error('index.html has no #root');
 const started = startI18n();
 await Promise.all([started, preparePage(window.location.pathname, started)]);
 openDetailsOnPaper();
+keepScrollPlace();
 expectFirstPaint();
 
 createRoot(root).render(

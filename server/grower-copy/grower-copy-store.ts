@@ -10,6 +10,7 @@ import {
   type LaterChange,
   type OpenedCopy,
 } from '#shared/grower-copy.ts';
+import { zoneOfCopy } from '#shared/zone-of-copy.ts';
 import { recordAuditEvent } from '#server/audit/audit-store.ts';
 import type { Database, DatabaseOrTransaction } from '#server/db.ts';
 import { cancelMails, queueCopyMail, readNewestMails } from '#server/mail/outbox-store.ts';
@@ -85,11 +86,13 @@ export async function queueMailOf(
   { recipient, link }: { recipient: string; link: string },
   createdBy: string,
 ): Promise<void> {
-  const { weighUp, advisorName, advisorEmail, advisorPhone } = growerCopySnapshot.parse(row.snapshot);
+  const snapshot = growerCopySnapshot.parse(row.snapshot);
+  const { weighUp, advisorName, advisorEmail, advisorPhone } = snapshot;
   const { growerName, farmName, cropName } = weighUp;
   const expiresAt = row.expiresAt.toISOString();
   const advisor = { advisorName, advisorEmail, advisorPhone };
-  const content = { growerName, farmName, cropName, ...advisor, expiresAt, link };
+  const timeZone = zoneOfCopy(snapshot);
+  const content = { growerName, farmName, cropName, ...advisor, expiresAt, timeZone, link };
   await queueCopyMail(tx, { copyId: row.id, recipient, language: row.language, content, createdBy });
   await recordAuditEvent(tx, {
     actorId: createdBy,

@@ -10,6 +10,8 @@ export const copyMailContent = z.object({
   advisorEmail: z.string(),
   advisorPhone: z.string().nullable().default(null),
   expiresAt: z.iso.datetime(),
+  /** Whose days the letter is told in, as the copy is (IANA). */
+  timeZone: z.string().default('UTC'),
   /** The whole address with its secret; null once the mail is sent or given up. */
   link: z.url().nullable(),
 });

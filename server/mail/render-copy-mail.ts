@@ -27,7 +27,7 @@ export function renderCopyMail(content: CopyMailContent, link: string, language:
   const intro = t('copy.intro', { advisor, farm, crop });
   const open = t('copy.open');
   const inside = t('copy.inside');
-  const until = t('copy.until', { on: content.expiresAt });
+  const until = t('copy.until', { on: content.expiresAt, timeZone: content.timeZone });
   const phone = content.advisorPhone;
   const questions =
     phone === null

@@ -1,6 +1,7 @@
 import { useEffect, useRef, type ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import { useLocation } from 'react-router-dom';
+import { BoundWords } from './bound-words.tsx';
 
 type PageHeadingProps = {
   /** The page's name: its h1 and, with the product's, the document's title. */
@@ -33,7 +34,7 @@ export function PageHeading({ title, above, below, actions }: PageHeadingProps) 
       <div className="min-w-0">
         {above && <p className="text-sm text-faded">{above}</p>}
         <h1 ref={ref} tabIndex={-1}>
-          {title}
+          <BoundWords text={title} />
         </h1>
         {below && <p className="mt-0.5 text-sm text-faded">{below}</p>}
       </div>

@@ -259,6 +259,28 @@ describe('a first visit', () => {
         .toBeGreaterThan(900);
     }));
 
+  it('goes on where it was being read when it is loaded again, and begins at its top when opened anew', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const page = await context.newPage();
+      await page.goto(`/weigh-ups/${id}`);
+      const foot = page.getByRole('heading', { name: say('en', 'method:title') });
+      await foot.waitFor();
+      // Far below the end of what the server has rendered.
+      await page.evaluate('window.scrollTo(0, 3000)');
+      const before = await page.evaluate<number>('window.scrollY');
+      expect(before).toBeGreaterThan(2000);
+      await page.reload();
+      await foot.waitFor();
+      await expect.poll(() => page.evaluate<number>('window.scrollY')).toBe(before);
+      // Another page, and the same one opened anew, begin at their top.
+      await page.goto('/weigh-ups');
+      await page.goto(`/weigh-ups/${id}`);
+      await foot.waitFor();
+      expect(await page.evaluate('window.scrollY')).toBe(0);
+      await page.close();
+    }));
+
   it('leaves nothing behind after signing out: going back leads to the sign-in page', () =>
     visitAs('advisor', 'en', async (context) => {
       const { id, growerName } = await readDemoWeighUp(context);

@@ -106,7 +106,11 @@ function useAccountColumns(catalogue: Catalogue, onChange: (account: Account) =>
       cell: ({ id, name, email }) => (
         <>
           {id === me.id ? t('accounts:you', { name }) : name}
-          <span className="block text-sm font-normal break-all text-faded">{email}</span>
+          <span className="block text-sm font-normal wrap-anywhere text-faded">
+            {email.slice(0, email.indexOf('@'))}
+            <wbr />
+            {email.slice(email.indexOf('@'))}
+          </span>
         </>
       ),
       sortValue: ({ name }) => name,

@@ -2,6 +2,7 @@ import { useTranslation } from 'react-i18next';
 import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
 import { dialling } from '#shared/dialling.ts';
 import { writeUnitParameter } from '#shared/reader-units.ts';
+import { BoundWords } from '#src/components/bound-words.tsx';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
 import { EvidenceTrials } from '#src/components/evidence-trials.tsx';
 import { MethodNotes } from '#src/components/method-notes.tsx';
@@ -79,7 +80,9 @@ function CopyHeading({ copy, link }: Pick<CopyBodyProps, 'copy' | 'link'>) {
           date: format.date(madeAt),
         })}
       </p>
-      <h1>{title}</h1>
+      <h1>
+        <BoundWords text={title} />
+      </h1>
       <CopyUnits hasBushel={copy.snapshot.format !== 1} />
     </div>
   );

@@ -6,8 +6,8 @@ import { mailRecipient } from '#shared/grower-copy.ts';
 import { Button } from '#src/components/button.tsx';
 import { Field } from '#src/components/field.tsx';
 import { Select } from '#src/components/select.tsx';
-import { TextInput } from '#src/components/text-input.tsx';
 import { useLanguage } from '#src/components/use-language.ts';
+import { ContactField } from './contact-field.tsx';
 
 const year = 365;
 const validities = [30, 90, year];
@@ -81,35 +81,27 @@ export function CopyForm({ hasUnsaved, isBusy, phone, isMailSetUp, onMake }: Cop
             }))}
           />
         </Field>
-        <Field
+        <ContactField
+          kind="tel"
           label={t('weigh-up:copies.phone')}
           hint={t('weigh-up:copies.phoneHint')}
           error={bad === 'phone' ? t('weigh-up:copies.badPhone') : undefined}
           className="sm:col-span-2"
-        >
-          <TextInput
-            ref={phoneField}
-            type="tel"
-            autoComplete="tel"
-            value={dialled}
-            onChange={(event) => setDialled(event.target.value)}
-          />
-        </Field>
+          ref={phoneField}
+          value={dialled}
+          onValueChange={setDialled}
+        />
         {isMailSetUp === true && (
-          <Field
+          <ContactField
+            kind="email"
             label={t('weigh-up:copies.email')}
             hint={t('weigh-up:copies.emailHint')}
             error={bad === 'address' ? t('weigh-up:copies.badAddress') : undefined}
             className="sm:col-span-2"
-          >
-            <TextInput
-              ref={addressField}
-              type="email"
-              autoComplete="off"
-              value={address}
-              onChange={(event) => setAddress(event.target.value)}
-            />
-          </Field>
+            ref={addressField}
+            value={address}
+            onValueChange={setAddress}
+          />
         )}
       </div>
       {isMailSetUp === false && (

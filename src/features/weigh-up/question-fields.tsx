@@ -1,7 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import type { Crop } from '#shared/catalogue.ts';
 import { Field } from '#src/components/field.tsx';
-import { Select } from '#src/components/select.tsx';
+import { Select, type SelectOption } from '#src/components/select.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
 import type { Catalogue } from '#src/catalogue-query.ts';
@@ -25,6 +25,10 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
   const me = useMe();
   // Elsewhere the server refuses; a region that the address names all the same stays in view with its refusal.
   const regions = catalogue.regions.filter(({ id }) => me.regionIds.includes(id) || id === region?.id);
+  const language = useLanguage();
+  // The catalogue has the order of one language; a reader looks by the letters of the own.
+  const inOrder = (options: SelectOption[]) =>
+    options.sort((a, b) => a.label.localeCompare(b.label, language));
   const regionLabel = (name: string, count: number) =>
     crop === undefined
       ? name
@@ -40,7 +44,9 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
             patch({ crop: event.target.value, current: null, candidates: null, from: null, to: null })
           }
           placeholder={t('new.chooseCrop')}
-          options={catalogue.crops.map(({ slug, name }) => ({ value: slug, label: format.name(name) }))}
+          options={inOrder(
+            catalogue.crops.map(({ slug, name }) => ({ value: slug, label: format.name(name) })),
+          )}
         />
       </Field>
       <Field label={t('new.region')} isRequired>
@@ -48,10 +54,12 @@ export function QuestionFields({ draft, catalogue }: QuestionFieldsProps) {
           value={region?.slug ?? ''}
           onChange={(event) => patch({ region: event.target.value, candidates: null })}
           placeholder={t('new.chooseRegion')}
-          options={regions.map(({ slug, name, publishedTrials }) => ({
-            value: slug,
-            label: regionLabel(format.name(name), publishedTrials[crop?.slug ?? ''] ?? 0),
-          }))}
+          options={inOrder(
+            regions.map(({ slug, name, publishedTrials }) => ({
+              value: slug,
+              label: regionLabel(format.name(name), publishedTrials[crop?.slug ?? ''] ?? 0),
+            })),
+          )}
         />
       </Field>
       {crop && <SeasonFields draft={draft} crop={crop} />}

@@ -5,9 +5,8 @@ import { mailGrowerCopy, mailRecipient } from '#shared/grower-copy.ts';
 import { callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
 import { ErrorState } from '#src/components/error-state.tsx';
-import { Field } from '#src/components/field.tsx';
-import { TextInput } from '#src/components/text-input.tsx';
 import { useErrorText } from '#src/use-error-text.ts';
+import { ContactField } from './contact-field.tsx';
 import { growerCopiesQuery } from './weigh-up-queries.ts';
 
 type SendLinkFormProps = { weighUpId: string; copyId: string; token: string };
@@ -37,19 +36,15 @@ export function SendLinkForm({ weighUpId, copyId, token }: SendLinkFormProps) {
       }}
     >
       <div className="flex flex-wrap items-end gap-3">
-        <Field
+        <ContactField
+          kind="email"
           label={t('copies.sendTitle')}
           error={isBad ? t('copies.badAddress') : undefined}
           className="min-w-0 grow basis-64"
-        >
-          <TextInput
-            ref={field}
-            type="email"
-            autoComplete="off"
-            value={address}
-            onChange={(event) => setAddress(event.target.value)}
-          />
-        </Field>
+          ref={field}
+          value={address}
+          onValueChange={setAddress}
+        />
         <Button type="submit" isBusy={sending.isPending}>
           {t('copies.send')}
         </Button>

@@ -52,7 +52,7 @@ describe('what would turn the answer', () => {
     const moneyGap = { estimate, se: 0.2, df: 20 };
     const result = weighMoney({ varietyId: candidate, moneyGap, traits: [] }, basis, assumptions);
     if (!result) throw new Error('no money');
-    return { ...findTurningPoints(result, estimate), result };
+    return { ...findTurningPoints(result, estimate, assumptions), result };
   };
 
   it('lies at the figures where the return is nothing, and on the right side of them', () => {
@@ -71,6 +71,12 @@ describe('what would turn the answer', () => {
     expect(points.find((point) => point.kind === 'price')?.side).toBe('over');
     expect(points.find((point) => point.kind === 'gap')?.side).toBe('over');
     expect(points.find((point) => point.kind === 'seed')?.side).toBe('under');
+  });
+
+  it('names no price that no market comes near, high or low', () => {
+    // 30 / 0.01 + 20 = 3,020 per tonne, 30 / 3 + 20 = 30; the sheet says 255 to 340.
+    for (const estimate of [0.01, 3])
+      expect(turn(estimate).points.map(({ kind }) => kind)).toEqual(['gap', 'seed']);
   });
 
   it('names no price where none can turn it: same seed cost, lower yield', () => {
