@@ -381,6 +381,65 @@ describe('properties', () => {
     );
   });
 
+  test('what is paid for a hectare of the candidate is lost to it, of the current variety won, and straw is the reverse', () => {
+    const parts = [
+      ['seedPerHectare', -1],
+      ['treatmentPerHectare', -1],
+      ['royaltyPerHectare', -1],
+      ['harvestPerHectare', -1],
+      ['strawPerHectare', 1],
+    ] as const;
+    fc.assert(
+      fc.property(anyMoney, anyGap, anyAmount, (money, gap, more) => {
+        const known = { harvestPerHectare: 40, strawPerHectare: 30 };
+        const costs = Object.fromEntries(
+          Object.entries(money.seedCosts).map(([id, cost]) => [id, { ...cost, ...known }]),
+        );
+        const before = weigh({ ...money, seedCosts: costs }, gap);
+        for (const [part, sign] of parts)
+          for (const [id, side] of [
+            [candidate, 1],
+            [current, -1],
+          ] as const) {
+            const changed = { ...(costs[id] ?? seed(0)) };
+            changed[part] = (changed[part] ?? 0) + more;
+            const after = weigh({ ...money, seedCosts: { ...costs, [id]: changed } }, gap);
+            expect(after.returnPerHectare - before.returnPerHectare).toBeCloseTo(side * sign * more, 7);
+            expect(side * sign * (after.chancePays - before.chancePays)).toBeGreaterThanOrEqual(-1e-12);
+          }
+      }),
+    );
+  });
+
+  test('units cancel: by the acre, everything of an area is so much less and no chance is another', () => {
+    fc.assert(
+      fc.property(anyFullMoney, anyGap, (money, gap) => {
+        const acre = 0.404686;
+        const ofAcre = (cost: SeedCost): SeedCost => ({
+          ...cost,
+          seedPerHectare: (cost.seedPerHectare ?? 0) * acre,
+          ...(cost.targetPlantsM2 !== undefined && { targetPlantsM2: cost.targetPlantsM2 * acre }),
+        });
+        const byAcre = {
+          ...money,
+          seedCosts: Object.fromEntries(
+            Object.entries(money.seedCosts).map(([id, cost]) => [id, ofAcre(cost)]),
+          ),
+        };
+        const there = weigh(money, gap, full);
+        const here = weigh(
+          byAcre,
+          { ...gap, estimate: gap.estimate * acre, se: gap.se * acre },
+          { ...full, usualYield: full.usualYield * acre },
+        );
+        expect(here.chancePays).toBeCloseTo(there.chancePays, 8);
+        expect(here.returnPerHectare / acre).toBeCloseTo(there.returnPerHectare, 6);
+        expect(here.breakEvenGap / acre).toBeCloseTo(there.breakEvenGap, 8);
+        expect(here.badReturn / acre).toBeCloseTo(there.badReturn, 3);
+      }),
+    );
+  });
+
   test('the bad season is no better than the good one, and one season in ten lies under it', () => {
     fc.assert(
       fc.property(anyFullMoney, anyGap, (money, gap) => {

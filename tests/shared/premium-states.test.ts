@@ -135,6 +135,16 @@ describe('the average over seasons', () => {
       states.reduce((sum, one) => sum + one.weight * (one.candidate - mean(states, 'candidate')) ** 2, 0);
     expect(variance(average)).toBeLessThan(variance(seasons) / 2);
   });
+
+  // At the limit a premium rises by 10 φ(0)/spread with each unit of level, and the average gap is the difference of both.
+  test('leaves of the difference in premiums what the average gap is uncertain by', () => {
+    const states = listAverageStates(outlook({ level: 12, region: { estimate: 0, se: 0.1, df: Infinity } }));
+    const difference = Math.sqrt(
+      states.reduce((sum, one) => sum + one.weight * (one.candidate - one.current) ** 2, 0),
+    );
+    const rise = 10 / Math.sqrt(2 * Math.PI) / Math.sqrt(0.8 ** 2 - 0.1 ** 2 / 4);
+    expect(difference / (0.1 * rise)).toBeCloseTo(1, 1);
+  });
 });
 
 describe('several traits', () => {
