@@ -40,6 +40,16 @@ test('a tonne that costs more than it brings turns the gap round', () => {
   expect(chanceOver(0)).toBeLessThan(0.05);
 });
 
+test('what is expected is reckoned at the mean of low, middle and high price, which need not be the middle one', () => {
+  const money = {
+    ...atOnePrice(250, { candidate: seed(60), current: seed(50) }),
+    ...{ priceLow: 200, priceHigh: 390 },
+  };
+  const { expectedReturn, returnPerHectare } = weigh(money, { estimate: 0.5, se: 0.2, df: 20 });
+  expect(returnPerHectare).toBeCloseTo(0.5 * 250 - 10, 9);
+  expect(expectedReturn).toBeCloseTo(0.5 * 280 - 10, 9);
+});
+
 test('the prices are equally likely, lie within the range and around the triangle’s mean', () => {
   const prices = spreadPrice({ priceLow: 220, priceMiddle: 250, priceHigh: 340 });
   expect(prices).toHaveLength(32);
