@@ -137,8 +137,8 @@ type InPages = Record<'styles' | 'scripts', readonly InlineFile[]>;
 /**
  * Headers: everything from our own origin; the charts set style attributes. Plain http on loopback gets no upgrade.
  * No opener policy and no agent cluster of its own: a browser starts a process for each page that asks for them, which
- * costs a slow phone a third of a second. They guard pages that open windows, hold frames or set `document.domain`;
- * no page here does, none can be framed, and whoever opens one sees nothing of it.
+ * costs a slow phone a third of a second. They guard pages that speak to windows they opened, hold frames or set
+ * `document.domain`; no page here does (the one link into a new window is `noreferrer`), and none can be framed.
  */
 function buildHelmet(settings: ServerSettings, inPages: InPages): RequestHandler {
   const hashesOf = (files: readonly InlineFile[]) => files.map(({ hash }) => `'${hash}'`);

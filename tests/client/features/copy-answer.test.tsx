@@ -102,8 +102,16 @@ describe('the answer of a copy', () => {
   it.each([
     ['nothing', ' ', 'Please enter the price as a figure.'],
     ['no figure', 'abc', 'Please enter the price as a figure.'],
-    ['less than it costs to bring it away', '19', 'This price does not cover haulage and drying ($20/t).'],
-    ['zero', '0', 'This price does not cover haulage and drying ($20/t).'],
+    [
+      'less than it costs to bring it away',
+      '19',
+      'This price does not cover haulage, harvest and drying, and what quality may take off ($20/t).',
+    ],
+    [
+      'zero',
+      '0',
+      'This price does not cover haulage, harvest and drying, and what quality may take off ($20/t).',
+    ],
   ])('keeps the frozen figures while the price is %s', async (_case, typed, message) => {
     await open();
     await typePrice(typed);
