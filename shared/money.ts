@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { findMoneyExcess } from './money-limits.ts';
 import { findWorstCostPerTonne } from './tonne-costs.ts';
 import { moneyVerdictCode } from './verdict.ts';
 
@@ -50,7 +51,10 @@ export const qualityRule = z.object({
 });
 export type QualityRule = z.infer<typeof qualityRule>;
 
-/** The money side of a weigh-up: prices per tonne at standard moisture, costs per tonne off the field and per hectare. */
+/**
+ * The money side of a weigh-up as it is kept: prices per tonne at standard moisture, costs per tonne off the field and per
+ * hectare. What is saved is held to limits as well (`moneyInput`).
+ */
 export const moneyAssumptions = z
   .object({
     currency: z.string().regex(/^[A-Z]{3}$/),
@@ -83,6 +87,18 @@ export const moneyAssumptions = z
     message: 'price-under-costs',
   });
 export type MoneyAssumptions = z.infer<typeof moneyAssumptions>;
+
+/** Refuses every figure beyond its limit, where it stands. */
+export function refuseMoneyExcess(
+  money: Parameters<typeof findMoneyExcess>[0],
+  context: Pick<z.core.$RefinementCtx, 'addIssue'>,
+): void {
+  for (const { path, reason } of findMoneyExcess(money))
+    context.addIssue({ code: 'custom', path, message: reason });
+}
+
+/** The money side of a weigh-up as it is saved: nothing beyond the limits of `money-limits.ts`, which came later. */
+export const moneyInput = moneyAssumptions.superRefine(refuseMoneyExcess);
 
 /** A gap as a distribution: location and scale of a t with its df, in the trait's unit. */
 export const gapDistribution = z.object({ estimate: z.number(), se: z.number(), df: z.number() });

@@ -4,7 +4,7 @@ import { caution } from './caution.ts';
 import { defineContract } from './contract.ts';
 import { decisionLine } from './decision.ts';
 import { farmAnswer, farmInput, farmQuery, farmRange, hasPlaceForChoice, isWholePlace } from './farm.ts';
-import { currentLevel, gapDistribution, moneyAssumptions, moneyResult } from './money.ts';
+import { currentLevel, gapDistribution, moneyAssumptions, moneyInput, moneyResult } from './money.ts';
 import { bestOfList, isPairOfOne, questionKind } from './question-kind.ts';
 import { interval, verdictCode } from './verdict.ts';
 
@@ -199,7 +199,7 @@ export const weighUpInput = z
     candidateIds: z.array(z.uuid()).min(1).max(8),
     /** Left out, several candidates are compared. */
     question: questionKind.optional(),
-    assumptions: moneyAssumptions,
+    assumptions: moneyInput,
     ...farmInput,
   })
   .refine(isPairOfOne, { path: ['question'], message: 'pair-of-one' })

@@ -1,3 +1,4 @@
+import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { weighUpCandidates, weighUps } from '#drizzle/schema/weigh-ups.ts';
 import { openApiWorld, type ApiWorld, type SignedIn } from './api-world.ts';
@@ -185,4 +186,20 @@ test('prices out of order are refused by name', async () => {
     .post('/api/weigh-ups')
     .send(question({ assumptions: { ...assumptions, priceLow: 900 } }));
   expect(reply.body.error.issues).toMatchObject([{ path: 'assumptions.priceMiddle', reason: 'price-order' }]);
+});
+
+test('a cost that nobody pays is refused where it stands; one that was saved before there were limits still opens', async () => {
+  const dear = { seedPerHectare: 999_999, treatmentPerHectare: 0, royaltyPerHectare: 0 };
+  const assumptions = { ...question().assumptions, seedCosts: { [variety('Birch')]: dear } };
+  const refused = await advisor.agent.post('/api/weigh-ups').send(question({ assumptions }));
+  expect(refused.status).toBe(400);
+  expect(refused.body.error.issues).toMatchObject([
+    { path: `assumptions.seedCosts.${variety('Birch')}.seedPerHectare`, reason: 'over-crop-worth' },
+  ]);
+  const weighUpId = await make();
+  await world.database.db.update(weighUps).set({ assumptions }).where(eq(weighUps.id, weighUpId));
+  const opened = await advisor.agent.get(`/api/weigh-ups/${weighUpId}`).expect(200);
+  expect(opened.body.weighUp.assumptions.seedCosts).toEqual({ [variety('Birch')]: dear });
+  const next = await advisor.agent.post(`/api/weigh-ups/${weighUpId}/duplicates`).expect(200);
+  expect(next.body.weighUp.assumptions.seedCosts).toEqual({ [variety('Birch')]: dear });
 });

@@ -1,3 +1,4 @@
+import { findMostPerHectare, mostPriceRatio } from '#shared/money-limits.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { budgetSeed } from '#shared/seed-budget.ts';
 import { findWorstCostPerTonne } from '#shared/tonne-costs.ts';
@@ -49,7 +50,19 @@ export function withSeed(
   return { ...assumptions, seedCosts: { ...assumptions.seedCosts, [varietyId]: own } };
 }
 
-/** The reader's own numbers that count: a price that does not cover its costs counts for nothing. */
+/** Why a number of one's own does not count; null where it does. A price is held to its costs, all to the limits of the panel. */
+export function refuseOwnNumber(
+  name: OwnName,
+  value: number | null,
+  frozen: MoneyAssumptions,
+): 'unreadable' | 'tooLow' | 'priceTooHigh' | 'seedTooHigh' | null {
+  if (name === 'price' && value !== null && value <= findWorstCostPerTonne(frozen)) return 'tooLow';
+  if (!isPossible(name, value)) return 'unreadable';
+  if (name !== 'price') return value > findMostPerHectare(frozen.priceMiddle) ? 'seedTooHigh' : null;
+  return value > mostPriceRatio * frozen.priceMiddle ? 'priceTooHigh' : null;
+}
+
+/** The reader's own numbers that count. */
 export type OwnAssumptions = {
   assumptions: MoneyAssumptions;
   /** null: the copy's own */
@@ -63,11 +76,15 @@ export function readOwnAssumptions(
   seeds: readonly SeedOfVariety[],
   own: OwnNumbers,
 ): OwnAssumptions {
-  const tried = own.get('price') ?? frozen.priceMiddle;
-  const price = tried !== frozen.priceMiddle && tried > findWorstCostPerTonne(frozen) ? tried : null;
+  const counted = (name: OwnName): number | null => {
+    const value = own.get(name) ?? null;
+    return refuseOwnNumber(name, value, frozen) === null ? value : null;
+  };
+  const tried = counted('price');
+  const price = tried === frozen.priceMiddle ? null : tried;
   const ownSeeds = seeds.flatMap((seed) => {
-    const perHectare = own.get(seed.name);
-    return perHectare === undefined || !isPossible(seed.name, perHectare) ? [] : [{ seed, perHectare }];
+    const perHectare = counted(seed.name);
+    return perHectare === null ? [] : [{ seed, perHectare }];
   });
   const atPrice = price === null ? frozen : withPrice(frozen, price);
   return {

@@ -14,12 +14,9 @@ let kept = none;
 
 const isOwnName = (name: string): name is OwnName => /^(price|seed\d)$/.test(name);
 
-/** More than this no tonne and no hectare of any crop costs, in any currency that is likely here. */
-const most = 1_000_000;
-
 /** What is typed and is none stays in its field for correction, and is kept nowhere. Seed may cost nothing, a tonne may not. */
 export const isPossible = (name: OwnName, value: number | null): value is number =>
-  value !== null && value <= most && (name === 'price' ? value > 0 : value >= 0);
+  value !== null && (name === 'price' ? value > 0 : value >= 0) && value < Infinity;
 
 function readFragment(): OwnNumbers {
   const found = new Map<OwnName, number>();

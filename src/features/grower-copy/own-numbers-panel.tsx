@@ -1,5 +1,6 @@
 import { useSyncExternalStore } from 'react';
 import { useTranslation } from 'react-i18next';
+import { findMostPerHectare } from '#shared/money-limits.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import { fromReaderPer } from '#shared/reader-units.ts';
 import { findWorstCostPerTonne } from '#shared/tonne-costs.ts';
@@ -8,7 +9,7 @@ import { Field } from '#src/components/field.tsx';
 import { PriceInput } from '#src/components/measure-input.tsx';
 import { useReaderUnits } from '#src/components/reader-units-context.tsx';
 import { useFormat } from '#src/components/use-format.ts';
-import type { SeedOfVariety } from './own-assumptions.ts';
+import { refuseOwnNumber, type SeedOfVariety } from './own-assumptions.ts';
 import {
   forgetOwnNumbers,
   isPossible,
@@ -32,14 +33,24 @@ function useIsAlive(): boolean {
   );
 }
 
-type OwnField = { value: number | null; isFigure: boolean; choose: (value: number | null) => void };
+type OwnField = {
+  value: number | null;
+  /** Why what was typed does not count. */
+  refused: ReturnType<typeof refuseOwnNumber>;
+  choose: (value: number | null) => void;
+};
 
 /** What stands in the field of a number: the copy's own until another is typed. */
-function openField(name: OwnName, frozen: number | null, own: OwnNumbers): OwnField {
+function openField(
+  name: OwnName,
+  frozen: number | null,
+  own: OwnNumbers,
+  assumptions: MoneyAssumptions,
+): OwnField {
   const value = own.get(name);
   return {
     value: value === undefined ? frozen : value,
-    isFigure: value === undefined || isPossible(name, value),
+    refused: value === undefined ? null : refuseOwnNumber(name, value, assumptions),
     choose: (typed) => keepOwnNumber(name, typed, frozen),
   };
 }
@@ -68,7 +79,7 @@ export function OwnNumbersPanel({ assumptions, seeds, own }: OwnNumbersPanelProp
           <p className="mb-2 text-sm text-faded">{t('own.seedsLead')}</p>
           <div className="flex flex-col gap-3">
             {seeds.map((seed) => (
-              <OwnSeedField key={seed.name} seed={seed} currency={assumptions.currency} own={own} />
+              <OwnSeedField key={seed.name} seed={seed} assumptions={assumptions} own={own} />
             ))}
           </div>
         </details>
@@ -91,17 +102,12 @@ function OwnPriceField({ assumptions, own, isAlive }: OwnPriceFieldProps) {
   const format = useFormat();
   const units = useReaderUnits();
   const { currency, priceMiddle: frozen } = assumptions;
-  const { value, isFigure, choose } = openField('price', frozen, own);
-  const perTonne = findWorstCostPerTonne(assumptions);
-  const isTooLow = value !== null && value <= perTonne;
-  const error = isTooLow
-    ? t('own.tooLow', { amount: format.moneyPer(perTonne, currency, 't') })
-    : isFigure
-      ? undefined
-      : t('own.unreadable');
+  const { value, refused, choose } = openField('price', frozen, own, assumptions);
+  const amount = format.moneyPer(findWorstCostPerTonne(assumptions), currency, 't');
+  const error = refused === null ? undefined : t(`own.${refused}`, { amount });
   const change = (sign: 1 | -1) => {
     const by = units.yieldUnit === 'bu/ac' ? fromReaderPer(stepPerBushel, 't', units) : stepPerTonne;
-    choose(Math.max((isFigure && value !== null ? value : frozen) + sign * by, 0));
+    choose(Math.max((isPossible('price', value) ? value : frozen) + sign * by, 0));
   };
   return (
     <fieldset disabled={!isAlive} className="flex items-end gap-2">
@@ -119,16 +125,18 @@ function OwnPriceField({ assumptions, own, isAlive }: OwnPriceFieldProps) {
   );
 }
 
-type OwnSeedFieldProps = { seed: SeedOfVariety; currency: string; own: OwnNumbers };
+type OwnSeedFieldProps = { seed: SeedOfVariety; assumptions: MoneyAssumptions; own: OwnNumbers };
 
-function OwnSeedField({ seed: { name, varietyName, frozen }, currency, own }: OwnSeedFieldProps) {
+function OwnSeedField({ seed: { name, varietyName, frozen }, assumptions, own }: OwnSeedFieldProps) {
   const { t } = useTranslation('copy');
-  const { value, isFigure, choose } = openField(name, frozen, own);
-  const error = isFigure ? undefined : t('own.unreadable');
+  const format = useFormat();
+  const { value, refused, choose } = openField(name, frozen, own, assumptions);
+  const amount = format.moneyPer(findMostPerHectare(assumptions.priceMiddle), assumptions.currency, 'ha');
+  const error = refused === null ? undefined : t(`own.${refused}`, { amount });
   const hint = frozen === null ? t('own.seedOpen') : undefined;
   return (
     <Field label={t('own.seedOf', { name: varietyName })} hint={hint} error={error}>
-      <PriceInput value={value} onValueChange={choose} currency={currency} per="ha" />
+      <PriceInput value={value} onValueChange={choose} currency={assumptions.currency} per="ha" />
     </Field>
   );
 }

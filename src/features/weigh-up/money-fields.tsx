@@ -12,17 +12,23 @@ import type { MoneyFormApi } from './use-money-form.ts';
 type FigureUnit =
   { currency: string; per: 't' | 'ha'; isUnitHidden?: boolean } | { measure: 'ha' } | { plain: string };
 
-const prices = ['priceLow', 'priceMiddle', 'priceHigh'] as const;
+/** Fields that are marked for what they are held against, another price or a limit that follows from one. */
+function listMarked(errors: object, at: readonly string[] = []): string[] {
+  return Object.entries(errors as Record<string, unknown>).flatMap(([key, error]) => {
+    if (typeof error !== 'object' || error === null) return [];
+    const path = [...at, key];
+    if (!('type' in error)) return listMarked(error, path);
+    return error.type === 'custom' ? [path.join('.')] : [];
+  });
+}
 
-/** What does not bear on what a tonne costs, and so on the lowest price. */
-const freeOfPrice = /^areaHectares$|^currentLevels|^seedCosts\.[^.]+\.(?!harvestMoisturePercent$)/;
-
-/** Prices are held against each other and against the costs per tonne: told anew where an edit may change that. */
-function recheckPrices(form: MoneyFormApi, name: Path<MoneyDraft>): void {
-  if (freeOfPrice.test(name)) return;
-  const { errors } = form.formState;
-  const isMarked = prices.some((price) => errors[price] !== undefined);
-  if (isMarked || !moneyForm.safeParse(form.getValues()).success) void form.trigger(prices);
+/** Prices are held against each other and against costs, costs against prices: told anew where an edit changes that. */
+function recheckOthers(form: MoneyFormApi): void {
+  const issues = moneyForm.safeParse(form.getValues()).error?.issues ?? [];
+  const refused = issues.filter(({ code }) => code === 'custom').map(({ path }) => path.join('.'));
+  const names = [...new Set([...listMarked(form.formState.errors), ...refused])];
+  // Both lists name fields of the form.
+  if (names.length > 0) void form.trigger(names as Path<MoneyDraft>[]);
 }
 
 type FigureFieldProps = {
@@ -46,7 +52,7 @@ export const FigureField = memo(function FigureField({ form, name, label, hint, 
             value={typeof value === 'number' ? value : null}
             onValueChange={(figure) => {
               onChange(figure);
-              recheckPrices(form, name);
+              recheckOthers(form);
             }}
             onBlur={onBlur}
             ref={ref}
@@ -85,7 +91,7 @@ export function ChoiceField({ form, name, label, options }: ChoiceFieldProps) {
             value={String(value)}
             onChange={(event) => {
               onChange(event.target.value);
-              recheckPrices(form, name);
+              recheckOthers(form);
             }}
             onBlur={onBlur}
             ref={ref}

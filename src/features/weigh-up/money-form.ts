@@ -3,6 +3,7 @@ import type { Crop } from '#shared/catalogue.ts';
 import {
   moneyAssumptions,
   qualityRule,
+  refuseMoneyExcess,
   seedBasis,
   seedCost,
   type MoneyAssumptions,
@@ -43,8 +44,8 @@ const typedSeed = z.object({
 });
 type TypedSeed = z.output<typeof typedSeed>;
 
-/** What the money panel holds: prices and costs as typed, by variety id for seed. */
-export const moneyForm = z
+/** The panel as it may be filled with numbers that were saved before there were limits. */
+export const savedMoneyForm = z
   .object({
     areaHectares: typed(weighUpInput.shape.areaHectares),
     priceLow: typed(priceLow),
@@ -74,6 +75,11 @@ export const moneyForm = z
     path: ['priceLow'],
     message: 'price-under-costs',
   });
+
+/** What the money panel holds: prices and costs as typed, by variety id for seed. */
+export const moneyForm = savedMoneyForm.superRefine((form, context) =>
+  refuseMoneyExcess({ ...form, seedCosts: toSeedCosts(form) }, context),
+);
 export type MoneyForm = z.output<typeof moneyForm>;
 export type MoneyDraft = z.input<typeof moneyForm>;
 
@@ -163,14 +169,22 @@ function toSeedCost({ basis, ...parts }: TypedSeed): SeedCost | null {
   };
 }
 
+/** Of the varieties of the question, those of which something is known. */
+function toSeedCosts({
+  seedCosts,
+}: Pick<z.output<typeof savedMoneyForm>, 'seedCosts'>): Record<string, SeedCost> {
+  return Object.fromEntries(
+    Object.entries(seedCosts).flatMap(([id, parts]) => {
+      const cost = toSeedCost(parts);
+      return cost === null ? [] : [[id, cost]];
+    }),
+  );
+}
+
 /** The assumptions that the panel stands for; a variety of which nothing is known gets no line. */
 export function toAssumptions(form: MoneyForm, saved: MoneyAssumptions): MoneyAssumptions {
-  const seedCosts = { ...saved.seedCosts };
-  for (const [id, parts] of Object.entries(form.seedCosts)) {
-    const cost = toSeedCost(parts);
-    if (cost === null) delete seedCosts[id];
-    else seedCosts[id] = cost;
-  }
+  const others = Object.entries(saved.seedCosts).filter(([id]) => !(id in form.seedCosts));
+  const seedCosts = { ...Object.fromEntries(others), ...toSeedCosts(form) };
   const { harvestPerTonne: harvest, dryingPerPoint: perPoint, standardMoisturePercent: standard } = form;
   return {
     currency: saved.currency,

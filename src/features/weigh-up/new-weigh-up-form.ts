@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { mostPriceRatio } from '#shared/money-limits.ts';
 import { moneyAssumptions, type MoneyAssumptions } from '#shared/money.ts';
 import { weighUpInput, type WeighUpInput } from '#shared/weigh-up.ts';
 import type { QuestionDraft } from './question-draft.ts';
@@ -32,6 +33,10 @@ export const newWeighUpForm = z
   .refine((form) => form.priceLow <= form.priceMiddle && form.priceMiddle <= form.priceHigh, {
     path: ['priceMiddle'],
     message: 'price-order',
+  })
+  .refine((form) => form.priceHigh <= mostPriceRatio * form.priceLow, {
+    path: ['priceHigh'],
+    message: 'price-spread',
   });
 export type NewWeighUpForm = z.infer<typeof newWeighUpForm>;
 

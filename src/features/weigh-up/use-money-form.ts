@@ -5,7 +5,14 @@ import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { fieldIssues } from '#src/field-issues.ts';
-import { moneyForm, toAssumptions, toMoneyDraft, type MoneyDraft, type MoneyForm } from './money-form.ts';
+import {
+  moneyForm,
+  savedMoneyForm,
+  toAssumptions,
+  toMoneyDraft,
+  type MoneyDraft,
+  type MoneyForm,
+} from './money-form.ts';
 
 export type MoneyFormApi = UseFormReturn<MoneyDraft, unknown, MoneyForm>;
 
@@ -42,7 +49,12 @@ export function useMoneyForm(
   const { isDirty } = form.formState;
   // Saved elsewhere meanwhile: an untouched panel follows, a touched one keeps its base, so that saving meets the conflict.
   if (weighUp.revision !== base.revision && !isDirty) setBase(weighUp);
-  useEffect(() => form.reset(toMoneyDraft(base, crop)), [form, base, crop]);
+  useEffect(() => {
+    const draft = toMoneyDraft(base, crop);
+    form.reset(draft);
+    // Saved before there were limits: reckoned with, and marked, since it has to be put right before anything is saved.
+    if (!moneyForm.safeParse(draft).success) void form.trigger();
+  }, [form, base, crop]);
   const typed = useWatch({ control: form.control });
   const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
   const fitting = useLastFitting(parsed.success ? parsed.data : undefined, toMoneyDraft(base, crop));
@@ -58,7 +70,7 @@ export function useMoneyForm(
 
 /** What fits now, else what fitted last: the page goes on showing figures while a number is being typed. */
 function useLastFitting(now: MoneyForm | undefined, saved: MoneyDraft): MoneyForm {
-  const [last, setLast] = useState(() => moneyForm.parse(saved));
+  const [last, setLast] = useState(() => savedMoneyForm.parse(saved));
   if (now !== undefined && now !== last) setLast(now);
   return now ?? last;
 }

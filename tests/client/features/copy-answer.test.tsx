@@ -112,11 +112,28 @@ describe('the answer of a copy', () => {
       '0',
       'This price does not cover haulage, harvest and drying, and what quality may take off ($20/t).',
     ],
+    [
+      'more than ten times the frozen one',
+      '2901',
+      'This is more than ten times the price in this copy. Please check the figure.',
+    ],
   ])('keeps the frozen figures while the price is %s', async (_case, typed, message) => {
     await open();
     await typePrice(typed);
     expect(screen.getByText(message)).toBeDefined();
     expect(priceField().getAttribute('aria-invalid')).toBe('true');
+    expect(screen.queryByText(/^Your own number/)).toBeNull();
+    expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
+  });
+
+  it('keeps the frozen figures while seed costs more than 50 tonnes of the crop bring', async () => {
+    await open();
+    await typeSeed('Ostermoor', '999999');
+    // 50 × 290
+    expect(
+      screen.getByText(/^No seed costs more than 50 tonnes of the crop bring, here \$14,500\/ha\./),
+    ).toBeDefined();
+    expect(seedField('Ostermoor').getAttribute('aria-invalid')).toBe('true');
     expect(screen.queryByText(/^Your own number/)).toBeNull();
     expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
   });

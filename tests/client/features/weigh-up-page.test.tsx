@@ -200,6 +200,38 @@ describe('the money panel', () => {
     });
   });
 
+  it('refuses a cost that nobody pays, and takes it back as soon as the price explains it', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    const dear = /more than 50 tonnes of the crop bring/;
+    await user.clear(panel.getByLabelText('Seed, Ostermoor'));
+    await user.type(panel.getByLabelText('Seed, Ostermoor'), '15000');
+    expect(await panel.findByText(dear)).toBeTruthy();
+    expect(panel.getByText(/Some numbers do not fit/)).toBeTruthy();
+    // 50 × 310 are 15,500.
+    await user.clear(panel.getByLabelText('Middle'));
+    await user.type(panel.getByLabelText('Middle'), '310');
+    await waitFor(() => expect(panel.queryByText(dear)).toBeNull());
+    expect(panel.queryByText(/Some numbers do not fit/)).toBeNull();
+  });
+
+  it('opens with what was saved before there were limits, reckons with it and marks it', async () => {
+    const { seedCosts } = weighUp.assumptions;
+    const dear = { seedPerHectare: 999_999, treatmentPerHectare: 0, royaltyPerHectare: 0 };
+    const assumptions = { ...weighUp.assumptions, seedCosts: { ...seedCosts, [idOf(2)]: dear } };
+    serve(
+      () => Response.json(opened),
+      () => ({ ...opened, weighUp: { ...weighUp, assumptions } }),
+    );
+    await open();
+    const panel = within(await money());
+    expect(screen.getByText('−$999,773/ha')).toBeTruthy();
+    expect(panel.getByLabelText('Seed, Ostermoor')).toHaveProperty('value', '999,999');
+    expect(await panel.findByText(/more than 50 tonnes of the crop bring/)).toBeTruthy();
+  });
+
   it('makes no copy of numbers that are not saved', async () => {
     serve(() => Response.json(opened));
     await open();
