@@ -28,6 +28,13 @@ export const decisionInput = z
   });
 export type DecisionInput = z.infer<typeof decisionInput>;
 
+/**
+ * Whether a decision is on more hectares than the weigh-up is about. An area that was shown rounded, in acres say, may be
+ * typed again: a thousandth more is the same.
+ */
+export const isOverArea = (decided: number | null, weighUpHectares: number): boolean =>
+  decided !== null && decided > weighUpHectares * 1.001;
+
 /** What was said of a candidate when it was decided on; yields in t/ha, the chance between 0 and 1. */
 export const saidOfCandidate = z.object({
   varietyId: z.uuid(),

@@ -1,11 +1,11 @@
-import type { Decision, DecisionInput, SaidThen } from '#shared/decision.ts';
+import { isOverArea, type Decision, type DecisionInput, type SaidThen } from '#shared/decision.ts';
 import { CodedError } from '#shared/error-codes.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 
 /**
  * A decision with what the evidence said of every candidate when it was taken.
  * @param recordedBy name of who records it
- * @throws CodedError invalid-input for a candidate that was not weighed
+ * @throws CodedError invalid-input for a candidate that was not weighed, and for more hectares than the weigh-up is about
  */
 export function describeDecision(
   input: DecisionInput,
@@ -13,6 +13,8 @@ export function describeDecision(
   result: WeighUpResult,
   recordedBy: string,
 ): Decision {
+  if (isOverArea(input.areaHectares, weighUp.areaHectares))
+    throw new CodedError('invalid-input', { issues: [{ path: 'areaHectares', reason: 'over-area' }] });
   return {
     ...input,
     varietyName: nameChosen(input, weighUp, result),

@@ -139,6 +139,13 @@ test('a variety that was not weighed cannot be chosen', async () => {
   expect((await read(weighUp.id)).decision).toBeNull();
 });
 
+test('it is on no more hectares than the weigh-up, whose area may have been shown rounded', async () => {
+  const weighUp = await record.make();
+  const refused = await put(weighUp, birch({ areaHectares: weighUp.areaHectares * 1.01 })).expect(400);
+  expect(refused.body.error.issues).toMatchObject([{ path: 'areaHectares', reason: 'over-area' }]);
+  await put(weighUp, birch({ areaHectares: weighUp.areaHectares * 1.0005 })).expect(200);
+});
+
 test('the decision, with its reason, stays out of the grower copy', async () => {
   const weighUp = await record.make();
   await put(weighUp, birch({ reason: 'he owes me a favour' })).expect(200);

@@ -10,7 +10,7 @@ import { Select } from '#src/components/select.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
 import { fieldIssues } from '#src/field-issues.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
-import { decisionForm, hasArea, toDecisionDraft, type DecisionDraft } from './decision-form.ts';
+import { decisionFormOn, hasArea, toDecisionDraft, type DecisionDraft } from './decision-form.ts';
 
 type DecisionFormFieldsProps = {
   weighUp: WeighUp;
@@ -31,7 +31,7 @@ export function DecisionFormFields(props: DecisionFormFieldsProps) {
   const { t } = useTranslation(['record', 'weigh-up', 'common']);
   const fieldErrorText = useFieldErrorText();
   const form = useForm<DecisionDraft, unknown, DecisionInput>({
-    resolver: zodResolver(decisionForm, fieldIssues),
+    resolver: zodResolver(decisionFormOn(weighUp.areaHectares), fieldIssues),
     defaultValues: toDecisionDraft(decision, weighUp),
   });
   const { errors } = form.formState;

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { decisionInput, type Decision, type DecisionInput } from '#shared/decision.ts';
+import { decisionInput, isOverArea, type Decision, type DecisionInput } from '#shared/decision.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 
 /** What is typed: the choice in one list, a candidate by its id, the others by their word. */
@@ -9,8 +9,18 @@ const typedDecision = z.object({
   reason: z.string(),
 });
 
-/** The typed decision, turned into one that is saved; what does not fit is said beside its field. */
-export const decisionForm = typedDecision.transform(toDecisionInput).pipe(decisionInput);
+/**
+ * The typed decision, turned into one that is saved; what does not fit is said beside its field.
+ * @param weighUpHectares what the weigh-up is about
+ */
+export const decisionFormOn = (weighUpHectares: number) =>
+  typedDecision
+    .transform(toDecisionInput)
+    .pipe(decisionInput)
+    .refine(({ areaHectares }) => !isOverArea(areaHectares, weighUpHectares), {
+      path: ['areaHectares'],
+      message: 'over-area',
+    });
 export type DecisionDraft = z.input<typeof typedDecision>;
 
 /** Whether a choice has hectares: what is undecided has none. */

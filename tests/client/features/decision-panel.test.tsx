@@ -119,6 +119,23 @@ describe('the decision on a weigh-up', () => {
     expect(saved[0]?.decision).toMatchObject({ choice: 'undecided', areaHectares: null });
   });
 
+  it('takes no more hectares than the weigh-up is about, and says where its area is changed', async () => {
+    const saved = serve({ decision: null });
+    const user = await open();
+    await user.selectOptions(await screen.findByLabelText('Chosen'), 'Ostermoor');
+    await user.type(screen.getByLabelText('Why'), 'It stood up.');
+    await user.clear(screen.getByLabelText('On'));
+    await user.type(screen.getByLabelText('On'), '1 250,50');
+    await user.click(screen.getByRole('button', { name: 'Record the decision' }));
+    expect(await screen.findByText(/more than the area of this weigh-up/)).toBeTruthy();
+    expect(screen.getByLabelText('On')).toBe(document.activeElement);
+    await user.clear(screen.getByLabelText('On'));
+    await user.type(screen.getByLabelText('On'), '119,5');
+    await user.click(screen.getByRole('button', { name: 'Record the decision' }));
+    await waitFor(() => expect(saved).toHaveLength(1));
+    expect(saved[0]?.decision).toMatchObject({ areaHectares: 119.5 });
+  });
+
   it('recorded in another tab meanwhile, it is shown, and what is being written here stays', async () => {
     const elsewhere: { decision: Decision | null } = { decision: null };
     serve(elsewhere);
