@@ -8,6 +8,7 @@ import { Field } from '#src/components/field.tsx';
 import { MeasureInput } from '#src/components/measure-input.tsx';
 import { Select } from '#src/components/select.tsx';
 import { TextArea } from '#src/components/text-input.tsx';
+import { useFormat } from '#src/components/use-format.ts';
 import { fieldIssues } from '#src/field-issues.ts';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
 import { decisionFormOn, hasArea, toDecisionDraft, type DecisionDraft } from './decision-form.ts';
@@ -16,6 +17,8 @@ type DecisionFormFieldsProps = {
   weighUp: WeighUp;
   result: WeighUpResult;
   decision: Decision | null;
+  /** The decision whose record of what was said is lost when this one is recorded, as the evidence has moved since. */
+  replaced: Decision | null;
   /** The numbers on the page are not the saved ones, which would be kept with the decision. */
   hasUnsaved: boolean;
   isBusy: boolean;
@@ -27,7 +30,8 @@ type DecisionFormFieldsProps = {
 
 /** What was chosen, on how many hectares, and why. */
 export function DecisionFormFields(props: DecisionFormFieldsProps) {
-  const { weighUp, result, decision, hasUnsaved, isBusy, onTyped, onSave, onCancel } = props;
+  const { weighUp, result, decision, replaced, hasUnsaved, isBusy, onTyped, onSave, onCancel } = props;
+  const format = useFormat();
   const { t } = useTranslation(['record', 'weigh-up', 'common']);
   const fieldErrorText = useFieldErrorText();
   const form = useForm<DecisionDraft, unknown, DecisionInput>({
@@ -77,6 +81,9 @@ export function DecisionFormFields(props: DecisionFormFieldsProps) {
       >
         <TextArea {...form.register('reason')} maxLength={1000} />
       </Field>
+      {replaced !== null && (
+        <p className="text-sm">{t('record:decision.replaces', { date: format.date(replaced.decidedAt) })}</p>
+      )}
       {hasUnsaved && <p className="text-sm font-semibold">{t('record:decision.saveFirst')}</p>}
       <div className="flex flex-wrap gap-3">
         <Button type="submit" isBusy={isBusy} disabled={hasUnsaved}>

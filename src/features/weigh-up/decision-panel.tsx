@@ -7,9 +7,11 @@ import { recordDecision } from '#shared/weigh-up-record.ts';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
 import { callApi } from '#src/api-client.ts';
 import { Button } from '#src/components/button.tsx';
+import { Actions, Dialog } from '#src/components/dialog.tsx';
 import { FoldedSection } from '#src/components/folded-section.tsx';
 import { Skeleton } from '#src/components/skeleton.tsx';
 import { showToast } from '#src/components/toaster.tsx';
+import { useFormat } from '#src/components/use-format.ts';
 import { fillPath, paths } from '#src/paths.ts';
 import { QueryErrorState } from '#src/query-error-state.tsx';
 import { DecisionFormFields } from './decision-form-fields.tsx';
@@ -56,6 +58,7 @@ function OwnDecision({
   const { t } = useTranslation('record');
   // Once it is typed into, the form stays, also where a decision recorded elsewhere comes in.
   const [isChanging, setIsChanging] = useState(false);
+  const [isTakingBack, setIsTakingBack] = useState(false);
   const saving = useDecisionSaving(weighUp, () => setIsChanging(false));
   const rows = decision === null ? [] : pairThenAndNow(decision.said, weighUp, result);
   return (
@@ -67,18 +70,51 @@ function OwnDecision({
           {...{ weighUp, result, decision, hasUnsaved }}
           isBusy={saving.isPending}
           onTyped={() => setIsChanging(true)}
+          replaced={hasMoved(rows) ? decision : null}
           onSave={(input) => saving.mutate(input)}
           onCancel={decision && (() => setIsChanging(false))}
         />
       ) : (
         <div className="flex flex-wrap gap-3">
           <Button onClick={() => setIsChanging(true)}>{t('decision.change')}</Button>
-          <Button tone="quiet" isBusy={saving.isPending} onClick={() => saving.mutate(null)}>
+          <Button tone="quiet" onClick={() => setIsTakingBack(true)}>
             {t('decision.takeBack')}
           </Button>
         </div>
       )}
+      {decision !== null && isTakingBack && (
+        <TakeBackDialog
+          decision={decision}
+          saving={saving}
+          onConfirm={() => saving.mutate(null, { onSettled: () => setIsTakingBack(false) })}
+          onClose={() => setIsTakingBack(false)}
+        />
+      )}
     </>
+  );
+}
+
+type TakeBackDialogProps = {
+  decision: Decision;
+  saving: ReturnType<typeof useDecisionSaving>;
+  onConfirm: () => void;
+  onClose: () => void;
+};
+
+/** What was said when it was decided cannot be had again once it is gone, so this is asked for twice. */
+function TakeBackDialog({ decision, saving, onConfirm, onClose }: TakeBackDialogProps) {
+  const { t } = useTranslation(['record', 'common']);
+  const format = useFormat();
+  return (
+    <Dialog isOpen title={t('record:decision.takeBackTitle')} onClose={onClose}>
+      <p>{t('record:decision.takeBackText', { date: format.date(decision.decidedAt) })}</p>
+      <Actions>
+        <Button onClick={onClose}>{t('common:cancel')}</Button>
+        <Button tone="danger" isBusy={saving.isPending} onClick={onConfirm}>
+          {t('record:decision.takeBack')}
+        </Button>
+      </Actions>
+    </Dialog>
   );
 }
 

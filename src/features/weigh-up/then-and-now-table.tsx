@@ -50,7 +50,7 @@ function Said({ said }: { said: SaidOfCandidate }) {
   const { verdict, estimate, interval, chancePays } = said;
   const gap = (value: number) => format.gap(value, 't/ha', decimals);
   return (
-    <span className="flex flex-col gap-0.5">
+    <span className="flex flex-col gap-0.5 text-left">
       <VerdictMark verdict={verdict} />
       {estimate !== null && interval !== null && verdict !== 'thin' && (
         <span className="text-sm">

@@ -1,4 +1,4 @@
-import { screen, waitFor } from '@testing-library/react';
+import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { useQueryClient } from '@tanstack/react-query';
 import { describe, expect, it, vi } from 'vitest';
@@ -190,10 +190,36 @@ describe('the decision on a weigh-up', () => {
     expect(screen.getByText(/Then the gaps were measured from Fallow/)).toBeTruthy();
   });
 
+  it('is taken back only once it was said what goes with it', async () => {
+    const saved = serve({ decision: buildDecision() });
+    const user = await open();
+    await user.click(await screen.findByRole('button', { name: 'Take it back' }));
+    const dialog = within(screen.getByRole('dialog', { name: 'Take this decision back?' }));
+    expect(dialog.getByText(/what the evidence said on 1 December 2025/)).toBeTruthy();
+    await user.click(dialog.getByRole('button', { name: 'Cancel' }));
+    expect(screen.queryByRole('dialog')).toBeNull();
+    expect(saved).toEqual([]);
+    await user.click(screen.getByRole('button', { name: 'Take it back' }));
+    await user.click(within(screen.getByRole('dialog')).getByRole('button', { name: 'Take it back' }));
+    await waitFor(() => expect(saved).toEqual([{ revision: 3, decision: null }]));
+    await waitFor(() => expect(screen.queryByRole('dialog')).toBeNull());
+  });
+
+  it('says before it is changed that what was said then is lost, where the evidence has moved', async () => {
+    serve({ decision: buildDecision() });
+    const user = await open();
+    const loses = /moved since 1 December 2025. Recorded again/;
+    expect(await screen.findByText('Ostermoor, on 40 ha')).toBeTruthy();
+    expect(screen.queryByText(loses)).toBeNull();
+    await user.click(screen.getByRole('button', { name: 'Change the decision' }));
+    expect(screen.getByText(loses)).toBeTruthy();
+  });
+
   it('overwrites nothing where somebody saved in between', async () => {
     const saved = serve({ decision: buildDecision() }, 409);
     const user = await open();
     await user.click(await screen.findByRole('button', { name: 'Take it back' }));
+    await user.click(within(screen.getByRole('dialog')).getByRole('button', { name: 'Take it back' }));
     await waitFor(() => expect(saved).toHaveLength(1));
     expect(await screen.findByRole('alert')).toBeTruthy();
     expect(screen.getByText('Ostermoor, on 40 ha')).toBeTruthy();
