@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { useRef, useState } from 'react';
 import { useMutation, useQueryClient } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { tickOffTrials } from '#shared/weigh-up-record.ts';
@@ -87,6 +87,7 @@ function ReasonForm({ isBusy, failure, onCancel, onSave }: ReasonFormProps) {
   const { t } = useTranslation(['record', 'common', 'errors']);
   const [reason, setReason] = useState('');
   const [isRefused, setIsRefused] = useState(false);
+  const field = useRef<HTMLTextAreaElement>(null);
   const isMissing = reason.trim() === '';
   return (
     <form
@@ -94,7 +95,8 @@ function ReasonForm({ isBusy, failure, onCancel, onSave }: ReasonFormProps) {
       onSubmit={(event) => {
         event.preventDefault();
         setIsRefused(isMissing);
-        if (!isMissing) onSave(reason);
+        if (isMissing) field.current?.focus();
+        else onSave(reason);
       }}
     >
       <p className="mb-3">{t('record:tickOff.text')}</p>
@@ -103,7 +105,12 @@ function ReasonForm({ isBusy, failure, onCancel, onSave }: ReasonFormProps) {
         error={isRefused && isMissing ? t('errors:fields.required') : undefined}
         isRequired
       >
-        <TextArea value={reason} maxLength={500} onChange={(event) => setReason(event.target.value)} />
+        <TextArea
+          ref={field}
+          value={reason}
+          maxLength={500}
+          onChange={(event) => setReason(event.target.value)}
+        />
       </Field>
       <PanelFailure error={failure} />
       <Actions>

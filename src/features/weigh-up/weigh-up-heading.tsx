@@ -34,8 +34,10 @@ export function WeighUpHeading({ weighUp, result }: WeighUpHeadingProps) {
     to,
     date: format.date(result.computedAt),
   };
+  const restsOn = t(from === to ? 'weigh-up:page.belowOneSeason' : 'weigh-up:page.below', figures);
+  const tickedOff = result.leftOut.filter(({ reason }) => reason === 'ticked-off').length;
   const below = isWeighed
-    ? t(from === to ? 'weigh-up:page.belowOneSeason' : 'weigh-up:page.below', figures)
+    ? [restsOn, ...(tickedOff > 0 ? [t('weigh-up:page.tickedOff', { count: tickedOff })] : [])].join(' · ')
     : t('weigh-up:page.belowNoTrials', {
         from: weighUp.seasonFrom,
         to: weighUp.seasonTo,

@@ -73,6 +73,7 @@ describe('ticking a trial off', () => {
     const dialog = within(screen.getByRole('dialog'));
     await user.click(dialog.getByRole('button', { name: 'Tick it off' }));
     expect(dialog.getByText('Please fill this in.')).toBeTruthy();
+    expect(document.activeElement).toBe(dialog.getByLabelText('Why should it not count?'));
     expect(saved).toEqual([]);
     await user.type(dialog.getByLabelText('Why should it not count?'), 'Wrong field.');
     await user.click(dialog.getByRole('button', { name: 'Tick it off' }));
