@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import type { ErrorRequestHandler, Request, RequestHandler, Response, Router } from 'express';
-import type { ErrorCode } from '#shared/error-codes.ts';
+import { CodedError, type ErrorCode } from '#shared/error-codes.ts';
 import { languages, type Language } from '#shared/language.ts';
 import { readUnitParameter } from '#shared/reader-units.ts';
 import type { YieldUnit } from '#shared/units.ts';
@@ -47,9 +47,14 @@ export function addCopyPage(
     sendTagged(request, response.type('json'), JSON.stringify(takeCopyScriptData(copy, spoken)));
   });
 
+  // A link that was cut short or run on leads nowhere either, and whoever follows it is told so by the same page.
+  router.use('/copy', () => {
+    throw new CodedError('link-unknown');
+  });
+
   const showFailure: ErrorRequestHandler = (error: unknown, request, response, next) => {
     if (response.closed) return;
-    const failure = settleFailure(error, request, response);
+    const failure = settleFailure(nameGarbled(error), request, response);
     if (failure === null) {
       next(error);
       return;
@@ -64,6 +69,10 @@ export function addCopyPage(
   };
   router.use('/copy', showFailure);
 }
+
+/** A link with signs that no address can hold is as unknown as any other that was mistyped. */
+const nameGarbled = (error: unknown): unknown =>
+  error instanceof URIError ? new CodedError('link-unknown', { cause: error }) : error;
 
 const linkFailures: readonly CopyFailure[] = ['link-unknown', 'link-expired', 'link-revoked'];
 

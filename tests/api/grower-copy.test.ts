@@ -211,6 +211,9 @@ test.each([
   ['no link at all', '%27%20or%20true--'],
   ['far too long', 'A'.repeat(400)],
   ['with a sign that no database holds', 'A%00'],
+  ['garbled', '%E0%A4%A'],
+  ['left out', ''],
+  ['run on', `${'A'.repeat(32)}/and-more`],
 ])('a link that is %s is unknown', (_case, token) => expectClosed(token, 404, 'link-unknown'));
 
 test('a revoked link is gone at once and stays gone, and the log knows who closed it', async () => {
