@@ -5,13 +5,13 @@ import { Link, type LinkProps } from 'react-router-dom';
 export type ButtonTone = 'main' | 'plain' | 'quiet' | 'danger';
 
 const shape =
-  'tap-target inline-flex items-center justify-center gap-2 rounded-md px-4 py-2 text-center font-semibold no-underline disabled:opacity-60';
+  'tap-target inline-flex items-center justify-center gap-2 rounded-md py-2 text-center font-semibold no-underline disabled:opacity-60';
 
 const tones: Record<ButtonTone, string> = {
-  main: 'bg-action text-on-action border border-action hover:underline',
-  plain: 'bg-card text-action border border-action hover:underline',
-  quiet: 'text-action underline underline-offset-4 px-2 font-normal hover:decoration-2',
-  danger: 'bg-card text-stop border border-stop hover:underline',
+  main: 'bg-action text-on-action border border-action px-4 hover:underline',
+  plain: 'bg-card text-action border border-action px-4 hover:underline',
+  quiet: 'text-action underline underline-offset-4 px-2 hover:decoration-2',
+  danger: 'bg-card text-stop border border-stop px-4 hover:underline',
 };
 
 type ButtonProps = ComponentProps<'button'> & {

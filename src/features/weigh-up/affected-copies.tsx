@@ -120,7 +120,13 @@ function RenewedCopy({
           ? t('copies.affected.doneSent', { grower: from.growerName, to: from.sentTo })
           : t('copies.affected.done', { grower: from.growerName })}
       </p>
-      <CopyLink weighUpId={from.weighUpId} copyId={made.copy.id} link={made.link} isMailSetUp={isMailSetUp} />
+      <CopyLink
+        weighUpId={from.weighUpId}
+        copyId={made.copy.id}
+        link={made.link}
+        isMailSetUp={isMailSetUp}
+        sentTo={null}
+      />
     </div>
   );
 }

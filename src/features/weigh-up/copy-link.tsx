@@ -12,10 +12,12 @@ type CopyLinkProps = {
   /** The whole address, its secret last. */
   link: string;
   isMailSetUp: boolean;
+  /** Where the mail goes that was asked for with the copy; null for none. */
+  sentTo: string | null;
 };
 
 /** The secret link, shown once: only its hash is kept. By camera, by mail, or copied. */
-export function CopyLink({ weighUpId, copyId, link, isMailSetUp }: CopyLinkProps) {
+export function CopyLink({ weighUpId, copyId, link, isMailSetUp, sentTo }: CopyLinkProps) {
   const { t } = useTranslation('weigh-up');
   const [state, setState] = useState<'new' | 'copied' | 'failed'>('new');
   const token = link.slice(link.lastIndexOf('/') + 1);
@@ -32,6 +34,11 @@ export function CopyLink({ weighUpId, copyId, link, isMailSetUp }: CopyLinkProps
     <div className="flex flex-col gap-3 rounded-lg border border-action bg-card p-4 sm:p-5">
       <h3>{t('copies.linkTitle')}</h3>
       <p className="text-sm">{t('copies.linkText')}</p>
+      {sentTo !== null && (
+        <p role="status" className="font-semibold">
+          {t('copies.sendQueued', { to: sentTo })}
+        </p>
+      )}
       <div className="flex flex-wrap items-start gap-4">
         <LinkQrCode link={link} />
         <div className="flex min-w-0 grow basis-64 flex-col gap-3">

@@ -56,6 +56,7 @@ export function HandOver({ weighUpId, hasUnsaved }: HandOverProps) {
           copyId={making.data.copy.id}
           link={making.data.link}
           isMailSetUp={copies.data?.isMailSetUp ?? false}
+          sentTo={making.variables.wish.email ?? null}
         />
       )}
       <h3>{t('copies.list')}</h3>

@@ -1,3 +1,4 @@
+import { useEffect, useRef } from 'react';
 import { useTranslation } from 'react-i18next';
 import { Link, useSearchParams } from 'react-router-dom';
 import type { WeighUp, WeighUpResult } from '#shared/weigh-up.ts';
@@ -78,12 +79,26 @@ export function WeighUpHeading({ weighUp, result }: WeighUpHeadingProps) {
 function Steps() {
   const { t } = useTranslation('weigh-up');
   const patch = useUrlPatch();
-  if (useWeighUpView() === 'table') {
-    return <Button onClick={() => patch({ view: null })}>{t('table.close')}</Button>;
+  const view = useWeighUpView();
+  const turn = useRef<HTMLButtonElement>(null);
+  const shown = useRef(view);
+  // Whoever turns round by key goes on from the way back: what they stood on is gone.
+  useEffect(() => {
+    if (shown.current !== view) turn.current?.focus({ preventScroll: true });
+    shown.current = view;
+  }, [view]);
+  if (view === 'table') {
+    return (
+      <Button ref={turn} onClick={() => patch({ view: null })}>
+        {t('table.close')}
+      </Button>
+    );
   }
   return (
     <>
-      <Button onClick={() => patch({ view: 'table' }, { isStep: true })}>{t('table.open')}</Button>
+      <Button ref={turn} onClick={() => patch({ view: 'table' }, { isStep: true })}>
+        {t('table.open')}
+      </Button>
       <SectionLink
         id="hand-over"
         className="tap-target inline-flex items-center rounded-md border border-action bg-action px-4 py-2 font-semibold text-on-action no-underline hover:underline"

@@ -107,6 +107,7 @@ describe('handing a copy over', () => {
         email: 'maren@example.org',
       }),
     );
+    expect(await screen.findByText(/The mail to maren@example.org is on its way/)).toBeTruthy();
   });
 
   it('keeps another phone number in the account before the copy is made, and an unchanged one not', async () => {

@@ -400,6 +400,20 @@ describe('the page in bushels and acres', () => {
     await user.click(screen.getByRole('button', { name: 'Back to the full page' }));
     expect(within(await money()).getByLabelText('Middle')).toHaveProperty('value', '300');
   });
+
+  it('is turned round and back by key alone: focus goes on from the way back', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    await money();
+    const user = userEvent.setup();
+    screen.getByRole('button', { name: 'Table view' }).focus();
+    await user.keyboard('{Enter}');
+    const back = screen.getByRole('button', { name: 'Back to the full page' });
+    expect(document.activeElement).toBe(back);
+    screen.getByRole('button', { name: /^Ostermoor/ }).focus();
+    await user.keyboard('{Escape}');
+    expect(document.activeElement).toBe(screen.getByRole('button', { name: 'Table view' }));
+  });
 });
 
 describe('a candidate’s row', () => {
