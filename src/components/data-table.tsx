@@ -80,7 +80,7 @@ export function DataTable<Row>({
           columns={columns.filter((column) => column.sortValue)}
           sort={sort}
           onSort={setSort}
-          className="hidden border-b-2 border-ink pb-3 @max-xl:flex"
+          className="hidden border-b-2 border-ink pb-3 @max-[44rem]:flex"
         />
       )}
       <div

@@ -33,7 +33,7 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
     <>
       {nameTrait(trait, language)}
       <span
-        className={`text-sm font-normal text-faded ${isTable ? 'block @max-xl:ml-2 @max-xl:inline' : 'ml-2'}`}
+        className={`text-sm font-normal text-faded ${isTable ? 'block @max-[44rem]:ml-2 @max-[44rem]:inline' : 'ml-2'}`}
       >
         {[t('trialCount', { count: trialsOf(trait) }), sayDirection(trait, t)]
           .filter((words) => words !== null)
@@ -98,7 +98,7 @@ function TraitCell({ candidate, trait, currentName }: TraitCellProps) {
     );
   }
   return (
-    <span className="flex flex-wrap items-baseline gap-x-2 @max-xl:justify-end">
+    <span className="flex flex-wrap items-baseline gap-x-2 @max-[44rem]:justify-end">
       <span className="font-semibold whitespace-nowrap">{words.gap}</span>
       {words.verdict === null ? (
         <span className="text-sm">{t('traits.differs')}</span>

@@ -99,7 +99,7 @@ function isTyping(target: EventTarget | null): boolean {
 
 type BarProps = Turning & { candidates: readonly CandidateResult[] };
 
-/** Two keys as large as a thumb, at the foot of the screen wherever the page is scrolled to. */
+/** Two keys as large as a thumb, at the foot of the screen wherever the page is scrolled to; a low screen keeps its room for the lines. */
 function TurningBar({ candidates, place, turn }: BarProps) {
   const { t } = useTranslation('weigh-up');
   const key = (to: number, words: 'previous' | 'next') => {
@@ -120,7 +120,7 @@ function TurningBar({ candidates, place, turn }: BarProps) {
   return (
     <nav
       aria-label={t('table.all')}
-      className="sticky bottom-0 flex items-center justify-between gap-4 border-t border-rule bg-paper py-3 print:hidden"
+      className="flex items-center justify-between gap-4 border-t border-rule bg-paper py-3 [@media(height>=30rem)]:sticky [@media(height>=30rem)]:bottom-0 print:hidden"
     >
       {key(place - 1, 'previous')}
       <p role="status" className="text-center text-lg">

@@ -100,21 +100,6 @@ const open = (query = '') =>
 
 const money = () => screen.findByRole('region', { name: 'Your numbers' });
 
-it('says over the answer how many trials were ticked off', async () => {
-  const left = {
-    ...{ trialId: idOf(50), name: 'Elmgate 2025', siteName: 'Elmgate', season: 2025, version: 1 },
-    ...{ sha256: 'ab', meanYield: 4.2, cvPercent: 7, reason: 'ticked-off', reasonText: 'Hail.' },
-  };
-  const superseded = { ...left, trialId: idOf(51), reason: 'no-variance' };
-  const result = { ...opened.result, leftOut: [left, superseded] };
-  serve(
-    () => Response.json(opened),
-    () => ({ ...opened, result }),
-  );
-  await open();
-  expect(await screen.findByText(/ · figures of 1 December 2026 · 1 trial ticked off$/)).toBeTruthy();
-});
-
 describe('the money panel', () => {
   it('reckons the return anew while a price is typed, and saves under the revision it was read at', async () => {
     const asked = serve(() => Response.json({ ...opened, weighUp: { ...weighUp, revision: 4 } }));

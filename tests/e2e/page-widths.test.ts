@@ -1,0 +1,57 @@
+import type { Page } from 'playwright-core';
+import { expect, it } from 'vitest';
+import { languages } from '#shared/language.ts';
+import { openDemoForFile } from '#tests/support/demo-visit.ts';
+import { openVisit, signInByFixture } from '#tests/support/visit.ts';
+
+const demo = openDemoForFile();
+
+/** From a small phone to a laptop; 640 is a laptop at 200 %. */
+const widths = [320, 360, 480, 600, 640, 680, 720, 768, 900, 1024, 1280];
+
+const roads = [
+  ['advisor', async (page: Page) => ['/weigh-ups', await findWeighUp(page), '/trials']],
+  ['agronomist', () => Promise.resolve(['/desk', '/desk/usual-variances'])],
+  ['administrator', () => Promise.resolve(['/accounts', '/accounts/audit-log'])],
+] as const;
+
+async function findWeighUp(page: Page): Promise<string> {
+  const { weighUps } = await (await page.request.get('/api/weigh-ups')).json();
+  return `/weigh-ups/${weighUps[0].id}`;
+}
+
+/** Widths at which the page scrolls sideways, with by how much. */
+async function findTooNarrow(page: Page): Promise<string[]> {
+  const found: string[] = [];
+  for (const width of widths) {
+    await page.setViewportSize({ width, height: 800 });
+    const over: number = await page.evaluate(
+      'document.documentElement.scrollWidth - document.documentElement.clientWidth',
+    );
+    if (over > 0) found.push(`${width}: ${over}`);
+  }
+  return found;
+}
+
+it.each(languages)(
+  'no page scrolls sideways at any width (%s)',
+  async (language) => {
+    const tooNarrow: Record<string, string[]> = {};
+    for (const [role, listPaths] of roads) {
+      const { page, context, close } = await openVisit(demo.browser, demo.app.url, language, 1280);
+      // The weigh-ups of the demo belong to one advisor, who may read in either language.
+      await signInByFixture(context, role, 'en');
+      await context.request.patch('/api/me', { data: { language } });
+      for (const path of await listPaths(page)) {
+        await page.goto(path);
+        await page.getByRole('heading', { level: 1 }).waitFor();
+        await page.waitForLoadState('networkidle');
+        const found = await findTooNarrow(page);
+        if (found.length > 0) tooNarrow[path] = found;
+      }
+      await close();
+    }
+    expect(tooNarrow).toEqual({});
+  },
+  120_000,
+);
