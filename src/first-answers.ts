@@ -17,6 +17,11 @@ function readPage(): Map<string, unknown> {
   return untaken;
 }
 
+/** Waits for what the page asks for by itself while the client is fetched, and takes it to what came with the page. */
+export async function awaitFirstAnswers(): Promise<void> {
+  for (const [address, reply] of (await window.askedAhead) ?? []) readPage().set(address, reply);
+}
+
 /**
  * The reply that came with the page, once: whoever asks after that asks the server.
  * @returns undefined where none came, or where it is not the contract's

@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { readBuiltFiles, readInlineFile, type InlineFile } from '#server/built-files.ts';
 import { firstAnswersId, verdictId, type FirstAnswers } from '#shared/page-exchange.ts';
 import { languages, type Language } from '#shared/language.ts';
-import { clientPages, type PageNeeds } from './page-needs.ts';
+import { clientPages, everyPageAsks, type PageNeeds } from './page-needs.ts';
 
 const fontsSource = 'src/fonts.css';
 const afterPaintSource = 'src/start-after-paint.ts';
@@ -20,7 +20,8 @@ export type PageDocument = {
   /**
    * The rest.
    * @param page whose code and sentences are fetched along with what every page needs; null for none
-   * @param answers replies that the page finds in itself instead of asking for them
+   * @param answers replies that the page finds in itself instead of asking for them; where it has a first view, it asks
+   *   for all but who is signed in as soon as that is painted: a slow phone would read them before it paints anything
    * @param firstView HTML that is seen until the client has rendered the page; may be empty
    */
   goOn: (page: PageNeeds | null, language: Language, answers: FirstAnswers, firstView: string) => string;
@@ -61,9 +62,9 @@ export function openPageDocument(clientFolder: string): PageDocument {
     return document.replace('</head>', () => `${links.join('')}</head>`);
   };
   /** What is seen first waits for no file, and all files for what is seen first. */
-  const withTop = (files: readonly string[]): string => {
+  const withTop = (files: readonly string[], asks: readonly string[]): string => {
     const all = [...new Set([...ofEveryPage, ...files])].join(' ');
-    const names = `data-styles="${styleAddress} ${fontsAddress}" data-ahead="${all}" data-starts="${entryAddress}"`;
+    const names = `data-styles="${styleAddress} ${fontsAddress}" data-asks="${asks.join(' ')}" data-ahead="${all}" data-starts="${entryAddress}"`;
     return document
       .replace(styleLink, () => `<style>${style.text}</style>${awaitVerdict}`)
       .replace(entryScript, '')
@@ -79,9 +80,10 @@ export function openPageDocument(clientFolder: string): PageDocument {
     goOn: (page, language, answers, firstView) => {
       const sources = [sentencesOf(language), ...(page === null ? [] : [page.source])];
       const files = [...new Set(sources.flatMap((source) => ahead.get(source) ?? []))];
-      const data = `<script type="application/json" id="${firstAnswersId}">${writeJson(answers)}</script>`;
+      const [inDocument, asks] = firstView === '' ? [answers, []] : putOff(answers);
+      const data = `<script type="application/json" id="${firstAnswersId}">${writeJson(inDocument)}</script>`;
       // Functions, because a replacement text would give `$` in a reply a meaning.
-      return (firstView === '' ? withFiles : withTop)(files).replace(
+      return (firstView === '' ? withFiles(files) : withTop(files, asks)).replace(
         '<div id="root"></div>',
         () => `<div id="root">${firstView}</div>${data}`,
       );
@@ -90,6 +92,12 @@ export function openPageDocument(clientFolder: string): PageDocument {
 }
 
 const linkAhead = (address: string): string => `<link rel="modulepreload" crossorigin href="${address}" />`;
+
+/** Who is signed in, whom the client starts for, and the addresses of everything else. */
+function putOff(answers: FirstAnswers): [now: FirstAnswers, later: string[]] {
+  const { [everyPageAsks.path]: me, ...others } = answers;
+  return [{ [everyPageAsks.path]: me }, Object.keys(others)];
+}
 
 /** A page without its answer is not painted: the browser would lay it out twice. */
 const awaitVerdict = `<link rel="expect" href="#${verdictId}" blocking="render" />`;

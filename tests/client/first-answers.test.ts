@@ -45,6 +45,18 @@ describe('answers that come with the page', () => {
     expect(takeFirstAnswer(listWeighUps, {})).toEqual({ weighUps: [] });
   });
 
+  it('are also those that the page has asked for by itself', async () => {
+    window.askedAhead = Promise.resolve([['/api/weigh-ups', { weighUps: [] }]]);
+    const { awaitFirstAnswers, takeFirstAnswer } = await loadPage({ '/api/me': { me: person } });
+    expect(takeFirstAnswer(listWeighUps, {})).toBeUndefined();
+    await awaitFirstAnswers();
+    expect(takeFirstAnswer(listWeighUps, {})).toEqual({ weighUps: [] });
+    expect(takeFirstAnswer(readMe, {})).toEqual({ me: person });
+    delete window.askedAhead;
+    await awaitFirstAnswers();
+    expect(takeFirstAnswer(listWeighUps, {})).toBeUndefined();
+  });
+
   it('are none where they are not what the contract promises, and none in a page without any', async () => {
     const broken = await loadPage({ '/api/me': { me: { ...person, role: 'king' } } });
     expect(broken.takeFirstAnswer(readMe, {})).toBeUndefined();

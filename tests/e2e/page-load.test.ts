@@ -1,3 +1,4 @@
+import { connect } from 'node:net';
 import type { BrowserContext, Page } from 'playwright-core';
 import { describe, expect, it } from 'vitest';
 import type { Language, Role } from '#shared/account.ts';
@@ -29,28 +30,38 @@ async function readDemoWeighUp(context: BrowserContext): Promise<WeighUp> {
   return (await readJson(context, `/api/weigh-ups/${weighUps[0].id}`)).weighUp;
 }
 
-/** The document of a page: what it says about keeping it, the files it names beforehand, the answers in it. */
+/** The document of a page: what it says about keeping it, the files it names beforehand, the answers in it, and what it asks for. */
 async function readDocument(context: BrowserContext, path: string, headers: Record<string, string> = {}) {
   const reply = await context.request.get(path, { headers });
   const html = await reply.text();
   const [, data = ''] = new RegExp(`id="${firstAnswersId}">(.*?)</script>`, 's').exec(html) ?? [];
-  const [, ahead = ''] = /data-ahead="(.*?)"/.exec(html) ?? [];
-  const preloads = `${ahead} ${(html.match(/rel="modulepreload"[^>]*/g) ?? []).join(' ')}`;
+  const named = (attribute: string) => new RegExp(`${attribute}="(.*?)"`).exec(html)?.[1] ?? '';
+  const preloads = `${named('data-ahead')} ${(html.match(/rel="modulepreload"[^>]*/g) ?? []).join(' ')}`;
   return {
     html,
     status: reply.status(),
     keeping: reply.headers()['cache-control'],
     names: [...preloads.matchAll(/\/assets\/([\w-]+)-[\w-]{8}\.js/g)].map(([, name]) => name),
     answers: JSON.parse(data) as Record<string, unknown>,
+    asks: named('data-asks').split(' '),
   };
+}
+
+/** A reply with its head and the lengths of its parts, letter by letter. */
+async function readAsSent({ hostname, port, host, pathname }: URL, cookie: string): Promise<string> {
+  const socket = connect(Number(port), hostname);
+  socket.write(`GET ${pathname} HTTP/1.1\r\nHost: ${host}\r\nCookie: ${cookie}\r\nConnection: close\r\n\r\n`);
+  const parts: Buffer[] = [];
+  for await (const part of socket) parts.push(part as Buffer);
+  return Buffer.concat(parts).toString('utf8');
 }
 
 describe('the document of a page', () => {
   it('carries for an advisor what the API would answer, and is kept nowhere', () =>
     visitAs('advisor', 'en', async (context) => {
       const { id } = await readDemoWeighUp(context);
-      const { keeping, names, answers } = await readDocument(context, `/weigh-ups/${id}?unit=bu-ac`);
       const asked = ['/api/me', `/api/weigh-ups/${id}`, '/api/catalogue'];
+      const { keeping, names, answers } = await readDocument(context, `/weigh-ups/${id}?view=table`);
       expect(Object.keys(answers).toSorted()).toEqual(asked.toSorted());
       for (const path of asked) {
         const { result, ...reply } = (await readJson(context, path)) as { result?: object };
@@ -61,6 +72,17 @@ describe('the document of a page', () => {
       expect(names).toEqual(expect.arrayContaining(['weigh-up-page', 'sentences-en']));
       const list = await readDocument(context, '/weigh-ups');
       expect(list.answers['/api/weigh-ups']).toEqual(await readJson(context, '/api/weigh-ups'));
+    }));
+
+  it('that begins with its verdict leaves to be asked for, after that, all but who is signed in', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const path = `/weigh-ups/${id}?unit=bu-ac`;
+      const { keeping, names, answers, asks } = await readDocument(context, path);
+      expect(answers).toEqual({ '/api/me': await readJson(context, '/api/me') });
+      expect(asks.toSorted()).toEqual([`/api/weigh-ups/${id}`, '/api/catalogue'].toSorted());
+      expect(keeping).toBe('no-store');
+      expect(names).toEqual(expect.arrayContaining(['weigh-up-page', 'sentences-en']));
     }));
 
   it('carries nothing of a weigh-up for nobody, for another advisor and for another role', async () => {
@@ -90,13 +112,13 @@ describe('the document of a page', () => {
   it('begins before its answers are read, in the language of whoever asks', () =>
     visitAs('advisor', 'en', async (context) => {
       const cookie = (await context.cookies()).map(({ name, value }) => `${name}=${value}`).join('; ');
-      const headers = { cookie, 'accept-encoding': 'identity' };
-      const reply = await fetch(`${demo.app.url}/weigh-ups`, { headers });
-      const chunks: string[] = [];
-      for await (const chunk of reply.body ?? []) chunks.push(new TextDecoder().decode(chunk));
-      expect(chunks[0]).toMatch(/^<!doctype html>\s*<html lang="en">/);
-      expect(chunks[0]).not.toContain('</head>');
-      expect(chunks.join('')).toContain(`id="${firstAnswersId}"`);
+      const sent = await readAsSent(new URL('/weigh-ups', demo.app.url), cookie);
+      // Each part stands under a line with its length, however many of them the network then carries together.
+      const [, firstPart = '', rest = ''] =
+        /\r\n\r\n[\da-f]+\r\n(.*?)\r\n[\da-f]+\r\n(.*)$/s.exec(sent) ?? [];
+      expect(firstPart).toMatch(/^<!doctype html>\s*<html lang="en">/);
+      expect(firstPart).not.toContain('</head>');
+      expect(rest).toContain(`id="${firstAnswersId}"`);
     }));
 
   it('waits for no weighing: an answer that is not stored yet is left to the page', () =>
@@ -108,9 +130,11 @@ describe('the document of a page', () => {
         })
       ).json();
       const path = `/weigh-ups/${made.id}`;
-      expect(Object.keys((await readDocument(context, path)).answers)).not.toContain(`/api${path}`);
+      const early = await readDocument(context, path);
+      expect([...Object.keys(early.answers), ...early.asks]).not.toContain(`/api${path}`);
       await readJson(context, `/api${path}`);
-      const { html, answers } = await readDocument(context, path);
+      expect((await readDocument(context, path)).asks).toContain(`/api${path}`);
+      const { html, answers } = await readDocument(context, `${path}?view=table`);
       expect(answers[`/api${path}`]).toMatchObject({ weighUp: { growerName: '</script><b>$&' } });
       expect(html).not.toContain('</script><b>');
     }));
@@ -201,7 +225,7 @@ describe('the top of a weigh-up’s page', () => {
 });
 
 describe('a first visit', () => {
-  it('shows the verdict from few files, without asking for what the document holds', () =>
+  it('shows the verdict from few files, and asks once for what it is made from', () =>
     visitAs('advisor', 'en', async (context) => {
       const { id } = await readDemoWeighUp(context);
       const page = await context.newPage();
@@ -215,10 +239,33 @@ describe('a first visit', () => {
       const files = asked.filter((path) => path.startsWith('/assets/'));
       expect(files.filter((path) => path.endsWith('.js')).length).toBeGreaterThan(2);
       expect(files.length).toBeLessThanOrEqual(14);
-      expect(asked).not.toEqual(expect.arrayContaining(['/api/me']));
-      expect(asked.filter((path) => path === `/api/weigh-ups/${id}` || path === '/api/catalogue')).toEqual(
-        [],
-      );
+      const ofTop = ['/api/me', '/api/catalogue', `/api/weigh-ups/${id}`];
+      expect(asked.filter((path) => ofTop.includes(path)).toSorted()).toEqual(ofTop.slice(1));
+      // Both are on their way before the client's code is.
+      expect(asked.indexOf('/api/catalogue')).toBeLessThan(asked.findIndex((path) => path.endsWith('.js')));
+    }));
+
+  it('keeps the verdict in view until what it is made from has come, and says so where it does not come', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const page = await context.newPage();
+      const held: (() => Promise<void>)[] = [];
+      await page.route(`**/api/weigh-ups/${id}`, (route) => {
+        held.push(() => route.continue());
+      });
+      await page.goto(`/weigh-ups/${id}`);
+      await page.evaluate('document.fonts.ready.then(() => undefined)');
+      await page.waitForTimeout(1500);
+      expect(await page.locator(`[inert] #${verdictId}`).isVisible()).toBe(true);
+      expect(held).toHaveLength(1);
+      await held[0]?.();
+      await page.getByRole('heading', { name: say('en', 'method:title') }).waitFor();
+      expect(held).toHaveLength(1);
+
+      await page.unroute(`**/api/weigh-ups/${id}`);
+      await page.route(`**/api/weigh-ups/${id}`, (route) => route.abort());
+      await page.goto(`/weigh-ups/${id}`);
+      await page.getByText(say('en', 'errors:offline')).first().waitFor();
     }));
 
   it('names no file that the browser would fetch before the verdict is painted, in a copy neither', () =>
@@ -249,6 +296,26 @@ describe('a first visit', () => {
         (part) => getComputedStyle(document.querySelector('main ' + part)).contentVisibility,
       )`;
       await expect.poll(() => page.evaluate(laidOut)).toEqual(['visible', 'visible', 'visible']);
+    }));
+
+  it('is read in one face until its style has come, and stays so for nobody: scripts or none', () =>
+    visitAs('advisor', 'en', async (context) => {
+      const { id } = await readDemoWeighUp(context);
+      const weight = `getComputedStyle(document.querySelector('#${verdictId} strong')).fontWeight`;
+      const page = await context.newPage();
+      await page.route('**/*.css', () => undefined);
+      await page.goto(`/weigh-ups/${id}`, { waitUntil: 'commit' });
+      await page.locator(`#${verdictId} strong`).first().waitFor();
+      expect(await page.evaluate(weight)).toBe('400');
+      await page.unroute('**/*.css');
+      await page.goto(`/weigh-ups/${id}`);
+      await expect.poll(() => page.evaluate(weight)).toBe('700');
+      const bare = await demo.browser.newContext({ baseURL: demo.app.url, javaScriptEnabled: false });
+      await signInByFixture(bare, 'advisor', 'en');
+      const still = await bare.newPage();
+      await still.goto(`/weigh-ups/${id}`);
+      expect(await still.evaluate(weight)).toBe('700');
+      await bare.close();
     }));
 
   it('is whole after the verdict, and an address leads to its section', () =>
