@@ -1,5 +1,6 @@
-import type { QualityRule, SeedCost } from './money.ts';
+import type { SeedCost } from './money.ts';
 import { budgetSeed } from './seed-budget.ts';
+import { findWorstCostPerTonne } from './tonne-costs.ts';
 
 /*
  * The limits are set in the crop's own price, since no amount is absurd in every currency. They stand well above what any
@@ -19,11 +20,10 @@ export type MoneyExcess = {
   reason: 'price-spread' | 'over-crop-worth' | 'over-price';
 };
 
-type LimitedMoney = {
+type LimitedMoney = Parameters<typeof findWorstCostPerTonne>[0] & {
   priceLow: number;
   priceMiddle: number;
   priceHigh: number;
-  qualityRules?: readonly QualityRule[] | undefined;
   seedCosts: Readonly<Record<string, SeedCost>>;
 };
 
@@ -44,10 +44,17 @@ const seedParts = {
 /** The most that anything may cost or bring per ha, at a price per tonne. */
 export const findMostPerHectare = (pricePerTonne: number): number => mostTonnesPerHectare * pricePerTonne;
 
+/** Prices that are refused for themselves, half typed say, are no measure of anything else. */
+function hasSoundPrices(money: LimitedMoney): boolean {
+  const { priceLow, priceMiddle, priceHigh } = money;
+  return priceLow > findWorstCostPerTonne(money) && priceLow <= priceMiddle && priceMiddle <= priceHigh;
+}
+
 /** Every figure beyond its limit. What was stored before there were limits is reckoned with all the same; only saving asks. */
 export function findMoneyExcess(money: LimitedMoney): MoneyExcess[] {
   const { priceLow, priceMiddle, priceHigh, qualityRules = [], seedCosts } = money;
   const excess: MoneyExcess[] = [];
+  if (!hasSoundPrices(money)) return excess;
   if (priceHigh > mostPriceRatio * priceLow) excess.push({ path: ['priceHigh'], reason: 'price-spread' });
   qualityRules.forEach(({ perTonne }, i) => {
     if (Math.abs(perTonne) > mostPremiumRatio * priceMiddle)

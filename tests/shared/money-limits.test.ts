@@ -67,3 +67,10 @@ test('limits follow the price, so that they hold in any currency', () => {
     `seedCosts.${candidate}.seedPerHectare over-crop-worth`,
   ]);
 });
+
+test('prices that are refused for themselves are no measure of costs', () => {
+  const reasons = (change: Partial<MoneyAssumptions>) =>
+    moneyInput.safeParse({ ...money, ...change }).error?.issues.map(({ message }) => message);
+  expect(reasons({ priceMiddle: 1 })).toEqual(['price-order']);
+  expect(reasons({ haulagePerTonne: 25, priceLow: 20, priceHigh: 290 })).toEqual(['price-under-costs']);
+});

@@ -78,7 +78,14 @@ export const savedMoneyForm = z
 
 /** What the money panel holds: prices and costs as typed, by variety id for seed. */
 export const moneyForm = savedMoneyForm.superRefine((form, context) =>
-  refuseMoneyExcess({ ...form, seedCosts: toSeedCosts(form) }, context),
+  refuseMoneyExcess(
+    {
+      ...leaveOutOpen(form),
+      ...{ priceLow: form.priceLow, priceMiddle: form.priceMiddle, priceHigh: form.priceHigh },
+      seedCosts: toSeedCosts(form),
+    },
+    context,
+  ),
 );
 export type MoneyForm = z.output<typeof moneyForm>;
 export type MoneyDraft = z.input<typeof moneyForm>;

@@ -205,12 +205,15 @@ describe('the money panel', () => {
     await open();
     const panel = within(await money());
     const user = userEvent.setup();
-    const dear = /more than 50 tonnes of the crop bring/;
+    const dear = /More than 50 tonnes of the crop bring/;
     await user.clear(panel.getByLabelText('Seed, Ostermoor'));
     await user.type(panel.getByLabelText('Seed, Ostermoor'), '15000');
     expect(await panel.findByText(dear)).toBeTruthy();
     expect(panel.getByText(/Some numbers do not fit/)).toBeTruthy();
-    // 50 × 310 are 15,500.
+    // 50 × 310 are 15,500; a price that is half typed marks no cost.
+    await user.clear(panel.getByLabelText('Middle'));
+    await user.type(panel.getByLabelText('Middle'), '1');
+    await waitFor(() => expect(panel.queryByText(dear)).toBeNull());
     await user.clear(panel.getByLabelText('Middle'));
     await user.type(panel.getByLabelText('Middle'), '310');
     await waitFor(() => expect(panel.queryByText(dear)).toBeNull());
@@ -229,7 +232,7 @@ describe('the money panel', () => {
     const panel = within(await money());
     expect(screen.getByText('−$999,773/ha')).toBeTruthy();
     expect(panel.getByLabelText('Seed, Ostermoor')).toHaveProperty('value', '999,999');
-    expect(await panel.findByText(/more than 50 tonnes of the crop bring/)).toBeTruthy();
+    expect(await panel.findByText(/More than 50 tonnes of the crop bring/)).toBeTruthy();
   });
 
   it('makes no copy of numbers that are not saved', async () => {
