@@ -147,8 +147,8 @@ function tellWorth(
   { currentName: current, money, areaHectares }: StoryGround,
   teller: StoryTeller,
 ): string[] {
-  const { say, write } = teller;
-  const { money: result, varietyName: name } = candidate;
+  const { say, write, unit, decimals } = teller;
+  const { money: result, varietyName: name, moneyGap } = candidate;
   if (result === null) return [say('verdicts:story.noMoney')];
   const isThin = candidate.verdict === 'thin';
   const signed = (amount: number) => write.moneyPer(amount, money.currency, 'ha', { isSigned: true });
@@ -161,9 +161,10 @@ function tellWorth(
     ...tellNetPrices(result, { name, current, currency: money.currency }, teller),
     ...tellShrunken(candidate, teller),
   ];
-  if (!isThin) {
+  if (!isThin && moneyGap !== null) {
     sentences.push(
       say('verdicts:story.return', {
+        gap: write.gap(moneyGap.estimate, unit, decimals),
         price: write.moneyPer(money.priceMiddle, money.currency, 't'),
         amount: signed(result.returnPerHectare),
         low: signed(result.returnAtLowPrice),

@@ -145,10 +145,12 @@ function WhoToAsk({ copy: { snapshot, expiresAt }, link }: Pick<CopyBodyProps, '
         {snapshot.advisorPhone !== null && (
           <>
             {' '}
-            {t('orCall')}{' '}
-            <a href={dialling(snapshot.advisorPhone)} className="tap-target inline-flex items-center">
-              {snapshot.advisorPhone}
-            </a>
+            <span className="inline-block">
+              {t('orCall')}{' '}
+              <a href={dialling(snapshot.advisorPhone)} className="tap-target inline-flex items-center">
+                {snapshot.advisorPhone}
+              </a>
+            </span>
           </>
         )}
       </p>

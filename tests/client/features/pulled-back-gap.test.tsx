@@ -1,6 +1,7 @@
 import { screen } from '@testing-library/react';
 import { describe, expect, it } from 'vitest';
 import { weighMoney } from '#shared/partial-budget.ts';
+import { CandidateStory } from '#src/components/candidate-story.tsx';
 import { CandidateStrip } from '#src/features/weigh-up/candidate-strip.tsx';
 import { TableCandidate } from '#src/features/weigh-up/table-candidate.tsx';
 import { renderClient } from '#tests/client/support/render-client.tsx';
@@ -33,6 +34,22 @@ describe('a return that the drawn tick seems to contradict', () => {
       namespaces: ['verdicts', 'weigh-up'],
     });
     expect(screen.getByText(words)).toBeTruthy();
+  });
+
+  it('is told of the gap that it is reckoned on, not of the estimate', async () => {
+    const candidate = buildPulledBack(0.2, 0.05);
+    await renderClient(
+      <CandidateStory
+        candidate={candidate}
+        currentName="Brindle"
+        money={assumptions}
+        areaHectares={120}
+        unit="t/ha"
+        decimals={2}
+      />,
+      { namespaces: ['verdicts'] },
+    );
+    expect(screen.getByText(/a gap of \+0\.05 t\/ha returns −/)).toBeTruthy();
   });
 
   it.each([
