@@ -1,10 +1,12 @@
 import { useEffect, useMemo, useState } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
+import { useQueryClient } from '@tanstack/react-query';
 import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
 import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { fieldIssues } from '#src/field-issues.ts';
+import { findKeptMoney, useKeptMoney } from './kept-money-draft.ts';
 import {
   moneyForm,
   savedMoneyForm,
@@ -36,26 +38,31 @@ export function useMoneyForm(
 ): ReckonedMoney {
   // A catalogue that is read again meanwhile must not reset what is being typed.
   const [crop] = useState(cropNow);
-  const [base, setBase] = useState(weighUp);
+  const client = useQueryClient();
+  const [left] = useState(() => findKeptMoney(client, weighUp));
+  const [base, setBase] = useState(left?.base ?? weighUp);
   const form = useForm<MoneyDraft, unknown, MoneyForm>({
     resolver: zodResolver(moneyForm, fieldIssues),
-    defaultValues: toMoneyDraft(weighUp, crop),
+    defaultValues: toMoneyDraft(base, crop),
     mode: 'onChange',
   });
   const take = (next: WeighUp) => {
-    setBase(next);
+    // Another one even where it holds the same: what was left unsaved is over with it.
+    setBase({ ...next });
     form.reset(toMoneyDraft(next, crop));
   };
   const { isDirty } = form.formState;
   // Saved elsewhere meanwhile: an untouched panel follows, a touched one keeps its base, so that saving meets the conflict.
-  if (weighUp.revision !== base.revision && !isDirty) setBase(weighUp);
+  if (weighUp.revision !== base.revision && !isDirty && base !== left?.base) setBase(weighUp);
   useEffect(() => {
     const draft = toMoneyDraft(base, crop);
     form.reset(draft);
     // Saved before there were limits: reckoned with, and marked, since it has to be put right before anything is saved.
     if (!moneyForm.safeParse(draft).success) void form.trigger();
-  }, [form, base, crop]);
+    if (left?.base === base) form.reset(left.draft, { keepDefaultValues: true });
+  }, [form, base, crop, left]);
   const typed = useWatch({ control: form.control });
+  useKeptMoney(form, typed, base);
   const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
   const fitting = useLastFitting(parsed.success ? parsed.data : undefined, toMoneyDraft(base, crop));
   return {
