@@ -13,9 +13,9 @@ declare global {
 /**
  * Stands in a page itself that the server has rendered, and fetches after its first paint what it does not need for that:
  * on a slow phone already to ask for a file takes longer than to paint a sentence. Its own element names the files, by
- * addresses that the server has written: style sheets (`data-styles`), what the client will ask the API for (`data-asks`),
- * code (`data-ahead`), and the entry that is run once style is there (`data-starts`); all but the first may be missing. The root element says when it is painted (`data-painted`) and
- * when its style is there (`data-styled`).
+ * addresses that the server has written: style sheets (`data-styles`), what the client will ask the API for
+ * (`data-asks`), code (`data-ahead`), and the entry that is run once style is there (`data-starts`); all but the first
+ * may be missing. The root element says when it is painted (`data-painted`) and when its style is there (`data-styled`).
  */
 const own = document.querySelector<HTMLScriptElement>('script[data-styles]');
 
