@@ -2,6 +2,7 @@ import type { Page } from 'playwright-core';
 import { expect, it } from 'vitest';
 import { languages } from '#shared/language.ts';
 import { openDemoForFile } from '#tests/support/demo-visit.ts';
+import { say } from '#tests/support/say.ts';
 import { openVisit, signInByFixture } from '#tests/support/visit.ts';
 
 const demo = openDemoForFile();
@@ -54,4 +55,42 @@ it.each(languages)(
     expect(tooNarrow).toEqual({});
   },
   120_000,
+);
+
+/** What stands under something else at its middle, of the fields that the key leads to until the numbers are saved. */
+async function findHidden(page: Page): Promise<string[]> {
+  const hidden: string[] = [];
+  for (let press = 0; press < 80; press += 1) {
+    await page.keyboard.press('Tab');
+    const { name, isHidden } = await page.evaluate<{ name: string; isHidden: boolean }>(`(() => {
+      const field = document.activeElement;
+      const { left, top, width, height } = field.getBoundingClientRect();
+      const seen = document.elementFromPoint(left + width / 2, top + height / 2);
+      const name = (field.labels?.[0] ?? field).textContent;
+      return { name, isHidden: seen === null || !(field.contains(seen) || seen.contains(field)) };
+    })()`);
+    if (isHidden) hidden.push(name);
+    if (name === say('en', 'weigh-up:money.save')) return hidden;
+  }
+  throw new Error('no key leads to the saving of the numbers');
+}
+
+it.each([
+  ['a phone', 360, 740],
+  ['a laptop at 200 %', 640, 360],
+])(
+  'no field of the money panel is hidden from whoever goes by key: %s',
+  async (_screen, width, height) => {
+    const { page, context, close } = await openVisit(demo.browser, demo.app.url, 'en', width);
+    await page.setViewportSize({ width, height });
+    await signInByFixture(context, 'advisor', 'en');
+    await context.request.patch('/api/me', { data: { language: 'en' } });
+    await page.goto(await findWeighUp(page));
+    const panel = page.getByRole('region', { name: say('en', 'weigh-up:money.title') });
+    await panel.getByLabel(say('en', 'weigh-up:money.middle'), { exact: true }).fill('271');
+    await panel.getByLabel(say('en', 'weigh-up:money.low'), { exact: true }).focus();
+    expect(await findHidden(page)).toEqual([]);
+    await close();
+  },
+  60_000,
 );

@@ -41,7 +41,8 @@ export function MoneyPanel({ weighUp, crop, levels, varieties, money, saving }: 
       </p>
       <form
         noValidate
-        className="flex flex-col gap-4"
+        // A field that is gone to by key comes to stand above the foot that sticks over it.
+        className="flex flex-col gap-4 [&_:is(input,select,summary)]:scroll-mb-56"
         onSubmit={(event) => void form.handleSubmit((typed) => saving.save(typed))(event)}
       >
         <PriceFields form={form} currency={currency} />

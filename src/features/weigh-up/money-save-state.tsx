@@ -11,10 +11,11 @@ export function SaveState({ form, isValid, saving }: SaveStateProps) {
   const { t } = useTranslation('weigh-up');
   const { isDirty } = form.formState;
   if (saving.conflict) return <SaveConflict saving={saving} />;
-  // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen.
+  // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen. On a low
+  // screen, a laptop at 200 % say, it would leave no room for the fields.
   const foot =
     isDirty || !isValid
-      ? 'sticky bottom-0 -mx-4 border-t border-rule bg-card px-4 py-3 sm:-mx-5 sm:px-5'
+      ? '[@media(height>=30rem)]:sticky [@media(height>=30rem)]:bottom-0 -mx-4 border-t border-rule bg-card px-4 py-3 sm:-mx-5 sm:px-5'
       : '';
   return (
     <div className={`flex flex-col gap-2 ${foot}`}>
