@@ -59,14 +59,12 @@ function useCopyColumns(
       cell: (copy) => (
         <>
           {format.dateTime(copy.createdAt)}
+          <span className="block text-sm font-normal text-faded">
+            {t(`common:languageName.${copy.language}`)}
+          </span>
           <ChangedTrials copy={copy} />
         </>
       ),
-    },
-    {
-      id: 'language',
-      header: t('weigh-up:copies.column.language'),
-      cell: (copy) => t(`common:languageName.${copy.language}`),
     },
     {
       id: 'expires',

@@ -58,5 +58,5 @@ function MailSentence({ mail }: { mail: CopyMail }) {
       return t('copies.mail.later', { to, at: format.dateTime(nextAttemptAt) });
     return t(`copies.mail.${state}`, { to });
   };
-  return <span className="block wrap-anywhere">{write()}</span>;
+  return <span className="block wrap-anywhere @min-[44rem]:min-w-56">{write()}</span>;
 }
