@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
@@ -19,7 +20,7 @@ type OtherTraitsProps = {
 };
 
 /** Each further trait with its own verdict; ratings as medians and counts. On a phone every trait becomes a card. */
-export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProps) {
+export const OtherTraits = memo(function OtherTraits({ candidates, traits, currentName }: OtherTraitsProps) {
   const { t } = useTranslation(['verdicts']);
   const language = useLanguage();
   const format = useFormat();
@@ -80,7 +81,7 @@ export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProp
       )}
     </section>
   );
-}
+});
 
 type TraitCellProps = { candidate: CandidateResult; trait: Trait; currentName: string };
 

@@ -6,7 +6,9 @@ import type { Crop } from '#shared/catalogue.ts';
 import { readMoneyBasis } from '#shared/money-basis.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import { storedUnits } from '#shared/reader-units.ts';
-import type { UsedTrial } from '#shared/weigh-up.ts';
+import type { Caution } from '#shared/caution.ts';
+import type { MoneyAssumptions } from '#shared/money.ts';
+import type { CandidateResult, UsedTrial } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
 import { BestOfListAnswer } from '#src/components/best-of-list.tsx';
@@ -93,7 +95,6 @@ function WeighedPage(props: AnswerProps & { crop: Crop }) {
 function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
   const { t } = useTranslation('verdicts');
   const cautionItems = useCautionItems();
-  const chooseUnit = useUnitChoice();
   const view = useWeighUpView();
   const money = useMoneyForm(weighUp, crop);
   const saving = useMoneySaving(money);
@@ -109,24 +110,20 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     [result, weighUp, money.assumptions, practicalMargin],
   );
   const currentName = weighUp.currentVarietyName;
-  const stops = result.cautions.filter(({ severity }) => severity === 'stop');
-  const cautions = [
-    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
-    ...candidates.flatMap((candidate) => candidate.cautions),
-  ];
   const varieties = [
     { id: weighUp.currentVarietyId, name: currentName },
     ...candidates.map(({ varietyId, varietyName }) => ({ id: varietyId, name: varietyName })),
   ];
   if (view === 'table') {
+    const isStop = ({ severity }: Caution) => severity === 'stop';
     return (
       <>
-        <CautionList title={t('stopTitle')} items={cautionItems(stops)} />
+        <CautionList title={t('stopTitle')} items={cautionItems(result.cautions.filter(isStop))} />
         <TableView
           candidates={candidates}
           currentName={currentName}
           money={money.assumptions}
-          cautions={result.cautions.filter(({ severity }) => severity !== 'stop')}
+          cautions={result.cautions.filter((caution) => !isStop(caution))}
           hasUnsaved={money.form.formState.isDirty}
         />
       </>
@@ -134,39 +131,11 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
   }
   return (
     <div className={answerLayout}>
-      <div className={mainColumn}>
-        <AnswerHead weighUp={weighUp} result={result} candidates={candidates} />
-        <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
-          <WaysInPage />
-          <UnitSwitch onChoose={chooseUnit} />
-        </div>
-        {result.best && (
-          <BestOfListAnswer
-            best={result.best}
-            currentId={weighUp.currentVarietyId}
-            currentName={currentName}
-          />
-        )}
-        <CandidateStrip
-          candidates={candidates}
-          currentName={currentName}
-          money={money.assumptions}
-          areaHectares={money.areaHectares}
-        />
-        <PricesOnPaper money={money.assumptions} />
-        <div id="cautions" className="scroll-mt-2">
-          <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} mayBreak />
-        </div>
-        <div id="traits" className="scroll-mt-2 print:order-2">
-          <OtherTraits candidates={candidates} traits={crop.traits} currentName={currentName} />
-        </div>
-        <StoryOnPaper
-          candidates={candidates}
-          currentName={currentName}
-          money={money.assumptions}
-          areaHectares={money.areaHectares}
-        />
-      </div>
+      <AnswerColumn
+        {...{ weighUp, result, crop, candidates }}
+        assumptions={money.assumptions}
+        areaHectares={money.areaHectares}
+      />
       <div
         id="money"
         className="scroll-mt-2 lg:sticky lg:top-4 lg:max-h-[calc(100dvh-2rem)] lg:overflow-y-auto print:hidden"
@@ -184,6 +153,59 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
     </div>
   );
 }
+
+type AnswerColumnProps = AnswerProps & {
+  crop: Crop;
+  /** Reckoned with the assumptions on the page. */
+  candidates: readonly CandidateResult[];
+  assumptions: MoneyAssumptions;
+  areaHectares: number;
+};
+
+/** The answer itself: drawn anew once for a figure that is typed, and not again while its field is being checked. */
+const AnswerColumn = memo(function AnswerColumn(props: AnswerColumnProps) {
+  const { weighUp, result, crop, candidates, assumptions, areaHectares } = props;
+  const { t } = useTranslation('verdicts');
+  const cautionItems = useCautionItems();
+  const chooseUnit = useUnitChoice();
+  const currentName = weighUp.currentVarietyName;
+  const cautions = [
+    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
+    ...candidates.flatMap((candidate) => candidate.cautions),
+  ];
+  return (
+    <div className={mainColumn}>
+      <AnswerHead weighUp={weighUp} result={result} candidates={candidates} />
+      <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
+        <WaysInPage />
+        <UnitSwitch onChoose={chooseUnit} />
+      </div>
+      {result.best && (
+        <BestOfListAnswer best={result.best} currentId={weighUp.currentVarietyId} currentName={currentName} />
+      )}
+      <CandidateStrip
+        candidates={candidates}
+        currentName={currentName}
+        money={assumptions}
+        areaHectares={areaHectares}
+      />
+      <PricesOnPaper money={assumptions} />
+      <div id="cautions" className="scroll-mt-2">
+        <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} mayBreak />
+      </div>
+      <div id="traits" className="scroll-mt-2 print:order-2">
+        {/* As they came: no price bears on them. */}
+        <OtherTraits candidates={result.candidates} traits={crop.traits} currentName={currentName} />
+      </div>
+      <StoryOnPaper
+        candidates={candidates}
+        currentName={currentName}
+        money={assumptions}
+        areaHectares={areaHectares}
+      />
+    </div>
+  );
+});
 
 /** What hangs on no price, and so is not drawn anew with every figure that is typed. */
 const BesideMoney = memo(function BesideMoney({
