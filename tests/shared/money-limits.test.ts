@@ -20,7 +20,7 @@ test.each([
   'royaltyPerHectare',
   'harvestPerHectare',
   'strawPerHectare',
-])('%s is never more than 50 tonnes of the crop bring', (part) => {
+])('%s is never more than 50 tonnes of the crop would sell for', (part) => {
   expect(refusals(priced(seed(60, { [part]: 12_500 })))).toEqual([]);
   expect(refusals(priced(seed(60, { [part]: 12_501 })))).toEqual([
     `seedCosts.${candidate}.${part} over-crop-worth`,

@@ -126,12 +126,12 @@ describe('the answer of a copy', () => {
     expect(articleOf('Ostermoor').getByText('+$78/ha')).toBeDefined();
   });
 
-  it('keeps the frozen figures while seed costs more than 50 tonnes of the crop bring', async () => {
+  it('keeps the frozen figures while seed costs more than 50 tonnes of the crop would sell for', async () => {
     await open();
     await typeSeed('Ostermoor', '999999');
     // 50 × 290
     expect(
-      screen.getByText(/^No seed costs more than 50 tonnes of the crop bring, here \$14,500\/ha\./),
+      screen.getByText(/^No seed costs more than 50 tonnes of the crop would sell for, here \$14,500\/ha\./),
     ).toBeDefined();
     expect(seedField('Ostermoor').getAttribute('aria-invalid')).toBe('true');
     expect(screen.queryByText(/^Your own number/)).toBeNull();

@@ -205,7 +205,7 @@ describe('the money panel', () => {
     await open();
     const panel = within(await money());
     const user = userEvent.setup();
-    const dear = /More than 50 tonnes of the crop bring/;
+    const dear = /More than 50 tonnes of the crop would sell for/;
     await user.clear(panel.getByLabelText('Seed, Ostermoor'));
     await user.type(panel.getByLabelText('Seed, Ostermoor'), '15000');
     expect(await panel.findByText(dear)).toBeTruthy();
@@ -232,7 +232,7 @@ describe('the money panel', () => {
     const panel = within(await money());
     expect(screen.getByText('−$999,773/ha')).toBeTruthy();
     expect(panel.getByLabelText('Seed, Ostermoor')).toHaveProperty('value', '999,999');
-    expect(await panel.findByText(/More than 50 tonnes of the crop bring/)).toBeTruthy();
+    expect(await panel.findByText(/More than 50 tonnes of the crop would sell for/)).toBeTruthy();
   });
 
   it('makes no copy of numbers that are not saved', async () => {
