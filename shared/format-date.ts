@@ -12,10 +12,22 @@ function writeFirstOfMonth(text: string, language: Language): string {
 const markUniversal = (text: string, timeZone: string | undefined): string =>
   timeZone === 'UTC' ? `${text} (UTC)` : text;
 
+const formatters = new Map<string, Intl.DateTimeFormat>();
+
+/** One writer for each language, style and place: to make one takes a thousand times as long as to use it. */
+function dateFormat(locale: string, options: Intl.DateTimeFormatOptions): Intl.DateTimeFormat {
+  const key = `${locale} ${JSON.stringify(options)}`;
+  const known = formatters.get(key);
+  if (known) return known;
+  const made = new Intl.DateTimeFormat(locale, options);
+  formatters.set(key, made);
+  return made;
+}
+
 const isDay = (iso: string): boolean => /^\d{4}-\d{2}-\d{2}$/.test(iso);
 
 function writeDay(iso: string, language: Language, timeZone: string | undefined): string {
-  const format = new Intl.DateTimeFormat(dateLocales[language], {
+  const format = dateFormat(dateLocales[language], {
     dateStyle: 'long',
     timeZone: isDay(iso) ? 'UTC' : timeZone,
   });
@@ -33,7 +45,7 @@ export function formatDate(iso: string, language: Language, timeZone?: string): 
 
 /** A moment in words with hour and minute: `14 November 2026, 09:30`, `14 novembre 2026, 09 h 30`. */
 export function formatDateTime(iso: string, language: Language, timeZone?: string): string {
-  const time = new Intl.DateTimeFormat(dateLocales[language], {
+  const time = dateFormat(dateLocales[language], {
     hour: '2-digit',
     minute: '2-digit',
     hourCycle: 'h23',
@@ -46,7 +58,7 @@ export function formatDateTime(iso: string, language: Language, timeZone?: strin
 
 /** The day of a moment in a place, as a date: `2026-11-30`. */
 export const dayIn = (iso: string, timeZone: string): string =>
-  new Intl.DateTimeFormat('en-CA', { timeZone, dateStyle: 'short' }).format(new Date(iso));
+  dateFormat('en-CA', { timeZone, dateStyle: 'short' }).format(new Date(iso));
 
 /** Whether a name is one of a time zone that is known here. */
 export function isTimeZone(name: string): boolean {

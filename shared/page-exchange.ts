@@ -12,3 +12,6 @@ export const unitCookieName = 'gavelrow.yield-unit';
 
 /** Of the answer in a page that the server has rendered: until it is there the browser paints nothing. */
 export const verdictId = 'verdict';
+
+/** Of the part of a grower copy that its script takes over: the answer, and the prices that one may try. */
+export const answerId = 'answer';

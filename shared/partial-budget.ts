@@ -78,7 +78,19 @@ const netPrices = (price: number, premium: Premiums, tonne: TonneCosts): TonneCo
 /** Premiums of a single season, and of the average over seasons. */
 type PremiumOutlook = { season: PremiumState[]; average: PremiumState[]; isUnknown: boolean };
 
+/** What each candidate's traits were asked last, and the answer: a price that is typed changes neither. */
+const lastOutlooks = new WeakMap<PricedCandidate['traits'], { asked: unknown[]; outlook: PremiumOutlook }>();
+
 function outlookOf(candidate: PricedCandidate, basis: MoneyBasis, money: MoneyAssumptions): PremiumOutlook {
+  const asked = [basis.levels, money.qualityRules, money.currentLevels];
+  const last = lastOutlooks.get(candidate.traits);
+  if (last?.asked.every((part, i) => part === asked[i])) return last.outlook;
+  const outlook = findOutlook(candidate, basis, money);
+  lastOutlooks.set(candidate.traits, { asked, outlook });
+  return outlook;
+}
+
+function findOutlook(candidate: PricedCandidate, basis: MoneyBasis, money: MoneyAssumptions): PremiumOutlook {
   const traits = readQualityOutlook(candidate.traits, basis, money);
   const known = traits === 'unknown' ? [] : traits;
   return {
@@ -170,7 +182,10 @@ function listParts(
 ): ReturnPart[] {
   const prices = spreadPrice(money);
   return prices.flatMap((price) =>
-    states.map((state) => ({ ...lineAt(price, state), weight: state.weight / prices.length })),
+    states.map((state) => {
+      const { slope, offset } = lineAt(price, state);
+      return { slope, offset, weight: state.weight / prices.length };
+    }),
   );
 }
 

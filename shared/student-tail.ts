@@ -33,6 +33,19 @@ const tableReach = 8;
  * its slope, within 1e-8 of the tail itself.
  */
 export function tabulateStudentTail(df: number): (t: number) => number {
+  const known = tables.get(df);
+  if (known) return known;
+  const made = makeTable(df);
+  if (tables.size >= mostTables) tables.clear();
+  tables.set(df, made);
+  return made;
+}
+
+/** A money panel asks for the same few degrees of freedom at every edit; those of other questions are not kept for ever. */
+const tables = new Map<number, (t: number) => number>();
+const mostTables = 64;
+
+function makeTable(df: number): (t: number) => number {
   const tail = openStudentTail(df);
   const density = openStudentDensity(df);
   const step = 1 / stepsPerUnit;
@@ -41,9 +54,11 @@ export function tabulateStudentTail(df: number): (t: number) => number {
   const slopes = Float64Array.from(knots, (t) => -density(t) * step);
   const upper = (t: number): number => {
     const i = Math.floor(t * stepsPerUnit);
-    const [from = 0, to = 0, slopeFrom = 0, slopeTo = 0] = [tails[i], tails[i + 1], slopes[i], slopes[i + 1]];
     const x = t * stepsPerUnit - i;
-    const rise = to - from;
+    const from = tails[i] ?? 0;
+    const rise = (tails[i + 1] ?? 0) - from;
+    const slopeFrom = slopes[i] ?? 0;
+    const slopeTo = slopes[i + 1] ?? 0;
     return (
       from + x * (slopeFrom + x * (3 * rise - 2 * slopeFrom - slopeTo + x * (slopeFrom + slopeTo - 2 * rise)))
     );

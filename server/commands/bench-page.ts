@@ -1,9 +1,10 @@
 import { fileURLToPath } from 'node:url';
-import { chromium, type APIRequestContext, type Browser } from 'playwright-core';
-import { demoAccounts } from '#server/demo/demo-accounts.ts';
+import { chromium, type Browser } from 'playwright-core';
 import { seedDemo } from '#server/demo/seed-demo.ts';
 import { findChromium } from '#server/setup/chromium-program.mjs';
 import { startBuiltServer } from './bench/built-server.ts';
+import { askDemoQuestion, signInAdvisor } from './bench/demo-question.ts';
+import { median } from './bench/quantile-of.ts';
 import { serveOneSentence } from './bench/one-sentence-page.ts';
 import { openPhone, visitPage, type PageVisit } from './bench/page-visit.ts';
 
@@ -15,34 +16,6 @@ const projectRoot = fileURLToPath(new URL('../..', import.meta.url)).replace(/\/
 /** Without a target where there is nothing to reach but something to compare with. */
 type Row = { page: string; targetMs: number | null; measured: PageVisit[] };
 
-/** A weigh-up of four candidates, and a copy of it; their addresses. */
-async function prepareQuestion(request: APIRequestContext): Promise<{ weighUp: string; copy: string }> {
-  await signIn(request);
-  const [first] = (await readJson<{ weighUps: { id: string }[] }>(await request.get('/api/weigh-ups')))
-    .weighUps;
-  const { weighUp } = await readJson<{ weighUp: { candidateIds: string[] } }>(
-    await request.get(`/api/weigh-ups/${first?.id ?? ''}`),
-  );
-  const asked = { ...weighUp, candidateIds: weighUp.candidateIds.slice(0, 4) };
-  const made = await readJson<{ weighUp: { id: string } }>(
-    await request.post('/api/weigh-ups', { data: asked }),
-  );
-  const path = `/api/weigh-ups/${made.weighUp.id}/grower-copies`;
-  const copy = await readJson<{ path: string }>(await request.post(path, { data: { language: 'en' } }));
-  return { weighUp: `/weigh-ups/${made.weighUp.id}`, copy: copy.path };
-}
-
-async function signIn(request: APIRequestContext): Promise<void> {
-  const { email, password } = demoAccounts.advisor;
-  await readJson(await request.post('/api/session', { data: { email, password } }));
-}
-
-async function readJson<T>(reply: Awaited<ReturnType<APIRequestContext['get']>>): Promise<T> {
-  if (!reply.ok()) throw new Error(`${reply.url()} answered ${reply.status()}: ${await reply.text()}`);
-  // What the product's own contract promises.
-  return (await reply.json()) as T;
-}
-
 /** Each visit pair by a phone of its own: first with an empty cache, then with what the first one left in it. */
 async function visitTwice(
   browser: Browser,
@@ -53,16 +26,13 @@ async function visitTwice(
   const [cold, warm]: [PageVisit[], PageVisit[]] = [[], []];
   for (let visit = 0; visit < visits; visit += 1) {
     const phone = await openPhone(browser, url);
-    if (isSignedIn) await signIn(phone.request);
+    if (isSignedIn) await signInAdvisor(phone.request);
     cold.push(await visitPage(phone, path));
     warm.push(await visitPage(phone, path));
     await phone.close();
   }
   return { cold, warm };
 }
-
-const median = (values: readonly number[]): number =>
-  [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)] ?? NaN;
 
 function describeRow({ page, targetMs, measured }: Row): string {
   const times = measured.map(({ verdictMs }) => verdictMs);
@@ -85,7 +55,7 @@ const server = await startBuiltServer(projectRoot, seedDemo);
 const browser = await chromium.launch({ executablePath, args: ['--no-sandbox', '--disable-gpu'] });
 try {
   const office = await openPhone(browser, server.url);
-  const { weighUp, copy } = await prepareQuestion(office.request);
+  const { weighUp, copy } = await askDemoQuestion(office.request);
   await office.close();
   const oneSentence = await serveOneSentence();
   const ofFloor = await visitTwice(browser, oneSentence.url, '/', false);

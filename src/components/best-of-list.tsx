@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import { errorOfStandings, sayStanding, tellBest } from '#shared/best-sentences.ts';
 import type { BestOfList, BestStanding } from '#shared/question-kind.ts';
@@ -8,7 +9,11 @@ import { useLanguage } from './use-language.ts';
 type BestOfListProps = { best: BestOfList; currentId: string; currentName: string };
 
 /** Which of the list can be the best and whether the current variety is one of them, in sentences; the figures fold out. */
-export function BestOfListAnswer({ best, currentId, currentName }: BestOfListProps) {
+export const BestOfListAnswer = memo(function BestOfListAnswer({
+  best,
+  currentId,
+  currentName,
+}: BestOfListProps) {
   const { t } = useTranslation(['verdicts']);
   const language = useLanguage();
   const said = tellBest(best, { id: currentId, name: currentName }, language, t);
@@ -26,7 +31,7 @@ export function BestOfListAnswer({ best, currentId, currentName }: BestOfListPro
       </details>
     </div>
   );
-}
+});
 
 /** Unit of yield gaps. */
 const unit = 't/ha';

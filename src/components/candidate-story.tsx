@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import { tellIntervals, tellStory, type StoryGround } from '#shared/story-sentences.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
@@ -33,17 +34,17 @@ export function CandidateStory({ candidate, unit, decimals, ...ground }: StoryPr
   );
 }
 
-type IntervalSentencesProps = {
-  candidate: Pick<CandidateResult, 'gap' | 'trials'>;
+type IntervalSentencesProps = Pick<CandidateResult, 'gap' | 'trials'> & {
   unit: string;
   decimals: number;
 };
 
-/** Both intervals in words, each with its level and what it is an interval of. */
-export function IntervalSentences({ candidate, unit, decimals }: IntervalSentencesProps) {
+/** Both intervals in words, each with its level and what it is an interval of; no price bears on them. */
+export const IntervalSentences = memo(function IntervalSentences(props: IntervalSentencesProps) {
+  const { gap, trials, unit, decimals } = props;
   const { t: say } = useTranslation(['verdicts']);
   const write = useFormat();
-  return tellIntervals(candidate, { say, write, unit, decimals }).map((sentence) => (
+  return tellIntervals({ gap, trials }, { say, write, unit, decimals }).map((sentence) => (
     <p key={sentence}>{sentence}</p>
   ));
-}
+});

@@ -1,4 +1,3 @@
-import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import type { Trait } from '#shared/catalogue.ts';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
@@ -20,7 +19,7 @@ type OtherTraitsProps = {
 };
 
 /** Each further trait with its own verdict; ratings as medians and counts. On a phone every trait becomes a card. */
-export const OtherTraits = memo(function OtherTraits({ candidates, traits, currentName }: OtherTraitsProps) {
+export function OtherTraits({ candidates, traits, currentName }: OtherTraitsProps) {
   const { t } = useTranslation(['verdicts']);
   const language = useLanguage();
   const format = useFormat();
@@ -81,7 +80,7 @@ export const OtherTraits = memo(function OtherTraits({ candidates, traits, curre
       )}
     </section>
   );
-});
+}
 
 type TraitCellProps = { candidate: CandidateResult; trait: Trait; currentName: string };
 

@@ -1,17 +1,17 @@
 import { useMemo } from 'react';
 import { useTranslation } from 'react-i18next';
 import { formatNumber, sayChance } from '#shared/format-number.ts';
+import { readLanguage } from '#shared/language.ts';
 import { writeFigures } from '#shared/write-figures.ts';
 import { useReaderUnits } from './reader-units-context.tsx';
 import { useReaderZone } from './reader-zone-context.tsx';
-import { useLanguage } from './use-language.ts';
 
 /** Figures, money, dates and names as the page's language and the units that it is read in have them; see `writeFigures`. */
 export function useFormat() {
-  const language = useLanguage();
   const units = useReaderUnits();
   const timeZone = useReaderZone();
-  const { t } = useTranslation('common');
+  const { t, i18n } = useTranslation('common');
+  const language = readLanguage(i18n.language);
   return useMemo(
     () => ({
       ...writeFigures(language, units, timeZone),

@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm';
 import { connectDatabase } from '#server/db.ts';
 import { startBuiltServer } from './built-server.ts';
+import { median } from './quantile-of.ts';
 import { advisorOfRegion, sowRegion, type SownRegion } from './sown-region.ts';
 
 const RUNS = 11;
@@ -10,9 +11,6 @@ const COLD_MS = 300;
 
 /** Wall time of a request, and processor time of the server's process with its threads; PostgreSQL's is not in it. */
 type Cost = { wallMs: number; cpuMs: number };
-
-const median = (values: readonly number[]): number =>
-  [...values].sort((a, b) => a - b)[Math.floor(values.length / 2)] ?? NaN;
 
 async function costOf(work: () => Promise<unknown>): Promise<Cost> {
   const [from, spent] = [performance.now(), process.cpuUsage()];

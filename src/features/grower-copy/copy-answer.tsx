@@ -1,3 +1,4 @@
+import { useMemo } from 'react';
 import { useTranslation } from 'react-i18next';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { MoneyBasis } from '#shared/money-basis.ts';
@@ -37,6 +38,7 @@ export function CopyAnswer({ weighUp, basis, candidates, practicalMargin, best }
   const { assumptions } = own;
   const isOwn = assumptions !== frozen;
   const shown = isOwn ? reckonCandidates(candidates, basis, assumptions, practicalMargin) : candidates;
+  const priced = useMemo(() => ({ ...weighUp, assumptions }), [weighUp, assumptions]);
   return (
     <div className="flex flex-col gap-7 print:contents">
       <div>
@@ -45,7 +47,7 @@ export function CopyAnswer({ weighUp, basis, candidates, practicalMargin, best }
         <VerdictHeadline candidates={shown} currentName={varietyName} />
       </div>
       {best && <BestOfListAnswer best={best} currentId={varietyId} currentName={varietyName} />}
-      <CopyCandidates weighUp={{ ...weighUp, assumptions }} candidates={shown} isOwn={isOwn} />
+      <CopyCandidates weighUp={priced} candidates={shown} isOwn={isOwn} />
       <OwnNumbersPanel assumptions={frozen} seeds={seeds} own={numbers} />
     </div>
   );

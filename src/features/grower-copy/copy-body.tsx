@@ -1,6 +1,7 @@
 import { useTranslation } from 'react-i18next';
 import type { LaterChange, OpenedCopy } from '#shared/grower-copy.ts';
 import { dialling } from '#shared/dialling.ts';
+import { answerId } from '#shared/page-exchange.ts';
 import { writeUnitParameter } from '#shared/reader-units.ts';
 import { BoundWords } from '#src/components/bound-words.tsx';
 import { CautionList, type CautionItem } from '#src/components/caution-list.tsx';
@@ -14,7 +15,6 @@ import { useLanguage } from '#src/components/use-language.ts';
 import { useCautionItems } from '#src/use-caution-items.ts';
 import { CopyAddress, CopyCode } from './copy-way-back.tsx';
 import { CopyUnits } from './copy-units.tsx';
-import { answerId } from './copy-script-data.ts';
 
 type CopyBodyProps = {
   copy: OpenedCopy;

@@ -1,3 +1,4 @@
+import { memo, useDeferredValue, type ReactNode } from 'react';
 import { useTranslation } from 'react-i18next';
 import { reachesBeyondRegion } from '#shared/evidence-reach.ts';
 import { gapRowOf, scaleOfRows } from '#shared/gap-rows.ts';
@@ -5,7 +6,7 @@ import { sayPulledBackGap } from '#shared/pulled-back-gap.ts';
 import type { Scale } from '#shared/gap-scale.ts';
 import type { CandidateResult } from '#shared/weigh-up.ts';
 import { MoneyVerdictMark, VerdictMark, verdictColours } from '#src/components/beam.tsx';
-import { CandidateStory, IntervalSentences } from '#src/components/candidate-story.tsx';
+import { CandidateStory, IntervalSentences, type StoryProps } from '#src/components/candidate-story.tsx';
 import { useGapSentence } from '#src/components/gap-strip.tsx';
 import { GapAxis, GapLabel, GapTrack } from '#src/components/gap-track.tsx';
 import { useFormat } from '#src/components/use-format.ts';
@@ -34,6 +35,9 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
   const shown = candidates.find(({ gap, verdict }) => gap && verdict !== 'thin')?.gap;
   const level = (value: number) => format.percent(value * 100);
   const isBeyondRegion = candidates.some(reachesBeyondRegion);
+  // What is folded away is told anew a moment after what is seen: a figure that is typed is answered the sooner.
+  const told = useDeferredValue(candidates);
+  const { assumptions } = useDeferredValue(weighUp);
   return (
     <section aria-label={t('candidates')} className="flex flex-col print:contents">
       <p className="text-sm text-faded print:-mb-9 print:min-h-9 print:w-46">
@@ -42,7 +46,7 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
       <div className="print:mr-58 print:ml-50">
         <GapAxis scale={scale} zeroLabel={weighUp.currentVarietyName} />
       </div>
-      {candidates.map((candidate) => (
+      {candidates.map((candidate, i) => (
         <CopyCandidate
           key={candidate.varietyId}
           candidate={candidate}
@@ -50,6 +54,16 @@ export function CopyCandidates({ weighUp, candidates, isOwn }: CopyCandidatesPro
           scale={scale}
           decimals={decimals}
           isOwn={isOwn}
+          inFull={
+            <InFull
+              candidate={told[i] ?? candidate}
+              currentName={weighUp.currentVarietyName}
+              money={assumptions}
+              areaHectares={weighUp.areaHectares}
+              unit={unit}
+              decimals={decimals}
+            />
+          }
         />
       ))}
       {shown && (
@@ -72,9 +86,11 @@ type CopyCandidateProps = Omit<CopyCandidatesProps, 'candidates'> & {
   candidate: CandidateResult;
   scale: Scale;
   decimals: number;
+  /** The whole story, folded away. */
+  inFull: ReactNode;
 };
 
-function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandidateProps) {
+function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn, inFull }: CopyCandidateProps) {
   const { t } = useTranslation(['verdicts', 'copy']);
   const format = useFormat();
   const { currency } = weighUp.assumptions;
@@ -132,7 +148,12 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
           <div className={`flex flex-col gap-1.5 print:col-span-3 ${hiddenWhereUnfolded}`}>
             {verdict === 'thin' && <p>{t('headline.thin', { names: candidate.varietyName, count: 1 })}</p>}
             {verdict !== 'thin' && (
-              <IntervalSentences candidate={candidate} unit={unit} decimals={decimals} />
+              <IntervalSentences
+                gap={candidate.gap}
+                trials={candidate.trials}
+                unit={unit}
+                decimals={decimals}
+              />
             )}
             <WorthLines candidate={candidate} weighUp={weighUp} decimals={decimals} />
           </div>
@@ -147,30 +168,32 @@ function CopyCandidate({ candidate, weighUp, scale, decimals, isOwn }: CopyCandi
           )}
         </div>
       </div>
-      <details className="mt-2 print:order-3 print:mt-0">
-        <summary className="tap-target py-2.5 font-semibold text-action print:border-t-2 print:border-ink print:py-0.5 print:text-lg print:text-ink">
-          {t('copy:inFull', { name: candidate.varietyName })}
-        </summary>
-        <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4 print:mt-0 print:gap-1.5 print:border-0 print:pl-0">
-          <CandidateStory
-            candidate={candidate}
-            currentName={weighUp.currentVarietyName}
-            money={weighUp.assumptions}
-            areaHectares={weighUp.areaHectares}
-            unit={unit}
-            decimals={decimals}
-          />
-          <CopyTrialLines
-            candidate={candidate}
-            currentName={weighUp.currentVarietyName}
-            unit={unit}
-            decimals={decimals}
-          />
-        </div>
-      </details>
+      {inFull}
     </article>
   );
 }
+
+const InFull = memo(function InFull(story: StoryProps) {
+  const { t } = useTranslation('copy');
+  const { candidate, currentName, decimals } = story;
+  return (
+    <details className="mt-2 print:order-3 print:mt-0">
+      <summary className="tap-target py-2.5 font-semibold text-action print:border-t-2 print:border-ink print:py-0.5 print:text-lg print:text-ink">
+        {t('inFull', { name: candidate.varietyName })}
+      </summary>
+      <div className="mt-2 flex flex-col gap-5 border-l-2 border-rule pl-4 print:mt-0 print:gap-1.5 print:border-0 print:pl-0">
+        <CandidateStory {...story} />
+        <CopyTrialLines
+          candidateName={candidate.varietyName}
+          trials={candidate.trials}
+          currentName={currentName}
+          unit={unit}
+          decimals={decimals}
+        />
+      </div>
+    </details>
+  );
+});
 
 type WorthLinesProps = Pick<CopyCandidateProps, 'candidate' | 'weighUp' | 'decimals'>;
 

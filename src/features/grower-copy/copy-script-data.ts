@@ -3,9 +3,6 @@ import type { ReaderUnits } from '#shared/reader-units.ts';
 import type { CopyAnswerProps } from './copy-answer.tsx';
 import type { CopySentences } from './copy-page-inputs.ts';
 
-/** Where the page holds the answer. */
-export const answerId = 'answer';
-
 /** What the script needs to take the answer over; it asks for it, so that the page itself is half as long. */
 export type CopyScriptData = {
   language: Language;

@@ -1,23 +1,26 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
-import type { CandidateResult, TrialGap } from '#shared/weigh-up.ts';
+import type { TrialGap } from '#shared/weigh-up.ts';
 import { DataTable, type Column } from '#src/components/data-table.tsx';
 import { sortByMeanYield } from '#src/components/site-lines.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 
 type CopyTrialLinesProps = {
-  candidate: CandidateResult;
+  candidateName: string;
+  trials: readonly TrialGap[];
   currentName: string;
   unit: string;
   decimals: number;
 };
 
 /** A line per trial in which both stood: readable without scripts, where the drawing's own switch would be dead. */
-export function CopyTrialLines({ candidate, currentName, unit, decimals }: CopyTrialLinesProps) {
+export const CopyTrialLines = memo(function CopyTrialLines(props: CopyTrialLinesProps) {
+  const { candidateName, currentName, unit, decimals } = props;
   const { t } = useTranslation('drawings');
   const format = useFormat();
-  const trials = sortByMeanYield(candidate.trials);
+  const trials = sortByMeanYield(props.trials);
   if (trials.length === 0) return null;
-  const title = t('siteLines.title', { candidate: candidate.varietyName, current: currentName });
+  const title = t('siteLines.title', { candidate: candidateName, current: currentName });
   const level = format.percent((trials[0]?.interval.level ?? 0.95) * 100);
   const columns: Column<TrialGap>[] = [
     {
@@ -62,4 +65,4 @@ export function CopyTrialLines({ candidate, currentName, unit, decimals }: CopyT
       <DataTable caption={title} columns={columns} rows={trials} rowKey={({ trialId }) => trialId} />
     </section>
   );
-}
+});

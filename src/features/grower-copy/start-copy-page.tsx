@@ -1,10 +1,11 @@
 import '@vitejs/plugin-react/preamble';
 import { hydrateRoot } from 'react-dom/client';
 import { I18nextProvider } from 'react-i18next';
+import { answerId } from '#shared/page-exchange.ts';
 import { ReaderUnitsProvider } from '#src/components/reader-units-context.tsx';
 import { openAllSentences } from '#src/open-all-sentences.ts';
 import { CopyAnswer } from './copy-answer.tsx';
-import { answerId, type CopyScriptData } from './copy-script-data.ts';
+import type { CopyScriptData } from './copy-script-data.ts';
 import { carryOwnNumbers } from './own-numbers-fragment.ts';
 
 const firstWaitMs = 1000;

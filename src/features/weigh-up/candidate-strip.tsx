@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import { Link, useSearchParams } from 'react-router-dom';
 import { gapRowOf } from '#shared/gap-rows.ts';
@@ -26,6 +27,7 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
   const { t } = useTranslation('verdicts');
   const [search] = useSearchParams();
   const openId = search.get('open');
+  const patch = useUrlPatch();
   const isPrinting = usePrinting();
   const decimals = useGapDecimals(candidates);
   const rows = candidates.map((candidate): GapStripRow => {
@@ -34,7 +36,7 @@ export function CandidateStrip({ candidates, currentName, money, areaHectares }:
     return {
       id: candidate.varietyId,
       ...gapRowOf(candidate),
-      head: <RowToggle candidate={candidate} isOpen={isOpen} />,
+      head: <RowToggle id={candidate.varietyId} name={candidate.varietyName} isOpen={isOpen} patch={patch} />,
       aside: <RowAside candidate={candidate} currency={money.currency} decimals={decimals} />,
       ...(isOpen && !isPrinting && { below: <OpenRow {...story} /> }),
     };
@@ -72,22 +74,23 @@ export function StoryOnPaper({ candidates, ...ground }: CandidateStripProps) {
   );
 }
 
-function RowToggle({ candidate, isOpen }: { candidate: CandidateResult; isOpen: boolean }) {
-  const patch = useUrlPatch();
+type RowToggleProps = { id: string; name: string; isOpen: boolean; patch: ReturnType<typeof useUrlPatch> };
+
+const RowToggle = memo(function RowToggle({ id, name, isOpen, patch }: RowToggleProps) {
   return (
     <button
       type="button"
       aria-expanded={isOpen}
-      onClick={() => patch({ open: isOpen ? null : candidate.varietyId }, { isStep: true })}
+      onClick={() => patch({ open: isOpen ? null : id }, { isStep: true })}
       className="tap-target -ml-1 flex items-center gap-2 px-1 text-left font-bold hover:underline"
     >
-      {candidate.varietyName}
+      {name}
       <span aria-hidden="true" className="text-sm text-action print:hidden">
         {isOpen ? '▲' : '▼'}
       </span>
     </button>
   );
-}
+});
 
 type RowAsideProps = { candidate: CandidateResult; currency: string; decimals: number };
 
@@ -119,29 +122,47 @@ function RowAside({ candidate, currency, decimals }: RowAsideProps) {
 
 /** The row's story, its cautions and a line per trial. */
 function OpenRow(story: StoryProps) {
-  const { t } = useTranslation('verdicts');
-  const cautionItems = useCautionItems();
   const { candidate, currentName, decimals } = story;
   return (
     <div className="mt-2 flex flex-col gap-5 border-l-4 border-rule pl-4 print:gap-3 print:border-0 print:pl-0">
       <CandidateStory {...story} />
-      <CautionList
-        title={t('story.cautions', { name: candidate.varietyName })}
-        items={cautionItems(candidate.cautions)}
-        headingLevel={3}
+      <RowEvidence
+        name={candidate.varietyName}
+        cautions={candidate.cautions}
+        trials={candidate.trials}
+        currentName={currentName}
+        decimals={decimals}
       />
-      {candidate.trials.length === 0 ? (
+    </div>
+  );
+}
+
+type RowEvidenceProps = Pick<CandidateResult, 'cautions' | 'trials'> & {
+  name: string;
+  currentName: string;
+  decimals: number;
+};
+
+/** No price bears on cautions and trials: they are not drawn anew for one that is typed. */
+const RowEvidence = memo(function RowEvidence(props: RowEvidenceProps) {
+  const { name, cautions, trials, currentName, decimals } = props;
+  const { t } = useTranslation('verdicts');
+  const cautionItems = useCautionItems();
+  return (
+    <>
+      <CautionList title={t('story.cautions', { name })} items={cautionItems(cautions)} headingLevel={3} />
+      {trials.length === 0 ? (
         <p>{t('story.noShared')}</p>
       ) : (
         <SiteLines
-          candidateName={candidate.varietyName}
+          candidateName={name}
           currentName={currentName}
-          trials={candidate.trials}
+          trials={trials}
           unit={unit}
           decimals={decimals}
           linkTrial={({ trialId }, words) => <Link to={fillPath(paths.trial, { trialId })}>{words}</Link>}
         />
       )}
-    </div>
+    </>
   );
-}
+});

@@ -20,13 +20,12 @@ const askBeforeLeaving = (event: BeforeUnloadEvent): void => event.preventDefaul
  * @param typed what stands in the form, watched
  */
 export function useKeptMoney(
-  form: Pick<UseFormReturn<MoneyDraft, unknown, MoneyForm>, 'getValues' | 'formState'>,
+  getValues: UseFormReturn<MoneyDraft, unknown, MoneyForm>['getValues'],
+  isDirty: boolean,
   typed: unknown,
   base: WeighUp,
 ): void {
   const client = useQueryClient();
-  const { isDirty } = form.formState;
-  const { getValues } = form;
   useEffect(() => {
     const queryKey = keyOf(base);
     if (!isDirty) {

@@ -12,23 +12,26 @@ import type { MoneyFormApi } from './use-money-form.ts';
 type FigureUnit =
   { currency: string; per: 't' | 'ha'; isUnitHidden?: boolean } | { measure: 'ha' } | { plain: string };
 
-/** Fields that are marked for what they are held against, another price or a limit that follows from one. */
-function listMarked(errors: object, at: readonly string[] = []): string[] {
-  return Object.entries(errors as Record<string, unknown>).flatMap(([key, error]) => {
-    if (typeof error !== 'object' || error === null) return [];
+/** Every figure and choice of the form by its path. */
+function listNames(part: object, at: readonly string[] = []): Path<MoneyDraft>[] {
+  return Object.entries(part as Record<string, unknown>).flatMap(([key, value]) => {
     const path = [...at, key];
-    if (!('type' in error)) return listMarked(error, path);
-    return error.type === 'custom' ? [path.join('.')] : [];
+    if (typeof value === 'object' && value !== null) return listNames(value, path);
+    // The keys are those of the form.
+    return [path.join('.') as Path<MoneyDraft>];
   });
 }
 
 /** Prices are held against each other and against costs, costs against prices: told anew where an edit changes that. */
 function recheckOthers(form: MoneyFormApi): void {
-  const issues = moneyForm.safeParse(form.getValues()).error?.issues ?? [];
-  const refused = issues.filter(({ code }) => code === 'custom').map(({ path }) => path.join('.'));
-  const names = [...new Set([...listMarked(form.formState.errors), ...refused])];
-  // Both lists name fields of the form.
-  if (names.length > 0) void form.trigger(names as Path<MoneyDraft>[]);
+  const draft = form.getValues();
+  const issues = moneyForm.safeParse(draft).error?.issues ?? [];
+  const refused = new Set(issues.filter(({ code }) => code === 'custom').map(({ path }) => path.join('.')));
+  for (const name of listNames(draft)) {
+    const isMarked = form.getFieldState(name).error?.type === 'custom';
+    // One by one: checked together, every field of the panel would be drawn anew.
+    if (isMarked || refused.has(name)) void form.trigger(name);
+  }
 }
 
 type FigureFieldProps = {

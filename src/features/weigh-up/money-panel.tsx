@@ -1,12 +1,13 @@
+import { memo } from 'react';
+import { useFormState } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
 import type { Crop } from '#shared/catalogue.ts';
 import { currencySign } from '#shared/format-number.ts';
-import type { CurrentLevel } from '#shared/money.ts';
+import type { CurrentLevel, MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
 import { FieldGroup, FigureField } from './money-fields.tsx';
-import { listPaidTraits } from './money-form.ts';
 import { QualityFields } from './money-quality-fields.tsx';
 import { SaveState } from './money-save-state.tsx';
 import { SeedFields, type NamedVariety } from './money-seed-fields.tsx';
@@ -27,49 +28,76 @@ type MoneyPanelProps = {
 
 /** Prices and costs; each edit is reckoned on the page at once and saved on demand. */
 export function MoneyPanel({ weighUp, crop, levels, varieties, money, saving }: MoneyPanelProps) {
-  const { t } = useTranslation('weigh-up');
-  const format = useFormat();
-  const { form, isValid, assumptions } = money;
-  const { priceSheetDate } = weighUp.assumptions;
-  const { currency } = assumptions;
+  const { form, assumptions } = money;
   return (
     <section aria-labelledby="money-title" className="rounded-lg border border-rule bg-card p-4 sm:p-5">
-      <h2 id="money-title">{t('money.title')}</h2>
-      <p className="text-sm text-faded">{t('money.lead')}</p>
-      <p className="mb-4 text-sm text-faded">
-        {priceSheetDate ? t('money.sheet', { date: format.date(priceSheetDate) }) : t('money.noSheet')}
-      </p>
+      <PanelHead sheetDate={weighUp.assumptions.priceSheetDate ?? null} />
       <form
         noValidate
         // A field that is gone to by key comes to stand above the foot that sticks over it.
         className="flex flex-col gap-4 [&_:is(input,select,summary)]:scroll-mb-56"
         onSubmit={(event) => void form.handleSubmit((typed) => saving.save(typed))(event)}
       >
-        <PriceFields form={form} currency={currency} />
-        <FigureField form={form} name="areaHectares" label={t('money.area')} measure="ha" />
-        <fieldset className="flex flex-col gap-3">
-          <legend className="mb-1 text-sm font-semibold">{t('money.seeds')}</legend>
-          {varieties.map((variety) => (
-            <SeedFields key={variety.id} form={form} variety={variety} assumptions={assumptions} />
-          ))}
-          <p className="text-sm text-faded">{t('money.unknownSeed')}</p>
-        </fieldset>
-        <FurtherGroups
-          form={form}
-          currency={currency}
-          varieties={varieties}
-          traits={listPaidTraits(crop)}
-          levels={levels}
+        <MoneyFields
+          {...{ form, crop, levels, varieties }}
+          currency={assumptions.currency}
+          seedCosts={assumptions.seedCosts}
         />
-        <SaveState form={form} isValid={isValid} saving={saving} />
+        <SaveState isDirty={money.isDirty} isValid={money.isValid} saving={saving} />
       </form>
     </section>
   );
 }
 
+const PanelHead = memo(function PanelHead({ sheetDate }: { sheetDate: string | null }) {
+  const { t } = useTranslation('weigh-up');
+  const format = useFormat();
+  return (
+    <>
+      <h2 id="money-title">{t('money.title')}</h2>
+      <p className="text-sm text-faded">{t('money.lead')}</p>
+      <p className="mb-4 text-sm text-faded">
+        {sheetDate === null ? t('money.noSheet') : t('money.sheet', { date: format.date(sheetDate) })}
+      </p>
+    </>
+  );
+});
+
 type FormPartProps = Pick<ReckonedMoney, 'form'> & { currency: string };
 
-function PriceFields({ form, currency }: FormPartProps) {
+type MoneyFieldsProps = FormPartProps &
+  Pick<MoneyPanelProps, 'crop' | 'levels' | 'varieties'> & {
+    /** As last reckoned with: what follows from a seeding rate is said beside it. */
+    seedCosts: MoneyAssumptions['seedCosts'];
+  };
+
+/** Every figure of the panel; each part is drawn anew for what stands in itself alone. */
+const MoneyFields = memo(function MoneyFields(props: MoneyFieldsProps) {
+  const { form, currency, crop, levels, varieties, seedCosts } = props;
+  const { t } = useTranslation('weigh-up');
+  return (
+    <>
+      <PriceFields form={form} currency={currency} />
+      <FigureField form={form} name="areaHectares" label={t('money.area')} measure="ha" />
+      <fieldset className="flex flex-col gap-3">
+        <legend className="mb-1 text-sm font-semibold">{t('money.seeds')}</legend>
+        {varieties.map((variety) => (
+          <SeedFields
+            key={variety.id}
+            form={form}
+            variety={variety}
+            currency={currency}
+            cost={seedCosts[variety.id]}
+          />
+        ))}
+        <p className="text-sm text-faded">{t('money.unknownSeed')}</p>
+      </fieldset>
+      <FurtherGroups {...{ form, currency, crop, varieties, levels }} />
+    </>
+  );
+});
+
+const PriceFields = memo(function PriceFields({ form, currency }: FormPartProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
   const sign = currencySign(currency, useLanguage());
@@ -86,13 +114,9 @@ function PriceFields({ form, currency }: FormPartProps) {
       </div>
     </fieldset>
   );
-}
+});
 
-type FurtherGroupsProps = FormPartProps & {
-  varieties: readonly NamedVariety[];
-  traits: ReturnType<typeof listPaidTraits>;
-  levels: readonly CurrentLevel[];
-};
+type FurtherGroupsProps = FormPartProps & Pick<MoneyPanelProps, 'crop' | 'levels' | 'varieties'>;
 
 /** Parts of a variety's costs that a group holds: an error in one of them opens it. */
 const groupParts = {
@@ -102,9 +126,10 @@ const groupParts = {
 } as const;
 
 /** What is seldom touched, in groups that are folded and named. */
-function FurtherGroups({ form, currency, varieties, traits, levels }: FurtherGroupsProps) {
+const FurtherGroups = memo(function FurtherGroups(props: FurtherGroupsProps) {
+  const { form, currency, crop, varieties, levels } = props;
   const { t } = useTranslation('weigh-up');
-  const { errors } = form.formState;
+  const { errors } = useFormState({ control: form.control });
   const isWrong = (group: keyof typeof groupParts) =>
     varieties.some(({ id }) => groupParts[group].some((part) => errors.seedCosts?.[id]?.[part]));
   const tonneParts = ['haulagePerTonne', 'harvestPerTonne', 'dryingPerTonne'] as const;
@@ -144,7 +169,7 @@ function FurtherGroups({ form, currency, varieties, traits, levels }: FurtherGro
           form={form}
           currency={currency}
           currentName={varieties[0]?.name ?? ''}
-          traits={traits}
+          crop={crop}
           levels={levels}
         />
       </FieldGroup>
@@ -159,4 +184,4 @@ function FurtherGroups({ form, currency, varieties, traits, levels }: FurtherGro
       </FieldGroup>
     </div>
   );
-}
+});

@@ -1,18 +1,19 @@
+import { memo } from 'react';
 import { useFieldArray, useWatch } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
-import type { Trait } from '#shared/catalogue.ts';
+import type { Crop, Trait } from '#shared/catalogue.ts';
 import type { CurrentLevel } from '#shared/money.ts';
 import { Button } from '#src/components/button.tsx';
 import { useFormat } from '#src/components/use-format.ts';
 import { ChoiceField, FigureField } from './money-fields.tsx';
+import { listPaidTraits } from './money-form.ts';
 import type { MoneyFormApi } from './use-money-form.ts';
 
 type QualityFieldsProps = {
   form: MoneyFormApi;
   currency: string;
   currentName: string;
-  /** The traits that a buyer may pay by. */
-  traits: readonly Trait[];
+  crop: Pick<Crop, 'traits'>;
   /** What the current variety gives in the trials used. */
   levels: readonly CurrentLevel[];
 };
@@ -21,11 +22,13 @@ type QualityFieldsProps = {
 const mostRules = 12;
 
 /** What buyers add to the price or take off it by the level of a trait, and where the current variety stands. */
-export function QualityFields({ form, currency, currentName, traits, levels }: QualityFieldsProps) {
+export const QualityFields = memo(function QualityFields(props: QualityFieldsProps) {
+  const { form, currency, currentName, crop, levels } = props;
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
   const rules = useFieldArray({ control: form.control, name: 'qualityRules' });
   const typed = useWatch({ control: form.control, name: 'qualityRules' });
+  const traits = listPaidTraits(crop);
   const [first] = traits;
   const unitOf = (slug: string) => traits.find((trait) => trait.slug === slug)?.unit ?? '';
   const paid = traits.filter(({ slug }) => typed.some((rule) => rule.traitSlug === slug));
@@ -102,4 +105,4 @@ export function QualityFields({ form, currency, currentName, traits, levels }: Q
       count: level.trials,
     });
   }
-}
+});

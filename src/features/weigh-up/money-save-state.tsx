@@ -1,15 +1,13 @@
 import { useTranslation } from 'react-i18next';
 import { Button } from '#src/components/button.tsx';
 import { SaveConflict } from './save-conflict.tsx';
-import type { MoneyFormApi } from './use-money-form.ts';
 import type { MoneySaving } from './use-money-saving.ts';
 
-type SaveStateProps = { form: MoneyFormApi; isValid: boolean; saving: MoneySaving };
+type SaveStateProps = { isDirty: boolean; isValid: boolean; saving: MoneySaving };
 
 /** Whether the numbers on the page are the saved ones, and the steps to make them so. */
-export function SaveState({ form, isValid, saving }: SaveStateProps) {
+export function SaveState({ isDirty, isValid, saving }: SaveStateProps) {
   const { t } = useTranslation('weigh-up');
-  const { isDirty } = form.formState;
   if (saving.conflict) return <SaveConflict saving={saving} />;
   // Sticks to the foot of the panel, which may be taller than the screen: unsaved numbers must not go unseen. On a low
   // screen, a laptop at 200 % say, it would leave no room for the fields.

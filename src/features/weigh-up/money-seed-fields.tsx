@@ -1,7 +1,8 @@
+import { memo } from 'react';
 import { useWatch } from 'react-hook-form';
 import { useTranslation } from 'react-i18next';
 import { currencySign } from '#shared/format-number.ts';
-import { seedBasis, type MoneyAssumptions, type SeedBasis } from '#shared/money.ts';
+import { seedBasis, type SeedBasis, type SeedCost } from '#shared/money.ts';
 import { budgetSeed, findSeedingRate } from '#shared/seed-budget.ts';
 import { useFormat } from '#src/components/use-format.ts';
 import { useLanguage } from '#src/components/use-language.ts';
@@ -13,17 +14,18 @@ export type NamedVariety = { id: string; name: string };
 type SeedFieldsProps = {
   form: MoneyFormApi;
   variety: NamedVariety;
+  currency: string;
   /** The last numbers that fitted: what follows from them is said beside the fields. */
-  assumptions: MoneyAssumptions;
+  cost: SeedCost | undefined;
 };
 
 /** What the seed of one variety costs, on the basis that its owner knows it by. */
-export function SeedFields({ form, variety: { id, name }, assumptions }: SeedFieldsProps) {
+export const SeedFields = memo(function SeedFields({ form, variety, currency, cost }: SeedFieldsProps) {
+  const { id, name } = variety;
   const { t } = useTranslation('weigh-up');
-  const sign = currencySign(assumptions.currency, useLanguage());
+  const sign = currencySign(currency, useLanguage());
   const basis = useWatch({ control: form.control, name: `seedCosts.${id}.basis` });
   const at = `seedCosts.${id}` as const;
-  const { currency } = assumptions;
   return (
     <fieldset className="flex flex-col gap-2 border-l-4 border-rule pl-3">
       <legend className="sr-only">{name}</legend>
@@ -62,10 +64,10 @@ export function SeedFields({ form, variety: { id, name }, assumptions }: SeedFie
         />
       </div>
       {basis !== 'flat' && <RateFields form={form} id={id} name={name} />}
-      {basis !== 'flat' && <SeedOutcome basis={basis} id={id} name={name} assumptions={assumptions} />}
+      {basis !== 'flat' && <SeedOutcome basis={basis} name={name} currency={currency} cost={cost} />}
     </fieldset>
   );
-}
+});
 
 /** What the kg/ha follow from. */
 function RateFields({ form, id, name }: { form: MoneyFormApi; id: string; name: string }) {
@@ -101,20 +103,19 @@ function RateFields({ form, id, name }: { form: MoneyFormApi; id: string; name: 
   );
 }
 
-type SeedOutcomeProps = { basis: SeedBasis; id: string; name: string; assumptions: MoneyAssumptions };
+type SeedOutcomeProps = { basis: SeedBasis; name: string; currency: string; cost: SeedCost | undefined };
 
 /** The kg/ha that follow and what they cost, or what is missing for them. */
-function SeedOutcome({ basis, id, name, assumptions }: SeedOutcomeProps) {
+function SeedOutcome({ basis, name, currency, cost }: SeedOutcomeProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
-  const cost = assumptions.seedCosts[id];
   const rate = cost === undefined ? null : findSeedingRate(cost);
   const budget = budgetSeed(cost);
   if (rate === null || budget === null || cost?.basis !== basis) {
     return <p className="text-sm">{t('money.rateOpen', { name })}</p>;
   }
   const kg = format.quantity(rate, 'kg/ha');
-  const amount = format.moneyPer(budget.seed, assumptions.currency, 'ha', { decimals: 2 });
+  const amount = format.moneyPer(budget.seed, currency, 'ha', { decimals: 2 });
   return (
     <p role="status" className="text-sm">
       {t(basis === 'saved' ? 'money.savedFollows' : 'money.rateFollows', { kg, amount })}

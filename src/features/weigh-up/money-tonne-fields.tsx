@@ -1,3 +1,4 @@
+import { memo } from 'react';
 import { useTranslation } from 'react-i18next';
 import { FigureField } from './money-fields.tsx';
 import type { NamedVariety } from './money-seed-fields.tsx';
@@ -6,7 +7,7 @@ import type { MoneyFormApi } from './use-money-form.ts';
 type TonneFieldsProps = { form: MoneyFormApi; currency: string; varieties: readonly NamedVariety[] };
 
 /** What goes off the price of a tonne: haulage, harvest, drying whatever the moisture and by it. */
-export function TonneFields({ form, currency, varieties }: TonneFieldsProps) {
+export const TonneFields = memo(function TonneFields({ form, currency, varieties }: TonneFieldsProps) {
   const { t } = useTranslation('weigh-up');
   return (
     <>
@@ -61,4 +62,4 @@ export function TonneFields({ form, currency, varieties }: TonneFieldsProps) {
       </div>
     </>
   );
-}
+});

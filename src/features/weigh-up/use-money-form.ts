@@ -1,6 +1,6 @@
-import { useEffect, useMemo, useState } from 'react';
+import { useCallback, useEffect, useMemo, useState } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
-import { useQueryClient } from '@tanstack/react-query';
+import { replaceEqualDeep, useQueryClient } from '@tanstack/react-query';
 import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
 import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
@@ -29,6 +29,8 @@ export type ReckonedMoney = {
   areaHectares: number;
   /** Whether what is typed now fits. */
   isValid: boolean;
+  /** Whether what is typed is not what is saved. */
+  isDirty: boolean;
 };
 
 /** The money panel's form, with the assumptions it stands for at every edit. */
@@ -46,11 +48,15 @@ export function useMoneyForm(
     defaultValues: toMoneyDraft(base, crop),
     mode: 'onChange',
   });
-  const take = (next: WeighUp) => {
-    // Another one even where it holds the same: what was left unsaved is over with it.
-    setBase({ ...next });
-    form.reset(toMoneyDraft(next, crop));
-  };
+  const take = useCallback(
+    (next: WeighUp) => {
+      // Another one even where it holds the same: what was left unsaved is over with it.
+      setBase({ ...next });
+      form.reset(toMoneyDraft(next, crop));
+    },
+    [form, crop],
+  );
+  // Of the form's state nothing else is read here, or all that hangs on it would be drawn anew for every check of a field.
   const { isDirty } = form.formState;
   // Saved elsewhere meanwhile: an untouched panel follows, a touched one keeps its base, so that saving meets the conflict.
   if (weighUp.revision !== base.revision && !isDirty && base !== left?.base) setBase(weighUp);
@@ -62,22 +68,32 @@ export function useMoneyForm(
     if (left?.base === base) form.reset(left.draft, { keepDefaultValues: true });
   }, [form, base, crop, left]);
   const typed = useWatch({ control: form.control });
-  useKeptMoney(form, typed, base);
+  useKeptMoney(form.getValues, isDirty, typed, base);
   const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
-  const fitting = useLastFitting(parsed.success ? parsed.data : undefined, toMoneyDraft(base, crop));
+  const fitting = useLastFitting(parsed.data, () => toMoneyDraft(base, crop));
+  const assumptions = useUnchanged(useMemo(() => toAssumptions(fitting, base.assumptions), [fitting, base]));
   return {
     form,
     base,
     take,
-    assumptions: useMemo(() => toAssumptions(fitting, base.assumptions), [fitting, base]),
+    assumptions,
     areaHectares: fitting.areaHectares,
     isValid: parsed.success,
+    isDirty,
   };
 }
 
 /** What fits now, else what fitted last: the page goes on showing figures while a number is being typed. */
-function useLastFitting(now: MoneyForm | undefined, saved: MoneyDraft): MoneyForm {
-  const [last, setLast] = useState(() => savedMoneyForm.parse(saved));
+function useLastFitting(now: MoneyForm | undefined, readSaved: () => MoneyDraft): MoneyForm {
+  const [last, setLast] = useState(() => savedMoneyForm.parse(readSaved()));
   if (now !== undefined && now !== last) setLast(now);
   return now ?? last;
+}
+
+/** The same value with every part that is as it was before: what is drawn of that part is not drawn again. */
+function useUnchanged<Value>(now: Value): Value {
+  const [last, setLast] = useState(now);
+  const next = replaceEqualDeep(last, now);
+  if (next !== last) setLast(next);
+  return next;
 }

@@ -1,4 +1,4 @@
-import { memo, useMemo } from 'react';
+import { memo, useDeferredValue, useMemo } from 'react';
 import { useQuery } from '@tanstack/react-query';
 import { useTranslation } from 'react-i18next';
 import { Link, useParams } from 'react-router-dom';
@@ -7,7 +7,7 @@ import { readMoneyBasis } from '#shared/money-basis.ts';
 import { reckonCandidates } from '#shared/reckon-candidates.ts';
 import { storedUnits } from '#shared/reader-units.ts';
 import type { Caution } from '#shared/caution.ts';
-import type { MoneyAssumptions } from '#shared/money.ts';
+import type { CurrentLevel, MoneyAssumptions } from '#shared/money.ts';
 import type { CandidateResult, UsedTrial } from '#shared/weigh-up.ts';
 import { catalogueQuery, findCrop, findTrait } from '#src/catalogue-query.ts';
 import { CropUnits, useUnitChoice } from '#src/chosen-units.tsx';
@@ -92,12 +92,17 @@ function WeighedPage(props: AnswerProps & { crop: Crop }) {
   return isWhole || view === 'table' ? <WeighedAnswer {...props} /> : <VerdictAlone {...props} />;
 }
 
+/** One and the same, so that nothing is drawn anew for it. */
+const noLevels: readonly CurrentLevel[] = [];
+
 function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
   const { t } = useTranslation('verdicts');
   const cautionItems = useCautionItems();
   const view = useWeighUpView();
   const money = useMoneyForm(weighUp, crop);
   const saving = useMoneySaving(money);
+  // The panels beside say it a moment after the first figure that is typed has been answered.
+  const hasUnsaved = useDeferredValue(money.isDirty);
   const practicalMargin = findTrait(crop, 'yield')?.practicalMargin ?? null;
   const candidates = useMemo(
     () =>
@@ -109,11 +114,14 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
       ),
     [result, weighUp, money.assumptions, practicalMargin],
   );
-  const currentName = weighUp.currentVarietyName;
-  const varieties = [
-    { id: weighUp.currentVarietyId, name: currentName },
-    ...candidates.map(({ varietyId, varietyName }) => ({ id: varietyId, name: varietyName })),
-  ];
+  const { currentVarietyId, currentVarietyName: currentName } = weighUp;
+  const varieties = useMemo(
+    () => [
+      { id: currentVarietyId, name: currentName },
+      ...result.candidates.map(({ varietyId, varietyName }) => ({ id: varietyId, name: varietyName })),
+    ],
+    [currentVarietyId, currentName, result],
+  );
   if (view === 'table') {
     const isStop = ({ severity }: Caution) => severity === 'stop';
     return (
@@ -124,7 +132,7 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
           currentName={currentName}
           money={money.assumptions}
           cautions={result.cautions.filter((caution) => !isStop(caution))}
-          hasUnsaved={money.form.formState.isDirty}
+          hasUnsaved={money.isDirty}
         />
       </>
     );
@@ -143,13 +151,13 @@ function WeighedAnswer({ weighUp, result, crop }: AnswerProps & { crop: Crop }) 
         <MoneyPanel
           weighUp={weighUp}
           crop={crop}
-          levels={result.currentLevels ?? []}
+          levels={result.currentLevels ?? noLevels}
           varieties={varieties}
           money={money}
           saving={saving}
         />
       </div>
-      <BesideMoney weighUp={weighUp} result={result} hasUnsaved={money.form.formState.isDirty} />
+      <BesideMoney weighUp={weighUp} result={result} hasUnsaved={hasUnsaved} />
     </div>
   );
 }
@@ -165,24 +173,11 @@ type AnswerColumnProps = AnswerProps & {
 /** The answer itself: drawn anew once for a figure that is typed, and not again while its field is being checked. */
 const AnswerColumn = memo(function AnswerColumn(props: AnswerColumnProps) {
   const { weighUp, result, crop, candidates, assumptions, areaHectares } = props;
-  const { t } = useTranslation('verdicts');
-  const cautionItems = useCautionItems();
-  const chooseUnit = useUnitChoice();
   const currentName = weighUp.currentVarietyName;
-  const cautions = [
-    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
-    ...candidates.flatMap((candidate) => candidate.cautions),
-  ];
   return (
     <div className={mainColumn}>
       <AnswerHead weighUp={weighUp} result={result} candidates={candidates} />
-      <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
-        <WaysInPage />
-        <UnitSwitch onChoose={chooseUnit} />
-      </div>
-      {result.best && (
-        <BestOfListAnswer best={result.best} currentId={weighUp.currentVarietyId} currentName={currentName} />
-      )}
+      <UnderHead weighUp={weighUp} result={result} />
       <CandidateStrip
         candidates={candidates}
         currentName={currentName}
@@ -190,13 +185,7 @@ const AnswerColumn = memo(function AnswerColumn(props: AnswerColumnProps) {
         areaHectares={areaHectares}
       />
       <PricesOnPaper money={assumptions} />
-      <div id="cautions" className="scroll-mt-2">
-        <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} mayBreak />
-      </div>
-      <div id="traits" className="scroll-mt-2 print:order-2">
-        {/* As they came: no price bears on them. */}
-        <OtherTraits candidates={result.candidates} traits={crop.traits} currentName={currentName} />
-      </div>
+      <Unpriced weighUp={weighUp} result={result} crop={crop} />
       <StoryOnPaper
         candidates={candidates}
         currentName={currentName}
@@ -204,6 +193,45 @@ const AnswerColumn = memo(function AnswerColumn(props: AnswerColumnProps) {
         areaHectares={areaHectares}
       />
     </div>
+  );
+});
+
+/** Between verdict and figures: the ways on, and which of the list can be the best. No price bears on them. */
+const UnderHead = memo(function UnderHead({ weighUp, result }: AnswerProps) {
+  const chooseUnit = useUnitChoice();
+  const { currentVarietyId: currentId, currentVarietyName: currentName } = weighUp;
+  return (
+    <>
+      <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 print:hidden">
+        <WaysInPage />
+        <UnitSwitch onChoose={chooseUnit} />
+      </div>
+      {result.best && <BestOfListAnswer best={result.best} currentId={currentId} currentName={currentName} />}
+    </>
+  );
+});
+
+/** Under the figures: cautions and other traits as they came, on which no price bears. */
+const Unpriced = memo(function Unpriced({ weighUp, result, crop }: AnswerProps & { crop: Crop }) {
+  const { t } = useTranslation('verdicts');
+  const cautionItems = useCautionItems();
+  const cautions = [
+    ...result.cautions.filter(({ severity }) => severity !== 'stop'),
+    ...result.candidates.flatMap((candidate) => candidate.cautions),
+  ];
+  return (
+    <>
+      <div id="cautions" className="scroll-mt-2">
+        <CautionList title={t('cautionsTitle')} items={cautionItems(cautions)} mayBreak />
+      </div>
+      <div id="traits" className="scroll-mt-2 print:order-2">
+        <OtherTraits
+          candidates={result.candidates}
+          traits={crop.traits}
+          currentName={weighUp.currentVarietyName}
+        />
+      </div>
+    </>
   );
 });
 

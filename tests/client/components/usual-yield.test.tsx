@@ -70,7 +70,8 @@ describe('trials of other regions', () => {
     const gap = { trialMean: 5, estimate: 0.1, interval };
     const sentences = (inRegion: boolean) => (
       <IntervalSentences
-        candidate={buildCandidate({ trials: [{ ...trial(1, inRegion), ...gap }] })}
+        gap={buildCandidate().gap}
+        trials={[{ ...trial(1, inRegion), ...gap }]}
         unit="t/ha"
         decimals={2}
       />
