@@ -5,58 +5,36 @@ import { MeasureInput, PriceInput } from '#src/components/measure-input.tsx';
 import { NumberInput } from '#src/components/number-input.tsx';
 import { Select, type SelectOption } from '#src/components/select.tsx';
 import { useFieldErrorText } from '#src/use-field-error-text.ts';
-import { moneyForm, type MoneyDraft } from './money-form.ts';
+import type { MoneyDraft } from './money-form.ts';
 import type { MoneyFormApi } from './use-money-form.ts';
 
 /** What a figure is in: money per tonne or hectare and areas are typed in the reader's units, a plain unit stays. */
 type FigureUnit =
   { currency: string; per: 't' | 'ha'; isUnitHidden?: boolean } | { measure: 'ha' } | { plain: string };
 
-/** Every figure and choice of the form by its path. */
-function listNames(part: object, at: readonly string[] = []): Path<MoneyDraft>[] {
-  return Object.entries(part as Record<string, unknown>).flatMap(([key, value]) => {
-    const path = [...at, key];
-    if (typeof value === 'object' && value !== null) return listNames(value, path);
-    // The keys are those of the form.
-    return [path.join('.') as Path<MoneyDraft>];
-  });
-}
-
-/** Prices are held against each other and against costs, costs against prices: told anew where an edit changes that. */
-function recheckOthers(form: MoneyFormApi): void {
-  const draft = form.getValues();
-  const issues = moneyForm.safeParse(draft).error?.issues ?? [];
-  const refused = new Set(issues.filter(({ code }) => code === 'custom').map(({ path }) => path.join('.')));
-  for (const name of listNames(draft)) {
-    const isMarked = form.getFieldState(name).error?.type === 'custom';
-    // One by one: checked together, every field of the panel would be drawn anew.
-    if (isMarked || refused.has(name)) void form.trigger(name);
-  }
-}
-
 type FigureFieldProps = {
   form: MoneyFormApi;
   name: Path<MoneyDraft>;
   label: string;
   hint?: string | undefined;
+  /** Of the field as a whole: where its parts stand in the group around it. */
+  className?: string;
 } & FigureUnit;
 
 /** One figure of the panel, with its unit, hint and error; an edit of one does not draw the others anew. */
-export const FigureField = memo(function FigureField({ form, name, label, hint, ...unit }: FigureFieldProps) {
+export const FigureField = memo(function FigureField(props: FigureFieldProps) {
+  const { form, name, label, hint, className, ...unit } = props;
   const fieldErrorText = useFieldErrorText();
   return (
     <Controller
       control={form.control}
       name={name}
       render={({ field: { value, onChange, onBlur, ref }, fieldState: { error } }) => (
-        <Field label={label} hint={hint} error={fieldErrorText(error)}>
+        <Field label={label} hint={hint} error={fieldErrorText(error)} className={className}>
           <UnitInput
             unit={unit}
             value={typeof value === 'number' ? value : null}
-            onValueChange={(figure) => {
-              onChange(figure);
-              recheckOthers(form);
-            }}
+            onValueChange={onChange}
             onBlur={onBlur}
             ref={ref}
           />
@@ -89,16 +67,7 @@ export function ChoiceField({ form, name, label, options }: ChoiceFieldProps) {
       name={name}
       render={({ field: { value, onChange, onBlur, ref } }) => (
         <Field label={label}>
-          <Select
-            options={options}
-            value={String(value)}
-            onChange={(event) => {
-              onChange(event.target.value);
-              recheckOthers(form);
-            }}
-            onBlur={onBlur}
-            ref={ref}
-          />
+          <Select options={options} value={String(value)} onChange={onChange} onBlur={onBlur} ref={ref} />
         </Field>
       )}
     />

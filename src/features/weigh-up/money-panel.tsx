@@ -97,6 +97,14 @@ const MoneyFields = memo(function MoneyFields(props: MoneyFieldsProps) {
   );
 });
 
+/** Label over control, a column each; what is wrong has the whole width under the three. */
+const column = 'contents! [&>label]:row-start-1 [&>span]:row-start-2 [&>[id$=-error]]:col-span-full';
+const ofThree = {
+  low: `${column} [&>[id$=-error]]:row-start-3`,
+  middle: `${column} [&>[id$=-error]]:row-start-4`,
+  high: `${column} [&>[id$=-error]]:row-start-5`,
+};
+
 const PriceFields = memo(function PriceFields({ form, currency }: FormPartProps) {
   const { t } = useTranslation('weigh-up');
   const format = useFormat();
@@ -107,10 +115,22 @@ const PriceFields = memo(function PriceFields({ form, currency }: FormPartProps)
       <legend className="mb-1 text-sm font-semibold">
         {t('money.price', { unit: `${sign}/${format.unit('t')}` })}
       </legend>
-      <div className="grid grid-cols-3 gap-2">
-        <FigureField form={form} name="priceLow" label={t('money.low')} {...unit} />
-        <FigureField form={form} name="priceMiddle" label={t('money.middle')} {...unit} />
-        <FigureField form={form} name="priceHigh" label={t('money.high')} {...unit} />
+      <div className="grid grid-cols-3 gap-x-2 gap-y-1">
+        <FigureField form={form} name="priceLow" label={t('money.low')} className={ofThree.low} {...unit} />
+        <FigureField
+          form={form}
+          name="priceMiddle"
+          label={t('money.middle')}
+          className={ofThree.middle}
+          {...unit}
+        />
+        <FigureField
+          form={form}
+          name="priceHigh"
+          label={t('money.high')}
+          className={ofThree.high}
+          {...unit}
+        />
       </div>
     </fieldset>
   );

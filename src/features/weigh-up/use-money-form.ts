@@ -1,7 +1,8 @@
 import { useCallback, useEffect, useMemo, useState } from 'react';
 import { zodResolver } from '@hookform/resolvers/zod';
 import { replaceEqualDeep, useQueryClient } from '@tanstack/react-query';
-import { useForm, useWatch, type UseFormReturn } from 'react-hook-form';
+import { useForm, useWatch, type Path, type UseFormReturn } from 'react-hook-form';
+import type { z } from 'zod';
 import type { Crop } from '#shared/catalogue.ts';
 import type { MoneyAssumptions } from '#shared/money.ts';
 import type { WeighUp } from '#shared/weigh-up.ts';
@@ -47,6 +48,7 @@ export function useMoneyForm(
     resolver: zodResolver(moneyForm, fieldIssues),
     defaultValues: toMoneyDraft(base, crop),
     mode: 'onChange',
+    delayError: pauseMs,
   });
   const take = useCallback(
     (next: WeighUp) => {
@@ -70,6 +72,7 @@ export function useMoneyForm(
   const typed = useWatch({ control: form.control });
   useKeptMoney(form.getValues, isDirty, typed, base);
   const parsed = useMemo(() => moneyForm.safeParse(typed), [typed]);
+  useCrossChecks(form, parsed.error);
   const fitting = useLastFitting(parsed.data, () => toMoneyDraft(base, crop));
   const assumptions = useUnchanged(useMemo(() => toAssumptions(fitting, base.assumptions), [fitting, base]));
   return {
@@ -81,6 +84,38 @@ export function useMoneyForm(
     isValid: parsed.success,
     isDirty,
   };
+}
+
+/** Whoever types `258` is not told at `25` that it is under the low price: a figure is refused after a pause, or on leaving. */
+const pauseMs = 600;
+
+/** Every figure and choice of the form by its path. */
+function listNames(part: object, at: readonly string[] = []): Path<MoneyDraft>[] {
+  return Object.entries(part as Record<string, unknown>).flatMap(([key, value]) => {
+    const path = [...at, key];
+    if (typeof value === 'object' && value !== null) return listNames(value, path);
+    // The keys are those of the form.
+    return [path.join('.') as Path<MoneyDraft>];
+  });
+}
+
+/**
+ * Prices are held against each other and against costs, costs against prices, while a form checks the field alone that is
+ * edited: what no longer holds of the others is taken back at once, what does is said after the pause. One by one, since
+ * fields that are checked together are all drawn anew.
+ */
+function useCrossChecks(form: MoneyFormApi, error: z.ZodError | undefined): void {
+  useEffect(() => {
+    const issues = error?.issues ?? [];
+    const refused = new Set(issues.filter(({ code }) => code === 'custom').map(({ path }) => path.join('.')));
+    const names = listNames(form.getValues());
+    const isMarked = (name: Path<MoneyDraft>) => form.getFieldState(name).error?.type === 'custom';
+    for (const name of names) if (isMarked(name)) void form.trigger(name);
+    const timer = setTimeout(() => {
+      for (const name of names) if (refused.has(name) && !isMarked(name)) void form.trigger(name);
+    }, pauseMs);
+    return () => clearTimeout(timer);
+  }, [form, error]);
 }
 
 /** What fits now, else what fitted last: the page goes on showing figures while a number is being typed. */

@@ -200,9 +200,29 @@ describe('seed, quality and what they lead to', () => {
       if (typed !== '') await user.type(middle, typed);
       expect(panel.getByText(/Some numbers do not fit/)).toBeTruthy();
       expect(screen.getByText('+$78/ha')).toBeTruthy();
-      expect(middle.getAttribute('aria-invalid')).toBe('true');
+      await user.tab();
+      await waitFor(() => expect(middle.getAttribute('aria-invalid')).toBe('true'));
     },
   );
+
+  it('refuses a figure after a pause, not while it is being typed', async () => {
+    serve(() => Response.json(opened));
+    await open();
+    const panel = within(await money());
+    const user = userEvent.setup();
+    const middle = panel.getByLabelText('Middle');
+    const wrong = () => panel.queryByText(/low price must not be above the middle/);
+    await user.clear(middle);
+    await user.type(middle, '29');
+    await new Promise((resolve) => setTimeout(resolve, 200));
+    expect(wrong()).toBeNull();
+    await waitFor(() => expect(wrong()).toBeTruthy());
+    await user.type(middle, '5');
+    await waitFor(() => expect(wrong()).toBeNull(), { timeout: 300 });
+    await user.type(middle, '{Backspace}5');
+    await new Promise((resolve) => setTimeout(resolve, 900));
+    expect(wrong()).toBeNull();
+  });
 
   it('reckons a premium by how often each variety passes its limit', async () => {
     serve(
