@@ -21,6 +21,7 @@ export function Dialog({ isOpen, title, onClose, children }: DialogProps) {
     if (!isOpen && dialog.open) dialog.close();
   }, [isOpen]);
   return (
+    // It may stand in a cell of a table, whose alignment is not its own.
     <dialog
       ref={ref}
       aria-labelledby={titleId}
@@ -29,7 +30,7 @@ export function Dialog({ isOpen, title, onClose, children }: DialogProps) {
         event.preventDefault();
         onClose();
       }}
-      className="m-auto w-[min(34rem,calc(100vw-1.5rem))] rounded-lg border border-rule bg-paper p-5 text-ink"
+      className="m-auto w-[min(34rem,calc(100vw-1.5rem))] rounded-lg border border-rule bg-paper p-5 text-left font-normal whitespace-normal text-ink"
     >
       {isOpen && (
         <>

@@ -1,4 +1,4 @@
-import { useSyncExternalStore } from 'react';
+import { useEffect, useState, useSyncExternalStore } from 'react';
 import { useTranslation } from 'react-i18next';
 
 type Toast = { id: number; text: string; onUndo?: () => void };
@@ -12,7 +12,10 @@ function setToast(next: Toast | null): void {
   listeners.forEach((listener) => listener());
 }
 
-/** Says at the foot of the page what was just done, with a way to undo it where there is one. Stays until it is closed. */
+/**
+ * Says at the foot of the page what was just done. With a way to undo it, it stays until it is closed; without one it goes
+ * by itself, since on a phone it stands over the foot of the page.
+ */
 export function showToast(text: string, onUndo?: () => void): void {
   count += 1;
   setToast({ id: count, text, ...(onUndo && { onUndo }) });
@@ -23,6 +26,9 @@ function subscribe(listener: () => void): () => void {
   return () => listeners.delete(listener);
 }
 
+/** Long enough to read two lines twice. */
+const shownMs = 8000;
+
 /** The place where toasts appear; stands once, in the shell. */
 export function Toaster() {
   const { t } = useTranslation('common');
@@ -31,7 +37,17 @@ export function Toaster() {
     () => toast,
     () => null,
   );
-  const close = () => setToast(null);
+  // Whoever is on it, by pointer or by key, is still reading.
+  const [isHeld, setHeld] = useState(false);
+  useEffect(() => {
+    if (shown === null || shown.onUndo || isHeld) return undefined;
+    const timer = setTimeout(() => setToast(null), shownMs);
+    return () => clearTimeout(timer);
+  }, [shown, isHeld]);
+  const close = () => {
+    setHeld(false);
+    setToast(null);
+  };
   const undo = () => {
     shown?.onUndo?.();
     close();
@@ -45,6 +61,10 @@ export function Toaster() {
       {shown && (
         <div
           key={shown.id}
+          onMouseEnter={() => setHeld(true)}
+          onMouseLeave={() => setHeld(false)}
+          onFocus={() => setHeld(true)}
+          onBlur={() => setHeld(false)}
           className="pointer-events-auto flex flex-wrap items-center gap-x-3 rounded-lg bg-ink px-4 py-1 text-paper"
         >
           <span>{shown.text}</span>

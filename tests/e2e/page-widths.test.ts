@@ -94,3 +94,18 @@ it.each([
   },
   60_000,
 );
+
+it('a dialog that stands in a card of a table begins its lines where lines begin', async () => {
+  const { page, context, close } = await openVisit(demo.browser, demo.app.url, 'en', 360);
+  await signInByFixture(context, 'advisor', 'en');
+  await page.goto(`${await findWeighUp(page)}#method`);
+  await page.getByText(/trials behind the figures/).click();
+  await page
+    .getByRole('button', { name: /^Tick off the trial/ })
+    .first()
+    .click();
+  await page.getByText(say('en', 'record:tickOff.text')).waitFor();
+  const side = await page.evaluate("getComputedStyle(document.querySelector('dialog[open] p')).textAlign");
+  expect(side).toBe('left');
+  await close();
+});

@@ -1,4 +1,4 @@
-import { act, render, screen, waitFor, within } from '@testing-library/react';
+import { act, fireEvent, render, screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { Link, Route, Routes } from 'react-router-dom';
 import { afterEach, describe, expect, it, vi } from 'vitest';
@@ -187,5 +187,30 @@ describe('the shell', () => {
     await userEvent.click(screen.getByRole('button', { name: 'Undo' }));
     expect(undo).toHaveBeenCalledOnce();
     await waitFor(() => expect(screen.queryByText('Candidate removed')).toBeNull());
+  });
+
+  it('takes away by itself what needs no answer, but not under the pointer, nor what can be undone', async () => {
+    await renderClient(shell);
+    vi.useFakeTimers();
+    try {
+      const wait = (ms: number) => act(() => vi.advanceTimersByTime(ms));
+      const toastOf = (text: string) => screen.getByText(text).parentElement ?? document.body;
+      act(() => showToast('Numbers saved'));
+      wait(7000);
+      fireEvent.mouseEnter(toastOf('Numbers saved'));
+      wait(60_000);
+      expect(screen.getByText('Numbers saved')).toBeTruthy();
+      fireEvent.mouseLeave(toastOf('Numbers saved'));
+      wait(7900);
+      expect(screen.getByText('Numbers saved')).toBeTruthy();
+      wait(200);
+      expect(screen.queryByText('Numbers saved')).toBeNull();
+      act(() => showToast('Candidate removed', () => undefined));
+      wait(600_000);
+      fireEvent.click(screen.getByRole('button', { name: 'Close' }));
+      expect(screen.queryByText('Candidate removed')).toBeNull();
+    } finally {
+      vi.useRealTimers();
+    }
   });
 });
