@@ -193,7 +193,10 @@ describe('the shell', () => {
     await renderClient(shell);
     vi.useFakeTimers();
     try {
-      const wait = (ms: number) => act(() => vi.advanceTimersByTime(ms));
+      const wait = (ms: number) =>
+        act(() => {
+          vi.advanceTimersByTime(ms);
+        });
       const toastOf = (text: string) => screen.getByText(text).parentElement ?? document.body;
       act(() => showToast('Numbers saved'));
       wait(7000);
