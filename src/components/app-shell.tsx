@@ -80,7 +80,7 @@ function MainNav({ items }: { items: readonly NavItem[] }) {
             <NavLink
               to={item.to}
               className={({ isActive }) =>
-                `tap-target inline-flex items-center border-b-3 px-2 text-ink no-underline hover:underline ${isActive ? 'border-ink font-semibold' : 'border-transparent'}`
+                `tap-target inline-flex items-center border-b-3 px-2 text-ink no-underline hover:underline ${isActive ? 'border-ink font-semibold' : 'border-transparent forced-colors:border-[color:Canvas]'}`
               }
             >
               {item.label}

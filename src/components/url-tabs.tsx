@@ -36,7 +36,7 @@ export function UrlTabs({ label, tabs, param = 'tab' }: UrlTabsProps) {
                 to={{ search: next.toString() }}
                 preventScrollReset
                 aria-current={isCurrent ? 'page' : undefined}
-                className={`tap-target inline-flex items-center justify-center border-b-3 no-underline hover:underline ${isCurrent ? 'border-ink font-semibold text-ink' : 'border-transparent'}`}
+                className={`tap-target inline-flex items-center justify-center border-b-3 no-underline hover:underline ${isCurrent ? 'border-ink font-semibold text-ink' : 'border-transparent forced-colors:border-[color:Canvas]'}`}
               >
                 {tab.label}
               </Link>

@@ -109,3 +109,17 @@ it('a dialog that stands in a card of a table begins its lines where lines begin
   expect(side).toBe('left');
   await close();
 });
+
+it('where colours are forced, the navigation marks the page that one is on and no other', async () => {
+  const { page, context, close } = await openVisit(demo.browser, demo.app.url, 'en', 1280);
+  await page.emulateMedia({ forcedColors: 'active' });
+  await signInByFixture(context, 'advisor', 'en');
+  await page.goto('/trials');
+  await page.getByRole('heading', { level: 1 }).waitFor();
+  // A line in the colour of the words is seen; one in that of the page is not.
+  const marked = await page.evaluate(`[...document.querySelectorAll('header nav a')]
+    .filter((link) => getComputedStyle(link).borderBottomColor === getComputedStyle(link).color)
+    .map((link) => link.textContent)`);
+  expect(marked).toEqual(['Trials']);
+  await close();
+});
