@@ -10,7 +10,7 @@ import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 // a command takes a second, on a busy machine many
 vi.setConfig({ testTimeout: 60_000 });
 
-const root = fileURLToPath(new URL('../../../', import.meta.url));
+const root = fileURLToPath(new URL('../../', import.meta.url));
 const cases = path.join(root, 'tests/reference/open');
 const run = promisify(execFile);
 
