@@ -29,6 +29,8 @@ async function askJson<T>(page: Page, path: string): Promise<T> {
 async function openWeighUp(page: Page): Promise<void> {
   const { weighUps } = await askJson<{ weighUps: { id: string }[] }>(page, '/api/weigh-ups');
   await page.goto(`/weigh-ups/${weighUps[0]?.id ?? ''}`);
+  // The verdict is painted first, the rest behind it.
+  await page.getByRole('figure').first().waitFor();
 }
 
 async function openTrial(page: Page): Promise<void> {
@@ -43,7 +45,7 @@ async function openTrial(page: Page): Promise<void> {
 async function openCopy(page: Page): Promise<void> {
   const { weighUps } = await askJson<{ weighUps: { id: string }[] }>(page, '/api/weigh-ups');
   const reply = await page.request.post(`/api/weigh-ups/${weighUps[0]?.id ?? ''}/grower-copies`, {
-    data: { language: 'fr', validDays: 30 },
+    data: { language: 'fr', validDays: 30, timeZone: 'America/Halifax' },
   });
   const made = (await reply.json()) as { path: string; copy: { id: string } };
   await page.goto(made.path);
