@@ -6,9 +6,9 @@ import type { FigureWriter } from './write-figures.ts';
 export function tellPrices(
   { currency, priceLow, priceMiddle, priceHigh, priceSheetDate }: MoneyAssumptions,
   say: Say<`verdicts:prices${'' | 'OfSheet'}`>,
-  write: Pick<FigureWriter, 'moneyPer' | 'date'>,
+  write: Pick<FigureWriter, 'pricePer' | 'date'>,
 ): string {
-  const price = (value: number) => write.moneyPer(value, currency, 't');
+  const price = (value: number) => write.pricePer(value, currency, 't');
   const prices = { low: price(priceLow), middle: price(priceMiddle), high: price(priceHigh) };
   return priceSheetDate === null
     ? say('verdicts:prices', prices)

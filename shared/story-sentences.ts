@@ -165,7 +165,7 @@ function tellWorth(
     sentences.push(
       say('verdicts:story.return', {
         gap: write.gap(moneyGap.estimate, unit, decimals),
-        price: write.moneyPer(money.priceMiddle, money.currency, 't'),
+        price: write.pricePer(money.priceMiddle, money.currency, 't'),
         amount: signed(result.returnPerHectare),
         low: signed(result.returnAtLowPrice),
         high: signed(result.returnAtHighPrice),

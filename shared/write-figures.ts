@@ -59,6 +59,9 @@ function writeMeasures(language: Language, units: ReaderUnits) {
   /** A gap with its unit left to the figure that follows: `+0.17`. */
   const gapFigure = (value: number, unit: string, decimals: number) =>
     formatNumber(toReader(value, unit, units), language, { decimals: bear(decimals, unit), isSigned: true });
+  /** Money for one stored unit: `$290/t`, or `$7.89/bu` where that is read. */
+  const moneyPer = (value: number, currency: string, per: string, style?: NumberStyle) =>
+    formatMoneyPer(toReaderPer(value, per, units), currency, readerUnit(per, units), language, style);
   return {
     quantity,
     gap,
@@ -74,9 +77,10 @@ function writeMeasures(language: Language, units: ReaderUnits) {
       high: gap(high, unit, decimals),
       level: formatPercent(level * 100, language),
     }),
-    /** Money for one stored unit: `$290/t`, or `$7.89/bu` where that is read. */
-    moneyPer: (value: number, currency: string, per: string, style?: NumberStyle) =>
-      formatMoneyPer(toReaderPer(value, per, units), currency, readerUnit(per, units), language, style),
+    moneyPer,
+    /** A price or a cost as it was given, to the cent where it has cents: `$258/t`, `$310.50/t`. */
+    pricePer: (value: number, currency: string, per: string) =>
+      moneyPer(value, currency, per, Number.isInteger(value) ? {} : { decimals: 2 }),
     area: (hectares: number) =>
       formatArea(toReader(hectares, 'ha', units), language, readerUnit('ha', units)),
   };

@@ -59,8 +59,7 @@ type OwnNumbersMarkProps = { own: OwnAssumptions; frozen: MoneyAssumptions };
 function OwnNumbersMark({ own, frozen: { currency, priceMiddle } }: OwnNumbersMarkProps) {
   const { t } = useTranslation('copy');
   const format = useFormat();
-  const write = (value: number, per: 't' | 'ha') =>
-    format.moneyPer(value, currency, per, Number.isInteger(value) ? {} : { decimals: 2 });
+  const write = (value: number, per: 't' | 'ha') => format.pricePer(value, currency, per);
   return (
     <div className="mb-3 rounded-lg border-2 border-action bg-card px-4 py-2">
       {own.price !== null && (

@@ -219,7 +219,7 @@ function WorthLines({ candidate, weighUp, decimals }: WorthLinesProps) {
       )}
       <p>
         {t('worth', {
-          price: format.moneyPer(priceMiddle, currency, 't'),
+          price: format.pricePer(priceMiddle, currency, 't'),
           amount: format.moneyPer(money.returnPerHectare, currency, 'ha', { isSigned: true }),
           total: format.money(money.returnPerHectare * weighUp.areaHectares, currency, { isSigned: true }),
           area: format.area(weighUp.areaHectares),

@@ -79,7 +79,7 @@ function WorthLine({ candidate, money }: TableCandidateProps) {
         {hasMoney
           ? t('weigh-up:table.return', {
               amount: format.moneyPer(result.returnPerHectare, money.currency, 'ha', { isSigned: true }),
-              price: format.moneyPer(money.priceMiddle, money.currency, 't'),
+              price: format.pricePer(money.priceMiddle, money.currency, 't'),
             })
           : t('weigh-up:table.noReturn')}
       </strong>

@@ -1,4 +1,4 @@
-import { screen, within } from '@testing-library/react';
+import { screen, waitFor, within } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { hydrateRoot } from 'react-dom/client';
 import { renderToString } from 'react-dom/server';
@@ -86,6 +86,15 @@ describe('the answer of a copy', () => {
     expect(ostermoor.getByText(/^\+\$34\/ha/).textContent).toContain('own number');
     expect(ostermoor.getByText(/^At \$180\/t that is \+\$34\/ha, \+\$4,080 on 120/)).toBeDefined();
     expect(breakEvenAt('Ostermoor')).not.toBe(frozenLine);
+  });
+
+  it('says a price with cents to the cent, wherever it stands', async () => {
+    await open();
+    await typePrice('310.5');
+    const text = () => document.body.textContent ?? '';
+    // The mark over the answer, the lines of two candidates, and their stories, which follow a moment later.
+    await waitFor(() => expect(text().match(/\$310\.50\/t/g)?.length).toBeGreaterThan(2));
+    expect(text()).not.toMatch(/\$31[01]\/t/);
   });
 
   it('goes back to the price of the copy', async () => {
